@@ -1,0 +1,203 @@
+// Package model is the checked model: a rival's laws with every name resolved,
+// every prior a number, every unmeasured variable projected out, and the data
+// it will be fitted to. The statement, the log density, the simulator and the
+// effects all come from this one value.
+package model
+
+import (
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/study"
+)
+
+// Kind says which of the three fits of one question a model is (SEMANTICS B8).
+type Kind int
+
+// The kinds.
+const (
+	Full  Kind = iota // every modelled variable of the rival
+	Held              // the outcome's law on the exposure and the held set alone
+	Crude             // the outcome's law on the exposure alone
+)
+
+// A Model never changes once it is checked.
+type Model struct {
+	Kind       Kind
+	Rival      string
+	Exposure   string // whose fit this is: it orders the carriers
+	Rows       Rows
+	Plates     []*Plate
+	Variables  []*Variable // every measured variable that a law reads or explains
+	Parameters []*Parameter
+	Laws       []*Law // parents before children
+	Given      []string
+}
+
+// Rows says which rows of the table are used and why the others are not.
+type Rows struct {
+	Read, Used int
+	Lost       []Loss
+	Index      []int // of each used row in the table
+}
+
+// A Loss counts rows that a variable lost; a row can be counted twice.
+type Loss struct {
+	Variable string
+	Rows     int
+}
+
+// A Plate with its levels found in the data. Every level has a used row.
+type Plate struct {
+	Name   string
+	Levels []string
+	Of     []int32 // level of each used row
+}
+
+// A Variable with its data in used rows, or one value per level of its plate.
+type Variable struct {
+	ID, Label, Unit string
+	Scale           study.Scale
+	Levels          []string  // binary, category, ordered
+	Plate           int       // index in Model.Plates, -1 = row
+	Values          []float64 // codes for category and ordered; 0/1 for binary
+	Low, High       float64   // plausible range on the variable's own scale
+	RangeGiven      bool      // false: seen in the data, and every prior made from it says so
+	Computed        formula.Expr
+}
+
+// A Law is the fitted law of one variable.
+type Law struct {
+	Variable int
+	Family   *catalog.Family
+	Plate    int // the level at which it contributes one factor per unit; -1 = row
+	Trials   formula.Expr
+	// Predictors holds the predicted argument on the link scale: one
+	// expression, or K for a softmax law. Names in it are variables or
+	// parameters by typed name; see Model.Name.
+	Predictors []formula.Expr
+	// Arguments holds the other arguments in the family's order, the
+	// predicted one nil: a parameter's name, a number, or an expression.
+	// Cut points of an ordered law are the vector parameter Cutpoints.
+	Arguments []formula.Expr
+	Cutpoints string
+	Terms     []Term // what each term of a default predictor is, for painting and priors; empty for a typed formula
+	Drawn     []int  // variables that are drawn parents
+	Carried   []Carried
+	Typed     bool // the predictor was typed by the user
+}
+
+// A Carried term conditions on a variable that is no drawn parent, for the
+// sake of an unmeasured one that was left out.
+type Carried struct {
+	Variable int
+	For      []string // names of the unmeasured variables, or "an unnamed common cause"
+}
+
+// TermKind says what a term of a linear predictor is.
+type TermKind int
+
+// The kinds of term.
+const (
+	Baseline TermKind = iota
+	Slope
+	Steps
+	Offset
+	Product
+	GroupMean // mean of a parent within a held plate (SEMANTICS A6)
+)
+
+// A Term of a default linear predictor.
+type Term struct {
+	Kind       TermKind
+	Variable   int // the parent; -1 for a baseline
+	With       int // the other parent of a product; -1 otherwise
+	Parameters []int
+	Center     float64
+	WithCenter float64
+	VariesBy   int // plate, -1 = none
+	Carried    bool
+}
+
+// On says what function of a parameter its prior is about (SEMANTICS C5).
+type On int
+
+// The functions.
+const (
+	Itself          On = iota
+	InverseRoot        // 1/√k
+	InverseRootPlus    // 1/√(1+κ)
+)
+
+// Shape is how the entries of a vector parameter hang together.
+type Shape int
+
+// The shapes.
+const (
+	Scalar  Shape = iota
+	Vector        // entries free
+	ZeroSum       // entries sum to zero, prior on the contrast scale (see Prior.SD of entries)
+	Simplex       // entries positive with sum 1
+	ByPlate       // one entry per level of a plate, around Mean with spread SD
+	Cuts          // K-1 ordered cut points made from a Dirichlet on level shares at mid-range
+)
+
+// A Parameter is an unknown of the model. Its typed name is canonical.
+type Parameter struct {
+	Name    string // beta_hedge_bees
+	Symbol  string // β_hedge→bees
+	Unit    string // "per m/ha, log scale"
+	Shape   Shape
+	Size    int             // entries; 1 for a scalar
+	Entries []string        // names of the entries of a vector
+	Support catalog.Support // of each entry
+	Prior   Prior
+	Plate   int    // ByPlate
+	Mean    string // ByPlate: parameter around which entries vary ("" = zero)
+	SD      string // ByPlate: parameter that is their spread
+	Centred bool   // ByPlate: sample entries themselves, not their standard scores
+	Of      int    // index of the variable whose law it belongs to
+	Why     string // how the default prior came about, in words; "" if the user gave it
+}
+
+// A Prior is a family with its arguments as expressions (numbers, mostly).
+type Prior struct {
+	Family    *catalog.Family
+	Arguments []formula.Expr
+	On        On
+	FromUser  bool
+	FromData  bool // some range behind it was seen in the data, not given
+}
+
+// A Problem is something that stops a fit, or that the user should know.
+type Problem struct {
+	Code     string // stable: "formula", "cycle", "column-gone", "text-in-number", …
+	Variable string // ID, "" if none
+	Place    string // "law", "formula", "data", "prior", …
+	Span     formula.Span
+	Message  string // one sentence with the user's names and the reason
+	Repairs  []Repair
+	Stops    bool // no fit until mended
+}
+
+// A Repair is one click: a label and the edit it makes.
+type Repair struct {
+	Label string
+	Edit  study.Edit
+}
+
+// Name finds what a typed name means: a variable index, a parameter index;
+// -1 where it is not one.
+func (m *Model) Name(id string) (variable, parameter int) {
+	variable, parameter = -1, -1
+	for i, v := range m.Variables {
+		if v.ID == id {
+			variable = i
+		}
+	}
+	for i, p := range m.Parameters {
+		if p.Name == id {
+			parameter = i
+		}
+	}
+	return variable, parameter
+}

@@ -1,0 +1,195 @@
+// Package study is the document: what a scientist knows, supposes and asks.
+//
+// A *Study never changes. An Edit applied to it gives a new *Study that shares
+// every part the edit did not touch, so that "must this be computed again?" is
+// a comparison of pointers and undo is keeping the old pointer. Read the files
+// in this order: study.go (the parts), edit.go (how one study becomes the
+// next), valid.go (what must hold), file.go (the .arrowroot text), graph.go
+// (the view that algorithms work on).
+package study
+
+// A Study is the whole document.
+type Study struct {
+	Title     string
+	Note      string
+	Data      []*Data
+	Variables []*Variable // the ledger, shared by all rivals
+	Plates    []*Plate
+	Rivals    []*Rival
+	Questions []*Question
+}
+
+// Data is a table that the study reads. Exactly one of File and Text is set,
+// or neither when the data was left out on purpose.
+type Data struct {
+	Name   string
+	File   string // relative to the study file
+	Text   string // embedded CSV
+	SHA256 string // of the bytes last read; "" if never read
+	Rows   int
+}
+
+// Scale says what values a variable can take.
+type Scale string
+
+// The scales.
+const (
+	Real       Scale = "real"
+	Positive   Scale = "positive"
+	Proportion Scale = "proportion"
+	Count      Scale = "count"
+	Binary     Scale = "binary"
+	Category   Scale = "category"
+	Ordered    Scale = "ordered"
+)
+
+// Scales lists every scale in the order people are offered them.
+var Scales = [...]Scale{Real, Positive, Proportion, Count, Binary, Category, Ordered}
+
+// A Range is what the user holds plausible for a variable, in its own unit
+// after any division; low < high.
+type Range struct {
+	Low, High float64
+}
+
+// A Variable is one line of the ledger.
+type Variable struct {
+	ID         string // letters, digits, underscore; Unicode letters allowed
+	Label      string // "" = the ID
+	Unit       string
+	Scale      Scale    // "" = not said yet (treated as real)
+	Levels     []string // binary, category and ordered: the words, in order
+	Range      *Range   // nil = not given
+	Plates     []string // its level: empty = the row
+	Unmeasured bool
+	Data       string  // name of its table; "" = the first
+	Column     string  // "" = not bound
+	Divide     float64 // the column is divided by this (100 for percent); 0 or 1 = as it is
+	Computed   string  // formula of a deterministic variable; "" = not computed
+	Tier       int     // time tier; 0 = not said
+	Note       string
+}
+
+// Name is what people read: the label if there is one.
+func (v *Variable) Name() string {
+	if v.Label != "" {
+		return v.Label
+	}
+	return v.ID
+}
+
+// A Plate repeats what it holds over the levels of a column.
+type Plate struct {
+	Name   string // "farm"
+	Column string // the column that names the level of each row; "" = same as Name
+	Within string // the plate it is nested in; "" = none (crossed or alone)
+}
+
+// A Rival is one explanation. Moving a node replaces Layout alone.
+type Rival struct {
+	Name    string
+	Note    string
+	Layout  *Layout
+	Diagram *Diagram
+}
+
+// A Layout says where nodes stand, in sheet units, by variable ID. A node that
+// is missing here is placed by the automatic layout.
+type Layout struct {
+	At map[string]Point
+}
+
+// A Point on the sheet: x to the right, y down; the centre of a node.
+type Point struct {
+	X, Y float64
+}
+
+// A Diagram is a rival's nodes, arrows and laws.
+type Diagram struct {
+	Nodes  []*Node
+	Arrows []*Arrow
+	Arcs   []*Arc
+	Absent []*Absent
+}
+
+// A Node puts a variable on a rival's sheet.
+type Node struct {
+	Variable string
+	Law      *Law // nil = the default law of the variable's scale
+}
+
+// A Law says how a variable gets its value. Empty fields mean the default.
+type Law struct {
+	Family    string     // catalogue name; "" = default of the scale
+	Arguments []Argument // arguments other than the predicted one, by catalogue name: {"trials", "n"}, {"sd", "stderr"}, {"sd", "2.5"}
+	Formula   string     // the predictor as text, "log rate = alpha_bees by farm + …"; "" = from the arrows
+	VariesBy  []string   // plates over which the baseline varies
+	Priors    []Prior    // priors that differ from the defaults, by typed parameter name; also declares free parameters of Formula
+	Treat     string     // "" = by the rules, "given" or "modelled"
+	Note      string
+}
+
+// An Argument gives one argument of a family as formula text.
+type Argument struct {
+	Name, Text string
+}
+
+// A Prior is a distribution phrase for a parameter: {"beta_hedge_bees",
+// "normal with mean 0, sd 0.01"}.
+type Prior struct {
+	Parameter, Text string
+}
+
+// An Arrow says that one variable acts on another.
+type Arrow struct {
+	From, To   string
+	Form       string   // "" = slope (or steps, from a category); "slope", "steps", "offset"
+	With       []string // other parents of To with which this arrow also acts as a product
+	VariesBy   []string // plates over which its slope varies
+	Prior      string   // for its coefficient; "" = default
+	Why        string
+	References []string
+}
+
+// An Arc joins two variables that share an unmeasured cause nobody named.
+type Arc struct {
+	A, B   string
+	Plates []string // the level at which the cause lives; empty = the row
+	Why    string
+}
+
+// An Absent arrow is an assumption with a reason.
+type Absent struct {
+	From, To string
+	Why      string
+}
+
+// A Setting is a value given to the exposure: a number, or a level's word.
+type Setting struct {
+	Number float64
+	Word   string // for category, ordered and worded binary exposures; "" = Number counts
+}
+
+// Words of Question.Effect, Over and As.
+const (
+	TotalEffect = "total"
+
+	TheseRows       = "these rows"
+	PopulationAlike = "a population like these"
+
+	Difference = "difference"
+	Ratio      = "ratio"
+)
+
+// A Question asks for one contrast. Held marks belong to it, never to a rival.
+type Question struct {
+	Exposure, Outcome string
+	Effect            string // "" = total
+	From, To          *Setting
+	Shift             float64  // with From and To nil: add this to every row's own value
+	Held              []string // nil = nobody said yet; empty = said to be none
+	Over              string   // "" = these rows
+	As                string   // "" = difference
+	OutcomeLevels     []string // category and ordered outcomes: the levels whose probability is asked for
+	Level             float64  // credible level of intervals; 0 = 0.9
+}
