@@ -1,0 +1,94 @@
+// Package effect turns draws into answers: contrasts between interventions
+// (SEMANTICS B), and the change along each arrow and at each node that paints
+// the sheet (SEMANTICS G). Read the files in this order: effect.go (what comes
+// out), resolve.go and eval.go (laws evaluated over rows, draw by draw), arm.go
+// (who moves when the exposure is set), contrast.go, arrows.go, nodes.go.
+//
+// A draw is the natural values of all parameters, in the order of
+// Model.Parameters, entries of vectors side by side (density.Quantities).
+package effect
+
+import (
+	"context"
+	"errors"
+	"math/rand/v2"
+
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+)
+
+// A Contrast compares expected outcomes under two settings of the exposure.
+type Contrast struct {
+	Expected struct {
+		From, To []float64 // per draw, averaged over the rows
+	}
+	Values []float64 // per draw: To − From, or To / From
+	Draws  []int     // which draws were used; all of them unless thinned
+	Rows   int       // rows averaged over
+	Words  string    // what was averaged over what: "over these 237 rows"
+	Error  float64   // simulation error of one draw's value (standard deviation); 0 = none was simulated
+}
+
+// NotSimulated says that a fit with variables left out must not be simulated
+// for this contrast (SEMANTICS B2 c).
+type NotSimulated struct {
+	Exposure, Outcome string
+}
+
+func (e *NotSimulated) Error() string {
+	return "the effect of " + e.Exposure + " on " + e.Outcome + " cannot be had by simulating this fit: an unmeasured cause joins " + e.Exposure + " to what it acts on"
+}
+
+// Options of the functions that can take long. The zero value is usable.
+type Options struct {
+	Progress func(done, of int) // called between draws, from one goroutine at a time
+	Budget   float64            // law evaluations (rows × draws × arms) before draws and then rows are thinned; 0 = 2e7
+}
+
+// Simulate gives the contrast of a full model. The case and the members of the
+// exposure's district, by variable ID, come from causal.InterventionCase.
+func Simulate(ctx context.Context, m *model.Model, c causal.Case, district []string, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
+	return nil, errors.New("effect: not yet written")
+}
+
+// FromLaw gives the contrast of a held or crude model: the outcome's law with
+// the exposure set and everything else at row values.
+func FromLaw(ctx context.Context, m *model.Model, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
+	return nil, errors.New("effect: not yet written")
+}
+
+// An ArrowEffect is the change of a child's expectation as one drawn parent
+// moves over its central 80 %, other variables at row values.
+type ArrowEffect struct {
+	From, To  string    // variable IDs
+	Values    []float64 // per draw, in plausible widths of the child
+	Unsigned  bool      // a distance between distributions: category children
+	Low, High float64   // the parent's two values
+	Per       float64   // natural step of the parent for PerUnit; 0 = none
+	PerUnit   []float64 // per draw: expectation's ratio (if Ratio) or difference per step
+	Ratio     bool
+	Words     string // "×1.02 per 10 m/ha", from the median of PerUnit
+}
+
+// Arrows gives every drawn arrow of the model's laws.
+func Arrows(ctx context.Context, m *model.Model, draws [][]float64, opt Options) ([]ArrowEffect, error) {
+	return nil, errors.New("effect: not yet written")
+}
+
+// A NodeEffect is the change of one variable under the question's
+// intervention, in its own plausible widths.
+type NodeEffect struct {
+	Variable string
+	Values   []float64 // per draw; nil if Plain or Refused
+	Unsigned bool
+	Plain    bool // does not descend from the exposure: nothing to show, which is not zero
+	Refused  bool // not to be had by simulation (SEMANTICS B2 c)
+}
+
+// Nodes gives every variable of the model but the exposure. The graph decides
+// for each variable by itself whether its change may be simulated.
+func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question, draws [][]float64, src rand.Source, opt Options) ([]NodeEffect, error) {
+	return nil, errors.New("effect: not yet written")
+}
