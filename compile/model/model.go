@@ -74,9 +74,16 @@ type Law struct {
 	// Predictors holds the predicted argument on the link scale: one
 	// expression, or K for a softmax law. Names in it are variables or
 	// parameters by typed name; see Model.Name.
+	//
+	// A vector that varies by a plate is read as By{Name, Plates: one plate},
+	// where Name is the typed name of a ByPlate parameter ("alpha_bees_farm")
+	// of that very plate; its Mean is inside its entries and not added again.
+	// Steps are read as Of{Vector, Variable}; the entry of a zero-sum vector
+	// that a softmax predictor uses as Element{Vector, At}.
 	Predictors []formula.Expr
 	// Arguments holds the other arguments in the family's order, the
-	// predicted one nil: a parameter's name, a number, or an expression.
+	// predicted one nil: a parameter's name, a number, or an expression. The
+	// trials of a binomial law stand here and in Trials.
 	// Cut points of an ordered law are the vector parameter Cutpoints.
 	Arguments []formula.Expr
 	Cutpoints string
@@ -135,10 +142,10 @@ type Shape int
 const (
 	Scalar  Shape = iota
 	Vector        // entries free
-	ZeroSum       // entries sum to zero, prior on the contrast scale (see Prior.SD of entries)
+	ZeroSum       // entries sum to zero; Prior, a normal with mean 0, is of the DIFFERENCE of any two entries: entries = B z with B orthonormal and z ~ normal(0, sd/√2)
 	Simplex       // entries positive with sum 1
-	ByPlate       // one entry per level of a plate, around Mean with spread SD
-	Cuts          // K-1 ordered cut points made from a Dirichlet on level shares at mid-range
+	ByPlate       // one entry per level of a plate, normal around Mean with sd SD; Prior is empty
+	Cuts          // K-1 ordered cut points; the K shares of the levels at predictor 0 are Dirichlet(1); Prior is empty
 )
 
 // A Parameter is an unknown of the model. Its typed name is canonical.
