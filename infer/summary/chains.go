@@ -136,7 +136,8 @@ func effective(chains [][]float64) float64 {
 	}
 	correlation := func(lag int) float64 { return 1 - (within-covariance[lag])/plus }
 	sum, previous := 0.0, math.Inf(1)
-	for lag := 0; lag+1 < n; lag += 2 {
+	// The last pair is left out: its autocovariance is a single product.
+	for lag := 0; lag+2 < n; lag += 2 {
 		pair := correlation(lag) + correlation(lag+1)
 		if lag == 0 {
 			pair = 1 + correlation(1)
