@@ -2,7 +2,12 @@
 // elementwise functions, and one block kernel per family that gives a log
 // density with its derivatives in a single pass over rows. It knows nothing
 // of models. Every kernel is checked against published values at 1e-12
-// relative (testdata/logpdf.json) and by finite differences.
+// relative and by finite differences; both tests walk Densities, so a kernel
+// without a check fails.
+//
+// Read kernel.go for the contract, densities.go for the list, then the file
+// of one family. Scalar functions stand in special.go, gamma.go and
+// normalcdf.go; exp.go, log.go and softplus.go hold the fast ones.
 package kernel
 
 // BlockRows is the largest number of rows a kernel is called with. It fixes
@@ -17,15 +22,20 @@ type Density struct {
 	// Block adds up the log density of n rows and returns the sum.
 	//
 	// y and each args[i] hold n values, or one value that serves all rows
-	// (len 1). dy and dargs[i] are nil where no derivative is wanted;
-	// otherwise they have the length of their value, and the derivative is
-	// ADDED to them (summed over rows where len is 1). aux is nil or what
-	// Prepare returned for this block's data. A value outside the support
-	// gives -Inf and leaves derivatives unspecified; NaN gives NaN.
-	// Block must not allocate. scratch has room for at least 4*BlockRows.
+	// (len 1). dy and dargs[i] are nil where no derivative is wanted (dargs
+	// itself may be nil too); otherwise they have the length of their value,
+	// and the derivative is ADDED to them (summed over rows where len is 1).
+	// aux is nil or the rows' part of what Prepare returned, n values or one.
+	// A value outside the support, or an argument outside its own, gives -Inf
+	// and leaves derivatives unspecified; NaN gives NaN. A discrete value has
+	// no derivative: dy is left alone. Block does not allocate. scratch has
+	// room for at least 4*BlockRows.
 	Block func(n int, y []float64, args [][]float64, dy []float64, dargs [][]float64, aux []float64, scratch []float64) float64
 
-	// Prepare, where not nil, computes per-row terms that depend on data
-	// alone (log y!) once, for when y is data; nil otherwise.
-	Prepare func(y []float64) []float64
+	// Prepare, where not nil, computes terms that depend on data alone
+	// (log y!, log of the binomial coefficient) once, for when y is data.
+	// args[i] is nil where argument i is not data. It returns one value per
+	// row (one in all if everything has length 1), or nil if what it needs is
+	// not data. y may be longer than a block; slice the result by rows.
+	Prepare func(y []float64, args [][]float64) []float64
 }
