@@ -1,0 +1,41 @@
+package draw
+
+// Vertical measures of the family, in ems, as DejaVu Sans has them.
+const (
+	Ascent    = 0.76 // of letters such as l and k
+	Descent   = 0.24
+	CapHeight = 0.729
+	XHeight   = 0.547
+)
+
+// Measure is the width of a line of text in dips.
+func Measure(text string, face Face, size float64) float64 {
+	t := typefaces[face]()
+	width := 0.0
+	for _, r := range text {
+		width += float64(t.glyph(r).advance)
+	}
+	return width * size
+}
+
+// Shorten cuts text so that it fits a width, with an ellipsis where it was cut.
+func Shorten(text string, face Face, size, width float64) string {
+	if Measure(text, face, size) <= width {
+		return text
+	}
+	room := width - Measure("…", face, size)
+	t := typefaces[face]()
+	used, end := 0.0, 0
+	for i, r := range text {
+		used += float64(t.glyph(r).advance) * size
+		if used > room {
+			break
+		}
+		end = i + len(string(r))
+	}
+	return text[:end] + "…"
+}
+
+// Drop is how far the baseline lies below the middle line of a name, so that
+// mostly lower-case words look centred.
+func Drop(size float64) float64 { return size * 0.34 }
