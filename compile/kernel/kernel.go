@@ -38,4 +38,21 @@ type Density struct {
 	// row (one in all if everything has length 1), or nil if what it needs is
 	// not data. y may be longer than a block; slice the result by rows.
 	Prepare func(y []float64, args [][]float64) []float64
+
+	// Tally, where not nil, is for data with many equal values: see there.
+	Tally *Tally
+}
+
+// A Tally splits a density in two where y is data and argument Arg is one
+// number for all rows: a part per row, and a costly part that depends on y and
+// that argument alone, which then is needed once per distinct y. With counts c
+// of the distinct values u,
+//
+//	Σ over rows of density(y, args) = Σ over rows of Rows(y, args) + Σ over u of Values(u, args[Arg], c)
+//
+// For the negative binomial, Values is c (lgamma(u+k) - lgamma(k)).
+type Tally struct {
+	Arg    int
+	Rows   *Density // same y and args as the whole
+	Values *Density // two arguments: args[Arg], and the count of each value (data: no derivative wanted)
 }
