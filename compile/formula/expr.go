@@ -1,3 +1,13 @@
+// Package formula is the small language of laws: predictors ("log rate =
+// alpha_bees by farm + beta_hedge_bees * (hedge - 90)"), distribution phrases
+// ("normal with mean 0, sd 1") and sentences that join a variable to one
+// ("bees ~ Poisson with rate r"). It knows syntax alone; which names exist and
+// what they mean is for its reader to say.
+//
+// Read the files in this order: expr.go (the tree), grammar.txt (what is
+// accepted), names.go (Greek and its typed form), scan.go (text to tokens),
+// parse.go and phrase.go (tokens to trees), format.go (the typed form of a
+// tree), pretty.go (the printed form), walk.go, replace.go and caret.go.
 package formula
 
 // A Span is a half-open range of bytes in the text that was parsed.
@@ -92,7 +102,7 @@ func (*Call) expr()    {}
 // the left ("" = identity), Subject the argument it predicts ("" if the text
 // gave only the right-hand side).
 type Predictor struct {
-	Link    string // "", "log", "logit"
+	Link    string // "", "log", "logit", "softmax", "cumulative logit"
 	Subject string
 	Right   Expr
 }
