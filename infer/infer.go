@@ -28,6 +28,9 @@ type Problem struct {
 	Blame  func(q []float64) string // names the factor that is not finite at q; may be nil
 }
 
+// DefaultChains is how many chains run side by side if nobody says otherwise.
+const DefaultChains = 4
+
 // Settings of a run. The zero value means the defaults in the comments.
 type Settings struct {
 	Seed       uint64
@@ -39,7 +42,7 @@ type Settings struct {
 
 func (s Settings) withDefaults() Settings {
 	if s.Chains <= 0 {
-		s.Chains = 4
+		s.Chains = DefaultChains
 	}
 	if s.Warmup <= 0 {
 		s.Warmup = 300

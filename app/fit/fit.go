@@ -1,0 +1,153 @@
+// Package fit runs one question of one rival from study and table to draws,
+// summaries, effects and paint. The window and the batch program both come
+// through here, so that they cannot say different things.
+//
+// Read fit.go (what goes in and comes out), sample.go (blocks in rounds),
+// quantities.go (parameters as numbers), contrast.go (crude, held and full
+// model side by side), learned.go (what the data taught).
+package fit
+
+import (
+	"context"
+	"errors"
+	"fmt"
+	"time"
+
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+	"arrowroot/infer"
+	"arrowroot/infer/summary"
+)
+
+// A Request says what to fit and how long.
+type Request struct {
+	Study    *study.Study
+	Rival    string
+	Question *study.Question // nil = none: the rival is fitted, no effect is computed
+	Table    *table.Table
+	Seed     uint64
+	Chains   int // 0 = 4
+	Draws    int // per chain; 0 = until every shown quantity is precise enough
+}
+
+// Level is the credible level of intervals.
+func (r *Request) Level() float64 {
+	if r.Question != nil && r.Question.Level > 0 && r.Question.Level < 1 {
+		return r.Question.Level
+	}
+	return defaultLevel
+}
+
+const defaultLevel = 0.9
+
+func (r *Request) question() study.Question {
+	if r.Question == nil {
+		return study.Question{}
+	}
+	return *r.Question
+}
+
+// A Result is everything that one fit gave. It never changes.
+type Result struct {
+	Rival       string
+	Question    *study.Question
+	Seed        uint64
+	Full        *Fitted
+	Effect      *Effect // nil without a complete question
+	Arrows      []ArrowPaint
+	Nodes       []NodePaint
+	Fingerprint string // of the full model: a result is stale when the study's differs
+	Cut         bool   // the run was cancelled and its draws kept
+	Took        time.Duration
+}
+
+// Trust is the verdict that stands on the whole result: the effect's where
+// there is one, else the fit's.
+func (r *Result) Trust() summary.Trust {
+	if r.Effect != nil {
+		if n := r.Effect.Headline(); n != nil {
+			return summary.Worst(n.Trust, r.Full.Trust)
+		}
+	}
+	return r.Full.Trust
+}
+
+// A Blocked request has problems that only the user can mend.
+type Blocked struct {
+	Problems []model.Problem
+}
+
+func (e *Blocked) Error() string {
+	for _, p := range e.Problems {
+		if p.Stops {
+			return p.Message
+		}
+	}
+	return "the study has problems"
+}
+
+// ErrNoDraws means that a run was cancelled before it had any draws.
+var ErrNoDraws = errors.New("cancelled in warm-up: there are no draws to keep")
+
+// Run fits the request. A *Blocked error lists what stops it. When ctx is
+// cancelled the draws so far are kept: the result comes with Cut set, or
+// ErrNoDraws if the warm-up was not over.
+func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result, error) {
+	began := time.Now()
+	g, err := req.Study.Graph(req.Rival)
+	if err != nil {
+		return nil, err
+	}
+	q := req.question()
+	m, problems := model.Build(req.Study, req.Rival, q, req.Table, model.Full)
+	if m == nil || model.Stops(problems) {
+		return nil, &Blocked{problems}
+	}
+	full, err := sampleModel(ctx, m, &req, "full", watch)
+	if err != nil {
+		return nil, err
+	}
+	r := &Result{
+		Rival: req.Rival, Question: req.Question, Seed: req.Seed, Full: full,
+		Fingerprint: m.Fingerprint(), Cut: full.Cut,
+	}
+	// What follows is quick beside sampling; it is done even after a cancel,
+	// so that draws that were kept can be read.
+	after := ctx
+	if full.Cut {
+		after = context.WithoutCancel(ctx)
+	}
+	if asked(g, q) {
+		if r.Effect, err = contrasts(after, &req, g, full, watch); err != nil {
+			return nil, fmt.Errorf("effect of %s on %s: %w", q.Exposure, q.Outcome, err)
+		}
+	}
+	if err := r.paint(after, g, q); err != nil {
+		return nil, fmt.Errorf("paint: %w", err)
+	}
+	r.Took = time.Since(began)
+	return r, nil
+}
+
+// asked reports whether the question has both its ends on the sheet.
+func asked(g *graph.Graph, q study.Question) bool {
+	return q.Exposure != q.Outcome && g.Index(q.Exposure) >= 0 && g.Index(q.Outcome) >= 0
+}
+
+// Read gives the reading of a question on a rival's graph, with the question's
+// own held marks.
+func Read(g *graph.Graph, q *study.Question, maxPaths, maxSets int) *causal.Reading {
+	query := causal.Query{Exposure: -1, Outcome: -1, MaxPaths: maxPaths, MaxSets: maxSets}
+	if q != nil {
+		query.Exposure, query.Outcome = g.Index(q.Exposure), g.Index(q.Outcome)
+		for _, id := range q.Held {
+			if v := g.Index(id); v >= 0 {
+				query.Held = append(query.Held, v)
+			}
+		}
+	}
+	return causal.Read(g, query)
+}

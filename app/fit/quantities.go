@@ -1,0 +1,192 @@
+package fit
+
+import (
+	"fmt"
+	"math"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/model"
+	"arrowroot/infer/summary"
+)
+
+// A Quantity is one entry of a parameter with what is said of it.
+type Quantity struct {
+	Name      string // typed
+	Symbol    string
+	Parameter int // index in the model's parameters
+	summary.Summary
+	Trust   summary.Trust
+	PriorSD float64 // NaN where the prior leans on other parameters
+}
+
+// summarise fills in Quantities, Sampling and Trust.
+func (f *Fitted) summarise(level float64, runs []*blockRun) {
+	steps, chains := f.Steps(), len(f.Chains)
+	f.Sampling = summary.Sampling{Chains: chains, Draws: steps * chains, WorstEBFMI: math.NaN()}
+	byBlock := make([]summary.Sampling, len(runs))
+	for i, r := range runs {
+		s := summary.SamplingOf(r.draws)
+		byBlock[i] = s
+		f.Sampling.Divergent += s.Divergent
+		f.Sampling.AtLimit += s.AtLimit
+		if !(f.Sampling.WorstEBFMI <= s.WorstEBFMI) {
+			f.Sampling.WorstEBFMI = s.WorstEBFMI
+		}
+	}
+	var trusts []summary.Trust
+	for i, q := range f.Density.Quantities {
+		s := summary.Of(f.series(i), level)
+		sampling := f.Sampling
+		if q.Block >= 0 {
+			sampling = byBlock[q.Block]
+		}
+		s.Constant = s.Constant || q.Constant
+		out := Quantity{
+			Name: q.Name, Symbol: q.Symbol, Parameter: q.Parameter, Summary: s,
+			Trust: summary.Judge(s, sampling), PriorSD: priorSD(f.Model.Parameters[q.Parameter]),
+		}
+		f.Quantities = append(f.Quantities, out)
+		trusts = append(trusts, out.Trust)
+	}
+	f.Trust = worstQuantity(f.Quantities, trusts)
+	if len(f.Quantities) == 0 {
+		f.Trust = summary.Judge(summary.Summary{Constant: true}, f.Sampling)
+	}
+}
+
+// worstQuantity joins the verdicts but says of quantities only which is worst:
+// a hundred group effects with few draws are one reason, not a hundred.
+func worstQuantity(all []Quantity, trusts []summary.Trust) summary.Trust {
+	var t summary.Trust
+	worst := -1
+	for i, x := range trusts {
+		if worst < 0 || x.Verdict > trusts[worst].Verdict ||
+			x.Verdict == trusts[worst].Verdict && weaker(all[i].Summary, all[worst].Summary) {
+			worst = i
+		}
+	}
+	if worst < 0 {
+		return t
+	}
+	t.Verdict = trusts[worst].Verdict
+	for _, r := range trusts[worst].Reasons {
+		t.Reasons = append(t.Reasons, fmt.Sprintf("%s: %s", all[worst].Symbol, r))
+	}
+	return t
+}
+
+func weaker(a, b summary.Summary) bool {
+	return math.Min(a.BulkESS, a.TailESS) < math.Min(b.BulkESS, b.TailESS)
+}
+
+// series is one quantity, chain by chain.
+func (f *Fitted) series(q int) [][]float64 {
+	out := make([][]float64, len(f.Chains))
+	for c, rows := range f.Chains {
+		out[c] = make([]float64, len(rows))
+		for i, row := range rows {
+			out[c][i] = row[q]
+		}
+	}
+	return out
+}
+
+// Draws of one quantity by typed name, chain after chain; nil if there is none.
+func (f *Fitted) Draws(name string) []float64 {
+	for i, q := range f.Density.Quantities {
+		if q.Name == name {
+			var all []float64
+			for _, c := range f.series(i) {
+				all = append(all, c...)
+			}
+			return all
+		}
+	}
+	return nil
+}
+
+// PriorQuantiles are n quantiles of a parameter's prior on its natural scale,
+// evenly spaced; nil where the prior leans on other parameters.
+func PriorQuantiles(p *model.Parameter, n int) []float64 {
+	args, ok := numbers(p.Prior.Arguments)
+	if !ok || p.Prior.Family == nil || p.Prior.Family.Quantile == nil || p.Shape == model.ByPlate {
+		return nil
+	}
+	out := make([]float64, n)
+	for i := range out {
+		out[i] = natural(p.Prior.On, p.Prior.Family.Quantile((float64(i)+0.5)/float64(n), args))
+	}
+	return out
+}
+
+// natural undoes the function that a prior is about.
+func natural(on model.On, x float64) float64 {
+	switch on {
+	case model.InverseRoot:
+		return 1 / (x * x)
+	case model.InverseRootPlus:
+		return 1/(x*x) - 1
+	}
+	return x
+}
+
+func priorSD(p *model.Parameter) float64 {
+	args, ok := numbers(p.Prior.Arguments)
+	if !ok || p.Prior.Family == nil || p.Prior.On != model.Itself || p.Prior.Family.SD == nil || p.Shape == model.ByPlate || p.Shape == model.Cuts {
+		return math.NaN()
+	}
+	return p.Prior.Family.SD(args)
+}
+
+func numbers(exprs []formula.Expr) ([]float64, bool) {
+	out := make([]float64, len(exprs))
+	for i, e := range exprs {
+		x, ok := constant(e)
+		if !ok {
+			return nil, false
+		}
+		out[i] = x
+	}
+	return out, true
+}
+
+func constant(e formula.Expr) (float64, bool) {
+	switch e := e.(type) {
+	case *formula.Number:
+		return e.Value, true
+	case *formula.Unary:
+		x, ok := constant(e.X)
+		return -x, ok
+	case *formula.Call:
+		args := make([]float64, len(e.Args))
+		for i, a := range e.Args {
+			x, ok := constant(a)
+			if !ok {
+				return 0, false
+			}
+			args[i] = x
+		}
+		f := catalog.FunctionByName(e.Function)
+		if f == nil {
+			return 0, false
+		}
+		return f.Value(args), true
+	case *formula.Binary:
+		x, okX := constant(e.X)
+		y, okY := constant(e.Y)
+		switch e.Op {
+		case '+':
+			return x + y, okX && okY
+		case '-':
+			return x - y, okX && okY
+		case '*':
+			return x * y, okX && okY
+		case '/':
+			return x / y, okX && okY
+		case '^':
+			return math.Pow(x, y), okX && okY
+		}
+	}
+	return 0, false
+}

@@ -1,0 +1,256 @@
+// Package session owns the live document: its history, what is out of date,
+// and the work that goes on behind the window. Everything here is called on
+// one goroutine, the window's; workers get immutable values and hand one back
+// through post.
+//
+// Read session.go (edits and history), derive.go (what follows from the
+// document), run.go (fits), files.go (open, save, recover).
+package session
+
+import (
+	"context"
+	"path/filepath"
+
+	"arrowroot/app/fit"
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+	"arrowroot/infer"
+)
+
+// A View is what the window shows: one moment of the session, never changed.
+type View struct {
+	Rev   int
+	Study *study.Study
+	Path  string // "" = never saved
+	Dirty bool
+	Undo  string // label of what Undo would take back; "" = nothing
+	Redo  string
+
+	Rival      *study.Rival
+	Question   *study.Question // nil = none yet
+	QuestionAt int
+
+	Graph      *graph.Graph // nil with GraphError
+	GraphError error
+	Reading    *causal.Reading // nil while it is being computed
+	Table      *table.Table    // the study's first table; nil = none, or still being read
+	DataError  error
+	Model      *model.Model // nil where problems do not allow one
+	Problems   []model.Problem
+	Statement  *model.Statement
+
+	Running  bool
+	Progress infer.Progress
+	Result   *fit.Result // of this rival and question; nil = not fitted
+	Stale    bool        // Result belongs to an earlier version
+	FitError error
+	Results  map[string]*fit.Result // last result of each rival
+
+	Recovered *study.Study // work that an earlier session left unsaved; nil = none
+	Notice    string       // one sentence about what just happened; "" = nothing
+}
+
+// A Session is one open document.
+type Session struct {
+	post      func(func())
+	listeners []func(*View)
+	view      *View
+	rev       int
+
+	study    *study.Study
+	saved    *study.Study
+	path     string
+	history  []moment
+	future   []moment
+	rival    string
+	question int
+
+	derived  derived
+	tables   map[string]*loaded
+	results  map[string]*fit.Result
+	running  context.CancelFunc
+	run      int
+	progress infer.Progress
+	fitError error
+
+	recovered *study.Study
+	recovery  *recovery
+	notice    string
+}
+
+// A moment is a study on the way, with the edit that left it.
+type moment struct {
+	study *study.Study
+	edit  study.Edit
+	rival string
+	asked int
+}
+
+// New starts a session on an empty study. post runs a function on the
+// window's goroutine.
+func New(post func(func())) *Session {
+	s := &Session{post: post, tables: make(map[string]*loaded), results: make(map[string]*fit.Result)}
+	s.recovery = newRecovery()
+	s.replace(study.New(), "")
+	return s
+}
+
+// Subscribe calls f with every new view, on the window's goroutine, and once
+// at once.
+func (s *Session) Subscribe(f func(*View)) {
+	s.listeners = append(s.listeners, f)
+	f(s.View())
+}
+
+// View is the present moment.
+func (s *Session) View() *View { return s.view }
+
+// Do applies an edit. On an error nothing has changed.
+func (s *Session) Do(e study.Edit) error {
+	next, err := e.Apply(s.study)
+	if err != nil {
+		return err
+	}
+	if next == s.study {
+		return nil
+	}
+	if n := len(s.history); n > 0 && len(s.future) == 0 {
+		if m, ok := s.history[n-1].edit.(interface {
+			Merge(study.Edit) (study.Edit, bool)
+		}); ok {
+			if joined, ok := m.Merge(e); ok {
+				s.history[n-1].edit = joined
+				s.become(next)
+				return nil
+			}
+		}
+	}
+	s.history = append(s.history, moment{s.study, e, s.rival, s.question})
+	s.future = nil
+	s.become(next)
+	return nil
+}
+
+// EndGesture keeps the next edit from merging with the last: a drag is over.
+func (s *Session) EndGesture() {
+	if n := len(s.history); n > 0 {
+		s.history[n-1].edit = labelled{s.history[n-1].edit}
+	}
+}
+
+// labelled hides Merge.
+type labelled struct{ study.Edit }
+
+// Undo takes the last edit back.
+func (s *Session) Undo() { s.travel(&s.history, &s.future) }
+
+// Redo does again what Undo took back.
+func (s *Session) Redo() { s.travel(&s.future, &s.history) }
+
+func (s *Session) travel(from, to *[]moment) {
+	n := len(*from)
+	if n == 0 {
+		return
+	}
+	m := (*from)[n-1]
+	*from = (*from)[:n-1]
+	*to = append(*to, moment{s.study, m.edit, s.rival, s.question})
+	s.rival, s.question = m.rival, m.asked
+	s.become(m.study)
+}
+
+// ShowRival turns to another rival.
+func (s *Session) ShowRival(name string) {
+	s.rival = name
+	s.become(s.study)
+}
+
+// Ask turns to another question.
+func (s *Session) Ask(at int) {
+	s.question = at
+	s.become(s.study)
+}
+
+// Ask changes the present question, or adds the first one.
+func (s *Session) SetQuestion(q study.Question) error {
+	if len(s.study.Questions) == 0 {
+		return s.Do(study.AddQuestion{Question: q})
+	}
+	return s.Do(study.ChangeQuestion{At: s.question, To: q})
+}
+
+// replace puts another document in place of this one; its history is its own.
+func (s *Session) replace(doc *study.Study, path string) {
+	s.Cancel()
+	s.run++ // a fit still on its way belongs to the old document
+	s.running = nil
+	s.history, s.future = nil, nil
+	s.results = make(map[string]*fit.Result)
+	s.fitError, s.notice, s.recovered = nil, "", nil
+	s.saved, s.path = doc, path
+	s.rival, s.question = "", 0
+	s.become(doc)
+}
+
+// become makes a study the present one and derives what follows from it.
+func (s *Session) become(doc *study.Study) {
+	s.study = doc
+	if s.study.Rival(s.rival) == nil && len(doc.Rivals) > 0 {
+		s.rival = doc.Rivals[0].Name
+	}
+	s.question = min(max(s.question, 0), max(len(doc.Questions)-1, 0))
+	s.recovery.note(s)
+	s.derive()
+	s.show()
+}
+
+// asked is the present question; nil if there is none.
+func (s *Session) asked() *study.Question {
+	if s.question < len(s.study.Questions) {
+		return s.study.Questions[s.question]
+	}
+	return nil
+}
+
+// show makes a new view and tells everyone.
+func (s *Session) show() {
+	s.rev++
+	v := &View{
+		Rev: s.rev, Study: s.study, Path: s.path, Dirty: s.study != s.saved,
+		Rival: s.study.Rival(s.rival), Question: s.asked(), QuestionAt: s.question,
+		Graph: s.derived.graph, GraphError: s.derived.graphError, Reading: s.derived.reading,
+		Model: s.derived.model, Problems: s.derived.problems, Statement: s.derived.statement,
+		Running: s.running != nil, Progress: s.progress, FitError: s.fitError,
+		Results: s.results, Recovered: s.recovered, Notice: s.notice,
+	}
+	if t := s.table(); t != nil {
+		v.Table, v.DataError = t.table, t.err
+	}
+	if n := len(s.history); n > 0 {
+		v.Undo = s.history[n-1].edit.Label()
+	}
+	if n := len(s.future); n > 0 {
+		v.Redo = s.future[n-1].edit.Label()
+	}
+	if r := s.results[s.rival]; r != nil && sameQuestion(r.Question, v.Question) {
+		v.Result = r
+		v.Stale = s.derived.fingerprint != "" && s.derived.fingerprint != r.Fingerprint
+	} else if r != nil {
+		v.Result, v.Stale = r, true
+	}
+	s.view = v
+	for _, f := range s.listeners {
+		f(v)
+	}
+}
+
+// folder is where relative data files are looked for.
+func (s *Session) folder() string {
+	if s.path == "" {
+		return ""
+	}
+	return filepath.Dir(s.path)
+}
