@@ -2,9 +2,16 @@
 // distributions and functions, with support, arguments, link, kernels,
 // sampler, documentation and citation. The checker, the statement, completion,
 // help and lowering all read it.
+//
+// Read the types here, then the rows in families.go and functions.go; the
+// distribution functions stand in continuous.go and discrete.go.
 package catalog
 
-import "arrowroot/compile/kernel"
+import (
+	"strings"
+
+	"arrowroot/compile/kernel"
+)
 
 // Support is where values of a family, or of an argument, can lie.
 type Support int
@@ -36,8 +43,9 @@ const (
 
 // An Argument of a family.
 type Argument struct {
-	Name    string // the trade's word, as typed: "sd", "degrees of freedom"
-	Greek   string // typed stem of its default parameter: "sigma" gives sigma_bees
+	Name    string   // the trade's word, as typed: "sd", "degrees of freedom"
+	Also    []string // other words of the trade that mean the same and may be typed
+	Greek   string   // typed stem of its default parameter: "sigma" gives sigma_bees
 	Support Support
 	Doc     string
 }
@@ -51,12 +59,19 @@ type Family struct {
 	Predicted int        // -1 if no argument can be predicted
 	Link      Link       // of the predicted argument
 
-	Natural *kernel.Density // arguments as named above
-	Linked  *kernel.Density // predicted argument(s) on the link scale first, then the others in order; nil if not predictable
+	// Natural takes the arguments as named above; a Levels family takes the
+	// K probabilities instead. Linked takes the predicted argument on the
+	// link scale first (K of them for a softmax), then the others in order
+	// (for a cumulative logit, the K-1 cut points); nil if not predictable.
+	Natural *kernel.Density
+	Linked  *kernel.Density
 
 	// Quantile is the inverse distribution function at 0 < u < 1, arguments
 	// natural; for Levels families args are the K probabilities. Sampling is
 	// Quantile of a uniform: common random numbers then mean common draws.
+	// All four take arguments inside their supports; Mean and SD are NaN or
+	// +Inf where the moment does not exist, and for Levels families they are
+	// those of the level number.
 	Quantile func(u float64, args []float64) float64
 	CDF      func(x float64, args []float64) float64
 	Mean     func(args []float64) float64
@@ -72,4 +87,68 @@ type Function struct {
 	Args  int
 	Doc   string
 	Value func(args []float64) float64
+}
+
+// FamilyByName returns the family of that name, or nil. Case is free, and a
+// hyphen may be a blank.
+func FamilyByName(name string) *Family {
+	name = fold(name)
+	for _, f := range families {
+		if fold(f.Name) == name {
+			return f
+		}
+	}
+	return nil
+}
+
+// Argument returns the index of the argument that is called name, or -1.
+func (f *Family) Argument(name string) int {
+	name = fold(name)
+	for i, a := range f.Arguments {
+		if fold(a.Name) == name {
+			return i
+		}
+		for _, also := range a.Also {
+			if fold(also) == name {
+				return i
+			}
+		}
+	}
+	return -1
+}
+
+// FunctionByName returns the function of that name, or nil.
+func FunctionByName(name string) *Function {
+	name = fold(name)
+	for _, f := range functions {
+		if f.Name == name {
+			return f
+		}
+	}
+	return nil
+}
+
+// fold brings a typed name to the form in which names are compared.
+func fold(name string) string {
+	return strings.ToLower(strings.Join(strings.Fields(strings.ReplaceAll(name, "-", " ")), " "))
+}
+
+// Default returns the family that a variable of that scale gets before anyone
+// chooses: "real", "positive", "proportion", "count", "binary", "category" or
+// "ordered". It returns nil for another word.
+func Default(scale string) *Family {
+	if name, ok := defaults[scale]; ok {
+		return FamilyByName(name)
+	}
+	return nil
+}
+
+var defaults = map[string]string{
+	"real":       "normal",
+	"positive":   "gamma",
+	"proportion": "beta",
+	"count":      "negative binomial",
+	"binary":     "Bernoulli",
+	"category":   "categorical",
+	"ordered":    "ordered",
 }

@@ -84,7 +84,7 @@ func binomialLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs
 		small, q := SoftplusSigmoid(-math.Abs(e))
 		p, minusLogP, minusLogQ := q, small-e, small
 		if e > 0 {
-			p, q, minusLogP, minusLogQ = 1-q, q, small, small+e
+			p, minusLogP, minusLogQ = 1-q, small, small+e
 		} else {
 			q = 1 - q
 		}

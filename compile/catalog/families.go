@@ -1,0 +1,202 @@
+package catalog
+
+import "arrowroot/compile/kernel"
+
+// Families returns every family, in the order in which a menu lists them:
+// by scale of the variable, the default of the scale first.
+func Families() []*Family { return families }
+
+var families = []*Family{
+	{
+		Name: "normal", Support: Reals,
+		Arguments: []Argument{
+			{Name: "mean", Greek: "mu", Support: Reals, Doc: "expected value"},
+			{Name: "sd", Also: []string{"standard deviation"}, Greek: "sigma", Support: Positives, Doc: "spread around the mean"},
+		},
+		Predicted: 0, Link: Identity,
+		Natural: kernel.Normal, Linked: kernel.Normal,
+		Quantile: normalQuantile, CDF: normalCDF,
+		Mean: func(a []float64) float64 { return a[0] },
+		SD:   func(a []float64) float64 { return a[1] },
+		Doc:  "a measurement that can take any value, with errors of the same size everywhere",
+		Source: "N. L. Johnson, S. Kotz & N. Balakrishnan, Continuous Univariate Distributions, vol. 1, " +
+			"2nd ed., Wiley 1994, ch. 13",
+	},
+	{
+		Name: "Student t", Support: Reals,
+		Arguments: []Argument{
+			{Name: "mean", Also: []string{"location"}, Greek: "mu", Support: Reals, Doc: "center; the expected value when there are more than 1 degrees of freedom"},
+			{Name: "scale", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "spread; the sd is larger than this, and infinite up to 2 degrees of freedom"},
+			{Name: "degrees of freedom", Also: []string{"df"}, Greek: "nu", Support: Positives, Doc: "the fewer, the heavier the tails"},
+		},
+		Predicted: 0, Link: Identity,
+		Natural: kernel.StudentT, Linked: kernel.StudentT,
+		Quantile: studentQuantile, CDF: studentCDF, Mean: studentMean, SD: studentSD,
+		Doc: "a measurement that can take any value, with outliers now and then",
+		Source: "N. L. Johnson, S. Kotz & N. Balakrishnan, Continuous Univariate Distributions, vol. 2, " +
+			"2nd ed., Wiley 1995, ch. 28; K. L. Lange, R. J. A. Little & J. M. G. Taylor, JASA 84 (1989)",
+	},
+	{
+		Name: "gamma", Support: Positives,
+		Arguments: []Argument{
+			{Name: "mean", Greek: "mu", Support: Positives, Doc: "expected value"},
+			{Name: "shape", Greek: "shape", Support: Positives, Doc: "the variance is mean² / shape"},
+		},
+		Predicted: 0, Link: Log,
+		Natural: kernel.Gamma, Linked: kernel.GammaLog,
+		Quantile: gammaQuantile, CDF: gammaCDF,
+		Mean: func(a []float64) float64 { return a[0] }, SD: gammaSD,
+		Doc:    "a positive amount whose spread grows with its mean",
+		Source: "P. McCullagh & J. A. Nelder, Generalized Linear Models, 2nd ed., Chapman & Hall 1989, ch. 8",
+	},
+	{
+		Name: "log-normal", Support: Positives,
+		Arguments: []Argument{
+			{Name: "median", Greek: "mu", Support: Positives, Doc: "half of the values lie below; its log is the mean of the logs"},
+			{Name: "log sd", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "sd of the logs"},
+		},
+		Predicted: 0, Link: Log,
+		Natural: kernel.LogNormal, Linked: kernel.LogNormalLog,
+		Quantile: logNormalQuantile, CDF: logNormalCDF, Mean: logNormalMean, SD: logNormalSD,
+		Doc: "a positive amount made by multiplying many influences",
+		Source: "N. L. Johnson, S. Kotz & N. Balakrishnan, Continuous Univariate Distributions, vol. 1, " +
+			"2nd ed., Wiley 1994, ch. 14",
+	},
+	{
+		Name: "exponential", Support: NonNegatives,
+		Arguments: []Argument{
+			{Name: "mean", Greek: "mu", Support: Positives, Doc: "expected value; 1 / rate"},
+		},
+		Predicted: 0, Link: Log,
+		Natural: kernel.Exponential, Linked: kernel.ExponentialLog,
+		Quantile: exponentialQuantile, CDF: exponentialCDF,
+		Mean: func(a []float64) float64 { return a[0] },
+		SD:   func(a []float64) float64 { return a[0] },
+		Doc:  "a waiting time when nothing ages; as a prior, a spread that may well be near zero",
+		Source: "N. L. Johnson, S. Kotz & N. Balakrishnan, Continuous Univariate Distributions, vol. 1, " +
+			"2nd ed., Wiley 1994, ch. 19",
+	},
+	{
+		Name: "half-normal", Support: NonNegatives,
+		Arguments: []Argument{
+			{Name: "scale", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "sd of the normal that is folded at zero"},
+		},
+		Predicted: -1,
+		Natural:   kernel.HalfNormal,
+		Quantile:  halfNormalQuantile, CDF: halfNormalCDF, Mean: halfNormalMean, SD: halfNormalSD,
+		Doc:    "prior of a spread: near zero is plausible, beyond twice the scale is not",
+		Source: "F. C. Leone, L. S. Nelson & R. B. Nottingham, The folded normal distribution, Technometrics 3 (1961)",
+	},
+	{
+		Name: "half-t", Support: NonNegatives,
+		Arguments: []Argument{
+			{Name: "scale", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "scale of the Student t that is folded at zero"},
+			{Name: "degrees of freedom", Also: []string{"df"}, Greek: "nu", Support: Positives, Doc: "the fewer, the heavier the tail"},
+		},
+		Predicted: -1,
+		Natural:   kernel.HalfT,
+		Quantile:  halfTQuantile, CDF: halfTCDF, Mean: halfTMean, SD: halfTSD,
+		Doc:    "prior of a spread that may turn out much larger than expected",
+		Source: "A. Gelman, Prior distributions for variance parameters in hierarchical models, Bayesian Analysis 1 (2006)",
+	},
+	{
+		Name: "beta", Support: Unit,
+		Arguments: []Argument{
+			{Name: "mean", Greek: "mu", Support: Unit, Doc: "expected value"},
+			{Name: "precision", Greek: "kappa", Support: Positives, Doc: "the variance is mean (1 - mean) / (1 + precision)"},
+		},
+		Predicted: 0, Link: Logit,
+		Natural: kernel.Beta, Linked: kernel.BetaLogit,
+		Quantile: betaQuantile, CDF: betaCDF,
+		Mean: func(a []float64) float64 { return a[0] }, SD: betaSD,
+		Doc:    "a proportion strictly between 0 and 1 that is not a count out of trials",
+		Source: "S. Ferrari & F. Cribari-Neto, Beta regression for modelling rates and proportions, J. Applied Statistics 31 (2004)",
+	},
+	{
+		Name: "uniform", Support: Between,
+		Arguments: []Argument{
+			{Name: "low", Greek: "low", Support: Reals, Doc: "lower end"},
+			{Name: "high", Greek: "high", Support: Reals, Doc: "upper end"},
+		},
+		Predicted: -1,
+		Natural:   kernel.Uniform,
+		Quantile:  uniformQuantile, CDF: uniformCDF, Mean: uniformMean, SD: uniformSD,
+		Doc: "prior of a quantity with hard limits, any value between them as plausible as another",
+		Source: "N. L. Johnson, S. Kotz & N. Balakrishnan, Continuous Univariate Distributions, vol. 2, " +
+			"2nd ed., Wiley 1995, ch. 26",
+	},
+	{
+		Name: "negative binomial", Support: Counts, Discrete: true,
+		Arguments: []Argument{
+			{Name: "mean", Also: []string{"rate"}, Greek: "lambda", Support: Positives, Doc: "expected count"},
+			{Name: "overdispersion", Greek: "k", Support: Positives, Doc: "the variance is mean + mean² / k: the smaller k, the more clumped"},
+		},
+		Predicted: 0, Link: Log,
+		Natural: kernel.NegativeBinomial, Linked: kernel.NegativeBinomialLog,
+		Quantile: negBinomialQuantile, CDF: negBinomialCDF,
+		Mean: func(a []float64) float64 { return a[0] }, SD: negBinomialSD,
+		Doc:    "a count that varies more than chance alone would make it",
+		Source: "R. A. Fisher, The negative binomial distribution, Annals of Eugenics 11 (1941)",
+	},
+	{
+		Name: "Poisson", Support: Counts, Discrete: true,
+		Arguments: []Argument{
+			{Name: "rate", Also: []string{"mean"}, Greek: "lambda", Support: Positives, Doc: "expected count"},
+		},
+		Predicted: 0, Link: Log,
+		Natural: kernel.Poisson, Linked: kernel.PoissonLog,
+		Quantile: poissonQuantile, CDF: poissonCDF,
+		Mean: func(a []float64) float64 { return a[0] }, SD: poissonSD,
+		Doc: "a count of events that happen independently at one rate",
+		Source: "N. L. Johnson, A. W. Kemp & S. Kotz, Univariate Discrete Distributions, 3rd ed., Wiley 2005, ch. 4; " +
+			"C. Loader, Fast and accurate computation of binomial probabilities, 2000",
+	},
+	{
+		Name: "binomial", Support: UpTo, Discrete: true,
+		Arguments: []Argument{
+			{Name: "probability", Greek: "p", Support: Unit, Doc: "chance of success in one trial"},
+			{Name: "trials", Greek: "n", Support: Counts, Doc: "number of trials, known"},
+		},
+		Predicted: 0, Link: Logit,
+		Natural: kernel.Binomial, Linked: kernel.BinomialLogit,
+		Quantile: binomialQuantile, CDF: binomialCDF, Mean: binomialMean, SD: binomialSD,
+		Doc: "a number of successes out of a known number of trials",
+		Source: "N. L. Johnson, A. W. Kemp & S. Kotz, Univariate Discrete Distributions, 3rd ed., Wiley 2005, ch. 3; " +
+			"C. Loader, Fast and accurate computation of binomial probabilities, 2000",
+	},
+	{
+		Name: "Bernoulli", Support: ZeroOne, Discrete: true,
+		Arguments: []Argument{
+			{Name: "probability", Greek: "p", Support: Unit, Doc: "chance of a 1"},
+		},
+		Predicted: 0, Link: Logit,
+		Natural: kernel.Bernoulli, Linked: kernel.BernoulliLogit,
+		Quantile: bernoulliQuantile, CDF: bernoulliCDF,
+		Mean: func(a []float64) float64 { return a[0] }, SD: bernoulliSD,
+		Doc:    "yes or no",
+		Source: "D. R. Cox, The regression analysis of binary sequences, J. Royal Statistical Society B 20 (1958)",
+	},
+	{
+		Name: "categorical", Support: Levels, Discrete: true,
+		Arguments: []Argument{
+			{Name: "probabilities", Greek: "p", Support: Unit, Doc: "one for each level, with sum 1"},
+		},
+		Predicted: 0, Link: Softmax,
+		Natural: kernel.Categorical, Linked: kernel.CategoricalSoftmax,
+		Quantile: levelQuantile, CDF: levelCDF, Mean: levelMean, SD: levelSD,
+		Doc:    "one of several levels without an order",
+		Source: "A. Agresti, Categorical Data Analysis, 3rd ed., Wiley 2013, ch. 8",
+	},
+	{
+		Name: "ordered", Support: Levels, Discrete: true,
+		Arguments: []Argument{
+			{Name: "predictor", Greek: "eta", Support: Reals, Doc: "raises the chance of the higher levels"},
+			{Name: "cut points", Greek: "cut", Support: Reals, Doc: "log odds of staying below each step when the predictor is 0, ascending"},
+		},
+		Predicted: 0, Link: Cumulate,
+		Natural: kernel.Ordered, Linked: kernel.OrderedLogit,
+		Quantile: levelQuantile, CDF: levelCDF, Mean: levelMean, SD: levelSD,
+		Doc:    "one of several levels in order, such as answers from never to always",
+		Source: "P. McCullagh, Regression models for ordinal data, J. Royal Statistical Society B 42 (1980)",
+	},
+}
