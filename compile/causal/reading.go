@@ -13,7 +13,11 @@
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.
 package causal
 
-import "arrowroot/compile/graph"
+import (
+	"slices"
+
+	"arrowroot/compile/graph"
+)
 
 // A Query is what is asked of a graph: the total effect of one exposure on one
 // outcome while some nodes are held.
@@ -32,7 +36,7 @@ type Reading struct {
 	Paths     []Path // shortest first, then by place of the nodes in the graph
 	MorePaths bool   // there are more than MaxPaths
 
-	Forbidden []Forbidden // by node, the outcome included when there is an effect
+	Forbidden []Forbidden // in order of the nodes; the outcome included when there is an effect
 
 	Sets     [][]int // all minimal adjustment sets from measured variables, by (size, names); nil = none, [[]] = nothing needed
 	MoreSets bool    // there are more than MaxSets
@@ -43,9 +47,14 @@ type Reading struct {
 	HeldValid  bool // the held set is a valid adjustment set
 	HeldFaults []Fault
 
-	Identifiable bool  // from measured variables, by adjustment or any other way
-	Culprits     []int // unmeasured nodes each of which, or (if none would do alone) all of which, if measured, would give a set
-	CulpritsAll  bool  // all of Culprits are needed together
+	Identifiable bool // from measured variables, by adjustment or any other way
+
+	// With no set: the unmeasured nodes, and the arcs (both ends), that would
+	// give one if they were measured. Any one of them would do, unless
+	// CulpritsAll says that they are needed together.
+	Culprits    []int
+	CulpritArcs [][2]int
+	CulpritsAll bool
 
 	Verdict Verdict
 }
@@ -64,24 +73,47 @@ type Fault struct {
 	Path   []int // the path that is cut or opened; nil when the fault is the node itself
 }
 
-// VerdictKind sorts verdicts by what the user can do next.
-type VerdictKind int
+// Read reads a query off a graph. It never fails and never hangs: with no
+// exposure or outcome yet (-1, or the same node twice) the verdict says so and
+// the rest is empty. A node number outside the graph panics.
+func Read(g *graph.Graph, q Query) *Reading {
+	q.Held = tidy(q.Held)
+	q.MaxPaths, q.MaxSets = limit(q.MaxPaths, 500), limit(q.MaxSets, 100)
+	r := &Reading{Graph: g, Query: q, Precise: -1}
+	if q.Exposure < 0 || q.Outcome < 0 || q.Exposure == q.Outcome {
+		r.Verdict = r.incomplete()
+		return r
+	}
+	c := compare(g, []int{q.Exposure}, []int{q.Outcome})
+	r.Effect = c.effect()
+	r.findPaths()
+	r.Forbidden = c.whyForbidden()
+	r.Sets, r.MoreSets = c.minimal(nil, q.MaxSets)
+	if optimal, ok := c.optimal(); ok {
+		r.Optimal = optimal
+		r.Precise = slices.IndexFunc(r.Sets, func(z []int) bool { return slices.Equal(z, optimal) })
+	}
+	if r.Precise < 0 && !r.MoreSets {
+		r.Precise = c.best(r.Sets)
+	}
+	r.Identifiable = Identifiable(g, q.Exposure, q.Outcome)
+	r.HeldValid = c.valid(q.Held)
+	r.HeldFaults = r.faults(c)
+	if r.Sets == nil {
+		r.findCulprits()
+	}
+	r.Verdict = r.verdict(c)
+	return r
+}
 
-// The kinds of verdict.
-const (
-	Incomplete VerdictKind = iota // no exposure or no outcome yet
-	Confounded                    // hold the proposed set
-	Readable                      // the held set is valid
-	OverHeld                      // something held must be left free
-	NoSet                         // no set of measured variables works
-	NoEffect                      // no causal path is drawn
-)
-
-// A Verdict is the reading in one sentence.
-type Verdict struct {
-	Kind        VerdictKind
-	Sentence    string
-	Propose     []int // the set to hold instead of the present one
-	HasProposal bool
-	Way         string // what else could be done; "" = nothing to add
+func (r *Reading) findPaths() {
+	s := newStatus(r.Graph, r.Query.Held)
+	for p := range paths(r.Graph, r.Query.Exposure, r.Query.Outcome) {
+		if len(r.Paths) == r.Query.MaxPaths {
+			r.MorePaths = true
+			return
+		}
+		s.judge(p)
+		r.Paths = append(r.Paths, *p)
+	}
 }

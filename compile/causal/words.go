@@ -1,0 +1,44 @@
+package causal
+
+import (
+	"fmt"
+	"strings"
+
+	"arrowroot/compile/graph"
+)
+
+// names writes a set of nodes as "a", "a and b" or "a, b and c".
+func names(g *graph.Graph, nodes []int) string {
+	words := make([]string, len(nodes))
+	for i, v := range nodes {
+		words[i] = g.Names[v]
+	}
+	return series(words, "and")
+}
+
+func series(words []string, last string) string {
+	switch n := len(words); n {
+	case 0:
+		return "nothing"
+	case 1:
+		return words[0]
+	default:
+		return strings.Join(words[:n-1], ", ") + " " + last + " " + words[n-1]
+	}
+}
+
+func arrowText(g *graph.Graph, nodes []int) string {
+	words := make([]string, len(nodes))
+	for i, v := range nodes {
+		words[i] = g.Names[v]
+	}
+	return strings.Join(words, " → ")
+}
+
+// count writes "1 open path", "3 open paths".
+func count(n int, what string) string {
+	if n == 1 {
+		return "1 " + what
+	}
+	return fmt.Sprintf("%d %ss", n, what)
+}

@@ -1,0 +1,31 @@
+package graph
+
+// Keep is g with the same nodes and only those arrows and arcs for which the
+// functions say yes. A nil function keeps all.
+func (g *Graph) Keep(arrow func(from, to int) bool, arc func(a, b int) bool) *Graph {
+	n := g.Len()
+	kept := &Graph{
+		Names:    g.Names,
+		Measured: g.Measured,
+		Computed: g.Computed,
+		Parents:  make([][]int, n),
+		Children: make([][]int, n),
+		Siblings: make([][]int, n),
+		Order:    g.Order, // fewer arrows ask for less
+	}
+	for _, a := range g.Arrows {
+		if arrow == nil || arrow(a[0], a[1]) {
+			insert(&kept.Parents[a[1]], a[0])
+			insert(&kept.Children[a[0]], a[1])
+			kept.Arrows = append(kept.Arrows, a)
+		}
+	}
+	for _, a := range g.Arcs {
+		if arc == nil || arc(a[0], a[1]) {
+			insert(&kept.Siblings[a[0]], a[1])
+			insert(&kept.Siblings[a[1]], a[0])
+			kept.Arcs = append(kept.Arcs, a)
+		}
+	}
+	return kept
+}
