@@ -8,17 +8,19 @@ import "strings"
 // family and stays. The text need not be complete.
 func Rename(text, old, new string) string {
 	old = Canonical(old)
-	return Replace(text, func(id string) string {
+	one := func(id string) string {
 		if id == old {
 			return new
 		}
 		return id
-	})
+	}
+	return Replace(text, one, one)
 }
 
-// Replace is Rename by a function: it gets each mentioned name in its typed
-// form and gives the name to stand there, the same for no change.
-func Replace(text string, name func(id string) string) string {
+// Replace is Rename by functions: name gets each variable or parameter that is
+// mentioned, plate each plate, in its typed form; what they give comes in its
+// place. A nil function changes nothing.
+func Replace(text string, name, plate func(id string) string) string {
 	right := 0
 	for _, t := range scan(text) {
 		if t.is("=") {
@@ -26,12 +28,12 @@ func Replace(text string, name func(id string) string) string {
 			break
 		}
 	}
-	return replaceIn(text, []Span{{right, len(text)}}, name)
+	return replaceIn(text, []Span{{right, len(text)}}, name, plate)
 }
 
 // ReplacePhrase is Replace for a distribution phrase: the names of families
 // and arguments stay. A phrase that cannot be parsed stays as it is.
-func ReplacePhrase(text string, name func(id string) string) string {
+func ReplacePhrase(text string, name, plate func(id string) string) string {
 	p, err := ParsePhrase(text)
 	if err != nil {
 		return text
@@ -40,26 +42,34 @@ func ReplacePhrase(text string, name func(id string) string) string {
 	for i, a := range p.Arguments {
 		values[i] = a.Value.Where()
 	}
-	return replaceIn(text, values, name)
+	return replaceIn(text, values, name, plate)
 }
 
 // replaceIn changes the names within the given spans, which are in order.
-// Reserved words and names of functions are no such names.
-func replaceIn(text string, within []Span, name func(id string) string) string {
+// Reserved words and names of functions are no such names; a name behind "by",
+// or behind "and" after one, is a plate.
+func replaceIn(text string, within []Span, name, plate func(id string) string) string {
 	var b strings.Builder
 	done := 0
 	tokens := scan(text)
+	plates := false
 	for i, t := range tokens {
+		if t.kind != nameToken || Reserved(t.id) {
+			plates = t.isWord("by") || plates && t.isWord("and")
+			continue
+		}
 		for len(within) > 0 && within[0].End < t.span.End {
 			within = within[1:]
 		}
-		if len(within) == 0 {
-			break
+		change := name
+		if plates {
+			change = plate
 		}
-		if t.kind != nameToken || t.span.Start < within[0].Start || Reserved(t.id) || tokens[i+1].is("(") {
+		plates = plates && tokens[i+1].isWord("and")
+		if len(within) == 0 || t.span.Start < within[0].Start || change == nil || tokens[i+1].is("(") {
 			continue
 		}
-		if to := name(t.id); to != t.id {
+		if to := change(t.id); to != t.id {
 			b.WriteString(text[done:t.span.Start])
 			b.WriteString(to)
 			done = t.span.End

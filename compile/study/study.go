@@ -3,9 +3,11 @@
 // A *Study never changes. An Edit applied to it gives a new *Study that shares
 // every part the edit did not touch, so that "must this be computed again?" is
 // a comparison of pointers and undo is keeping the old pointer. Read the files
-// in this order: study.go (the parts), edit.go (how one study becomes the
-// next), valid.go (what must hold), file.go (the .arrowroot text), graph.go
-// (the view that algorithms work on).
+// in this order: study.go (the parts), find.go (looking them up), valid.go
+// (what must hold), edit.go and the files it names (how one study becomes the
+// next), rename.go (how a new name gets everywhere), arrows.go (arrows as
+// text), graph.go (the view that algorithms work on), read.go, write.go and
+// save.go (the .arrowroot file).
 package study
 
 // A Study is the whole document.
@@ -179,6 +181,16 @@ const (
 
 	Difference = "difference"
 	Ratio      = "ratio"
+)
+
+// Words of Arrow.Form and Law.Treat.
+const (
+	Slope  = "slope"
+	Steps  = "steps"
+	Offset = "offset"
+
+	Given    = "given"
+	Modelled = "modelled"
 )
 
 // A Question asks for one contrast. Held marks belong to it, never to a rival.

@@ -1,0 +1,88 @@
+package study
+
+import "slices"
+
+// AddRival adds an explanation.
+type AddRival struct{ Rival Rival }
+
+// Apply refuses a name that is taken. A rival without layout or diagram gets
+// an empty one.
+func (e AddRival) Apply(s *Study) (*Study, error) {
+	r := e.Rival
+	if r.Layout == nil {
+		r.Layout = &Layout{}
+	}
+	if r.Diagram == nil {
+		r.Diagram = &Diagram{}
+	}
+	return changed(s, func(s *Study) { s.Rivals = and(s.Rivals, &r) })
+}
+
+// Label names the edit.
+func (e AddRival) Label() string { return "Add the rival “" + e.Rival.Name + "”" }
+
+// CopyRival adds a copy of an explanation under another name, behind it.
+type CopyRival struct {
+	From, Name string
+}
+
+// Apply refuses a name that is taken. Both rivals share diagram and layout
+// until one of them changes.
+func (e CopyRival) Apply(s *Study) (*Study, error) {
+	i := slices.IndexFunc(s.Rivals, byRivalName(e.From))
+	if i < 0 {
+		return nil, noRival(e.From)
+	}
+	r := *s.Rivals[i]
+	r.Name = e.Name
+	return changed(s, func(s *Study) { s.Rivals = slices.Insert(slices.Clone(s.Rivals), i+1, &r) })
+}
+
+// Label names the edit.
+func (e CopyRival) Label() string { return "Copy the rival “" + e.From + "”" }
+
+// RenameRival gives an explanation another name.
+type RenameRival struct {
+	Old, New string
+}
+
+// Apply refuses a name that is taken.
+func (e RenameRival) Apply(s *Study) (*Study, error) {
+	return onSheet(s, e.Old, func(r *Rival) error {
+		r.Name = e.New
+		return nil
+	})
+}
+
+// Label names the edit.
+func (e RenameRival) Label() string { return "Rename the rival “" + e.Old + "”" }
+
+// NoteRival changes the note on an explanation.
+type NoteRival struct {
+	Rival, Note string
+}
+
+// Apply changes the note alone.
+func (e NoteRival) Apply(s *Study) (*Study, error) {
+	return onSheet(s, e.Rival, func(r *Rival) error {
+		r.Note = e.Note
+		return nil
+	})
+}
+
+// Label names the edit.
+func (e NoteRival) Label() string { return "Change the note on “" + e.Rival + "”" }
+
+// RemoveRival removes an explanation.
+type RemoveRival struct{ Name string }
+
+// Apply refuses an unknown rival.
+func (e RemoveRival) Apply(s *Study) (*Study, error) {
+	if s.Rival(e.Name) == nil {
+		return nil, noRival(e.Name)
+	}
+	return changed(s, func(s *Study) { s.Rivals = without(s.Rivals, byRivalName(e.Name)) })
+}
+
+// Label names the edit.
+func (e RemoveRival) Label() string { return "Delete the rival “" + e.Name + "”" }

@@ -1,0 +1,288 @@
+package study
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"strings"
+
+	"arrowroot/compile/formula"
+)
+
+// A Fault is something in a study that must not be. Part points to the part
+// that is at fault: a *Variable, *Plate, *Data, *Rival, *Node, *Arrow, *Arc,
+// *Absent or *Question of the study.
+type Fault struct {
+	Part   any
+	Reason string
+}
+
+func (f *Fault) Error() string { return f.Reason }
+
+// Check gives the first thing that must hold of every study and does not, as a
+// *Fault, or nil: names are unique and well-formed, arrows join nodes that are
+// on the sheet and close no cycle, everything that is named exists. Whether
+// laws and formulas make sense is not asked here.
+func Check(s *Study) error {
+	c := checker{study: s}
+	c.data()
+	c.plates()
+	c.variables()
+	c.rivals()
+	for _, q := range s.Questions {
+		c.question(q)
+	}
+	if c.fault == nil {
+		return nil
+	}
+	return c.fault
+}
+
+// checked returns the study if it is sound. Edits end with it.
+func checked(s *Study) (*Study, error) {
+	if err := Check(s); err != nil {
+		return nil, err
+	}
+	return s, nil
+}
+
+type checker struct {
+	study *Study
+	fault *Fault // the first
+}
+
+func (c *checker) insist(holds bool, part any, format string, args ...any) {
+	if !holds && c.fault == nil {
+		c.fault = &Fault{Part: part, Reason: fmt.Sprintf(format, args...)}
+	}
+}
+
+func (c *checker) data() {
+	seen := make(map[string]bool)
+	for _, d := range c.study.Data {
+		c.insist(d.Name != "", d, "a data table has no name")
+		c.insist(!seen[d.Name], d, "there are two data tables named “%s”", d.Name)
+		c.insist(d.File == "" || d.Text == "", d, "the data “%s” have both a file and embedded text", d.Name)
+		c.insist(d.Rows >= 0, d, "the data “%s” have a negative number of rows", d.Name)
+		seen[d.Name] = true
+	}
+}
+
+func (c *checker) plates() {
+	seen := make(map[string]bool)
+	for _, p := range c.study.Plates {
+		c.name(p, p.Name, "plate")
+		c.insist(!seen[p.Name], p, "there are two plates named %s", p.Name)
+		seen[p.Name] = true
+	}
+	for _, p := range c.study.Plates {
+		for n, at := 0, p; at != nil && at.Within != ""; n++ {
+			c.insist(seen[at.Within], p, "the plate %s is within %s, which is no plate", at.Name, at.Within)
+			if n > len(c.study.Plates) {
+				c.insist(false, p, "the plate %s is within itself", p.Name)
+				break
+			}
+			at = c.study.Plate(at.Within)
+		}
+	}
+}
+
+func (c *checker) name(part any, name, kind string) {
+	switch {
+	case name == "":
+		c.insist(false, part, "a %s has no name", kind)
+	case formula.Reserved(name):
+		c.insist(false, part, "“%s” cannot name a %s: it has a meaning in formulas", name, kind)
+	case !formula.IsName(name):
+		c.insist(false, part, "“%s” cannot name a %s: a name is a letter followed by letters, digits and underscores", name, kind)
+	case formula.Canonical(name) != name:
+		c.insist(false, part, "“%s” cannot name a %s: Greek letters are kept in their typed form, %s", name, kind, formula.Canonical(name))
+	}
+}
+
+func (c *checker) plateNames(part any, where string, plates []string) {
+	for i, p := range plates {
+		c.insist(c.study.Plate(p) != nil, part, "%s names the plate %s, which does not exist", where, p)
+		c.insist(!slices.Contains(plates[:i], p), part, "%s names the plate %s twice", where, p)
+	}
+}
+
+func (c *checker) variables() {
+	seen := make(map[string]bool)
+	for _, v := range c.study.Variables {
+		c.name(v, v.ID, "variable")
+		c.insist(!seen[v.ID], v, "there are two variables named %s", v.ID)
+		seen[v.ID] = true
+		c.insist(v.Scale == "" || slices.Contains(Scales[:], v.Scale), v, "%s has the scale “%s”, which this version does not know (%s)", v.ID, v.Scale, scaleWords())
+		if v.Range != nil {
+			c.insist(finite(v.Range.Low, v.Range.High) && v.Range.Low < v.Range.High, v, "the plausible range of %s must go from a lower to a higher number", v.ID)
+		}
+		for i, l := range v.Levels {
+			c.insist(!slices.Contains(v.Levels[:i], l), v, "%s has the level “%s” twice", v.ID, l)
+		}
+		c.plateNames(v, v.ID, v.Plates)
+		c.insist(v.Data == "" || c.study.Table(v.Data) != nil, v, "%s is bound to the data “%s”, which are not in the study", v.ID, v.Data)
+		c.insist(finite(v.Divide) && v.Divide >= 0, v, "%s must be divided by a positive number", v.ID)
+	}
+}
+
+func scaleWords() string {
+	words := make([]string, len(Scales))
+	for i, s := range Scales {
+		words[i] = string(s)
+	}
+	return strings.Join(words, ", ")
+}
+
+func finite(values ...float64) bool {
+	for _, v := range values {
+		if math.IsNaN(v) || math.IsInf(v, 0) {
+			return false
+		}
+	}
+	return true
+}
+
+func (c *checker) rivals() {
+	seen := make(map[string]bool)
+	for _, r := range c.study.Rivals {
+		c.insist(r.Name != "", r, "a rival has no name")
+		c.insist(!seen[r.Name], r, "there are two rivals named “%s”", r.Name)
+		seen[r.Name] = true
+		for id, p := range r.Layout.At {
+			c.insist(finite(p.X, p.Y), r, "%s has no place on the sheet of “%s”", id, r.Name)
+		}
+		c.diagram(r)
+	}
+}
+
+func (c *checker) diagram(r *Rival) {
+	d := r.Diagram
+	on := make(map[string]bool)
+	for _, n := range d.Nodes {
+		c.insist(c.study.Variable(n.Variable) != nil, n, "the sheet of “%s” shows %s, which is not among the variables", r.Name, n.Variable)
+		c.insist(!on[n.Variable], n, "the sheet of “%s” shows %s twice", r.Name, n.Variable)
+		on[n.Variable] = true
+		if n.Law != nil {
+			c.law(n)
+		}
+	}
+	ends := func(part any, what, a, b string) {
+		for _, end := range [2]string{a, b} {
+			c.insist(on[end], part, "%s %s: %s is not on the sheet of “%s”", what, joined(part, a, b), end, r.Name)
+		}
+		c.insist(a != b, part, "%s cannot join %s to itself", what, a)
+	}
+	drawn := make(map[[2]string]bool)
+	for _, a := range d.Arrows {
+		ends(a, "an arrow", a.From, a.To)
+		c.insist(!drawn[[2]string{a.From, a.To}], a, "the arrow %s → %s is drawn twice in “%s”", a.From, a.To, r.Name)
+		drawn[[2]string{a.From, a.To}] = true
+		c.insist(a.Form == "" || slices.Contains(forms[:], a.Form), a, "“%s” is not a form this version knows (%s)", a.Form, strings.Join(forms[:], ", "))
+		c.plateNames(a, fmt.Sprintf("the arrow %s → %s", a.From, a.To), a.VariesBy)
+	}
+	for _, a := range d.Arrows {
+		for i, w := range a.With {
+			c.insist(drawn[[2]string{w, a.To}] && w != a.From, a, "the arrow %s → %s is a product with %s, which is no other parent of %s", a.From, a.To, w, a.To)
+			c.insist(!slices.Contains(a.With[:i], w), a, "the arrow %s → %s is a product with %s twice", a.From, a.To, w)
+		}
+	}
+	for i, a := range d.Arcs {
+		ends(a, "an arc", a.A, a.B)
+		c.insist(find(d.Arcs[:i], byPair(a.A, a.B)) == nil, a, "the arc %s ↔ %s is drawn twice in “%s”", a.A, a.B, r.Name)
+		c.plateNames(a, fmt.Sprintf("the arc %s ↔ %s", a.A, a.B), a.Plates)
+	}
+	for i, a := range d.Absent {
+		ends(a, "an absent arrow", a.From, a.To)
+		c.insist(find(d.Absent[:i], byAbsentEnds(a.From, a.To)) == nil, a, "the absent arrow %s → %s is argued twice in “%s”", a.From, a.To, r.Name)
+		c.insist(!drawn[[2]string{a.From, a.To}], a, "the arrow %s → %s is drawn in “%s” and argued to be absent", a.From, a.To, r.Name)
+	}
+	if c.fault == nil {
+		if a, cycle := closing(d); a != nil {
+			c.insist(false, a, "the arrows of “%s” close a cycle: %s", r.Name, strings.Join(cycle, " → "))
+		}
+	}
+}
+
+func joined(part any, a, b string) string {
+	if _, arc := part.(*Arc); arc {
+		return a + " ↔ " + b
+	}
+	return a + " → " + b
+}
+
+var forms = [...]string{Slope, Steps, Offset}
+
+func (c *checker) law(n *Node) {
+	l := n.Law
+	c.insist(l.Treat == "" || l.Treat == Given || l.Treat == Modelled, n, "%s is to be treated as “%s”; what can be is given or modelled", n.Variable, l.Treat)
+	c.plateNames(n, "the law of "+n.Variable, l.VariesBy)
+	for i, a := range l.Arguments {
+		c.insist(a.Name != "", n, "an argument in the law of %s has no name", n.Variable)
+		c.insist(!slices.ContainsFunc(l.Arguments[:i], func(b Argument) bool { return a.Name == b.Name }), n, "the law of %s has the argument %s twice", n.Variable, a.Name)
+	}
+	for i, p := range l.Priors {
+		c.insist(p.Parameter != "", n, "a prior in the law of %s is for no parameter", n.Variable)
+		c.insist(!slices.ContainsFunc(l.Priors[:i], func(b Prior) bool { return p.Parameter == b.Parameter }), n, "the law of %s has two priors for %s", n.Variable, p.Parameter)
+	}
+}
+
+// closing finds an arrow on a cycle, and the cycle's names with the first
+// repeated last; nil if there is none.
+func closing(d *Diagram) (*Arrow, []string) {
+	for i, a := range d.Arrows {
+		if way := walk(d.Arrows[:i], a.To, a.From); way != nil {
+			return a, append(way, a.To)
+		}
+	}
+	return nil, nil
+}
+
+// walk finds a shortest way along arrows between two variables, both ends
+// included; nil if there is none.
+func walk(arrows []*Arrow, from, to string) []string {
+	before := map[string]string{from: ""}
+	for queue := []string{from}; len(queue) > 0; queue = queue[1:] {
+		if queue[0] == to {
+			var way []string
+			for at := to; at != ""; at = before[at] {
+				way = append(way, at)
+			}
+			slices.Reverse(way)
+			return way
+		}
+		for _, a := range arrows {
+			if _, seen := before[a.To]; a.From == queue[0] && !seen {
+				before[a.To] = a.From
+				queue = append(queue, a.To)
+			}
+		}
+	}
+	return nil
+}
+
+func (c *checker) question(q *Question) {
+	known := func(what, id string) {
+		c.insist(id == "" || c.study.Variable(id) != nil, q, "the %s of a question is %s, which is not among the variables", what, id)
+	}
+	known("exposure", q.Exposure)
+	known("outcome", q.Outcome)
+	c.insist(q.Exposure == "" || q.Exposure != q.Outcome, q, "a question has %s as its exposure and its outcome", q.Exposure)
+	for i, h := range q.Held {
+		known("held variable", h)
+		c.insist(!slices.Contains(q.Held[:i], h), q, "a question holds %s twice", h)
+		c.insist(h != q.Exposure && h != q.Outcome, q, "a question holds %s, which is its exposure or outcome", h)
+	}
+	oneOf := func(what, word string, known ...string) {
+		c.insist(word == "" || slices.Contains(known, word), q, "“%s” is not %s this version knows (%s)", word, what, strings.Join(known, ", "))
+	}
+	oneOf("an effect", q.Effect, TotalEffect)
+	oneOf("a population", q.Over, TheseRows, PopulationAlike)
+	oneOf("a way to compare", q.As, Difference, Ratio)
+	for _, set := range [2]*Setting{q.From, q.To} {
+		c.insist(set == nil || finite(set.Number), q, "a question compares values that are not numbers")
+	}
+	c.insist(finite(q.Shift), q, "a question shifts by something that is not a number")
+	c.insist(q.Shift == 0 || q.From == nil && q.To == nil, q, "a question asks for a shift and for two values; only one of them can be meant")
+	c.insist(q.Level >= 0 && q.Level < 1, q, "the credible level of a question must lie between 0 and 1, as in 0.9")
+}
