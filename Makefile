@@ -1,0 +1,48 @@
+# Two commands do: make run, make test. The rest is for contributors.
+.PHONY: run build batch report test check bench cover golden need need-test
+
+STUDY ?=
+BIN := .build/bin
+
+run: need build
+	@if [ "$$(uname -s)" != Darwin ] && [ -z "$$DISPLAY$$WAYLAND_DISPLAY" ]; then \
+		echo "There is no display to open a window on."; \
+		echo "The batch program needs none. A report on the example study:  make report"; \
+		echo "On a study of yours:  make report STUDY=path/to/study.arrowroot"; \
+		exit 1; \
+	fi
+	$(BIN)/arrowroot $(STUDY)
+
+build:
+	go build -tags migrated_fynedo -o $(BIN)/arrowroot ./app
+
+batch:
+	CGO_ENABLED=0 go build -o $(BIN)/batch ./app/batch
+
+report: batch
+	$(BIN)/batch report -out report.html $(or $(STUDY),assets/examples/hedgerows.arrowroot)
+
+# Everything, the driven window included.
+test: need-test build
+	ARROWROOT_WINDOW=1 go test -tags migrated_fynedo -timeout 20m ./...
+
+# What a reviewer would otherwise have to look for by hand.
+check:
+	@test -z "$$(gofmt -l app canvas compile infer assets)" || { echo "gofmt would change:"; gofmt -l app canvas compile infer assets; exit 1; }
+	go mod tidy -diff
+	go vet -tags migrated_fynedo ./...
+	go tool staticcheck -tags migrated_fynedo ./...
+	CGO_ENABLED=0 go build ./compile/... ./infer/... ./app/batch
+	go test -race -short -timeout 20m ./compile/... ./infer/... ./canvas/draw/... ./canvas/scene/... ./app/fit/... ./app/session/... ./app/report/... ./app/batch/...
+
+bench:
+	go run ./app/bench
+
+golden:
+	go test ./canvas/... ./compile/model/... ./app/report/... -update
+
+need:
+	@sh .build/need.sh run
+
+need-test:
+	@sh .build/need.sh test

@@ -1,0 +1,151 @@
+// Command batch does without a window what Arrowroot does in one: it reads a
+// study's arrows, checks its laws, fits it, computes its effect and writes a
+// report. Results go to standard output as JSON, messages to standard error.
+//
+//	batch VERB [flags] STUDY.arrowroot
+//
+// Exit status: 0 done, 1 the study has problems, 2 wrong use.
+package main
+
+import (
+	"context"
+	"encoding/json"
+	"errors"
+	"flag"
+	"fmt"
+	"io"
+	"os"
+	"os/signal"
+)
+
+const usage = `use: batch VERB [flags] STUDY.arrowroot
+
+verbs
+  read       what follows from the arrows: paths, what to hold, whether the effect can be had
+  validate   what is wrong with the study, its laws and its data
+  fit        the posterior of every quantity, with trust
+  effect     the question's contrast: crude, held, full model
+  report     one HTML file with verdict, figure, statement, result and limits
+
+flags
+  -rival NAME     the rival; the first one without it
+  -question N     the question, counted from 1; the first one without it
+  -seed N         same study, same seed, same draws (1)
+  -chains N       chains side by side (4)
+  -draws N        draws of each chain; without it, until every quantity is precise enough
+  -out FILE       fit, effect: draws as CSV; report: the HTML file
+  -paths N        read: at most N paths (500)
+  -sets N         read: at most N sets to hold (100)
+`
+
+// Exit statuses.
+const (
+	done     = 0
+	problems = 1
+	wrongUse = 2
+)
+
+// An options value is the command line.
+type options struct {
+	verb, study   string
+	rival         string
+	question      int
+	seed          uint64
+	chains, draws int
+	out           string
+	paths, sets   int
+}
+
+// errUse is a command line that makes no sense.
+var errUse = errors.New("wrong use")
+
+func main() {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt)
+	defer stop()
+	os.Exit(run(ctx, os.Args[1:], os.Stdout, os.Stderr))
+}
+
+func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
+	opt, err := parse(args)
+	if errors.Is(err, flag.ErrHelp) {
+		fmt.Fprint(stderr, usage)
+		return done
+	}
+	if err != nil {
+		fmt.Fprintf(stderr, "%v\n\n%s", err, usage)
+		return wrongUse
+	}
+	verbs := map[string]func(context.Context, *job) (any, error){
+		"read": read, "validate": validate, "fit": fitVerb, "effect": effectVerb, "report": reportVerb,
+	}
+	verb := verbs[opt.verb]
+	if verb == nil {
+		fmt.Fprintf(stderr, "there is no verb %q\n\n%s", opt.verb, usage)
+		return wrongUse
+	}
+	j, err := load(opt, stderr)
+	if errors.Is(err, errUse) {
+		fmt.Fprintln(stderr, err)
+		return wrongUse
+	}
+	if err != nil {
+		fmt.Fprintln(stderr, err)
+		return problems
+	}
+	answer, err := verb(ctx, j)
+	if answer != nil {
+		out := json.NewEncoder(stdout)
+		out.SetEscapeHTML(false)
+		out.SetIndent("", " ")
+		if err := out.Encode(answer); err != nil {
+			fmt.Fprintln(stderr, err)
+			return problems
+		}
+	}
+	if err != nil {
+		fmt.Fprintln(stderr, err)
+		if errors.Is(err, errUse) {
+			return wrongUse
+		}
+		return problems
+	}
+	return done
+}
+
+// parse takes flags before and after the study's name.
+func parse(args []string) (*options, error) {
+	opt := &options{}
+	flags := flag.NewFlagSet("batch", flag.ContinueOnError)
+	flags.SetOutput(io.Discard)
+	flags.StringVar(&opt.rival, "rival", "", "")
+	flags.IntVar(&opt.question, "question", 0, "")
+	flags.Uint64Var(&opt.seed, "seed", 1, "")
+	flags.IntVar(&opt.chains, "chains", 0, "")
+	flags.IntVar(&opt.draws, "draws", 0, "")
+	flags.StringVar(&opt.out, "out", "", "")
+	flags.IntVar(&opt.paths, "paths", 0, "")
+	flags.IntVar(&opt.sets, "sets", 0, "")
+	var words []string
+	for len(args) > 0 {
+		if err := flags.Parse(args); err != nil {
+			return nil, err
+		}
+		args = flags.Args()
+		if len(args) > 0 {
+			words = append(words, args[0])
+			args = args[1:]
+		}
+	}
+	switch {
+	case len(words) == 0:
+		return nil, fmt.Errorf("%w: no verb", errUse)
+	case len(words) == 1:
+		return nil, fmt.Errorf("%w: no study file", errUse)
+	case len(words) > 2:
+		return nil, fmt.Errorf("%w: one study at a time, not %q", errUse, words[2:])
+	case opt.chains < 0 || opt.chains > 64 || opt.draws < 0 || opt.draws > 1000000 || opt.paths < 0 || opt.sets < 0 || opt.question < 0:
+		return nil, fmt.Errorf("%w: -chains takes 1 to 64, -draws 1 to 1000000, -question, -paths and -sets at least 1", errUse)
+	}
+	opt.verb, opt.study = words[0], words[1]
+	return opt, nil
+}

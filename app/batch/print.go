@@ -1,0 +1,314 @@
+package main
+
+import (
+	"math"
+
+	"arrowroot/app/fit"
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/infer/summary"
+)
+
+// What the verbs print. The README documents every field.
+
+type questionOut struct {
+	Exposure string   `json:"exposure"`
+	Outcome  string   `json:"outcome"`
+	Effect   string   `json:"effect"`
+	From     any      `json:"from"`
+	To       any      `json:"to"`
+	Shift    float64  `json:"shift,omitempty"`
+	Held     []string `json:"held"`
+	Over     string   `json:"over"`
+	As       string   `json:"as"`
+	Level    float64  `json:"level"`
+}
+
+type pathOut struct {
+	Path      string            `json:"path"`
+	Nodes     []string          `json:"nodes"`
+	Kind      string            `json:"kind"`
+	Open      bool              `json:"open"`
+	ClosedAt  []string          `json:"closedAt"`
+	ClosedWhy map[string]string `json:"closedWhy,omitempty"`
+	OpenedAt  map[string]string `json:"openedAt,omitempty"` // collider → what is held that opens it
+}
+
+type readingOut struct {
+	Rival        string            `json:"rival"`
+	Question     *questionOut      `json:"question"`
+	Verdict      string            `json:"verdict"`
+	Way          string            `json:"way,omitempty"`
+	Identified   bool              `json:"identified"`
+	ByHolding    bool              `json:"heldIsEnough"`
+	Hold         [][]string        `json:"hold"`
+	MoreSets     bool              `json:"moreSets,omitempty"`
+	MostPrecise  []string          `json:"mostPrecise,omitempty"`
+	Forbidden    []string          `json:"forbidden"`
+	ForbiddenWhy map[string]string `json:"forbiddenWhy,omitempty"`
+	HeldFaults   map[string]string `json:"heldFaults,omitempty"`
+	WouldHelp    []string          `json:"wouldHelp,omitempty"` // unmeasured variables that, if measured, would give a set
+	Paths        []pathOut         `json:"paths"`
+	MorePaths    bool              `json:"morePaths,omitempty"`
+}
+
+var pathKinds = map[causal.PathKind]string{causal.Causal: "causal", causal.BackDoor: "back-door", causal.NonCausal: "non-causal"}
+
+func printReading(j *job, g *graph.Graph, r *causal.Reading) *readingOut {
+	out := &readingOut{
+		Rival: j.rival, Question: printQuestion(j.question), Verdict: r.Verdict.Sentence, Way: r.Verdict.Way,
+		Identified: r.Identifiable, ByHolding: r.HeldValid, Hold: [][]string{}, MoreSets: r.MoreSets,
+		Forbidden: []string{}, ForbiddenWhy: map[string]string{}, HeldFaults: map[string]string{},
+		WouldHelp: names(g, r.Culprits), Paths: []pathOut{}, MorePaths: r.MorePaths,
+	}
+	for _, set := range r.Sets {
+		out.Hold = append(out.Hold, names(g, set))
+	}
+	if r.Precise >= 0 {
+		out.MostPrecise = names(g, r.Sets[r.Precise])
+	}
+	for _, f := range r.Forbidden {
+		out.Forbidden = append(out.Forbidden, g.Names[f.Node])
+		out.ForbiddenWhy[g.Names[f.Node]] = f.Reason
+	}
+	for _, f := range r.HeldFaults {
+		out.HeldFaults[g.Names[f.Node]] = f.Reason
+	}
+	for i := range r.Paths {
+		p := &r.Paths[i]
+		po := pathOut{Path: p.Text(g), Nodes: names(g, p.Nodes), Kind: pathKinds[p.Kind], Open: p.Open, ClosedAt: []string{}}
+		for _, s := range p.ClosedAt {
+			name := g.Names[s.Node]
+			po.ClosedAt = append(po.ClosedAt, name)
+			if po.ClosedWhy == nil {
+				po.ClosedWhy = map[string]string{}
+			}
+			po.ClosedWhy[name] = s.Reason
+		}
+		for _, o := range p.OpenedAt {
+			if po.OpenedAt == nil {
+				po.OpenedAt = map[string]string{}
+			}
+			po.OpenedAt[g.Names[o.Node]] = g.Names[o.By]
+		}
+		out.Paths = append(out.Paths, po)
+	}
+	return out
+}
+
+func printQuestion(q *study.Question) *questionOut {
+	if q == nil {
+		return nil
+	}
+	out := &questionOut{
+		Exposure: q.Exposure, Outcome: q.Outcome, Effect: or(q.Effect, study.TotalEffect), Shift: q.Shift,
+		Held: q.Held, Over: or(q.Over, study.TheseRows), As: or(q.As, study.Difference), Level: q.Level,
+		From: setting(q.From), To: setting(q.To),
+	}
+	if out.Held == nil {
+		out.Held = []string{}
+	}
+	if out.Level == 0 {
+		out.Level = 0.9
+	}
+	return out
+}
+
+func setting(s *study.Setting) any {
+	switch {
+	case s == nil:
+		return nil
+	case s.Word != "":
+		return s.Word
+	}
+	return s.Number
+}
+
+func or(s, other string) string {
+	if s == "" {
+		return other
+	}
+	return s
+}
+
+type problemOut struct {
+	Code     string   `json:"code"`
+	Variable string   `json:"variable,omitempty"`
+	Place    string   `json:"place,omitempty"`
+	Message  string   `json:"message"`
+	Repairs  []string `json:"repairs"`
+	Stops    bool     `json:"stops"`
+}
+
+func printProblems(all []model.Problem) any {
+	out := struct {
+		Problems []problemOut `json:"problems"`
+	}{[]problemOut{}}
+	for _, p := range all {
+		po := problemOut{Code: p.Code, Variable: p.Variable, Place: p.Place, Message: p.Message, Repairs: []string{}, Stops: p.Stops}
+		for _, r := range p.Repairs {
+			po.Repairs = append(po.Repairs, r.Label)
+		}
+		out.Problems = append(out.Problems, po)
+	}
+	return out
+}
+
+type trustOut struct {
+	Verdict string   `json:"verdict"`
+	Reasons []string `json:"reasons"`
+}
+
+func printTrust(t summary.Trust) trustOut {
+	out := trustOut{Verdict: t.Verdict.String(), Reasons: t.Reasons}
+	if out.Reasons == nil {
+		out.Reasons = []string{}
+	}
+	return out
+}
+
+type essOut struct {
+	Bulk *float64 `json:"bulk"`
+	Tail *float64 `json:"tail"`
+}
+
+type quantityOut struct {
+	Name    string   `json:"name"`
+	Symbol  string   `json:"symbol,omitempty"`
+	Centre  *float64 `json:"centre"`
+	Spread  *float64 `json:"spread"`
+	Low     *float64 `json:"low"`
+	High    *float64 `json:"high"`
+	Level   float64  `json:"level"`
+	Error   *float64 `json:"monteCarloError"`
+	RHat    *float64 `json:"rHat"`
+	ESS     essOut   `json:"ess"`
+	Trust   string   `json:"trust"`
+	Reasons []string `json:"reasons,omitempty"`
+}
+
+func printSummary(name, symbol string, s summary.Summary, t summary.Trust) quantityOut {
+	return quantityOut{
+		Name: name, Symbol: symbol, Centre: finite(s.Centre), Spread: finite(s.Spread), Low: finite(s.Low), High: finite(s.High),
+		Level: s.Level, Error: finite(s.MeanError), RHat: finite(s.RHat), ESS: essOut{finite(s.BulkESS), finite(s.TailESS)},
+		Trust: t.Verdict.String(), Reasons: t.Reasons,
+	}
+}
+
+// finite is null in JSON where a number cannot be said.
+func finite(x float64) *float64 {
+	if math.IsNaN(x) || math.IsInf(x, 0) {
+		return nil
+	}
+	return &x
+}
+
+type rowsOut struct {
+	Used int            `json:"used"`
+	Read int            `json:"read"`
+	Lost map[string]int `json:"lost"`
+}
+
+func printRows(r model.Rows) rowsOut {
+	out := rowsOut{Used: r.Used, Read: r.Read, Lost: map[string]int{}}
+	for _, l := range r.Lost {
+		out.Lost[l.Variable] = l.Rows
+	}
+	return out
+}
+
+type runOut struct {
+	Chains    int `json:"chains"`
+	Draws     int `json:"draws"` // of each chain
+	Divergent int `json:"divergent"`
+	Gradients int `json:"gradients"`
+	Warmup    int `json:"warmUpGradients"`
+}
+
+type fitOut struct {
+	Rival      string        `json:"rival"`
+	Question   *questionOut  `json:"question"`
+	Seed       uint64        `json:"seed"`
+	Rows       rowsOut       `json:"rows"`
+	Trust      trustOut      `json:"trust"`
+	Quantities []quantityOut `json:"quantities"`
+	Run        runOut        `json:"run"`
+	Given      []string      `json:"given"`
+	Statement  []string      `json:"statement"`
+	Cut        bool          `json:"cut,omitempty"`
+}
+
+func printFit(j *job, r *fit.Result) *fitOut {
+	f := r.Full
+	out := &fitOut{
+		Rival: j.rival, Question: printQuestion(j.question), Seed: j.seed, Rows: printRows(f.Model.Rows),
+		Trust: printTrust(f.Trust), Quantities: []quantityOut{}, Given: f.Model.Given, Cut: r.Cut,
+		Run: runOut{len(f.Chains), f.Steps(), f.Sampling.Divergent, f.Gradients, f.Warmup},
+	}
+	if out.Given == nil {
+		out.Given = []string{}
+	}
+	for _, q := range f.Quantities {
+		out.Quantities = append(out.Quantities, printSummary(q.Name, q.Symbol, q.Summary, q.Trust))
+	}
+	out.Statement = f.Model.Statement().Text()
+	return out
+}
+
+type numberOut struct {
+	quantityOut
+	Association bool        `json:"association,omitempty"`
+	Over        string      `json:"over"`
+	From        quantityOut `json:"expectedFrom"`
+	To          quantityOut `json:"expectedTo"`
+}
+
+type effectOut struct {
+	Rival        string       `json:"rival"`
+	Question     *questionOut `json:"question"`
+	Identified   bool         `json:"identified"`
+	Refusal      string       `json:"refusal,omitempty"`
+	HeldSet      []string     `json:"heldSet"`
+	HeldProposed bool         `json:"heldProposed,omitempty"`
+	HeldEnough   bool         `json:"heldIsEnough"`
+	LawsDisagree bool         `json:"lawsDisagree"`
+	Headline     string       `json:"headline"` // "full", "held" or "none"
+	Crude        *numberOut   `json:"crude"`
+	Held         *numberOut   `json:"held"`
+	Full         *numberOut   `json:"full"`
+	Rows         rowsOut      `json:"rows"`
+	Trust        trustOut     `json:"trust"`
+}
+
+func printEffect(j *job, r *fit.Result) *effectOut {
+	e := r.Effect
+	out := &effectOut{
+		Rival: j.rival, Question: printQuestion(j.question), Identified: e.Identified, Refusal: e.Refusal,
+		HeldSet: e.Held, HeldProposed: e.HeldProposed, HeldEnough: e.HeldValid, LawsDisagree: e.LawsDisagree,
+		Headline: "none", Crude: printNumber("crude", e.Crude), Held: printNumber("held", e.Adjusted), Full: printNumber("full", e.Full),
+		Rows: printRows(r.Full.Model.Rows), Trust: printTrust(r.Trust()),
+	}
+	if out.HeldSet == nil {
+		out.HeldSet = []string{}
+	}
+	switch h := e.Headline(); {
+	case h == nil:
+	case h == e.Full:
+		out.Headline = "full"
+	default:
+		out.Headline = "held"
+	}
+	return out
+}
+
+func printNumber(name string, n *fit.Number) *numberOut {
+	if n == nil {
+		return nil
+	}
+	return &numberOut{
+		quantityOut: printSummary(name, "", n.Summary, n.Trust), Association: n.Association, Over: n.Words,
+		From: printSummary("from", "", n.From, n.Trust), To: printSummary("to", "", n.To, n.Trust),
+	}
+}

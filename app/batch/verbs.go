@@ -1,0 +1,238 @@
+package main
+
+import (
+	"bufio"
+	"context"
+	"encoding/csv"
+	"errors"
+	"fmt"
+	"io"
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+
+	"arrowroot/app/fit"
+	"arrowroot/app/report"
+	"arrowroot/app/session"
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+	"arrowroot/infer"
+)
+
+// A job is one study, opened, with the rival and question that were asked for.
+type job struct {
+	*options
+	study    *study.Study
+	rival    string
+	question *study.Question
+	stderr   io.Writer
+}
+
+func load(opt *options, stderr io.Writer) (*job, error) {
+	doc, err := study.Load(opt.study)
+	if err != nil {
+		return nil, err
+	}
+	j := &job{options: opt, study: doc, rival: opt.rival, stderr: stderr}
+	if j.rival == "" && len(doc.Rivals) > 0 {
+		j.rival = doc.Rivals[0].Name
+	}
+	if doc.Rival(j.rival) == nil {
+		var names []string
+		for _, r := range doc.Rivals {
+			names = append(names, strconv.Quote(r.Name))
+		}
+		return nil, fmt.Errorf("%w: there is no rival %q; the study has %s", errUse, j.rival, strings.Join(names, ", "))
+	}
+	at := max(opt.question, 1)
+	if at <= len(doc.Questions) {
+		j.question = doc.Questions[at-1]
+	} else if opt.question > 0 {
+		return nil, fmt.Errorf("%w: there is no question %d; the study has %d", errUse, at, len(doc.Questions))
+	}
+	return j, nil
+}
+
+// table reads the study's data.
+func (j *job) table() (*table.Table, error) {
+	if len(j.study.Data) == 0 {
+		return nil, nil
+	}
+	return session.ReadData(filepath.Dir(j.options.study), j.study.Data[0])
+}
+
+func read(_ context.Context, j *job) (any, error) {
+	g, err := j.study.Graph(j.rival)
+	if err != nil {
+		return nil, err
+	}
+	if j.question == nil {
+		return nil, errors.New("the study asks no question: add one with an exposure and an outcome")
+	}
+	for _, id := range []string{j.question.Exposure, j.question.Outcome} {
+		if g.Index(id) < 0 {
+			return nil, fmt.Errorf("the question names %q, which is not on the sheet of %q", id, j.rival)
+		}
+	}
+	r := fit.Read(g, j.question, j.paths, j.sets)
+	return printReading(j, g, r), nil
+}
+
+func validate(_ context.Context, j *job) (any, error) {
+	t, err := j.table()
+	if err != nil {
+		return nil, err
+	}
+	var q study.Question
+	if j.question != nil {
+		q = *j.question
+	}
+	found := model.Problems(j.study, j.rival, q, t)
+	answer := printProblems(found)
+	if model.Stops(found) {
+		return answer, &fit.Blocked{Problems: found}
+	}
+	return answer, nil
+}
+
+// fitted runs the fit that all remaining verbs need.
+func (j *job) fitted(ctx context.Context) (*fit.Result, error) {
+	t, err := j.table()
+	if err != nil {
+		return nil, err
+	}
+	r, err := fit.Run(ctx, fit.Request{
+		Study: j.study, Rival: j.rival, Question: j.question, Table: t,
+		Seed: j.seed, Chains: j.chains, Draws: j.draws,
+	}, j.watch())
+	var blocked *fit.Blocked
+	if errors.As(err, &blocked) {
+		for _, p := range blocked.Problems {
+			fmt.Fprintln(j.stderr, p.Message)
+		}
+		return nil, errors.New("the study was not fitted")
+	}
+	return r, err
+}
+
+// watch reports progress every tenth part, on standard error.
+func (j *job) watch() func(infer.Progress) {
+	last := -1
+	return func(p infer.Progress) {
+		if p.Total == 0 {
+			return
+		}
+		if tenth := 10 * p.Done / p.Total; tenth != last {
+			last = tenth
+			fmt.Fprintf(j.stderr, "%d %% done, %d divergences\n", 10*tenth, p.Divergent)
+		}
+	}
+}
+
+func fitVerb(ctx context.Context, j *job) (any, error) {
+	r, err := j.fitted(ctx)
+	if err != nil {
+		return nil, err
+	}
+	if err := j.writeDraws(r.Full); err != nil {
+		return nil, err
+	}
+	return printFit(j, r), nil
+}
+
+func effectVerb(ctx context.Context, j *job) (any, error) {
+	if j.question == nil {
+		return nil, errors.New("the study asks no question: add one with an exposure and an outcome")
+	}
+	r, err := j.fitted(ctx)
+	if err != nil {
+		return nil, err
+	}
+	if r.Effect == nil {
+		return nil, fmt.Errorf("the question needs %q and %q on the sheet of %q", j.question.Exposure, j.question.Outcome, j.rival)
+	}
+	if err := j.writeDraws(r.Full); err != nil {
+		return nil, err
+	}
+	return printEffect(j, r), nil
+}
+
+func reportVerb(ctx context.Context, j *job) (any, error) {
+	g, err := j.study.Graph(j.rival)
+	if err != nil {
+		return nil, err
+	}
+	r, err := j.fitted(ctx)
+	if err != nil {
+		return nil, err
+	}
+	out := j.out
+	if out == "" {
+		out = strings.TrimSuffix(j.options.study, filepath.Ext(j.options.study)) + ".html"
+	}
+	var reading *causal.Reading = fit.Read(g, j.question, 0, 0)
+	err = writeFile(out, func(w io.Writer) error {
+		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Result: r})
+	})
+	if err != nil {
+		return nil, err
+	}
+	return map[string]string{"report": out, "trust": r.Trust().Verdict.String()}, nil
+}
+
+// writeDraws writes the draws as CSV if -out asks for it.
+func (j *job) writeDraws(f *fit.Fitted) error {
+	if j.out == "" {
+		return nil
+	}
+	return writeFile(j.out, func(w io.Writer) error {
+		out := csv.NewWriter(w)
+		row := []string{"chain", "step"}
+		for _, q := range f.Quantities {
+			row = append(row, q.Name)
+		}
+		if err := out.Write(row); err != nil {
+			return err
+		}
+		for c, chain := range f.Chains {
+			for i, draw := range chain {
+				row = append(row[:0], strconv.Itoa(c+1), strconv.Itoa(i+1))
+				for _, x := range draw {
+					row = append(row, strconv.FormatFloat(x, 'g', -1, 64))
+				}
+				if err := out.Write(row); err != nil {
+					return err
+				}
+			}
+		}
+		out.Flush()
+		return out.Error()
+	})
+}
+
+// writeFile writes a whole file or none.
+func writeFile(path string, write func(io.Writer) error) error {
+	f, err := os.CreateTemp(filepath.Dir(path), ".arrowroot-*")
+	if err != nil {
+		return err
+	}
+	defer os.Remove(f.Name())
+	w := bufio.NewWriter(f)
+	err = errors.Join(write(w), w.Flush(), f.Chmod(0o644), f.Close())
+	if err != nil {
+		return err
+	}
+	return os.Rename(f.Name(), path)
+}
+
+func names(g *graph.Graph, nodes []int) []string {
+	out := make([]string, len(nodes))
+	for i, v := range nodes {
+		out[i] = g.Names[v]
+	}
+	return out
+}
