@@ -8,17 +8,6 @@
 // Model.Parameters, entries of vectors side by side (density.Quantities).
 package effect
 
-import (
-	"context"
-	"errors"
-	"math/rand/v2"
-
-	"arrowroot/compile/causal"
-	"arrowroot/compile/graph"
-	"arrowroot/compile/model"
-	"arrowroot/compile/study"
-)
-
 // A Contrast compares expected outcomes under two settings of the exposure.
 type Contrast struct {
 	Expected struct {
@@ -41,22 +30,14 @@ func (e *NotSimulated) Error() string {
 	return "the effect of " + e.Exposure + " on " + e.Outcome + " cannot be had by simulating this fit: an unmeasured cause joins " + e.Exposure + " to what it acts on"
 }
 
+// defaultLevel is the credible level where nobody asked for another.
+const defaultLevel = 0.9
+
 // Options of the functions that can take long. The zero value is usable.
 type Options struct {
 	Progress func(done, of int) // called between draws, from one goroutine at a time
-	Budget   float64            // law evaluations (rows × draws × arms) before draws and then rows are thinned; 0 = 2e7
-}
-
-// Simulate gives the contrast of a full model. The case and the members of the
-// exposure's district, by variable ID, come from causal.InterventionCase.
-func Simulate(ctx context.Context, m *model.Model, c causal.Case, district []string, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
-	return nil, errors.New("effect: not yet written")
-}
-
-// FromLaw gives the contrast of a held or crude model: the outcome's law with
-// the exposure set and everything else at row values.
-func FromLaw(ctx context.Context, m *model.Model, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
-	return nil, errors.New("effect: not yet written")
+	Budget   float64            // law evaluations (rows × draws × arms) before draws and then rows are thinned; 0 = 4e7
+	Level    float64            // credible level of intervals in words; 0 = 0.9
 }
 
 // An ArrowEffect is the change of a child's expectation as one drawn parent
@@ -64,17 +45,12 @@ func FromLaw(ctx context.Context, m *model.Model, q study.Question, draws [][]fl
 type ArrowEffect struct {
 	From, To  string    // variable IDs
 	Values    []float64 // per draw, in plausible widths of the child
-	Unsigned  bool      // a distance between distributions: category children
-	Low, High float64   // the parent's two values
+	Unsigned  bool      // a total variation, not a direction: category children
+	Low, High float64   // the parent's two values, or codes of its two levels
 	Per       float64   // natural step of the parent for PerUnit; 0 = none
 	PerUnit   []float64 // per draw: expectation's ratio (if Ratio) or difference per step
 	Ratio     bool
 	Words     string // "×1.02 per 10 m/ha", from the median of PerUnit
-}
-
-// Arrows gives every drawn arrow of the model's laws.
-func Arrows(ctx context.Context, m *model.Model, draws [][]float64, opt Options) ([]ArrowEffect, error) {
-	return nil, errors.New("effect: not yet written")
 }
 
 // A NodeEffect is the change of one variable under the question's
@@ -85,10 +61,4 @@ type NodeEffect struct {
 	Unsigned bool
 	Plain    bool // does not descend from the exposure: nothing to show, which is not zero
 	Refused  bool // not to be had by simulation (SEMANTICS B2 c)
-}
-
-// Nodes gives every variable of the model but the exposure. The graph decides
-// for each variable by itself whether its change may be simulated.
-func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question, draws [][]float64, src rand.Source, opt Options) ([]NodeEffect, error) {
-	return nil, errors.New("effect: not yet written")
 }

@@ -1,0 +1,184 @@
+package density
+
+import (
+	"fmt"
+	"math"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/model"
+	"arrowroot/compile/ops"
+)
+
+// A factor is one additive part of a block's log density, with the name by
+// which people know it.
+type factor struct {
+	what  string // "the law of bees", "the prior of beta_hedge_bees (bees)"
+	value ops.Value
+}
+
+// place lowers parameter i, whose coordinates start at offset: its natural
+// value goes to l.natural, its prior with the Jacobian comes back. Parameters
+// that its prior reads must have been placed before.
+func (l *lowering) place(i, offset int) (ops.Value, error) {
+	p := l.m.Parameters[i]
+	n := coordinates(l.m, p)
+	fail := func(err error) (ops.Value, error) { return 0, &priorError{p.Name, err} }
+	if n == 0 { // one level only: nothing can move
+		l.natural[i] = l.b.Const(map[model.Shape]float64{model.Simplex: 1}[p.Shape])
+		return l.b.Const(0), nil
+	}
+	if p.Shape == model.ByPlate {
+		return l.placeByPlate(i, offset)
+	}
+	u := l.b.Parameter(offset, l.vectorPlate(p.Name, n))
+	switch p.Shape {
+	case model.Simplex, model.Cuts:
+		if p.Prior.Family != nil {
+			return fail(fmt.Errorf("%s can only be uniform over the shares", p.Name))
+		}
+		var x placed
+		shares := p.Size
+		if p.Shape == model.Simplex {
+			x = l.simplex(p.Name, u, shares)
+		} else {
+			shares++
+			x = l.cuts(p.Name, u, shares)
+		}
+		l.natural[i] = x.natural
+		uniform, _ := math.Lgamma(float64(shares)) // Dirichlet(1, …, 1) has density (K-1)!
+		return l.b.Add(x.jacobian, l.b.Const(uniform)), nil
+	}
+	if p.Prior.Family == nil {
+		return fail(fmt.Errorf("it has none"))
+	}
+	args := make([]ops.Value, len(p.Prior.Arguments))
+	fixed := true
+	for j, e := range p.Prior.Arguments {
+		x, err := l.express(e)
+		if err != nil {
+			return fail(err)
+		}
+		if x.at != everywhere {
+			return fail(fmt.Errorf("its %s differs by %s", p.Prior.Family.Arguments[j].Name, l.word(x.at)))
+		}
+		_, number := constant(e)
+		fixed = fixed && number
+		args[j] = x.v
+	}
+	x, err := l.transform(p, u, n, args, fixed)
+	if err != nil {
+		return fail(err)
+	}
+	l.natural[i] = x.natural
+	prior := l.b.Density(p.Prior.Family.Natural, x.about, args...)
+	return l.b.Add(prior, x.jacobian), nil
+}
+
+// transform chooses the way from coordinates to natural values by what the
+// prior is about, the shape, and where both the parameter and its prior allow
+// values.
+func (l *lowering) transform(p *model.Parameter, u ops.Value, n int, args []ops.Value, fixed bool) (placed, error) {
+	y, measured := measure(&p.Prior)
+	if p.Shape == model.ZeroSum {
+		if y.middle != 0 {
+			y = yardstick{0, 1}
+		}
+		return l.zeroSum(p.Name, u, p.Size, y.spread), nil
+	}
+	switch p.Prior.On {
+	case model.InverseRoot:
+		return l.inverseRoot(u), nil
+	case model.InverseRootPlus:
+		return l.inverseRootPlus(u), nil
+	}
+	support, from := narrower(p.Support, p.Prior.Family.Support)
+	if from == byParameter && !fixed {
+		// A prior that is cut off has a norming constant; it may only be left
+		// out while it cannot change.
+		return placed{}, fmt.Errorf("%s reaches beyond where %s can lie; choose a distribution that does not, or fixed numbers", p.Prior.Family.Name, p.Name)
+	}
+	switch support {
+	case catalog.Reals:
+		return l.onLine(u, n, y), nil
+	case catalog.Positives, catalog.NonNegatives:
+		middle := 1.0
+		if measured && y.middle > 0 {
+			middle = y.middle
+		}
+		return l.positive(u, middle), nil
+	case catalog.Unit:
+		return l.between(u, n, l.b.Const(0), l.b.Const(1)), nil
+	case catalog.Between:
+		low, high := args[0], args[1]
+		switch p.Support {
+		case catalog.Positives, catalog.NonNegatives:
+			low = l.b.Max(low, l.b.Const(0))
+		case catalog.Unit:
+			low, high = l.b.Max(low, l.b.Const(0)), l.b.Min(high, l.b.Const(1))
+		}
+		return l.between(u, n, low, high), nil
+	}
+	return placed{}, fmt.Errorf("%s is for whole numbers, and %s is none", p.Prior.Family.Name, p.Name)
+}
+
+// Whose support is the narrower.
+type narrowedBy int
+
+const (
+	byNobody narrowedBy = iota
+	byParameter
+)
+
+// narrower is the smaller of where a parameter and its prior allow values.
+func narrower(parameter, prior catalog.Support) (catalog.Support, narrowedBy) {
+	rank := map[catalog.Support]int{catalog.Reals: 1, catalog.NonNegatives: 2, catalog.Positives: 2, catalog.Unit: 3, catalog.Between: 4}
+	if rank[prior] == 0 {
+		return prior, byNobody
+	}
+	if rank[parameter] > rank[prior] {
+		return parameter, byParameter
+	}
+	return prior, byNobody
+}
+
+// placeByPlate lowers the entries of a parameter that varies by a plate:
+// normal around its mean with its spread, either themselves (centred) or by
+// their standard scores.
+func (l *lowering) placeByPlate(i, offset int) (ops.Value, error) {
+	p := l.m.Parameters[i]
+	plate := l.plate(level(p.Plate))
+	n := len(l.m.Plates[p.Plate].Levels)
+	mean, sd := l.b.Const(0), l.b.Const(1)
+	middle, scale := 0.0, 1.0
+	for _, part := range []struct {
+		name string
+		to   *ops.Value
+		size *float64
+	}{{p.Mean, &mean, &middle}, {p.SD, &sd, &scale}} {
+		if part.name == "" {
+			continue
+		}
+		x, err := l.express(&formula.Name{ID: part.name})
+		if err != nil || x.at != everywhere {
+			return 0, &priorError{p.Name, fmt.Errorf("%s is no single parameter", part.name)}
+		}
+		*part.to = x.v
+		if j, ok := l.params[part.name]; ok {
+			if y, ok := measure(&l.m.Parameters[j].Prior); ok && l.m.Parameters[j].Prior.On == model.Itself {
+				*part.size = y.middle
+			}
+		}
+	}
+	u := l.b.Parameter(offset, plate)
+	if !p.Centred {
+		l.natural[i] = l.b.Add(mean, l.b.Mul(sd, u))
+		return l.b.Density(l.normal, u, l.b.Const(0), l.b.Const(1)), nil
+	}
+	if !(scale > 0) {
+		scale = 1
+	}
+	x := l.onLine(u, n, yardstick{middle, scale})
+	l.natural[i] = x.natural
+	return l.b.Add(l.b.Density(l.normal, x.natural, mean, sd), x.jacobian), nil
+}

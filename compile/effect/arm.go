@@ -1,0 +1,211 @@
+package effect
+
+import (
+	"fmt"
+	"slices"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+)
+
+// An arm is one side of a contrast: what happens to the exposure. The zero arm
+// is the natural course: every row keeps its own value.
+type arm struct {
+	set   *float64 // to this value
+	shift float64  // by this amount
+}
+
+// arms gives the two sides of a question: from and to, or the rows' own values
+// against the shifted ones. With only one of From and To, the other side is
+// the natural course.
+func arms(v *model.Variable, q *study.Question) (from, to arm, err error) {
+	if q.From == nil && q.To == nil {
+		if len(v.Levels) > 0 {
+			return arm{}, arm{}, fmt.Errorf("%s has levels; a question about it compares two of them, not a shift", v.ID)
+		}
+		return arm{}, arm{shift: q.Shift}, nil
+	}
+	if from.set, err = setting(v, q.From); err != nil {
+		return arm{}, arm{}, err
+	}
+	to.set, err = setting(v, q.To)
+	return from, to, err
+}
+
+func setting(v *model.Variable, s *study.Setting) (*float64, error) {
+	if s == nil {
+		return nil, nil
+	}
+	if s.Word == "" {
+		return &s.Number, nil
+	}
+	k := slices.Index(v.Levels, s.Word)
+	if k < 0 {
+		return nil, fmt.Errorf("%s has no level %q", v.ID, s.Word)
+	}
+	x := float64(k)
+	return &x, nil
+}
+
+// apply writes the exposure's column under the arm.
+func (a arm) apply(dst, own []float64) {
+	for i, x := range own {
+		if a.set != nil {
+			dst[i] = *a.set
+		} else {
+			dst[i] = x + a.shift
+		}
+	}
+}
+
+// A step changes one variable below the exposure.
+type step struct {
+	variable int
+	law      *law  // simulated …
+	computed *node // … or worked out
+}
+
+// A plan says what changes, in which order, when the exposure is set, up to
+// one outcome. Variables that do not change keep their row values.
+type plan struct {
+	exposure int
+	observed []bool // laws of these variables read the exposure as it was observed (SEMANTICS B2 b)
+	steps    []step // all but the outcome
+	random   int    // steps that are simulated
+	outcome  *law   // nil if the outcome is computed
+	computed *node
+	moves    bool // the outcome changes at all
+}
+
+// A planner knows the laws of a model.
+type planner struct {
+	*resolver
+	laws     []*law  // by variable; nil = given
+	computed []*node // by variable
+}
+
+func newPlanner(m *model.Model) (*planner, error) {
+	p := &planner{resolver: newResolver(m), laws: make([]*law, len(m.Variables)), computed: make([]*node, len(m.Variables))}
+	for _, l := range m.Laws {
+		resolved, err := p.resolveLaw(l)
+		if err != nil {
+			return nil, err
+		}
+		p.laws[l.Variable] = resolved
+	}
+	for i, v := range m.Variables {
+		if v.Computed == nil {
+			continue
+		}
+		n, err := p.expr(v.Computed)
+		if err != nil {
+			return nil, fmt.Errorf("the formula of %s: %w", v.ID, err)
+		}
+		p.computed[i] = n
+	}
+	return p, nil
+}
+
+// plan lists what changes between the exposure and the outcome. District holds
+// the variables whose laws read the observed exposure. With alone, no other
+// law than the outcome's is simulated: variables in between keep their values.
+func (p *planner) plan(exposure, outcome int, district []int, alone bool) (*plan, error) {
+	out := &plan{exposure: exposure, observed: make([]bool, len(p.m.Variables))}
+	for _, v := range district {
+		out.observed[v] = v != exposure
+	}
+	if outcome == exposure {
+		return nil, fmt.Errorf("%s cannot be exposure and outcome at once", p.m.Variables[outcome].ID)
+	}
+	out.outcome, out.computed = p.laws[outcome], p.computed[outcome]
+	if out.outcome == nil && out.computed == nil {
+		return nil, fmt.Errorf("%s has no law in this fit", p.m.Variables[outcome].ID)
+	}
+	changed := map[int]bool{exposure: true}
+	var visit func(v int) bool
+	visit = func(v int) bool {
+		if known, ok := changed[v]; ok {
+			return known
+		}
+		changed[v] = false // a cycle cannot be: laws follow the arrows
+		l, n := p.laws[v], p.computed[v]
+		var reads []int
+		switch {
+		case n != nil:
+			reads = n.reads(nil)
+		case l != nil && (!alone || v == outcome):
+			reads = l.reads
+		}
+		moved := false
+		for _, r := range reads {
+			if r == exposure && out.observed[v] {
+				continue
+			}
+			if visit(r) {
+				moved = true
+			}
+		}
+		changed[v] = moved
+		if !moved || v == outcome {
+			return moved
+		}
+		if n != nil {
+			l = nil
+		} else {
+			out.random++
+		}
+		out.steps = append(out.steps, step{v, l, n})
+		return true
+	}
+	out.moves = visit(outcome)
+	return out, nil
+}
+
+// scaleOf says what is averaged of a variable: the probability of the levels
+// named, or its expectation, or (levels nil, law of levels) each level apart.
+func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
+	v := p.m.Variables[variable]
+	s := &scale{trials: -1}
+	l := p.laws[variable]
+	if l == nil {
+		return s, nil
+	}
+	s.levels = l.levels
+	if l.Family.Support == catalog.UpTo {
+		for i, a := range l.Family.Arguments {
+			if a.Name == "trials" {
+				s.trials = i
+			}
+		}
+	}
+	if len(levels) == 0 {
+		return s, nil
+	}
+	k := l.levels
+	if k == 0 && v.Scale == study.Binary {
+		k = 2
+	}
+	if k == 0 {
+		return nil, fmt.Errorf("%s has no levels to ask for", v.ID)
+	}
+	s.event = make([]bool, k)
+	for _, word := range levels {
+		at := slices.Index(v.Levels, word)
+		if at < 0 || at >= k {
+			return nil, fmt.Errorf("%s has no level %q", v.ID, word)
+		}
+		s.event[at] = true
+	}
+	return s, nil
+}
+
+// upperHalf is the event "the middle level or above" of an ordered variable
+// (SEMANTICS G).
+func upperHalf(k int) []bool {
+	event := make([]bool, k)
+	for i := k / 2; i < k; i++ {
+		event[i] = true
+	}
+	return event
+}
