@@ -15,6 +15,35 @@ func Identifiable(g *graph.Graph, x, y int) bool {
 	return identifiable(g, []int{x}, []int{y})
 }
 
+// IdentifiableGiven reports whether the distribution of y under an intervention
+// on x, among those with the given values of measured variables, follows from
+// the measured variables (Shpitser & Pearl 2006, "Identification of conditional
+// interventional distributions", algorithm IDC).
+func IdentifiableGiven(g *graph.Graph, x, y int, given []int) bool {
+	return identifiableGiven(g, []int{x}, []int{y}, given)
+}
+
+func identifiableGiven(g *graph.Graph, x, y, given []int) bool {
+	can := available(g)
+	for _, z := range given {
+		if !can[z] {
+			return false
+		}
+	}
+	given = tidy(given)
+	for _, z := range given {
+		// Seeing z is as good as setting it if it is unrelated to y once the
+		// arrows into x and out of z are cut.
+		cut := g.Keep(func(from, to int) bool { return from != z && !slices.Contains(x, to) },
+			func(a, b int) bool { return !slices.Contains(x, a) && !slices.Contains(x, b) })
+		rest := minus(given, []int{z})
+		if Separated(cut, []int{z}, y, union(rest, x)) {
+			return identifiableGiven(g, union(x, []int{z}), y, rest)
+		}
+	}
+	return identifiable(g, x, union(y, given))
+}
+
 func identifiable(g *graph.Graph, x, y []int) bool {
 	p := Project(g)
 	for _, v := range y {

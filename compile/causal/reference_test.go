@@ -39,10 +39,9 @@ type reference struct {
 		} `json:"paths_given_conditioned"`
 		Forbidden  []string
 		Adjustment struct {
-			Exists                bool
-			Minimal               [][]string
-			MinimalWithCondition  [][]string `json:"minimal_containing_conditioned"`
-			MinimalBackdoorUnused any        `json:"minimal_backdoor"`
+			Exists               bool
+			Minimal              [][]string
+			MinimalWithCondition [][]string `json:"minimal_containing_conditioned"`
 		}
 		Separators        [][]string `json:"separators_minimal"`
 		Identifiable      bool
@@ -214,6 +213,11 @@ func TestRandomReference(t *testing.T) {
 		if got := identifiable(g, x, y); got != a.Identifiable {
 			t.Errorf("%s: identifiable: got %v, want %v", c.ID, got, a.Identifiable)
 		}
+		if a.IdentifiableGiven != nil {
+			if got := identifiableGiven(g, x, y, held); got != *a.IdentifiableGiven {
+				t.Errorf("%s: identifiable given the conditioned: got %v", c.ID, got)
+			}
+		}
 		optimal, ok := pair.optimal()
 		switch {
 		case ok != (a.OSet != nil):
@@ -255,7 +259,7 @@ func TestRandomReference(t *testing.T) {
 			t.Errorf("%s: a set exists: got %v", c.ID, r.Sets)
 		}
 		if r.Precise >= 0 {
-			if best := spelled(g, r.Sets[r.Precise : r.Precise+1])[0]; !slices.Contains(spelledNames(a.Best), best) {
+			if best := spelled(g, r.Sets[r.Precise:r.Precise+1])[0]; !slices.Contains(spelledNames(a.Best), best) {
 				t.Errorf("%s: most precise: got %v, want one of %v", c.ID, best, a.Best)
 			}
 		} else if len(a.Best) > 0 {
@@ -263,5 +267,121 @@ func TestRandomReference(t *testing.T) {
 		}
 		separators, _ := MinimalSeparators(g, x[0], y[0], nil, 1e4)
 		compareSets(t, c.ID, "separators", g, separators, a.Separators)
+	}
+}
+
+func TestWorkedCases(t *testing.T) {
+	for _, c := range readReference(t, "cases.json") {
+		g := c.graph(t)
+		x, y, held := numbers(g, c.Exposure), numbers(g, c.Outcome), numbers(g, c.Conditioned)
+		pair := compare(g, x, y)
+		switch c.Question.Type {
+		case "dsep":
+			var want struct{ Results []bool }
+			c.answer(t, &want)
+			for i, q := range c.Question.Queries {
+				if got := Separated(g, numbers(g, q[0]), numbers(g, q[1]), numbers(g, q[2])); got != want.Results[i] {
+					t.Errorf("%s: %v: got %v", c.ID, q, got)
+				}
+			}
+		case "paths":
+			var want struct{ Paths []referencePath }
+			c.answer(t, &want)
+			r := Read(g, Query{Exposure: x[0], Outcome: y[0], Held: held})
+			comparePaths(t, c.ID, g, r.Paths, want.Paths)
+		case "adjust":
+			var want struct {
+				Exists      bool
+				Minimal     [][]string
+				Forbidden   []string
+				MinimumSize *int `json:"minimum_size"`
+			}
+			c.answer(t, &want)
+			sets, more := pair.minimal(held, 1e4)
+			if more || (sets != nil) != want.Exists {
+				t.Errorf("%s: sets %v, more %v", c.ID, sets, more)
+			}
+			compareSets(t, c.ID, "minimal sets", g, sets, want.Minimal)
+			if want.MinimumSize != nil && len(sets[0]) != *want.MinimumSize {
+				t.Errorf("%s: smallest set %v, want size %d", c.ID, sets[0], *want.MinimumSize)
+			}
+			compareSets(t, c.ID, "forbidden", g, [][]int{list(pair.forbidden)}, [][]string{want.Forbidden})
+		case "valid":
+			var want struct{ Results []bool }
+			c.answer(t, &want)
+			for i, z := range c.Question.Sets {
+				// The file tries unmeasured nodes too: with them measured.
+				all := *g
+				all.Measured = slices.Repeat([]bool{true}, g.Len())
+				if got := compare(&all, x, y).valid(numbers(g, z)); got != want.Results[i] {
+					t.Errorf("%s: %v valid: got %v", c.ID, z, got)
+				}
+			}
+		case "control":
+			var want struct {
+				Without   bool `json:"valid_without"`
+				With      bool `json:"valid_with"`
+				Precision string
+			}
+			c.answer(t, &want)
+			with := union(held, []int{g.Index(c.Question.Z)})
+			if a, b := pair.valid(held), pair.valid(with); a != want.Without || b != want.With {
+				t.Errorf("%s: valid without %v, with %v", c.ID, a, b)
+			}
+			if want.Precision != "" {
+				better, worse := pair.asPrecise(with, held), pair.asPrecise(held, with)
+				got := ""
+				switch {
+				case better && !worse:
+					got = "can improve, never worsens"
+				case worse && !better:
+					got = "can worsen, never improves"
+				}
+				if got != want.Precision {
+					t.Errorf("%s: precision %q, want %q", c.ID, got, want.Precision)
+				}
+			}
+		case "identify":
+			var want struct{ Identifiable bool }
+			c.answer(t, &want)
+			if got := identifiableGiven(g, x, y, numbers(g, c.Question.Given)); got != want.Identifiable {
+				t.Errorf("%s: identifiable: got %v", c.ID, got)
+			}
+		case "separators":
+			var want struct{ Minimal [][]string }
+			c.answer(t, &want)
+			got, _ := MinimalSeparators(g, x[0], y[0], held, 0)
+			compareSets(t, c.ID, "separators", g, got, want.Minimal)
+		case "oset":
+			var want struct {
+				OSet  *[]string  `json:"o_set"`
+				Valid bool       `json:"o_set_valid"`
+				Best  [][]string `json:"graphically_best_among_minimal"`
+			}
+			c.answer(t, &want)
+			got, ok := pair.optimal()
+			if ok != want.Valid {
+				t.Errorf("%s: O-set %v, valid %v", c.ID, got, ok)
+			} else if ok {
+				compareSets(t, c.ID, "O-set", g, [][]int{got}, [][]string{*want.OSet})
+			}
+			sets, _ := pair.minimal(nil, 100)
+			best := pair.best(sets)
+			switch {
+			case best < 0 && len(want.Best) > 0:
+				t.Errorf("%s: no best set, want %v", c.ID, want.Best)
+			case best >= 0 && !slices.Contains(spelledNames(want.Best), spelled(g, sets[best:best+1])[0]):
+				t.Errorf("%s: best set %v, want %v", c.ID, sets[best], want.Best)
+			}
+		default:
+			t.Errorf("%s: question %q", c.ID, c.Question.Type)
+		}
+	}
+}
+
+func (c *reference) answer(t *testing.T, into any) {
+	t.Helper()
+	if err := json.Unmarshal(c.Answer, into); err != nil {
+		t.Fatalf("%s: %v", c.ID, err)
 	}
 }

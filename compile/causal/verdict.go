@@ -65,6 +65,7 @@ func (r *Reading) verdict(c *comparison) Verdict {
 		return Verdict{
 			Kind:     Readable,
 			Sentence: fmt.Sprintf("%s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", pair, names(g, q.Held)),
+			Way:      r.costly(c),
 		}
 	case len(r.HeldFaults) > 0:
 		return r.overHeld(c)
@@ -83,6 +84,27 @@ func (r *Reading) verdict(c *comparison) Verdict {
 		}
 	}
 	return v
+}
+
+// costly names the held variables that only cost precision: the set is valid
+// without them, and they say something about the exposure but nothing more
+// about the outcome.
+func (r *Reading) costly(c *comparison) string {
+	var idle []int
+	for _, v := range r.Query.Held {
+		rest := minus(r.Query.Held, []int{v})
+		if c.valid(rest) && c.asPrecise(rest, r.Query.Held) && !c.asPrecise(r.Query.Held, rest) {
+			idle = append(idle, v)
+		}
+	}
+	if len(idle) == 0 {
+		return ""
+	}
+	what := "it needs no holding, and leaving it free"
+	if len(idle) > 1 {
+		what = "any one of them needs no holding, and leaving it free"
+	}
+	return fmt.Sprintf("Holding %s costs precision: %s narrows the answer.", names(r.Graph, idle), what)
 }
 
 // proposal is the set to offer: it keeps what is usefully held, and is the most
@@ -173,6 +195,9 @@ func (r *Reading) noEffect(c *comparison) Verdict {
 	x, y := g.Names[q.Exposure], g.Names[q.Outcome]
 	v := Verdict{Kind: NoEffect, Sentence: fmt.Sprintf("No arrows lead from %s to %s: this diagram says that it has no effect.", x, y)}
 	switch {
+	case g.Descendants(q.Outcome)[q.Exposure]:
+		v.Sentence = fmt.Sprintf("No arrows lead from %s to %s, but some lead the other way: this diagram says that it has no effect.", x, y)
+		v.Way = fmt.Sprintf("To ask what %s does to %s, make %s the exposure.", y, x, y)
 	case r.HeldValid && len(q.Held) == 0:
 		v.Way = fmt.Sprintf("It also says that %s and %s are unrelated, which the data can contradict.", x, y)
 	case r.HeldValid:
