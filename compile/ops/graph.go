@@ -2,6 +2,7 @@ package ops
 
 import (
 	"encoding/binary"
+	"fmt"
 	"math"
 	"unsafe"
 
@@ -46,6 +47,15 @@ type graph struct {
 	known   map[key]id
 	indices map[*int32]*index
 	chained map[[2]*index]*index
+	columns map[columnKey][]float64 // columns that passes made, so that the same one is made once
+	fixed   []bool                  // node depends on no parameter
+}
+
+// A columnKey tells made columns apart: how often an index leads to each entry,
+// or ones for a plate.
+type columnKey struct {
+	counts *index
+	ones   Plate
 }
 
 // A key tells nodes apart. Data is known by identity and length, constants by
@@ -70,6 +80,8 @@ func newGraph() *graph {
 		known:   map[key]id{},
 		indices: map[*int32]*index{},
 		chained: map[[2]*index]*index{},
+		columns: map[columnKey][]float64{},
+		fixed:   make([]bool, 1),
 	}
 }
 
@@ -79,6 +91,7 @@ func (g *graph) like() *graph {
 	next.plates = g.plates
 	next.indices = g.indices
 	next.chained = g.chained
+	next.columns = g.columns
 	return next
 }
 
@@ -125,7 +138,12 @@ func (g *graph) add(n node) id {
 	if known, ok := g.known[k]; ok {
 		return known
 	}
+	fixed := n.op != opParameter
+	for _, a := range n.args {
+		fixed = fixed && g.fixed[a]
+	}
 	g.nodes = append(g.nodes, n)
+	g.fixed = append(g.fixed, fixed)
 	g.known[k] = id(len(g.nodes) - 1)
 	return g.known[k]
 }
@@ -149,19 +167,67 @@ func (g *graph) column(p Plate, data []float64) id {
 	return g.put(node{op: opData, plate: p, data: data})
 }
 
+// newPlate adds a plate; graphs that came before keep theirs.
+func (g *graph) newPlate(name string, rows int) Plate {
+	g.plates = append(g.plates[:len(g.plates):len(g.plates)], plate{name, rows})
+	return Plate(len(g.plates) - 1)
+}
+
+func (g *graph) gather(v id, to Plate, ix *index) id {
+	if g.nodes[v].plate == Scalar {
+		return v
+	}
+	return g.put(node{op: opGather, plate: to, args: []id{v}, index: ix})
+}
+
+func (g *graph) sumOver(v id, to Plate, ix *index) id {
+	return g.put(node{op: opSumOver, plate: to, args: []id{v}, index: ix})
+}
+
+func (g *graph) negated(v id) id { return g.make(opMul, g.constant(-1), v) }
+
+// ones is a column of ones.
+func (g *graph) ones(p Plate) id {
+	if p == Scalar {
+		return g.constant(1)
+	}
+	k := columnKey{ones: p}
+	if g.columns[k] == nil {
+		c := make([]float64, g.rows(p))
+		for i := range c {
+			c[i] = 1
+		}
+		g.columns[k] = c
+	}
+	return g.column(p, g.columns[k])
+}
+
+// counts is how often ix leads to each row of the coarse plate p.
+func (g *graph) counts(p Plate, ix *index) id {
+	k := columnKey{counts: ix}
+	if g.columns[k] == nil {
+		c := make([]float64, g.rows(p))
+		for _, i := range ix.to {
+			c[i]++
+		}
+		g.columns[k] = c
+	}
+	return g.column(p, g.columns[k])
+}
+
 // shape applies the shape rule of n's row of the table.
 func (g *graph) shape(n *node) (Plate, error) {
 	row := &table[n.op]
 	if row.arity >= 0 && len(n.args) != row.arity {
-		return 0, errorf("%d arguments, not %d", len(n.args), row.arity)
+		return 0, fmt.Errorf("%d arguments, not %d", len(n.args), row.arity)
 	}
 	return row.shape(g, n)
 }
 
-// rebuild copies what roots need into a new graph, through f, which gets each
-// node with its arguments already renumbered and adds it, or something equal
+// rebuild copies what roots need into a new graph, through f, which gets the old number of each
+// node and the node with its arguments renumbered and adds it, or something equal
 // to it, to the new graph. Dead nodes fall away. It returns the new roots.
-func (g *graph) rebuild(roots []id, f func(next *graph, n node) id) (*graph, []id) {
+func (g *graph) rebuild(roots []id, f func(next *graph, old id, n node) id) (*graph, []id) {
 	next := g.like()
 	moved := make([]id, len(g.nodes))
 	live := g.live(roots)
@@ -171,7 +237,7 @@ func (g *graph) rebuild(roots []id, f func(next *graph, n node) id) (*graph, []i
 		}
 		n := g.nodes[i]
 		n.args = renumbered(n.args, moved)
-		moved[i] = f(next, n)
+		moved[i] = f(next, id(i), n)
 	}
 	return next, renumbered(roots, moved)
 }

@@ -5,15 +5,40 @@ import "errors"
 // A Program gives the log density, its gradient and further outputs. It never
 // changes and may be shared by goroutines; each needs an Evaluator of its own.
 type Program struct {
-	dim     int
-	outputs int
+	dim, outputLen           int
+	gradient, value, outputs *schedule
 }
 
 // Program compiles. logDensity is a scalar; outputs are values of any plates
 // that Evaluator.Outputs gives. A builder can make several programs. The error
 // is the builder's first misuse.
 func (b *Builder) Program(logDensity Value, outputs ...Value) (*Program, error) {
-	return nil, errors.New("ops: not yet")
+	return b.program(nil, logDensity, outputs...)
+}
+
+// program leaves out the passes that keep rejects, for tests.
+func (b *Builder) program(keep func(p *pass) bool, logDensity Value, outputs ...Value) (*Program, error) {
+	b.bad(logDensity)
+	b.bad(outputs...)
+	if b.err == nil && b.On(logDensity) != Scalar {
+		b.fail("Program", "the log density is not a scalar but on plate %q", b.g.plates[b.On(logDensity)].name)
+	}
+	if b.err != nil {
+		return nil, b.err
+	}
+	p := &Program{dim: b.dim}
+	for _, v := range outputs {
+		p.outputLen += b.Rows(b.On(v))
+	}
+	root := []id{id(logDensity)}
+	var errs [3]error
+	p.gradient, errs[0] = compile(b.g, root, b.dim, true, keep)
+	p.value, errs[1] = compile(b.g, root, b.dim, false, keep)
+	p.outputs, errs[2] = compile(b.g, ids(outputs), b.dim, false, keep)
+	if err := errors.Join(errs[:]...); err != nil {
+		return nil, err
+	}
+	return p, nil
 }
 
 // Dim is the length of a position q: the end of the furthest Parameter that
@@ -21,27 +46,13 @@ func (b *Builder) Program(logDensity Value, outputs ...Value) (*Program, error) 
 func (p *Program) Dim() int { return p.dim }
 
 // OutputLen is the length of what Outputs gives: the rows of all outputs.
-func (p *Program) OutputLen() int { return p.outputs }
+func (p *Program) OutputLen() int { return p.outputLen }
 
 // NewEvaluator makes the work space of one goroutine.
-func (p *Program) NewEvaluator() *Evaluator { return nil }
+func (p *Program) NewEvaluator() *Evaluator {
+	return &Evaluator{p: p, gradient: p.gradient.frame()}
+}
 
-// Dump is the program as text: the graph after the passes and its stages.
-func (p *Program) Dump() string { return "" }
-
-// An Evaluator evaluates its program, in one goroutine at a time.
-type Evaluator struct{ p *Program }
-
-// Dim is the length of a position.
-func (e *Evaluator) Dim() int { return e.p.dim }
-
-// LogDensity gives the log density at q and puts its gradient into grad, which
-// has the length of q; with a nil grad it gives the value alone, for less. A
-// NaN comes out as -Inf. The gradient of a value that is not finite means
-// nothing. Nothing is allocated (but the first value without gradient and the
-// first Outputs set up their work space).
-func (e *Evaluator) LogDensity(grad, q []float64) float64 { return 0 }
-
-// Outputs puts the outputs at q into dst, of OutputLen entries, one output
-// after another in the order of Builder.Program.
-func (e *Evaluator) Outputs(dst, q []float64) {}
+// Dump is the program for value and gradient as text: what it reads, then its
+// stages with their instructions.
+func (p *Program) Dump() string { return p.gradient.text() }
