@@ -27,11 +27,12 @@ const layers = `
 canvas            : canvas/draw canvas/scene compile/study compile/graph compile/causal
 !app/fit          : compile/* infer infer/summary
 !app/session      : app/fit compile/* infer
-!app/paint        : app/fit canvas/scene infer/summary
-!app/report       : app/fit app/paint canvas/draw canvas/scene compile/* infer/summary
+!app/words        : app/fit compile/model compile/study infer/summary
+!app/paint        : app/fit app/words canvas/scene infer/summary
+!app/report       : app/fit app/paint app/words canvas/draw canvas/scene compile/*
 !app/batch        : app/fit app/report app/session compile/* infer infer/summary
 !app/bench        : compile/* infer canvas/draw canvas/scene
-app/ui            : app/fit app/paint app/report app/session canvas canvas/* compile/* infer infer/summary assets
+app/ui            : app/fit app/paint app/words app/report app/session canvas canvas/* compile/* infer infer/summary assets
 app               : app/session app/ui assets
 !assets/examples/generate :
 `

@@ -6,10 +6,10 @@ package paint
 import (
 	"fmt"
 	"math"
-	"strconv"
 	"strings"
 
 	"arrowroot/app/fit"
+	"arrowroot/app/words"
 	"arrowroot/canvas/scene"
 	"arrowroot/infer/summary"
 )
@@ -74,15 +74,15 @@ func arrow(a fit.ArrowPaint, kind scene.PaintKind) scene.ArrowPaint {
 		return scene.ArrowPaint{Bin: int(a.Trust.Verdict), Words: a.Trust.String()}
 	}
 	bin, _, unsure := effectBin(a.Summary, a.Unsigned)
-	words := "direct, " + a.Words
+	text := "direct, " + a.Words
 	if a.PerLow != 0 || a.PerHigh != 0 {
-		words += fmt.Sprintf(" (%s %s to %s)", Percent(a.Level), Number(a.PerLow), Number(a.PerHigh))
+		text += fmt.Sprintf(" (%s %s to %s)", words.Percent(a.Level), words.Number(a.PerLow), words.Number(a.PerHigh))
 	}
 	if a.Association {
-		words = "association, " + strings.TrimPrefix(words, "direct, ")
+		text = "association, " + strings.TrimPrefix(text, "direct, ")
 	}
 	return scene.ArrowPaint{
-		Bin: bin, Hatched: unsure, Association: a.Association, Words: words,
+		Bin: bin, Hatched: unsure, Association: a.Association, Words: text,
 		Width: 1.5 + 4*math.Min(1, math.Abs(a.Centre)/0.4),
 	}
 }
@@ -119,31 +119,5 @@ func learnedWords(share float64) string {
 }
 
 func widths(s summary.Summary) string {
-	return fmt.Sprintf("%s plausible widths (%s %s to %s)", Number(s.Centre), Percent(s.Level), Number(s.Low), Number(s.High))
-}
-
-// Percent is a level for people: "90 %".
-func Percent(level float64) string { return Number(100*level) + " %" }
-
-// Number is a number for people: three significant digits, a true minus sign.
-func Number(x float64) string {
-	switch {
-	case math.IsNaN(x):
-		return "–"
-	case math.IsInf(x, 0):
-		return strings.Replace(strconv.FormatFloat(x, 'g', -1, 64), "-", "−", 1)
-	case x == 0:
-		return "0"
-	}
-	digits := 2 - int(math.Floor(math.Log10(math.Abs(x))))
-	var text string
-	switch {
-	case digits > 8 || digits < -5:
-		text = strconv.FormatFloat(x, 'g', 3, 64)
-	case digits <= 0:
-		text = strconv.FormatFloat(x, 'f', 0, 64)
-	default:
-		text = strconv.FormatFloat(x, 'f', digits, 64)
-	}
-	return strings.Replace(text, "-", "−", 1)
+	return fmt.Sprintf("%s plausible widths (%s %s to %s)", words.Number(s.Centre), words.Percent(s.Level), words.Number(s.Low), words.Number(s.High))
 }

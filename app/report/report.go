@@ -1,0 +1,239 @@
+// Package report writes one HTML file in which nothing can disagree: verdict,
+// figure, statement and result all come from the same study and the same fit.
+package report
+
+import (
+	"bytes"
+	_ "embed"
+	"fmt"
+	"html/template"
+	"io"
+	"math"
+
+	"arrowroot/app/fit"
+	"arrowroot/app/paint"
+	"arrowroot/app/words"
+	"arrowroot/canvas/draw"
+	"arrowroot/canvas/scene"
+	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+)
+
+// Input is what a report is about. Result may be nil: a report on the arrows
+// alone.
+type Input struct {
+	Study    *study.Study
+	Rival    string
+	Question *study.Question
+	Graph    *graph.Graph
+	Reading  *causal.Reading
+	Result   *fit.Result
+}
+
+//go:embed page.html
+var page string
+
+// A row of the table of quantities or of paths.
+type row struct{ Cells []string }
+
+type content struct {
+	Title, Rival, Question string
+	Verdict, Way           string
+	Figure                 template.HTML
+	Answer                 []string
+	Plots                  template.HTML
+	Statement              []statementLine
+	Quantities             []row
+	Trust                  string
+	Rows                   string
+	Paths                  []row
+	MorePaths              bool
+	Sets                   []string
+	Forbidden              []string
+	Caution                string
+	Seed                   uint64
+	Fitted                 bool
+}
+
+type statementLine struct{ Class, Text, Reason string }
+
+// WriteHTML writes the whole report.
+func WriteHTML(w io.Writer, in Input) error {
+	t, err := template.New("page").Parse(page)
+	if err != nil {
+		return err
+	}
+	c, err := contentOf(in)
+	if err != nil {
+		return err
+	}
+	return t.Execute(w, c)
+}
+
+func contentOf(in Input) (*content, error) {
+	title := in.Study.Title
+	if title == "" {
+		title = "Untitled study"
+	}
+	c := &content{
+		Title: title, Rival: in.Rival, Question: "Effect of " + words.Question(in.Study, in.Question),
+		Caution: words.Caution,
+	}
+	if r := in.Reading; r != nil {
+		c.Verdict, c.Way = r.Verdict.Sentence, r.Verdict.Way
+		c.MorePaths = r.MorePaths
+		for i := range r.Paths {
+			c.Paths = append(c.Paths, pathRow(in.Graph, &r.Paths[i]))
+		}
+		for _, s := range r.Sets {
+			c.Sets = append(c.Sets, words.List(names(in.Graph, s)))
+		}
+		for _, f := range r.Forbidden {
+			c.Forbidden = append(c.Forbidden, in.Graph.Names[f.Node]+": "+f.Reason)
+		}
+	}
+	figure, err := figureOf(in)
+	if err != nil {
+		return nil, err
+	}
+	c.Figure = figure
+	if r := in.Result; r != nil {
+		c.Fitted, c.Seed = true, r.Seed
+		c.Answer = words.Effect(in.Study, r)
+		c.Trust = r.Trust().String()
+		c.Rows = words.Rows(r.Full.Model.Rows)
+		c.Statement = statementOf(r.Full.Model)
+		for _, q := range r.Full.Quantities {
+			c.Quantities = append(c.Quantities, row{[]string{
+				q.Symbol, words.Number(q.Centre), words.Number(q.Spread), words.Number(q.Low) + " to " + words.Number(q.High), words.Percent(q.Level),
+				ratio(q.RHat), words.Whole(math.Min(q.BulkESS, q.TailESS)), q.Trust.Verdict.String(),
+			}})
+		}
+		if c.Plots, err = plotsOf(r); err != nil {
+			return nil, err
+		}
+	}
+	return c, nil
+}
+
+func ratio(x float64) string {
+	if math.IsNaN(x) {
+		return "–"
+	}
+	return fmt.Sprintf("%.3f", x)
+}
+
+func pathRow(g *graph.Graph, p *causal.Path) row {
+	kind := map[causal.PathKind]string{causal.Causal: "causal", causal.BackDoor: "back-door", causal.NonCausal: "non-causal"}[p.Kind]
+	state := "open"
+	if !p.Open {
+		state = "closed"
+		for _, s := range p.ClosedAt {
+			state += " at " + g.Names[s.Node] + " (" + s.Reason + ")"
+		}
+	}
+	return row{[]string{kind, p.Text(g), state}}
+}
+
+func names(g *graph.Graph, nodes []int) []string {
+	out := make([]string, len(nodes))
+	for i, v := range nodes {
+		out[i] = g.Names[v]
+	}
+	return out
+}
+
+var lineClasses = map[model.LineKind]string{
+	model.Heading: "heading", model.LawLine: "law", model.LinkLine: "law", model.PriorLine: "prior", model.CarriedLine: "note", model.GivenLine: "note",
+}
+
+func statementOf(m *model.Model) []statementLine {
+	var out []statementLine
+	for _, l := range m.Statement().Lines {
+		text := l.Right
+		if l.Left != "" {
+			text = l.Left + " " + l.Sign + " " + l.Right
+		}
+		out = append(out, statementLine{lineClasses[l.Kind], text, l.Reason})
+	}
+	return out
+}
+
+// margin of the figure around what is drawn.
+const margin = 24
+
+// Sheet is the picture of a rival on paper, as large as what is on it.
+func Sheet(in Input) *draw.List {
+	rival := in.Study.Rival(in.Rival)
+	input := scene.Input{
+		Study: in.Study, Rival: rival, Question: in.Question, Reading: in.Reading,
+		LitPath: scene.NoPath, Palette: scene.Light(), Width: 1000, Height: 700, View: scene.View{Zoom: 1},
+	}
+	if r := in.Result; r != nil {
+		input.Paint = paint.Of(r, scene.EffectPaint, false)
+		input.PlateCounts = make(map[string]int)
+		for _, p := range r.Full.Model.Plates {
+			input.PlateCounts[p.Name] = len(p.Levels)
+		}
+	}
+	_, where := scene.Build(input)
+	if b, ok := where.Bounds(); ok {
+		input.View.Pan = draw.Point{X: margin - b.X, Y: margin - b.Y}
+		input.Width, input.Height = b.W+2*margin, b.H+2*margin
+	}
+	list, _ := scene.Build(input)
+	return list
+}
+
+func figureOf(in Input) (template.HTML, error) {
+	if in.Study.Rival(in.Rival) == nil {
+		return "", nil
+	}
+	return svg(Sheet(in))
+}
+
+func plotsOf(r *fit.Result) (template.HTML, error) {
+	if r.Effect == nil {
+		return "", nil
+	}
+	var all template.HTML
+	for _, n := range []struct {
+		name string
+		of   *fit.Number
+	}{{"crude", r.Effect.Crude}, {"held", r.Effect.Adjusted}, {"full model", r.Effect.Full}} {
+		if n.of == nil {
+			continue
+		}
+		none := 0.0
+		if r.Question.As == study.Ratio {
+			none = 1
+		}
+		picture, err := svg(draw.DensityPlot(280, 110, draw.Density{
+			Posterior: draw.KDE(n.of.Draws, 200), Low: n.of.Low, High: n.of.High, Mark: &none,
+		}, PlotStyle(scene.Light())))
+		if err != nil {
+			return "", err
+		}
+		caption := fmt.Sprintf("%s: %s, %s", n.name, words.Value(r.Question, n.of), n.of.Trust.Verdict)
+		if n.of.Association {
+			caption += ", an association"
+		}
+		all += template.HTML("<figure>") + picture + template.HTML("<figcaption>"+template.HTMLEscapeString(caption)+"</figcaption></figure>")
+	}
+	return all, nil
+}
+
+// PlotStyle draws plots in a palette's colours.
+func PlotStyle(p scene.Palette) draw.Style {
+	return draw.Style{Ground: p.Card, Ink: p.Ink, Muted: p.Muted, Hairline: p.Hairline, Accent: p.Effect[4], Soft: p.Effect[3]}
+}
+
+func svg(l *draw.List) (template.HTML, error) {
+	var b bytes.Buffer
+	if err := draw.WriteSVG(&b, l); err != nil {
+		return "", err
+	}
+	return template.HTML(b.String()), nil
+}

@@ -1,0 +1,186 @@
+package words
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"arrowroot/app/fit"
+	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/infer/summary"
+)
+
+// Caution stands wherever a conclusion does.
+const Caution = "A causal conclusion is only as good as the arrows drawn and not drawn. Decisions about health, safety, medicine or policy need qualified statistical and domain review under local rules."
+
+// Question names a contrast: "hedge on bees, 40 → 90 m/ha, these rows".
+func Question(s *study.Study, q *study.Question) string {
+	if q == nil {
+		return "no question yet"
+	}
+	parts := []string{fmt.Sprintf("%s on %s", blank(q.Exposure), blank(q.Outcome))}
+	if c := Change(s, q); c != "" {
+		parts = append(parts, c)
+	}
+	return strings.Join(append(parts, or(q.Over, study.TheseRows)), ", ")
+}
+
+// Change is the two settings compared, with the unit.
+func Change(s *study.Study, q *study.Question) string {
+	unit := ""
+	if v := s.Variable(q.Exposure); v != nil && v.Unit != "" {
+		unit = " " + v.Unit
+	}
+	switch {
+	case q.From != nil && q.To != nil:
+		return setting(q.From) + " → " + setting(q.To) + unit
+	case q.Shift != 0:
+		sign := "+"
+		if q.Shift < 0 {
+			sign = ""
+		}
+		return sign + Given(q.Shift) + unit
+	}
+	return ""
+}
+
+func setting(s *study.Setting) string {
+	if s.Word != "" {
+		return s.Word
+	}
+	return Given(s.Number)
+}
+
+func blank(id string) string { return or(id, "▢") }
+
+func or(s, other string) string {
+	if s == "" {
+		return other
+	}
+	return s
+}
+
+// Rows says how many rows a model used and which variables lost the others.
+func Rows(r model.Rows) string {
+	if r.Used == r.Read {
+		return "all " + Plural(r.Read, "row")
+	}
+	text := fmt.Sprintf("%s of %s", Whole(float64(r.Used)), Plural(r.Read, "row"))
+	var lost []string
+	for _, l := range r.Lost {
+		lost = append(lost, fmt.Sprintf("%s lack %s", Whole(float64(l.Rows)), l.Variable))
+	}
+	if len(lost) > 0 {
+		text += " (" + strings.Join(lost, ", ") + ")"
+	}
+	return text
+}
+
+// Trust is the verdict with what it stands on.
+func Trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string {
+	if len(t.Reasons) > 0 {
+		return title(t.Verdict.String()) + ": " + strings.Join(t.Reasons, "; ")
+	}
+	divergences := "no divergences"
+	if sampling.Divergent > 0 {
+		divergences = Plural(sampling.Divergent, "divergence")
+	}
+	return fmt.Sprintf("%s: R-hat %.2f, ESS %s, %s", title(t.Verdict.String()), s.RHat, Whole(math.Min(s.BulkESS, s.TailESS)), divergences)
+}
+
+func title(s string) string { return strings.ToUpper(s[:1]) + s[1:] }
+
+// Effect says what a result answers to its question, a sentence a line: the
+// headline, the numbers side by side, what they rest on.
+func Effect(s *study.Study, r *fit.Result) []string {
+	e, q := r.Effect, r.Question
+	if e == nil || q == nil {
+		return []string{"Ask a question to see an effect: an exposure, an outcome and two values to compare."}
+	}
+	var lines []string
+	head := e.Headline()
+	switch {
+	case head != nil:
+		lines = append(lines, headline(s, q, head))
+	case e.LawsDisagree:
+		lines = append(lines, fmt.Sprintf("Laws disagree: holding %s gives %s, the full model %s. Neither is the answer before one of the laws on the way from %s to %s is mended.",
+			List(e.Held), Value(q, e.Adjusted), Value(q, e.Full), q.Exposure, q.Outcome))
+	case !e.Identified:
+		lines = append(lines, fmt.Sprintf("%s What the data show is an association (%s), not an effect.", sentence(e.Refusal), Value(q, e.Crude)))
+	default:
+		lines = append(lines, sentence(e.Refusal))
+	}
+	lines = append(lines, beside(q, e))
+	if head != nil && e.Refusal != "" {
+		lines = append(lines, "Full model: "+e.Refusal+".")
+	}
+	if head != nil {
+		lines = append(lines, Trust(head.Trust, head.Summary, r.Full.Sampling)+".")
+	}
+	return lines
+}
+
+func sentence(s string) string {
+	if s == "" {
+		return s
+	}
+	s = title(s)
+	if !strings.HasSuffix(s, ".") {
+		s += "."
+	}
+	return s
+}
+
+func headline(s *study.Study, q *study.Question, n *fit.Number) string {
+	name, unit := q.Outcome, ""
+	if v := s.Variable(q.Outcome); v != nil {
+		name, unit = v.Name(), v.Unit
+	}
+	what := "expected " + name
+	if len(q.OutcomeLevels) > 0 {
+		what = "the probability that " + name + " is " + strings.Join(q.OutcomeLevels, " or ")
+	}
+	act := "Setting " + q.Exposure + " " + Change(s, q)
+	if q.From == nil && q.Shift != 0 {
+		act = "Shifting " + q.Exposure + " by " + Change(s, q)
+	}
+	interval := fmt.Sprintf("(%s %s to %s)", Percent(n.Level), Number(n.Low), Number(n.High))
+	over := ""
+	if n.Words != "" {
+		over = ", " + n.Words
+	}
+	if q.As == study.Ratio {
+		return fmt.Sprintf("%s multiplies %s by %s %s%s.", act, what, Number(n.Centre), interval, over)
+	}
+	if unit != "" {
+		unit = " " + unit
+	}
+	return fmt.Sprintf("%s changes %s by %s%s %s%s.", act, what, Number(n.Centre), unit, interval, over)
+}
+
+// Value is one number with its interval.
+func Value(_ *study.Question, n *fit.Number) string {
+	if n == nil {
+		return "–"
+	}
+	return fmt.Sprintf("%s, %s %s to %s", Number(n.Centre), Percent(n.Level), Number(n.Low), Number(n.High))
+}
+
+func beside(q *study.Question, e *fit.Effect) string {
+	parts := []string{"Crude " + Value(q, e.Crude)}
+	held := "holding " + List(e.Held)
+	if e.HeldProposed {
+		held += " (proposed)"
+	}
+	if !e.HeldValid {
+		held += " (does not close every path)"
+	}
+	parts = append(parts, held+" "+Value(q, e.Adjusted))
+	if e.Full != nil {
+		parts = append(parts, "full model "+Value(q, e.Full))
+	} else {
+		parts = append(parts, "full model: none")
+	}
+	return strings.Join(parts, " · ")
+}
