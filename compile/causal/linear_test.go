@@ -105,9 +105,6 @@ func (m *linear) simulate(laws []Fitted, x, y int, c Case, district []int) float
 	change := map[int]float64{x: 1}
 	for i := range laws {
 		v := laws[i].Node
-		if v == x {
-			continue
-		}
 		on := laws[i].conditions()
 		moved := slices.ContainsFunc(on, func(p int) bool { return change[p] != 0 })
 		if !moved {
@@ -123,10 +120,10 @@ func (m *linear) simulate(laws []Fitted, x, y int, c Case, district []int) float
 	return change[y]
 }
 
-// descend keeps only what the exposure acts on: variables before it keep their values.
+// onlyBelow keeps the laws of what the exposure acts on: earlier variables keep their values.
 func onlyBelow(g *graph.Graph, laws []Fitted, x int) []Fitted {
 	below := g.Descendants(x)
-	return slices.DeleteFunc(slices.Clone(laws), func(f Fitted) bool { return !below[f.Node] })
+	return slices.DeleteFunc(slices.Clone(laws), func(f Fitted) bool { return !below[f.Node] || f.Node == x })
 }
 
 func TestCarriersInLinearModels(t *testing.T) {
