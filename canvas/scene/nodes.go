@@ -1,0 +1,218 @@
+package scene
+
+import (
+	"strings"
+
+	"arrowroot/canvas/draw"
+)
+
+// drawNodes draws every node, those picked last so that nothing covers them.
+func (b *builder) drawNodes() {
+	var later []*body
+	for _, n := range b.bodies {
+		if b.in.Selected.HasNode(n.id) {
+			later = append(later, n)
+			continue
+		}
+		b.drawNode(n)
+	}
+	for _, n := range later {
+		b.drawNode(n)
+	}
+}
+
+func (b *builder) drawNode(n *body) {
+	p := &b.in.Palette
+	if b.in.Width > 0 && !n.rect().Grow(80*b.zoom).Meets(draw.Rect{W: b.in.Width, H: b.in.Height}) {
+		return
+	}
+	fill, paint := b.nodeFill(n)
+	outline := &draw.Shape{Path: draw.RoundRect(n.rect(), n.corner()), Fill: fill, Stroke: p.Ink, Width: 1.5, Crisp: n.square}
+	if n.unmeasured {
+		outline.Stroke, outline.Dash = p.Muted, []float64{5, 4}
+	}
+	b.ring(n)
+	if b.in.Selected.HasNode(n.id) {
+		outline.Stroke = p.Action
+		outline.Width = 2
+	}
+	b.list.Add(outline)
+	name, face := n.name, nameFace(n.variable)
+	if paint != nil && paint.Sign != "" {
+		name += " " + paint.Sign
+	}
+	name = draw.Shorten(name, face, n.text, n.w-n.text)
+	ink := readable(fill, p.Ink, p.Sheet)
+	if n.unmeasured && paint == nil {
+		ink = p.Ink
+	}
+	if paint != nil && paint.Hatched {
+		b.hatch(n, name, face, fill)
+	}
+	b.list.Add(&draw.Text{At: draw.Point{X: n.at.X, Y: n.at.Y + draw.Drop(n.text)}, Text: name, Face: face, Size: n.text, Color: ink, Anchor: draw.Middle})
+	below := n.at.Y + n.h/2
+	below = b.drawRoles(n, below)
+	below = b.drawDots(n, below)
+	b.drawLevel(n, below)
+	b.drawFinding(n)
+}
+
+// nodeFill is the colour of a node's inside; paint is nil where there is none.
+func (b *builder) nodeFill(n *body) (draw.Color, *NodePaint) {
+	p := &b.in.Palette
+	ground := p.Card
+	if n.unmeasured {
+		ground = p.Sheet // "no fill": arrows stop at the outline
+	}
+	if b.in.Paint == nil {
+		return ground, nil
+	}
+	paint, ok := b.in.Paint.Nodes[n.id]
+	if !ok || paint.Plain {
+		return ground, nil
+	}
+	c := p.binColor(b.in.Paint.Kind, paint.Bin)
+	if paint.Hatched {
+		c = ground
+	}
+	if b.in.Paint.Stale {
+		c = mix(ground, c, 0.45)
+	}
+	return c, &paint
+}
+
+// binColor is the colour of a bin of a paint.
+func (p *Palette) binColor(kind PaintKind, bin int) draw.Color {
+	if kind == EffectPaint {
+		return p.Effect[min(max(bin, -2), 2)+2]
+	}
+	return p.Learned[min(max(bin, 0), 3)]
+}
+
+// ring marks the node that is picked or under the pointer.
+func (b *builder) ring(n *body) {
+	p := &b.in.Palette
+	grow := func(d float64) draw.Path { return draw.RoundRect(n.rect().Grow(d), n.corner()+d) }
+	hover := b.in.Hover.Node == n.id && (b.in.Hover.Kind == OnNode || b.in.Hover.Kind == OnEdge)
+	aimed := b.in.Preview.Draw != nil && b.in.Preview.Draw.To == n.id && b.in.Preview.Draw.Refuse == ""
+	switch {
+	case b.in.Selected.HasNode(n.id):
+		b.list.Add(&draw.Shape{Path: grow(4), Fill: draw.Alpha(p.Action, 0.18)})
+	case aimed:
+		b.list.Add(&draw.Shape{Path: grow(4), Stroke: p.Action, Width: 1.5})
+	case hover && b.in.Hover.Kind == OnEdge:
+		b.list.Add(&draw.Shape{Path: grow(4), Stroke: draw.Alpha(p.Action, 0.8), Width: 1.5, Dash: []float64{2, 3}, Round: true})
+	case hover:
+		b.list.Add(&draw.Shape{Path: grow(3), Fill: draw.Alpha(p.Ink, 0.08)})
+	}
+}
+
+// hatch fills a node with diagonal lines and clears the ground of its name.
+func (b *builder) hatch(n *body, name string, face draw.Face, ground draw.Color) {
+	const gap = 5.0
+	var lines draw.Path
+	r := n.rect()
+	for c := -r.H; c < r.W; c += gap {
+		// Along this diagonal, walk from the lower to the upper edge and keep
+		// the part inside the outline.
+		var first, last draw.Point
+		found := false
+		for y := r.H; y >= 0; y -= 0.5 {
+			at := draw.Point{X: r.X + c + (r.H - y), Y: r.Y + y}
+			if n.depth(at) < -1 {
+				if !found {
+					first, found = at, true
+				}
+				last = at
+			}
+		}
+		if found {
+			lines.Move(first)
+			lines.Line(last)
+		}
+	}
+	b.list.Add(&draw.Shape{Path: lines, Stroke: draw.Alpha(b.in.Palette.Muted, 0.75), Width: 1})
+	w := draw.Measure(name, face, n.text) + 8
+	b.list.Add(&draw.Shape{Path: draw.RoundRect(draw.Rect{X: n.at.X - w/2, Y: n.at.Y - n.text*0.75, W: w, H: n.text * 1.5}, 3), Fill: ground})
+}
+
+// drawRoles prints the roles on a dark tab under the lower edge; it returns
+// where the next thing below may begin.
+func (b *builder) drawRoles(n *body, below float64) float64 {
+	if len(n.roles) == 0 {
+		return below + 4*b.zoom
+	}
+	p := &b.in.Palette
+	words := strings.Join(n.roles, " · ")
+	size := min(max(tabSize*b.zoom, 9.5), 14)
+	w := draw.Measure(words, draw.Bold, size) + 1.6*size
+	box := draw.Rect{X: n.at.X - w/2, Y: below - 1, W: w, H: size * 1.4}
+	b.list.Add(
+		&draw.Shape{Path: draw.RoundRect(box, 4), Fill: p.Ink},
+		&draw.Text{At: draw.Point{X: n.at.X, Y: box.Centre().Y + draw.Drop(size)}, Text: words, Face: draw.Bold, Size: size, Color: p.Sheet, Anchor: draw.Middle},
+	)
+	return box.Y + box.H + 3*b.zoom
+}
+
+// drawDots shows the data of a measured variable as a strip of quantile dots.
+func (b *builder) drawDots(n *body, below float64) float64 {
+	if !n.dots {
+		return below
+	}
+	p := &b.in.Palette
+	z := b.zoom
+	st := draw.StackDots(b.in.Dots[n.id], 46*z, 17*z, 2.5*z)
+	tall := 0.0
+	for _, c := range st.Centres {
+		tall = max(tall, -c.Y+st.Radius)
+	}
+	base := below + tall + 2*z
+	left := n.at.X - st.Width/2
+	d := &draw.Discs{Radius: st.Radius, Color: p.Muted}
+	for _, c := range st.Centres {
+		d.Centres = append(d.Centres, draw.Point{X: left + c.X, Y: base + c.Y})
+	}
+	b.list.Add(d, &draw.Shape{
+		Path:   draw.Polyline(draw.Point{X: left - 3*z, Y: base + 0.5}, draw.Point{X: left + st.Width + 3*z, Y: base + 0.5}),
+		Stroke: p.Muted, Width: 1, Crisp: true,
+	})
+	below = base + 2*z
+	if share := b.in.Missing[n.id]; share > 0 {
+		below = b.caption(n, below, percent(share)+" missing")
+	}
+	return below
+}
+
+// drawLevel says what a coarse variable's values belong to, where its plate
+// also holds finer ones.
+func (b *builder) drawLevel(n *body, below float64) {
+	if n.variable == nil || len(n.variable.Plates) == 0 || b.zoom < dotsBelow {
+		return
+	}
+	b.caption(n, below, "one per "+strings.Join(n.variable.Plates, " × "))
+}
+
+// caption prints small words under a node; it returns where the next may go.
+func (b *builder) caption(n *body, below float64, words string) float64 {
+	size := 10 * max(b.zoom, 1)
+	b.list.Add(&draw.Text{At: draw.Point{X: n.at.X, Y: below + size}, Text: words, Size: size, Color: b.in.Palette.Muted, Anchor: draw.Middle})
+	return below + 1.2*size
+}
+
+// drawFinding puts a small mark on a node that has something to say.
+func (b *builder) drawFinding(n *body) {
+	words := b.in.Findings[n.id]
+	if words == "" {
+		return
+	}
+	p := &b.in.Palette
+	r := 6.5 * min(max(b.zoom, 0.8), 1.4)
+	at := draw.Point{X: n.at.X + n.w/2 - r*0.4, Y: n.at.Y - n.h/2 + r*0.2}
+	if n.square {
+		at = at.Add(draw.Point{X: r * 0.4, Y: -r * 0.2})
+	}
+	b.list.Add(
+		&draw.Shape{Path: draw.Circle(at, r), Fill: p.Sheet, Stroke: p.Confounding, Width: 1.4},
+		&draw.Text{At: draw.Point{X: at.X, Y: at.Y + draw.Drop(1.6*r) + 0.3}, Text: "!", Face: draw.Bold, Size: 1.6 * r, Color: p.Confounding, Anchor: draw.Middle},
+	)
+}
