@@ -35,8 +35,9 @@ check:
 	CGO_ENABLED=0 go build ./compile/... ./infer/... ./app/batch
 	go test -race -short -timeout 20m ./compile/... ./infer/... ./canvas/draw/... ./canvas/scene/... ./app/fit/... ./app/session/... ./app/report/... ./app/batch/...
 
+# Ratios measured side by side in one run; absolute times mean nothing here.
 bench:
-	go run ./app/bench
+	go test -run '^$$' -bench 'Ratio|Feel' -benchtime 1x ./compile/ops ./compile/causal ./canvas/...
 
 golden:
 	go test ./canvas/... ./compile/model/... ./app/report/... -update
