@@ -94,9 +94,6 @@ func (r *resolver) priorReads(p *model.Parameter) ([]int, error) {
 // lawReads gives the parameters that a law reads.
 func (r *resolver) lawReads(l *model.Law) ([]int, error) {
 	exprs := slices.Concat(l.Predictors, l.Arguments)
-	if l.Trials != nil {
-		exprs = append(exprs, l.Trials)
-	}
 	reads, err := r.reads(nil, exprs...)
 	if err == nil && l.Cutpoints != "" {
 		reads, err = r.reads(reads, &formula.Name{ID: l.Cutpoints})

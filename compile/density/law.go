@@ -59,9 +59,6 @@ func (l *lowering) arguments(law *model.Law) ([]formula.Expr, *kernel.Density, e
 		if i < len(law.Arguments) && law.Arguments[i] != nil {
 			return law.Arguments[i], nil
 		}
-		if f.Arguments[i].Name == "trials" && law.Trials != nil {
-			return law.Trials, nil
-		}
 		return nil, fmt.Errorf("its %s is missing", f.Arguments[i].Name)
 	}
 	if f.Link == catalog.Softmax || f.Link == catalog.Cumulate {

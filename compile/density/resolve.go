@@ -59,22 +59,17 @@ func (r *resolver) name(id string) (what, int, error) {
 	return isNothing, -1, fmt.Errorf("there is nothing named %s", id)
 }
 
-// by finds the vector that "alpha_bees by farm" means: the by-plate parameter
-// of that name, or the one that varies around it over those plates.
+// by finds the vector that "alpha_bees_farm by farm" means; a variable has its
+// own level and is itself.
 func (r *resolver) by(e *formula.By) (what, int, error) {
-	if i, ok := r.variables[e.Name.ID]; ok {
-		return isVariable, i, nil
+	kind, i, err := r.name(e.Name.ID)
+	if kind != isParameter {
+		return kind, i, err
 	}
-	over := strings.Join(e.Plates, " and ")
-	for i, p := range r.m.Parameters {
-		if p.Shape != model.ByPlate || (p.Name != e.Name.ID && p.Mean != e.Name.ID) {
-			continue
-		}
-		if r.m.Plates[p.Plate].Name == over || (len(e.Plates) == 1 && p.Name == e.Name.ID) {
-			return isParameter, i, nil
-		}
+	if p := r.m.Parameters[i]; p.Shape != model.ByPlate || r.m.Plates[p.Plate].Name != e.Plates[0] {
+		return isNothing, -1, fmt.Errorf("%s does not vary by %s", e.Name.ID, strings.Join(e.Plates, " and "))
 	}
-	return isNothing, -1, fmt.Errorf("%s does not vary by %s", e.Name.ID, over)
+	return kind, i, nil
 }
 
 // codesOf gives the levels of a category or ordered variable as indices into a

@@ -166,19 +166,13 @@ func (p *planner) plan(exposure, outcome int, district []int, alone bool) (*plan
 // named, or its expectation, or (levels nil, law of levels) each level apart.
 func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
 	v := p.m.Variables[variable]
-	s := &scale{trials: -1}
+	s := &scale{}
 	l := p.laws[variable]
 	if l == nil {
 		return s, nil
 	}
 	s.levels = l.levels
-	if l.Family.Support == catalog.UpTo {
-		for i, a := range l.Family.Arguments {
-			if a.Name == "trials" {
-				s.trials = i
-			}
-		}
-	}
+	s.predicted = len(l.Predictors) > 0 && (l.Family.Support == catalog.UpTo || l.Family.Link == catalog.Identity)
 	if len(levels) == 0 {
 		return s, nil
 	}

@@ -108,7 +108,7 @@ func (p *planner) describe(out *ArrowEffect, sim *simulation, from, to *model.Va
 		what = " of the probability of " + to.ID
 	case s.levels > 0:
 		what = fmt.Sprintf(" in P(%s or above)", name(to, s.levels/2))
-	case !out.Ratio && to.Unit != "" && s.trials < 0:
+	case !out.Ratio && to.Unit != "" && law != nil && law.Family.Support != catalog.UpTo:
 		what = " " + to.Unit
 	}
 	if levels > 0 {

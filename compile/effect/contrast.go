@@ -20,7 +20,7 @@ const (
 	fewestDraws   = 1000 // before rows are thinned: enough for an interval with an effective size of 400
 	fewestRows    = 2000
 	firstRounds   = 2    // replicates that show how large the simulation error is
-	mostRounds    = 64   // replicates at most
+	moreWork      = 4    // budgets that further replicates may take
 	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
 	quantileCost  = 4    // of simulating a value, in law evaluations
 )
@@ -143,7 +143,7 @@ type simulation struct {
 // run fills values. Rounds of replicates are added until the simulation error
 // is small beside the posterior sd.
 func (s *simulation) run(ctx context.Context, src rand.Source) error {
-	s.thin()
+	most := s.thin()
 	if s.rows.n == 0 || len(s.picked) == 0 {
 		return fmt.Errorf("there are no rows or no draws to average over")
 	}
@@ -165,19 +165,20 @@ func (s *simulation) run(ctx context.Context, src rand.Source) error {
 		}
 		s.rounds = target
 		spread := s.conclude()
-		if target == 1 || !(s.noise > tolerance*spread) || spread == 0 {
+		if target == 1 || target >= most || !(s.noise > tolerance*spread) || spread == 0 {
 			return nil
 		}
 		ratio := s.noise / (tolerance * spread)
-		target = min(mostRounds, max(target+1, int(math.Ceil(float64(target)*ratio*ratio))))
+		target = min(most, max(target+1, int(math.Ceil(float64(target)*ratio*ratio))))
 		s.clock.of = target * len(s.picked)
 	}
 	return nil
 }
 
 // thin chooses draws and rows so that the work fits the budget, evenly and
-// without chance: draws down to fewestDraws first, then rows.
-func (s *simulation) thin() {
+// without chance: draws down to fewestDraws first, then rows. It gives the
+// number of rounds that can be afforded when two do not suffice.
+func (s *simulation) thin() (most int) {
 	budget := s.opt.Budget
 	if budget <= 0 {
 		budget = defaultBudget
@@ -199,6 +200,8 @@ func (s *simulation) thin() {
 		rows = min(rows, max(fewestRows, int(float64(rows)*budget/cost)))
 	}
 	s.rows = rowsOf(s.m, rows)
+	perRound := perRow / firstRounds * float64(s.rows.n) * float64(len(s.picked))
+	return max(firstRounds, int(moreWork*budget/perRound))
 }
 
 // mean is the average of an arm's parts over the rounds of draw i.

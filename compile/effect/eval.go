@@ -295,7 +295,10 @@ func (w *worker) simulate(dst []float64, l *law, u []float64, mirrored bool) {
 type scale struct {
 	levels int    // K of a law of levels; 0 = a number
 	event  []bool // levels whose probability is asked for; nil = each level apart
-	trials int    // place of the trials argument of a binomial law; -1 = none
+	// predicted: the predicted argument itself is averaged. So a binomial law
+	// gives its probability (SEMANTICS B6), and a Student t its centre, also
+	// where it has no expectation.
+	predicted bool
 }
 
 // parts is how many numbers a scale averages.
@@ -316,7 +319,7 @@ func (w *worker) expected(sum []float64, l *law, s *scale, weights []float64) {
 		switch {
 		case s.levels == 0:
 			mean := l.Family.Mean(args)
-			if s.trials >= 0 {
+			if s.predicted {
 				mean = args[l.Family.Predicted]
 			}
 			if s.event != nil && !s.event[1] { // a binary outcome read as its lower level

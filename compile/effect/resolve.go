@@ -67,7 +67,11 @@ func newResolver(m *model.Model) *resolver {
 	for i, p := range m.Parameters {
 		r.offset = append(r.offset, at)
 		r.params[p.Name] = i
-		at += p.Size
+		if p.Shape == model.ByPlate {
+			at += len(m.Plates[p.Plate].Levels)
+		} else {
+			at += p.Size
+		}
 	}
 	for i, v := range m.Variables {
 		r.variables[v.ID] = i
@@ -109,9 +113,6 @@ func (r *resolver) resolveLaw(l *model.Law) (*law, error) {
 			var e formula.Expr
 			if i < len(l.Arguments) {
 				e = l.Arguments[i]
-			}
-			if e == nil && a.Name == "trials" {
-				e = l.Trials
 			}
 			if e == nil {
 				return fail(fmt.Errorf("its %s is missing", a.Name))
@@ -239,17 +240,11 @@ func (r *resolver) apply(op code, args ...formula.Expr) (*node, error) {
 	return n, nil
 }
 
-// byPlate finds the vector that "alpha_bees by farm" means: the by-plate
-// parameter of that name, or the one that varies around it over those plates.
+// byPlate finds the vector that "alpha_bees_farm by farm" means.
 func (r *resolver) byPlate(e *formula.By) (int, error) {
-	over := strings.Join(e.Plates, " and ")
-	for i, p := range r.m.Parameters {
-		if p.Shape != model.ByPlate || (p.Name != e.Name.ID && p.Mean != e.Name.ID) {
-			continue
-		}
-		if r.m.Plates[p.Plate].Name == over || (len(e.Plates) == 1 && p.Name == e.Name.ID) {
-			return i, nil
-		}
+	p, ok := r.params[e.Name.ID]
+	if !ok || r.m.Parameters[p].Shape != model.ByPlate || r.m.Plates[r.m.Parameters[p].Plate].Name != e.Plates[0] {
+		return 0, fmt.Errorf("%s does not vary by %s", e.Name.ID, strings.Join(e.Plates, " and "))
 	}
-	return 0, fmt.Errorf("%s does not vary by %s", e.Name.ID, over)
+	return p, nil
 }
