@@ -122,7 +122,7 @@ func (b *Builder) slowNode(n *node, memo [][]float64, q []float64) []float64 {
 			for a := range args {
 				args[a] = arg(a+1, i)
 			}
-			lp, _, _ := rowOf[n.kernel](arg(0, i), args)
+			lp, _ := rowOf[n.kernel](arg(0, i), args, make([]float64, len(args)))
 			out[0] += lp
 		}
 	default:
@@ -140,8 +140,9 @@ func (b *Builder) find(n *node) id {
 	panic("not here")
 }
 
-// A row is a log density of one value, with its derivatives.
-type row func(y float64, args []float64) (lp, dy float64, dargs []float64)
+// A row is a log density of one value. It puts its derivatives by the
+// arguments into slopes and returns that by y.
+type row func(y float64, args, slopes []float64) (lp, dy float64)
 
 // rowOf gives the row of each test kernel.
 var rowOf = map[*kernel.Density]row{}
@@ -167,19 +168,19 @@ func testKernel(name string, args int, f row) *kernel.Density {
 			}
 		}
 		sum := 0.0
-		row := scratch[:len(args)]
+		row, slopes := scratch[:len(args)], scratch[len(args):2*len(args)]
 		for i := range n {
 			for j, a := range args {
 				row[j] = a[i&mask(a)]
 			}
-			lp, d, ds := f(y[i&mask(y)], row)
+			lp, d := f(y[i&mask(y)], row, slopes)
 			sum += lp
 			if dy != nil {
 				dy[i&mask(y)] += d
 			}
 			for j, to := range dargs {
 				if to != nil {
-					to[i&mask(args[j])] += ds[j]
+					to[i&mask(args[j])] += slopes[j]
 				}
 			}
 		}
@@ -190,47 +191,54 @@ func testKernel(name string, args int, f row) *kernel.Density {
 }
 
 var (
-	testNormal = testKernel("normal", 2, func(y float64, a []float64) (float64, float64, []float64) {
+	testNormal = testKernel("normal", 2, func(y float64, a, slopes []float64) (float64, float64) {
 		z := (y - a[0]) / a[1]
-		return -z*z/2 - math.Log(a[1]) - math.Log(2*math.Pi)/2, -z / a[1], []float64{z / a[1], (z*z - 1) / a[1]}
+		slopes[0], slopes[1] = z/a[1], (z*z-1)/a[1]
+		return -z*z/2 - math.Log(a[1]) - math.Log(2*math.Pi)/2, -z / a[1]
 	})
 	// A density in no family: it is smooth everywhere and mixes all arguments.
-	testMixed = testKernel("mixed", 3, func(y float64, a []float64) (float64, float64, []float64) {
-		u := a[0] + math.Sin(a[1])*y - a[2]*a[2]/5
-		t := math.Tanh(u)
+	testMixed = testKernel("mixed", 3, func(y float64, a, slopes []float64) (float64, float64) {
+		t := math.Tanh(a[0] + math.Sin(a[1])*y - a[2]*a[2]/5)
 		d := -(1 - t*t)
-		return -t, d * math.Sin(a[1]), []float64{d, d * math.Cos(a[1]) * y, -d * 2 * a[2] / 5}
+		slopes[0], slopes[1], slopes[2] = d, d*math.Cos(a[1])*y, -d*2*a[2]/5
+		return -t, d * math.Sin(a[1])
 	})
-	testTallied = func() *kernel.Density {
-		digamma := func(x float64) float64 { // series after shifting; Abramowitz & Stegun 6.3.18
-			s := 0.0
-			for ; x < 12; x++ {
-				s -= 1 / x
-			}
-			w := 1 / (x * x)
-			return s + math.Log(x) - 0.5/x - w*(1./12-w*(1./120-w*(1./252-w*(1./240-w/132))))
-		}
-		lgamma := func(x float64) float64 { v, _ := math.Lgamma(x); return v }
-		rest := func(y float64, a []float64) (float64, float64, []float64) {
-			m, k := math.Exp(a[0]), a[1]
-			r := (y + k) / (m + k)
-			return y*a[0] + k*math.Log(k) - (y+k)*math.Log(m+k), 0,
-				[]float64{y - m*r, math.Log(k) + 1 - math.Log(m+k) - r}
-		}
-		whole := testKernel("negative binomial log", 2, func(y float64, a []float64) (float64, float64, []float64) {
-			lp, _, ds := rest(y, a)
-			k := a[1]
-			ds[1] += digamma(y+k) - digamma(k)
-			return lp + lgamma(y+k) - lgamma(k), 0, ds
-		})
-		whole.Tally = &kernel.Tally{
-			Arg:  1,
-			Rows: testKernel("negative binomial log, rest", 2, rest),
-			Values: testKernel("negative binomial, by value", 2, func(y float64, a []float64) (float64, float64, []float64) {
-				k, c := a[0], a[1]
-				return c * (lgamma(y+k) - lgamma(k)), 0, []float64{c * (digamma(y+k) - digamma(k)), 0}
-			}),
-		}
-		return whole
-	}()
+	testTallied = makeTallied()
 )
+
+// makeTallied is the negative binomial without lgamma(y+1), split by Tally.
+func makeTallied() *kernel.Density {
+	lgamma := func(x float64) float64 { v, _ := math.Lgamma(x); return v }
+	rest := func(y float64, a, slopes []float64) (float64, float64) {
+		m, k := math.Exp(a[0]), a[1]
+		r := (y + k) / (m + k)
+		slopes[0], slopes[1] = y-m*r, math.Log(k)+1-math.Log(m+k)-r
+		return y*a[0] + k*math.Log(k) - (y+k)*math.Log(m+k), 0
+	}
+	whole := testKernel("negative binomial log", 2, func(y float64, a, slopes []float64) (float64, float64) {
+		lp, _ := rest(y, a, slopes)
+		k := a[1]
+		slopes[1] += digamma(y+k) - digamma(k)
+		return lp + lgamma(y+k) - lgamma(k), 0
+	})
+	whole.Tally = &kernel.Tally{
+		Arg:  1,
+		Rows: testKernel("negative binomial log, rest", 2, rest),
+		Values: testKernel("negative binomial, by value", 2, func(y float64, a, slopes []float64) (float64, float64) {
+			k, c := a[0], a[1]
+			slopes[0], slopes[1] = c*(digamma(y+k)-digamma(k)), 0
+			return c * (lgamma(y+k) - lgamma(k)), 0
+		}),
+	}
+	return whole
+}
+
+// digamma by recurrence and asymptotic series: Abramowitz & Stegun 6.3.5, 6.3.18.
+func digamma(x float64) float64 {
+	sum := 0.0
+	for ; x < 12; x++ {
+		sum -= 1 / x
+	}
+	w := 1 / (x * x)
+	return sum + math.Log(x) - 0.5/x - w*(1./12-w*(1./120-w*(1./252-w*(1./240-w/132))))
+}
