@@ -53,7 +53,7 @@ var families = []*Family{
 		Name: "log-normal", Support: Positives,
 		Arguments: []Argument{
 			{Name: "median", Greek: "mu", Support: Positives, Doc: "half of the values lie below; its log is the mean of the logs"},
-			{Name: "log sd", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "sd of the logs"},
+			{Name: "sd of logs", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "sd of the logs"},
 		},
 		Predicted: 0, Link: Log,
 		Natural: kernel.LogNormal, Linked: kernel.LogNormalLog,

@@ -8,7 +8,7 @@ import "math"
 // (C. Loader, "Fast and accurate computation of binomial probabilities",
 // 2000, is the idea for the binomial; the rest is the same algebra).
 
-// stirlingFrom is where the series below reaches full double accuracy.
+// stirlingFrom is where Stirling's series reaches full double accuracy.
 const stirlingFrom = 10
 
 // stirling returns what Stirling's formula leaves out of log Γ(x):
@@ -18,8 +18,19 @@ func stirling(x float64) float64 {
 		l, _ := LogGamma(x)
 		return l - (x-0.5)*math.Log(x) + x - halfLog2Pi
 	}
-	v := 1 / (x * x)
-	return (1./12 - v*(1./360-v*(1./1260-v*(1./1680-v*(1./1188-v*(691./360360-v*(1./156-v*3617./122400))))))) / x
+	c, _ := stirlingSeries(x)
+	return c
+}
+
+// stirlingAt returns stirling(x) and x (log x - ψ(x)) given log x, for x ≥ 0:
+// where x has underflowed to 0, its log still counts.
+func stirlingAt(x, logx float64) (left, xq float64) {
+	if x < stirlingFrom {
+		l, d := LogGamma(1 + x)
+		return l - (x+0.5)*logx + x - halfLog2Pi, 1 + x*(logx-d)
+	}
+	c, q := stirlingSeries(x)
+	return c, x * q
 }
 
 // logMinusDigamma returns log x - ψ(x), DLMF 5.11.2.
@@ -28,8 +39,8 @@ func logMinusDigamma(x float64) float64 {
 		_, d := LogGamma(x)
 		return math.Log(x) - d
 	}
-	v := 1 / (x * x)
-	return 0.5/x + v*(1./12-v*(1./120-v*(1./252-v*(1./240-v*(1./132-v*(691./32760-v*(1./12-v*3617./8160)))))))
+	_, q := stirlingSeries(x)
+	return q
 }
 
 // LogChoose returns the log of the binomial coefficient, n over y, for whole
@@ -41,13 +52,6 @@ func LogChoose(n, y float64) float64 {
 	}
 	return stirling(n) - stirling(y) - stirling(m) - halfLog2Pi +
 		0.5*math.Log(n/y/m) + y*math.Log(n/y) - m*math.Log1p(-y/n)
-}
-
-// logBeta returns log B(a, b) = log Γ(a) + log Γ(b) - log Γ(a+b).
-func logBeta(a, b float64) float64 {
-	s := a + b
-	return stirling(a) + stirling(b) - stirling(s) + halfLog2Pi +
-		(a-0.5)*math.Log(a/s) + (b-0.5)*math.Log(b/s) - 0.5*math.Log(s)
 }
 
 // logRising returns log Γ(k+y) - log Γ(k) - y log k for whole y ≥ 0, and its

@@ -67,6 +67,9 @@ func poissonLogBlock(n int, y []float64, args [][]float64, _ []float64, dargs []
 			return outside(v)
 		}
 		r := Exp(e)
+		if r > math.MaxFloat64 {
+			return math.Inf(-1)
+		}
 		if aux != nil {
 			sum += v*e - r - aux[i&ia]
 		} else {

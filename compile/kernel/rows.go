@@ -17,15 +17,6 @@ func wanted(dargs [][]float64, i int) []float64 {
 	return dargs[i]
 }
 
-// rows is the number of rows that a set of columns spans.
-func rows(y []float64, args [][]float64) int {
-	n := len(y)
-	for _, a := range args {
-		n = max(n, len(a))
-	}
-	return n
-}
-
 // perRow evaluates f at every row of y, for Prepare.
 func perRow(f func(float64) float64) func([]float64, [][]float64) []float64 {
 	return func(y []float64, _ [][]float64) []float64 {

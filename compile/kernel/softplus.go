@@ -1,9 +1,14 @@
 package kernel
 
 // SoftplusSigmoid returns log(1 + exp(x)) and its derivative 1/(1 + exp(-x))
-// for the price of one exponential.
+// for the price of one exponential, both accurate in both tails.
 func SoftplusSigmoid(x float64) (softplus, sigmoid float64) {
-	return Log1pExp(x), Sigmoid(x)
+	if x > 0 {
+		e := Exp(-x)
+		return x + log1pUnit(e), 1 / (1 + e)
+	}
+	e := Exp(x)
+	return log1pUnit(e), e / (1 + e)
 }
 
 // SoftplusTo stores log(1 + exp(src[i])) in dst[i] and, where slope is not
