@@ -29,32 +29,54 @@ func (r *Reading) faults(c *comparison) []Fault {
 			}
 		}
 	}
-	if len(all) > 0 || r.HeldValid {
-		return all
+	var wrong []int
+	for _, f := range all {
+		wrong = append(wrong, f.Node)
 	}
-	if fixed(g, mark(g.Len(), q.Held))[q.Exposure] {
-		for _, v := range q.Held {
-			if free := minus(q.Held, []int{v}); !fixed(g, mark(g.Len(), free))[q.Exposure] {
-				all = append(all, Fault{Node: v, Reason: fmt.Sprintf("%s is computed from what is held, so nothing is left to compare", g.Names[q.Exposure])})
-			}
+	for _, v := range r.misleading(c, minus(q.Held, wrong)) {
+		f := Fault{Node: v, Reason: "it opens a path that was closed"}
+		if fixed(g, mark(g.Len(), q.Held))[q.Exposure] {
+			f.Reason = fmt.Sprintf("%s is computed from what is held, so nothing is left to compare", g.Names[q.Exposure])
+		} else if p := r.opener(v); p != nil {
+			f.Path = p.Nodes
+			f.Reason = "it opens " + p.Text(g)
 		}
-		return all
-	}
-	// A held variable that opens a path is a fault if leaving it free mends
-	// the set, or if no set that contains all that is held would do.
-	hopeless := !c.exists(q.Held)
-	for _, v := range q.Held {
-		free := minus(q.Held, []int{v})
-		if c.valid(free) || hopeless && (c.exists(free) || r.opener(v) != nil) {
-			f := Fault{Node: v, Reason: "it opens a path that was closed"}
-			if p := r.opener(v); p != nil {
-				f.Path = p.Nodes
-				f.Reason = "it opens " + p.Text(g)
-			}
-			all = append(all, f)
-		}
+		all = append(all, f)
 	}
 	return all
+}
+
+// misleading finds which of the held variables, all of them fit to be held, to
+// leave free: one that alone spoils the set, or else what keeps any valid set
+// from containing the rest.
+func (r *Reading) misleading(c *comparison, held []int) []int {
+	if r.Sets == nil || c.valid(held) {
+		return nil
+	}
+	openersLast := slices.Clone(held)
+	slices.SortStableFunc(openersLast, func(a, b int) int {
+		switch p, q := r.opener(a), r.opener(b); {
+		case p == nil && q != nil:
+			return -1
+		case p != nil && q == nil:
+			return 1
+		}
+		return 0
+	})
+	for _, v := range slices.Backward(openersLast) {
+		if c.valid(minus(held, []int{v})) {
+			return []int{v}
+		}
+	}
+	var keep, free []int
+	for _, v := range openersLast {
+		if with := union(keep, []int{v}); c.exists(with) {
+			keep = with
+		} else {
+			free = append(free, v)
+		}
+	}
+	return tidy(free)
 }
 
 // opener is the first listed path that is open because v is held.

@@ -96,7 +96,11 @@ func Read(g *graph.Graph, q Query) *Reading {
 	if r.Precise < 0 && !r.MoreSets {
 		r.Precise = c.best(r.Sets)
 	}
-	r.Identifiable = Identifiable(g, q.Exposure, q.Outcome)
+	// What an exposure is computed from never varies while it stays put, so the
+	// identification algorithm's positive distribution cannot be had.
+	can := available(g)
+	r.Identifiable = r.Sets != nil && can[q.Exposure] && can[q.Outcome] ||
+		!g.Computed[q.Exposure] && Identifiable(g, q.Exposure, q.Outcome)
 	r.HeldValid = c.valid(q.Held)
 	r.HeldFaults = r.faults(c)
 	if r.Sets == nil {

@@ -3,7 +3,7 @@ package causal
 import "slices"
 
 const (
-	surplus  = 40   // so many times the sets asked for are found before the smallest are kept
+	surplus  = 20   // so many times the sets asked for are found before the smallest are kept
 	attempts = 4000 // subsets tried when computed nodes are about
 )
 
@@ -21,17 +21,18 @@ func (c *comparison) minimal(forced []int, max int) (sets [][]int, more bool) {
 			return nil, false
 		}
 	}
-	m := c.moral(forced)
-	for z := range m.separators {
+	computed := slices.Contains(c.g.Computed, true)
+	for z := range c.moral(forced).separators {
 		if len(sets) == surplus*max {
 			more = true
 			break
 		}
-		if z = union(z, forced); c.valid(z) {
+		z = union(z, forced)
+		if !computed || c.valid(z) { // holding it may leave a computed exposure without variation
 			sets = append(sets, z)
 		}
 	}
-	if slices.Contains(c.g.Computed, true) {
+	if computed {
 		tried, all := c.byTrial(forced, attempts)
 		sets = smallest(append(sets, tried...))
 		more = more || !all
@@ -96,32 +97,33 @@ func smallest(sets [][]int) [][]int {
 	return kept
 }
 
-// An undirected graph with two poles, the last two nodes.
+// An undirected graph with two poles, its last two nodes. Nodes that are not on
+// have been taken away.
 type undirected struct {
-	near [][]bool
-	on   []bool
+	near []bitset
+	on   bitset
 	a, b int
 }
 
 func (c *comparison) moral(forced []int) *undirected {
 	g := c.backDoor
 	n, arcs := g.Len(), len(g.Arcs)
-	u := &undirected{a: n + arcs, b: n + arcs + 1, on: make([]bool, n+arcs+2)}
-	u.near = make([][]bool, n+arcs+2)
+	size := n + arcs + 2
+	u := &undirected{near: make([]bitset, size), on: newBitset(size), a: n + arcs, b: n + arcs + 1}
 	for i := range u.near {
-		u.near[i] = make([]bool, n+arcs+2)
+		u.near[i] = newBitset(size)
 	}
 	family := make([][]int, n) // a node and its parents, the causes behind arcs among them
 	above := g.Ancestors(slices.Concat(c.x, c.y, forced)...)
 	for v := range n {
 		if above[v] {
-			u.on[v] = true
+			u.on.add(v)
 			family[v] = append(slices.Clone(g.Parents[v]), v)
 		}
 	}
 	for i, arc := range g.Arcs {
 		if above[arc[0]] && above[arc[1]] {
-			u.on[n+i] = true
+			u.on.add(n + i)
 			family[arc[0]] = append(family[arc[0]], n+i)
 			family[arc[1]] = append(family[arc[1]], n+i)
 		}
@@ -129,77 +131,56 @@ func (c *comparison) moral(forced []int) *undirected {
 	for _, f := range family {
 		u.clique(f)
 	}
-	u.on[u.a], u.on[u.b] = true, true
+	u.on.add(u.a)
+	u.on.add(u.b)
 	for _, v := range c.x {
-		u.join(u.a, v)
+		u.clique([]int{u.a, v})
 	}
 	for _, v := range c.y {
-		u.join(u.b, v)
+		u.clique([]int{u.b, v})
 	}
 	for _, v := range forced {
-		u.on[v] = false
+		u.on.drop(v)
 	}
 	for v := range n + arcs {
-		if u.on[v] && (v >= n || !c.usable[v]) {
-			u.clique(u.neighbours(v))
-			u.on[v] = false
+		if u.on.has(v) && (v >= n || !c.usable[v]) {
+			u.clique(u.near[v].and(u.on).members())
+			u.on.drop(v)
 		}
 	}
 	return u
 }
 
-func (u *undirected) join(v, w int) {
-	if v != w {
-		u.near[v][w], u.near[w][v] = true, true
-	}
-}
-
 func (u *undirected) clique(nodes []int) {
-	for i, v := range nodes {
-		for _, w := range nodes[:i] {
-			u.join(v, w)
-		}
-	}
-}
-
-func (u *undirected) neighbours(v int) []int {
-	var all []int
-	for w, near := range u.near[v] {
-		if near && u.on[w] {
-			all = append(all, w)
-		}
-	}
-	return all
-}
-
-// component marks what start reaches without entering a closed node.
-func (u *undirected) component(start int, closed []bool) []bool {
-	in := make([]bool, len(u.on))
-	in[start] = true
-	stack := []int{start}
-	for len(stack) > 0 {
-		v := stack[len(stack)-1]
-		stack = stack[:len(stack)-1]
-		for w, near := range u.near[v] {
-			if near && u.on[w] && !closed[w] && !in[w] {
-				in[w] = true
-				stack = append(stack, w)
+	for _, v := range nodes {
+		for _, w := range nodes {
+			if v != w {
+				u.near[v].add(w)
 			}
 		}
+	}
+}
+
+// component is what start reaches without entering the wall.
+func (u *undirected) component(start int, wall bitset) bitset {
+	free := u.on.without(wall)
+	in := newBitset(len(u.near))
+	in.add(start)
+	for fresh := in; !fresh.empty(); {
+		fresh = u.touched(fresh).and(free).without(in)
+		in = in.or(fresh)
 	}
 	return in
 }
 
-// rim marks the nodes outside a set that touch it.
-func (u *undirected) rim(in []bool) []bool {
-	out := make([]bool, len(in))
-	for v := range in {
-		if in[v] {
-			for w, near := range u.near[v] {
-				if near && u.on[w] && !in[w] {
-					out[w] = true
-				}
-			}
+// rim is what touches a set from outside.
+func (u *undirected) rim(in bitset) bitset { return u.touched(in).and(u.on).without(in) }
+
+func (u *undirected) touched(in bitset) bitset {
+	out := newBitset(len(u.near))
+	for _, v := range in.members() {
+		for i, word := range u.near[v] {
+			out[i] |= word
 		}
 	}
 	return out
@@ -208,51 +189,51 @@ func (u *undirected) rim(in []bool) []bool {
 // separators gives every minimal vertex separator of the poles once. It starts
 // from the one nearest to a; each separator is pushed towards b over one of its
 // members at a time, and every minimal separator is met that way (Shen & Liang
-// 1997). One more separator costs at most n searches.
+// 1997). One more separator costs at most n searches. Small ones are pushed
+// first, so that an early stop rather loses large ones.
 func (u *undirected) separators(yield func([]int) bool) {
-	// push is the separator nearest to a among those beyond the set.
-	push := func(side []bool) ([]bool, bool) {
+	// push is the separator nearest to a among those beyond the side.
+	push := func(side bitset) (bitset, bool) {
 		wall := u.rim(side)
-		if wall[u.b] {
+		if wall.has(u.b) {
 			return nil, false
 		}
 		return u.rim(u.component(u.b, wall)), true
 	}
-	side := make([]bool, len(u.on))
-	side[u.a] = true
+	side := newBitset(len(u.near))
+	side.add(u.a)
 	first, ok := push(side)
 	if !ok {
 		return
 	}
-	seen := map[string]bool{key(first): true}
-	for queue := [][]bool{first}; len(queue) > 0; queue = queue[1:] {
-		z := queue[0]
-		if !yield(list(z)) {
+	seen := map[string]bool{first.key(): true}
+	waiting := make([][]bitset, len(u.near)+1) // by size
+	waiting[first.count()] = []bitset{first}
+	for size := 0; size < len(waiting); {
+		if len(waiting[size]) == 0 {
+			size++
+			continue
+		}
+		z := waiting[size][0]
+		waiting[size] = waiting[size][1:]
+		if !yield(z.members()) {
 			return
 		}
 		side := u.component(u.a, z)
-		for v, in := range z {
-			if !in || u.near[v][u.b] {
+		for _, v := range z.members() {
+			if u.near[v].has(u.b) {
 				continue
 			}
-			side[v] = true
-			if next, ok := push(side); ok && !seen[key(next)] {
-				seen[key(next)] = true
-				queue = append(queue, next)
+			side.add(v)
+			if next, ok := push(side); ok && !seen[next.key()] {
+				seen[next.key()] = true
+				n := next.count()
+				waiting[n] = append(waiting[n], next)
+				size = min(size, n)
 			}
-			side[v] = false
+			side.drop(v)
 		}
 	}
-}
-
-func key(in []bool) string {
-	k := make([]byte, (len(in)+7)/8)
-	for v, yes := range in {
-		if yes {
-			k[v/8] |= 1 << (v % 8)
-		}
-	}
-	return string(k)
 }
 
 // exists reports whether some valid set contains forced. What may be held

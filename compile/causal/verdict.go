@@ -78,9 +78,9 @@ func (r *Reading) verdict(c *comparison) Verdict {
 			names(g, q.Held), pair, open, names(g, minus(v.Propose, q.Held)))
 	}
 	if n := len(r.Sets); n > 1 {
-		v.Way = fmt.Sprintf("%d smallest sets would do.", n)
+		v.Way = fmt.Sprintf("%d minimal sets would do.", n)
 		if r.MoreSets {
-			v.Way = fmt.Sprintf("At least %d smallest sets would do.", n)
+			v.Way = fmt.Sprintf("At least %d minimal sets would do.", n)
 		}
 	}
 	return v
@@ -118,8 +118,11 @@ func (r *Reading) proposal(c *comparison, keep []int) []int {
 			return sets[0]
 		}
 	}
-	if r.Precise >= 0 {
+	switch {
+	case r.Precise >= 0:
 		return r.Sets[r.Precise]
+	case r.MoreSets && r.Optimal != nil:
+		return r.Optimal
 	}
 	return r.Sets[0]
 }
@@ -251,7 +254,11 @@ func (r *Reading) whyNoSet() string {
 	for _, a := range r.CulpritArcs {
 		reasons = append(reasons, fmt.Sprintf("%s and %s share an unmeasured cause", g.Names[a[0]], g.Names[a[1]]))
 	}
-	if len(reasons) > 3 {
+	if g.Computed[q.Exposure] && reasons == nil {
+		x := g.Names[q.Exposure]
+		reasons = []string{fmt.Sprintf("%s is computed from %s, so the data never show it apart", x, names(g, g.Parents[q.Exposure]))}
+	}
+	if len(reasons) == 0 || len(reasons) > 3 {
 		return ""
 	}
 	return series(reasons, "and")
