@@ -170,7 +170,7 @@ func TestFrontDoorTable(t *testing.T) {
 		{"pinned carriers", true, causal.PinAndSimulate, 0.8525, 0.0975},
 	} {
 		s := build(c.carried)
-		got, err := Simulate(context.Background(), s.m, c.kind, []string{"smoke", "cancer"}, ask("smoke", "cancer", 0, 1), s.draws(300), source(), Options{})
+		got, err := Simulate(context.Background(), s.m, c.kind, []string{"smoke", "cancer"}, ask("smoke", "cancer", 0, 1), s.draws(300), source(), Options{Budget: 2e6})
 		if err != nil {
 			t.Fatal(err)
 		}
