@@ -1,16 +1,49 @@
 package model
 
 import (
+	"fmt"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/causal"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/graph"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
 
 // Build makes the model of one rival for one question from a table. Problems
-// come in the order of the ledger. The model is nil where it could not be
-// made; a problem that Stops forbids a fit even where a model came along (a
-// study without data still has a statement).
+// come law by law, parents first. The model is nil where it could not be made;
+// a problem that Stops forbids a fit even where a model came along: a study
+// without data (t nil) still has a statement if every range is given.
 func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind Kind) (*Model, []Problem) {
-	return nil, nil
+	b := &builder{
+		study: s, question: q, table: t, kind: kind,
+		scope: make(map[string]meaning), names: make(map[meaning]string),
+		declared: make(map[string]*declaration),
+		columns:  make(map[string]*column),
+		at:       make(map[string]int),
+	}
+	for _, phase := range phases() {
+		phase(b, rival)
+		if b.broken {
+			return nil, b.problems
+		}
+	}
+	return b.model, b.problems
+}
+
+// phases turn a rival into its model, each from what the ones before it left
+// in the builder. A phase sets broken where the next could not go on.
+func phases() []func(b *builder, rival string) {
+	return []func(*builder, string){
+		(*builder).frame,   // the rival, its graph
+		(*builder).choose,  // which laws are fitted, on what
+		(*builder).parse,   // what the user typed
+		(*builder).gather,  // columns, levels, rows
+		(*builder).explain, // predictors, arguments, parameters, priors
+		(*builder).examine, // what the data say against the laws
+		(*builder).finish,  // symbols, centring, what is given
+	}
 }
 
 // Problems lists what is wrong with a rival's laws and data while it is being
@@ -29,3 +62,144 @@ func Stops(problems []Problem) bool {
 	}
 	return false
 }
+
+// A builder holds what the phases hand on.
+type builder struct {
+	study    *study.Study
+	rival    *study.Rival
+	question study.Question
+	table    *table.Table // nil = no data yet
+	kind     Kind
+
+	graph    *graph.Graph
+	drafts   []*draft
+	scope    map[string]meaning      // what the canonical name of a parameter stands for
+	names    map[meaning]string      // and back
+	declared map[string]*declaration // priors that the user gave, by canonical name
+	columns  map[string]*column      // by variable ID, over all rows of the table
+	bare     []*study.Variable       // columns that arguments read, not in the ledger
+	plates   []*plateColumn
+	model    *Model
+	at       map[string]int // variable ID → index in model.Variables
+
+	making   []string // parameters whose priors are being read
+	problems []Problem
+	broken   bool
+}
+
+// A draft is a law on its way.
+type draft struct {
+	variable *study.Variable
+	user     study.Law // what the user said; the zero value if nothing
+	arrows   []*study.Arrow
+	carried  []carrier
+	family   *catalog.Family
+	formula  formula.Expr   // right-hand side as typed, nil = from the arrows
+	given    []formula.Expr // arguments as typed, in the family's order
+	law      *Law
+	terms    int                // k of SEMANTICS C3
+	products int                // of them
+	span     linkRange          // of the child
+	anchor   map[meaning]string // the plate whose entries vary around a parameter itself
+}
+
+// A carrier is a carried term by name.
+type carrier struct {
+	id   string
+	sake []string // the unmeasured causes it stands in for
+}
+
+// frame finds the rival and its graph.
+func (b *builder) frame(rival string) {
+	for _, r := range b.study.Rivals {
+		if r.Name == rival {
+			b.rival = r
+		}
+	}
+	if b.rival == nil {
+		b.stop(Problem{Code: "rival", Message: fmt.Sprintf("There is no rival named %s in this study.", rival)})
+		return
+	}
+	spec, problem := b.sheet()
+	if problem != nil {
+		b.stop(*problem)
+		return
+	}
+	g, err := graph.New(spec)
+	if err != nil {
+		b.stop(Problem{Code: "cycle", Place: "sheet", Message: capital(err.Error()) + "."})
+		return
+	}
+	b.graph = g
+}
+
+// sheet reads the diagram as a graph, nodes in the diagram's order.
+func (b *builder) sheet() (graph.Spec, *Problem) {
+	var spec graph.Spec
+	place := make(map[string]int)
+	d := b.rival.Diagram
+	if d == nil {
+		d = &study.Diagram{}
+		b.rival = &study.Rival{Name: b.rival.Name, Diagram: d}
+	}
+	for _, n := range d.Nodes {
+		v := b.variable(n.Variable)
+		if v == nil {
+			return spec, &Problem{Code: "unknown", Variable: n.Variable, Place: "sheet", Message: fmt.Sprintf("The sheet shows %s, which the ledger does not list.", n.Variable)}
+		}
+		i := len(spec.Names)
+		place[v.ID] = i
+		spec.Names = append(spec.Names, v.ID)
+		if v.Unmeasured {
+			spec.Unmeasured = append(spec.Unmeasured, i)
+		}
+		if v.Computed != "" {
+			spec.Computed = append(spec.Computed, i)
+		}
+	}
+	ends := func(a, b string) ([2]int, bool) {
+		i, ok := place[a]
+		j, also := place[b]
+		return [2]int{i, j}, ok && also
+	}
+	for _, a := range d.Arrows {
+		if e, ok := ends(a.From, a.To); ok {
+			spec.Arrows = append(spec.Arrows, e)
+		}
+	}
+	for _, a := range d.Arcs {
+		if e, ok := ends(a.A, a.B); ok && a.A != a.B {
+			spec.Arcs = append(spec.Arcs, e)
+		}
+	}
+	return spec, nil
+}
+
+// fitted lists the rival's measured laws in fitting order.
+func (b *builder) fitted() []causal.Fitted {
+	x, y := b.graph.Index(b.question.Exposure), b.graph.Index(b.question.Outcome)
+	if x >= 0 && y >= 0 {
+		return causal.CarriersFor(b.graph, x, y)
+	}
+	return causal.Carriers(b.graph, x)
+}
+
+// variable finds a variable of the ledger, or a column that a law's argument
+// reads without being one.
+func (b *builder) variable(id string) *study.Variable {
+	for _, v := range b.variables() {
+		if v.ID == id {
+			return v
+		}
+	}
+	return nil
+}
+
+func (b *builder) variables() []*study.Variable {
+	if len(b.bare) == 0 {
+		return b.study.Variables
+	}
+	return append(append([]*study.Variable(nil), b.study.Variables...), b.bare...)
+}
+
+func (b *builder) onSheet(id string) bool { return b.graph.Index(id) >= 0 }

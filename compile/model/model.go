@@ -25,6 +25,7 @@ type Model struct {
 	Kind       Kind
 	Rival      string
 	Exposure   string // whose fit this is: it orders the carriers
+	Outcome    string // of the question; "" if it has none
 	Rows       Rows
 	Plates     []*Plate
 	Variables  []*Variable // every measured variable that a law reads or explains
@@ -177,11 +178,12 @@ type Prior struct {
 
 // A Problem is something that stops a fit, or that the user should know.
 type Problem struct {
-	Code     string // stable: "formula", "cycle", "column-gone", "text-in-number", …
-	Variable string // ID, "" if none
-	Place    string // "law", "formula", "data", "prior", …
-	Span     formula.Span
-	Message  string // one sentence with the user's names and the reason
+	Code     string       // stable: "formula", "cycle", "column-gone", "text-in-number", …
+	Variable string       // ID, "" if none
+	Place    string       // "law", "formula", "data", "prior", …
+	Text     string       // what was typed, where the problem is in it; "" if none
+	Span     formula.Span // in Text
+	Message  string       // one sentence with the user's names and the reason
 	Repairs  []Repair
 	Stops    bool // no fit until mended
 }

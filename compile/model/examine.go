@@ -1,0 +1,186 @@
+package model
+
+import (
+	"fmt"
+	"math"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/study"
+)
+
+// examine holds the data against the laws (SEMANTICS C7): what a family cannot
+// be, an exposure that never moves, trials that do not fit.
+func (b *builder) examine(string) {
+	if b.table == nil {
+		return
+	}
+	b.constants()
+	for _, d := range b.drafts {
+		b.support(d)
+		if d.law.Trials != nil {
+			b.trials(d)
+		}
+	}
+}
+
+// constants finds an exposure, or a parent whose range was to be read from the
+// data, that is the same in every used row.
+func (b *builder) constants() {
+	m := b.model
+	read := make(map[int]bool)
+	for _, l := range m.Laws {
+		for _, i := range append(append([]int(nil), l.Drawn...), carriedVariables(l)...) {
+			read[i] = true
+		}
+	}
+	for i, v := range m.Variables {
+		low, high := extent(v.Values)
+		if !(low == high) {
+			continue
+		}
+		value := short(low)
+		if len(v.Levels) > 0 && int(low) < len(v.Levels) {
+			value = v.Levels[int(low)]
+		}
+		switch {
+		case v.ID == m.Exposure:
+			b.report(Problem{Code: "constant-exposure", Variable: v.ID, Place: "data", Stops: true,
+				Message: fmt.Sprintf("%s is %s in every used row: with an exposure that never moves, these data say nothing about its effect.", v.ID, value)})
+		case read[i]:
+			b.report(Problem{Code: "constant", Variable: v.ID, Place: "data", Stops: v.Low == v.High,
+				Message: fmt.Sprintf("%s is %s in every used row: these data say nothing about what it does.", v.ID, value)})
+		}
+	}
+}
+
+// support looks for values that the law's family cannot take.
+func (b *builder) support(d *draft) {
+	v, f := b.model.Variables[d.law.Variable], d.family
+	source := b.columns[v.ID]
+	if source == nil || source.values == nil {
+		return
+	}
+	values := source.values
+	first := func(bad func(float64) bool) (row, n int) {
+		row = -1
+		for i, x := range values {
+			if !math.IsNaN(x) && bad(x) {
+				if row < 0 {
+					row = i
+				}
+				n++
+			}
+		}
+		return row, n
+	}
+	report := func(code, message string, repairs ...Repair) {
+		b.report(Problem{Code: code, Variable: v.ID, Place: "data", Stops: true,
+			Message: fmt.Sprintf("%s ~ %s: %s", v.ID, f.Name, message), Repairs: repairs})
+	}
+	whole := func(x float64) bool { return x == math.Trunc(x) }
+	law := func(family string) Repair {
+		return Repair{Label: "Use " + family, Edit: b.changeLaw(v.ID, func(l *study.Law) { l.Family = family })}
+	}
+	rescale := func(s study.Scale) Repair {
+		to := *b.variable(v.ID)
+		to.Scale = s
+		return Repair{Label: fmt.Sprintf("Take %s as %s", v.ID, a(s)), Edit: changeVariable(to)}
+	}
+	switch f.Support {
+	case catalog.Counts, catalog.UpTo:
+		if row, _ := first(func(x float64) bool { return x < 0 }); row >= 0 {
+			report("negative", fmt.Sprintf("row %d is %s, but a %s count cannot be below 0.", row+1, short(values[row]), f.Name), rescale(study.Real))
+		} else if row, _ := first(func(x float64) bool { return !whole(x) }); row >= 0 {
+			report("not-whole", fmt.Sprintf("row %d is %s, but a %s count is whole.", row+1, short(values[row]), f.Name), rescale(study.Positive))
+		}
+	case catalog.ZeroOne:
+		if row, _ := first(func(x float64) bool { return x != 0 && x != 1 }); row >= 0 {
+			report("not-binary", fmt.Sprintf("row %d is %s, but the law knows 0 and 1 only.", row+1, short(values[row])), rescale(study.Real))
+		}
+	case catalog.Positives:
+		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
+			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
+		} else if row, n := first(func(x float64) bool { return x == 0 }); row >= 0 {
+			report("zero", fmt.Sprintf("%s exactly 0 (first in row %d), which %s cannot be.", rows(n), row+1, article(f.Name)), law("normal"))
+		}
+	case catalog.NonNegatives:
+		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
+			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
+		}
+	case catalog.Unit:
+		b.unitMisfits(d, values, first, report, law, rescale)
+	}
+}
+
+// unitMisfits is support for proportions: percent columns are offered ÷100,
+// exact ends another law.
+func (b *builder) unitMisfits(d *draft, values []float64, first func(func(float64) bool) (int, int),
+	report func(string, string, ...Repair), law func(string) Repair, rescale func(study.Scale) Repair) {
+	v := b.variable(d.variable.ID)
+	if row, _ := first(func(x float64) bool { return x < 0 || x > 1 }); row >= 0 {
+		var repairs []Repair
+		if low, high := extent(values); low >= 0 && high <= 100 && v.Divide <= 1 {
+			to := *v
+			to.Divide = 100
+			repairs = append(repairs, Repair{Label: "Divide by 100", Edit: changeVariable(to)})
+		}
+		repairs = append(repairs, rescale(study.Real))
+		report("beyond-unit", fmt.Sprintf("row %d is %s, but a proportion lies between 0 and 1.", row+1, short(values[row])), repairs...)
+		return
+	}
+	zeros, nZeros := first(func(x float64) bool { return x == 0 })
+	ones, nOnes := first(func(x float64) bool { return x == 1 })
+	if zeros < 0 && ones < 0 {
+		return
+	}
+	row, end, n := zeros, "0", nZeros
+	switch {
+	case zeros < 0:
+		row, end, n = ones, "1", nOnes
+	case ones >= 0:
+		row, end, n = min(zeros, ones), "0 or 1", nZeros+nOnes
+	}
+	report("exact-end", fmt.Sprintf("%s exactly %s (first in row %d), which %s cannot be.", rows(n), end, row+1, article(d.family.Name)), law("normal"))
+}
+
+func rows(n int) string {
+	if n == 1 {
+		return "1 row is"
+	}
+	return fmt.Sprintf("%d rows are", n)
+}
+
+// trials checks a binomial's trials against its counts.
+func (b *builder) trials(d *draft) {
+	v := b.model.Variables[d.law.Variable]
+	n := b.evaluateAt(d.law.Trials, d.law.Plate, len(v.Values))
+	for i, k := range v.Values {
+		where := fmt.Sprintf("row %d", b.rowOf(v, i)+1)
+		p := Problem{Code: "trials", Variable: v.ID, Place: "data", Stops: true, Repairs: []Repair{}}
+		switch {
+		case math.IsNaN(n[i]) || n[i] < 0 || n[i] != math.Trunc(n[i]):
+			p.Message = fmt.Sprintf("%s ~ %s: in %s the number of trials (%s) is %s, which is no whole number.", v.ID, d.family.Name, where, formula.Format(d.law.Trials), short(n[i]))
+		case k > n[i]:
+			p.Message = fmt.Sprintf("%s ~ %s: in %s there are %s out of %s trials (%s).", v.ID, d.family.Name, where, short(k), short(n[i]), formula.Format(d.law.Trials))
+		default:
+			continue
+		}
+		p.Repairs = b.trialRepairs(d.variable)
+		b.report(p)
+		return
+	}
+}
+
+// rowOf is the table's row of a variable's i-th value, the first of its level.
+func (b *builder) rowOf(v *Variable, i int) int {
+	if v.Plate < 0 {
+		return b.model.Rows.Index[i]
+	}
+	for j, l := range b.model.Plates[v.Plate].Of {
+		if int(l) == i {
+			return b.model.Rows.Index[j]
+		}
+	}
+	return -1
+}

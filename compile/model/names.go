@@ -1,0 +1,197 @@
+package model
+
+import (
+	"fmt"
+	"strings"
+	"unicode"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/study"
+)
+
+// A role is what a parameter does in a law.
+type role int
+
+const (
+	baseline     role = iota // α_bees
+	baselineBy               // α_farm, around α_bees, or around 0 for a second plate
+	baselineSD               // τ of either
+	slope                    // β_hedge→bees
+	slopeBy                  // by a plate
+	slopeSD                  // τ of it
+	steps                    // of a category or ordered parent
+	product                  // of two parents
+	stepsProduct             // a slope that differs by a category's level
+	argument                 // sigma, k, shape, …
+	cutPoints
+	free   // declared by the user
+	freeBy // by a plate
+	freeSD // τ of it
+)
+
+// A meaning says which parameter of which law a canonical name is.
+type meaning struct {
+	role         role
+	child        string // variable whose law it belongs to; "" if free
+	parent, with string
+	plate        string
+	at           int    // argument of the family, or level of a category child (steps)
+	name         string // free ones
+}
+
+// nameParameters gives every parameter that a law could have its canonical
+// name. Where underscores would make two of them alike (beta_a_b_c), the later
+// one gets a number.
+func (b *builder) nameParameters() {
+	for _, d := range b.drafts {
+		v := d.variable.ID
+		b.name("alpha_"+v, meaning{role: baseline, child: v})
+		b.name("cut_"+v, meaning{role: cutPoints, child: v})
+		for i, a := range d.family.Arguments {
+			if i != d.family.Predicted {
+				b.name(a.Greek+"_"+v, meaning{role: argument, child: v, at: i})
+			}
+		}
+		for _, p := range b.study.Plates {
+			b.name("alpha_"+v+"_"+p.Name, meaning{role: baselineBy, child: v, plate: p.Name})
+			b.name("tau_"+v+"_"+p.Name, meaning{role: baselineSD, child: v, plate: p.Name})
+		}
+		for _, p := range b.parentsOf(d) {
+			b.name("beta_"+p+"_"+v, meaning{role: slope, child: v, parent: p})
+			b.name("step_"+p+"_"+v, meaning{role: steps, child: v, parent: p})
+			for _, l := range b.study.Plates {
+				b.name("beta_"+p+"_"+v+"_"+l.Name, meaning{role: slopeBy, child: v, parent: p, plate: l.Name})
+				b.name("tau_"+p+"_"+v+"_"+l.Name, meaning{role: slopeSD, child: v, parent: p, plate: l.Name})
+			}
+			for _, a := range d.arrows {
+				if a.From != p && hasArrow(d.arrows, p) {
+					b.name("beta_"+p+"_"+a.From+"_"+v, meaning{role: product, child: v, parent: p, with: a.From})
+					b.name("step_"+p+"_"+a.From+"_"+v, meaning{role: stepsProduct, child: v, parent: p, with: a.From})
+				}
+			}
+		}
+	}
+}
+
+// parentsOf lists what a law may have coefficients for: its drawn parents, its
+// carried variables, and the rest of the sheet, so that a formula that uses a
+// variable without an arrow is told of the arrow and not of its coefficient.
+func (b *builder) parentsOf(d *draft) []string {
+	var all []string
+	for _, a := range d.arrows {
+		all = append(all, a.From)
+	}
+	for _, c := range d.carried {
+		if !contains(all, c.id) {
+			all = append(all, c.id)
+		}
+	}
+	for _, n := range b.graph.Names {
+		if n != d.variable.ID && !contains(all, n) {
+			all = append(all, n)
+		}
+	}
+	return all
+}
+
+func (b *builder) name(want string, m meaning) string {
+	if have, ok := b.names[m]; ok {
+		return have
+	}
+	id := want
+	for n := 2; ; n++ {
+		_, taken := b.scope[id]
+		if !taken && b.variable(id) == nil {
+			break
+		}
+		id = fmt.Sprintf("%s_%d", want, n)
+	}
+	b.scope[id], b.names[m] = m, id
+	return id
+}
+
+// Symbols as they are printed.
+func (b *builder) symbol(m meaning) string {
+	switch m.role {
+	case baseline:
+		return "α_" + m.child
+	case baselineBy:
+		return "α_" + m.child + "," + m.plate
+	case baselineSD:
+		return "τ_" + m.child + "," + m.plate
+	case slope:
+		return "β_" + m.parent + "→" + m.child
+	case slopeBy:
+		return "β_" + m.parent + "→" + m.child + "," + m.plate
+	case slopeSD:
+		return "τ_" + m.parent + "→" + m.child + "," + m.plate
+	case steps:
+		return "step_" + m.parent + "→" + m.child
+	case product:
+		return "β_" + m.parent + "·" + m.with + "→" + m.child
+	case stepsProduct:
+		return "step_" + m.parent + "·" + m.with + "→" + m.child
+	case argument:
+		return formula.Symbol(b.draftOf(m.child).family.Arguments[m.at].Greek) + "_" + m.child
+	case cutPoints:
+		return "cut_" + m.child
+	case freeBy, freeSD:
+		stem := formula.Symbol(m.name)
+		if m.role == freeSD {
+			return "τ_" + stem + "," + m.plate
+		}
+		return stem + "_" + m.plate
+	}
+	return formula.Symbol(m.name)
+}
+
+func (b *builder) draftOf(id string) *draft {
+	for _, d := range b.drafts {
+		if d.variable.ID == id {
+			return d
+		}
+	}
+	return nil
+}
+
+// unit says what a coefficient is per, and on which scale: "per m/ha, log
+// scale".
+func (b *builder) unit(d *draft, parents ...string) string {
+	scale := ""
+	switch d.family.Link {
+	case catalog.Log:
+		scale = "log scale"
+	case catalog.Logit, catalog.Softmax, catalog.Cumulate:
+		scale = "log-odds"
+	default:
+		scale = d.variable.Unit
+	}
+	per := ""
+	for _, id := range parents {
+		p := b.variable(id)
+		if p == nil || p.Scale == study.Binary {
+			continue
+		}
+		u := p.Unit
+		if u == "" {
+			u = "unit of " + id
+		}
+		per += " per " + u
+	}
+	per = strings.TrimSpace(per)
+	if per != "" && scale != "" {
+		return per + ", " + scale
+	}
+	return per + scale
+}
+
+// clean makes a word fit to stand in a name.
+func clean(word string) string {
+	return strings.Map(func(r rune) rune {
+		if r == '_' || unicode.IsLetter(r) || unicode.IsDigit(r) {
+			return r
+		}
+		return '_'
+	}, word)
+}

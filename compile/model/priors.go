@@ -1,0 +1,481 @@
+package model
+
+import (
+	"fmt"
+	"math"
+	"strings"
+
+	"arrowroot/compile/catalog"
+	"arrowroot/compile/formula"
+	"arrowroot/compile/study"
+)
+
+// parameter finds or makes the parameter with a meaning, and gives its place
+// in the model. What its prior refers to is made before it.
+func (b *builder) parameter(m meaning) int {
+	id := b.parameterName(m)
+	for i, p := range b.model.Parameters {
+		if p.Name == id {
+			return i
+		}
+	}
+	p := &Parameter{Name: id, Symbol: b.symbol(m), Shape: Scalar, Size: 1, Plate: -1, Of: -1}
+	d := b.draftOf(m.child)
+	if d != nil {
+		p.Of = d.law.Variable
+		b.defaultPrior(d, m, p)
+	} else {
+		b.freePrior(m, p)
+	}
+	if own := b.declaredFor(m, p); own != nil {
+		own.used = true
+		b.userPrior(p, own)
+	}
+	b.model.Parameters = append(b.model.Parameters, p)
+	return len(b.model.Parameters) - 1
+}
+
+// parameterName is the canonical name; of free ones and of the steps of a
+// category child it is made here.
+func (b *builder) parameterName(m meaning) string {
+	if id, ok := b.names[m]; ok {
+		return id
+	}
+	switch m.role {
+	case freeBy:
+		return b.name(m.name+"_"+m.plate, m)
+	case freeSD:
+		return b.name("tau_"+m.name+"_"+m.plate, m)
+	case steps, stepsProduct: // of a category child, one for each of its levels
+		d := b.draftOf(m.child)
+		level := b.model.Variables[d.law.Variable].Levels[m.at-1]
+		return b.name("step_"+m.parent+"_"+m.child+"_"+clean(level), m)
+	}
+	return m.name
+}
+
+// declaredFor finds the prior that the user gave. What varies by a plate is
+// written "alpha_bees by farm".
+func (b *builder) declaredFor(m meaning, p *Parameter) *declaration {
+	if p.Shape != ByPlate {
+		return b.declared[p.Name]
+	}
+	stem := m.name
+	if m.role != freeBy {
+		stem = b.stem(m)
+	}
+	return b.declared[stem+" by "+m.plate]
+}
+
+// defaultPrior gives a law's own parameter its shape and its prior by
+// SEMANTICS C.
+func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
+	v := b.model.Variables[d.law.Variable]
+	w := d.span.width()
+	root := math.Sqrt(float64(max(d.terms, 1)))
+	levels := d.family.Link == catalog.Softmax
+	vector := func(entries []string) {
+		p.Shape, p.Size, p.Entries = ZeroSum, len(entries), entries
+	}
+	switch m.role {
+	case baseline: // C3, C6
+		sd := round(w / 3.92)
+		p.Unit = b.unit(d)
+		p.Why = middleOf(d.span.words)
+		mean := 0.0
+		if levels {
+			vector(v.Levels)
+		} else {
+			shift, words := b.medianOffset(d)
+			mean = roundTo(d.span.middle()-shift, w/3.92)
+			p.Why += words
+		}
+		p.Prior = b.normal(mean, sd)
+		p.Prior.FromData = d.span.fromData
+	case slope: // C3
+		parent := b.model.Variables[b.at[m.parent]]
+		p.Unit = b.unit(d, m.parent)
+		if levels {
+			vector(v.Levels)
+		}
+		p.Prior = b.normal(0, round(w/(1.96*root*b.rangeOf(parent))))
+		p.Prior.FromData = d.span.fromData || !parent.RangeGiven
+		p.Why = d.reason() + seenRange(parent)
+	case steps: // C4
+		parent := b.model.Variables[b.at[m.parent]]
+		p.Unit = b.unit(d)
+		vector(parent.Levels)
+		p.Prior = b.normal(0, round(w/(1.96*root)))
+		p.Prior.FromData = d.span.fromData
+		p.Why = d.reason() + "; of the difference of any two levels"
+	case product, stepsProduct:
+		// The product of two centred parents of ranges R and S is itself a
+		// parent, of range R S / 2; a category's steps multiply the other
+		// parent as it stands.
+		first, second := b.model.Variables[b.at[m.parent]], b.model.Variables[b.at[m.with]]
+		p.Prior.FromData = d.span.fromData || !second.RangeGiven
+		reach := b.rangeOf(second)
+		p.Unit = b.unit(d, m.with)
+		if m.role == stepsProduct {
+			vector(first.Levels)
+		} else {
+			p.Unit = b.unit(d, m.parent, m.with)
+			reach *= b.rangeOf(first) / 2
+			p.Prior.FromData = p.Prior.FromData || !first.RangeGiven
+			if levels {
+				vector(v.Levels)
+			}
+		}
+		fromData := p.Prior.FromData
+		p.Prior = b.normal(0, round(w/(1.96*root*reach)))
+		p.Prior.FromData = fromData
+		p.Why = d.reason() + "; the product taken as a parent"
+	case baselineBy, slopeBy:
+		p.Shape = ByPlate
+		p.Plate, p.Entries = b.levelsOf(m.plate)
+		p.Size = len(p.Entries)
+		mean, sd := meaning{role: baseline, child: m.child}, meaning{role: baselineSD, child: m.child, plate: m.plate}
+		p.Unit = b.unit(d)
+		if m.role == slopeBy {
+			mean = meaning{role: slope, child: m.child, parent: m.parent}
+			sd = meaning{role: slopeSD, child: m.child, parent: m.parent, plate: m.plate}
+			p.Unit = b.unit(d, m.parent)
+		}
+		if b.anchors(mean, m, d) {
+			p.Mean = b.model.Parameters[b.parameter(mean)].Name
+		}
+		p.SD = b.model.Parameters[b.parameter(sd)].Name
+	case baselineSD: // C5
+		p.Unit, p.Support = b.unit(d), catalog.Positives
+		p.Prior = b.halfNormal(round(w / 4))
+		p.Prior.FromData = d.span.fromData
+		p.Why = "a quarter of the width; " + d.span.words
+	case slopeSD: // C5
+		parent := b.model.Variables[b.at[m.parent]]
+		p.Unit, p.Support = b.unit(d, m.parent), catalog.Positives
+		p.Prior = b.halfNormal(round(w / (1.96 * root * b.rangeOf(parent)) / 2))
+		p.Prior.FromData = d.span.fromData || !parent.RangeGiven
+		p.Why = "half the default sd of " + b.symbol(meaning{role: slope, child: m.child, parent: m.parent})
+	case cutPoints: // C4
+		p.Shape, p.Size = Cuts, max(len(v.Levels)-1, 0)
+		for k := 1; k < len(v.Levels); k++ {
+			p.Entries = append(p.Entries, v.Levels[k-1]+" | "+v.Levels[k])
+		}
+		p.Why = "any shares of the levels equally plausible, parents at mid-range"
+	case argument: // C5
+		p.Support = catalog.Positives
+		b.argumentPrior(d, d.family.Arguments[m.at].Greek, p)
+	}
+}
+
+// argumentPrior is the default of an argument that nobody gave, by the stem of
+// its name in the catalogue.
+func (b *builder) argumentPrior(d *draft, stem string, p *Parameter) {
+	switch stem {
+	case "k":
+		p.Prior = b.halfNormal(1)
+		p.Prior.On = InverseRoot
+		p.Why = "at 0 the counts vary as chance alone would make them (Poisson)"
+	case "shape":
+		p.Prior = b.halfNormal(1)
+		p.Prior.On = InverseRoot
+		p.Why = "1/√shape is the spread relative to the mean"
+	case "kappa":
+		p.Prior = b.prior("uniform", 0, 1)
+		p.Prior.On = InverseRootPlus
+		p.Why = "the spread relative to the largest that a proportion can have"
+	case "nu":
+		p.Prior = b.prior("gamma", 20, 2) // shape 2, rate 0.1
+		p.Why = "from heavy tails to nearly normal ones"
+	default: // sigma
+		p.Unit = b.unit(d)
+		p.Prior = b.halfNormal(round(d.span.width() / 4))
+		p.Prior.FromData = d.span.fromData
+		p.Why = "a quarter of the width; " + d.span.words
+	}
+}
+
+// anchors reports whether the entries of a plate vary around the parameter
+// itself. Only those of the first plate do; the mean would count twice
+// otherwise.
+func (b *builder) anchors(mean, own meaning, d *draft) bool {
+	if d.anchor == nil {
+		d.anchor = make(map[meaning]string)
+	}
+	if _, taken := d.anchor[mean]; !taken {
+		d.anchor[mean] = own.plate
+	}
+	return d.anchor[mean] == own.plate && !(mean.role == baseline && d.family.Link == catalog.Cumulate)
+}
+
+// reason is why a slope's default sd is what it is: "4 parents; range of bees
+// 0–120 read as ½–120 on the log scale".
+func (d *draft) reason() string {
+	carried := 0
+	for _, c := range d.carried {
+		if !hasArrow(d.arrows, c.id) {
+			carried++
+		}
+	}
+	parts := []string{}
+	if n := d.terms - carried - d.products; n > 0 || d.terms == 0 {
+		parts = append(parts, count(n, "parent"))
+	}
+	if d.products > 0 {
+		parts = append(parts, count(d.products, "product"))
+	}
+	if carried > 0 {
+		parts = append(parts, count(carried, "carried term"))
+	}
+	return list(parts) + "; " + d.span.words
+}
+
+func middleOf(words string) string {
+	if strings.HasPrefix(words, "probabilities") {
+		return words
+	}
+	return "middle of the " + words
+}
+
+// seenRange says that a parent's range was not given.
+func seenRange(v *Variable) string {
+	if v.RangeGiven {
+		return ""
+	}
+	return fmt.Sprintf("; range of %s %s–%s seen in the data", v.ID, short(v.Low), short(v.High))
+}
+
+// rangeOf is the width of a parent's plausible range. A parent without one
+// stops the fit elsewhere; 1 keeps the numbers finite until then.
+func (b *builder) rangeOf(v *Variable) float64 {
+	if r := v.High - v.Low; r > 0 {
+		return r
+	}
+	return 1
+}
+
+// medianOffset is by how much offsets raise the predictor at their medians: a
+// range is per median offset (SEMANTICS C6).
+func (b *builder) medianOffset(d *draft) (shift float64, words string) {
+	typed, _ := typedParts(d.user.Formula, d.variable.ID)
+	var offsets []string
+	for _, a := range d.arrows {
+		if a.Form == "offset" && d.formula == nil || contains(typed, a.From) {
+			offsets = append(offsets, a.From)
+		}
+	}
+	for _, id := range offsets {
+		v := b.model.Variables[b.at[id]]
+		at := median(v.Values)
+		if v.Values == nil {
+			at = (v.Low + v.High) / 2
+		}
+		if at > 0 {
+			shift += math.Log(at)
+			words += fmt.Sprintf(", at the median of %s (%s)", id, short(at))
+		}
+	}
+	return shift, words
+}
+
+func (b *builder) levelsOf(plate string) (int, []string) {
+	i := b.plateAt(plate)
+	if i < 0 || b.plates[i].index < 0 {
+		return -1, nil
+	}
+	p := b.plates[i].index
+	return p, b.model.Plates[p].Levels
+}
+
+// freePrior shapes a parameter that the user declared. A vector is read by a
+// category's levels; what varies by a plate does so around the declared
+// parameter, with a spread of its own.
+func (b *builder) freePrior(m meaning, p *Parameter) {
+	owner := b.declared[m.name]
+	if m.plate != "" {
+		if own := b.declared[m.name+" by "+m.plate]; own != nil {
+			owner = own
+		}
+	}
+	d := (*draft)(nil)
+	if owner != nil {
+		d = b.draftOf(owner.owner)
+	}
+	if d != nil {
+		p.Of = d.law.Variable
+	}
+	switch m.role {
+	case free:
+		if v := b.variable(m.parent); v != nil {
+			levels := b.model.Variables[b.at[m.parent]].Levels
+			p.Shape, p.Size, p.Entries = ZeroSum, len(levels), levels
+		}
+	case freeBy:
+		p.Shape = ByPlate
+		p.Plate, p.Entries = b.levelsOf(m.plate)
+		p.Size = len(p.Entries)
+		if b.declared[m.name+" by "+m.plate] == nil {
+			p.Mean = b.model.Parameters[b.parameter(meaning{role: free, name: m.name})].Name
+			p.SD = b.model.Parameters[b.parameter(meaning{role: freeSD, name: m.name, plate: m.plate})].Name
+		}
+	case freeSD:
+		p.Support = catalog.Positives
+		if d != nil {
+			p.Prior = b.halfNormal(round(d.span.width() / 4))
+			p.Prior.FromData = d.span.fromData
+			p.Why = "a quarter of the width; " + d.span.words
+		} else {
+			p.Prior = b.halfNormal(1)
+		}
+	}
+}
+
+// userPrior puts what the user typed in the place of the default.
+func (b *builder) userPrior(p *Parameter, own *declaration) {
+	at := Problem{Code: "prior", Variable: own.owner, Place: "prior", Text: own.text, Span: own.phrase.Span}
+	fault := func(format string, args ...any) {
+		at.Message = fmt.Sprintf(format, args...)
+		at.Repairs = []Repair{{Label: "Go back to the default", Edit: b.dropPrior(own, p.Name)}}
+		b.stop(at)
+	}
+	f := catalog.FamilyByName(own.phrase.Family)
+	if f == nil {
+		var names []string
+		for _, g := range catalog.Families() {
+			names = append(names, g.Name)
+		}
+		if near := nearest(own.phrase.Family, names); near != "" {
+			fault("there is no distribution *%s*; did you mean *%s*?", own.phrase.Family, near)
+		} else {
+			fault("there is no distribution *%s*", own.phrase.Family)
+		}
+		return
+	}
+	args, ok := b.phraseArguments(own.phrase, f, fault)
+	if !ok {
+		return
+	}
+	fixed := true
+	for _, e := range args {
+		fixed = fixed && len(formula.Names(e)) == 0
+		for _, n := range formula.Names(e) {
+			switch {
+			case b.variable(n) != nil:
+				fault("the prior of %s cannot depend on the variable *%s*", p.Name, n)
+				return
+			case n == p.Name:
+				fault("the prior of %s refers to itself", p.Name)
+				return
+			case b.declared[n] == nil && b.scope[n] == (meaning{}):
+				fault("*%s* in the prior of %s is no parameter; give it a prior of its own", n, p.Name)
+				return
+			}
+		}
+	}
+	switch {
+	case f.Discrete:
+		fault("%s is for whole numbers, and %s is none", f.Name, p.Name)
+		return
+	case p.Shape == Cuts:
+		fault("the cut points of an ordered law have equally plausible shares in this version; another prior cannot be given")
+		return
+	case p.Shape == ZeroSum:
+		if x, ok := args[0].(*formula.Number); f.Name != "normal" || !ok || x.Value != 0 || !fixed {
+			fault("%s sums to zero: its prior is of the difference of two entries, normal with mean 0 and an sd", p.Name)
+			return
+		}
+	case p.Shape == ByPlate:
+		mean, isName := args[0].(*formula.Name)
+		zero, isNumber := args[0].(*formula.Number)
+		sd, spread := args[len(args)-1].(*formula.Name)
+		if f.Name != "normal" || !spread || !isName && !(isNumber && zero.Value == 0) {
+			fault("what varies by a plate is normal around a parameter or 0, with a parameter as its sd")
+			return
+		}
+		b.use(nil, sd.ID)
+		p.SD, p.Mean = sd.ID, ""
+		if isName {
+			b.use(nil, mean.ID)
+			p.Mean = mean.ID
+		}
+		return
+	case p.Support == catalog.Positives && f.Support == catalog.Reals && !fixed:
+		fault("%s must be positive, and %s reaches below 0; half-normal does not", p.Name, f.Name)
+		return
+	}
+	for _, e := range args {
+		for _, n := range formula.Names(e) {
+			if b.inProgress(n) {
+				fault("the priors of %s and %s refer to each other", p.Name, n)
+				return
+			}
+			b.making = append(b.making, p.Name)
+			b.use(nil, n)
+			b.making = b.making[:len(b.making)-1]
+		}
+	}
+	p.Prior = Prior{Family: f, Arguments: args, FromUser: true}
+	p.Why = ""
+}
+
+func (b *builder) inProgress(id string) bool { return contains(b.making, id) }
+
+// phraseArguments puts a phrase's arguments into the family's order.
+func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fault func(string, ...any)) ([]formula.Expr, bool) {
+	args := make([]formula.Expr, len(f.Arguments))
+	for _, a := range phrase.Arguments {
+		i := argumentAt(f, a.Name)
+		if i < 0 {
+			fault("%s has no argument *%s*; it has %s", article(f.Name), a.Name, list(argumentNames(f)))
+			return nil, false
+		}
+		if x, ok := a.Value.(*formula.Number); ok && f.Arguments[i].Support == catalog.Positives && x.Value <= 0 {
+			fault("the %s of %s must be positive", f.Arguments[i].Name, article(f.Name))
+			return nil, false
+		}
+		args[i] = a.Value
+	}
+	for i, e := range args {
+		if e == nil {
+			fault("%s needs its %s", article(f.Name), f.Arguments[i].Name)
+			return nil, false
+		}
+	}
+	return args, true
+}
+
+func (b *builder) dropPrior(own *declaration, id string) study.Edit {
+	for _, p := range b.userLaw(own.owner).Priors {
+		if canonicalParameter(p.Parameter) == id {
+			return b.changeLaw(own.owner, func(l *study.Law) {
+				var kept []study.Prior
+				for _, p := range l.Priors {
+					if canonicalParameter(p.Parameter) != id {
+						kept = append(kept, p)
+					}
+				}
+				l.Priors = kept
+			})
+		}
+	}
+	return b.changePrior(own.owner, id, "")
+}
+
+// unusedPrior says that a prior is for nothing.
+func (b *builder) unusedPrior(id string, own *declaration) {
+	b.report(Problem{Code: "unused-prior", Variable: own.owner, Place: "prior", Text: own.text,
+		Message: fmt.Sprintf("the prior of *%s* is not used: no law has this parameter", id),
+		Repairs: []Repair{{Label: "Drop it", Edit: b.dropPrior(own, id)}}})
+}
+
+func (b *builder) prior(family string, args ...float64) Prior {
+	p := Prior{Family: catalog.FamilyByName(family)}
+	for _, a := range args {
+		p.Arguments = append(p.Arguments, number(a))
+	}
+	return p
+}
+
+func (b *builder) normal(mean, sd float64) Prior { return b.prior("normal", mean, sd) }
+
+func (b *builder) halfNormal(scale float64) Prior { return b.prior("half-normal", scale) }

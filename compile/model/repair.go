@@ -1,0 +1,57 @@
+package model
+
+import (
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+)
+
+// Edits that repairs are made of.
+
+func changeVariable(to study.Variable) study.Edit {
+	return study.ChangeVariable{ID: to.ID, To: to}
+}
+
+func bindTo(v *study.Variable, column string) study.Edit {
+	return study.Bind{Variable: v.ID, Data: v.Data, Column: column}
+}
+
+func addArrow(rival, from, to string) study.Edit {
+	return study.AddArrow{Rival: rival, Arrow: study.Arrow{From: from, To: to}}
+}
+
+func removeArrow(rival, from, to string) study.Edit {
+	return study.RemoveArrow{Rival: rival, From: from, To: to}
+}
+
+// changeLaw edits a copy of what the user said of a law.
+func (b *builder) changeLaw(id string, change func(*study.Law)) study.Edit {
+	l := b.userLaw(id)
+	l.Arguments = append([]study.Argument(nil), l.Arguments...)
+	l.Priors = append([]study.Prior(nil), l.Priors...)
+	l.VariesBy = append([]string(nil), l.VariesBy...)
+	change(&l)
+	return study.ChangeLaw{Rival: b.rival.Name, Variable: id, Law: &l}
+}
+
+// changeArrow edits a copy of an arrow.
+func (b *builder) changeArrow(a *study.Arrow, change func(*study.Arrow)) study.Edit {
+	to := *a
+	change(&to)
+	return study.ChangeArrow{Rival: b.rival.Name, From: a.From, To: a.To, Arrow: to}
+}
+
+// onto puts a variable on the sheet with an arrow.
+func (b *builder) onto(from, to string) study.Edit {
+	if b.onSheet(from) {
+		return addArrow(b.rival.Name, from, to)
+	}
+	return study.Several{Name: "Draw " + from + " → " + to, Edits: []study.Edit{
+		study.AddNode{Rival: b.rival.Name, Variable: from},
+		addArrow(b.rival.Name, from, to),
+	}}
+}
+
+// treatAsMissing lets text in a numeric column stand for missing entries.
+func treatAsMissing(s *study.Study, v *study.Variable, source *table.Column) []Repair {
+	return nil
+}
