@@ -21,7 +21,7 @@ func LogGamma(x float64) (lgamma, digamma float64) {
 	case x >= stirlingFrom:
 		l := Log(x)
 		c, q := stirlingSeries(x)
-		return (x-0.5)*l - x + halfLog2Pi + c, l - q
+		return (x-0.5)*l - x + halfLog2Pi + c, l - 0.5/x - q
 	case x >= 2.5:
 		// Γ(x) = (x-1)(x-2)… Γ(2+t); p is the product, dp its derivative.
 		p, dp := 1.0, 0.0
@@ -82,13 +82,13 @@ var (
 )
 
 // stirlingSeries returns, for x ≥ stirlingFrom, what Stirling's formula leaves
-// out of log Γ(x), and log x - ψ(x).
-func stirlingSeries(x float64) (left, logMinusPsi float64) {
+// out of log Γ(x), and what log x - 1/(2x) leaves out of ψ(x), subtracted.
+func stirlingSeries(x float64) (left, psiLeft float64) {
 	inv := 1 / x
 	v := inv * inv
 	left = inv * (1./12 - v*(1./360-v*(1./1260-v*(1./1680-v*(1./1188-v*(691./360360-v*(1./156-v*(3617./122400))))))))
-	logMinusPsi = 0.5*inv + v*(1./12-v*(1./120-v*(1./252-v*(1./240-v*(1./132-v*(691./32760-v*(1./12-v*(3617./8160))))))))
-	return left, logMinusPsi
+	psiLeft = v * (1./12 - v*(1./120-v*(1./252-v*(1./240-v*(1./132-v*(691./32760-v*(1./12-v*(3617./8160))))))))
+	return left, psiLeft
 }
 
 // LogGammaTo stores log Γ(src[i]) in dst[i] and, where slope is not nil, the

@@ -30,7 +30,7 @@ func stirlingAt(x, logx float64) (left, xq float64) {
 		return l - (x+0.5)*logx + x - halfLog2Pi, 1 + x*(logx-d)
 	}
 	c, q := stirlingSeries(x)
-	return c, x * q
+	return c, 0.5 + x*q
 }
 
 // logMinusDigamma returns log x - ψ(x), DLMF 5.11.2.
@@ -40,7 +40,7 @@ func logMinusDigamma(x float64) float64 {
 		return math.Log(x) - d
 	}
 	_, q := stirlingSeries(x)
-	return q
+	return 0.5/x + q
 }
 
 // LogChoose returns the log of the binomial coefficient, n over y, for whole
@@ -72,9 +72,10 @@ func logRising(k, y float64) (value, slope float64) {
 		return ls - lk - y*math.Log(k), ds - dk - y/k
 	}
 	r := y / k
-	value = (s-0.5)*math.Log1p(r) - y + stirling(s) - stirling(k)
-	// log x - ψ(x) = 1/(2x) + …, whose leading difference is taken exactly.
-	slope = log1pmx(r) + 0.5*r/s + (logMinusDigamma(k) - 0.5/k) - (logMinusDigamma(s) - 0.5/s)
+	leftS, psiS := stirlingSeries(s)
+	leftK, psiK := stirlingSeries(k)
+	value = (s-0.5)*math.Log1p(r) - y + leftS - leftK
+	slope = log1pmx(r) + 0.5*r/s + psiK - psiS
 	return value, slope
 }
 
