@@ -264,3 +264,45 @@ func TestComputedInLinearModels(t *testing.T) {
 	}
 	t.Logf("%d separations, %d sets that fix a computed node", separations, byTrial)
 }
+
+// What is offered when no set exists gives the effect too: a front door by the
+// product of coefficients, an instrument by the ratio.
+func TestWaysInLinearModels(t *testing.T) {
+	r := rand.New(rand.NewPCG(9, 2026))
+	var doors, conditional, ratios int
+	for range 20000 {
+		s := sketch{nodes: 4 + r.IntN(4), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3 * r.Float64(), arcs: 0.15 * r.Float64()}
+		g := s.draw(t, r)
+		const x, y = 0, 1
+		pair := compare(g, []int{x}, []int{y})
+		if !pair.effect() {
+			continue
+		}
+		m := drawLinear(g, r)
+		if f := pair.frontDoor(); f != nil {
+			doors++
+			if len(f.Given) > 0 {
+				conditional++
+			}
+			if !Identifiable(g, x, y) {
+				t.Fatalf("%s: a front door %v, yet not identifiable", describe(g), *f)
+			}
+			got := 0.0
+			outer := m.regress(y, slices.Concat(f.Through, []int{x}, f.Given))
+			for i, v := range f.Through {
+				got += outer[i] * m.regress(v, append([]int{x}, f.Given...))[0]
+			}
+			if !near(got, m.total[y][x]) {
+				t.Fatalf("%s: front door %v gives %g, effect %g", describe(g), *f, got, m.total[y][x])
+			}
+		}
+		for _, z := range pair.instruments() {
+			ratios++
+			on := append([]int{z.Node}, z.Given...)
+			if got := m.regress(y, on)[0] / m.regress(x, on)[0]; math.Abs(got-m.total[y][x]) > 1e-5*(1+math.Abs(got)) {
+				t.Fatalf("%s: instrument %v gives %g, effect %g", describe(g), z, got, m.total[y][x])
+			}
+		}
+	}
+	t.Logf("%d front doors, %d of them given something; %d instruments", doors, conditional, ratios)
+}

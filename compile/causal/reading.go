@@ -7,7 +7,7 @@
 //
 // Read the files in this order: separation.go (which sets separate), path.go
 // and walk.go (the paths), adjust.go and separators.go (the sets),
-// precision.go, project.go, identify.go, carriers.go and intervene.go (what
+// precision.go, ways.go, project.go, identify.go, carriers.go and intervene.go (what
 // SEMANTICS A1 and B2 ask for), verdict.go (all of it in a sentence).
 //
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.
@@ -48,6 +48,10 @@ type Reading struct {
 	HeldFaults []Fault
 
 	Identifiable bool // from measured variables, by adjustment or any other way
+
+	// With no set: what else could give the effect.
+	FrontDoor   *FrontDoor // nil = none found
+	Instruments []Instrument
 
 	// With no set: the unmeasured nodes, and the arcs (both ends), that would
 	// give one if they were measured. Any one of them would do, unless
@@ -105,6 +109,10 @@ func Read(g *graph.Graph, q Query) *Reading {
 	r.HeldFaults = r.faults(c)
 	if r.Sets == nil {
 		r.findCulprits()
+		if r.Effect && can[q.Exposure] && can[q.Outcome] && !g.Computed[q.Exposure] {
+			r.FrontDoor = c.frontDoor()
+			r.Instruments = c.instruments()
+		}
 	}
 	r.Verdict = r.verdict(c)
 	return r

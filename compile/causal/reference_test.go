@@ -43,7 +43,11 @@ type reference struct {
 			Minimal              [][]string
 			MinimalWithCondition [][]string `json:"minimal_containing_conditioned"`
 		}
-		Separators        [][]string `json:"separators_minimal"`
+		Separators  [][]string `json:"separators_minimal"`
+		FrontDoor   [][]string `json:"frontdoor_minimal"`
+		Instruments struct {
+			Total [][2]any
+		}
 		Identifiable      bool
 		IdentifiableGiven *bool      `json:"identifiable_given_conditioned"`
 		OSet              *[]string  `json:"o_set"`
@@ -218,6 +222,7 @@ func TestRandomReference(t *testing.T) {
 				t.Errorf("%s: identifiable given the conditioned: got %v", c.ID, got)
 			}
 		}
+		checkWays(t, &c, g, pair)
 		optimal, ok := pair.optimal()
 		switch {
 		case ok != (a.OSet != nil):
@@ -267,6 +272,36 @@ func TestRandomReference(t *testing.T) {
 		}
 		separators, _ := MinimalSeparators(g, x[0], y[0], nil, 1e4)
 		compareSets(t, c.ID, "separators", g, separators, a.Separators)
+	}
+}
+
+func checkWays(t *testing.T, c *reference, g *graph.Graph, pair *comparison) {
+	t.Helper()
+	var candidates []int
+	for v := range g.Len() {
+		if g.Measured[v] && !slices.Contains(pair.x, v) && !slices.Contains(pair.y, v) {
+			candidates = append(candidates, v)
+		}
+	}
+	if len(pair.x) == 1 {
+		doors := oracleMinimal(candidates, nil, func(m []int) bool { return pair.isFrontDoor(m, nil) })
+		compareSets(t, c.ID, "front doors", g, doors, c.Answers.FrontDoor)
+		want := map[string]bool{}
+		for _, z := range c.Answers.Instruments.Total {
+			want[z[0].(string)] = true
+		}
+		var got []Instrument
+		if pair.effect() { // the file names none otherwise
+			got = pair.instruments()
+		}
+		for _, z := range got {
+			if !want[g.Names[z.Node]] {
+				t.Errorf("%s: %s is no instrument", c.ID, g.Names[z.Node])
+			}
+		}
+		if len(got) == 0 && len(want) > 0 {
+			t.Errorf("%s: no instrument found, want %v", c.ID, want)
+		}
 	}
 }
 

@@ -223,19 +223,27 @@ func (r *Reading) noSet() Verdict {
 	}
 	v.Sentence += "."
 
-	var ways []string
+	var words []string
 	switch c, _, _ := InterventionCase(g, q.Exposure, q.Outcome); {
-	case r.Identifiable && c != NotSimulated:
-		ways = append(ways, "The effect is identified all the same: the full model can be simulated under the intervention.")
-	case r.Identifiable:
-		ways = append(ways, "The effect is identified all the same, but not by holding anything; this version does not compute it.")
+	case !r.Identifiable:
+		words = append(words, "The effect is not identified: what the data show is an association.")
+	case c != NotSimulated:
+		words = append(words, "The effect is identified all the same: the full model can be simulated under the intervention.")
 	default:
-		ways = append(ways, "The effect is not identified: what the data show is an association.")
+		words = append(words, "The effect is identified all the same; not computed by this version.")
+	}
+	others := r.otherWays()
+	if others != "" {
+		words = append(words, others)
 	}
 	if wish := r.wish(); wish != "" {
-		ways = append(ways, wish)
+		also := ""
+		if others != "" {
+			also = "also "
+		}
+		words = append(words, fmt.Sprintf("Measuring %s would %sdo.", wish, also))
 	}
-	v.Way = strings.Join(ways, " ")
+	v.Way = strings.Join(words, " ")
 	return v
 }
 
@@ -283,9 +291,9 @@ func (r *Reading) wish() string {
 	case len(words) == 0:
 		return ""
 	case r.CulpritsAll:
-		return fmt.Sprintf("Measuring %s would do.", series(words, "and"))
+		return series(words, "and")
 	}
-	return fmt.Sprintf("Measuring %s would do.", series(words, "or"))
+	return series(words, "or")
 }
 
 func be(n int) string {
