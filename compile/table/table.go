@@ -1,4 +1,9 @@
 // Package table holds data as typed columns. A Table never changes once read.
+//
+// Read the files in this order: table.go (the types), read.go (bytes to table),
+// decode.go (bytes to text), records.go (text to fields), column.go (fields to
+// numbers or words), missing.go, propose.go (what a column might measure) and
+// quantile.go.
 package table
 
 // A Table is a rectangle of observations.
@@ -6,7 +11,8 @@ type Table struct {
 	Name    string
 	Rows    int
 	Columns []*Column
-	SHA256  string // of the bytes it was read from
+	SHA256  string   // of the bytes it was read from, hexadecimal
+	Notes   []string // what reading took upon itself, a sentence each: "two columns were named bees; the second is now “bees (2)”"
 }
 
 // Kind is how a column is stored.
@@ -28,6 +34,7 @@ type Column struct {
 	Codes   []int32   // Words: place in Levels
 	Levels  []string  // Words: in order of first appearance
 	Missing int
+	Percent bool      // Numeric: the entries carried a percent sign, which is left out
 	Strange []Strange // entries of a mostly numeric column that are not numbers; NaN in Numbers
 }
 
