@@ -56,7 +56,7 @@ func (e ChangeVariable) Label() string {
 }
 
 func copyVariable(v Variable) Variable {
-	v.Levels, v.Plates = list(v.Levels), list(v.Plates)
+	v.Levels, v.Plates, v.Missing = list(v.Levels), list(v.Plates), list(v.Missing)
 	if v.Range != nil {
 		r := *v.Range
 		v.Range = &r

@@ -105,6 +105,7 @@ func (r *reader) variable(o *object) {
 		Data:       o.text("data"),
 		Column:     o.text("column"),
 		Divide:     o.number("divide"),
+		Missing:    o.texts("missing"),
 		Computed:   o.text("computed"),
 	}
 	if low, high, given := o.pair("range"); given {

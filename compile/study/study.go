@@ -64,11 +64,12 @@ type Variable struct {
 	Range      *Range   // nil = not given
 	Plates     []string // its level: empty = the row
 	Unmeasured bool
-	Data       string  // name of its table; "" = the first
-	Column     string  // "" = not bound
-	Divide     float64 // the column is divided by this (100 for percent); 0 or 1 = as it is
-	Computed   string  // formula of a deterministic variable; "" = not computed
-	Tier       int     // time tier; 0 = not said
+	Data       string   // name of its table; "" = the first
+	Column     string   // "" = not bound
+	Divide     float64  // the column is divided by this (100 for percent); 0 or 1 = as it is
+	Missing    []string // words of the column that stand for a missing entry, besides the usual spellings
+	Computed   string   // formula of a deterministic variable; "" = not computed
+	Tier       int      // time tier; 0 = not said
 	Note       string
 }
 
