@@ -89,6 +89,11 @@ func (c *comparison) frontDoor() *FrontDoor {
 	}
 	for size := 1; size <= min(frontDoorSize, len(carriers)) && try(nil, 0, size); size++ {
 	}
+	if found == nil { // all that the exposure acts on directly
+		try(slices.DeleteFunc(carriers, func(v int) bool {
+			return !slices.ContainsFunc(c.x, func(x int) bool { return c.g.HasArrow(x, v) })
+		}), 0, 0)
+	}
 	return found
 }
 

@@ -42,3 +42,17 @@ func count(n int, what string) string {
 	}
 	return fmt.Sprintf("%d %ss", n, what)
 }
+
+// String is the word for the kind: "causal", "back-door" or "non-causal".
+func (k PathKind) String() string {
+	return [...]string{"causal", "back-door", "non-causal"}[k]
+}
+
+// String is "chain", "fork" or "collider".
+func (r Role) String() string { return [...]string{"chain", "fork", "collider"}[r] }
+
+// String is a word for the kind: "incomplete", "confounded", "readable",
+// "over-held", "no set" or "no effect".
+func (k VerdictKind) String() string {
+	return [...]string{"incomplete", "confounded", "readable", "over-held", "no set", "no effect"}[k]
+}
