@@ -18,7 +18,7 @@ type comparison struct {
 	usable    []bool       // may be held: available, not forbidden, neither exposure nor outcome
 }
 
-func compare(g *graph.Graph, x, y []int) *comparison {
+func newComparison(g *graph.Graph, x, y []int) *comparison {
 	c := &comparison{g: g, x: x, y: y}
 	exposed := mark(g.Len(), x)
 	// A proper causal path meets the exposures only at its start.
@@ -71,7 +71,7 @@ func (c *comparison) valid(z []int) bool {
 // effect of x on y readable from the measured variables. With no causal path
 // from x to y this is plain separation.
 func ValidAdjustment(g *graph.Graph, x, y int, z []int) bool {
-	return x != y && compare(g, []int{x}, []int{y}).valid(z)
+	return x != y && newComparison(g, []int{x}, []int{y}).valid(z)
 }
 
 // Minimal lists the minimal adjustment sets that contain forced, by (size,
@@ -82,7 +82,7 @@ func Minimal(g *graph.Graph, x, y int, forced []int, max int) (sets [][]int, mor
 	if x == y {
 		return nil, false
 	}
-	return compare(g, []int{x}, []int{y}).minimal(forced, limit(max, 100))
+	return newComparison(g, []int{x}, []int{y}).minimal(forced, limit(max, 100))
 }
 
 // MinimalSeparators lists the minimal sets of measured nodes that contain
@@ -91,7 +91,7 @@ func MinimalSeparators(g *graph.Graph, x, y int, forced []int, max int) (sets []
 	if x == y {
 		return nil, false
 	}
-	c := compare(g, []int{x}, []int{y})
+	c := newComparison(g, []int{x}, []int{y})
 	c.backDoor = g
 	c.usable = available(g)
 	c.usable[x], c.usable[y] = false, false

@@ -120,7 +120,7 @@ func TestCasesInBinaryModels(t *testing.T) {
 		s := sketch{nodes: 3 + r.IntN(3), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3, arcs: 0.25 * r.Float64()}
 		g := s.draw(t, r)
 		const x, y = 0, 1
-		if !compare(g, []int{x}, []int{y}).effect() || g.Len()+len(g.Arcs) > 9 {
+		if !newComparison(g, []int{x}, []int{y}).effect() || g.Len()+len(g.Arcs) > 9 {
 			continue
 		}
 		c, district, _ := InterventionCase(g, x, y)

@@ -20,7 +20,7 @@ func (r *Reading) findCulprits() {
 		for _, v := range measured {
 			h.Measured[v] = true
 		}
-		return compare(&h, []int{r.Query.Exposure}, []int{r.Query.Outcome}).exists(nil)
+		return newComparison(&h, []int{r.Query.Exposure}, []int{r.Query.Outcome}).exists(nil)
 	}
 	var culprits []int
 	for _, v := range hidden {

@@ -29,7 +29,7 @@ func InterventionCase(g *graph.Graph, exposure, outcome int) (c Case, districtMe
 	if p.At[outcome] < 0 {
 		return NotSimulated, nil, g.Names[outcome] + " was not measured, so its fitted laws cannot be simulated"
 	}
-	if g.Computed[exposure] && !compare(g, []int{exposure}, []int{outcome}).exists(nil) {
+	if g.Computed[exposure] && !newComparison(g, []int{exposure}, []int{outcome}).exists(nil) {
 		return NotSimulated, nil, fmt.Sprintf("%s is computed from %s, so the data never show it apart", g.Names[exposure], names(g, g.Parents[exposure]))
 	}
 	h, x := p.Graph, p.At[exposure]

@@ -135,7 +135,7 @@ func TestCarriersInLinearModels(t *testing.T) {
 		s := sketch{nodes: 3 + r.IntN(6), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.2 + 0.3*r.Float64(), arcs: 0.1 * r.Float64()}
 		g := s.draw(t, r)
 		x, y := 0, 1
-		if !compare(g, []int{x}, []int{y}).effect() {
+		if !newComparison(g, []int{x}, []int{y}).effect() {
 			continue
 		}
 		diagrams++
@@ -258,7 +258,7 @@ func TestComputedInLinearModels(t *testing.T) {
 			}
 			byTrial++
 		}
-		if compare(g, []int{x}, []int{y}).exists(nil) != (sets != nil) {
+		if newComparison(g, []int{x}, []int{y}).exists(nil) != (sets != nil) {
 			t.Fatalf("%s: exists disagrees with %v", describe(g), sets)
 		}
 	}
@@ -274,7 +274,7 @@ func TestWaysInLinearModels(t *testing.T) {
 		s := sketch{nodes: 4 + r.IntN(4), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3 * r.Float64(), arcs: 0.15 * r.Float64()}
 		g := s.draw(t, r)
 		const x, y = 0, 1
-		pair := compare(g, []int{x}, []int{y})
+		pair := newComparison(g, []int{x}, []int{y})
 		if !pair.effect() {
 			continue
 		}

@@ -88,7 +88,7 @@ func Read(g *graph.Graph, q Query) *Reading {
 		r.Verdict = r.incomplete()
 		return r
 	}
-	c := compare(g, []int{q.Exposure}, []int{q.Outcome})
+	c := newComparison(g, []int{q.Exposure}, []int{q.Outcome})
 	r.Effect = c.effect()
 	r.findPaths()
 	r.Forbidden = c.whyForbidden()

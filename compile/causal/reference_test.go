@@ -202,7 +202,7 @@ func TestRandomReference(t *testing.T) {
 			}
 		}
 
-		pair := compare(g, x, y)
+		pair := newComparison(g, x, y)
 		compareSets(t, c.ID, "forbidden", g, [][]int{list(pair.forbidden)}, [][]string{a.Forbidden})
 		sets, _ := pair.minimal(nil, 1e4)
 		compareSets(t, c.ID, "minimal sets", g, sets, a.Adjustment.Minimal)
@@ -309,7 +309,7 @@ func TestWorkedCases(t *testing.T) {
 	for _, c := range readReference(t, "cases.json") {
 		g := c.graph(t)
 		x, y, held := numbers(g, c.Exposure), numbers(g, c.Outcome), numbers(g, c.Conditioned)
-		pair := compare(g, x, y)
+		pair := newComparison(g, x, y)
 		switch c.Question.Type {
 		case "dsep":
 			var want struct{ Results []bool }
@@ -348,7 +348,7 @@ func TestWorkedCases(t *testing.T) {
 				// The file tries unmeasured nodes too: with them measured.
 				all := *g
 				all.Measured = slices.Repeat([]bool{true}, g.Len())
-				if got := compare(&all, x, y).valid(numbers(g, z)); got != want.Results[i] {
+				if got := newComparison(&all, x, y).valid(numbers(g, z)); got != want.Results[i] {
 					t.Errorf("%s: %v valid: got %v", c.ID, z, got)
 				}
 			}

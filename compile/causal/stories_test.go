@@ -99,7 +99,7 @@ func TestStories(t *testing.T) {
 	}
 	// Conditioned on slope and rain alone, the front door fails without slope.
 	g := sheet(t, "K -> N -> Y, K -> W -> Y, R -> W, R -> Y, G -> K, G -> W, (U) -> K, U -> Y, Z -> K")
-	pair := compare(g, numbers(g, []string{"K"}), numbers(g, []string{"Y"}))
+	pair := newComparison(g, numbers(g, []string{"K"}), numbers(g, []string{"Y"}))
 	for given, want := range map[string]bool{"": false, "R": false, "G R": true} {
 		if got := pair.isFrontDoor(numbers(g, []string{"N", "W"}), numbers(g, strings.Fields(given))); got != want {
 			t.Errorf("front door given %q: %v", given, got)

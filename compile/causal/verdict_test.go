@@ -159,6 +159,11 @@ func TestReadingsAreConsistent(t *testing.T) {
 		if fmt.Sprint(read.Verdict, read.Sets, read.HeldFaults) != fmt.Sprint(again.Verdict, again.Sets, again.HeldFaults) {
 			t.Fatalf("%s: two readings differ", describe(g))
 		}
+		known := fixed(g, mark(g.Len(), held))
+		open := slices.ContainsFunc(read.Paths, func(p Path) bool { return p.Open })
+		if !read.MorePaths && !known[x] && !known[y] && open == Separated(g, []int{x}, []int{y}, held) {
+			t.Fatalf("%s: given %v, an open path is listed: %v", describe(g), held, open)
+		}
 		v := read.Verdict
 		kinds[v.Kind]++
 		fail := func(what string) {
@@ -185,7 +190,7 @@ func TestReadingsAreConsistent(t *testing.T) {
 			for _, f := range read.HeldFaults {
 				wrong = append(wrong, f.Node)
 			}
-			pair := compare(g, []int{x}, []int{y})
+			pair := newComparison(g, []int{x}, []int{y})
 			if !pair.exists(minus(held, tidy(wrong))) {
 				fail("leaving the faults free does not help")
 			}
