@@ -44,7 +44,10 @@ func runAffine(f *frame, in *instr) {
 		case len(plain) >= 4:
 			f.scaled4(dst, plain, c, first)
 			plain = plain[4:]
-		case len(plain) >= 2:
+		case len(plain) == 3:
+			f.scaled3(dst, plain, c, first)
+			plain = plain[3:]
+		case len(plain) == 2:
 			f.scaled2(dst, plain, c, first)
 			plain = plain[2:]
 		default:
@@ -104,6 +107,21 @@ func (f *frame) scaled2(dst []float64, t []factorPair, c float64, first bool) {
 	}
 	for i := range dst {
 		dst[i] += a0*x0[i] + a1*x1[i]
+	}
+}
+
+func (f *frame) scaled3(dst []float64, t []factorPair, c float64, first bool) {
+	a0, x0 := f.scale(t[0].scale), f.at(t[0].x)[:len(dst)]
+	a1, x1 := f.scale(t[1].scale), f.at(t[1].x)[:len(dst)]
+	a2, x2 := f.scale(t[2].scale), f.at(t[2].x)[:len(dst)]
+	if first {
+		for i := range dst {
+			dst[i] = (c + a0*x0[i]) + (a1*x1[i] + a2*x2[i])
+		}
+		return
+	}
+	for i := range dst {
+		dst[i] += a0*x0[i] + (a1*x1[i] + a2*x2[i])
 	}
 }
 

@@ -54,27 +54,9 @@ func runSumOverDot(f *frame, in *instr) {
 	dst[at] += sum
 }
 
-func runSum(f *frame, in *instr) {
-	var sum float64
-	for _, x := range f.at(in.args[0]) {
-		sum += x
-	}
-	f.all(in.dst)[0] += sum
-}
+func runSum(f *frame, in *instr) { f.all(in.dst)[0] += sum(f.at(in.args[0])) }
 
-func runDot(f *frame, in *instr) {
-	x := f.at(in.args[0])
-	f.all(in.dst)[0] += dot(x, f.at(in.args[1]))
-}
-
-func dot(x, y []float64) float64 {
-	y = y[:len(x)]
-	var sum float64
-	for i := range x {
-		sum += x[i] * y[i]
-	}
-	return sum
-}
+func runDot(f *frame, in *instr) { f.all(in.dst)[0] += dot(f.at(in.args[0]), f.at(in.args[1])) }
 
 func runElement(f *frame, in *instr) { f.all(in.dst)[0] = f.all(in.args[0])[in.node.at] }
 
@@ -136,63 +118,4 @@ func runLogSumExp(f *frame, in *instr) {
 		sum += kernel.Exp(v - top)
 	}
 	f.all(in.dst)[0] = top + kernel.Log(sum)
-}
-
-// runDots is several Sum and Dot in one: the sum of x, or of x times another
-// column, for up to maxDots others, going through x once.
-func runDots(f *frame, in *instr) {
-	x := f.at(in.args[0])
-	var y [maxDots][]float64
-	dots := 0
-	for i, other := range in.shared {
-		if other < 0 {
-			var sum float64
-			for _, v := range x {
-				sum += v
-			}
-			f.all(in.sums[i])[0] += sum
-			continue
-		}
-		y[dots] = f.at(other)[:len(x)]
-		dots++
-	}
-	var sums [maxDots]float64
-	switch dots {
-	case 4:
-		y0, y1, y2, y3 := y[0][:len(x)], y[1][:len(x)], y[2][:len(x)], y[3][:len(x)]
-		var s0, s1, s2, s3 float64
-		for i, v := range x {
-			s0 += v * y0[i]
-			s1 += v * y1[i]
-			s2 += v * y2[i]
-			s3 += v * y3[i]
-		}
-		sums = [maxDots]float64{s0, s1, s2, s3}
-	case 3:
-		y0, y1, y2 := y[0][:len(x)], y[1][:len(x)], y[2][:len(x)]
-		var s0, s1, s2 float64
-		for i, v := range x {
-			s0 += v * y0[i]
-			s1 += v * y1[i]
-			s2 += v * y2[i]
-		}
-		sums = [maxDots]float64{s0, s1, s2}
-	case 2:
-		y0, y1 := y[0][:len(x)], y[1][:len(x)]
-		var s0, s1 float64
-		for i, v := range x {
-			s0 += v * y0[i]
-			s1 += v * y1[i]
-		}
-		sums = [maxDots]float64{s0, s1}
-	case 1:
-		sums[0] = dot(x, y[0])
-	}
-	dots = 0
-	for i, other := range in.shared {
-		if other >= 0 {
-			f.all(in.sums[i])[0] += sums[dots]
-			dots++
-		}
-	}
 }

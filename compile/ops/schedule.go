@@ -49,8 +49,9 @@ type instr struct {
 	args []int32
 
 	affine affinePlan // Affine
-	shared []int32    // dots: the other factors
+	shared []int32    // dots: the other factors, -1 for the sum
 	sums   []int32    // dots: the totals
+	hasSum bool       // dots: the first is the sum
 
 	// Density
 	call     int
@@ -332,30 +333,31 @@ func (p *planner) results(group []id) []id {
 }
 
 // dots puts sums and dot products over the same rows that share a factor
-// together, four at most, behind everything else: nothing in their stage reads
-// them if it is blocked. In a whole stage all stay where they are.
+// together, the sum first, behind everything else: nothing in their stage
+// reads them if it is blocked. In a whole stage all stay where they are.
 func (p *planner) dots(members []id) [][]id {
-	var groups [][]id
-	var last [][]id
+	var groups, last [][]id
 	at := map[id]int{}
 	for _, n := range members {
 		nd := &p.g.nodes[n]
-		if !p.blocked(n) || (nd.op != opSum && nd.op != opDot) {
+		if !p.blocked(n) || nd.op != opSum && nd.op != opDot {
 			groups = append(groups, []id{n})
 			continue
 		}
 		shared := nd.args[0]
-		if i, ok := at[shared]; ok && len(last[i]) < maxDots {
+		i, known := at[shared]
+		switch {
+		case !known:
+			at[shared] = len(last)
+			last = append(last, []id{n})
+		case nd.op == opSum:
+			last[i] = append([]id{n}, last[i]...)
+		default:
 			last[i] = append(last[i], n)
-			continue
 		}
-		at[shared] = len(last)
-		last = append(last, []id{n})
 	}
 	return append(groups, last...)
 }
-
-const maxDots = 4
 
 // blockedInstrs writes a blocked stage. A value that only this stage reads
 // lies in a block, which a later value takes over after the last reader.
@@ -454,6 +456,8 @@ func (p *planner) instr(group []id) instr {
 			other := int32(-1)
 			if p.g.nodes[d].op == opDot {
 				other = p.slotOf(p.g.nodes[d].args[1])
+			} else {
+				in.hasSum = true
 			}
 			in.shared = append(in.shared, other)
 			in.sums = append(in.sums, p.slot[d])
