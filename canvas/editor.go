@@ -1,90 +1,337 @@
-// Package canvas is the drawing surface as a Fyne widget: one raster painted
-// from scene.Build, and events handed to a scene.Hand. It holds no document
-// logic: what the user does leaves as study edits through OnEdit.
+// Package canvas is the drawing surface as Fyne widgets: the Editor shows one
+// rival in one raster that our own painter fills, and hands events to a
+// scene.Hand; a Picture shows any display list. They hold no document logic:
+// what the user does leaves as study edits through Editor.OnEdit.
+//
+// Read editor.go (what the window calls), surface.go (the raster), mouse.go
+// and keyboard.go (events), entry.go (names typed in place), picture.go.
 package canvas
 
 import (
 	"fyne.io/fyne/v2"
-	fcanvas "fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/widget"
 
+	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
 )
 
 // An Editor shows one rival and lets people change it. Set the callbacks
-// before the editor is shown; they run on the window's goroutine, and any of
-// them may be nil.
+// before it is shown; they run on the window's goroutine and may be nil. All
+// methods must be called on that goroutine.
 type Editor struct {
 	widget.BaseWidget
 
-	OnEdit   func(study.Edit)                              // an edit to do
-	OnSelect func(scene.Selection)                         // the selection changed
-	OnHover  func(scene.Target)                            // the pointer is over something else
-	OnKey    func(name string) bool                        // a key the editor does not take: a command's key such as "X", "Y", "H", "M", "Ctrl+A"
-	OnRename func(variable string)                         // F2 when the editor's own name entry should not open; nil = it opens
-	OnMenu   func(at scene.Target, position fyne.Position) // a right click, position on the canvas of the window
-	OnOpen   func(scene.Target)                            // a double click on something
-	OnView   func(scene.View)                              // panned or zoomed
-	OnTool   func(scene.Tool)                              // the tool changed (Esc goes back to select)
-	OnRefuse func(reason string)                           // a gesture that cannot be done, and why
+	OnEdit   func(study.Edit)                           // an edit to do
+	OnSelect func(scene.Selection)                      // the selection changed by hand
+	OnHover  func(scene.Target)                         // the pointer is over something else
+	OnKey    func(name string) bool                     // a key that is not the sheet's own, with its modifiers: "X", "Shift+H"; true = taken
+	OnRename func(variable string)                      // instead of the entry in place, if set
+	OnMenu   func(at scene.Target, where fyne.Position) // a right click, where on the window's canvas
+	OnOpen   func(scene.Target)                         // a double click on an arrow, an arc or a plate
+	OnView   func(scene.View)                           // panned or zoomed
+	OnTool   func(scene.Tool)                           // Escape went back to the select tool
+	OnRefuse func(reason string)                        // a gesture or a name that cannot be, and why
 
-	in scene.Input
+	in      scene.Input
+	hand    *scene.Hand
+	surface *surface
+	entry   *nameEntry
+	pointer draw.Point // where the pointer was last
+	keys    modifiers
+	views   map[string]scene.View // by rival
+	adrift  bool                  // the view still follows the content: nobody panned or zoomed
+	focused bool
+	post    func(func())
+	press   pressed
 }
 
 // NewEditor makes an empty editor. post runs a function on the window's
 // goroutine later.
 func NewEditor(post func(func())) *Editor {
-	e := &Editor{}
+	e := &Editor{post: post, hand: scene.NewHand(), views: make(map[string]scene.View), adrift: true}
+	e.in.LitPath = scene.NoPath
+	e.in.Palette = scene.Light()
+	e.surface = newSurface(e)
+	e.entry = newNameEntry(e)
 	e.ExtendBaseWidget(e)
 	return e
 }
 
-// SetInput shows something else. The editor keeps its own view, selection,
-// hover, lit path and preview; those fields of in are ignored.
-func (e *Editor) SetInput(in scene.Input) { e.in = in }
+// SetInput shows something else. The editor keeps its own size, view,
+// selection, hover, lit path and preview; those fields of in are ignored. A
+// zero palette keeps the one at hand.
+func (e *Editor) SetInput(in scene.Input) {
+	was := e.in
+	other := in.Rival != nil && (was.Rival == nil || was.Rival.Name != in.Rival.Name)
+	if other && was.Rival != nil && !e.adrift {
+		e.views[was.Rival.Name] = was.View
+	}
+	in.Width, in.Height, in.View = was.Width, was.Height, was.View
+	in.Selected = was.Selected.Kept(in.Study, in.Rival)
+	in.Hover, in.Preview = was.Hover, was.Preview
+	in.LitPath = was.LitPath
+	if in.Reading != was.Reading {
+		in.LitPath = scene.NoPath
+	}
+	if in.Palette == (scene.Palette{}) {
+		in.Palette = was.Palette
+	}
+	if in.At == nil {
+		in.At = scene.Places(in.Study, in.Rival, in.Question)
+	}
+	e.in = in
+	if other {
+		v, known := e.views[in.Rival.Name]
+		e.adrift = !known
+		e.in.View = v
+		e.in.Selected = scene.Selection{}
+		e.in.Hover = scene.Target{}
+		if was.Rival == nil || len(was.Rival.Diagram.Nodes) == 0 || !known {
+			e.fit()
+		}
+	} else if e.adrift && !e.hand.Busy() && nodes(was.Rival) == 0 {
+		e.fit()
+	}
+	e.changed()
+	if !e.in.Selected.Equal(was.Selected) && e.OnSelect != nil {
+		e.OnSelect(e.in.Selected)
+	}
+}
 
-// SetTool takes another tool.
-func (e *Editor) SetTool(t scene.Tool) {}
-
-// Tool is the tool at hand.
-func (e *Editor) Tool() scene.Tool { return scene.SelectTool }
-
-// Select picks things; it does not call OnSelect.
-func (e *Editor) Select(s scene.Selection) {}
-
-// Selection is what is picked.
-func (e *Editor) Selection() scene.Selection { return scene.Selection{} }
-
-// ZoomFit shows the whole rival.
-func (e *Editor) ZoomFit() {}
-
-// ZoomBy zooms by a factor about the middle.
-func (e *Editor) ZoomBy(factor float64) {}
-
-// ZoomReset goes to 100 %.
-func (e *Editor) ZoomReset() {}
-
-// View says which part is seen.
-func (e *Editor) View() scene.View { return e.in.View }
-
-// Highlight marks one path of the reading alone; scene.NoPath marks all.
-func (e *Editor) Highlight(path int) {}
-
-// Reveal brings a node into view.
-func (e *Editor) Reveal(variable string) {}
-
-// StartNaming opens the name entry for a new variable at the middle of the
-// sheet; StartRename for one that is there.
-func (e *Editor) StartNaming() {}
-
-// StartRename opens the name entry over a node.
-func (e *Editor) StartRename(variable string) {}
+func nodes(r *study.Rival) int {
+	if r == nil || r.Diagram == nil {
+		return 0
+	}
+	return len(r.Diagram.Nodes)
+}
 
 // SetPalette takes other colours.
-func (e *Editor) SetPalette(p scene.Palette) {}
+func (e *Editor) SetPalette(p scene.Palette) {
+	e.in.Palette = p
+	e.entry.Refresh()
+	e.changed()
+}
+
+// SetTool takes another tool; it does not call OnTool.
+func (e *Editor) SetTool(t scene.Tool) {
+	e.hand.Take(t)
+	e.in.Preview = scene.Preview{}
+	e.changed()
+}
+
+// Tool is the tool at hand.
+func (e *Editor) Tool() scene.Tool { return e.hand.Tool() }
+
+// Select picks things; it does not call OnSelect.
+func (e *Editor) Select(s scene.Selection) {
+	e.in.Selected = s.Kept(e.in.Study, e.in.Rival)
+	e.changed()
+}
+
+// Selection is what is picked.
+func (e *Editor) Selection() scene.Selection { return e.in.Selected }
+
+// Input is what is shown, with the editor's own fields filled in.
+func (e *Editor) Input() scene.Input { return e.in }
+
+// Highlight marks one path of the reading alone; scene.NoPath marks all.
+func (e *Editor) Highlight(path int) {
+	if e.in.LitPath != path {
+		e.in.LitPath = path
+		e.changed()
+	}
+}
+
+// HoverOn marks a node or an arrow as if the pointer were on it, for lists
+// beside the sheet; the zero target marks nothing.
+func (e *Editor) HoverOn(t scene.Target) {
+	if e.in.Hover != t {
+		e.in.Hover = t
+		e.changed()
+	}
+}
+
+// View says which part of the sheet is seen.
+func (e *Editor) View() scene.View { return e.in.View }
+
+// SetView shows another part.
+func (e *Editor) SetView(v scene.View) {
+	e.in.View = v
+	e.adrift = false
+	e.viewed()
+}
+
+// ZoomFit shows the whole rival.
+func (e *Editor) ZoomFit() {
+	e.adrift = true
+	e.fit()
+	e.viewed()
+}
+
+func (e *Editor) fit() { e.in.View = scene.Fit(e.in) }
+
+// ZoomBy zooms by a factor about the middle.
+func (e *Editor) ZoomBy(factor float64) {
+	middle := draw.Point{X: e.in.Width / 2, Y: e.in.Height / 2}
+	e.SetView(e.in.View.ZoomAt(middle, factor))
+}
+
+// ZoomReset goes to 100 % about the middle.
+func (e *Editor) ZoomReset() { e.ZoomBy(1 / e.in.View.Scale()) }
+
+// Reveal brings a node into view.
+func (e *Editor) Reveal(variable string) {
+	r, ok := e.surface.mapNow().NodeRect(variable)
+	if !ok {
+		return
+	}
+	const margin = 24
+	dx := max(margin-r.X, 0) - max(r.X+r.W-e.in.Width+margin, 0)
+	dy := max(margin-r.Y, 0) - max(r.Y+r.H-e.in.Height+margin, 0)
+	if dx != 0 || dy != 0 {
+		v := e.in.View
+		v.Pan = v.Pan.Add(draw.Point{X: dx, Y: dy})
+		e.SetView(v)
+	}
+}
+
+// StartNaming opens the name entry for a new variable near the middle of the
+// sheet.
+func (e *Editor) StartNaming() {
+	if e.in.Rival != nil {
+		e.name(scene.Naming{At: scene.Free(&e.in)})
+	}
+}
+
+// StartRename opens the name entry over a node.
+func (e *Editor) StartRename(variable string) { e.name(scene.Naming{Variable: variable}) }
+
+// changed asks for a new picture.
+func (e *Editor) changed() { e.surface.changed() }
+
+// viewed is changed for the view.
+func (e *Editor) viewed() {
+	e.changed()
+	e.entry.place()
+	if e.OnView != nil {
+		e.OnView(e.in.View)
+	}
+}
+
+// handle gives an event to the hand and does what it answers.
+func (e *Editor) handle(event scene.Event) {
+	a := e.hand.Handle(&e.in, e.surface.mapNow(), event)
+	if a.Preview != nil {
+		e.in.Preview = *a.Preview
+		e.changed()
+	}
+	if a.Hover != nil && *a.Hover != e.in.Hover {
+		e.in.Hover = *a.Hover
+		e.changed()
+		if e.OnHover != nil {
+			e.OnHover(*a.Hover)
+		}
+	}
+	if a.View != nil {
+		e.SetView(*a.View)
+	}
+	if a.Edit != nil {
+		e.edit(a.Edit)
+	}
+	if a.Select != nil {
+		e.pick(*a.Select)
+	}
+	if a.Tool != nil {
+		e.changed()
+		if e.OnTool != nil {
+			e.OnTool(*a.Tool)
+		}
+	}
+	if a.Refuse != "" {
+		e.refuse(a.Refuse)
+	}
+	if a.Name != nil {
+		e.name(*a.Name)
+	}
+	if a.Menu != nil && e.OnMenu != nil {
+		e.OnMenu(*a.Menu, e.press.window)
+	}
+	if a.Open != nil && e.OnOpen != nil {
+		e.OnOpen(*a.Open)
+	}
+	if a.Command != "" && e.OnKey != nil {
+		e.OnKey(a.Command)
+	}
+}
+
+func (e *Editor) edit(edit study.Edit) {
+	if e.OnEdit != nil {
+		e.OnEdit(edit)
+	}
+}
+
+func (e *Editor) refuse(reason string) {
+	if e.OnRefuse != nil {
+		e.OnRefuse(reason)
+	}
+}
+
+// pick changes the selection by hand.
+func (e *Editor) pick(s scene.Selection) {
+	s = s.Kept(e.in.Study, e.in.Rival)
+	if s.Equal(e.in.Selected) {
+		return
+	}
+	e.in.Selected = s
+	e.changed()
+	if e.OnSelect != nil {
+		e.OnSelect(s)
+	}
+}
+
+// name opens the entry.
+func (e *Editor) name(n scene.Naming) {
+	if n.Variable != "" && e.OnRename != nil {
+		e.OnRename(n.Variable)
+		return
+	}
+	e.entry.open(n)
+}
+
+// MinSize implements fyne.CanvasObject.
+func (e *Editor) MinSize() fyne.Size { return fyne.NewSize(160, 120) }
+
+// Resize implements fyne.CanvasObject.
+func (e *Editor) Resize(size fyne.Size) {
+	e.BaseWidget.Resize(size)
+	w, h := float64(size.Width), float64(size.Height)
+	if w == e.in.Width && h == e.in.Height {
+		return
+	}
+	e.in.Width, e.in.Height = w, h
+	if e.adrift {
+		e.fit()
+	}
+	e.viewed()
+}
 
 // CreateRenderer implements fyne.Widget.
 func (e *Editor) CreateRenderer() fyne.WidgetRenderer {
-	return widget.NewSimpleRenderer(fcanvas.NewRasterWithPixels(nil))
+	return &editorRenderer{editor: e, objects: []fyne.CanvasObject{e.surface.raster, e.entry}}
 }
+
+type editorRenderer struct {
+	editor  *Editor
+	objects []fyne.CanvasObject
+}
+
+func (r *editorRenderer) Layout(size fyne.Size) {
+	r.editor.surface.raster.Resize(size)
+	r.editor.entry.place()
+}
+
+func (r *editorRenderer) MinSize() fyne.Size           { return r.editor.MinSize() }
+func (r *editorRenderer) Objects() []fyne.CanvasObject { return r.objects }
+func (r *editorRenderer) Destroy()                     {}
+func (r *editorRenderer) Refresh()                     { r.editor.surface.changed() }

@@ -1,6 +1,8 @@
 package scene
 
 import (
+	"math"
+
 	"arrowroot/canvas/draw"
 	"arrowroot/compile/study"
 )
@@ -254,7 +256,7 @@ func (b *builder) drawWords() {
 			n = n.Times(-1)
 		}
 		w := draw.Measure(words, draw.Regular, 11)
-		away := 10 + absFloat(n.X)*w/2*0.9
+		away := 10 + math.Abs(n.X)*w/2*0.9
 		b.label(m.Add(n.Times(away)), words, draw.Regular, 11, p.Ink)
 	}
 	for _, l := range append(b.arrows[:len(b.arrows):len(b.arrows)], b.arcs...) {
@@ -271,7 +273,7 @@ func (b *builder) drawWords() {
 	}
 	if b.in.Hover.Kind == OnNode || b.in.Hover.Kind == OnEdge {
 		if i, ok := b.index[b.in.Hover.Node]; ok {
-			b.nodeWords(b.bodies[i])
+			b.nodeWords(b.nodes[i])
 		}
 	}
 }
@@ -324,11 +326,4 @@ func (b *builder) nodeWords(n *body) {
 	if words != "" {
 		b.label(draw.Point{X: n.at.X, Y: n.at.Y - n.h/2 - 9}, words, draw.Regular, 11, color)
 	}
-}
-
-func absFloat(v float64) float64 {
-	if v < 0 {
-		return -v
-	}
-	return v
 }

@@ -7,34 +7,17 @@ import (
 	"arrowroot/compile/study"
 )
 
-// A builder holds what the files of the picture share.
+// A builder makes a picture: it fills a map, then a list.
 type builder struct {
-	in     *Input
-	list   *draw.List
-	zoom   float64
-	bodies []*body
-	index  map[string]int // of a body
-	arrows []*line
-	arcs   []*line
-	plates []*frame
+	Map
+	in   *Input
+	list *draw.List
 }
 
 // Build makes the picture of the sheet and the map of what stands where. It
 // reads its input and changes nothing.
 func Build(in Input) (*draw.List, *Map) {
-	b := &builder{
-		in:    &in,
-		list:  &draw.List{Width: in.Width, Height: in.Height, Background: in.Palette.Sheet},
-		zoom:  in.View.Scale(),
-		index: make(map[string]int),
-	}
-	b.bodies = bodies(&in)
-	for i, n := range b.bodies {
-		b.index[n.id] = i
-	}
-	b.route()
-	b.frames()
-
+	b := measure(&in)
 	b.ground()
 	b.drawFrames()
 	b.drawPaths()
@@ -43,7 +26,23 @@ func Build(in Input) (*draw.List, *Map) {
 	b.drawNodes()
 	b.drawWords()
 	b.drawPreview()
-	return b.list, &Map{nodes: b.bodies, index: b.index, arrows: b.arrows, arcs: b.arcs, plates: b.plates, zoom: b.zoom}
+	return b.list, &b.Map
+}
+
+// measure places everything and draws nothing yet.
+func measure(in *Input) *builder {
+	b := &builder{
+		Map:  Map{zoom: in.View.Scale(), index: make(map[string]int)},
+		in:   in,
+		list: &draw.List{Width: in.Width, Height: in.Height, Background: in.Palette.Sheet},
+	}
+	b.nodes = bodies(in)
+	for i, n := range b.nodes {
+		b.index[n.id] = i
+	}
+	b.route()
+	b.frames()
+	return b
 }
 
 // ground is the grid that nodes snap to, every third point of it.
@@ -84,9 +83,9 @@ func (b *builder) route() {
 			ends, drawn = append(ends, [2]int{from, to}), append(drawn, a)
 		}
 	}
-	bow := bends(b.bodies, ends, b.zoom)
+	bow := bends(b.nodes, ends, b.zoom)
 	for i, a := range drawn {
-		l := &line{pair: [2]string{a.From, a.To}, arrow: a, from: b.bodies[ends[i][0]], to: b.bodies[ends[i][1]], bow: bow[i]}
+		l := &line{pair: [2]string{a.From, a.To}, arrow: a, from: b.nodes[ends[i][0]], to: b.nodes[ends[i][1]], bow: bow[i]}
 		if l.lay(0, 1.5) {
 			b.arrows = append(b.arrows, l)
 		}
@@ -97,7 +96,7 @@ func (b *builder) route() {
 		if !ok || !ok2 {
 			continue
 		}
-		l := &line{pair: [2]string{a.A, a.B}, arc: a, from: b.bodies[from], to: b.bodies[to]}
+		l := &line{pair: [2]string{a.A, a.B}, arc: a, from: b.nodes[from], to: b.nodes[to]}
 		l.bow = b.arcBow(l.from, l.to)
 		if l.lay(1.5, 1.5) {
 			b.arcs = append(b.arcs, l)
@@ -117,7 +116,7 @@ func (b *builder) arcBow(from, to *body) float64 {
 	for _, f := range []float64{1, -1, 1.7, -1.7, 2.4} {
 		hits := 0
 		for _, p := range sample(bow(from.at, to.at, size*f), 14*b.zoom) {
-			for _, n := range b.bodies {
+			for _, n := range b.nodes {
 				if n == from || n == to {
 					continue
 				}

@@ -1,13 +1,378 @@
 package scene
 
-// A Tool is what a drag on the sheet does.
-type Tool string
+import (
+	"math"
+	"slices"
 
-// The tools.
-const (
-	SelectTool   Tool = "select"
-	VariableTool Tool = "variable"
-	ArrowTool    Tool = "arrow"
-	CauseTool    Tool = "common cause"
-	PlateTool    Tool = "plate"
+	"arrowroot/canvas/draw"
+	"arrowroot/compile/study"
 )
+
+// A Hand turns events into answers. It remembers only the gesture in progress;
+// what is on the sheet comes with every event, so nothing can go stale.
+type Hand struct {
+	tool    Tool
+	grip    grip
+	start   draw.Point // of the gesture
+	dragged bool       // it has left the place where it began
+	target  Target     // what was pressed
+	shift   bool
+	view    View                   // when a pan began
+	places  map[string]study.Point // of the nodes that move, when the move began
+	before  Selection              // when a marquee began
+	link    Draft
+}
+
+// grip is what the gesture in progress does.
+type grip uint8
+
+const (
+	gripNone grip = iota
+	gripPan
+	gripMove
+	gripLink    // an arrow or arc by pointer
+	gripMarquee // picks nodes
+	gripPlate
+	gripKeys // an arrow or arc by keyboard: arrow keys aim, Return draws
+)
+
+// slack is how far the pointer may tremble before a press becomes a drag.
+const slack = 4.0
+
+// NewHand makes a hand with the select tool.
+func NewHand() *Hand { return &Hand{tool: SelectTool} }
+
+// Tool is the tool at hand.
+func (h *Hand) Tool() Tool { return h.tool }
+
+// Take takes another tool and drops the gesture in progress.
+func (h *Hand) Take(t Tool) { h.tool, h.grip = t, gripNone }
+
+// Busy reports whether a gesture is in progress.
+func (h *Hand) Busy() bool { return h.grip != gripNone }
+
+// Cursor is the shape of the pointer over a target.
+func (h *Hand) Cursor(over Target) Cursor {
+	switch {
+	case h.grip == gripPan || h.grip == gripMove:
+		return GrabCursor
+	case h.grip == gripLink || h.tool == VariableTool || h.tool == PlateTool:
+		return CrossCursor
+	case over.Kind == OnEdge, over.Kind == OnNode && h.tool != SelectTool:
+		return CrossCursor
+	case over.Kind != Nothing && h.tool == SelectTool:
+		return GrabCursor
+	}
+	return PlainCursor
+}
+
+// Handle answers one event.
+func (h *Hand) Handle(in *Input, m *Map, e Event) Answer {
+	switch e.Kind {
+	case Press:
+		return h.press(in, m, e)
+	case Move:
+		return h.move(in, m, e)
+	case Release:
+		return h.release(in, m, e)
+	case DoubleClick:
+		return h.double(in, m, e)
+	case Wheel:
+		v := in.View.ZoomAt(e.At, math.Pow(1.15, e.Turn))
+		return Answer{View: &v}
+	case Leave:
+		if h.grip == gripNone {
+			return Answer{Hover: &Target{}}
+		}
+	case Key:
+		return h.key(in, m, e)
+	}
+	return Answer{}
+}
+
+func (h *Hand) press(in *Input, m *Map, e Event) Answer {
+	if h.grip != gripNone && h.grip != gripKeys {
+		return Answer{} // a second button during a gesture
+	}
+	h.start, h.dragged, h.shift = e.At, false, e.Shift
+	h.target = m.Hit(e.At)
+	switch {
+	case e.Button == Middle, e.Button == Primary && e.Space:
+		h.grip, h.view = gripPan, in.View
+		return Answer{}
+	case e.Button == Secondary:
+		a := Answer{Menu: &h.target}
+		if !in.Selected.covers(h.target) {
+			s := only(h.target)
+			a.Select = &s
+		}
+		return a
+	}
+	switch h.tool {
+	case ArrowTool, CauseTool:
+		if h.target.Node != "" {
+			h.begin(h.target.Node, h.tool == CauseTool)
+		} else {
+			h.grip, h.before = gripMarquee, in.Selected
+		}
+		return Answer{}
+	case PlateTool:
+		h.grip = gripPlate
+		return Answer{}
+	case VariableTool:
+		if h.target.Node == "" {
+			return Answer{}
+		}
+	}
+	return h.pick(in)
+}
+
+// pick begins what the select tool does with the thing pressed.
+func (h *Hand) pick(in *Input) Answer {
+	t := h.target
+	switch t.Kind {
+	case OnEdge:
+		h.begin(t.Node, false)
+		return Answer{}
+	case Nothing:
+		h.grip, h.before = gripMarquee, in.Selected
+		return Answer{}
+	}
+	s := in.Selected
+	switch {
+	case h.shift:
+		s = s.toggled(t)
+	case !s.covers(t):
+		s = only(t)
+	}
+	if t.Kind == OnNode {
+		h.grip = gripMove
+		h.places = make(map[string]study.Point)
+		places := in.layout()
+		for _, id := range s.Nodes {
+			if p, ok := places[id]; ok {
+				h.places[id] = p
+			}
+		}
+	}
+	return Answer{Select: &s}
+}
+
+func (h *Hand) begin(from string, arc bool) {
+	h.grip = gripLink
+	h.link = Draft{From: from, Arc: arc}
+}
+
+func (h *Hand) move(in *Input, m *Map, e Event) Answer {
+	if h.grip == gripNone || h.grip == gripKeys {
+		t := m.Hit(e.At)
+		if t == in.Hover {
+			return Answer{}
+		}
+		return Answer{Hover: &t}
+	}
+	if !h.dragged && e.At.Sub(h.start).Len() < slack {
+		return Answer{}
+	}
+	h.dragged = true
+	switch h.grip {
+	case gripPan:
+		v := h.view
+		v.Pan = v.Pan.Add(e.At.Sub(h.start))
+		return Answer{View: &v}
+	case gripMove:
+		return Answer{Preview: &Preview{Moved: h.moved(in, e)}}
+	case gripLink:
+		h.aim(in, m.nodeAt(e.At), in.View.In(e.At))
+		d := h.link
+		return Answer{Preview: &Preview{Draw: &d}, Hover: &Target{}}
+	case gripMarquee, gripPlate:
+		box := spanned(h.start, e.At)
+		a := Answer{Preview: &Preview{Box: &box, Plate: h.grip == gripPlate}}
+		if h.grip == gripMarquee {
+			s := Selection{}
+			if h.shift {
+				s = h.before
+			}
+			for _, id := range m.Within(box) {
+				if !s.HasNode(id) {
+					s.Nodes = append(slices.Clone(s.Nodes), id)
+				}
+			}
+			a.Select = &s
+		}
+		return a
+	}
+	return Answer{}
+}
+
+// moved is where the nodes in the hand stand: the one that was pressed snaps
+// to the grid, the others keep their distance from it. Ctrl lets go of the grid.
+func (h *Hand) moved(in *Input, e Event) map[string]study.Point {
+	z := in.View.Scale()
+	dx, dy := (e.At.X-h.start.X)/z, (e.At.Y-h.start.Y)/z
+	if lead, ok := h.places[h.target.Node]; ok && !e.Ctrl {
+		dx, dy = snap(lead.X+dx)-lead.X, snap(lead.Y+dy)-lead.Y
+	}
+	to := make(map[string]study.Point, len(h.places))
+	for id, p := range h.places {
+		to[id] = study.Point{X: p.X + dx, Y: p.Y + dy}
+	}
+	return to
+}
+
+func snap(v float64) float64 { return math.Round(v/unit) * unit }
+
+// aim points the arrow in the hand; the study itself says whether it may be
+// drawn.
+func (h *Hand) aim(in *Input, to string, end study.Point) {
+	h.link.End = end
+	if to == h.link.From {
+		to = ""
+	}
+	if to == h.link.To {
+		return
+	}
+	h.link.To, h.link.Refuse = to, ""
+	if to == "" || in.Rival == nil {
+		return
+	}
+	d := in.Rival.Diagram
+	switch {
+	case h.link.Arc && d.Arc(h.link.From, to) != nil, !h.link.Arc && d.Arrow(h.link.From, to) != nil:
+		h.link.Refuse = "drawn already"
+	case !h.link.Arc:
+		if _, err := h.linkEdit(in).Apply(in.Study); err != nil {
+			h.link.Refuse = "would close a cycle"
+		}
+	}
+}
+
+// linkEdit draws the arrow or arc in the hand.
+func (h *Hand) linkEdit(in *Input) study.Edit {
+	if h.link.Arc {
+		return study.AddArc{Rival: in.Rival.Name, Arc: study.Arc{A: h.link.From, B: h.link.To}}
+	}
+	return study.AddArrow{Rival: in.Rival.Name, Arrow: study.Arrow{From: h.link.From, To: h.link.To}}
+}
+
+func (h *Hand) release(in *Input, m *Map, e Event) Answer {
+	g := h.grip
+	if g == gripNone || g == gripKeys {
+		if h.tool == VariableTool && e.Button == Primary && h.target.Kind == Nothing && in.Rival != nil {
+			return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
+		}
+		return Answer{}
+	}
+	h.grip = gripNone
+	if !h.dragged {
+		return h.click(in)
+	}
+	none := &Preview{}
+	switch g {
+	case gripMove:
+		to := h.moved(in, e)
+		if to[h.target.Node] == h.places[h.target.Node] || in.Rival == nil {
+			return Answer{Preview: none}
+		}
+		return Answer{Preview: none, Edit: study.MoveNodes{Rival: in.Rival.Name, To: to}}
+	case gripLink:
+		a := h.connect(in)
+		a.Preview = none
+		return a
+	case gripPlate:
+		ids := m.Within(spanned(h.start, e.At))
+		if len(ids) == 0 {
+			return Answer{Preview: none, Refuse: "A plate needs variables in it: draw the frame around some."}
+		}
+		return Answer{Preview: none, Name: &Naming{Members: ids, At: snapped(in.View.In(h.start))}}
+	}
+	return Answer{Preview: none}
+}
+
+// click is a press that never became a drag.
+func (h *Hand) click(in *Input) Answer {
+	t := h.target
+	s := only(t)
+	switch {
+	case t.Kind == OnNode && h.tool == SelectTool && (h.shift || !in.Selected.HasNode(t.Node) || len(in.Selected.Nodes) == 1):
+		return Answer{} // done on press
+	case h.shift && t.Kind == Nothing:
+		return Answer{}
+	case h.shift:
+		s = in.Selected.toggled(t)
+	}
+	return Answer{Select: &s}
+}
+
+// connect finishes an arrow or arc: onto a node it is drawn, onto the empty
+// sheet it gets a new variable at its end.
+func (h *Hand) connect(in *Input) Answer {
+	if in.Rival == nil {
+		return Answer{}
+	}
+	l := h.link
+	h.link = Draft{}
+	switch {
+	case l.To == "" && l.Arc:
+		return Answer{Refuse: "A common cause joins two variables: let go of it on the other one."}
+	case l.To == "":
+		return Answer{Name: &Naming{At: snapped(l.End), From: l.From}}
+	}
+	h.link = l
+	edit := h.linkEdit(in)
+	h.link = Draft{}
+	if _, err := edit.Apply(in.Study); err != nil {
+		return Answer{Refuse: err.Error()}
+	}
+	s := Selection{Arrows: [][2]string{{l.From, l.To}}}
+	if l.Arc {
+		s = Selection{Arcs: [][2]string{{l.From, l.To}}}
+	}
+	return Answer{Edit: nailed(in, edit), Select: &s}
+}
+
+func (h *Hand) double(in *Input, m *Map, e Event) Answer {
+	h.grip = gripNone
+	if e.Button != Primary {
+		return Answer{}
+	}
+	t := m.Hit(e.At)
+	switch t.Kind {
+	case Nothing:
+		if in.Rival == nil || h.tool == PlateTool {
+			return Answer{}
+		}
+		return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
+	case OnNode, OnEdge:
+		return Answer{Name: &Naming{Variable: t.Node}}
+	}
+	return Answer{Open: &t}
+}
+
+func snapped(p study.Point) study.Point { return study.Point{X: snap(p.X), Y: snap(p.Y)} }
+
+// spanned is the rectangle between two corners.
+func spanned(a, b draw.Point) draw.Rect {
+	return draw.Rect{X: a.X, Y: a.Y}.Union(draw.Rect{X: b.X, Y: b.Y})
+}
+
+// nailed adds to an edit the places of nodes that stand where the automatic
+// layout put them, so that drawing never makes the rest of the sheet jump.
+func nailed(in *Input, edit study.Edit) study.Edit {
+	if in.Rival == nil {
+		return edit
+	}
+	loose := make(map[string]study.Point)
+	for id, p := range in.layout() {
+		if in.Rival.Layout == nil {
+			loose[id] = p
+		} else if _, ok := in.Rival.Layout.At[id]; !ok {
+			loose[id] = p
+		}
+	}
+	if len(loose) == 0 {
+		return edit
+	}
+	return study.Several{Name: edit.Label(), Edits: []study.Edit{study.MoveNodes{Rival: in.Rival.Name, To: loose}, edit}}
+}

@@ -9,7 +9,7 @@ import (
 // drawNodes draws every node, those picked last so that nothing covers them.
 func (b *builder) drawNodes() {
 	var later []*body
-	for _, n := range b.bodies {
+	for _, n := range b.nodes {
 		if b.in.Selected.HasNode(n.id) {
 			later = append(later, n)
 			continue

@@ -46,7 +46,7 @@ func (b *builder) frames() {
 	for i, plate := range s.Plates {
 		var box draw.Rect
 		found := false
-		for _, n := range b.bodies {
+		for _, n := range b.nodes {
 			if n.variable == nil || !Holds(s, plate.Name, n.variable) {
 				continue
 			}

@@ -6,6 +6,10 @@ import "arrowroot/canvas/draw"
 func (b *builder) drawPreview() {
 	p := &b.in.Palette
 	pre := &b.in.Preview
+	if b.in.Focused {
+		ring := draw.Rect{X: 1, Y: 1, W: b.in.Width - 2, H: b.in.Height - 2}
+		b.list.Add(&draw.Shape{Path: draw.RoundRect(ring, 2), Stroke: draw.Alpha(p.Action, 0.55), Width: 1, Crisp: true})
+	}
 	if pre.Draw != nil {
 		b.drawDraft(pre.Draw)
 	}
@@ -32,10 +36,10 @@ func (b *builder) drawDraft(d *Draft) {
 		return
 	}
 	p := &b.in.Palette
-	from := b.bodies[i]
+	from := b.nodes[i]
 	target := &body{at: b.in.View.Out(d.End)}
 	if j, ok := b.index[d.To]; ok && d.To != d.From {
-		target = b.bodies[j]
+		target = b.nodes[j]
 	}
 	l := &line{from: from, to: target}
 	if d.Arc {

@@ -40,6 +40,8 @@ type Input struct {
 	LitPath   int // place in Reading.Paths of the path to mark alone; -1 = none (see NoPath)
 	HidePaths bool
 
+	Focused bool // the sheet has the keyboard
+
 	Palette Palette
 	Width   float64 // of the widget, in dips
 	Height  float64
@@ -48,6 +50,9 @@ type Input struct {
 
 	At map[string]study.Point // places of all nodes; nil = from the layout, missing ones by Arrange
 }
+
+// middle of the widget.
+func (in *Input) middle() draw.Point { return draw.Point{X: in.Width / 2, Y: in.Height / 2} }
 
 // NoPath in Input.LitPath means that no single path is picked out.
 const NoPath = -1
