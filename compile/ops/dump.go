@@ -100,7 +100,7 @@ func (g *graph) termsText(w *strings.Builder, n *node, names namer) {
 }
 
 // text is the schedule: its stages with their instructions, each with the slot
-// of its result.
+// of its result and, after semicolons, what else it gives in the same go.
 func (s *schedule) text() string {
 	var w strings.Builder
 	names := namer{}
@@ -122,8 +122,9 @@ func (s *schedule) text() string {
 			w.WriteString("  ")
 			s.g.line(&w, in.id, names)
 			fmt.Fprintf(&w, " -> s%d", in.dst)
-			if len(in.sums) > 0 {
-				fmt.Fprintf(&w, " with %d more over the same rows", len(in.sums)-1)
+			for _, v := range in.more {
+				w.WriteString("; ")
+				s.g.line(&w, v, names)
 			}
 			w.WriteByte('\n')
 		}

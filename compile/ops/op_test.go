@@ -103,7 +103,13 @@ var opChecks = map[op]func(b *bench) Value{
 	opSquare:    unary(func(b *bench, x Value) Value { return b.Square(x) }, anyNumber),
 	opAbs:       unary(func(b *bench, x Value) Value { return b.Abs(x) }, anyNumber),
 	opGather: func(b *bench) Value {
-		return b.Add(b.weighed(b.Gather(b.v, b.rows, b.toSmall)), b.weighed(b.Exp(b.Gather(b.u, b.rows, b.toGroup))),
+		index := make([]int32, groupRows)
+		for i := range index {
+			index[i] = int32(i % smallRows)
+		}
+		nested := b.Gather(b.Add(b.Gather(b.v, b.groups, index), b.u), b.rows, b.toGroup)
+		chained := b.Gather(b.Gather(b.v, b.groups, index), b.rows, b.toGroup)
+		return b.Add(b.weighed(b.Exp(nested)), b.weighed(b.Mul(chained, b.r)), b.weighed(b.Gather(b.v, b.rows, b.toSmall)), b.weighed(b.Exp(b.Gather(b.u, b.rows, b.toGroup))),
 			b.weighed(b.Mul(b.Gather(b.v, b.rows, b.toSmall), b.r)), b.weighed(b.Mul(b.Gather(b.u, b.rows, b.toGroup), b.x, b.s)))
 	},
 	opSumOver: func(b *bench) Value {

@@ -188,7 +188,7 @@ func (r *randomGraph) factor(p Plate) Value {
 // slow evaluator, its gradient with differences along random directions, and
 // all passes with none and with all but one.
 func TestRandomGraphs(t *testing.T) {
-	graphs := 60
+	graphs := 40
 	for seed := range uint64(graphs) {
 		t.Run(fmt.Sprint(seed), func(t *testing.T) {
 			r, v := newRandomGraph(seed)

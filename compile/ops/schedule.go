@@ -43,6 +43,7 @@ type stage struct {
 type instr struct {
 	run  func(f *frame, in *instr)
 	id   id
+	more []id // other values that it makes
 	node *node
 	rows int // of the domain, for a whole stage
 	dst  int32
@@ -445,7 +446,7 @@ func (p *planner) slotOf(n id) int32 {
 func (p *planner) instr(group []id) instr {
 	n := group[0]
 	nd := &p.g.nodes[n]
-	in := instr{id: n, node: nd, run: table[nd.op].run, rows: p.g.rows(p.g.domain(n)), dst: p.slot[n]}
+	in := instr{id: n, more: p.results(group)[1:], node: nd, run: table[nd.op].run, rows: p.g.rows(p.g.domain(n)), dst: p.slot[n]}
 	for _, a := range nd.args {
 		in.args = append(in.args, p.slotOf(a))
 	}
