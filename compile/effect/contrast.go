@@ -14,16 +14,23 @@ import (
 	"arrowroot/compile/study"
 )
 
-// Limits of simulation.
+// Limits of simulation. A unit of work is one evaluation of a law at one row,
+// 20 to 50 ns.
 const (
-	defaultBudget = 4e7  // law evaluations
+	defaultBudget = 5e7
 	fewestDraws   = 1000 // before rows are thinned: enough for an interval with an effective size of 400
 	fewestRows    = 2000
-	firstRounds   = 2    // replicates that show how large the simulation error is
-	moreWork      = 4    // budgets that further replicates may take
+	pilotDraws    = 64   // draws that show how large the simulation error is
 	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
-	quantileCost  = 4    // of simulating a value, in law evaluations
+	rounding      = 1e-9 // of the values compared: not worth a replicate
+	moreWork      = 3    // budgets that further replicates may take
 )
+
+// quantileWork is what simulating one value costs, in units of work, where it
+// is far from one (measured).
+var quantileWork = map[string]float64{
+	"Student t": 160, "gamma": 80, "beta": 80, "negative binomial": 50, "half-t": 160, "Poisson": 12, "binomial": 20,
+}
 
 // Simulate gives the contrast of a full model: expected outcomes with the
 // exposure set, what descends from it simulated from the fitted laws in order,
@@ -132,16 +139,16 @@ type simulation struct {
 	rows    *rowset
 	picked  []int // draws used
 	seeds   []uint64
-	rounds  int
+	perDraw int       // rounds
 	sums    []float64 // draw, arm, part: summed over rounds
-	squares []float64 // draw: sums of the rounds' contrasts and of their squares
+	rounds  []float64 // draw, round: the summary of that round alone
 	values  []float64
 	noise   float64 // simulation error of a value
-	clock   progress
 }
 
-// run fills values. Rounds of replicates are added until the simulation error
-// is small beside the posterior sd.
+// run fills values. If something is simulated, a pilot over some of the draws
+// tells how many rounds of replicates keep the simulation error small beside
+// the posterior sd.
 func (s *simulation) run(ctx context.Context, src rand.Source) error {
 	most := s.thin()
 	if s.rows.n == 0 || len(s.picked) == 0 {
@@ -151,33 +158,52 @@ func (s *simulation) run(ctx context.Context, src rand.Source) error {
 	for i := range s.seeds {
 		s.seeds[i] = src.Uint64()
 	}
-	s.sums = make([]float64, len(s.picked)*len(s.arms)*s.scale.parts())
-	s.squares = make([]float64, len(s.picked)*2)
-	s.values = make([]float64, len(s.picked))
-	target := 1
-	if s.plan.random > 0 && s.plan.moves {
-		target = firstRounds
-	}
-	s.clock = progress{tell: s.opt.Progress, of: target * len(s.picked)}
-	for s.rounds < target {
-		if err := s.add(ctx, target-s.rounds); err != nil {
+	rounds := 1
+	if s.plan.random > 0 {
+		noise, spread, size, err := s.pilot(ctx)
+		if err != nil {
 			return err
 		}
-		s.rounds = target
-		spread := s.conclude()
-		if target == 1 || target >= most || !(s.noise > tolerance*spread) || spread == 0 {
-			return nil
+		if ratio := noise / (tolerance * spread); ratio > 1 && noise > rounding*size {
+			rounds = int(math.Min(float64(most), math.Ceil(ratio*ratio)))
 		}
-		ratio := s.noise / (tolerance * spread)
-		target = min(most, max(target+1, int(math.Ceil(float64(target)*ratio*ratio))))
-		s.clock.of = target * len(s.picked)
+		s.noise = noise / math.Sqrt(float64(rounds))
 	}
-	return nil
+	return s.all(ctx, rounds)
+}
+
+// pilot runs two rounds of a few draws and gives the simulation error of one
+// round, the spread over draws without it, and the size of the averages.
+func (s *simulation) pilot(ctx context.Context) (noise, spread, size float64, err error) {
+	p := *s
+	p.picked, p.seeds, p.opt.Progress = nil, nil, nil
+	n := min(pilotDraws, len(s.picked))
+	for i := range n {
+		at := i * len(s.picked) / n
+		p.picked = append(p.picked, s.picked[at])
+		p.seeds = append(p.seeds, s.seeds[at])
+	}
+	if err := p.all(ctx, 2); err != nil {
+		return 0, 0, 0, err
+	}
+	within, between, mean := 0.0, 0.0, 0.0
+	for i, v := range p.values {
+		d := p.rounds[2*i] - p.rounds[2*i+1]
+		within += d * d / 2 / float64(n)
+		mean += v / float64(n)
+	}
+	for _, v := range p.values {
+		between += (v - mean) * (v - mean) / math.Max(1, float64(n-1))
+	}
+	for _, x := range p.sums {
+		size = math.Max(size, math.Abs(x))
+	}
+	return math.Sqrt(within), math.Sqrt(math.Max(0, between-within/2)), size, nil
 }
 
 // thin chooses draws and rows so that the work fits the budget, evenly and
 // without chance: draws down to fewestDraws first, then rows. It gives the
-// number of rounds that can be afforded when two do not suffice.
+// number of rounds that can be afforded when one does not suffice.
 func (s *simulation) thin() (most int) {
 	budget := s.opt.Budget
 	if budget <= 0 {
@@ -185,7 +211,14 @@ func (s *simulation) thin() (most int) {
 	}
 	perRow := float64(len(s.arms))
 	if s.plan.random > 0 {
-		perRow *= 2 * firstRounds * float64(1+quantileCost*s.plan.random)
+		work := 1.0
+		for _, st := range s.plan.steps {
+			work++
+			if st.law != nil {
+				work += quantileWork[st.law.Family.Name]
+			}
+		}
+		perRow *= 2 * work // mirrored
 	}
 	rows := s.m.Rows.Used
 	afford := int(budget / (perRow * float64(max(rows, 1))))
@@ -200,48 +233,17 @@ func (s *simulation) thin() (most int) {
 		rows = min(rows, max(fewestRows, int(float64(rows)*budget/cost)))
 	}
 	s.rows = rowsOf(s.m, rows)
-	perRound := perRow / firstRounds * float64(s.rows.n) * float64(len(s.picked))
-	return max(firstRounds, int(moreWork*budget/perRound))
+	return max(1, int(moreWork*budget/(perRow*float64(s.rows.n)*float64(len(s.picked)))))
 }
 
-// mean is the average of an arm's parts over the rounds of draw i.
-func (s *simulation) mean(i, arm int) []float64 {
-	k := s.scale.parts()
-	out := make([]float64, k)
-	for j := range out {
-		out[j] = s.sums[(len(s.arms)*i+arm)*k+j] / float64(s.rounds)
-	}
-	return out
-}
-
-// conclude sets values and error from what was summed, and gives the spread
-// of the values over draws without their simulation error.
-func (s *simulation) conclude() float64 {
-	n, r := float64(len(s.values)), float64(s.rounds)
-	within, mean := 0.0, 0.0
-	sides := make([][]float64, len(s.arms))
-	for i := range s.values {
-		for a := range sides {
-			sides[a] = s.mean(i, a)
-		}
-		s.values[i] = s.summary(sides)
-		mean += s.values[i] / n
-		if s.rounds > 1 {
-			sum, square := s.squares[2*i], s.squares[2*i+1]
-			within += math.Max(0, square-sum*sum/r) / (r - 1) / n
-		}
-	}
-	s.noise = math.Sqrt(within / r)
-	between := 0.0
-	for _, v := range s.values {
-		between += (v - mean) * (v - mean) / math.Max(1, n-1)
-	}
-	return math.Sqrt(math.Max(0, between-within/r))
-}
-
-// add evaluates more rounds of every draw, on all cores. What a draw gives
-// depends on its seed and round alone.
-func (s *simulation) add(ctx context.Context, rounds int) error {
+// all evaluates that many rounds of every draw, on all cores, and sets values.
+// What a draw gives depends on its seed and rounds alone.
+func (s *simulation) all(ctx context.Context, rounds int) error {
+	s.perDraw = rounds
+	s.sums = make([]float64, len(s.picked)*len(s.arms)*s.scale.parts())
+	s.rounds = make([]float64, len(s.picked)*rounds)
+	s.values = make([]float64, len(s.picked))
+	clock := progress{tell: s.opt.Progress, of: len(s.picked)}
 	workers := min(runtime.GOMAXPROCS(0), len(s.picked))
 	var wait sync.WaitGroup
 	for g := range workers {
@@ -254,14 +256,31 @@ func (s *simulation) add(ctx context.Context, rounds int) error {
 					if ctx.Err() != nil {
 						return
 					}
-					b.round(i, s.rounds+r)
-					s.clock.tick()
+					b.round(i, r)
 				}
+				clock.tick()
 			}
 		}()
 	}
 	wait.Wait()
+	sides := make([][]float64, len(s.arms))
+	for i := range s.values {
+		for a := range sides {
+			sides[a] = s.mean(i, a)
+		}
+		s.values[i] = s.summary(sides)
+	}
 	return ctx.Err()
+}
+
+// mean is the average of an arm's parts over the rounds of draw i.
+func (s *simulation) mean(i, arm int) []float64 {
+	k := s.scale.parts()
+	out := make([]float64, k)
+	for j := range out {
+		out[j] = s.sums[(len(s.arms)*i+arm)*k+j] / float64(s.perDraw)
+	}
+	return out
 }
 
 // change is the difference between two averages or, of several levels, the
@@ -339,9 +358,7 @@ func (b *bench) round(i, round int) {
 			b.sums[(len(b.arms)*i+a)*k+j] += x
 		}
 	}
-	c := b.summary(b.sides)
-	b.squares[2*i] += c
-	b.squares[2*i+1] += c * c
+	b.rounds[i*b.perDraw+round] = b.summary(b.sides)
 }
 
 // open is a uniform number strictly between 0 and 1.

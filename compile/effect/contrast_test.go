@@ -197,7 +197,7 @@ func TestLogisticIsAveraged(t *testing.T) {
 	s.variable("y", study.Binary, x)
 	s.law("m", "normal", "0.7 * x + 0.4 * z", "1.3")
 	s.law("y", "Bernoulli", "-0.5 + 1.2 * m - 0.8 * x + 1.5 * z")
-	got, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, ask("x", "y", 0, 1), s.draws(400), source(), Options{})
+	got, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, ask("x", "y", 0, 1), s.draws(400), source(), Options{Budget: 2e6})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -219,14 +219,14 @@ func TestLogisticIsAveraged(t *testing.T) {
 
 	q := ask("x", "y", 0, 1)
 	q.As = study.Ratio
-	ratio, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(400), source(), Options{})
+	ratio, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(400), source(), Options{Budget: 2e6})
 	if err != nil {
 		t.Fatal(err)
 	}
 	near(t, "ratio of averages", mean(ratio.Values), truth[1]/truth[0], 0.003)
 	q.As, q.OutcomeLevels = "", []string{"no"}
 	s.m.Variables[3].Levels = []string{"no", "yes"}
-	no, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(400), source(), Options{})
+	no, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(400), source(), Options{Budget: 2e6})
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -276,7 +276,7 @@ func TestSimulationErrorIsSmall(t *testing.T) {
 	s.law("y", "gamma", "0.3 * m", "2")
 	rng := rand.New(rand.NewPCG(3, 4))
 	var draws [][]float64
-	exact := make([]float64, 500)
+	exact := make([]float64, 200)
 	for i := range exact {
 		b := 0.5 + 0.05*rng.NormFloat64()
 		draws = append(draws, []float64{b})

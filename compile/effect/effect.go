@@ -36,7 +36,7 @@ const defaultLevel = 0.9
 // Options of the functions that can take long. The zero value is usable.
 type Options struct {
 	Progress func(done, of int) // called between draws, from one goroutine at a time
-	Budget   float64            // law evaluations (rows × draws × arms) before draws and then rows are thinned; 0 = 4e7
+	Budget   float64            // law evaluations (rows × draws × arms) before draws and then rows are thinned; 0 = 5e7
 	Level    float64            // credible level of intervals in words; 0 = 0.9
 }
 

@@ -286,8 +286,30 @@ func (w *worker) simulate(dst []float64, l *law, u []float64, mirrored bool) {
 		if mirrored {
 			p = 1 - p
 		}
-		dst[i] = l.Family.Quantile(p, w.row(&e, i))
+		dst[i] = quantileOf(l, p, w.row(&e, i))
 	}
+}
+
+// quantileOf is the family's quantile with arguments kept inside their
+// supports, where a draw far out has rounded them to its edge; NaN if one is
+// no number.
+func quantileOf(l *law, p float64, args []float64) float64 {
+	const nearly = 1e-12
+	for i, x := range args {
+		if math.IsNaN(x) {
+			return x
+		}
+		if l.levels > 0 {
+			continue
+		}
+		switch l.Family.Arguments[i].Support {
+		case catalog.Unit:
+			args[i] = math.Min(math.Max(x, nearly), 1-nearly)
+		case catalog.Positives:
+			args[i] = math.Min(math.Max(x, 1e-300), 1e300)
+		}
+	}
+	return l.Family.Quantile(p, args)
 }
 
 // A scale says what of a variable is averaged: its expectation, the
