@@ -26,7 +26,6 @@ func (r reader) column(fields []span) *Column {
 	}
 	c := &Column{Kind: Numeric, Numbers: make([]float64, len(fields))}
 	numbers, signs := 0, 0
-	var signed []int // rows with a percent sign, while they are few
 	for i, f := range fields {
 		text := f.in(r.text)
 		c.Numbers[i] = math.NaN()
@@ -35,7 +34,6 @@ func (r reader) column(fields []span) *Column {
 			numbers++
 			if percent {
 				signs++
-				signed = append(signed, i)
 			}
 			continue
 		}

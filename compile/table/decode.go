@@ -10,20 +10,21 @@ import (
 
 // decode turns bytes into text and says what it assumed if that was not plain.
 func decode(data []byte) (text, note string, fault *Error) {
+	bare := bytes.TrimPrefix(data, []byte("\ufeff"))
 	switch {
 	case bytes.HasPrefix(data, []byte{0xff, 0xfe}):
-		return utf16Text(data[2:], binary.LittleEndian), "read as UTF-16", nil
+		text, note = utf16Text(data[2:], binary.LittleEndian), "read as UTF-16"
 	case bytes.HasPrefix(data, []byte{0xfe, 0xff}):
-		return utf16Text(data[2:], binary.BigEndian), "read as UTF-16", nil
+		text, note = utf16Text(data[2:], binary.BigEndian), "read as UTF-16"
+	case utf8.Valid(bare):
+		text = string(bare)
+	default:
+		text, note = windows1252(bare), "not UTF-8; read as Windows-1252"
 	}
-	data = bytes.TrimPrefix(data, []byte("\ufeff"))
-	if at := bytes.IndexByte(data, 0); at >= 0 {
-		return "", "", &Error{Line: 1 + bytes.Count(data[:at], []byte{'\n'}), Reason: "there is a zero byte; this is not a text file"}
+	if at := strings.IndexByte(text, 0); at >= 0 {
+		return "", "", &Error{Line: 1 + strings.Count(text[:at], "\n"), Reason: "there is a zero byte; this is not a text file"}
 	}
-	if utf8.Valid(data) {
-		return string(data), "", nil
-	}
-	return windows1252(data), "not UTF-8; read as Windows-1252", nil
+	return text, note, nil
 }
 
 func utf16Text(data []byte, order binary.ByteOrder) string {

@@ -74,6 +74,8 @@ func proposeNumbers(c *Column) Proposal {
 		return set("binary", "0 and 1")
 	case f.whole && f.low >= 1 && f.high <= 10 && f.high-f.low >= 2 && f.n >= 20:
 		return set("count", "whole numbers %s: a count, or steps of an ordered scale", from)
+	case f.whole && f.low == 1 && f.high == 2:
+		return set("count", "1 and 2: a count, or a code for two groups")
 	case f.whole && f.low >= 1500 && f.high <= 2200:
 		return set("real", "whole numbers %s, perhaps years", from)
 	case f.whole && f.low >= 0 && f.low <= 10:
@@ -170,6 +172,7 @@ var orders = [...][]string{
 	{"cold", "cool", "mild", "warm", "hot"},
 	{"dry", "moist", "wet"},
 	{"early", "mid", "late"},
+	{"l", "m", "h"},
 	{"primary", "secondary", "tertiary"},
 }
 

@@ -36,6 +36,11 @@ func (e *Error) Error() string {
 	return fmt.Sprintf("%s, line %d: %s", e.Name, e.Line, e.Reason)
 }
 
+const (
+	nothing  = "there is nothing in it"
+	tooLarge = "it is larger than 2 GB"
+)
+
 // largest is the number of bytes up to which a file is read: places of fields
 // are held in 31 bits.
 const largest = 1<<31 - 1
@@ -85,13 +90,16 @@ func Read(name string, r io.Reader, opt Options) (*Table, error) {
 
 func (t *Table) read(data []byte, opt Options) *Error {
 	if len(data) > largest {
-		return &Error{Reason: "it is larger than 2 GB"}
+		return &Error{Reason: tooLarge}
 	}
 	sum := sha256.Sum256(data)
 	t.SHA256 = hex.EncodeToString(sum[:])
 	text, note, fault := decode(data)
 	if fault != nil {
 		return fault
+	}
+	if len(text) > largest {
+		return &Error{Reason: tooLarge}
 	}
 	if note != "" {
 		t.note("%s", note)
@@ -110,6 +118,9 @@ func (t *Table) read(data []byte, opt Options) *Error {
 		decimal:   opt.Decimal,
 		missing:   newSpellings(opt.Missing),
 	})
+	if len(t.Columns) == 0 {
+		return &Error{Reason: nothing}
+	}
 	return nil
 }
 

@@ -103,6 +103,7 @@ func TestReadCountsWhatIsMissing(t *testing.T) {
 func TestReadSays(t *testing.T) {
 	for _, c := range []struct{ text, want string }{
 		{"", "traps.csv: there is nothing in it"},
+		{",\n,", "traps.csv: there is nothing in it"},
 		{"\n \n", "traps.csv: there is nothing in it"},
 		{"a,b,c\n1,2,3\n\n1,2\n", "traps.csv, line 4: the line has 2 entries, the heading 3; “c” is the first without one"},
 		{"a,b\n1,2\n1,2,extra\n", "traps.csv, line 3: the line has 3 entries, the heading 2; the first too many is “extra”"},

@@ -201,7 +201,7 @@ func readFields(text string, separator byte) (names []string, columns [][]span, 
 		fault = wrong
 	}
 	if fault == nil && names == nil {
-		fault = &Error{Reason: "there is nothing in it"}
+		fault = &Error{Reason: nothing}
 	}
 	return names, columns, fault
 }
