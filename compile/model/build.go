@@ -1,6 +1,7 @@
 package model
 
 import (
+	"errors"
 	"fmt"
 
 	"arrowroot/compile/catalog"
@@ -101,6 +102,7 @@ type draft struct {
 	products int                // of them
 	span     linkRange          // of the child
 	anchor   map[meaning]string // the plate whose entries vary around a parameter itself
+	around0  []meaning          // entries that were typed as deviations
 }
 
 // A carrier is a carried term by name.
@@ -111,68 +113,30 @@ type carrier struct {
 
 // frame finds the rival and its graph.
 func (b *builder) frame(rival string) {
-	for _, r := range b.study.Rivals {
-		if r.Name == rival {
-			b.rival = r
-		}
-	}
+	b.rival = b.study.Rival(rival)
 	if b.rival == nil {
 		b.stop(Problem{Code: "rival", Message: fmt.Sprintf("There is no rival named %s in this study.", rival)})
 		return
 	}
-	spec, problem := b.sheet()
-	if problem != nil {
-		b.stop(*problem)
-		return
-	}
-	g, err := graph.New(spec)
-	if err != nil {
-		b.stop(Problem{Code: "cycle", Place: "sheet", Message: capital(err.Error()) + "."})
-		return
+	g, err := b.study.Graph(rival)
+	var cycle *graph.CycleError
+	switch {
+	case errors.As(err, &cycle):
+		b.stop(b.cycle(cycle))
+	case err != nil:
+		b.stop(Problem{Code: "sheet", Place: "sheet", Message: capital(err.Error()) + "."})
 	}
 	b.graph = g
 }
 
-// sheet reads the diagram as a graph, nodes in the diagram's order.
-func (b *builder) sheet() (graph.Spec, *Problem) {
-	var spec graph.Spec
-	place := make(map[string]int)
-	d := b.rival.Diagram
-	if d == nil {
-		d = &study.Diagram{}
-		b.rival = &study.Rival{Name: b.rival.Name, Diagram: d}
+// cycle names the arrows that close a cycle and offers to delete each.
+func (b *builder) cycle(e *graph.CycleError) Problem {
+	p := Problem{Code: "cycle", Variable: e.Cycle[0], Place: "sheet", Message: capital(e.Error()) + "."}
+	for i := range len(e.Cycle) - 1 {
+		from, to := e.Cycle[i], e.Cycle[i+1]
+		p.Repairs = append(p.Repairs, Repair{Label: "Delete " + from + " → " + to, Edit: removeArrow(b.rival.Name, from, to)})
 	}
-	for _, n := range d.Nodes {
-		v := b.variable(n.Variable)
-		if v == nil {
-			return spec, &Problem{Code: "unknown", Variable: n.Variable, Place: "sheet", Message: fmt.Sprintf("The sheet shows %s, which the ledger does not list.", n.Variable)}
-		}
-		i := len(spec.Names)
-		place[v.ID] = i
-		spec.Names = append(spec.Names, v.ID)
-		if v.Unmeasured {
-			spec.Unmeasured = append(spec.Unmeasured, i)
-		}
-		if v.Computed != "" {
-			spec.Computed = append(spec.Computed, i)
-		}
-	}
-	ends := func(a, b string) ([2]int, bool) {
-		i, ok := place[a]
-		j, also := place[b]
-		return [2]int{i, j}, ok && also
-	}
-	for _, a := range d.Arrows {
-		if e, ok := ends(a.From, a.To); ok {
-			spec.Arrows = append(spec.Arrows, e)
-		}
-	}
-	for _, a := range d.Arcs {
-		if e, ok := ends(a.A, a.B); ok && a.A != a.B {
-			spec.Arcs = append(spec.Arcs, e)
-		}
-	}
-	return spec, nil
+	return p
 }
 
 // fitted lists the rival's measured laws in fitting order.

@@ -3,7 +3,6 @@ package model
 import (
 	"fmt"
 	"math"
-	"sort"
 	"strconv"
 	"strings"
 
@@ -55,7 +54,7 @@ func (b *builder) read(c *column) {
 		return
 	}
 	if v.Scale == "" {
-		b.noScale(v)
+		b.noScale(v, source)
 	}
 	switch v.Scale {
 	case study.Binary:
@@ -112,10 +111,19 @@ func likely(v *study.Variable, names []string) string {
 }
 
 // noScale says that a variable is read as real until somebody says better.
-func (b *builder) noScale(v *study.Variable) {
-	p := Problem{Code: "no-scale", Variable: v.ID, Place: "scale",
-		Message: fmt.Sprintf("Nobody has said yet what values %s can take; it is read as a real number.", v.ID)}
-	b.report(p)
+func (b *builder) noScale(v *study.Variable, source *table.Column) {
+	guess := table.Propose(source)
+	to := *v
+	to.Scale = study.Scale(guess.Scale)
+	if len(to.Levels) == 0 {
+		to.Levels = guess.Levels
+	}
+	if guess.Percent && to.Divide == 0 {
+		to.Divide = 100
+	}
+	b.report(Problem{Code: "no-scale", Variable: v.ID, Place: "scale",
+		Message: fmt.Sprintf("Nobody has said yet what values %s can take; it is read as a real number. The column holds %s.", v.ID, guess.Words),
+		Repairs: []Repair{{Label: "Take it as " + a(to.Scale), Edit: changeVariable(to)}}})
 }
 
 // readNumbers reads a numeric variable, divided as the ledger says.
@@ -142,23 +150,28 @@ func (b *builder) readNumbers(c *column, source *table.Column) {
 // strange reports text among numbers. The table holds it as missing already;
 // somebody must agree to that before rows are lost to it.
 func (b *builder) strange(v *study.Variable, source *table.Column) {
-	if len(source.Strange) == 0 {
+	var odd []table.Strange
+	for _, s := range source.Strange {
+		if !contains(v.Missing, s.Text) {
+			odd = append(odd, s)
+		}
+	}
+	if len(odd) == 0 {
 		return
 	}
-	first := source.Strange[0]
 	n := 0
 	for _, x := range source.Numbers {
 		if !math.IsNaN(x) {
 			n++
 		}
 	}
-	where := fmt.Sprintf("%s, row %d, column %s: “%s” is not a number", b.table.Name, first.Row+1, source.Name, first.Text)
-	if more := len(source.Strange) - 1; more > 0 {
-		where += fmt.Sprintf(", nor are %d more", more)
+	text := fmt.Sprintf("%s, row %d, column %s: “%s” is not a number", b.table.Name, odd[0].Row+1, source.Name, odd[0].Text)
+	if more := len(odd) - 1; more > 0 {
+		text += fmt.Sprintf(", nor are %d more entries", more)
 	}
-	b.report(Problem{Code: "text-in-number", Variable: v.ID, Place: "data",
-		Message: fmt.Sprintf("%s. %d other entries are.", where, n),
-		Repairs: treatAsMissing(b.study, v, source)})
+	b.report(Problem{Code: "text-in-number", Variable: v.ID, Place: "data", Stops: true,
+		Message: fmt.Sprintf("%s. %d other entries are.", text, n),
+		Repairs: []Repair{treatAsMissing(v, odd)}})
 }
 
 // readBinary reads 0 and 1, or two words.
@@ -168,8 +181,8 @@ func (b *builder) readBinary(c *column, source *table.Column) {
 	want := v.Levels
 	if len(want) != 2 {
 		want = append([]string(nil), levels...)
-		if source.Kind == table.Words {
-			sort.Strings(want)
+		if guess := table.Propose(source); len(guess.Levels) == 2 {
+			want = guess.Levels
 		}
 		if len(want) == 1 && (want[0] == "0" || want[0] == "1") {
 			want = []string{"0", "1"}

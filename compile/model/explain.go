@@ -2,6 +2,7 @@ package model
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 
@@ -19,9 +20,11 @@ func (b *builder) explain(string) {
 	if b.broken {
 		return
 	}
-	for id, own := range b.declared {
-		_, bare := b.scope[id]
-		if !own.used && (bare || b.kind == Full) && b.draftOf(own.owner) != nil {
+	if len(b.model.Laws) == 0 {
+		b.stop(Problem{Code: "nothing", Place: "sheet", Message: "There is nothing to fit on this sheet yet: draw an arrow into a measured variable."})
+	}
+	for _, id := range slices.Sorted(maps.Keys(b.declared)) {
+		if own := b.declared[id]; !own.used && b.kind == Full && b.draftOf(own.owner) != nil {
 			b.unusedPrior(id, own)
 		}
 	}
@@ -51,7 +54,7 @@ func (b *builder) explainOne(d *draft) {
 	if !b.levels(d) {
 		return
 	}
-	if i := argumentAt(d.family, "trials"); i >= 0 {
+	if i := d.family.Argument("trials"); i >= 0 {
 		d.law.Trials = d.given[i]
 	}
 	b.spanOf(d)
@@ -453,7 +456,8 @@ func (b *builder) resolveBy(d *draft, id, plate string) formula.Expr {
 		m.role, m.plate = baselineBy, plate
 	case canonical && m.role == slope:
 		m.role, m.plate = slopeBy, plate
-	case canonical:
+	case canonical: // "alpha_bees_year by year": deviations around 0
+		d.around0 = append(d.around0, m)
 	default:
 		m = meaning{role: freeBy, name: id, plate: plate}
 	}

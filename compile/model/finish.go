@@ -1,7 +1,6 @@
 package model
 
 import (
-	"slices"
 	"strings"
 
 	"arrowroot/compile/catalog"
@@ -127,10 +126,4 @@ func moments(values []float64) (mean, variance float64) {
 		variance += (x - mean) * (x - mean) / n
 	}
 	return mean, variance
-}
-
-func sorted(s []string) []string {
-	out := append([]string(nil), s...)
-	slices.Sort(out)
-	return out
 }

@@ -54,15 +54,15 @@ func (b *builder) nameParameters() {
 			}
 		}
 		for _, p := range b.study.Plates {
-			b.name("alpha_"+v+"_"+p.Name, meaning{role: baselineBy, child: v, plate: p.Name})
-			b.name("tau_"+v+"_"+p.Name, meaning{role: baselineSD, child: v, plate: p.Name})
+			b.name("alpha_"+v+"_"+clean(p.Name), meaning{role: baselineBy, child: v, plate: p.Name})
+			b.name("tau_"+v+"_"+clean(p.Name), meaning{role: baselineSD, child: v, plate: p.Name})
 		}
 		for _, p := range b.parentsOf(d) {
 			b.name("beta_"+p+"_"+v, meaning{role: slope, child: v, parent: p})
 			b.name("step_"+p+"_"+v, meaning{role: steps, child: v, parent: p})
 			for _, l := range b.study.Plates {
-				b.name("beta_"+p+"_"+v+"_"+l.Name, meaning{role: slopeBy, child: v, parent: p, plate: l.Name})
-				b.name("tau_"+p+"_"+v+"_"+l.Name, meaning{role: slopeSD, child: v, parent: p, plate: l.Name})
+				b.name("beta_"+p+"_"+v+"_"+clean(l.Name), meaning{role: slopeBy, child: v, parent: p, plate: l.Name})
+				b.name("tau_"+p+"_"+v+"_"+clean(l.Name), meaning{role: slopeSD, child: v, parent: p, plate: l.Name})
 			}
 			for _, a := range d.arrows {
 				if a.From != p && hasArrow(d.arrows, p) {
@@ -180,10 +180,13 @@ func (b *builder) unit(d *draft, parents ...string) string {
 		per += " per " + u
 	}
 	per = strings.TrimSpace(per)
-	if per != "" && scale != "" {
-		return per + ", " + scale
+	switch {
+	case per == "" || scale == "":
+		return per + scale
+	case d.family.Link == catalog.Identity:
+		return scale + " " + per
 	}
-	return per + scale
+	return per + ", " + scale
 }
 
 // clean makes a word fit to stand in a name.

@@ -292,6 +292,32 @@ func (b *builder) parseFormula(d *draft) {
 	if b.checkNames(d, p.Right, at, fix) {
 		d.formula = p.Right
 		b.unusedArrows(d, at, fix)
+		b.unusedPlates(d, at, fix)
+	}
+}
+
+// unusedPlates finds plates over which the baseline is said to vary while the
+// typed formula has one baseline for all.
+func (b *builder) unusedPlates(d *draft, at Problem, fix func(string) study.Edit) {
+	_, varies := typedParts(at.Text, d.variable.ID)
+	alpha := b.names[meaning{role: baseline, child: d.variable.ID}]
+	for _, plate := range d.user.VariesBy {
+		if contains(varies, plate) {
+			continue
+		}
+		p := at
+		p.Code = "unused-plate"
+		p.Message = fmt.Sprintf("the baseline of %s is said to vary by %s, but its formula does not say so", d.variable.ID, plate)
+		if span := spanOf(d.formula, alpha); span.End > 0 && len(varies) == 0 {
+			p.Span = span
+			p.Repairs = append(p.Repairs, Repair{Label: "Let it vary", Edit: fix(at.Text[:span.End] + " by " + plate + at.Text[span.End:])})
+		} else {
+			p.Span = formula.Span{Start: len(at.Text), End: len(at.Text)}
+		}
+		p.Repairs = append(p.Repairs, Repair{Label: "Keep one baseline", Edit: b.changeLaw(d.variable.ID, func(l *study.Law) {
+			l.VariesBy = slices.DeleteFunc(l.VariesBy, func(p string) bool { return p == plate })
+		})})
+		b.report(p)
 	}
 }
 
@@ -347,7 +373,7 @@ func (b *builder) parseArguments(d *draft) {
 			return b.changeLaw(v.ID, func(l *study.Law) { l.Arguments[n].Text = text })
 		}
 		drop := Repair{Label: "Drop it", Edit: b.changeLaw(v.ID, func(l *study.Law) { l.Arguments = slices.Delete(l.Arguments, n, n+1) })}
-		i := argumentAt(f, arg.Name)
+		i := f.Argument(arg.Name)
 		if i < 0 {
 			at.Code = "unknown-argument"
 			at.Message = fmt.Sprintf("%s has no argument *%s*; it has %s", article(f.Name), arg.Name, list(argumentNames(f)))
@@ -389,7 +415,7 @@ func (b *builder) parseArguments(d *draft) {
 			d.given[i] = e
 		}
 	}
-	if i := argumentAt(f, "trials"); i >= 0 && d.given[i] == nil && !b.broken {
+	if i := f.Argument("trials"); i >= 0 && d.given[i] == nil && !b.broken {
 		b.stop(Problem{Code: "no-trials", Variable: v.ID, Place: "argument",
 			Message: fmt.Sprintf("%s ~ %s: out of how many trials? Give a number or a column.", v.ID, f.Name),
 			Repairs: b.trialRepairs(v)})
@@ -419,15 +445,6 @@ func (b *builder) trialRepairs(v *study.Variable) []Repair {
 		}
 	}
 	return repairs
-}
-
-func argumentAt(f *catalog.Family, name string) int {
-	for i, a := range f.Arguments {
-		if a.Name == name || contains(a.Also, name) {
-			return i
-		}
-	}
-	return -1
 }
 
 func argumentNames(f *catalog.Family) []string {

@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strings"
 
 	"arrowroot/compile/catalog"
@@ -43,9 +44,9 @@ func (b *builder) parameterName(m meaning) string {
 	}
 	switch m.role {
 	case freeBy:
-		return b.name(m.name+"_"+m.plate, m)
+		return b.name(m.name+"_"+clean(m.plate), m)
 	case freeSD:
-		return b.name("tau_"+m.name+"_"+m.plate, m)
+		return b.name("tau_"+m.name+"_"+clean(m.plate), m)
 	case steps, stepsProduct: // of a category child, one for each of its levels
 		d := b.draftOf(m.child)
 		level := b.model.Variables[d.law.Variable].Levels[m.at-1]
@@ -199,13 +200,16 @@ func (b *builder) argumentPrior(d *draft, stem string, p *Parameter) {
 // itself. Only those of the first plate do; the mean would count twice
 // otherwise.
 func (b *builder) anchors(mean, own meaning, d *draft) bool {
+	if slices.Contains(d.around0, own) || mean.role == baseline && d.family.Link == catalog.Cumulate {
+		return false
+	}
 	if d.anchor == nil {
 		d.anchor = make(map[meaning]string)
 	}
 	if _, taken := d.anchor[mean]; !taken {
 		d.anchor[mean] = own.plate
 	}
-	return d.anchor[mean] == own.plate && !(mean.role == baseline && d.family.Link == catalog.Cumulate)
+	return d.anchor[mean] == own.plate
 }
 
 // reason is why a slope's default sd is what it is: "4 parents; range of bees
@@ -424,7 +428,7 @@ func (b *builder) inProgress(id string) bool { return contains(b.making, id) }
 func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fault func(string, ...any)) ([]formula.Expr, bool) {
 	args := make([]formula.Expr, len(f.Arguments))
 	for _, a := range phrase.Arguments {
-		i := argumentAt(f, a.Name)
+		i := f.Argument(a.Name)
 		if i < 0 {
 			fault("%s has no argument *%s*; it has %s", article(f.Name), a.Name, list(argumentNames(f)))
 			return nil, false

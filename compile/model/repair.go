@@ -52,6 +52,13 @@ func (b *builder) onto(from, to string) study.Edit {
 }
 
 // treatAsMissing lets text in a numeric column stand for missing entries.
-func treatAsMissing(s *study.Study, v *study.Variable, source *table.Column) []Repair {
-	return nil
+func treatAsMissing(v *study.Variable, odd []table.Strange) Repair {
+	to := *v
+	to.Missing = append([]string(nil), v.Missing...)
+	for _, s := range odd {
+		if !contains(to.Missing, s.Text) {
+			to.Missing = append(to.Missing, s.Text)
+		}
+	}
+	return Repair{Label: "Treat as missing", Edit: changeVariable(to)}
 }

@@ -2,6 +2,8 @@ package model
 
 import (
 	"fmt"
+	"maps"
+	"slices"
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
@@ -135,9 +137,7 @@ func (b *builder) unknownName(d *draft, n *formula.Name, fault faultFunc, replac
 	for _, a := range d.arrows {
 		parameters = append(parameters, b.names[meaning{role: slope, child: v, parent: a.From}])
 	}
-	for id := range b.declared {
-		parameters = append(parameters, id)
-	}
+	parameters = append(parameters, slices.Sorted(maps.Keys(b.declared))...)
 	declare := Repair{Label: "Make it a parameter", Edit: b.changeLaw(v, func(l *study.Law) {
 		l.Priors = append(l.Priors, study.Prior{Parameter: n.ID, Text: "normal with mean 0, sd 1"})
 	})}
@@ -145,7 +145,7 @@ func (b *builder) unknownName(d *draft, n *formula.Name, fault faultFunc, replac
 		fault(n.Span, "unknown-name", fmt.Sprintf("there is no variable *%s*; did you mean *%s*?", n.ID, near), replace(n.Span, near), declare)
 		return
 	}
-	if near := nearest(n.ID, sorted(parameters)); near != "" {
+	if near := nearest(n.ID, parameters); near != "" {
 		fault(n.Span, "unknown-name", fmt.Sprintf("there is no parameter *%s*; did you mean *%s*?", n.ID, near), replace(n.Span, near), declare)
 		return
 	}
