@@ -2,8 +2,10 @@ package scene
 
 import (
 	"image/png"
+	"math/rand/v2"
 	"os"
 	"testing"
+	"time"
 
 	"arrowroot/canvas/draw"
 	"arrowroot/compile/study"
@@ -43,4 +45,47 @@ func TestLook(t *testing.T) {
 	save(t, "s3", in, 1.5)
 	in.View = View{Zoom: 0.5}
 	save(t, "s4", in, 1)
+}
+
+// big is 28 nodes and 99 arrows drawn at random.
+func big() *study.Study {
+	rng := rand.New(rand.NewPCG(7, 9))
+	s := &study.Study{}
+	words := []string{"income", "education", "age", "smoking", "diet", "exercise", "housing", "noise", "air quality", "traffic", "stress", "sleep", "weight", "pressure", "lipids", "glucose", "medicine", "visits", "insurance", "region", "climate", "green space", "income support", "parents", "school", "work hours", "illness", "recovery"}
+	r := &study.Rival{Name: "big", Diagram: &study.Diagram{}}
+	for i, w := range words {
+		id, _ := Identifier(w)
+		s.Variables = append(s.Variables, &study.Variable{ID: id, Unmeasured: i%9 == 4})
+		r.Diagram.Nodes = append(r.Diagram.Nodes, &study.Node{Variable: id})
+	}
+	for len(r.Diagram.Arrows) < 99 {
+		i, j := rng.IntN(28), rng.IntN(28)
+		if i < j && j-i < 12 && arrow(r, s.Variables[i].ID, s.Variables[j].ID) == nil {
+			r.Diagram.Arrows = append(r.Diagram.Arrows, &study.Arrow{From: s.Variables[i].ID, To: s.Variables[j].ID})
+		}
+	}
+	s.Rivals = []*study.Rival{r}
+	s.Questions = []*study.Question{{Exposure: "diet", Outcome: "illness"}}
+	return s
+}
+
+func fitted(in Input) Input {
+	in.View = Fit(in)
+	return in
+}
+
+func TestLookBig(t *testing.T) {
+	s := big()
+	in := Input{Study: s, Rival: s.Rivals[0], Question: s.Questions[0], LitPath: NoPath, Palette: Light(), Width: 1100, Height: 640}
+	start := time.Now()
+	Build(in)
+	t.Log("build with layout", time.Since(start))
+	in.At = Places(s, s.Rivals[0], s.Questions[0])
+	start = time.Now()
+	Build(in)
+	t.Log("build", time.Since(start))
+	save(t, "big", fitted(in), 1)
+	in = hedgeInput(Light())
+	in.Rival.Layout = nil
+	save(t, "auto", fitted(in), 1)
 }
