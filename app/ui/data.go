@@ -1,0 +1,148 @@
+package ui
+
+import (
+	"fmt"
+	"path/filepath"
+	"strings"
+	"unicode"
+
+	"fyne.io/fyne/v2"
+
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+)
+
+// loadData opens a table; variables whose name is a column's are bound by the
+// session, the rest are offered.
+func (d *desk) loadData(path string) {
+	d.session.LoadData(path, func(t *table.Table, err error) {
+		if err != nil {
+			d.complain(filepath.Base(path) + ": " + strings.TrimPrefix(err.Error(), path+": "))
+			return
+		}
+		d.settle()
+		if len(d.view.Study.Variables) == 0 {
+			d.adoptColumns()
+			return
+		}
+		if len(d.unbound()) > 0 {
+			d.bindDialog()
+		}
+	})
+}
+
+// freeColumns are the columns that no variable or plate uses.
+func (d *desk) freeColumns() []*table.Column {
+	t := d.view.Table
+	if t == nil {
+		return nil
+	}
+	used := make(map[string]bool)
+	for _, v := range d.view.Study.Variables {
+		used[v.Column] = true
+	}
+	for _, p := range d.view.Study.Plates {
+		used[or2(p.Column, p.Name)] = true
+	}
+	var out []*table.Column
+	for _, c := range t.Columns {
+		if !used[c.Name] {
+			out = append(out, c)
+		}
+	}
+	return out
+}
+
+// unbound are the measured variables without a column.
+func (d *desk) unbound() []*study.Variable {
+	var out []*study.Variable
+	for _, v := range d.view.Study.Variables {
+		if !v.Unmeasured && v.Computed == "" && v.Column == "" {
+			out = append(out, v)
+		}
+	}
+	return out
+}
+
+// freeID makes an identifier of a column's name that nothing has yet.
+func (d *desk) freeID(name string, edits []study.Edit) string {
+	id := strings.Map(func(r rune) rune {
+		if unicode.IsLetter(r) || unicode.IsDigit(r) || r == '_' {
+			return r
+		}
+		return '_'
+	}, strings.TrimSpace(name))
+	id = strings.Trim(id, "_")
+	if id == "" || unicode.IsDigit([]rune(id)[0]) {
+		id = "v_" + id
+	}
+	taken := func(id string) bool {
+		for _, e := range edits {
+			if a, ok := e.(study.AddVariable); ok && a.Variable.ID == id {
+				return true
+			}
+		}
+		return d.view.Study.Variable(id) != nil
+	}
+	base := id
+	for i := 2; taken(id); i++ {
+		id = fmt.Sprintf("%s_%d", base, i)
+	}
+	return id
+}
+
+// bindDialog is the small table that ties variables to columns by hand.
+func (d *desk) bindDialog() {
+	t := d.view.Table
+	if t == nil {
+		return
+	}
+	const width = 520
+	body := column(6)
+	var p *popover
+	fill := func() {}
+	fill = func() {
+		objects := []fyne.CanvasObject{
+			row(8, bold("Columns of "+t.Name), space(), small(times(t.Rows, "row", "rows")+", "+times(len(t.Columns), "column", "columns"))),
+			para("Variables of the same name are bound already. Choose the column of the others, or say that they were not measured.", tokenMuted),
+		}
+		list := newPane(0, 0, 4)
+		var lines []fyne.CanvasObject
+		options := []string{notBound}
+		for _, c := range t.Columns {
+			options = append(options, c.Name)
+		}
+		for _, v := range d.view.Study.Variables {
+			chosen := or2(v.Column, notBound)
+			said := ""
+			if c := t.Column(v.Column); c != nil && v.Column != "" {
+				said = string(v.Scale)
+				if c.Missing > 0 {
+					said += ", " + percent(float64(c.Missing)/float64(t.Rows)) + " missing"
+				}
+			}
+			if v.Unmeasured {
+				said = "unmeasured"
+			}
+			line := row(8,
+				fixed(130, 0, newLabel(v.ID, sizeBody, tokenInk, fyne.TextStyle{Bold: true, Italic: v.Unmeasured}).shrinkTo(30)),
+				fixed(180, 0, d.choice(options, chosen, func(w string) { d.bind(v.ID, w); fill() })),
+				stretch(small(said).shrinkTo(20)))
+			lines = append(lines, line)
+		}
+		list.fill(nil, lines...)
+		h := min(float32(len(lines))*34+8, 340)
+		objects = append(objects, fixed(0, h, list))
+		if n := len(d.freeColumns()); n > 0 {
+			objects = append(objects, row(0, d.quiet("Make variables of the other "+times(n, "column", "columns"), func() { p.close(); d.adoptColumns() })))
+		}
+		objects = append(objects, row(8, space(), d.primary("Done", func() { p.close() })))
+		body.Objects = objects
+		if p != nil {
+			p.resize()
+		}
+	}
+	fill()
+	area := d.win.Canvas().Size()
+	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 70), width)
+}

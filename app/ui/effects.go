@@ -1,0 +1,243 @@
+package ui
+
+import (
+	"fmt"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
+
+	"arrowroot/app/words"
+	"arrowroot/canvas"
+	"arrowroot/canvas/draw"
+	"arrowroot/compile/study"
+)
+
+// effectPage answers the question: crude, held and full model side by side,
+// each with interval, level and trust; or the words of the refusal.
+type effectPage struct {
+	d     *desk
+	pane  *pane
+	grid  *fyne.Container
+	cards *fyne.Container
+	seen  effectState
+	asked bool
+}
+
+type effectState struct {
+	result   any
+	stale    bool
+	question *study.Question
+	running  bool
+	dark     bool
+}
+
+func newEffectPage(d *desk) *effectPage {
+	return &effectPage{d: d, pane: newPane(16, 8, 8)}
+}
+
+func (p *effectPage) name() string               { return "Effect" }
+func (p *effectPage) content() fyne.CanvasObject { return p.pane }
+
+func (p *effectPage) update() {
+	v := p.d.view
+	state := effectState{v.Result, v.Stale, v.Question, v.Running, p.d.dark()}
+	if p.asked && state == p.seen {
+		return
+	}
+	p.asked, p.seen = true, state
+	r := v.Result
+	if r == nil || r.Effect == nil {
+		keys := make(map[string]fyne.Focusable)
+		text := "Fit the rival, and the effect asked for stands here: the crude comparison, the one with what you hold held, and the full model's, side by side."
+		if v.Question == nil || v.Question.Exposure == "" || v.Question.Outcome == "" {
+			text = "Nothing is asked yet: name an exposure and an outcome."
+		} else if v.Running {
+			text = "The fit is going on."
+		}
+		objects := []fyne.CanvasObject{bold("No answer yet"), para(text, tokenMuted)}
+		if !v.Running {
+			b := p.d.primary("Fit", func() { p.d.commands.find("fit").run() })
+			b.setDisabled(!p.d.commands.find("fit").ready())
+			keys["fit"] = b
+			objects = append(objects, row(0, b))
+		}
+		p.pane.fill(keys, objects...)
+		return
+	}
+	e := r.Effect
+	q := r.Question
+	ratio := q.As == study.Ratio
+	zero := 0.0
+	if ratio {
+		zero = 1
+	}
+
+	// All cards share one axis, so that they can be compared by eye.
+	low, high := zero, zero
+	var numbers []card
+	add := func(title, under string, c card, ok bool) {
+		c.title, c.under = title, under
+		c.missing = !ok
+		if ok {
+			low, high = min(low, c.low-0.6*(c.high-c.low)), max(high, c.high+0.6*(c.high-c.low))
+		}
+		numbers = append(numbers, c)
+	}
+	if n := e.Crude; n != nil {
+		add("Crude", "nothing held", card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
+	}
+	if n := e.Adjusted; n != nil {
+		under := "holding " + orNone(e.Held)
+		if e.HeldProposed {
+			under += " (proposed)"
+		}
+		add("Held", under, card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
+	}
+	if n := e.Full; n != nil {
+		add("Full model", "every law of the rival", card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
+	} else {
+		add("Full model", "every law of the rival", card{words: e.Refusal}, false)
+	}
+
+	objects := []fyne.CanvasObject{p.headline()}
+	for _, note := range e.Notes {
+		objects = append(objects, para(note, tokenMuted))
+	}
+	grid := container.New(&evenLayout{gap: 12})
+	for _, c := range numbers {
+		grid.Add(p.card(c, zero, low, high))
+	}
+	objects = append(objects, grid)
+	p.pane.fill(nil, objects...)
+}
+
+// A card is one of the three numbers.
+type card struct {
+	title, under         string
+	draws                []float64
+	centre, low, high    float64
+	level                float64
+	trust, words         string
+	association, missing bool
+}
+
+func (p *effectPage) card(c card, zero, from, to float64) fyne.CanvasObject {
+	objects := []fyne.CanvasObject{newProse(sizeBody, span{text: c.title, bold: true}, span{text: "  " + c.under, token: tokenMuted})}
+	if c.missing {
+		objects = append(objects, para(c.words, tokenConfound))
+		return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 8, 4, objects...))
+	}
+	style := p.d.style()
+	if c.association {
+		style.Accent, style.Soft = style.Muted, draw.Alpha(style.Muted, 0.35)
+	}
+	curve := draw.KDE(c.draws, 160)
+	pic := canvas.NewPicture(100, 86, func(w, h float64) *draw.List {
+		return draw.DensityPlot(w, h, draw.Density{Posterior: curve, Low: c.low, High: c.high, Mark: &zero, From: from, To: to}, style)
+	})
+	objects = append(objects, pic, newProse(sizeBody,
+		span{text: words.Number(c.centre), bold: true},
+		span{text: fmt.Sprintf("  %s: %s to %s", words.Percent(c.level), words.Number(c.low), words.Number(c.high))}))
+	token := tokenAction
+	switch c.trust {
+	case "caution":
+		token = tokenConfound
+	case "unusable":
+		token = tokenFault
+	}
+	spans := []span{{text: sentenceCase(c.trust), bold: true, token: token}, {text: " · " + c.words, token: tokenMuted}}
+	if c.association {
+		spans = append([]span{{text: "association, not an effect", bold: true, token: tokenConfound}, {text: " · "}}, spans...)
+	}
+	objects = append(objects, newProse(sizeSmall, spans...))
+	return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 8, 4, objects...))
+}
+
+// headline is the answer in one sentence, as the report says it.
+func (p *effectPage) headline() fyne.CanvasObject {
+	v := p.d.view
+	lines := words.Effect(v.Study, v.Result)
+	token := tokenInk
+	if v.Result.Effect.Headline() == nil {
+		token = tokenConfound
+	}
+	spans := []span{{text: lines[0], bold: true, token: token}}
+	word, tone := p.d.trustWords()
+	spans = append(spans, span{text: "  " + word + ".", bold: true, token: tone}, span{text: "  If the arrows drawn and not drawn are right.", token: tokenMuted})
+	return newProse(sizeBody, spans...)
+}
+
+func sentenceCase(s string) string {
+	for i, r := range s {
+		if i == 0 {
+			return string(upperRune(r)) + s[len(string(r)):]
+		}
+	}
+	return s
+}
+
+func upperRune(r rune) rune {
+	if 'a' <= r && r <= 'z' {
+		return r - 'a' + 'A'
+	}
+	return r
+}
+
+// evenLayout gives its objects equal widths side by side, or stacks them where
+// they would be too narrow.
+type evenLayout struct{ gap float32 }
+
+const evenLeast = 190
+
+func (l *evenLayout) columns(n int, width float32) int {
+	for n > 1 && (width-l.gap*float32(n-1))/float32(n) < evenLeast {
+		n--
+	}
+	return n
+}
+
+func (l *evenLayout) each(objects []fyne.CanvasObject, width float32, f func(o fyne.CanvasObject, x, y, w, h float32)) float32 {
+	n := l.columns(len(objects), width)
+	if n == 0 {
+		return 0
+	}
+	w := (width - l.gap*float32(n-1)) / float32(n)
+	y := float32(0)
+	for i := 0; i < len(objects); i += n {
+		line := objects[i:min(i+n, len(objects))]
+		h := float32(0)
+		for _, o := range line {
+			h = max(h, stackHeight(o, w))
+		}
+		for j, o := range line {
+			f(o, float32(j)*(w+l.gap), y, w, h)
+		}
+		y += h + l.gap
+	}
+	return y - l.gap
+}
+
+// stackHeight is the height of a stack for a width: that of its tallest part.
+func stackHeight(o fyne.CanvasObject, w float32) float32 {
+	c, ok := o.(*fyne.Container)
+	if !ok {
+		return heightFor(o, w)
+	}
+	h := float32(0)
+	for _, part := range c.Objects {
+		h = max(h, heightFor(part, w))
+	}
+	return h
+}
+
+func (l *evenLayout) heightFor(objects []fyne.CanvasObject, width float32) float32 {
+	return l.each(objects, width, func(fyne.CanvasObject, float32, float32, float32, float32) {})
+}
+
+func (l *evenLayout) Layout(objects []fyne.CanvasObject, s fyne.Size) {
+	l.each(objects, s.Width, place)
+}
+
+func (l *evenLayout) MinSize(objects []fyne.CanvasObject) fyne.Size {
+	return fyne.NewSize(evenLeast, l.heightFor(objects, evenLeast))
+}

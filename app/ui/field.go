@@ -1,0 +1,102 @@
+package ui
+
+import (
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/widget"
+)
+
+// A field is an entry that hands over its text when the user is done with it:
+// on Return, or as the focus leaves. Escape puts the old text back.
+type field struct {
+	widget.Entry
+	kit      *kit
+	was      string
+	commit   func(string)
+	escape   func()
+	typing   func(string)
+	handled  func(*fyne.KeyEvent) bool // keys that do not reach the text
+	minWidth float32
+}
+
+func (k *kit) field(text, hint string, commit func(string)) *field {
+	f := &field{kit: k, was: text, commit: commit}
+	f.ExtendBaseWidget(f)
+	f.Text = text
+	f.PlaceHolder = hint
+	f.Wrapping = fyne.TextWrapOff
+	f.Scroll = fyne.ScrollNone
+	f.OnChanged = func(s string) {
+		if f.typing != nil {
+			f.typing(s)
+		}
+	}
+	f.OnSubmitted = func(string) { f.done() }
+	return f
+}
+
+// note is a field of several lines; Return makes a new line.
+func (k *kit) note(text, hint string, commit func(string)) *field {
+	f := k.field(text, hint, commit)
+	f.MultiLine = true
+	f.Wrapping = fyne.TextWrapWord
+	f.SetMinRowsVisible(4)
+	return f
+}
+
+// done hands a changed text over. It is posted: the focus must have settled
+// before a panel is rebuilt.
+func (f *field) done() {
+	text := strings.TrimSpace(f.Text)
+	if text == f.was || f.commit == nil {
+		return
+	}
+	f.was = text
+	f.kit.post(func() { f.commit(text) })
+}
+
+func (f *field) FocusLost() {
+	f.Entry.FocusLost()
+	f.done()
+}
+
+func (f *field) FocusGained() {
+	f.Entry.FocusGained()
+	reveal(f)
+}
+
+func (f *field) TypedKey(e *fyne.KeyEvent) {
+	if f.handled != nil && f.handled(e) {
+		return
+	}
+	if e.Name == fyne.KeyEscape {
+		if f.Text != f.was {
+			f.SetText(f.was)
+		}
+		if f.escape != nil {
+			f.escape()
+		}
+		return
+	}
+	f.Entry.TypedKey(e)
+}
+
+func (f *field) MinSize() fyne.Size {
+	m := f.Entry.MinSize()
+	if f.minWidth > 0 {
+		m.Width = f.minWidth
+	}
+	return m
+}
+
+// choice is a list to pick one word from.
+func (k *kit) choice(options []string, chosen string, pick func(string)) *widget.Select {
+	s := widget.NewSelect(options, nil)
+	s.Selected = chosen
+	s.PlaceHolder = "choose"
+	s.OnChanged = func(word string) {
+		k.post(func() { pick(word) })
+	}
+	return s
+}

@@ -1,0 +1,239 @@
+package ui
+
+import (
+	"bytes"
+	"errors"
+	"os"
+	"path/filepath"
+	"strings"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/dialog"
+	"fyne.io/fyne/v2/storage"
+
+	"arrowroot/app/report"
+	"arrowroot/assets"
+	"arrowroot/canvas/draw"
+	"arrowroot/canvas/scene"
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+)
+
+// orSaved runs next, asking first if there is unsaved work.
+func (d *desk) orSaved(next func()) {
+	if !d.view.Dirty {
+		next()
+		return
+	}
+	var p *popover
+	body := column(10,
+		bold("There is unsaved work"),
+		para("Save the study before it goes away?", tokenMuted),
+		row(8, space(),
+			d.plain("Cancel", func() { p.close() }),
+			d.plain("Drop it", func() { p.close(); next() }),
+			d.primary("Save", func() {
+				p.close()
+				d.saveThen(next)
+			})))
+	area := d.win.Canvas().Size()
+	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-360)/2, 120), 360)
+}
+
+func (d *desk) newStudy() {
+	d.orSaved(func() {
+		d.forget()
+		d.session.New()
+	})
+}
+
+func (d *desk) openExample() {
+	d.orSaved(func() {
+		if err := d.showExample(); err != nil {
+			d.complain(err.Error())
+		}
+	})
+}
+
+// showExample puts the built-in study in place, with the data it came with.
+func (d *desk) showExample() error {
+	text, err := assets.Example(assets.ExampleName)
+	if err != nil {
+		return err
+	}
+	doc, err := study.Read(assets.ExampleName, text)
+	if err != nil {
+		return err
+	}
+	tables := make(map[string]*table.Table)
+	for _, x := range doc.Data {
+		if x.File == "" {
+			continue
+		}
+		data, err := assets.Example(x.File)
+		if err != nil {
+			return err
+		}
+		if tables[x.Name], err = table.Read(x.File, bytes.NewReader(data), table.Options{}); err != nil {
+			return err
+		}
+	}
+	d.forget()
+	d.session.OpenBuiltIn(doc, tables)
+	return nil
+}
+
+// open puts the study at a path in place.
+func (d *desk) open(path string) {
+	if err := d.session.Open(path); err != nil {
+		d.complain(err.Error() + ". Nothing was opened and nothing changed.")
+		return
+	}
+	d.forget()
+	d.refresh()
+}
+
+// forget drops what the window remembers of the study before.
+func (d *desk) forget() {
+	d.pick, d.paint, d.complaint = scene.Selection{}, "", ""
+	d.dismissed = make(map[string]bool)
+	d.agreed, d.loss = "", ""
+	d.fitNext = true
+}
+
+func (d *desk) save() { d.saveThen(func() {}) }
+
+func (d *desk) saveThen(next func()) {
+	if d.view.Path == "" {
+		d.fileDialog(false, suggested(d.view.Study)+".arrowroot", nil, func(path string) { d.saveTo(path, next) })
+		return
+	}
+	d.saveTo(d.view.Path, next)
+}
+
+// saveTo writes the study; a name without an ending gets ours.
+func (d *desk) saveTo(path string, next func()) {
+	if filepath.Ext(path) == "" {
+		path += ".arrowroot"
+	}
+	if err := d.session.Save(path); err != nil {
+		d.complain("The study was not saved: " + err.Error())
+		return
+	}
+	d.settle()
+	next()
+}
+
+// suggested is a file name made of the study's title.
+func suggested(s *study.Study) string {
+	name := strings.ToLower(strings.Join(strings.FieldsFunc(s.Title, func(r rune) bool {
+		return r == ' ' || r == '/' || r == '\\' || r == ':'
+	}), "-"))
+	return or2(name, "study")
+}
+
+func (d *desk) openDialog() {
+	d.orSaved(func() { d.fileDialog(true, "", []string{".arrowroot"}, d.open) })
+}
+
+func (d *desk) saveDialog() {
+	d.fileDialog(false, suggested(d.view.Study)+".arrowroot", nil, func(path string) { d.saveTo(path, func() {}) })
+}
+
+func (d *desk) dataDialog() {
+	d.fileDialog(true, "", []string{".csv", ".tsv", ".txt", ".tab"}, d.loadData)
+}
+
+func (d *desk) svgDialog() {
+	d.fileDialog(false, suggested(d.view.Study)+".svg", nil, d.saveSVG)
+}
+
+func (d *desk) reportDialog() {
+	d.fileDialog(false, suggested(d.view.Study)+".html", nil, d.saveReport)
+}
+
+func (d *desk) reportInput() report.Input {
+	v := d.view
+	return report.Input{Study: v.Study, Rival: v.Rival.Name, Question: v.Question, Graph: v.Graph, Reading: v.Reading, Result: v.Result}
+}
+
+// saveSVG writes the sheet as a picture for a paper.
+func (d *desk) saveSVG(path string) {
+	if filepath.Ext(path) == "" {
+		path += ".svg"
+	}
+	var b bytes.Buffer
+	err := draw.WriteSVG(&b, report.Sheet(d.reportInput()))
+	if err == nil {
+		err = os.WriteFile(path, b.Bytes(), 0o644)
+	}
+	d.saved(path, err)
+}
+
+// saveReport writes the whole study as one page.
+func (d *desk) saveReport(path string) {
+	if filepath.Ext(path) == "" {
+		path += ".html"
+	}
+	var b bytes.Buffer
+	err := report.WriteHTML(&b, d.reportInput())
+	if err == nil {
+		err = os.WriteFile(path, b.Bytes(), 0o644)
+	}
+	d.saved(path, err)
+}
+
+func (d *desk) saved(path string, err error) {
+	if err != nil {
+		d.complain("Not saved: " + err.Error())
+		return
+	}
+	d.notice("Saved " + filepath.Base(path))
+}
+
+// fileDialog asks for a path: Fyne's own dialog, in the folder of the study.
+func (d *desk) fileDialog(opening bool, name string, endings []string, use func(path string)) {
+	var x *dialog.FileDialog
+	if opening {
+		x = dialog.NewFileOpen(func(r fyne.URIReadCloser, err error) {
+			if err != nil {
+				d.complain(err.Error())
+				return
+			}
+			if r != nil {
+				path := r.URI().Path()
+				_ = r.Close() // it is read again by its path, in the background
+				use(path)
+			}
+		}, d.win)
+	} else {
+		x = dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
+			if err != nil {
+				d.complain(err.Error())
+				return
+			}
+			if w != nil {
+				path := w.URI().Path()
+				if err := w.Close(); err != nil && !errors.Is(err, os.ErrClosed) {
+					d.complain(err.Error())
+					return
+				}
+				use(path)
+			}
+		}, d.win)
+		x.SetFileName(name)
+	}
+	if len(endings) > 0 {
+		x.SetFilter(storage.NewExtensionFileFilter(endings))
+	}
+	folder := filepath.Dir(d.view.Path)
+	if d.view.Path == "" {
+		folder, _ = os.Getwd()
+	}
+	if list, err := storage.ListerForURI(storage.NewFileURI(folder)); err == nil {
+		x.SetLocation(list)
+	}
+	size := d.win.Canvas().Size()
+	x.Resize(fyne.NewSize(min(820, size.Width-40), min(560, size.Height-40)))
+	x.Show()
+}

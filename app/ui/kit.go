@@ -1,0 +1,24 @@
+package ui
+
+import (
+	"image/color"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/theme"
+)
+
+// A kit makes the small controls and gives them what they share: the seam to
+// the window's goroutine, and the layer that shows tips.
+type kit struct {
+	post func(func())
+	tips *tips
+}
+
+func newKit(post func(func())) *kit {
+	return &kit{post: post, tips: newTips(post)}
+}
+
+// ink is the present colour of a token.
+func ink(name fyne.ThemeColorName) color.Color {
+	return theme.Color(name)
+}

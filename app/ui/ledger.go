@@ -1,0 +1,154 @@
+package ui
+
+import (
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/canvas"
+	"fyne.io/fyne/v2/widget"
+
+	"arrowroot/canvas/scene"
+	"arrowroot/compile/study"
+)
+
+// ledger lists the study's variables. A row picks its variable; dragged onto
+// the sheet it puts the variable there.
+type ledger struct {
+	d    *desk
+	pane *pane
+	seen ledgerState
+}
+
+// ledgerState is everything the ledger shows: it is rebuilt only when one of
+// these is another.
+type ledgerState struct {
+	study *study.Study
+	rival *study.Rival
+	table any
+	pick  string
+}
+
+func newLedger(d *desk) *ledger {
+	return &ledger{d: d, pane: newPane(8, 6, 1)}
+}
+
+func (l *ledger) update() {
+	v := l.d.view
+	state := ledgerState{study: v.Study, rival: v.Rival, table: v.Table, pick: l.d.picked()}
+	if state == l.seen {
+		return
+	}
+	l.seen = state
+	keys := make(map[string]fyne.Focusable)
+	add := l.d.quiet("+ variable", func() { l.d.commands.find("variable").run() })
+	add.tip = l.d.commands.find("variable").tip()
+	keys["add"] = add
+	fold := l.d.iconButton(iconFoldL, "Fold the ledger away", func() { l.d.frame.fold("left") })
+	head := row(4, gapOf(2, 1), caption("Ledger"), space(), add, fold)
+	objects := []fyne.CanvasObject{head, gapOf(1, 2)}
+	missing := 0
+	for _, x := range v.Study.Variables {
+		r := l.row(x)
+		keys["variable "+x.ID] = r
+		objects = append(objects, r)
+		if !l.d.onSheet(x.ID) {
+			missing++
+		}
+	}
+	switch {
+	case len(v.Study.Variables) == 0:
+		objects = append(objects, padded(4, 4, 0, para("No variables yet. Draw one with a double click on the sheet, or open data.", tokenMuted)))
+	case missing > 0:
+		all := l.d.quiet("place all", func() { l.d.commands.find("place-all").run() })
+		all.tip = "Put every variable on the sheet"
+		keys["place all"] = all
+		objects = append(objects, row(2, gapOf(14, 1), all, stretch(small(times(missing, "is off the sheet", "are off the sheet")).shrinkTo(20))))
+	}
+	l.pane.fill(keys, objects...)
+}
+
+func (l *ledger) row(x *study.Variable) *press {
+	d := l.d
+	on := d.onSheet(x.ID)
+	token := tokenInk
+	if !on {
+		token = tokenMuted
+	}
+	name := newLabel(x.ID, sizeBody, token, fyne.TextStyle{Italic: x.Unmeasured}).shrinkTo(40)
+	right := l.state(x)
+	line := row(6, dot(x), stretch(name), small(x.Unit).shrinkTo(12), right)
+	p := d.press(line, func(p *press) skin {
+		if p.selected {
+			return skin{fill: tokenTint, radius: 4}
+		}
+		return skin{radius: 4}
+	}, func() { d.choose(scene.Selection{Nodes: []string{x.ID}}); d.editor.Reveal(x.ID) })
+	p.padX, p.padY, p.minH = 6, 2, 23
+	p.selected = d.picked() == x.ID
+	p.tip = x.Label
+	if p.tip == x.ID {
+		p.tip = ""
+	}
+	if !on {
+		p.tip = "Drag it onto the sheet"
+		p.onDrag = func(at fyne.Position) { d.tips.follow(x.ID, at) }
+		p.onDrop = func(at fyne.Position) {
+			d.tips.hide()
+			d.dropVariable(x.ID, at)
+		}
+	}
+	p.onSecondary = func(at fyne.Position) { d.variableMenu(x.ID, at) }
+	p.onKey = func(key fyne.KeyName) bool { return d.variableKey(x.ID, key) }
+	return p
+}
+
+// state is what a row says at its right end: what is missing, else the scale.
+func (l *ledger) state(x *study.Variable) *label {
+	v := l.d.view
+	switch {
+	case x.Unmeasured:
+		return small("unmeasured")
+	case x.Computed != "":
+		return small("computed")
+	}
+	if c := v.Table.Column(x.Column); c != nil && x.Column != "" {
+		if c.Missing > 0 && v.Table.Rows > 0 {
+			w := small(percent(float64(c.Missing)/float64(v.Table.Rows)) + " missing")
+			w.token = tokenInk
+			return w
+		}
+		return small(string(x.Scale))
+	}
+	if v.Table != nil {
+		return small("no column")
+	}
+	return small(string(x.Scale))
+}
+
+// dot is solid for a measured variable and an open ring of dashes for an
+// unmeasured one.
+func dot(x *study.Variable) fyne.CanvasObject {
+	if x.Unmeasured {
+		return fixed(14, 14, widget.NewIcon(iconRing))
+	}
+	c := &disc{}
+	c.ExtendBaseWidget(c)
+	return c
+}
+
+type disc struct{ widget.BaseWidget }
+
+func (d *disc) MinSize() fyne.Size { return fyne.NewSize(14, 14) }
+func (d *disc) CreateRenderer() fyne.WidgetRenderer {
+	c := canvas.NewCircle(ink(tokenMuted))
+	return &discRenderer{c}
+}
+
+type discRenderer struct{ c *canvas.Circle }
+
+func (r *discRenderer) Layout(s fyne.Size) {
+	r.c.Resize(fyne.NewSize(9, 9))
+	r.c.Move(fyne.NewPos((s.Width-9)/2, (s.Height-9)/2))
+}
+func (r *discRenderer) MinSize() fyne.Size           { return fyne.NewSize(14, 14) }
+func (r *discRenderer) Refresh()                     { r.c.FillColor = ink(tokenMuted); r.c.Refresh() }
+func (r *discRenderer) Objects() []fyne.CanvasObject { return []fyne.CanvasObject{r.c} }
+func (r *discRenderer) Destroy()                     {}

@@ -1,0 +1,52 @@
+package ui
+
+import (
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/widget"
+)
+
+// A popover is a panel above the window that a click outside or Escape closes.
+type popover struct {
+	up     *widget.PopUp
+	inner  *fyne.Container
+	width  float32
+	closed func()
+}
+
+// pop shows content at a place of the window, moved so that all of it is seen.
+func pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, width float32) *popover {
+	inner := padded(12, 10, 8, content)
+	inner.Layout.(*columnLayout).width = width
+	p := &popover{up: widget.NewPopUp(inner, c), inner: inner, width: width}
+	size := p.size()
+	area := c.Size()
+	at.X = within(at.X, 8, max(8, area.Width-size.Width-16))
+	at.Y = within(at.Y, 8, max(8, area.Height-size.Height-16))
+	p.up.ShowAtPosition(at)
+	p.up.Resize(size)
+	return p
+}
+
+func (p *popover) size() fyne.Size {
+	return fyne.NewSize(p.width, min(heightFor(p.inner, p.width), p.up.Canvas.Size().Height-16))
+}
+
+// resize fits the popover to content that has changed.
+func (p *popover) resize() {
+	p.inner.Refresh()
+	p.up.Resize(p.size())
+}
+
+func (p *popover) close() {
+	if p.up.Visible() {
+		p.up.Hide()
+		if p.closed != nil {
+			p.closed()
+		}
+	}
+}
+
+// below is the place under an object.
+func below(o fyne.CanvasObject) fyne.Position {
+	return fyne.CurrentApp().Driver().AbsolutePositionForObject(o).AddXY(0, o.Size().Height+4)
+}

@@ -1,0 +1,208 @@
+package ui
+
+import (
+	"slices"
+	"strings"
+
+	"fyne.io/fyne/v2"
+
+	"arrowroot/app/words"
+	"arrowroot/compile/study"
+)
+
+// asker is the popover in which a question is put together. It edits a draft
+// and asks it on Return or with its button.
+type asker struct {
+	d     *desk
+	pop   *popover
+	draft study.Question
+	body  *fyne.Container
+	from  *field
+	to    *field
+	shift *field
+	focus fyne.Focusable // where the typing starts
+}
+
+func (d *desk) askQuestion(under fyne.CanvasObject) {
+	a := &asker{d: d, body: column(8)}
+	if q := d.view.Question; q != nil {
+		a.draft = *q
+		a.draft.Held = slices.Clone(q.Held)
+	}
+	a.fill()
+	at := below(under)
+	a.pop = pop(d.win.Canvas(), a.body, at, 430)
+	d.win.Canvas().Focus(a.focus)
+}
+
+func (a *asker) fill() {
+	d, q := a.d, &a.draft
+	var ids []string
+	for _, n := range d.view.Rival.Diagram.Nodes {
+		ids = append(ids, n.Variable)
+	}
+	slices.Sort(ids)
+	s := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
+	again := func() {
+		a.read()
+		a.fill()
+		a.body.Refresh()
+		if a.pop != nil {
+			a.pop.resize()
+		}
+	}
+	s.add(caption("Question"))
+	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) { a.read(); q.Exposure, q.From, q.To = w, nil, nil; again() })
+	s.choice("outcome", "on", ids, q.Outcome, func(w string) { a.read(); q.Outcome = w; again() })
+	a.from, a.to, a.shift = nil, nil, nil
+	x := d.view.Study.Variable(q.Exposure)
+	if x != nil {
+		if len(x.Levels) > 0 && (x.Scale == study.Category || x.Scale == study.Ordered || x.Scale == study.Binary) {
+			s.choice("from", "from", x.Levels, word(q.From), func(w string) { q.From = &study.Setting{Word: w} })
+			s.choice("to", "to", x.Levels, word(q.To), func(w string) { q.To = &study.Setting{Word: w} })
+		} else {
+			a.from = d.field(settingText(q.From), "", nil)
+			a.to = d.field(settingText(q.To), "", nil)
+			a.shift = d.field(shiftText(q), "or add", nil)
+			for _, f := range []*field{a.from, a.to, a.shift} {
+				f.OnSubmitted = func(string) { a.ask() }
+				f.escape = func() { a.pop.close() }
+				f.commit = nil
+			}
+			unit := x.Unit
+			s.add(labelled("from", row(6, stretch(a.from), muted("to"), stretch(a.to), muted(unit))))
+			s.add(labelled("or shift by", row(6, stretch(a.shift), muted(unit))))
+		}
+	}
+	if y := d.view.Study.Variable(q.Outcome); y != nil && (y.Scale == study.Category || y.Scale == study.Ordered) && len(y.Levels) > 0 {
+		s.toggles("levels", "P(level)", y.Levels, func(w string) bool { return slices.Contains(q.OutcomeLevels, w) }, func(w string, on bool) {
+			a.read()
+			q.OutcomeLevels = with(q.OutcomeLevels, w, on)
+			again()
+		})
+	}
+	var free []string
+	for _, id := range ids {
+		if v := d.view.Study.Variable(id); id != q.Exposure && id != q.Outcome && v != nil && !v.Unmeasured {
+			free = append(free, id)
+		}
+	}
+	if len(free) > 0 {
+		s.toggles("held", "Holding", free, func(w string) bool { return slices.Contains(q.Held, w) }, func(w string, on bool) {
+			a.read()
+			q.Held = with(q.Held, w, on)
+			if q.Held == nil {
+				q.Held = []string{}
+			}
+			again()
+		})
+	}
+	over := q.Over
+	if over == "" {
+		over = study.TheseRows
+	}
+	s.choice("over", "over", []string{study.TheseRows, study.PopulationAlike}, over, func(w string) { q.Over = w })
+	as := q.As
+	if as == "" {
+		as = study.Difference
+	}
+	s.choice("as", "as", []string{study.Difference, study.Ratio}, as, func(w string) { q.As = w })
+	ask := d.primary("Ask", a.ask)
+	cancel := d.plain("Cancel", func() { a.pop.close() })
+	s.add(gapOf(1, 2), row(8, space(), cancel, ask))
+	a.body.Objects = s.objects
+	a.focus = s.keys["exposure"]
+}
+
+// read takes over what was typed.
+func (a *asker) read() {
+	if a.from == nil {
+		return
+	}
+	x, okX := number(a.from.Text)
+	y, okY := number(a.to.Text)
+	if okX && okY {
+		a.draft.From, a.draft.To, a.draft.Shift = &study.Setting{Number: x}, &study.Setting{Number: y}, 0
+		return
+	}
+	a.draft.From, a.draft.To = nil, nil
+	a.draft.Shift, _ = number(a.shift.Text)
+}
+
+func (a *asker) ask() {
+	a.read()
+	a.pop.close()
+	if a.draft.Exposure == "" && a.draft.Outcome == "" {
+		return
+	}
+	a.d.changeQuestion(func(q *study.Question) { *q = a.draft })
+}
+
+func word(s *study.Setting) string {
+	if s == nil {
+		return ""
+	}
+	return s.Word
+}
+
+func settingText(s *study.Setting) string {
+	if s == nil {
+		return ""
+	}
+	return settingWords(s)
+}
+
+func shiftText(q *study.Question) string {
+	if q.Shift == 0 {
+		return ""
+	}
+	return words.Given(q.Shift)
+}
+
+// setExposure makes a variable the exposure; the one that was the outcome
+// stays, unless it is the same.
+func (d *desk) setExposure(id string) {
+	d.changeQuestion(func(q *study.Question) {
+		q.Exposure, q.From, q.To, q.Shift = id, nil, nil, 0
+		if q.Outcome == id {
+			q.Outcome = ""
+		}
+		q.Held = drop(q.Held, id)
+	})
+}
+
+func (d *desk) setOutcome(id string) {
+	d.changeQuestion(func(q *study.Question) {
+		q.Outcome, q.OutcomeLevels = id, nil
+		if q.Exposure == id {
+			q.Exposure = ""
+		}
+		q.Held = drop(q.Held, id)
+	})
+}
+
+// drop takes a word out; an absent list stays absent.
+func drop(set []string, word string) []string {
+	if set == nil {
+		return nil
+	}
+	return append([]string{}, slices.DeleteFunc(slices.Clone(set), func(w string) bool { return w == word })...)
+}
+
+// compare sets the two values of the exposure from words: "40", "low".
+func (d *desk) contrast(from, to string) {
+	d.changeQuestion(func(q *study.Question) {
+		q.From, q.To, q.Shift = d.setting(q.Exposure, from), d.setting(q.Exposure, to), 0
+	})
+}
+
+func (d *desk) setting(id, text string) *study.Setting {
+	text = strings.TrimSpace(text)
+	if v := d.view.Study.Variable(id); v != nil && slices.Contains(v.Levels, text) {
+		return &study.Setting{Word: text}
+	}
+	if x, ok := number(text); ok {
+		return &study.Setting{Number: x}
+	}
+	return &study.Setting{Word: text}
+}
