@@ -37,8 +37,13 @@ func bernoulliBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][
 	return sum
 }
 
-func bernoulliLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, _ []float64) float64 {
+func bernoulliLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, scratch []float64) float64 {
 	eta, deta := args[0], wanted(dargs, 0)
+	if isColumn(y, n) && isColumn(eta, n) {
+		if sum, ok := bernoulliLogitColumn(y, eta, deta, scratch); ok {
+			return sum
+		}
+	}
 	iy, ie := mask(y), mask(eta)
 	sum := 0.0
 	for i := range n {

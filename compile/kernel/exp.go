@@ -33,6 +33,18 @@ const (
 func ExpTo(dst, src []float64) {
 	dst = dst[:len(src)]
 	for i, x := range src {
-		dst[i] = Exp(x)
+		if !(x > -708 && x < 709) {
+			dst[i] = math.Exp(x)
+			continue
+		}
+		// Exp once more, for its call costs as much as its arithmetic.
+		shifted := x*stepsPerUnit + roundBits
+		steps := math.Float64bits(shifted)
+		whole := shifted - roundBits
+		r := x - float64(whole*stepHi) - float64(whole*stepLo)
+		t := &expTable[steps%128]
+		scale := math.Float64frombits(t.bits + steps<<45)
+		r2 := r * r
+		dst[i] = scale + scale*(t.tail+r+r2*(1./2+r*(1./6))+r2*r2*(1./24+r*(1./120)))
 	}
 }

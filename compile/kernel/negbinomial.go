@@ -14,7 +14,7 @@ var NegativeBinomial = &Density{
 var NegativeBinomialLog = &Density{
 	Name: "negative binomial log", Args: 2, Prepare: perRow(LogFactorial),
 	Block: negBinomialLogBlock(true),
-	Tally: &Tally{Arg: 1, Rows: &Density{Name: "negative binomial log, by row", Args: 2, Block: negBinomialLogBlock(false)}, Values: negBinomialValues},
+	Tally: &Tally{Arg: 1, Rows: &Density{Name: "negative binomial log, by row", Args: 2, Block: negBinomialLogBlock(false), Prepare: perRow(notCount)}, Values: negBinomialValues},
 }
 
 // negBinomialValues is the part of both that depends on y and k alone, times
@@ -90,10 +90,17 @@ func negBinomialBlock(whole bool) func(n int, y []float64, args [][]float64, _ [
 	}
 }
 
-func negBinomialLogBlock(whole bool) func(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, _ []float64) float64 {
-	return func(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, _ []float64) float64 {
+func negBinomialLogBlock(whole bool) func(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, scratch []float64) float64 {
+	return func(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, scratch []float64) float64 {
 		eta, over := args[0], args[1]
 		deta, dover := wanted(dargs, 0), wanted(dargs, 1)
+		if k := over[0]; !whole && k > 0 && len(over) == 1 && isColumn(y, n) && isColumn(eta, n) && isColumn(aux, n) {
+			var slope *float64
+			if dover != nil {
+				slope = &dover[0]
+			}
+			return negBinomialLogColumn(y, eta, deta, k, slope, aux, scratch)
+		}
 		iy, ie, ik, ia := mask(y), mask(eta), mask(over), mask(aux)
 		last, logk := math.NaN(), 0.0
 		sum := 0.0
@@ -139,6 +146,14 @@ func negBinomialLogBlock(whole bool) func(n int, y []float64, args [][]float64, 
 		}
 		return sum
 	}
+}
+
+// notCount is 0 for a count, else +Inf: minus the log density that follows.
+func notCount(y float64) float64 {
+	if !isCount(y) {
+		return -outside(y)
+	}
+	return 0
 }
 
 // sigmoidMinusSoftplus returns s - sp where they are the sigmoid and softplus

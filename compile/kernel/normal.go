@@ -9,6 +9,15 @@ var Normal = &Density{Name: "normal", Args: 2, Block: normalBlock}
 func normalBlock(n int, y []float64, args [][]float64, dy []float64, dargs [][]float64, _, _ []float64) float64 {
 	mean, sd := args[0], args[1]
 	dmean, dsd := wanted(dargs, 0), wanted(dargs, 1)
+	if len(sd) == 1 && isColumn(y, n) && isColumn(mean, n) && dy == nil {
+		if s := sd[0]; s > 0 {
+			ss := normalColumn(y, mean, dmean, 1/s)
+			if dsd != nil {
+				dsd[0] += (ss - float64(n)) / s
+			}
+			return -0.5*ss - float64(n)*(math.Log(s)+halfLog2Pi)
+		}
+	}
 	iy, im, is := mask(y), mask(mean), mask(sd)
 	last, inv, logsd := math.NaN(), 0.0, 0.0
 	sum := 0.0

@@ -6,7 +6,15 @@ import "math"
 var Poisson = &Density{Name: "poisson", Args: 1, Block: poissonBlock, Prepare: perRow(poissonAtMean)}
 
 // PoissonLog has the log of the rate in its place.
-var PoissonLog = &Density{Name: "poisson log", Args: 1, Block: poissonLogBlock, Prepare: perRow(LogFactorial)}
+var PoissonLog = &Density{Name: "poisson log", Args: 1, Block: poissonLogBlock, Prepare: perRow(countFactorial)}
+
+// countFactorial is log y!, +Inf where y is no count, which makes its density 0.
+func countFactorial(y float64) float64 {
+	if !isCount(y) {
+		return -outside(y)
+	}
+	return LogFactorial(y)
+}
 
 // isCount reports whether v is one of 0, 1, 2, …
 func isCount(v float64) bool { return v >= 0 && v == math.Floor(v) && !math.IsInf(v, 1) }
@@ -57,8 +65,11 @@ func poissonBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]f
 	return sum
 }
 
-func poissonLogBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, _ []float64) float64 {
+func poissonLogBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, aux, scratch []float64) float64 {
 	eta, deta := args[0], wanted(dargs, 0)
+	if isColumn(y, n) && isColumn(eta, n) && isColumn(aux, n) {
+		return poissonLogColumn(y, eta, deta, aux, scratch[:n])
+	}
 	iy, ie, ia := mask(y), mask(eta), mask(aux)
 	sum := 0.0
 	for i := range n {
