@@ -106,6 +106,7 @@ func (r *reader) variable(o *object) {
 		Column:     o.text("column"),
 		Divide:     o.number("divide"),
 		Missing:    o.texts("missing"),
+		Nudge:      o.number("nudge"),
 		Computed:   o.text("computed"),
 	}
 	if low, high, given := o.pair("range"); given {

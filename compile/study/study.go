@@ -68,6 +68,7 @@ type Variable struct {
 	Column     string   // "" = not bound
 	Divide     float64  // the column is divided by this (100 for percent); 0 or 1 = as it is
 	Missing    []string // words of the column that stand for a missing entry, besides the usual spellings
+	Nudge      float64  // exact 0 (and 1 of a proportion) is moved inwards by this; 0 = left alone
 	Computed   string   // formula of a deterministic variable; "" = not computed
 	Tier       int      // time tier; 0 = not said
 	Note       string

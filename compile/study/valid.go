@@ -123,6 +123,7 @@ func (c *checker) variables() {
 		c.plateNames(v, v.ID, v.Plates)
 		c.insist(v.Data == "" || c.study.Table(v.Data) != nil, v, "%s is bound to the data “%s”, which are not in the study", v.ID, v.Data)
 		c.insist(finite(v.Divide) && v.Divide >= 0, v, "%s must be divided by a positive number", v.ID)
+		c.insist(finite(v.Nudge) && v.Nudge >= 0, v, "%s must be nudged by a positive number", v.ID)
 	}
 }
 

@@ -145,6 +145,7 @@ func writeVariable(v *Variable) string {
 	f.text("column", v.Column)
 	f.number("divide", v.Divide)
 	f.texts("missing", v.Missing)
+	f.number("nudge", v.Nudge)
 	f.text("computed", v.Computed)
 	if r := v.Range; r != nil {
 		f.raw("range", pair(r.Low, r.High))
