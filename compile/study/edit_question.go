@@ -68,7 +68,7 @@ func (e RemoveQuestion) Apply(s *Study) (*Study, error) {
 		return nil, noQuestion(e.At)
 	}
 	return changed(s, func(s *Study) {
-		s.Questions = slices.Delete(slices.Clone(s.Questions), e.At, e.At+1)
+		s.Questions = list(slices.Delete(slices.Clone(s.Questions), e.At, e.At+1))
 	})
 }
 
