@@ -4,6 +4,8 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/mathext"
+
+	"arrowroot/compile/kernel"
 )
 
 func standardNormalCDF(z float64) float64 { return 0.5 * math.Erfc(-z/math.Sqrt2) }
@@ -41,33 +43,98 @@ func halfNormalCDF(x float64, a []float64) float64 {
 func halfNormalMean(a []float64) float64 { return a[0] * math.Sqrt(2/math.Pi) }
 func halfNormalSD(a []float64) float64   { return a[0] * math.Sqrt(1-2/math.Pi) }
 
-// studentTail returns P(T > t) of the standard Student t for t ≥ 0.
-func studentTail(t, nu float64) float64 {
-	if t*t < nu {
-		return 0.5 - 0.5*mathext.RegIncBeta(0.5, 0.5*nu, t*t/(nu+t*t))
-	}
-	return 0.5 * mathext.RegIncBeta(0.5*nu, 0.5, nu/(nu+t*t))
+// nearlyNormal is the number of degrees of freedom from which studentNormal
+// is exact in double precision.
+const nearlyNormal = 1e4
+
+// studentNormal returns the z whose normal tail is the tail of Student's t
+// beyond t ≥ 0, by the first terms of G. W. Hill's expansion (Algorithm 395,
+// CACM 13, 1970). Its constants are from memory; the test has values from
+// elsewhere.
+func studentNormal(t, nu float64) float64 {
+	a := nu - 0.5
+	y := a * math.Log1p(t*t/nu)
+	return math.Sqrt(y) * (1 + (y+3)/(48*a*a))
 }
 
-// studentUpper returns the t with P(T > t) = p, for 0 < p ≤ ½.
-func studentUpper(p, nu float64) float64 {
-	w := mathext.InvRegIncBeta(0.5*nu, 0.5, 2*p)
-	return math.Sqrt(nu * (1 - w) / w)
+// studentFromNormal undoes studentNormal.
+func studentFromNormal(z, nu float64) float64 {
+	a := nu - 0.5
+	y := z * z
+	for range 2 {
+		root := z / (1 + (y+3)/(48*a*a))
+		y = root * root
+	}
+	return math.Sqrt(nu * math.Expm1(y/a))
+}
+
+// studentParts returns P(|T| < t) and P(|T| > t) of the standard Student t for
+// t ≥ 0.
+func studentParts(t, nu float64) (center, outer float64) {
+	if nu > nearlyNormal {
+		z := studentNormal(t, nu) / math.Sqrt2
+		return math.Erf(z), math.Erfc(z)
+	}
+	t2 := t * t
+	if math.IsInf(t2, 1) {
+		return 1, 0
+	}
+	return incBeta(0.5, 0.5*nu, t2/(nu+t2), nu/(nu+t2))
+}
+
+// studentInverse returns the t with P(|T| < t) = center = 1 - outer, both
+// given because one of them may be tiny. Newton steps on the log of the
+// smaller one against log t: that curve is concave, so that after the first
+// step they close in from one side.
+func studentInverse(center, outer, nu float64) float64 {
+	z := -mathext.NormalQuantile(0.5 * outer)
+	t := studentFromNormal(z, nu)
+	if nu > nearlyNormal || center == 0 {
+		return t
+	}
+	if nu < 2 && center > 0.5 { // heavy tail, a power of t
+		t = math.Pow(outer, -1/nu)
+	}
+	for range 100 {
+		in, out := studentParts(t, nu)
+		slope := 2 * t * studentDensity(t, nu)
+		var step float64
+		if center < outer {
+			step = math.Log(center/in) * in / slope
+		} else {
+			step = math.Log(out/outer) * out / slope
+		}
+		if step != step {
+			break // t is beyond range
+		}
+		t *= math.Exp(step)
+		if math.Abs(step) < 1e-9 {
+			break // the next step would be its square
+		}
+	}
+	return t
+}
+
+func studentDensity(t, nu float64) float64 {
+	y, mean, scale, df := [1]float64{t}, [1]float64{0}, [1]float64{1}, [1]float64{nu}
+	args := [3][]float64{mean[:], scale[:], df[:]}
+	return math.Exp(kernel.StudentT.Block(1, y[:], args[:], nil, nil, nil, nil))
 }
 
 func studentQuantile(u float64, a []float64) float64 {
 	if u < 0.5 {
-		return a[0] - a[1]*studentUpper(u, a[2])
+		return a[0] - a[1]*studentInverse(1-2*u, 2*u, a[2])
 	}
-	return a[0] + a[1]*studentUpper(1-u, a[2])
+	return a[0] + a[1]*studentInverse(2*u-1, 2*(1-u), a[2])
 }
 
 func studentCDF(x float64, a []float64) float64 {
 	z := (x - a[0]) / a[1]
+	center, outer := studentParts(math.Abs(z), a[2])
 	if z < 0 {
-		return studentTail(-z, a[2])
+		return 0.5 * outer
 	}
-	return 1 - studentTail(z, a[2])
+	return 0.5 + 0.5*center
 }
 
 func studentMean(a []float64) float64 {
@@ -87,13 +154,14 @@ func studentSD(a []float64) float64 {
 	return a[1] * math.Sqrt(a[2]/(a[2]-2))
 }
 
-func halfTQuantile(u float64, a []float64) float64 { return a[0] * studentUpper(0.5*(1-u), a[1]) }
+func halfTQuantile(u float64, a []float64) float64 { return a[0] * studentInverse(u, 1-u, a[1]) }
 
 func halfTCDF(x float64, a []float64) float64 {
 	if x <= 0 {
 		return 0
 	}
-	return 1 - 2*studentTail(x/a[0], a[1])
+	center, _ := studentParts(x/a[0], a[1])
+	return center
 }
 
 func halfTMean(a []float64) float64 {
@@ -101,8 +169,8 @@ func halfTMean(a []float64) float64 {
 	if nu <= 1 {
 		return math.Inf(1)
 	}
-	hi, _ := math.Lgamma(0.5 * (nu + 1))
-	lo, _ := math.Lgamma(0.5 * nu)
+	hi, _ := kernel.LogGamma(0.5 * (nu + 1))
+	lo, _ := kernel.LogGamma(0.5 * nu)
 	return 2 * a[0] * math.Sqrt(nu/math.Pi) / (nu - 1) * math.Exp(hi-lo)
 }
 
@@ -119,7 +187,15 @@ func halfTSD(a []float64) float64 {
 }
 
 func gammaQuantile(u float64, a []float64) float64 {
-	return a[0] / a[1] * mathext.GammaIncRegInv(a[1], u)
+	// Close to 0 the distribution function is x^s / Γ(s+1), and x may be
+	// smaller than what the general inverse looks at.
+	s := a[1]
+	l, _ := kernel.LogGamma(s + 1)
+	x := math.Exp((math.Log(u) + l) / s)
+	if x > 1e-12 {
+		x = mathext.GammaIncRegInv(s, u)
+	}
+	return max(a[0]/s*x, math.SmallestNonzeroFloat64)
 }
 
 func gammaCDF(x float64, a []float64) float64 {
@@ -141,7 +217,21 @@ func exponentialCDF(x float64, a []float64) float64 {
 }
 
 func betaQuantile(u float64, a []float64) float64 {
-	return mathext.InvRegIncBeta(a[0]*a[1], (1-a[0])*a[1], u)
+	p, q := a[0]*a[1], (1-a[0])*a[1]
+	x := mathext.InvRegIncBeta(p, q, u)
+	if p > 1 && q > 1 && x > 0 && x < 1 {
+		// The inverse above loses digits as the precision grows; a Newton
+		// step on the log of the nearer tail gives them back.
+		lower, upper := incBeta(p, q, x, 1-x)
+		slope := math.Exp(kernel.LogBetaTerm(p, q, x, 1-x)) / (x * (1 - x))
+		if u < 0.5 {
+			x -= math.Log(lower/u) * lower / slope
+		} else {
+			x += math.Log(upper/(1-u)) * upper / slope
+		}
+	}
+	// A draw must lie inside, where the log density is finite.
+	return min(max(x, math.SmallestNonzeroFloat64), 1-0x1p-53)
 }
 
 func betaCDF(x float64, a []float64) float64 {
@@ -151,7 +241,8 @@ func betaCDF(x float64, a []float64) float64 {
 	case x >= 1:
 		return 1
 	}
-	return mathext.RegIncBeta(a[0]*a[1], (1-a[0])*a[1], x)
+	lower, _ := incBeta(a[0]*a[1], (1-a[0])*a[1], x, 1-x)
+	return lower
 }
 
 func betaSD(a []float64) float64 { return math.Sqrt(a[0] * (1 - a[0]) / (1 + a[1])) }

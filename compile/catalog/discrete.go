@@ -38,53 +38,103 @@ func search(u float64, guess, top float64, cdf func(x float64) float64) float64 
 // mostCount bounds counts to where doubles still hold every whole number.
 const mostCount = 1 << 53
 
-// guess is a quantile of the normal with the same mean and sd.
-func guess(u, mean, sd float64) float64 { return mean + sd*mathext.NormalQuantile(u) }
-
-func poissonCDF(x float64, a []float64) float64 {
-	if x < 0 {
-		return 0
-	}
-	return mathext.GammaIncRegComp(math.Floor(x)+1, a[0])
+// A count sums the probabilities of its first values directly, which is both
+// quicker and more accurate than a special function; beyond them, or where
+// the first one underflows, cdf takes over.
+type count struct {
+	first    float64                 // probability of 0
+	ratio    func(j float64) float64 // p(j+1)/p(j)
+	cdf      func(x float64) float64
+	mean, sd float64
+	top      float64
 }
 
-func poissonQuantile(u float64, a []float64) float64 {
-	return search(u, guess(u, a[0], poissonSD(a)), mostCount, func(x float64) float64 { return poissonCDF(x, a) })
-}
+const summed = 64
 
-func poissonSD(a []float64) float64 { return math.Sqrt(a[0]) }
+func (c count) sums() bool { return c.first > 1e-280 }
 
-func negBinomialCDF(x float64, a []float64) float64 {
-	if x < 0 {
-		return 0
-	}
-	return mathext.RegIncBeta(a[1], math.Floor(x)+1, a[1]/(a[0]+a[1]))
-}
-
-func negBinomialQuantile(u float64, a []float64) float64 {
-	return search(u, guess(u, a[0], negBinomialSD(a)), mostCount, func(x float64) float64 { return negBinomialCDF(x, a) })
-}
-
-func negBinomialSD(a []float64) float64 { return math.Sqrt(a[0] + a[0]*a[0]/a[1]) }
-
-func binomialCDF(x float64, a []float64) float64 {
-	p, n := a[0], a[1]
+func (c count) below(x float64) float64 {
 	x = math.Floor(x)
 	switch {
 	case x < 0:
 		return 0
-	case x >= n:
+	case x >= c.top:
 		return 1
+	case x > summed || !c.sums():
+		return c.cdf(x)
 	}
-	return mathext.RegIncBeta(n-x, x+1, 1-p)
+	p, sum := c.first, c.first
+	for j := 0.0; j < x; j++ {
+		p *= c.ratio(j)
+		sum += p
+	}
+	return min(sum, 1)
 }
 
-func binomialQuantile(u float64, a []float64) float64 {
-	return search(u, guess(u, binomialMean(a), binomialSD(a)), a[1], func(x float64) float64 { return binomialCDF(x, a) })
+func (c count) quantile(u float64) float64 {
+	if c.sums() {
+		p, sum := c.first, c.first
+		for j := 0.0; j <= min(summed, c.top); j++ {
+			if sum >= u || j == c.top {
+				return j
+			}
+			p *= c.ratio(j)
+			sum += p
+		}
+	}
+	return search(u, c.mean+c.sd*mathext.NormalQuantile(u), c.top, c.below)
 }
 
-func binomialMean(a []float64) float64 { return a[0] * a[1] }
-func binomialSD(a []float64) float64   { return math.Sqrt(a[1] * a[0] * (1 - a[0])) }
+func poissonCount(a []float64) count {
+	rate := a[0]
+	return count{
+		first: math.Exp(-rate),
+		ratio: func(j float64) float64 { return rate / (j + 1) },
+		cdf:   func(x float64) float64 { return mathext.GammaIncRegComp(x+1, rate) },
+		mean:  rate, sd: poissonSD(a), top: mostCount,
+	}
+}
+
+func poissonCDF(x float64, a []float64) float64      { return poissonCount(a).below(x) }
+func poissonQuantile(u float64, a []float64) float64 { return poissonCount(a).quantile(u) }
+func poissonSD(a []float64) float64                  { return math.Sqrt(a[0]) }
+
+func negBinomialCount(a []float64) count {
+	mean, k := a[0], a[1]
+	p, q := k/(mean+k), mean/(mean+k)
+	return count{
+		first: math.Exp(-k * math.Log1p(mean/k)),
+		ratio: func(j float64) float64 { return (k + j) / (j + 1) * q },
+		cdf: func(x float64) float64 {
+			lower, _ := incBeta(k, x+1, p, q)
+			return lower
+		},
+		mean: mean, sd: negBinomialSD(a), top: mostCount,
+	}
+}
+
+func negBinomialCDF(x float64, a []float64) float64      { return negBinomialCount(a).below(x) }
+func negBinomialQuantile(u float64, a []float64) float64 { return negBinomialCount(a).quantile(u) }
+func negBinomialSD(a []float64) float64                  { return math.Sqrt(a[0] + a[0]*a[0]/a[1]) }
+
+func binomialCount(a []float64) count {
+	p, n := a[0], a[1]
+	odds := p / (1 - p)
+	return count{
+		first: math.Exp(n * math.Log1p(-p)),
+		ratio: func(j float64) float64 { return (n - j) / (j + 1) * odds },
+		cdf: func(x float64) float64 {
+			lower, _ := incBeta(n-x, x+1, 1-p, p)
+			return lower
+		},
+		mean: binomialMean(a), sd: binomialSD(a), top: n,
+	}
+}
+
+func binomialCDF(x float64, a []float64) float64      { return binomialCount(a).below(x) }
+func binomialQuantile(u float64, a []float64) float64 { return binomialCount(a).quantile(u) }
+func binomialMean(a []float64) float64                { return a[0] * a[1] }
+func binomialSD(a []float64) float64                  { return math.Sqrt(a[1] * a[0] * (1 - a[0])) }
 
 func bernoulliCDF(x float64, a []float64) float64 {
 	switch {

@@ -93,3 +93,21 @@ func halfStep(x float64) (value, slope float64) {
 	slope = v * (1./8 - v*(3./192-v*(5./640-v*(7*17./14336-v*(9*31./18432-v*11*691./180224)))))
 	return value, slope
 }
+
+// LogBetaTerm returns log[x^a y^b / B(a, b)] for a, b > 0, 0 < x < 1 and
+// y = 1-x, both given because one of them may be tiny: the leading factor of
+// the incomplete beta function.
+func LogBetaTerm(a, b, x, y float64) float64 {
+	// x/m - 1 and y/(1-m) - 1 at m = a/(a+b), where the term is largest.
+	d := x*b - y*a
+	return a*log1pRatio(d/a, x, a/(a+b)) + b*log1pRatio(-d/b, y, b/(a+b)) +
+		0.5*(math.Log(a)+math.Log(b)-math.Log(a+b)) - halfLog2Pi - (stirling(a) + stirling(b) - stirling(a+b))
+}
+
+// log1pRatio returns log(x/m), where r = x/m - 1 is known precisely if small.
+func log1pRatio(r, x, m float64) float64 {
+	if math.Abs(r) < 0.5 {
+		return math.Log1p(r)
+	}
+	return math.Log(x / m)
+}
