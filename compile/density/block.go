@@ -21,10 +21,9 @@ type Block struct {
 
 	density *ops.Program // log density
 	natural *ops.Program // natural values of Quantities as outputs
-	factors *ops.Program // one output per factor
-	what    []string     // of each factor
 	where   []string     // of each coordinate: its parameter and variable
 	spare   sync.Pool    // of *ops.Evaluator for natural
+	suspect              // what Blame looks at
 }
 
 // Lower makes the density of a checked model. An error is a fault that the
@@ -92,8 +91,7 @@ func lower(r *resolver, g group) (*Block, error) {
 		plates:   make(map[level]ops.Plate),
 		natural:  make(map[int]ops.Value),
 	}
-	b := &Block{}
-	var factors []factor
+	b := &Block{suspect: suspect{m: r.m, builder: l.b}}
 	for _, i := range g.parameters {
 		p := r.m.Parameters[i]
 		b.Names = append(b.Names, p.Name)
@@ -101,17 +99,16 @@ func lower(r *resolver, g group) (*Block, error) {
 			b.where = append(b.where, parameterOf(r.m, p))
 		}
 	}
-	placed, err := l.placeAll(g.parameters)
+	factors, err := l.placeAll(g.parameters)
 	if err != nil {
 		return nil, err
 	}
-	factors = append(factors, placed...)
 	for _, i := range g.laws {
-		v, err := l.law(r.m.Laws[i])
+		f, err := l.law(r.m.Laws[i])
 		if err != nil {
 			return nil, err
 		}
-		factors = append(factors, factor{"the law of " + r.m.Variables[r.m.Laws[i].Variable].ID, v})
+		factors = append(factors, f)
 	}
 	return b, b.compile(l, g, factors)
 }
@@ -152,7 +149,7 @@ func (l *lowering) placeAll(parameters []int) ([]factor, error) {
 			return err
 		}
 		state[i] = done
-		factors = append(factors, factor{"the prior of " + parameterOf(l.m, p), v})
+		factors = append(factors, factor{what: "the prior of " + parameterOf(l.m, p), value: v})
 		return nil
 	}
 	for _, i := range parameters {
@@ -183,10 +180,8 @@ func (b *Block) compile(l *lowering, g group, factors []factor) error {
 	slices.Sort(b.Names)
 
 	total := l.b.Const(0)
-	values := make([]ops.Value, len(factors))
-	for i, f := range factors {
-		b.what = append(b.what, f.what)
-		values[i] = f.value
+	b.factors = factors
+	for _, f := range factors {
 		total = l.b.Add(total, f.value)
 	}
 	var natural []ops.Value
@@ -198,9 +193,6 @@ func (b *Block) compile(l *lowering, g group, factors []factor) error {
 		return fmt.Errorf("density: %s: %w", b.Name, err)
 	}
 	if b.natural, err = l.b.Program(l.b.Const(0), natural...); err != nil {
-		return fmt.Errorf("density: %s: %w", b.Name, err)
-	}
-	if b.factors, err = l.b.Program(l.b.Const(0), values...); err != nil {
 		return fmt.Errorf("density: %s: %w", b.Name, err)
 	}
 	return nil

@@ -12,9 +12,9 @@ import (
 
 // law lowers one law to a factor: one term per unit of its level, in the
 // link-scale form of its family where the law has a predictor.
-func (l *lowering) law(law *model.Law) (ops.Value, error) {
+func (l *lowering) law(law *model.Law) (factor, error) {
 	v := l.m.Variables[law.Variable]
-	fail := func(err error) (ops.Value, error) { return 0, &lawError{v.ID, err} }
+	fail := func(err error) (factor, error) { return factor{}, &lawError{v.ID, err} }
 	if law.Family == nil {
 		return fail(fmt.Errorf("no family"))
 	}
@@ -48,7 +48,8 @@ func (l *lowering) law(law *model.Law) (ops.Value, error) {
 			args = append(args, l.b.Element(l.natural[p], j))
 		}
 	}
-	return l.b.Density(form, l.b.Data(l.plate(at), v.Values), args...), nil
+	value := l.b.Density(form, l.b.Data(l.plate(at), v.Values), args...)
+	return factor{what: "the law of " + v.ID, value: value, law: law, form: form, args: args}, nil
 }
 
 // arguments lists a law's arguments in the order of the form that takes them:

@@ -6,6 +6,7 @@ import (
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
+	"arrowroot/compile/kernel"
 	"arrowroot/compile/model"
 	"arrowroot/compile/ops"
 )
@@ -13,8 +14,11 @@ import (
 // A factor is one additive part of a block's log density, with the name by
 // which people know it.
 type factor struct {
-	what  string // "the law of bees", "the prior of beta_hedge_bees (bees)"
+	what  string // "the law of bees", "the prior of beta_hedge_bees, in the law of bees"
 	value ops.Value
+	law   *model.Law      // nil for a prior
+	form  *kernel.Density // of the law, with the arguments it takes
+	args  []ops.Value
 }
 
 // place lowers parameter i, whose coordinates start at offset: its natural

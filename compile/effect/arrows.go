@@ -13,7 +13,7 @@ import (
 )
 
 // paintShare is the part of the budget that one arrow or node may use.
-const paintShare = 8
+const paintShare = 32
 
 // Arrows gives every drawn arrow of the model's laws (SEMANTICS G): the mean
 // change in the child's expectation as the parent moves over its central 80 %,
