@@ -4,6 +4,7 @@ import (
 	"encoding/binary"
 	"fmt"
 	"math"
+	"slices"
 	"unsafe"
 
 	"arrowroot/compile/kernel"
@@ -23,6 +24,8 @@ type plate struct {
 type index struct {
 	to     []int32
 	sorted bool // never falls: rows of one entry follow one another
+	low    int32
+	high   int32 // the entries it leads to lie between low and high
 }
 
 // A node is one operation. Which attributes it has depends on op.
@@ -103,13 +106,7 @@ func (g *graph) index(to []int32) *index {
 	if known := g.indices[first]; known != nil && len(known.to) == len(to) {
 		return known
 	}
-	ix := &index{to: to, sorted: true}
-	for i := 1; i < len(to); i++ {
-		if to[i] < to[i-1] {
-			ix.sorted = false
-			break
-		}
-	}
+	ix := &index{to: to, sorted: slices.IsSorted(to), low: slices.Min(to), high: slices.Max(to)}
 	g.indices[first] = ix
 	return ix
 }

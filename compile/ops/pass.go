@@ -1,6 +1,9 @@
 package ops
 
-import "fmt"
+import (
+	"fmt"
+	"slices"
+)
 
 // A unit is what the passes work on.
 type unit struct {
@@ -14,16 +17,16 @@ type pass struct {
 	name     string
 	run      func(u *unit)
 	required bool // the program is wrong without it, not only slow
-	gradient bool // only where a gradient is wanted
 }
 
-// passes in the order in which they run.
+// passes in the order in which they run. What is not to be differentiated goes
+// without the one named "gradient".
 var passes = []pass{
 	{name: "simplify", run: passSimplify},
 	{name: "gauss", run: passGauss},
 	{name: "tally", run: passTally},
 	{name: "fold tallied", run: passSimplify},
-	{name: "gradient", run: passGradient, required: true, gradient: true},
+	{name: "gradient", run: passGradient, required: true},
 	{name: "simplify gradient", run: passSimplify},
 	{name: "fuse", run: passFuse},
 }
@@ -39,24 +42,53 @@ var passOrder = []struct{ before, after, why string }{
 	{"simplify gradient", "fuse", "simplifying does not look into fused operations"},
 }
 
-// compile runs the passes that keep selects (nil = all) and schedules.
-func compile(g *graph, roots []id, dim int, gradient bool, keep func(p *pass) bool) (*schedule, error) {
-	u := &unit{g: g, roots: roots}
-	u.g, u.roots = g.rebuild(roots, func(next *graph, _ id, n node) id { return next.add(n) })
-	if err := verify(u); err != nil {
+// start copies what roots need and runs the passes before the reverse sweep.
+// keep says which passes run; nil is all.
+func start(g *graph, roots []id, keep func(p *pass) bool) (*unit, error) {
+	u := (&unit{g: g, roots: roots}).copied()
+	return u, u.runAll(passes[:sweepAt()], keep)
+}
+
+// finish runs the sweep, if a gradient is wanted, and the passes after it on a
+// copy of u.
+func (u *unit) finish(gradient bool, dim int, keep func(p *pass) bool) (*schedule, error) {
+	u = u.copied()
+	rest := passes[sweepAt():]
+	if !gradient {
+		rest = rest[1:]
+	}
+	if err := u.runAll(rest, keep); err != nil {
 		return nil, err
 	}
-	for i := range passes {
-		p := &passes[i]
-		if p.gradient && !gradient || !p.required && keep != nil && !keep(p) {
+	return plan(u.g, u.roots, u.into, dim), nil
+}
+
+// sweepAt is the place of the reverse sweep among the passes.
+func sweepAt() int {
+	return slices.IndexFunc(passes, func(p pass) bool { return p.name == "gradient" })
+}
+
+func (u *unit) copied() *unit {
+	c := *u
+	c.rewrite(func(next *graph, _ id, n node) id { return next.add(n) })
+	return &c
+}
+
+func (u *unit) runAll(ps []pass, keep func(p *pass) bool) error {
+	if err := verify(u); err != nil {
+		return err
+	}
+	for i := range ps {
+		p := &ps[i]
+		if !p.required && keep != nil && !keep(p) {
 			continue
 		}
 		p.run(u)
 		if err := verify(u); err != nil {
-			return nil, fmt.Errorf("ops: after pass %q: %w", p.name, err)
+			return fmt.Errorf("ops: after pass %q: %w", p.name, err)
 		}
 	}
-	return plan(u.g, u.roots, u.into, dim), nil
+	return nil
 }
 
 // rewrite replaces the unit's graph by its rebuilding through f.

@@ -59,7 +59,7 @@ func TestVerify(t *testing.T) {
 		"index out of range": func(u *unit, b *bench) {
 			to := make([]int32, manyRows)
 			to[5] = groupRows
-			find(u, opGather).index = &index{to: to}
+			find(u, opGather).index = u.g.index(to)
 		},
 		"no root": func(u *unit, _ *bench) { u.roots[0] = 0 },
 	} {

@@ -30,11 +30,18 @@ func (b *Builder) program(keep func(p *pass) bool, logDensity Value, outputs ...
 	for _, v := range outputs {
 		p.outputLen += b.Rows(b.On(v))
 	}
-	root := []id{id(logDensity)}
+	density, err := start(b.g, []id{id(logDensity)}, keep)
+	if err != nil {
+		return nil, err
+	}
+	rest, err := start(b.g, ids(outputs), keep)
+	if err != nil {
+		return nil, err
+	}
 	var errs [3]error
-	p.gradient, errs[0] = compile(b.g, root, b.dim, true, keep)
-	p.value, errs[1] = compile(b.g, root, b.dim, false, keep)
-	p.outputs, errs[2] = compile(b.g, ids(outputs), b.dim, false, keep)
+	p.gradient, errs[0] = density.finish(true, b.dim, keep)
+	p.value, errs[1] = density.finish(false, b.dim, keep)
+	p.outputs, errs[2] = rest.finish(false, b.dim, keep)
 	if err := errors.Join(errs[:]...); err != nil {
 		return nil, err
 	}

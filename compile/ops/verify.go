@@ -105,10 +105,8 @@ func (g *graph) leads(ix *index, fine, coarse Plate) error {
 	if ix == nil || len(ix.to) != g.rows(fine) {
 		return fmt.Errorf("no index for the %d rows of plate %q", g.rows(fine), g.plates[fine].name)
 	}
-	for _, j := range ix.to {
-		if j < 0 || int(j) >= g.rows(coarse) {
-			return fmt.Errorf("index leads to row %d of the %d of plate %q", j, g.rows(coarse), g.plates[coarse].name)
-		}
+	if ix.low < 0 || int(ix.high) >= g.rows(coarse) {
+		return fmt.Errorf("index leads to rows %d to %d of the %d of plate %q", ix.low, ix.high, g.rows(coarse), g.plates[coarse].name)
 	}
 	return nil
 }
