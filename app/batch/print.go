@@ -2,6 +2,7 @@ package main
 
 import (
 	"math"
+	"strings"
 
 	"arrowroot/app/fit"
 	"arrowroot/compile/causal"
@@ -253,7 +254,7 @@ func printFit(j *job, r *fit.Result) *fitOut {
 	for _, q := range f.Quantities {
 		out.Quantities = append(out.Quantities, printSummary(q.Name, q.Symbol, q.Summary, q.Trust))
 	}
-	out.Statement = f.Model.Statement().Text()
+	out.Statement = strings.Split(strings.TrimRight(f.Model.Statement().String(), "\n"), "\n")
 	return out
 }
 

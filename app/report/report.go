@@ -19,6 +19,7 @@ import (
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
+	"arrowroot/compile/table"
 )
 
 // Input is what a report is about. Result may be nil: a report on the arrows
@@ -46,6 +47,7 @@ type content struct {
 	Plots                  template.HTML
 	Statement              []statementLine
 	Quantities             []row
+	Groups                 []row // entries of vectors that vary by a plate
 	Trust                  string
 	Rows                   string
 	Paths                  []row
@@ -106,10 +108,15 @@ func contentOf(in Input) (*content, error) {
 		c.Rows = words.Rows(r.Full.Model.Rows)
 		c.Statement = statementOf(r.Full.Model)
 		for _, q := range r.Full.Quantities {
-			c.Quantities = append(c.Quantities, row{[]string{
+			line := row{[]string{
 				q.Symbol, words.Number(q.Centre), words.Number(q.Spread), words.Number(q.Low) + " to " + words.Number(q.High), words.Percent(q.Level),
 				ratio(q.RHat), words.Whole(math.Min(q.BulkESS, q.TailESS)), q.Trust.Verdict.String(),
-			}})
+			}}
+			if r.Full.Model.Parameters[q.Parameter].Shape == model.ByPlate {
+				c.Groups = append(c.Groups, line)
+			} else {
+				c.Quantities = append(c.Quantities, line)
+			}
 		}
 		if c.Plots, err = plotsOf(r); err != nil {
 			return nil, err
@@ -146,7 +153,7 @@ func names(g *graph.Graph, nodes []int) []string {
 }
 
 var lineClasses = map[model.LineKind]string{
-	model.Heading: "heading", model.LawLine: "law", model.LinkLine: "law", model.PriorLine: "prior", model.CarriedLine: "note", model.GivenLine: "note",
+	model.Heading: "heading", model.LawLine: "law", model.LinkLine: "law", model.GroupLine: "law", model.ComputedLine: "law", model.PriorLine: "prior", model.CarriedLine: "note", model.GivenLine: "note",
 }
 
 func statementOf(m *model.Model) []statementLine {
@@ -161,15 +168,21 @@ func statementOf(m *model.Model) []statementLine {
 	return out
 }
 
-// margin of the figure around what is drawn.
-const margin = 24
+// The figure's size, in dips.
+const (
+	figureWidth  = 960
+	figureHeight = 560
+)
 
-// Sheet is the picture of a rival on paper, as large as what is on it.
+// dots is how many quantile dots stand under a node.
+const dots = 20
+
+// Sheet is the picture of a rival on paper.
 func Sheet(in Input) *draw.List {
 	rival := in.Study.Rival(in.Rival)
 	input := scene.Input{
 		Study: in.Study, Rival: rival, Question: in.Question, Reading: in.Reading,
-		LitPath: scene.NoPath, Palette: scene.Light(), Width: 1000, Height: 700, View: scene.View{Zoom: 1},
+		LitPath: scene.NoPath, Palette: scene.Light(), Width: figureWidth, Height: figureHeight,
 	}
 	if r := in.Result; r != nil {
 		input.Paint = paint.Of(r, scene.EffectPaint, false)
@@ -177,12 +190,12 @@ func Sheet(in Input) *draw.List {
 		for _, p := range r.Full.Model.Plates {
 			input.PlateCounts[p.Name] = len(p.Levels)
 		}
+		input.Dots = make(map[string][]float64)
+		for _, v := range r.Full.Model.Variables {
+			input.Dots[v.ID] = table.Quantiles(v.Values, dots)
+		}
 	}
-	_, where := scene.Build(input)
-	if b, ok := where.Bounds(); ok {
-		input.View.Pan = draw.Point{X: margin - b.X, Y: margin - b.Y}
-		input.Width, input.Height = b.W+2*margin, b.H+2*margin
-	}
+	input.View = scene.Fit(input)
 	list, _ := scene.Build(input)
 	return list
 }

@@ -9,7 +9,7 @@ import (
 )
 
 // Percent is a level for people: "90 %".
-func Percent(level float64) string { return Number(100*level) + " %" }
+func Percent(level float64) string { return Given(math.Round(1000*level)/10) + " %" }
 
 // Number is a number for people: three significant digits, a true minus sign.
 func Number(x float64) string {

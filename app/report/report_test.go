@@ -1,0 +1,62 @@
+package report
+
+import (
+	"bytes"
+	"context"
+	"strings"
+	"testing"
+
+	"arrowroot/app/fit"
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+)
+
+func TestReportSaysEverything(t *testing.T) {
+	doc, err := study.Load("../../assets/examples/hedgerows.arrowroot")
+	if err != nil {
+		t.Fatal(err)
+	}
+	data, err := table.ReadFile("../../assets/examples/hedgerows.csv")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rival, q := doc.Rivals[0].Name, doc.Questions[0]
+	g, err := doc.Graph(rival)
+	if err != nil {
+		t.Fatal(err)
+	}
+	// 60 draws are few on purpose: the verdict must travel with the numbers.
+	r, err := fit.Run(context.Background(), fit.Request{Study: doc, Rival: rival, Question: q, Table: data, Seed: 1, Draws: 60}, nil)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var out bytes.Buffer
+	if err := WriteHTML(&out, Input{Study: doc, Rival: rival, Question: q, Graph: g, Reading: fit.Read(g, q, 0, 0), Result: r}); err != nil {
+		t.Fatal(err)
+	}
+	text := out.String()
+	for _, want := range []string{
+		"Hedgerows and wild bees", "Nest and feed", "confounded along 3 open back-door paths", "<svg",
+		"negative binomial", "given, not modelled", "237 of 252 rows (15 lack bees)",
+		"holding pesticide and soil (proposed)", "90 %", "Trust:</b> " + r.Trust().Verdict.String(),
+		"hedge ← attitude → pesticide → bees", "qualified statistical and domain review",
+	} {
+		if !strings.Contains(text, want) {
+			t.Errorf("the report does not say %q", want)
+		}
+	}
+	if strings.Contains(text, "ZgotmplZ") || strings.Contains(text, "%!") {
+		t.Error("the report has a formatting fault")
+	}
+}
+
+func TestReportWithoutAFit(t *testing.T) {
+	doc := study.New()
+	var out bytes.Buffer
+	if err := WriteHTML(&out, Input{Study: doc, Rival: doc.Rivals[0].Name}); err != nil {
+		t.Fatal(err)
+	}
+	if !strings.Contains(out.String(), "Untitled study") || strings.Contains(out.String(), "Result</h2>") {
+		t.Error("a report on an empty study is wrong")
+	}
+}
