@@ -19,6 +19,7 @@ type column struct {
 	plate    int // in builder.plates, −1 = row
 	computed formula.Expr
 	done     bool
+	nudged   []bool // rows whose exact end was moved inwards; nil if none
 }
 
 // show writes a value for a message.
@@ -144,7 +145,29 @@ func (b *builder) readNumbers(c *column, source *table.Column) {
 			c.values[i] = x / d
 		}
 	}
+	c.nudge()
 	b.strange(v, source)
+}
+
+// nudge moves exact ends of the scale inwards, where the ledger says so
+// (SEMANTICS C7).
+func (c *column) nudge() {
+	v := c.variable
+	if v.Nudge <= 0 || v.Scale != study.Positive && v.Scale != study.Proportion {
+		return
+	}
+	moved := make([]float64, len(c.values))
+	c.nudged = make([]bool, len(c.values))
+	for i, x := range c.values {
+		switch {
+		case x == 0:
+			x, c.nudged[i] = v.Nudge, true
+		case x == 1 && v.Scale == study.Proportion:
+			x, c.nudged[i] = 1-v.Nudge, true
+		}
+		moved[i] = x
+	}
+	c.values = moved
 }
 
 // strange reports text among numbers. The table holds it as missing already;

@@ -102,7 +102,7 @@ func (b *builder) support(d *draft) {
 		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
 			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
 		} else if row, n := first(func(x float64) bool { return x == 0 }); row >= 0 {
-			report("zero", fmt.Sprintf("%s exactly 0 (first in row %d), which %s cannot be.", rows(n), row+1, article(f.Name)), law("normal"))
+			report("zero", fmt.Sprintf("%s exactly 0 (first in row %d), which %s cannot be.", rows(n), row+1, article(f.Name)), b.nudgeTo(d.variable, values), law("normal"))
 		}
 	case catalog.NonNegatives:
 		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
@@ -141,7 +141,27 @@ func (b *builder) unitMisfits(d *draft, values []float64, first func(func(float6
 	case ones >= 0:
 		row, end, n = min(zeros, ones), "0 or 1", nZeros+nOnes
 	}
-	report("exact-end", fmt.Sprintf("%s exactly %s (first in row %d), which %s cannot be.", rows(n), end, row+1, article(d.family.Name)), law("normal"))
+	report("exact-end", fmt.Sprintf("%s exactly %s (first in row %d), which %s cannot be.", rows(n), end, row+1, article(d.family.Name)), b.nudgeTo(v, values), law("normal"))
+}
+
+// nudgeTo offers to move exact ends inwards: by 0.001, or for a positive
+// variable to half of its smallest value.
+func (b *builder) nudgeTo(v *study.Variable, values []float64) Repair {
+	to := *v
+	to.Nudge = 0.001
+	if scaleOf(v) != study.Proportion {
+		to.Scale = study.Positive
+		least := math.Inf(1)
+		for _, x := range values {
+			if x > 0 && x < least {
+				least = x
+			}
+		}
+		if !math.IsInf(least, 0) {
+			to.Nudge = round(least / 2)
+		}
+	}
+	return Repair{Label: "Nudge to " + short(to.Nudge), Edit: changeVariable(to)}
 }
 
 func rows(n int) string {

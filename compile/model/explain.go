@@ -388,9 +388,11 @@ func (b *builder) offset(d *draft, a *study.Arrow) formula.Expr {
 	}
 	low, _ := extent(parent.Values)
 	if parent.Scale == study.Category || parent.Scale == study.Ordered || low <= 0 {
-		p := Problem{Code: "offset-positive", Variable: a.From, Place: "data", Repairs: []Repair{use},
-			Message: fmt.Sprintf("%s → %s is an offset, so %s must be positive; its smallest value is %s.", a.From, v, a.From, short(low))}
-		b.stop(p)
+		text := fmt.Sprintf("%s → %s is an offset, so %s must be positive", a.From, v, a.From)
+		if i := slices.Index(parent.Values, low); i >= 0 && parent.Scale != study.Category && parent.Scale != study.Ordered {
+			text += fmt.Sprintf("; its smallest value is %s (row %d)", short(low), b.rowOf(parent, i)+1)
+		}
+		b.stop(Problem{Code: "offset-positive", Variable: a.From, Place: "data", Message: text + ".", Repairs: []Repair{use}})
 		return number(0)
 	}
 	d.law.Terms = append(d.law.Terms, Term{Kind: Offset, Variable: b.at[a.From], With: -1, VariesBy: -1})

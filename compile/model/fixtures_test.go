@@ -58,7 +58,7 @@ func sheet(variables []*study.Variable, arrows string, laws map[string]*study.La
 	return &study.Study{
 		Variables: variables,
 		Plates:    []*study.Plate{{Name: "farm"}},
-		Rivals:    []*study.Rival{{Name: "R", Diagram: d}},
+		Rivals:    []*study.Rival{{Name: "R", Layout: &study.Layout{}, Diagram: d}},
 	}
 }
 

@@ -308,6 +308,14 @@ func (b *builder) keepVariable(c *column) {
 			}
 		}
 	}
+	if c.nudged != nil {
+		out.Nudge = v.Nudge
+		for _, row := range m.Rows.Index {
+			if c.nudged[row] {
+				out.Nudged++
+			}
+		}
+	}
 	b.plausible(out, v)
 	b.at[v.ID] = len(m.Variables)
 	m.Variables = append(m.Variables, out)

@@ -64,6 +64,8 @@ type Variable struct {
 	Low, High       float64   // plausible range on the variable's own scale
 	RangeGiven      bool      // false: seen in the data, and every prior made from it says so
 	Computed        formula.Expr
+	Nudge           float64 // exact ends of the scale were moved inwards by this …
+	Nudged          int     // … in so many used rows
 }
 
 // A Law is the fitted law of one variable.

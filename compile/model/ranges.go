@@ -38,12 +38,12 @@ func onLink(v *Variable, f *catalog.Family, low, high float64, shares bool) link
 	if r.fromData {
 		seen = " seen in the data"
 	}
-	stated := fmt.Sprintf("%s %s–%s%s", what, short(low), short(high), seen)
+	stated := fmt.Sprintf("%s %s–%s%s", what, edge(low), edge(high), seen)
 	readAs := func(l, h float64, scale string) {
 		if l == low && h == high {
 			r.words = stated + ", on the " + scale
 		} else {
-			r.words = fmt.Sprintf("%s read as %s–%s on the %s", stated, short(l), short(h), scale)
+			r.words = fmt.Sprintf("%s read as %s–%s on the %s", stated, edge(l), edge(h), scale)
 		}
 	}
 	switch {
@@ -59,7 +59,7 @@ func onLink(v *Variable, f *catalog.Family, low, high float64, shares bool) link
 		}
 		r.low, r.high = logit(l), logit(h)
 		if shares {
-			stated = fmt.Sprintf("share of %s in its trials %s–%s%s", v.ID, short(low), short(high), seen)
+			stated = fmt.Sprintf("share of %s in its trials %s–%s%s", v.ID, edge(low), edge(high), seen)
 		}
 		readAs(l, h, "log-odds scale")
 	case onLogScale(f):
@@ -115,12 +115,17 @@ func roundTo(v, width float64) float64 {
 	return r + 0 // −0 prints as 0
 }
 
-// short writes a number of a range for people: ½, three digits past the point
-// at most where it is not tiny.
-func short(v float64) string {
+// edge writes an end of a range: ½ where C2 puts it.
+func edge(v float64) string {
 	if v == leastCount {
 		return "½"
 	}
+	return short(v)
+}
+
+// short writes a number for people, in four digits, without an exponent where
+// it is not tiny.
+func short(v float64) string {
 	s := strconv.FormatFloat(v, 'g', 4, 64)
 	if f, err := strconv.ParseFloat(s, 64); err == nil {
 		if a := math.Abs(f); a == 0 || a >= 1e-4 && a < 1e15 {

@@ -30,6 +30,7 @@ const (
 	PriorLine                    // β_hedge→bees ~ normal, mean 0, sd 0.0078 per m/ha
 	CarriedLine                  // carried terms (for attitude, left out): …
 	GivenLine                    // given, not modelled: …
+	NoteLine                     // exact 0 read as 0.001: flowers (2 rows)
 )
 
 // A Line of a statement.
@@ -395,6 +396,11 @@ func (w *writer) notes() {
 			id := w.m.Variables[l.Variable].ID
 			w.line(Line{Kind: CarriedLine, Variable: id,
 				Right: fmt.Sprintf("carried terms (for %s, left out): %s in the law of %s.", s, list(bySake[s]), id)})
+		}
+	}
+	for _, v := range w.m.Variables {
+		if v.Nudged > 0 {
+			w.line(Line{Kind: NoteLine, Variable: v.ID, Right: fmt.Sprintf("%s: %s at the exact end of its scale, moved inwards by %s.", v.ID, rows(v.Nudged), short(v.Nudge))})
 		}
 	}
 	if len(w.m.Given) > 0 {

@@ -1,0 +1,377 @@
+package model
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"arrowroot/compile/study"
+	"arrowroot/compile/table"
+)
+
+// A trouble is a study or a table with one thing wrong.
+type trouble struct {
+	name    string
+	study   func(s *study.Study)
+	table   func(t *table.Table)
+	asks    func(q *study.Question)
+	code    string
+	message string // whole, or with its caret line
+	labels  string // of repairs, joined by |
+	mends   bool   // the first repair, applied, takes the problem away
+}
+
+func law(s *study.Study, id string) *study.Law {
+	for _, n := range s.Rivals[0].Diagram.Nodes {
+		if n.Variable == id {
+			if n.Law == nil {
+				n.Law = &study.Law{}
+			}
+			return n.Law
+		}
+	}
+	return nil
+}
+
+func set(t *table.Table, name string, row int, v float64) { t.Column(name).Numbers[row] = v }
+
+var troubles = []trouble{
+	{
+		name: "formula does not parse", code: "formula",
+		study:   func(s *study.Study) { law(s, "bees").Formula = "log rate = alpha_bees + (beta_hedge_bees * hedge" },
+		message: "log rate = alpha_bees + (beta_hedge_bees * hedge\n                        ^ this bracket is not closed",
+		labels:  "Go back to the arrows", mends: true,
+	},
+	{
+		name: "unknown variable", code: "unknown-name",
+		study: func(s *study.Study) {
+			law(s, "bees").Formula = "log rate = alpha_bees by farm + beta_hedge_bees * hedges + beta_flowers_bees * flowers + beta_pesticide_bees * pesticide + beta_temp_bees * temp + log hours"
+		},
+		message: "log rate = alpha_bees by farm + beta_hedge_bees * hedges + beta_flowers_bees * flowers + beta_pesticide_bees * pesticide + beta_temp_bees * temp + log hours\n                                                  ^^^^^^ there is no variable *hedges*; did you mean *hedge*?",
+		labels:  "Replace|Make it a parameter", mends: true,
+	},
+	{
+		name: "unknown parameter", code: "unknown-name",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alfa_flowers + beta_hedge_flowers * (hedge - 90) + step_soil_flowers of soil"
+		},
+		message: "alfa_flowers + beta_hedge_flowers * (hedge - 90) + step_soil_flowers of soil\n^^^^^^^^^^^^ there is no parameter *alfa_flowers*; did you mean *alpha_flowers*?",
+		labels:  "Replace|Make it a parameter", mends: true,
+	},
+	{
+		name: "no arrow", code: "no-arrow",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge + beta_temp_flowers * temp"
+		},
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge + beta_temp_flowers * temp\n                                                                                             ^^^^ the formula of flowers uses *temp*, but no arrow temp → flowers is drawn",
+		labels:  "Draw the arrow", mends: true,
+	},
+	{
+		name: "arrow not used", code: "unused-arrow",
+		study:   func(s *study.Study) { law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil" },
+		message: "alpha_flowers + step_soil_flowers of soil\n                                         ^ the arrow hedge → flowers is drawn, but the formula of flowers does not use hedge",
+		labels:  "Add the term|Delete the arrow", mends: true,
+	},
+	{
+		name: "baseline does not vary", code: "unused-plate",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge"
+			law(s, "flowers").VariesBy = []string{"farm"}
+		},
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge\n^^^^^^^^^^^^^ the baseline of flowers is said to vary by farm, but its formula does not say so",
+		labels:  "Let it vary|Keep one baseline", mends: true,
+	},
+	{
+		name: "a category as a number", code: "category",
+		study:   func(s *study.Study) { law(s, "flowers").Formula = "alpha_flowers + soil + beta_hedge_flowers * hedge" },
+		message: "alpha_flowers + soil + beta_hedge_flowers * hedge\n                ^^^^ soil is a category, not a number: write *step_soil_flowers of soil*",
+		labels:  "Replace", mends: true,
+	},
+	{
+		name: "wrong link", code: "link",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "log mu = alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge"
+		},
+		message: "log mu = alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge\n^^^^^^^ a beta law predicts the logit of its mean, so the left side is *logit mu*",
+		labels:  "Replace|Go back to the arrows", mends: true,
+	},
+	{
+		name: "unknown function", code: "unknown-function",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * sqr(hedge)"
+		},
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * sqr(hedge)\n                                                                 ^^^^^^^^^^ there is no function *sqr*; did you mean *sqrt*?",
+	},
+	{
+		name: "unmeasured in a formula", code: "unmeasured",
+		study:   func(s *study.Study) { law(s, "hedge").Formula = "alpha_hedge + attitude" },
+		message: "alpha_hedge + attitude\n              ^^^^^^^^ *attitude* was not measured and is left out of the fit, so no formula can use it",
+	},
+	{
+		name: "unknown plate", code: "unknown-plate",
+		study:   func(s *study.Study) { law(s, "bees").VariesBy = []string{"frm"} },
+		message: "There is no plate named frm; did you mean farm?",
+	},
+	{
+		name: "unknown family", code: "unknown-family",
+		study:   func(s *study.Study) { law(s, "bees").Family = "poison" },
+		message: "poison\n^^^^^^ there is no distribution *poison*; did you mean *Poisson*?",
+		labels:  "Replace|Use negative binomial", mends: true,
+	},
+	{
+		name: "family does not fit the scale", code: "family-scale",
+		study:   func(s *study.Study) { law(s, "flowers").Family = "Poisson" },
+		message: "flowers ~ Poisson: flowers is a proportion, and a Poisson law is for counts.",
+		labels:  "Use beta|Take flowers as a count", mends: true,
+	},
+	{
+		name: "unknown argument", code: "unknown-argument",
+		study:   func(s *study.Study) { law(s, "bees").Arguments = []study.Argument{{Name: "sd", Text: "2"}} },
+		message: "a negative binomial law has no argument *sd*; it has mean and overdispersion",
+		labels:  "Drop it", mends: true,
+	},
+	{
+		name: "argument out of range", code: "argument-range",
+		study:   func(s *study.Study) { law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "0"}} },
+		message: "0\n^ the sd of hedge must be positive",
+		labels:  "Drop it", mends: true,
+	},
+	{
+		name: "prior does not parse", code: "formula",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[8].Prior = "normal with mean 0 sd 1" },
+		message: "", labels: "",
+	},
+	{
+		name: "prior of an unknown distribution", code: "prior",
+		study: func(s *study.Study) {
+			law(s, "bees").Priors = []study.Prior{{Parameter: "k_bees", Text: "gama with mean 2, shape 2"}}
+		},
+		message: "gama with mean 2, shape 2\n^^^^^^^^^^^^^^^^^^^^^^^^^ there is no distribution *gama*; did you mean *gamma*?",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "prior for nothing", code: "unused-prior",
+		study: func(s *study.Study) {
+			law(s, "bees").Priors = []study.Prior{{Parameter: "gamma_bees", Text: "normal with mean 0, sd 1"}}
+		},
+		message: "normal with mean 0, sd 1\n^ the prior of *gamma_bees* is not used: no law has this parameter",
+		labels:  "Drop it", mends: true,
+	},
+	{
+		name: "column gone", code: "column-gone",
+		study:   func(s *study.Study) { s.Variables[6].Column = "hour" },
+		message: "traps has no column hour any more, to which hours is bound; did you mean hours?",
+		labels:  "Bind it to hours|Unbind hours", mends: true,
+	},
+	{
+		name: "unbound", code: "unbound",
+		study:   func(s *study.Study) { s.Variables[5].Column = "" },
+		message: "temp is not bound to a column of traps. If nobody measured it, say so, and it is left out of the fit.",
+		labels:  "Bind it to temp|It was not measured", mends: true,
+	},
+	{
+		name: "text among numbers", code: "text-in-number",
+		table: func(t *table.Table) {
+			set(t, "hours", 17, math.NaN())
+			t.Column("hours").Strange = []table.Strange{{Row: 17, Text: "six"}}
+		},
+		message: "traps, row 18, column hours: “six” is not a number. 59 other entries are.",
+		labels:  "Treat as missing", mends: true,
+	},
+	{
+		name: "words for numbers", code: "words",
+		study:   func(s *study.Study) { s.Variables[5].Column = "soil" },
+		message: "traps, column soil: the entries are words (chalk, clay, sand), but temp is a real number.",
+		labels:  "Make it a category", mends: true,
+	},
+	{
+		name: "no scale", code: "no-scale",
+		study:   func(s *study.Study) { s.Variables[6].Scale = "" },
+		message: "Nobody has said yet what values hours can take; it is read as a real number. The column holds whole numbers from 4 to 8: a count, or steps of an ordered scale.",
+		labels:  "Take it as a count", mends: true,
+	},
+	{
+		name: "negative count", code: "negative",
+		table:   func(t *table.Table) { set(t, "bees", 6, -3) },
+		message: "bees ~ negative binomial: row 7 is −3, but a negative binomial count cannot be below 0.",
+		labels:  "Take bees as a real number",
+	},
+	{
+		name: "count not whole", code: "not-whole",
+		study:   func(s *study.Study) { law(s, "bees").Family = "Poisson" },
+		table:   func(t *table.Table) { set(t, "bees", 6, 3.5) },
+		message: "bees ~ Poisson: row 7 is 3.5, but a Poisson count is whole.",
+		labels:  "Take bees as a positive number",
+	},
+	{
+		name: "exact zeros under beta", code: "exact-end",
+		table:   func(t *table.Table) { set(t, "flowers", 4, 0); set(t, "flowers", 8, 0) },
+		message: "flowers ~ beta: 2 rows are exactly 0 (first in row 5), which a beta law cannot be.",
+		labels:  "Nudge to 0.001|Use normal", mends: true,
+	},
+	{
+		name: "percent", code: "beyond-unit",
+		table: func(t *table.Table) {
+			for i, x := range t.Column("flowers").Numbers {
+				set(t, "flowers", i, 100*x)
+			}
+		},
+		message: "flowers ~ beta: row 1 is 24.42, but a proportion lies between 0 and 1.",
+		labels:  "Divide by 100|Take flowers as a real number", mends: true,
+	},
+	{
+		name: "constant exposure", code: "constant-exposure",
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "hedge", i, 40)
+			}
+		},
+		message: "hedge is 40 in every used row: with an exposure that never moves, these data say nothing about its effect.",
+	},
+	{
+		name: "no rows left", code: "no-rows",
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "temp", i, math.NaN())
+			}
+		},
+		message: "No rows are left: temp is missing in all 60.",
+		labels:  "Leave temp out as unmeasured", mends: true,
+	},
+	{
+		name: "offset not positive", code: "offset-positive",
+		study:   func(s *study.Study) { s.Variables[6].Range = nil },
+		table:   func(t *table.Table) { set(t, "hours", 2, 0) },
+		message: "hours → bees is an offset, so hours must be positive; its smallest value is 0 (row 3).",
+		labels:  "Use a slope", mends: true,
+	},
+	{
+		name: "offset without a log link", code: "offset-link",
+		study: func(s *study.Study) {
+			s.Variables[1].Scale = study.Real
+		},
+		message: "hours → bees is an offset, which multiplies the mean; that needs a law with a log link, and a normal law has none.",
+		labels:  "Use a slope", mends: true,
+	},
+	{
+		name: "not constant on the farm", code: "not-constant",
+		study:   func(s *study.Study) { s.Variables[5].Plates = []string{"farm"} },
+		table:   func(t *table.Table) { set(t, "temp", 0, 12); set(t, "temp", 1, 14) },
+		message: "temp is said to be one value per farm, but within farm 1 it is 12 in row 1 and 14 in row 2.",
+		labels:  "Let it change from row to row", mends: true,
+	},
+	{
+		name: "level unknown", code: "unknown-level",
+		study:   func(s *study.Study) { s.Variables[4].Levels = []string{"chalk", "clay"} },
+		message: "traps, row 11, column soil: “sand” is not a level of soil (chalk, clay).",
+		labels:  "Add “sand” to the levels", mends: true,
+	},
+	{
+		name: "trials missing", code: "no-trials",
+		study: func(s *study.Study) {
+			law(s, "bees").Family = "binomial"
+			s.Rivals[0].Diagram.Arrows[11].Form = "slope"
+		},
+		message: "bees ~ binomial: out of how many trials? Give a number or a column.",
+	},
+	{
+		name: "more than the trials", code: "trials",
+		study: func(s *study.Study) {
+			law(s, "bees").Family = "binomial"
+			law(s, "bees").Arguments = []study.Argument{{Name: "trials", Text: "hours"}}
+			s.Rivals[0].Diagram.Arrows[11].Form = "slope"
+		},
+		table:   func(t *table.Table) { set(t, "bees", 0, 58); set(t, "hours", 0, 5) },
+		message: "bees ~ binomial: in row 1 there are 58 out of 5 trials (hours).",
+	},
+	{
+		name: "no data", code: "no-data",
+		table:   func(t *table.Table) { t.Rows = -1 }, // the test passes nil then
+		message: "There are no data to fit yet: open a table and bind its columns to the variables.",
+	},
+	{
+		name: "nothing drawn", code: "nothing",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows = nil; law(s, "bees").VariesBy = nil },
+		asks:    func(q *study.Question) { *q = study.Question{} },
+		message: "There is nothing to fit on this sheet yet: draw an arrow into a measured variable.",
+	},
+}
+
+func TestProblems(t *testing.T) {
+	for _, c := range troubles {
+		t.Run(c.name, func(t *testing.T) {
+			s, tab, q := hedgerows(), traps(), beesQuestion()
+			if c.study != nil {
+				c.study(s)
+			}
+			if c.table != nil {
+				c.table(tab)
+			}
+			if tab.Rows < 0 {
+				tab = nil
+			}
+			if c.asks != nil {
+				c.asks(&q)
+			}
+			found := find(Problems(s, "R", q, tab), c.code)
+			if found == nil {
+				t.Fatalf("no problem %s; there are %v", c.code, messages(Problems(s, "R", q, tab)))
+			}
+			if c.message != "" && found.Display() != c.message {
+				t.Errorf("says\n%s\nnot\n%s", found.Display(), c.message)
+			}
+			var labels []string
+			for _, r := range found.Repairs {
+				labels = append(labels, r.Label)
+				if after, err := r.Edit.Apply(s); err != nil {
+					t.Errorf("repair %q: %v", r.Label, err)
+				} else if after == s {
+					t.Errorf("repair %q changes nothing", r.Label)
+				}
+			}
+			if c.message != "" && strings.Join(labels, "|") != c.labels {
+				t.Errorf("offers %s, not %s", strings.Join(labels, "|"), c.labels)
+			}
+			if c.mends {
+				after, _ := found.Repairs[0].Edit.Apply(s)
+				if left := find(Problems(after, "R", q, tab), c.code); left != nil && left.Display() == found.Display() {
+					t.Errorf("repair %q leaves the problem: %s", found.Repairs[0].Label, left.Display())
+				}
+			}
+		})
+	}
+}
+
+func find(problems []Problem, code string) *Problem {
+	for i := range problems {
+		if problems[i].Code == code {
+			return &problems[i]
+		}
+	}
+	return nil
+}
+
+func messages(problems []Problem) []string {
+	var out []string
+	for _, p := range problems {
+		out = append(out, p.Code+": "+p.Display())
+	}
+	return out
+}
+
+// A cycle cannot be drawn, but a file merged by hand may hold one.
+func TestCycle(t *testing.T) {
+	s := hedgerows()
+	s.Rivals[0].Diagram.Arrows = append(s.Rivals[0].Diagram.Arrows, &study.Arrow{From: "bees", To: "hedge"})
+	p := find(Problems(s, "R", beesQuestion(), traps()), "cycle")
+	if p == nil || !strings.Contains(p.Message, "→") || len(p.Repairs) < 2 {
+		t.Fatalf("%+v", p)
+	}
+}
+
+// The sound study has no problem at all.
+func TestSound(t *testing.T) {
+	if problems := Problems(hedgerows(), "R", beesQuestion(), traps()); len(problems) > 0 {
+		t.Error(messages(problems))
+	}
+}
