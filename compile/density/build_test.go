@@ -11,11 +11,11 @@ import (
 
 // A sketch builds small models by hand.
 type sketch struct {
-	t *testing.T
+	t testing.TB
 	m *model.Model
 }
 
-func newSketch(t *testing.T, rows int) *sketch {
+func newSketch(t testing.TB, rows int) *sketch {
 	return &sketch{t: t, m: &model.Model{Rows: model.Rows{Read: rows, Used: rows}}}
 }
 
