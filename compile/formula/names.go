@@ -86,7 +86,7 @@ func Symbol(id string) string {
 
 // bare lists the functions that take a name or number without a bracket, which
 // is also what makes their words unfit as names of variables.
-var bare = [...]string{"log", "exp", "logit", "inverse logit", "sqrt", "abs", "softplus"}
+var bare = [...]string{"log", "exp", "logit", "inverse logit", "sqrt", "abs"}
 
 // links lists what may stand before the name on the left of "=".
 var links = [...]string{"log", "logit", "softmax", "cumulative logit"}
