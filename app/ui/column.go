@@ -27,6 +27,7 @@ type columnLayout struct {
 	gap        float32
 	padX, padY float32
 	width      float32 // last laid out at
+	narrow     bool    // it takes whatever width it is given
 }
 
 func column(gap float32, objects ...fyne.CanvasObject) *fyne.Container {
@@ -74,7 +75,11 @@ func (l *columnLayout) MinSize(objects []fyne.CanvasObject) fyne.Size {
 		}
 	}
 	w += 2 * l.padX
-	return fyne.NewSize(w, l.heightFor(objects, max(w, l.width)))
+	h := l.heightFor(objects, max(w, l.width))
+	if l.narrow {
+		return fyne.NewSize(0, h)
+	}
+	return fyne.NewSize(w, h)
 }
 
 // rowLayout sets objects side by side at their smallest width, centred in

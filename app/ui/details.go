@@ -73,6 +73,9 @@ const labelWidth = 84
 
 // labelled sets a muted label before a control.
 func labelled(label string, o fyne.CanvasObject) *fyne.Container {
+	if fyne.MeasureText(label, sizeBody, fyne.TextStyle{}).Width > labelWidth {
+		return column(2, muted(label), o)
+	}
 	return row(8, fixed(labelWidth, 0, muted(label).shrinkTo(20)), stretch(o))
 }
 

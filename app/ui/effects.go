@@ -132,7 +132,7 @@ func (p *effectPage) card(c card, zero, from, to float64) fyne.CanvasObject {
 		style.Accent, style.Soft = style.Muted, draw.Alpha(style.Muted, 0.35)
 	}
 	curve := draw.KDE(c.draws, 160)
-	pic := canvas.NewPicture(100, 86, func(w, h float64) *draw.List {
+	pic := canvas.NewPicture(100, 64, func(w, h float64) *draw.List {
 		return draw.DensityPlot(w, h, draw.Density{Posterior: curve, Low: c.low, High: c.high, Mark: &zero, From: from, To: to}, style)
 	})
 	objects = append(objects, pic, newProse(sizeBody,
@@ -150,7 +150,7 @@ func (p *effectPage) card(c card, zero, from, to float64) fyne.CanvasObject {
 		spans = append([]span{{text: "association, not an effect", bold: true, token: tokenConfound}, {text: " · "}}, spans...)
 	}
 	objects = append(objects, newProse(sizeSmall, spans...))
-	return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 8, 4, objects...))
+	return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 6, 2, objects...))
 }
 
 // headline is the answer in one sentence, as the report says it.

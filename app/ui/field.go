@@ -27,6 +27,7 @@ func (k *kit) field(text, hint string, commit func(string)) *field {
 	f.PlaceHolder = hint
 	f.Wrapping = fyne.TextWrapOff
 	f.Scroll = fyne.ScrollNone
+	f.minWidth = 48
 	f.OnChanged = func(s string) {
 		if f.typing != nil {
 			f.typing(s)
@@ -84,9 +85,7 @@ func (f *field) TypedKey(e *fyne.KeyEvent) {
 
 func (f *field) MinSize() fyne.Size {
 	m := f.Entry.MinSize()
-	if f.minWidth > 0 {
-		m.Width = f.minWidth
-	}
+	m.Width = f.minWidth // a hint may be longer than the place it stands in
 	return m
 }
 

@@ -10,8 +10,12 @@ import (
 // glyph makes an icon of a 24×24 drawing that follows the theme's ink. Every
 // one is our own drawing of the thing the tool makes.
 func glyph(name, drawing string) fyne.Resource {
+	return colored(theme.ColorNameForeground, name, drawing)
+}
+
+func colored(token fyne.ThemeColorName, name, drawing string) fyne.Resource {
 	svg := fmt.Sprintf(`<svg xmlns="http://www.w3.org/2000/svg" width="24" height="24" viewBox="0 0 24 24">%s</svg>`, drawing)
-	return theme.NewColoredResource(fyne.NewStaticResource("arrowroot-"+name+".svg", []byte(svg)), theme.ColorNameForeground)
+	return theme.NewColoredResource(fyne.NewStaticResource("arrowroot-"+name+".svg", []byte(svg)), token)
 }
 
 const thin = `fill="none" stroke="#000000" stroke-width="1.6" stroke-linecap="round" stroke-linejoin="round"`
@@ -27,8 +31,8 @@ var (
 	iconFoldD    = glyph("fold-down", `<path `+thin+` d="M6 9.5 L12 15.5 L18 9.5"/>`)
 	iconFoldU    = glyph("fold-up", `<path `+thin+` d="M6 14.5 L12 8.5 L18 14.5"/>`)
 	iconClose    = glyph("close", `<path `+thin+` d="M7 7 L17 17 M17 7 L7 17"/>`)
-	iconWarn     = glyph("warn", `<path `+thin+` d="M12 4 L20.5 19.5 H3.5 Z"/><path `+thin+` d="M12 10 V14.2"/><path `+thin+` d="M12 16.8 V16.9"/>`)
-	iconGood     = glyph("good", `<path `+thin+` d="M5 12.5 L10 17.5 L19 7"/>`)
+	iconWarn     = colored(tokenConfound, "warn", `<path `+thin+` d="M12 4 L20.5 19.5 H3.5 Z"/><path `+thin+` d="M12 10 V14.2"/><path `+thin+` d="M12 16.8 V16.9"/>`)
+	iconGood     = colored(tokenAction, "good", `<path `+thin+` d="M5 12.5 L10 17.5 L19 7"/>`)
 	iconAsk      = glyph("ask", `<path `+thin+` d="M4 12 H13"/><path fill="#000000" d="M20 12 L13 8.4 V15.6 Z"/>`)
 	iconRing     = glyph("ring", `<circle cx="12" cy="12" r="8" fill="none" stroke="#000000" stroke-width="1.9" stroke-dasharray="3.6 2.7"/>`)
 	iconStop     = glyph("stop", `<path `+thin+` d="M6 6 L18 18 M18 6 L6 18"/>`)

@@ -18,6 +18,7 @@ type pane struct {
 
 func newPane(padX, padY, gap float32) *pane {
 	p := &pane{content: padded(padX, padY, gap), keys: make(map[string]fyne.Focusable)}
+	p.content.Layout.(*columnLayout).narrow = true
 	p.scroll = container.NewVScroll(p.content)
 	p.ExtendBaseWidget(p)
 	return p

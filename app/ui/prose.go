@@ -127,6 +127,9 @@ func (p *prose) wrap(width float32) ([]piece, float32) {
 			}
 		}
 	}
+	if len(pieces) == 0 {
+		return nil, 0
+	}
 	newLine()
 	return pieces, y
 }

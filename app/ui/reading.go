@@ -87,12 +87,13 @@ func (p *readingPage) fill() {
 	keys["open"] = only
 	objects := []fyne.CanvasObject{row(8, bold("Paths from "+g.Names[q.Exposure]+" to "+g.Names[q.Outcome]), stretch(small(about).shrinkTo(30)), only), gapOf(1, 2)}
 	shown := 0
+	column := p.column(g, r)
 	for i := range r.Paths {
 		path := &r.Paths[i]
 		if p.open && !path.Open {
 			continue
 		}
-		line := p.path(g, i, path)
+		line := p.path(g, i, path, column)
 		keys[fmt.Sprint("path ", i)] = line
 		objects = append(objects, line)
 		if shown++; shown == 200 {
@@ -111,7 +112,7 @@ func (p *readingPage) fill() {
 
 // path is one line of the list; hovered or reached by keyboard it is lit on
 // the sheet alone.
-func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path) *press {
+func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path, column float32) *press {
 	kind, token := "back-door", tokenConfound
 	switch path.Kind {
 	case causal.Causal:
@@ -128,7 +129,7 @@ func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path) *press {
 	line := row(8,
 		fixed(8, 8, mark),
 		fixed(64, 0, newLabel(kind, sizeBody, token, fyne.TextStyle{})),
-		stretch(body(path.Text(g)).shrinkTo(60)),
+		fixed(column, 0, body(path.Text(g)).shrinkTo(60)),
 		stretch(small(state).shrinkTo(40)))
 	x := p.d.press(line, func(x *press) skin {
 		if x.focused || x.hovered {
@@ -149,6 +150,19 @@ func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path) *press {
 		x.Refresh()
 	}
 	return x
+}
+
+// column is the width of the paths' own column: as wide as the widest, within
+// a share of the page.
+func (p *readingPage) column(g *graph.Graph, r *causal.Reading) float32 {
+	w := float32(120)
+	for i := range r.Paths {
+		if i == 60 {
+			break
+		}
+		w = max(w, fyne.MeasureText(r.Paths[i].Text(g), sizeBody, fyne.TextStyle{}).Width+4)
+	}
+	return min(w, max(120, 0.52*p.paths.Size().Width))
 }
 
 func nodesOf(g *graph.Graph, p *causal.Path) []string {

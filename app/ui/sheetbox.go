@@ -54,13 +54,14 @@ func (k *dock) update() {
 
 // sheetLayout lays the editor out to fill, the dock at the top left, the
 // banner beside it, and the ways to begin in the middle.
-type sheetLayout struct{ editor, dock, banner, empty fyne.CanvasObject }
+type sheetLayout struct{ ground, editor, dock, banner, empty fyne.CanvasObject }
 
 func (l *sheetLayout) Layout(_ []fyne.CanvasObject, s fyne.Size) {
-	place(l.editor, 0, 0, s.Width, s.Height)
 	m := l.dock.MinSize()
-	place(l.dock, 10, 10, m.Width, min(m.Height, s.Height-14))
-	left := 10 + m.Width + 10
+	left := 8 + m.Width + 8
+	place(l.ground, 0, 0, s.Width, s.Height)
+	place(l.editor, left, 0, s.Width-left, s.Height) // beside the dock: nothing may hide under it
+	place(l.dock, 8, 10, m.Width, min(m.Height, s.Height-14))
 	w := min(640, s.Width-left-10)
 	if c, ok := l.banner.(*fyne.Container); ok {
 		place(l.banner, left, 10, w, stackHeight(c, w))

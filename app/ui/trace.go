@@ -146,7 +146,7 @@ func (d *desk) marks() map[string]fyne.CanvasObject {
 		switch p := p.(type) {
 		case *strip:
 			m["fit"] = p.fit
-			for _, a := range p.actions.Objects {
+			for _, a := range p.actions {
 				m["hold them"] = a
 			}
 		case *banner:

@@ -21,7 +21,7 @@ type strip struct {
 	question *prose
 	icon     *widget.Icon
 	says     *prose
-	actions  *fyne.Container
+	actions  []*press
 	rows     *label
 	trust    *label
 	fit      *press
@@ -41,7 +41,6 @@ func newStrip(d *desk) *strip {
 	d.capsule = s.capsule
 	s.icon = widget.NewIcon(iconAsk)
 	s.says = newProse(sizeBody)
-	s.actions = row(6)
 	s.rows = small("")
 	s.trust = newLabel("", sizeBody, tokenAction, fyne.TextStyle{Bold: true})
 	s.fit = d.primary("Fit", func() { d.commands.find("fit").run() })
@@ -49,7 +48,7 @@ func newStrip(d *desk) *strip {
 	s.fitWords = s.fit.content.(*label)
 	s.paint = d.plain("Paint ▾", func() { d.commands.find("paint").run() })
 	d.painter = s.paint
-	s.object = row(10, gapOf(2, 1), s.capsule, fixed(18, 18, s.icon), stretch(s.says), s.actions, s.rows, s.trust, s.fit, s.paint, gapOf(2, 1))
+	s.object = row(10, gapOf(2, 1), s.capsule, fixed(18, 18, s.icon), stretch(s.says), s.rows, s.trust, s.fit, s.paint, gapOf(2, 1))
 	return s
 }
 
@@ -61,7 +60,7 @@ func (s *strip) update() {
 
 	icon, token := iconAsk, tokenMuted
 	sentence := "Nothing is asked yet: name an exposure and an outcome."
-	var actions []fyne.CanvasObject
+	s.actions = nil
 	switch r := v.Reading; {
 	case v.GraphError != nil:
 		icon, token, sentence = iconWarn, tokenFault, v.GraphError.Error()
@@ -79,15 +78,29 @@ func (s *strip) update() {
 		}
 		if r.Verdict.HasProposal {
 			ids := s.d.names(r.Verdict.Propose)
-			chip := s.d.chip(proposal(ids), r.Verdict.Kind != causal.Readable, func() { s.d.holdAll(ids) })
+			label := proposal(ids)
+			if r.Verdict.Kind == causal.Confounded && len(ids) > 0 { // the sentence has the names
+				label = "Hold them"
+				if len(ids) == 1 {
+					label = "Hold it"
+				}
+			}
+			chip := s.d.chip(label, r.Verdict.Kind != causal.Readable, func() { s.d.holdAll(ids) })
 			chip.key, chip.tip = "hold them", "Hold "+orNone(ids)
-			actions = append(actions, chip)
+			s.actions = append(s.actions, chip)
 		}
 	}
 	s.icon.SetResource(icon)
-	s.says.set(marked(strings.ReplaceAll(sentence, "**", "*"), token)...)
-	s.actions.Objects = actions
-	s.actions.Refresh()
+	first, rest, more := strings.Cut(strings.ReplaceAll(sentence, "*", ""), ". ")
+	spans := []span{{text: first, bold: true, token: token}}
+	if more {
+		spans[0].text += "."
+		spans = append(spans, span{text: " " + rest, token: token})
+	}
+	for _, a := range s.actions {
+		spans = append(spans, span{text: "  "}, span{object: a})
+	}
+	s.says.set(spans...)
 
 	s.rows.set("", tokenMuted)
 	if m := v.Model; m != nil && m.Rows.Read > 0 {

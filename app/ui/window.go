@@ -27,8 +27,9 @@ const dotCount = 20
 
 // A Window is the program's one window.
 type Window struct {
-	desk *desk
-	menu *fyne.MainMenu
+	desk  *desk
+	menu  *fyne.MainMenu
+	items map[*fyne.MenuItem]*command
 }
 
 // New makes the window on a session; post runs a function on the window's
@@ -48,7 +49,8 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	details := newDetails(d)
 	banner, empty, dock := newBanner(d), newEmpty(d), newDock(d)
 	d.status = newStatus(d)
-	sheet := container.New(&sheetLayout{d.editor, dock.object, banner.object, empty.object}, d.editor, empty.object, dock.object, banner.object)
+	ground := filled(tokenSheet)
+	sheet := container.New(&sheetLayout{ground, d.editor, dock.object, banner.object, empty.object}, ground, d.editor, empty.object, dock.object, banner.object)
 	left := container.New(&railLayout{share: 0.62}, ledger.pane, hairline(), rivals.pane)
 	d.drawer = newDrawer(d)
 	d.frame = newFrame(d.kit, strip.object, left, sheet, d.status.object, details.pane, d.drawer.object, remembered(app.Preferences()))
@@ -300,6 +302,7 @@ func (d *desk) repaint() {
 // makeMenu builds the menus from the table of commands.
 func (w *Window) makeMenu() {
 	d := w.desk
+	w.items = make(map[*fyne.MenuItem]*command)
 	var menus []*fyne.Menu
 	var at *fyne.Menu
 	for _, c := range d.commands {
@@ -319,6 +322,7 @@ func (w *Window) makeMenu() {
 			}
 		})
 		item.Shortcut = c.shortcut()
+		w.items[item] = c
 		at.Items = append(at.Items, item)
 	}
 	w.menu = fyne.NewMainMenu(menus...)
@@ -326,28 +330,16 @@ func (w *Window) makeMenu() {
 	w.refreshMenu()
 }
 
-// refreshMenu brings labels and states up to date; Fyne redraws the bar only
+// refreshMenu brings labels and states up to date; the bar is drawn again only
 // when something has changed.
 func (w *Window) refreshMenu() {
 	changed := false
-	byLabel := make(map[string][]*command)
-	for _, c := range w.desk.commands {
-		byLabel[c.menu] = append(byLabel[c.menu], c)
-	}
-	for _, m := range w.menu.Items {
-		i := 0
-		for _, item := range m.Items {
-			if item.IsSeparator {
-				continue
-			}
-			c := byLabel[m.Label][i]
-			i++
-			if text := c.text(); item.Label != text {
-				item.Label, changed = text, true
-			}
-			if off := !c.ready(); item.Disabled != off {
-				item.Disabled, changed = off, true
-			}
+	for item, c := range w.items {
+		if text := c.text(); item.Label != text {
+			item.Label, changed = text, true
+		}
+		if off := !c.ready(); item.Disabled != off {
+			item.Disabled, changed = off, true
 		}
 	}
 	if changed {
