@@ -49,7 +49,7 @@ func bernoulliLogitBlock(n int, y []float64, args [][]float64, _ []float64, darg
 	for i := range n {
 		// log p(y) = -softplus(t) with t = -η for y = 1 and η for y = 0.
 		v := y[i&iy]
-		if v != 0 && v != 1 {
+		if v*(v-1) != 0 { // neither 0 nor 1, in one foreseeable branch
 			return outside(v)
 		}
 		sign := 1 - 2*v

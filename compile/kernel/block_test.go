@@ -414,3 +414,53 @@ func TestLinkedIsNatural(t *testing.T) {
 		t.Error("not every pair was compared")
 	}
 }
+
+// A density is its two parts of a Tally. Oracle: the whole, row by row.
+func TestTallyIsWhole(t *testing.T) {
+	const n = 200
+	eachSample(t, func(t *testing.T, s sample, r *rand.Rand) {
+		tally := s.kernel.Tally
+		if tally == nil {
+			return
+		}
+		for range 20 {
+			_, first := s.draw(r)
+			y, args, d, parts := make([]float64, n), columns(first), columns(make([]float64, len(first))), columns(make([]float64, len(first)))
+			args[0], d[0], parts[0] = make([]float64, n), make([]float64, n), make([]float64, n)
+			counts := map[float64]float64{}
+			for i := range y {
+				v, a := s.draw(r)
+				y[i], args[0][i] = v, a[0]
+				counts[v]++
+			}
+			var values, times []float64
+			for v := range y {
+				if c := counts[y[v]]; c > 0 {
+					values, times = append(values, y[v]), append(times, c)
+					delete(counts, y[v])
+				}
+			}
+			want := s.kernel.Block(n, y, args, nil, d, nil, testScratch)
+			for _, prepared := range []bool{false, true} {
+				var aux []float64
+				if prepared && tally.Rows.Prepare != nil {
+					aux = tally.Rows.Prepare(y, args)
+				}
+				clear(parts[0])
+				parts[tally.Arg][0] = 0
+				got := tally.Rows.Block(n, y, args, nil, parts, aux, testScratch) +
+					tally.Values.Block(len(values), values, [][]float64{args[tally.Arg], times}, nil, [][]float64{parts[tally.Arg], nil}, nil, testScratch)
+				if math.Abs(got-want) > 1e-12*math.Abs(want) {
+					t.Errorf("parts add up to %v, the whole is %v", got, want)
+				}
+				for j := range d {
+					for i := range d[j] {
+						if math.Abs(parts[j][i]-d[j][i]) > 1e-11*max(1, math.Abs(d[j][i])) {
+							t.Errorf("slope in argument %d[%d]: parts %v, whole %v", j, i, parts[j][i], d[j][i])
+						}
+					}
+				}
+			}
+		}
+	})
+}

@@ -89,8 +89,8 @@ func gammaLogBlock(n int, y []float64, args [][]float64, dy []float64, dargs [][
 			logy = Log(v)
 		}
 		u := logy - eta[i&ie]
-		d := math.Expm1(u)
-		dev := -expm1mx(u)
+		dev := -expm1mx(u) // log r - r + 1 for r = y/mean
+		d := u - dev
 		sum += s*dev + con - logy
 		if dy != nil {
 			dy[i&iy] += (-s*d - 1) / v

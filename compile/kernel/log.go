@@ -50,10 +50,17 @@ func logParts(bits uint64, c float64) float64 {
 	return hi + (rest + r2*(-1./2+r*(1./3)+r2*(-1./4+r*(1./5)+r2*(-1./6+r*(1./7)))))
 }
 
-// log1pUnit returns log(1 + e) for 0 ≤ e ≤ 1.
-func log1pUnit(e float64) float64 {
-	u := 1 + e
-	return logParts(math.Float64bits(u), e-(u-1))
+// Log1p returns log(1 + w) for w ≥ 0, relatively accurate down to 0.
+func Log1p(w float64) float64 {
+	u := 1 + w
+	c := w - (u - 1) // what rounding 1+w lost
+	if w > 1 {
+		c = 1 - (u - w)
+	}
+	if !(u < 1e300) {
+		return math.Log1p(w)
+	}
+	return logParts(math.Float64bits(u), c)
 }
 
 // LogTo stores log(src[i]) in dst[i]; dst may be src.

@@ -57,37 +57,33 @@ func Logit(p float64) float64 {
 
 // log1pmx returns log(1+x) - x without the cancellation at small x.
 func log1pmx(x float64) float64 {
-	if x < -0.5 || x > 0.7 {
+	if x < -0.4 || x > 0.5 {
 		return math.Log1p(x) - x
 	}
 	// With s = x/(2+x), log(1+x) = 2 artanh(s) = 2s + 2s³/3 + 2s⁵/5 + …
 	// and 2s - x = -x s.
 	s := x / (2 + x)
-	s2 := s * s
-	sum := 0.0
-	for k := 41; k >= 3; k -= 2 {
-		sum = sum*s2 + 1/float64(k)
-	}
-	return s * (2*s2*sum - x)
+	v := s * s
+	sum := 1./3 + v*(1./5+v*(1./7+v*(1./9+v*(1./11+v*(1./13+v*(1./15+v*(1./17+v*(1./19+v*(1./21+v*(1./23+v*(1./25+v*(1./27))))))))))))
+	return s * (2*v*sum - x)
 }
 
 // expm1mx returns exp(x) - 1 - x without the cancellation at small x.
 func expm1mx(x float64) float64 {
 	if math.Abs(x) > 0.5 {
-		return math.Expm1(x) - x
+		return Exp(x) - 1 - x
 	}
-	sum := 0.0
-	for k := 16; k >= 3; k-- {
-		sum = (sum + 1) * x / float64(k)
-	}
-	return (sum + 1) * x * x / 2
+	v := x * x
+	even := 1./2 + v*(1./24+v*(1./720+v*(1./40320+v*(1./3628800+v*(1./479001600+v*(1./87178291200))))))
+	odd := 1./6 + v*(1./120+v*(1./5040+v*(1./362880+v*(1./39916800+v*(1./6227020800+v*(1./1307674368000))))))
+	return v * (even + x*odd)
 }
 
-// ratioMinusLog returns x/(1+x) - log(1+x) without the cancellation at small
-// x; it turns up where a spread parameter meets log(1+x).
+// ratioMinusLog returns x/(1+x) - log(1+x) for x ≥ 0 without the cancellation
+// at small x; it turns up where a spread parameter meets log(1+x).
 func ratioMinusLog(x float64) float64 {
-	if math.Abs(x) > 0.5 {
-		return x/(1+x) - math.Log1p(x)
+	if x > 1e-3 {
+		return x/(1+x) - Log1p(x)
 	}
 	return -log1pmx(x) - x*x/(1+x)
 }

@@ -128,7 +128,8 @@ func TestExpAndLogEdges(t *testing.T) {
 	}
 }
 
-// Oracle: math.Log1p and math.Exp, each within a unit in the last place.
+// Oracle: math.Log1p and math.Exp, each within a unit in the last place, which
+// the tolerance includes.
 func TestSoftplus(t *testing.T) {
 	r := rand.New(rand.NewPCG(5, 6))
 	for i := range 20000 {
@@ -137,16 +138,16 @@ func TestSoftplus(t *testing.T) {
 			x = 600 * (2*r.Float64() - 1)
 		}
 		sp, sg := SoftplusSigmoid(x)
-		if w := Log1pExp(x); math.Abs(sp-w) > 4e-16*w {
+		if w := Log1pExp(x); math.Abs(sp-w) > 6e-16*w {
 			t.Errorf("softplus(%v) = %.17g, want %.17g", x, sp, w)
 		}
-		if w := Sigmoid(x); math.Abs(sg-w) > 4e-16*w {
+		if w := Sigmoid(x); math.Abs(sg-w) > 6e-16*w {
 			t.Errorf("sigmoid(%v) = %.17g, want %.17g", x, sg, w)
 		}
 	}
 	for _, x := range []float64{0, 37, -37, 745, -745, 1e300, -1e300, math.Inf(1), math.Inf(-1)} {
 		sp, sg := SoftplusSigmoid(x)
-		if math.Abs(sp-Log1pExp(x)) > 4e-16*sp || sg != Sigmoid(x) || sp != sp {
+		if math.Abs(sp-Log1pExp(x)) > 6e-16*sp || sg != Sigmoid(x) || sp != sp {
 			t.Errorf("softplus and sigmoid at %v are %v and %v", x, sp, sg)
 		}
 	}

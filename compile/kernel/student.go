@@ -16,8 +16,13 @@ func studentRow(z, nu, half, dhalf float64) (value, dz, dnu float64) {
 		l := 2*math.Log(math.Abs(z)) - math.Log(nu)
 		return half - halfLog2Pi - 0.5*(nu+1)*l, -(nu + 1) / z, 0.5 * (dhalf - l + 1 + 1/nu)
 	}
-	value = half - halfLog2Pi - 0.5*(nu+1)*math.Log1p(w)
-	dnu = 0.5 * (dhalf + ratioMinusLog(w) + w/(1+w)/nu)
+	l, p := Log1p(w), w/(1+w)
+	less := p - l
+	if w < 1e-3 { // where p and l agree in too many digits
+		less = ratioMinusLog(w)
+	}
+	value = half - halfLog2Pi - 0.5*(nu+1)*l
+	dnu = 0.5 * (dhalf + less + p/nu)
 	return value, -(nu + 1) * z / (nu * (1 + w)), dnu
 }
 
