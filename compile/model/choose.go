@@ -163,6 +163,8 @@ func typedParts(text, outcome string) (offsets, varies []string) {
 		case *formula.By:
 			if t.Name.ID == "alpha_"+outcome {
 				varies = append(varies, t.Plates...)
+			} else if len(t.Plates) == 1 && t.Name.ID == "alpha_"+outcome+"_"+clean(t.Plates[0]) {
+				varies = append(varies, t.Plates[0])
 			}
 		}
 	}

@@ -164,6 +164,7 @@ type Parameter struct {
 	Plate   int    // ByPlate
 	Mean    string // ByPlate: parameter around which entries vary ("" = zero)
 	SD      string // ByPlate: parameter that is their spread
+	Stem    string // ByPlate: what stands before "by" in the typed form: "alpha_bees" by farm
 	Centred bool   // ByPlate: sample entries themselves, not their standard scores
 	Of      int    // index of the variable whose law it belongs to
 	Why     string // how the default prior came about, in words; "" if the user gave it

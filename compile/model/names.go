@@ -36,7 +36,7 @@ type meaning struct {
 	child        string // variable whose law it belongs to; "" if free
 	parent, with string
 	plate        string
-	at           int    // argument of the family, or level of a category child (steps)
+	at           int    // argument of the family, or for steps 1 + level of a category child
 	name         string // free ones
 }
 
@@ -127,6 +127,9 @@ func (b *builder) symbol(m meaning) string {
 	case slopeSD:
 		return "τ_" + m.parent + "→" + m.child + "," + m.plate
 	case steps:
+		if m.at > 0 { // of one level of a category child
+			return "step_" + m.parent + "→" + m.child + "," + b.levelOf(m)
+		}
 		return "step_" + m.parent + "→" + m.child
 	case product:
 		return "β_" + m.parent + "·" + m.with + "→" + m.child
@@ -144,6 +147,11 @@ func (b *builder) symbol(m meaning) string {
 		return stem + "_" + m.plate
 	}
 	return formula.Symbol(m.name)
+}
+
+// levelOf is the level of a category child whose predictor a parameter is in.
+func (b *builder) levelOf(m meaning) string {
+	return b.model.Variables[b.at[m.child]].Levels[m.at-1]
 }
 
 func (b *builder) draftOf(id string) *draft {

@@ -48,9 +48,7 @@ func (b *builder) parameterName(m meaning) string {
 	case freeSD:
 		return b.name("tau_"+m.name+"_"+clean(m.plate), m)
 	case steps, stepsProduct: // of a category child, one for each of its levels
-		d := b.draftOf(m.child)
-		level := b.model.Variables[d.law.Variable].Levels[m.at-1]
-		return b.name("step_"+m.parent+"_"+m.child+"_"+clean(level), m)
+		return b.name("step_"+m.parent+"_"+m.child+"_"+clean(b.levelOf(m)), m)
 	}
 	return m.name
 }
@@ -106,9 +104,16 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		parent := b.model.Variables[b.at[m.parent]]
 		p.Unit = b.unit(d)
 		vector(parent.Levels)
-		p.Prior = b.normal(0, round(w/(1.96*root)))
-		p.Prior.FromData = d.span.fromData
+		sd := w / (1.96 * root)
 		p.Why = d.reason() + "; of the difference of any two levels"
+		if levels {
+			// Two predictors move apart by the difference of two independent
+			// steps; between them the change is to have the sd of C4.
+			sd /= math.Sqrt2
+			p.Why += fmt.Sprintf(", in the log odds of any two of %s", m.child)
+		}
+		p.Prior = b.normal(0, round(sd))
+		p.Prior.FromData = d.span.fromData
 	case product, stepsProduct:
 		// The product of two centred parents of ranges R and S is itself a
 		// parent, of range R S / 2; a category's steps multiply the other
@@ -142,8 +147,10 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 			sd = meaning{role: slopeSD, child: m.child, parent: m.parent, plate: m.plate}
 			p.Unit = b.unit(d, m.parent)
 		}
+		p.Stem = p.Name
 		if b.anchors(mean, m, d) {
 			p.Mean = b.model.Parameters[b.parameter(mean)].Name
+			p.Stem = p.Mean
 		}
 		p.SD = b.model.Parameters[b.parameter(sd)].Name
 	case baselineSD: // C5
@@ -315,7 +322,7 @@ func (b *builder) freePrior(m meaning, p *Parameter) {
 			p.Shape, p.Size, p.Entries = ZeroSum, len(levels), levels
 		}
 	case freeBy:
-		p.Shape = ByPlate
+		p.Shape, p.Stem = ByPlate, m.name
 		p.Plate, p.Entries = b.levelsOf(m.plate)
 		p.Size = len(p.Entries)
 		if b.declared[m.name+" by "+m.plate] == nil {

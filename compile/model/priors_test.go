@@ -184,7 +184,8 @@ func TestArgumentPriors(t *testing.T) {
 	}
 }
 
-// Category and ordered children (C4).
+// Category and ordered children (C4). Steps on a category child are one vector
+// for each of its levels: with two parents, each has W/(1.96 √2 √2).
 func TestLevelsOfAChild(t *testing.T) {
 	w := 2 * math.Log(.98/.02)
 	s := sheet([]*study.Variable{
@@ -201,7 +202,7 @@ func TestLevelsOfAChild(t *testing.T) {
 	if len(crop.Predictors) != 4 || formula.Format(crop.Predictors[2]) != "alpha_crop[2] + beta_x_crop[2] * (x - 2) + step_g_crop_peas of g" {
 		t.Errorf("crop: %s", formula.Format(crop.Predictors[2]))
 	}
-	for name, want := range map[string]float64{"alpha_crop": w / 3.92, "beta_x_crop": w / (1.96 * math.Sqrt2 * 4), "step_g_crop_oats": w / (1.96 * math.Sqrt2)} {
+	for name, want := range map[string]float64{"alpha_crop": w / 3.92, "beta_x_crop": w / (1.96 * math.Sqrt2 * 4), "step_g_crop_oats": w / 1.96 / 2} {
 		p := parameter(t, m, name)
 		if p.Shape != ZeroSum {
 			t.Errorf("%s is no zero-sum vector", name)

@@ -211,6 +211,13 @@ func (w *writer) law(l *Law) {
 	m := w.m
 	v := m.Variables[l.Variable]
 	right := l.Family.Name
+	if l.Family.Link == catalog.Softmax {
+		w.line(Line{Kind: LawLine, Left: w.variable(v), Sign: "~", Right: fmt.Sprintf("%s, %s in proportion to exp %s", right, l.Family.Arguments[0].Name, w.predicted(l)), Variable: v.ID})
+		for k, e := range l.Predictors {
+			w.line(Line{Kind: LinkLine, Left: fmt.Sprintf("%s[%s]", w.predicted(l), v.Levels[k]), Sign: "=", Right: w.expr(e), Variable: v.ID})
+		}
+		return
+	}
 	for i, a := range l.Family.Arguments {
 		switch {
 		case i == l.Family.Predicted && len(l.Predictors) > 0:
@@ -222,12 +229,9 @@ func (w *writer) law(l *Law) {
 		}
 	}
 	w.line(Line{Kind: LawLine, Left: w.variable(v), Sign: "~", Right: right, Variable: v.ID})
-	for k, e := range l.Predictors {
+	for _, e := range l.Predictors {
 		left := w.predicted(l)
-		switch l.Family.Link {
-		case catalog.Softmax:
-			left = fmt.Sprintf("log odds %s of %s", left, v.Levels[k])
-		case catalog.Log, catalog.Logit:
+		if l.Family.Link == catalog.Log || l.Family.Link == catalog.Logit {
 			left = string(l.Family.Link) + " " + left
 		}
 		w.line(Line{Kind: LinkLine, Left: left, Sign: "=", Right: w.expr(e), Variable: v.ID})
@@ -237,7 +241,12 @@ func (w *writer) law(l *Law) {
 // predicted is the symbol of what a law's predictor gives: λ_i, or μ_flowers,i
 // where two laws of the model would share it.
 func (w *writer) predicted(l *Law) string {
-	stem := func(l *Law) string { return formula.Symbol(l.Family.Arguments[l.Family.Predicted].Greek) }
+	stem := func(l *Law) string {
+		if l.Family.Link == catalog.Softmax {
+			return "η"
+		}
+		return formula.Symbol(l.Family.Arguments[l.Family.Predicted].Greek)
+	}
 	same := 0
 	for _, o := range w.m.Laws {
 		if len(o.Predictors) > 0 && stem(o) == stem(l) {
@@ -350,9 +359,9 @@ func (w *writer) priors() {
 		}
 		switch p.Shape {
 		case Cuts:
-			l.Right = "log odds of the running sums of shares ~ Dirichlet, all 1"
+			l.Right = "log odds of the running sums of the levels' shares, which are Dirichlet, all 1"
 		case ZeroSum:
-			l.Right = "sum to 0, differences ~ " + w.prior(p)
+			l.Right = "summing to 0, differences " + w.prior(p)
 		default:
 			l.Right = w.prior(p)
 		}
@@ -371,7 +380,12 @@ func (w *writer) prior(p *Parameter) string {
 	}
 	unit, _, _ := strings.Cut(p.Unit, ", ")
 	if unit != "" && unit != "log scale" && unit != "log-odds" && p.Prior.On == Itself {
-		text += " " + unit
+		switch p.Prior.Family.Arguments[len(p.Prior.Family.Arguments)-1].Name {
+		case "sd", "scale", "mean", "high":
+			text += " " + unit
+		default: // the last argument has no unit
+			text += " (" + unit + ")"
+		}
 	}
 	if p.Prior.Family.Support == catalog.Reals && p.Support == catalog.Positives {
 		text += ", kept positive"

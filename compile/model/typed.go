@@ -37,7 +37,7 @@ func (w *writer) typed() {
 			left := subject
 			switch l.Family.Link {
 			case catalog.Softmax:
-				left = fmt.Sprintf("# log odds of %s", v.Levels[k])
+				left = fmt.Sprintf("# log share of %s", v.Levels[k])
 			case catalog.Identity:
 			default:
 				left = string(l.Family.Link) + " " + subject
@@ -72,8 +72,8 @@ func (w *writer) typedExpr(e formula.Expr) string {
 	return formula.Format(rewrite(e, func(e formula.Expr) formula.Expr {
 		switch e := e.(type) {
 		case *formula.By:
-			if _, i := w.m.Name(e.Name.ID); i >= 0 && w.m.Parameters[i].Mean != "" {
-				return &formula.By{Name: named(w.m.Parameters[i].Mean), Plates: e.Plates}
+			if _, i := w.m.Name(e.Name.ID); i >= 0 {
+				return &formula.By{Name: named(w.m.Parameters[i].Stem), Plates: e.Plates}
 			}
 			return e
 		case *formula.Element:
@@ -89,11 +89,11 @@ func (w *writer) typedPrior(p *Parameter) string {
 	left := p.Name
 	switch p.Shape {
 	case ByPlate:
-		mean, stem := "0", p.Name
+		mean := "0"
 		if p.Mean != "" {
-			mean, stem = p.Mean, p.Mean
+			mean = p.Mean
 		}
-		return fmt.Sprintf("%s by %s ~ normal with mean %s, sd %s", stem, w.m.Plates[p.Plate].Name, mean, p.SD)
+		return fmt.Sprintf("%s by %s ~ normal with mean %s, sd %s", p.Stem, w.m.Plates[p.Plate].Name, mean, p.SD)
 	case Cuts:
 		return "# " + p.Name + ": log odds of the running sums of shares, which are Dirichlet with all 1"
 	}
