@@ -127,7 +127,9 @@ func bracketIf(o operand, write func(Expr) string) string {
 // the same number back, an exponent only where zeros would pile up.
 func FormatNumber(v float64) string {
 	if a := math.Abs(v); a != 0 && (a < 1e-5 || a >= 1e15) {
-		return strconv.FormatFloat(v, 'e', -1, 64)
+		text := strconv.FormatFloat(v, 'e', -1, 64)
+		text = strings.Replace(text, "e-0", "e-", 1)
+		return strings.Replace(text, "e+", "e", 1)
 	}
 	return strconv.FormatFloat(v, 'f', -1, 64)
 }

@@ -3,6 +3,7 @@ package formula
 import (
 	"fmt"
 	"math"
+	"strings"
 )
 
 // deepest bounds nesting, so that hostile text cannot exhaust the stack.
@@ -140,8 +141,10 @@ func (p *parser) end() {
 		p.fail(t.span, "", "“%s” can only follow a name", t.id)
 	case t.kind == nameToken:
 		p.fail(t.span, "", "“%s” has no place here", t.id)
-	default:
+	case t.kind == badToken:
 		p.bad(t)
+	default:
+		p.fail(t.span, "", "“%s” has no place here", p.source(t.span))
 	}
 }
 
@@ -303,7 +306,7 @@ func (p *parser) call() Expr {
 		}
 		after := p.tokens[p.at+words]
 		if !after.startsOperand() {
-			continue // the word stands for itself; its reader will object
+			p.fail(Span{start.span.Start, p.tokens[p.at+words-1].span.End}, "", "%s needs a name or a bracket behind it, as in %s(x)", f, f)
 		}
 		p.at += words
 		if after.is("(") {
@@ -320,7 +323,10 @@ func (p *parser) call() Expr {
 		}
 		return &Call{Span: Span{start.span.Start, x.Where().End}, Function: f, Args: []Expr{x}}
 	}
-	if p.tokens[p.at+1].is("(") {
+	if bracket := p.tokens[p.at+1]; bracket.is("(") {
+		if strings.Contains(start.id, "_") { // functions have no such names
+			p.fail(bracket.span, "* (", "a sign is missing before “(”; a product is written with *")
+		}
 		p.take()
 		return p.arguments(start, start.id)
 	}

@@ -113,7 +113,7 @@ func (p printer) beside(x Expr, y operand) bool {
 func prettyNumber(v float64) string {
 	text := FormatNumber(v)
 	if mantissa, power, ok := strings.Cut(text, "e"); ok {
-		if s, ok := superscript(strings.TrimPrefix(power, "+")); ok {
+		if s, ok := superscript(power); ok {
 			text = mantissa + "·10" + s
 		}
 	}
