@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"slices"
 
-	"arrowroot/compile/catalog"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 )
@@ -162,6 +161,10 @@ func (p *planner) plan(exposure, outcome int, district []int, alone bool) (*plan
 	return out, nil
 }
 
+// expectations are the names of arguments that are the expected value of one
+// unit: one trial of a binomial law.
+var expectations = []string{"mean", "rate", "probability"}
+
 // scaleOf says what is averaged of a variable: the probability of the levels
 // named, or its expectation, or (levels nil, law of levels) each level apart.
 func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
@@ -172,7 +175,9 @@ func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
 		return s, nil
 	}
 	s.levels = l.levels
-	s.predicted = len(l.Predictors) > 0 && (l.Family.Support == catalog.UpTo || l.Family.Link == catalog.Identity)
+	if len(l.Predictors) == 1 && l.levels == 0 {
+		s.predicted = slices.Contains(expectations, l.Family.Arguments[l.Family.Predicted].Name)
+	}
 	if len(levels) == 0 {
 		return s, nil
 	}

@@ -382,7 +382,7 @@ func (b *bench) expect(mirrored bool) {
 		w.columns[st.variable] = b.changed[i]
 	}
 	if p.outcome == nil || p.computed != nil {
-		average(b.part, w.eval(p.computed), b.weights)
+		averageOf(b.part, w.eval(p.computed), b.weights)
 		return
 	}
 	b.look(p.outcome.Variable)

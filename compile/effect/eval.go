@@ -317,9 +317,9 @@ func quantileOf(l *law, p float64, args []float64) float64 {
 type scale struct {
 	levels int    // K of a law of levels; 0 = a number
 	event  []bool // levels whose probability is asked for; nil = each level apart
-	// predicted: the predicted argument itself is averaged. So a binomial law
-	// gives its probability (SEMANTICS B6), and a Student t its centre, also
-	// where it has no expectation.
+	// predicted: what is averaged is the predicted argument itself, which for
+	// most families is the expectation. A binomial law gives its probability
+	// (SEMANTICS B6), a Student t its centre, also where it has no expectation.
 	predicted bool
 }
 
@@ -335,19 +335,27 @@ func (s *scale) parts() int {
 // part; weights are scaled to total 1.
 func (w *worker) expected(sum []float64, l *law, s *scale, weights []float64) {
 	clear(sum)
+	if s.predicted {
+		eta := w.eval(l.predictors[0])
+		for i, weight := range weights {
+			sum[0] += weight * inverseLink(l.Family.Link, at(eta, i))
+		}
+	} else {
+		w.average(sum, l, s, weights)
+	}
+	if s.levels == 0 && s.event != nil && !s.event[1] { // a binary outcome read as its lower level
+		sum[0] = 1 - sum[0]
+	}
+}
+
+// average is expected where each row's arguments are needed.
+func (w *worker) average(sum []float64, l *law, s *scale, weights []float64) {
 	e := w.natural(l)
 	for i, weight := range weights {
 		args := w.row(&e, i)
 		switch {
 		case s.levels == 0:
-			mean := l.Family.Mean(args)
-			if s.predicted {
-				mean = args[l.Family.Predicted]
-			}
-			if s.event != nil && !s.event[1] { // a binary outcome read as its lower level
-				mean = 1 - mean
-			}
-			sum[0] += weight * mean
+			sum[0] += weight * l.Family.Mean(args)
 		case s.event == nil:
 			for k, p := range args {
 				sum[k] += weight * p
@@ -362,8 +370,8 @@ func (w *worker) expected(sum []float64, l *law, s *scale, weights []float64) {
 	}
 }
 
-// average is expected for a computed variable: its values are given.
-func average(sum []float64, values, weights []float64) {
+// averageOf is expected for a computed variable: its values are given.
+func averageOf(sum []float64, values, weights []float64) {
 	clear(sum)
 	for i, weight := range weights {
 		sum[0] += weight * at(values, i)
