@@ -17,11 +17,13 @@ func betaRow(y, m, w, logm, logw, k, logk, leftK, xqK float64) (value, dlogit, d
 	a, b := m*k, w*k
 	logy, log1y := Log(y), math.Log1p(-y)
 	ly, lw := logy-logm, log1y-logw
-	if r := (y - m) / m; math.Abs(r) < 0.5 {
-		ly = math.Log1p(r)
-	}
-	if s := (m - y) / w; math.Abs(s) < 0.5 {
-		lw = math.Log1p(s)
+	if k > 1e3 { // what rounds off here is multiplied by κ
+		if r := (y - m) / m; math.Abs(r) < 0.5 {
+			ly = math.Log1p(r)
+		}
+		if r := (m - y) / w; math.Abs(r) < 0.5 {
+			lw = math.Log1p(r)
+		}
 	}
 	leftA, xqA := stirlingAt(a, logm+logk)
 	leftB, xqB := stirlingAt(b, logw+logk)

@@ -47,41 +47,61 @@ func softmaxBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]f
 			return outside(v)
 		}
 		k := int(v)
-		top, at := math.Inf(-1), 0
+		// log p = -log(1 + Σ exp(η_j - η_k)) over the other levels j. Nothing
+		// cancels, and only a difference beyond 700 needs another way.
+		own := args[k][i&mask(args[k])]
 		for j, a := range args {
-			e[j] = a[i&mask(a)]
-			if e[j] > top {
-				top, at = e[j], j
-			}
+			e[j] = a[i&mask(a)] - own
 		}
-		own := e[k] - top
-		// rest is the sum over all levels but the top one, whose term is 1.
+		ExpTo(e, e)
+		e[k] = 0
 		rest := 0.0
-		for j := range e {
-			e[j] = Exp(e[j] - top)
-			if j != at {
-				rest += e[j]
-			}
+		for _, t := range e {
+			rest += t
 		}
-		sum += own - math.Log1p(rest)
+		scale := 1 / (1 + rest)
+		mine := rest * scale // 1 - p_k
+		if rest < math.MaxFloat64 {
+			sum -= Log1p(rest)
+		} else {
+			var value float64
+			value, scale = softmaxFar(e, args, i, k)
+			sum += value
+			mine = 1
+		}
 		if dargs == nil {
 			continue
 		}
-		scale := 1 / (1 + rest)
 		for j, d := range dargs {
 			if d == nil {
 				continue
 			}
 			g := -e[j] * scale
 			if j == k {
-				if j == at {
-					g = rest * scale
-				} else {
-					g++
-				}
+				g = mine
 			}
 			d[i&mask(d)] += g
 		}
 	}
 	return sum
+}
+
+// softmaxFar is one row whose own level k is too far below the top one for
+// exp of the difference, so that p_k is 0 beside 1. It fills e with terms that
+// scale turns into probabilities.
+func softmaxFar(e []float64, args [][]float64, i, k int) (value, scale float64) {
+	top := math.Inf(-1)
+	for _, a := range args {
+		v := a[i&mask(a)]
+		if v != v {
+			return v, v
+		}
+		top = max(top, v)
+	}
+	total := 0.0
+	for j, a := range args {
+		e[j] = Exp(a[i&mask(a)] - top)
+		total += e[j]
+	}
+	return args[k][i&mask(args[k])] - top - math.Log(total), 1 / total
 }

@@ -10,10 +10,21 @@ var Ordered = &Density{Name: "ordered", Args: -1, Block: categoricalBlock}
 // data", 1980).
 var OrderedLogit = &Density{Name: "ordered logit", Args: -1, Block: orderedLogitBlock}
 
-func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, _ []float64) float64 {
+func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, scratch []float64) float64 {
 	eta, cuts := args[0], args[1:]
 	deta := wanted(dargs, 0)
 	iy, ie, levels := mask(y), mask(eta), len(args)
+	// The part of a level that depends on its two cut points alone is the same
+	// for all rows if they are; then it is worked out once.
+	shared := n > levels && 2*levels <= len(scratch)
+	for _, c := range cuts {
+		shared = shared && len(c) == 1
+	}
+	if shared {
+		for k := 1; k < levels-1; k++ {
+			scratch[2*k], scratch[2*k+1] = logGap(cuts[k][0] - cuts[k-1][0])
+		}
+	}
 	sum := 0.0
 	for i := range n {
 		v := y[i&iy]
@@ -40,10 +51,15 @@ func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs 
 			if gap <= 0 {
 				return math.Inf(-1)
 			}
+			var l, g float64
+			if shared {
+				l, g = scratch[2*k], scratch[2*k+1]
+			} else {
+				l, g = logGap(gap)
+			}
 			spb, sb := SoftplusSigmoid(e - hi)
 			spa, sa := SoftplusSigmoid(lo - e)
-			sum += Log1mExp(-gap) - spb - spa
-			g := 1 / math.Expm1(gap)
+			sum += l - spb - spa
 			da, db = -g-sa, g+sb
 		}
 		if deta != nil {
@@ -61,4 +77,9 @@ func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs 
 		}
 	}
 	return sum
+}
+
+// logGap returns log(1 - exp(-gap)) and its derivative.
+func logGap(gap float64) (value, slope float64) {
+	return Log1mExp(-gap), 1 / math.Expm1(gap)
 }
