@@ -64,19 +64,19 @@ func stamp(dst *image.RGBA, box image.Rectangle, m *mark) {
 	}
 }
 
-// fillPolygons rasterises a mark within a box.
-func (p *Painter) fillPolygons(dst *image.RGBA, box image.Rectangle, m *mark, r *raster.Rasterizer) {
-	r.SetBounds(box.Dx(), box.Dy())
-	r.UseNonZeroWinding = true
+// fillPolygons rasterises a mark within a band. The rasteriser is as large as
+// the band, so that its memory is made once and not for every mark.
+func (p *Painter) fillPolygons(dst *image.RGBA, band image.Rectangle, m *mark, r *raster.Rasterizer) {
+	r.Clear()
 	start := 0
 	if m.first > 0 {
 		start = p.shape.ends[m.first-1]
 	}
 	for _, end := range p.shape.ends[m.first:m.end] {
-		polygon(r, p.shape.points[start:end], box.Min.X, box.Min.Y)
+		polygon(r, p.shape.points[start:end], band.Min.X, band.Min.Y)
 		start = end
 	}
-	r.Rasterize(&spanPainter{dst: dst, at: box.Min, color: m.color})
+	r.Rasterize(&spanPainter{dst: dst, at: band.Min, color: m.color})
 }
 
 // A spanPainter blends the spans of one mark.

@@ -69,6 +69,8 @@ func (p *Painter) Paint(dst *image.RGBA, l *List, scale float64) {
 
 func (p *Painter) paintBand(dst *image.RGBA, band image.Rectangle, ground Color, r *raster.Rasterizer) {
 	clearBand(dst, band, ground)
+	r.SetBounds(band.Dx(), band.Dy())
+	r.UseNonZeroWinding = true
 	for i := range p.marks {
 		m := &p.marks[i]
 		box := m.box.Intersect(band)
@@ -79,7 +81,7 @@ func (p *Painter) paintBand(dst *image.RGBA, band image.Rectangle, ground Color,
 		case m.first == m.end:
 			fillRect(dst, box, m.color)
 		default:
-			p.fillPolygons(dst, box, m, r)
+			p.fillPolygons(dst, band, m, r)
 		}
 	}
 }

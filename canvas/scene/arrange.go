@@ -42,7 +42,7 @@ func ArrangeFor(s *study.Study, r *study.Rival, q *study.Question, keepPlaced bo
 // A spot is a node of the layout, or a dummy where a long arrow passes a layer.
 type spot struct {
 	layer, place int
-	band         int // how many plates do not hold it: such nodes stand higher
+	band         int // higher bands stand higher; 0 = every plate holds it
 	width        float64
 	y            float64
 	ins, outs    []int
@@ -74,13 +74,7 @@ func newArranger(s *study.Study, r *study.Rival, q *study.Question) *arranger {
 		v := variables[n.Variable]
 		w, _, _ := nodeSize(n.Variable, nameFace(v), 1)
 		p := spot{width: w}
-		if s != nil && v != nil {
-			for _, plate := range s.Plates {
-				if !Holds(s, plate.Name, v) {
-					p.band++
-				}
-			}
-		}
+		p.band = bandOf(s, v)
 		a.names = append(a.names, n.Variable)
 		a.spots = append(a.spots, p)
 		index[n.Variable] = i
@@ -98,6 +92,40 @@ func newArranger(s *study.Study, r *study.Rival, q *study.Question) *arranger {
 	}
 	a.sort()
 	return a
+}
+
+// bandOf puts variables that fewer plates hold further out, so that frames can
+// pass between: above, or below if the first outermost plate does not hold
+// them, which parts two crossed plates.
+func bandOf(s *study.Study, v *study.Variable) int {
+	if s == nil || v == nil {
+		return 0
+	}
+	without, side, first := 0, 1, true
+	for _, plate := range s.Plates {
+		holds := Holds(s, plate.Name, v)
+		if !holds {
+			without++
+		}
+		if first && plate.Within == "" {
+			first = false
+			if !holds {
+				side = -1
+			}
+		}
+	}
+	return side * without
+}
+
+// passing is the band of an arrow between two bands.
+func passing(a, b int) int {
+	switch {
+	case a > 0 && b > 0:
+		return min(a, b)
+	case a < 0 && b < 0:
+		return max(a, b)
+	}
+	return 0
 }
 
 func (a *arranger) join(from, to int) {
@@ -246,7 +274,7 @@ func (a *arranger) dummies() {
 		for k, w := range outs {
 			last := v
 			for l := a.spots[v].layer + 1; l < a.spots[w].layer; l++ {
-				a.spots = append(a.spots, spot{layer: l, band: min(a.spots[v].band, a.spots[w].band), dummy: true})
+				a.spots = append(a.spots, spot{layer: l, band: passing(a.spots[v].band, a.spots[w].band), dummy: true})
 				d := len(a.spots) - 1
 				if last == v {
 					a.spots[v].outs[k] = d
@@ -473,15 +501,14 @@ func (a *arranger) relax(l int) {
 	}
 }
 
-// bands moves nodes that fewer plates hold above all others, so that no frame
-// encloses what it does not hold.
+// bands moves the bands apart, so that no frame encloses what it does not hold.
 func (a *arranger) bands() {
-	highest := 0
+	highest, lowest := 0, 0
 	for v := range a.real {
-		highest = max(highest, a.spots[v].band)
+		highest, lowest = max(highest, a.spots[v].band), min(lowest, a.spots[v].band)
 	}
 	floor := math.Inf(-1)
-	for band := highest; band >= 0; band-- {
+	for band := highest; band >= lowest; band-- {
 		lo, hi := math.Inf(1), math.Inf(-1)
 		for v := range a.real {
 			if p := a.spots[v]; p.band == band {

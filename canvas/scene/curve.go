@@ -69,12 +69,12 @@ func (c curve) outOf(b *body, gap float64) float64 {
 	const steps = 32
 	for k := 1; k <= steps; k++ {
 		t := float64(k) / steps
-		if b.depth(c.at(t)) < gap {
+		if b.edge(c.at(t)) < gap {
 			continue
 		}
 		lo, hi := float64(k-1)/steps, t
 		for range 12 {
-			if m := (lo + hi) / 2; b.depth(c.at(m)) < gap {
+			if m := (lo + hi) / 2; b.edge(c.at(m)) < gap {
 				lo = m
 			} else {
 				hi = m
@@ -108,30 +108,38 @@ func bends(all []*body, arrows [][2]int, z float64) []float64 {
 	)
 	result := make([]float64, len(arrows))
 	steps := [...]float64{0, 20, -20, 34, -34, 50, -50, 68, -68, 90, -90, 116, -116, 148, -148, 186, -186, 230, -230}
+	type obstacle struct{ solid, soft, both draw.Rect }
+	obstacles := make([]obstacle, len(all))
+	for k, b := range all {
+		solid, soft := b.rect().Grow(clearance*z), b.skirt(z)
+		obstacles[k] = obstacle{solid, soft, solid.Union(soft)}
+	}
+	var pts []draw.Point
 	for i, a := range arrows {
-		from, to := all[a[0]], all[a[1]]
-		length := to.at.Sub(from.at).Len() / z
+		from, to := all[a[0]].at, all[a[1]].at
+		length := to.Sub(from).Len() / z
 		best := math.Inf(1)
-		reach := draw.Rect{X: from.at.X, Y: from.at.Y}.Union(draw.Rect{X: to.at.X, Y: to.at.Y}).Grow(240 * z)
-		var near []*body
-		for k, b := range all {
-			if k != a[0] && k != a[1] && b.rect().Meets(reach) {
-				near = append(near, b)
-			}
-		}
 		for _, d := range steps {
 			if math.Abs(d) > 0.5*length+20 || math.Abs(d) >= best {
 				break
 			}
 			cost := math.Abs(d)
-			pts := sample(bow(from.at, to.at, d*z), 14*z)
-			for _, b := range near {
-				solid, soft := b.rect().Grow(clearance*z), b.skirt(z)
+			c := bow(from, to, d*z)
+			box := c.box()
+			pts = pts[:0]
+			for k := range obstacles {
+				o := &obstacles[k]
+				if k == a[0] || k == a[1] || !o.both.Meets(box) {
+					continue
+				}
+				if len(pts) == 0 {
+					pts = appendSample(pts, c, 14*z)
+				}
 				hit, brush := 0, false
 				for _, p := range pts {
-					if solid.Contains(p) {
+					if o.solid.Contains(p) {
 						hit++
-					} else if soft.Contains(p) {
+					} else if o.soft.Contains(p) {
 						brush = true
 					}
 				}
@@ -155,12 +163,20 @@ func bends(all []*body, arrows [][2]int, z float64) []float64 {
 	return result
 }
 
+// box holds the curve.
+func (c curve) box() draw.Rect {
+	lo := draw.Point{X: min(c[0].X, c[1].X, c[2].X, c[3].X), Y: min(c[0].Y, c[1].Y, c[2].Y, c[3].Y)}
+	hi := draw.Point{X: max(c[0].X, c[1].X, c[2].X, c[3].X), Y: max(c[0].Y, c[1].Y, c[2].Y, c[3].Y)}
+	return draw.Rect{X: lo.X, Y: lo.Y, W: hi.X - lo.X, H: hi.Y - lo.Y}
+}
+
 // sample gives points on a curve about step apart.
-func sample(c curve, step float64) []draw.Point {
+func sample(c curve, step float64) []draw.Point { return appendSample(nil, c, step) }
+
+func appendSample(pts []draw.Point, c curve, step float64) []draw.Point {
 	n := min(max(int(c[3].Sub(c[0]).Len()/step), 4), 80)
-	pts := make([]draw.Point, n+1)
-	for i := range pts {
-		pts[i] = c.at(float64(i) / float64(n))
+	for i := range n + 1 {
+		pts = append(pts, c.at(float64(i)/float64(n)))
 	}
 	return pts
 }

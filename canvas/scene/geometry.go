@@ -3,6 +3,7 @@ package scene
 import (
 	"math"
 	"slices"
+	"strings"
 
 	"arrowroot/canvas/draw"
 	"arrowroot/compile/study"
@@ -31,7 +32,8 @@ type body struct {
 	text       float64 // size of the name
 	square     bool    // held, or limits the rows
 	unmeasured bool
-	roles      []string
+	roles      string
+	tab        draw.Rect // of the roles; empty without
 	dots       bool
 }
 
@@ -55,9 +57,21 @@ func (b *body) depth(p draw.Point) float64 {
 	return math.Hypot(max(x, 0), max(y, 0)) + min(max(x, y), 0) - r
 }
 
+// edge is depth with the tab of the roles taken as part of the node: where
+// arrows end.
+func (b *body) edge(p draw.Point) float64 {
+	d := b.depth(p)
+	if b.tab.W == 0 {
+		return d
+	}
+	c := b.tab.Centre()
+	x, y := math.Abs(p.X-c.X)-b.tab.W/2, math.Abs(p.Y-c.Y)-b.tab.H/2
+	return min(d, math.Hypot(max(x, 0), max(y, 0))+min(max(x, y), 0))
+}
+
 // skirt is the room below a node for its tab and its dots, at zoom 1.
 func (b *body) skirt(z float64) draw.Rect {
-	if !b.dots && len(b.roles) == 0 {
+	if !b.dots && b.roles == "" {
 		return draw.Rect{X: b.at.X, Y: b.at.Y}
 	}
 	return draw.Rect{X: b.at.X - 24*z, Y: b.at.Y + b.h/2, W: 48 * z, H: 28 * z}
@@ -157,12 +171,27 @@ func bodies(in *Input) []*body {
 		}
 		b.w, b.h, b.text = nodeSize(b.name, nameFace(b.variable), zoom)
 		b.dots = len(in.Dots[n.Variable]) > 0 && !b.unmeasured && zoom >= dotsBelow
-		b.roles = roles(in, n.Variable)
-		b.square = slices.Contains(b.roles, "held") || slices.Contains(b.roles, "limits rows")
+		words := roles(in, n.Variable)
+		b.square = slices.Contains(words, held) || slices.Contains(words, limits)
+		if len(words) > 0 {
+			b.roles = strings.Join(words, " · ")
+			size := roleSize(zoom)
+			w := draw.Measure(b.roles, draw.Bold, size) + 1.6*size
+			b.tab = draw.Rect{X: b.at.X - w/2, Y: b.at.Y + b.h/2 - 1, W: w, H: size * 1.4}
+		}
 		all = append(all, b)
 	}
 	return all
 }
+
+// The roles that give a node square corners.
+const (
+	held   = "held"
+	limits = "limits rows"
+)
+
+// roleSize is the size of the words on a tab.
+func roleSize(zoom float64) float64 { return min(max(tabSize*zoom, 9.5), 14) }
 
 // roles are the words on a node's tab.
 func roles(in *Input, id string) []string {
@@ -175,11 +204,11 @@ func roles(in *Input, id string) []string {
 			words = append(words, "outcome")
 		}
 		if slices.Contains(q.Held, id) {
-			words = append(words, "held")
+			words = append(words, held)
 		}
 	}
 	if slices.Contains(in.Limits, id) {
-		words = append(words, "limits rows")
+		words = append(words, limits)
 	}
 	return words
 }

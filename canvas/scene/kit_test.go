@@ -2,6 +2,7 @@ package scene
 
 import (
 	"math"
+	"math/rand/v2"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
@@ -148,4 +149,40 @@ func hedgePaint() *Paint {
 			{"arable", "pesticide"}: {Hatched: true, Width: 2.5},
 		},
 	}
+}
+
+// big is 28 nodes and 99 arrows drawn at random: the largest published causal
+// diagram of a review of 144 had so many (Tennant et al. 2021).
+func big() *study.Study {
+	rng := rand.New(rand.NewPCG(7, 9))
+	s := &study.Study{}
+	r := &study.Rival{Name: "big", Diagram: &study.Diagram{}}
+	for i, w := range []string{
+		"income", "education", "age", "smoking", "diet", "exercise", "housing", "noise", "air quality", "traffic", "stress",
+		"sleep", "weight", "pressure", "lipids", "glucose", "medicine", "visits", "insurance", "region", "climate", "green space",
+		"support", "parents", "school", "work hours", "illness", "recovery",
+	} {
+		id, _ := Identifier(w)
+		s.Variables = append(s.Variables, &study.Variable{ID: id, Unmeasured: i%9 == 4})
+		r.Diagram.Nodes = append(r.Diagram.Nodes, &study.Node{Variable: id})
+	}
+	for len(r.Diagram.Arrows) < 99 {
+		i, j := rng.IntN(28), rng.IntN(28)
+		if i < j && j-i < 12 && arrow(r, s.Variables[i].ID, s.Variables[j].ID) == nil {
+			r.Diagram.Arrows = append(r.Diagram.Arrows, &study.Arrow{From: s.Variables[i].ID, To: s.Variables[j].ID})
+		}
+	}
+	s.Rivals = []*study.Rival{r}
+	s.Questions = []*study.Question{{Exposure: "exercise", Outcome: "illness"}}
+	return s
+}
+
+func bigInput() Input {
+	s := big()
+	return Input{Study: s, Rival: s.Rivals[0], Question: s.Questions[0], LitPath: NoPath, Palette: Light(), Width: 1100, Height: 640}
+}
+
+func fitted(in Input) Input {
+	in.View = Fit(in)
+	return in
 }

@@ -139,19 +139,16 @@ func (b *builder) hatch(n *body, name string, face draw.Face, ground draw.Color)
 // drawRoles prints the roles on a dark tab under the lower edge; it returns
 // where the next thing below may begin.
 func (b *builder) drawRoles(n *body, below float64) float64 {
-	if len(n.roles) == 0 {
+	if n.roles == "" {
 		return below + 4*b.zoom
 	}
 	p := &b.in.Palette
-	words := strings.Join(n.roles, " · ")
-	size := min(max(tabSize*b.zoom, 9.5), 14)
-	w := draw.Measure(words, draw.Bold, size) + 1.6*size
-	box := draw.Rect{X: n.at.X - w/2, Y: below - 1, W: w, H: size * 1.4}
+	size := roleSize(b.zoom)
 	b.list.Add(
-		&draw.Shape{Path: draw.RoundRect(box, 4), Fill: p.Ink},
-		&draw.Text{At: draw.Point{X: n.at.X, Y: box.Centre().Y + draw.Drop(size)}, Text: words, Face: draw.Bold, Size: size, Color: p.Sheet, Anchor: draw.Middle},
+		&draw.Shape{Path: draw.RoundRect(n.tab, 4), Fill: p.Ink},
+		&draw.Text{At: draw.Point{X: n.at.X, Y: n.tab.Centre().Y + draw.Drop(size)}, Text: n.roles, Face: draw.Bold, Size: size, Color: p.Sheet, Anchor: draw.Middle},
 	)
-	return box.Y + box.H + 3*b.zoom
+	return n.tab.Y + n.tab.H + 3*b.zoom
 }
 
 // drawDots shows the data of a measured variable as a strip of quantile dots.
@@ -195,7 +192,7 @@ func (b *builder) drawLevel(n *body, below float64) {
 // caption prints small words under a node; it returns where the next may go.
 func (b *builder) caption(n *body, below float64, words string) float64 {
 	size := 10 * max(b.zoom, 1)
-	b.list.Add(&draw.Text{At: draw.Point{X: n.at.X, Y: below + size}, Text: words, Size: size, Color: b.in.Palette.Muted, Anchor: draw.Middle})
+	b.label(draw.Point{X: n.at.X, Y: below + size}, words, draw.Regular, size, b.in.Palette.Muted)
 	return below + 1.2*size
 }
 

@@ -10,7 +10,7 @@ type Palette struct {
 	Ink, Muted         draw.Color
 	Action, OnAction   draw.Color
 	Confounding        draw.Color    // as text
-	Halo, HaloEdge     draw.Color    // under the arrows of an open confounding path
+	Halo, HaloEdge     draw.Color    // under the arrows of an open confounding path; the edge carries the contrast
 	Effect             [5]draw.Color // from − to +
 	Learned            [4]draw.Color // little to much
 }
@@ -24,7 +24,7 @@ func Light() Palette {
 		Action: draw.Hex("#0E6B68"), OnAction: draw.Hex("#FFFFFF"),
 		Confounding: draw.Hex("#8F4E00"),
 		Halo:        draw.Alpha(draw.Hex("#C27A12"), 0.30),
-		HaloEdge:    draw.Alpha(draw.Hex("#C27A12"), 0.75),
+		HaloEdge:    draw.Alpha(draw.Hex("#C27A12"), 0.95),
 		Effect:      [5]draw.Color{draw.Hex("#2A609C"), draw.Hex("#93ADD6"), draw.Hex("#E9E5DE"), draw.Hex("#F6BF8B"), draw.Hex("#D57939")},
 		Learned:     [4]draw.Color{draw.Hex("#E9E5DE"), draw.Hex("#C8BBDF"), draw.Hex("#A08CCA"), draw.Hex("#674B95")},
 	}

@@ -72,6 +72,7 @@ func (b *builder) frames() {
 			words += " · " + strconv.Itoa(n)
 		}
 		size := max(tabSize*b.zoom, 10)
+		box.Y, box.H = box.Y-10*b.zoom, box.H+4*b.zoom // room for the tab; the dots gave some below
 		tab := draw.Rect{X: box.X, Y: box.Y, W: draw.Measure(words, draw.Regular, size) + 20, H: size + 8}
 		b.plates = append(b.plates, &frame{plate: plate, box: box, tab: tab, words: words})
 	}
