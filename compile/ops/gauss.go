@@ -86,17 +86,9 @@ func (p *predictor) split(v id) bool {
 				return false
 			}
 		}
-		if len(scalars) == 0 || len(scalars) == 1 && p.g.nodes[scalars[0]].op == opConst {
-			c := 1.0
-			if len(scalars) == 1 {
-				c = p.g.nodes[scalars[0]].c
-			}
-			for i := range p.offset {
-				if column == 0 {
-					p.offset[i] += c
-				} else {
-					p.offset[i] += c * p.g.nodes[column].data[i]
-				}
+		if len(scalars) == 0 {
+			for i, v := range p.g.nodes[column].data {
+				p.offset[i] += v
 			}
 			continue
 		}

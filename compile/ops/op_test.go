@@ -107,9 +107,23 @@ var opChecks = map[op]func(b *bench) Value{
 		for i := range index {
 			index[i] = int32(i % smallRows)
 		}
+		other := make([]int32, manyRows) // another way to the same plate
+		twins := b.Plate("twins", manyRows-9)
+		column, toTwin := make([]float64, manyRows-9), make([]int32, manyRows)
+		for i := range other {
+			other[i] = int32(i * 7 % groupRows)
+			toTwin[i] = int32(i * 5 % len(column))
+			column[toTwin[i]] = math.Sin(float64(i))
+		}
+		twin := b.Gather(b.Exp(b.Mul(b.s2, b.Data(twins, column))), b.rows, toTwin) // of as many rows: not lifted through
+		b1, b2 := b.Gather(b.u, b.rows, b.toGroup), b.Gather(b.Exp(b.u), b.rows, other)
+		once := b.Gather(b.Exp(b.Mul(b.s, b.Data(twins, column))), b.rows, toTwin)
+		mixed := b.Add(b.weighed(b.Exp(b.Add(b.Mul(b.s, once, b.x), b.r))), b.weighed(b.Div(b1, b2)),
+			b.weighed(b.Exp(b.Add(twin, b.r))), b.weighed(b.Exp(b.Add(b.Mul(b.s, twin, b.x), b.r, b.Mul(b.s, twin)))),
+			b.weighed(b.Exp(b.Add(b1, b2, b.x))), b.weighed(b.Mul(b1, b2, b.x)), b.weighed(b.SumOver(b.Mul(b1, b.r), b.groups, other)))
 		nested := b.Gather(b.Add(b.Gather(b.v, b.groups, index), b.u), b.rows, b.toGroup)
 		chained := b.Gather(b.Gather(b.v, b.groups, index), b.rows, b.toGroup)
-		return b.Add(b.weighed(b.Exp(nested)), b.weighed(b.Mul(chained, b.r)), b.weighed(b.Gather(b.v, b.rows, b.toSmall)), b.weighed(b.Exp(b.Gather(b.u, b.rows, b.toGroup))),
+		return b.Add(mixed, b.weighed(b.Exp(nested)), b.weighed(b.Mul(chained, b.r)), b.weighed(b.Gather(b.v, b.rows, b.toSmall)), b.weighed(b.Exp(b.Gather(b.u, b.rows, b.toGroup))),
 			b.weighed(b.Mul(b.Gather(b.v, b.rows, b.toSmall), b.r)), b.weighed(b.Mul(b.Gather(b.u, b.rows, b.toGroup), b.x, b.s)))
 	},
 	opSumOver: func(b *bench) Value {
@@ -119,7 +133,7 @@ var opChecks = map[op]func(b *bench) Value{
 			b.weighed(b.SumOver(b.Mul(b.r, b.Exp(b.r)), b.groups, b.toGroup)))
 	},
 	opSum: func(b *bench) Value {
-		return b.Add(b.Sum(b.Exp(b.r)), b.Square(b.Sum(b.v)), b.Sum(b.Mul(b.s, b.x)), b.Sum(b.Square(b.r)), b.Sum(b.Gather(b.Exp(b.u), b.rows, b.toGroup)))
+		return b.Add(b.Sum(b.Exp(b.r)), b.Sum(b.Add(b.Exp(b.s), b.r)), b.Sum(b.Sub(b.Data(b.small, []float64{1, 2, 3, 4}), b.s2)), b.Square(b.Sum(b.v)), b.Sum(b.Mul(b.s, b.x)), b.Sum(b.Square(b.r)), b.Sum(b.Gather(b.Exp(b.u), b.rows, b.toGroup)))
 	},
 	opElement: func(b *bench) Value {
 		return b.Add(b.Element(b.Exp(b.v), 2), b.Square(b.Element(b.r, manyRows-1)), b.Element(b.s, 0))

@@ -377,7 +377,7 @@ func (p *planner) blockedInstrs(groups [][]id, isRoot []bool) []instr {
 			last, stays := t, !isRoot[v] && p.g.nodes[v].plate == p.g.domain(v) && !table[p.g.nodes[v].op].adds
 			for _, r := range p.readers[v] {
 				when, here := turn[r]
-				stays = stays && here && p.byRow(r, v)
+				stays = stays && here
 				last = max(last, when)
 			}
 			if !stays {
