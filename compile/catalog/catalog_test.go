@@ -6,6 +6,7 @@ import (
 	"slices"
 	"sort"
 	"testing"
+	"time"
 
 	"arrowroot/compile/kernel"
 )
@@ -291,4 +292,47 @@ func TestDrawsMatchFamily(t *testing.T) {
 			t.Errorf("%v: draws are not all numbers", args)
 		}
 	})
+}
+
+// Draws far out in the arguments' range come back, promptly and inside the
+// closed support: a sampler may visit such places before it settles.
+func TestExtremeArguments(t *testing.T) {
+	sizes := []float64{1e-300, 1e-20, 1e-5, 1, 1e5, 1e20, 1e300}
+	values := map[Support][]float64{
+		Reals: {-1e300, -1, 0, 1, 1e300}, Positives: sizes, Unit: {0, 1e-300, 1e-10, 0.5, 1 - 1e-10, 1}, Counts: {0, 1, 1e9},
+	}
+	for _, f := range Families() {
+		if f.Support == Levels || f.Support == Between {
+			continue // K probabilities; arithmetic of two ends
+		}
+		var visit func(args []float64)
+		visit = func(args []float64) {
+			if len(args) < len(f.Arguments) {
+				for _, v := range values[f.Arguments[len(args)].Support] {
+					visit(append(slices.Clip(args), v))
+				}
+				return
+			}
+			for _, u := range []float64{1e-300, 1e-16, 0.3, 1 - 1e-16} {
+				start := time.Now()
+				x := f.Quantile(u, args)
+				bad := x != x
+				switch f.Support {
+				case Positives, NonNegatives, Counts:
+					bad = bad || x < 0
+				case Unit, ZeroOne:
+					bad = bad || x < 0 || x > 1
+				case UpTo:
+					bad = bad || x < 0 || x > args[1]
+				}
+				if bad {
+					t.Errorf("%s %v: quantile at %v is %v", f.Name, args, u, x)
+				}
+				if d := time.Since(start); d > time.Second {
+					t.Errorf("%s %v: quantile at %v took %v", f.Name, args, u, d)
+				}
+			}
+		}
+		visit(nil)
+	}
 }

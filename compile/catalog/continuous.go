@@ -92,8 +92,16 @@ func studentInverse(center, outer, nu float64) float64 {
 	if nu > nearlyNormal || center == 0 {
 		return t
 	}
-	if nu < 2 && center > 0.5 { // heavy tail, a power of t
-		t = math.Pow(outer, -1/nu)
+	if nu < 2 && (center > 0.5 || nu < 0.1) {
+		// A heavy tail is a power of t: P(|T| > t) → 2 c (t/√ν)^-ν / ν with
+		// c = Γ((ν+1)/2) / (Γ(ν/2) √π).
+		hi, _ := kernel.LogGamma(0.5 * (nu + 1))
+		lo, _ := kernel.LogGamma(0.5*nu + 1)
+		logt := 0.5*math.Log(nu) + (hi-lo-0.5*math.Log(math.Pi)-math.Log(outer))/nu
+		if logt > 340 { // t² is beyond range, the power exact
+			return math.Exp(min(logt, 709))
+		}
+		t = math.Exp(max(logt, -300))
 	}
 	for range 100 {
 		in, out := studentParts(t, nu)
@@ -104,7 +112,7 @@ func studentInverse(center, outer, nu float64) float64 {
 		} else {
 			step = math.Log(out/outer) * out / slope
 		}
-		if step != step {
+		if step != step || math.IsInf(step, 0) {
 			break // t is beyond range
 		}
 		t *= math.Exp(step)
@@ -192,10 +200,15 @@ func gammaQuantile(u float64, a []float64) float64 {
 	s := a[1]
 	l, _ := kernel.LogGamma(s + 1)
 	x := math.Exp((math.Log(u) + l) / s)
-	if x > 1e-12 {
+	if x > 1e-12 && s < 1e12 {
 		x = mathext.GammaIncRegInv(s, u)
 	}
-	return max(a[0]/s*x, math.SmallestNonzeroFloat64)
+	if s >= 1e12 || math.IsNaN(x) {
+		// E. B. Wilson & M. M. Hilferty (1931): the cube root is nearly normal.
+		root := 1 - 1/(9*s) + mathext.NormalQuantile(u)/(3*math.Sqrt(s))
+		x = s * root * root * root
+	}
+	return max(a[0]*(x/s), math.SmallestNonzeroFloat64)
 }
 
 func gammaCDF(x float64, a []float64) float64 {
@@ -217,21 +230,41 @@ func exponentialCDF(x float64, a []float64) float64 {
 }
 
 func betaQuantile(u float64, a []float64) float64 {
-	p, q := a[0]*a[1], (1-a[0])*a[1]
+	// A draw must lie inside, where the log density is finite.
+	return min(max(betaInverse(u, a[0], a[1]), math.SmallestNonzeroFloat64), 1-0x1p-53)
+}
+
+func betaInverse(u, mean, precision float64) float64 {
+	p, q := mean*precision, (1-mean)*precision
+	switch {
+	case p < 1e-8 && q < 1e-8: // all mass is at the two ends
+		if u > 1-mean {
+			return 1
+		}
+		return 0
+	case p == 0 || q == 0:
+		return math.Round(mean)
+	case precision > 1e12: // nearly normal
+		return mean + betaSD([]float64{mean, precision})*mathext.NormalQuantile(u)
+	}
 	x := mathext.InvRegIncBeta(p, q, u)
+	if math.IsNaN(x) {
+		return mean // the inverse gave up: one of p and q is beyond 1e-100
+	}
 	if p > 1 && q > 1 && x > 0 && x < 1 {
 		// The inverse above loses digits as the precision grows; a Newton
 		// step on the log of the nearer tail gives them back.
 		lower, upper := incBeta(p, q, x, 1-x)
 		slope := math.Exp(kernel.LogBetaTerm(p, q, x, 1-x)) / (x * (1 - x))
-		if u < 0.5 {
-			x -= math.Log(lower/u) * lower / slope
-		} else {
-			x += math.Log(upper/(1-u)) * upper / slope
+		step := -math.Log(lower/u) * lower / slope
+		if u >= 0.5 {
+			step = math.Log(upper/(1-u)) * upper / slope
+		}
+		if math.Abs(step) < 0.5*min(x, 1-x) {
+			x += step
 		}
 	}
-	// A draw must lie inside, where the log density is finite.
-	return min(max(x, math.SmallestNonzeroFloat64), 1-0x1p-53)
+	return x
 }
 
 func betaCDF(x float64, a []float64) float64 {
