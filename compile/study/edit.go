@@ -120,6 +120,10 @@ func mapped[T any](parts []*T, change func(*T) *T) []*T {
 	return next
 }
 
+func taken(kind, name string) error {
+	return fmt.Errorf("there is a %s named “%s” already", kind, name)
+}
+
 func noRival(name string) error { return fmt.Errorf("there is no rival “%s”", name) }
 
 func noVariable(id string) error { return fmt.Errorf("there is no variable %s", id) }

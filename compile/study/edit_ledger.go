@@ -11,6 +11,9 @@ type AddVariable struct{ Variable Variable }
 
 // Apply refuses a name that is taken or cannot be a name.
 func (e AddVariable) Apply(s *Study) (*Study, error) {
+	if s.Variable(e.Variable.ID) != nil {
+		return nil, taken("variable", e.Variable.ID)
+	}
 	v := copyVariable(e.Variable)
 	return changed(s, func(s *Study) { s.Variables = and(s.Variables, &v) })
 }
@@ -40,7 +43,7 @@ func (e ChangeVariable) Apply(s *Study) (*Study, error) {
 	next.Variables = with(s.Variables, i, &to)
 	if e.ID != to.ID {
 		if s.Variable(to.ID) != nil {
-			return nil, &Fault{Part: s.Variables[i], Reason: fmt.Sprintf("there are two variables named %s", to.ID)}
+			return nil, taken("variable", to.ID)
 		}
 		renameVariable(&next, e.ID, to.ID)
 	}
@@ -140,6 +143,9 @@ type AddPlate struct{ Plate Plate }
 
 // Apply refuses a name that is taken or cannot be a name.
 func (e AddPlate) Apply(s *Study) (*Study, error) {
+	if s.Plate(e.Plate.Name) != nil {
+		return nil, taken("plate", e.Plate.Name)
+	}
 	p := e.Plate
 	return changed(s, func(s *Study) { s.Plates = and(s.Plates, &p) })
 }
@@ -167,7 +173,7 @@ func (e ChangePlate) Apply(s *Study) (*Study, error) {
 	next.Plates = with(s.Plates, i, &to)
 	if e.Name != to.Name {
 		if s.Plate(to.Name) != nil {
-			return nil, &Fault{Part: s.Plates[i], Reason: fmt.Sprintf("there are two plates named %s", to.Name)}
+			return nil, taken("plate", to.Name)
 		}
 		renamePlate(&next, e.Name, to.Name)
 	}
@@ -220,6 +226,9 @@ type AddData struct{ Data Data }
 
 // Apply refuses a name that is taken.
 func (e AddData) Apply(s *Study) (*Study, error) {
+	if find(s.Data, byDataName(e.Data.Name)) != nil {
+		return nil, taken("data table", e.Data.Name)
+	}
 	d := e.Data
 	return changed(s, func(s *Study) { s.Data = and(s.Data, &d) })
 }
@@ -245,6 +254,9 @@ func (e ChangeData) Apply(s *Study) (*Study, error) {
 	next, to := *s, e.To
 	next.Data = with(s.Data, i, &to)
 	if e.Name != to.Name {
+		if find(s.Data, byDataName(to.Name)) != nil {
+			return nil, taken("data table", to.Name)
+		}
 		next.Variables = mapped(s.Variables, func(v *Variable) *Variable {
 			if v.Data != e.Name {
 				return v

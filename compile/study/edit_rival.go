@@ -8,6 +8,9 @@ type AddRival struct{ Rival Rival }
 // Apply refuses a name that is taken. A rival without layout or diagram gets
 // an empty one.
 func (e AddRival) Apply(s *Study) (*Study, error) {
+	if s.Rival(e.Rival.Name) != nil {
+		return nil, taken("rival", e.Rival.Name)
+	}
 	r := e.Rival
 	if r.Layout == nil {
 		r.Layout = &Layout{}
@@ -33,6 +36,9 @@ func (e CopyRival) Apply(s *Study) (*Study, error) {
 	if i < 0 {
 		return nil, noRival(e.From)
 	}
+	if s.Rival(e.Name) != nil {
+		return nil, taken("rival", e.Name)
+	}
 	r := *s.Rivals[i]
 	r.Name = e.Name
 	return changed(s, func(s *Study) { s.Rivals = slices.Insert(slices.Clone(s.Rivals), i+1, &r) })
@@ -48,6 +54,9 @@ type RenameRival struct {
 
 // Apply refuses a name that is taken.
 func (e RenameRival) Apply(s *Study) (*Study, error) {
+	if e.Old != e.New && s.Rival(e.New) != nil {
+		return nil, taken("rival", e.New)
+	}
 	return onSheet(s, e.Old, func(r *Rival) error {
 		r.Name = e.New
 		return nil

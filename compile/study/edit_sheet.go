@@ -19,6 +19,12 @@ type AddNode struct {
 // Apply refuses a variable that is not in the ledger or already on the sheet.
 func (e AddNode) Apply(s *Study) (*Study, error) {
 	return onSheet(s, e.Rival, func(r *Rival) error {
+		switch {
+		case s.Variable(e.Variable) == nil:
+			return noVariable(e.Variable)
+		case r.Diagram.Node(e.Variable) != nil:
+			return fmt.Errorf("%s is on the sheet of “%s” already", e.Variable, e.Rival)
+		}
 		r.Diagram.Nodes = and(r.Diagram.Nodes, &Node{Variable: e.Variable})
 		if e.At != nil {
 			r.Layout = r.Layout.moved(map[string]Point{e.Variable: *e.At})
@@ -175,6 +181,11 @@ func (r *Rival) draw(arrow Arrow) error {
 	if r.Diagram.Arrow(a.From, a.To) != nil {
 		return fmt.Errorf("the arrow %s → %s is drawn already", a.From, a.To)
 	}
+	for _, end := range [2]string{a.From, a.To} {
+		if r.Diagram.Node(end) == nil {
+			return notOnSheet(end, r.Name)
+		}
+	}
 	if a.From != a.To {
 		if way := walk(r.Diagram.Arrows, a.To, a.From); way != nil {
 			return &CycleError{From: a.From, To: a.To, Cycle: append(way, a.To)}
@@ -266,6 +277,9 @@ type AddArc struct {
 // Apply refuses an arc that is there already or joins what is not on the sheet.
 func (e AddArc) Apply(s *Study) (*Study, error) {
 	return onSheet(s, e.Rival, func(r *Rival) error {
+		if r.Diagram.Arc(e.Arc.A, e.Arc.B) != nil {
+			return fmt.Errorf("the arc %s ↔ %s is drawn already", e.Arc.A, e.Arc.B)
+		}
 		a := e.Arc
 		a.Plates = list(a.Plates)
 		r.Diagram.Arcs = and(r.Diagram.Arcs, &a)
@@ -361,6 +375,9 @@ type AddAbsent struct {
 // Apply refuses the pair of an arrow that is drawn.
 func (e AddAbsent) Apply(s *Study) (*Study, error) {
 	return onSheet(s, e.Rival, func(r *Rival) error {
+		if r.Diagram.Arrow(e.Absent.From, e.Absent.To) != nil {
+			return fmt.Errorf("the arrow %s → %s is drawn; delete it before you argue its absence", e.Absent.From, e.Absent.To)
+		}
 		a := e.Absent
 		i := slices.IndexFunc(r.Diagram.Absent, byAbsentEnds(a.From, a.To))
 		if i >= 0 {

@@ -128,7 +128,7 @@ func TestFileErrors(t *testing.T) {
 		{wrap(`"title": "x", "title": "y"`), `line 4: "title" is here twice; the first is in line 4`},
 		{wrap("\n\"tilte\": \"x\""), `line 5: "tilte" is not a key of a study (arrowroot, $schema, title, note, data, variables, plates, rivals, questions); perhaps "title" is meant`},
 		{wrap(`"title": 3`), `line 4: "title": 3 should be text in quotes`},
-		{wrap(`"questions": [{"exposure": "a", "from": true}]`), `line 4: "from": true should be text in quotes`},
+		{wrap(`"questions": [{"exposure": "a", "from": true}]`), `line 4: "from": true should be a number or a level's word`},
 		{wrap(`"questions": [{"exposure": "d"}]`), "line 4: the exposure of a question is d, which is not among the variables"},
 		{wrap(`"questions": [{"exposure": "a", "effect": "sideways"}]`), `line 4: "effect": "sideways" is not an effect this version knows (total)`},
 		{rival("\"arrows\": [\n{\"from\": \"a\", \"to\": \"b\", \"form\": \"spiral\"}]"), `x.arrowroot, line 6: "form": "spiral" is not a form this version knows (slope, steps, offset). The file was not opened and not changed.`},

@@ -237,8 +237,8 @@ func readSetting(o *object, key string, exposure *Variable) *Setting {
 	if v == nil {
 		return nil
 	}
-	text := wordOf(key, v)
-	if text == "" {
+	text := v.text
+	if text == "" || v.kind != textValue && v.kind != numberValue {
 		wrong(key, v, "a number or a level's word")
 	}
 	number, err := strconv.ParseFloat(text, 64)

@@ -27,7 +27,7 @@ func Check(s *Study) error {
 	c := checker{study: s}
 	c.data()
 	c.plates()
-	c.variables()
+	c.ledger()
 	c.rivals()
 	for _, q := range s.Questions {
 		c.question(q)
@@ -47,8 +47,9 @@ func checked(s *Study) (*Study, error) {
 }
 
 type checker struct {
-	study *Study
-	fault *Fault // the first
+	study     *Study
+	variables map[string]bool
+	fault     *Fault // the first
 }
 
 func (c *checker) insist(holds bool, part any, format string, args ...any) {
@@ -107,8 +108,9 @@ func (c *checker) plateNames(part any, where string, plates []string) {
 	}
 }
 
-func (c *checker) variables() {
-	seen := make(map[string]bool)
+func (c *checker) ledger() {
+	seen := make(map[string]bool, len(c.study.Variables))
+	c.variables = seen
 	for _, v := range c.study.Variables {
 		c.name(v, v.ID, "variable")
 		c.insist(!seen[v.ID], v, "there are two variables named %s", v.ID)
@@ -161,7 +163,7 @@ func (c *checker) diagram(r *Rival) {
 	d := r.Diagram
 	on := make(map[string]bool)
 	for _, n := range d.Nodes {
-		c.insist(c.study.Variable(n.Variable) != nil, n, "the sheet of “%s” shows %s, which is not among the variables", r.Name, n.Variable)
+		c.insist(c.variables[n.Variable], n, "the sheet of “%s” shows %s, which is not among the variables", r.Name, n.Variable)
 		c.insist(!on[n.Variable], n, "the sheet of “%s” shows %s twice", r.Name, n.Variable)
 		on[n.Variable] = true
 		if n.Law != nil {
@@ -198,10 +200,9 @@ func (c *checker) diagram(r *Rival) {
 		c.insist(find(d.Absent[:i], byAbsentEnds(a.From, a.To)) == nil, a, "the absent arrow %s → %s is argued twice in “%s”", a.From, a.To, r.Name)
 		c.insist(!drawn[[2]string{a.From, a.To}], a, "the arrow %s → %s is drawn in “%s” and argued to be absent", a.From, a.To, r.Name)
 	}
-	if c.fault == nil {
-		if a, cycle := closing(d); a != nil {
-			c.insist(false, a, "the arrows of “%s” close a cycle: %s", r.Name, strings.Join(cycle, " → "))
-		}
+	if c.fault == nil && cyclic(d) {
+		a, cycle := closing(d)
+		c.insist(false, a, "the arrows of “%s” close a cycle: %s", r.Name, strings.Join(cycle, " → "))
 	}
 }
 
@@ -226,6 +227,31 @@ func (c *checker) law(n *Node) {
 		c.insist(p.Parameter != "", n, "a prior in the law of %s is for no parameter", n.Variable)
 		c.insist(!slices.ContainsFunc(l.Priors[:i], func(b Prior) bool { return p.Parameter == b.Parameter }), n, "the law of %s has two priors for %s", n.Variable, p.Parameter)
 	}
+}
+
+// cyclic takes variables without parents away until none is left; on a cycle
+// that never happens (Kahn 1962).
+func cyclic(d *Diagram) bool {
+	parents := make(map[string]int, len(d.Nodes))
+	children := make(map[string][]string, len(d.Nodes))
+	for _, a := range d.Arrows {
+		parents[a.To]++
+		children[a.From] = append(children[a.From], a.To)
+	}
+	var free []string
+	for _, n := range d.Nodes {
+		if parents[n.Variable] == 0 {
+			free = append(free, n.Variable)
+		}
+	}
+	for i := 0; i < len(free); i++ {
+		for _, child := range children[free[i]] {
+			if parents[child]--; parents[child] == 0 {
+				free = append(free, child)
+			}
+		}
+	}
+	return len(free) < len(d.Nodes)
 }
 
 // closing finds an arrow on a cycle, and the cycle's names with the first
@@ -264,7 +290,7 @@ func walk(arrows []*Arrow, from, to string) []string {
 
 func (c *checker) question(q *Question) {
 	known := func(what, id string) {
-		c.insist(id == "" || c.study.Variable(id) != nil, q, "the %s of a question is %s, which is not among the variables", what, id)
+		c.insist(id == "" || c.variables[id], q, "the %s of a question is %s, which is not among the variables", what, id)
 	}
 	known("exposure", q.Exposure)
 	known("outcome", q.Outcome)
