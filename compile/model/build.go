@@ -16,6 +16,10 @@ import (
 // come law by law, parents first. The model is nil where it could not be made;
 // a problem that Stops forbids a fit even where a model came along: a study
 // without data (t nil) still has a statement if every range is given.
+//
+// Rows are complete cases over what the fit uses: nothing is missing in a used
+// row, so that a root with missing entries and no arc can be given as well
+// (SEMANTICS A2 asks for more once entries are imputed).
 func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind Kind) (*Model, []Problem) {
 	b := &builder{
 		study: s, question: q, table: t, kind: kind,
@@ -23,6 +27,10 @@ func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind 
 		declared: make(map[string]*declaration),
 		columns:  make(map[string]*column),
 		at:       make(map[string]int),
+		ledger:   make(map[string]*study.Variable, len(s.Variables)),
+	}
+	for _, v := range s.Variables {
+		b.ledger[v.ID] = v
 	}
 	for _, phase := range phases() {
 		phase(b, rival)
@@ -78,7 +86,8 @@ type builder struct {
 	names    map[meaning]string      // and back
 	declared map[string]*declaration // priors that the user gave, by canonical name
 	columns  map[string]*column      // by variable ID, over all rows of the table
-	bare     []*study.Variable       // columns that arguments read, not in the ledger
+	ledger   map[string]*study.Variable
+	bare     []*study.Variable // columns that arguments read, not in the study's ledger
 	plates   []*plateColumn
 	model    *Model
 	at       map[string]int // variable ID → index in model.Variables
@@ -150,14 +159,7 @@ func (b *builder) fitted() []causal.Fitted {
 
 // variable finds a variable of the ledger, or a column that a law's argument
 // reads without being one.
-func (b *builder) variable(id string) *study.Variable {
-	for _, v := range b.variables() {
-		if v.ID == id {
-			return v
-		}
-	}
-	return nil
-}
+func (b *builder) variable(id string) *study.Variable { return b.ledger[id] }
 
 func (b *builder) variables() []*study.Variable {
 	if len(b.bare) == 0 {

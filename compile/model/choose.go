@@ -2,6 +2,7 @@ package model
 
 import (
 	"fmt"
+	"slices"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/formula"
@@ -44,6 +45,11 @@ func (b *builder) chooseFull() {
 		}
 		explained := len(d.arrows) > 0 || len(d.carried) > 0 || joined[f.Node] ||
 			speaks(d.user) || v.ID == b.question.Outcome
+		if d.user.Treat == "given" && v.ID == b.question.Outcome {
+			b.stop(Problem{Code: "outcome-given", Variable: v.ID, Place: "law",
+				Message: fmt.Sprintf("%s is the outcome of the question, but set to be given: no law of it would be fitted.", v.ID),
+				Repairs: []Repair{{Label: "Model it", Edit: b.changeLaw(v.ID, func(l *study.Law) { l.Treat = "" })}}})
+		}
 		if d.user.Treat == "modelled" || d.user.Treat != "given" && explained {
 			b.drafts = append(b.drafts, d)
 		}
@@ -112,7 +118,7 @@ func (b *builder) chooseOutcome() {
 			continue
 		}
 		drawn := *a
-		if contains(offsets, a.From) {
+		if slices.Contains(offsets, a.From) {
 			drawn.Form = "offset"
 		}
 		if !kept[a.From] && drawn.Form != "offset" {
@@ -123,7 +129,7 @@ func (b *builder) chooseOutcome() {
 		drawn.Prior = ""
 		drawn.With = nil
 		for _, w := range a.With {
-			if contains(want, w) {
+			if slices.Contains(want, w) {
 				drawn.With = append(drawn.With, w)
 			}
 		}
@@ -136,7 +142,7 @@ func (b *builder) chooseOutcome() {
 	}
 	d.user.Formula = ""
 	for _, p := range varies {
-		if !contains(d.user.VariesBy, p) {
+		if !slices.Contains(d.user.VariesBy, p) {
 			d.user.VariesBy = append(append([]string(nil), d.user.VariesBy...), p)
 		}
 	}
@@ -180,21 +186,7 @@ func summands(e formula.Expr) []formula.Expr {
 }
 
 func hasArrow(arrows []*study.Arrow, from string) bool {
-	for _, a := range arrows {
-		if a.From == from {
-			return true
-		}
-	}
-	return false
-}
-
-func contains(list []string, s string) bool {
-	for _, x := range list {
-		if x == s {
-			return true
-		}
-	}
-	return false
+	return slices.ContainsFunc(arrows, func(a *study.Arrow) bool { return a.From == from })
 }
 
 // userLaw is what the sheet says of a variable's law; the zero value if nothing.

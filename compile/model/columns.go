@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"strconv"
 	"strings"
 
@@ -175,7 +176,7 @@ func (c *column) nudge() {
 func (b *builder) strange(v *study.Variable, source *table.Column) {
 	var odd []table.Strange
 	for _, s := range source.Strange {
-		if !contains(v.Missing, s.Text) {
+		if !slices.Contains(v.Missing, s.Text) {
 			odd = append(odd, s)
 		}
 	}
@@ -245,7 +246,7 @@ func zeroOne(levels []string) bool {
 
 func subset(some, of []string) bool {
 	for _, s := range some {
-		if !contains(of, s) {
+		if !slices.Contains(of, s) {
 			return false
 		}
 	}

@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
@@ -16,8 +17,8 @@ func (b *builder) examine(string) {
 		return
 	}
 	b.constants()
+	b.scales()
 	for _, d := range b.drafts {
-		b.support(d)
 		if d.law.Trials != nil {
 			b.trials(d)
 		}
@@ -52,6 +53,53 @@ func (b *builder) constants() {
 				Message: fmt.Sprintf("%s is %s in every used row: these data say nothing about what it does.", v.ID, value)})
 		}
 	}
+}
+
+// scales looks at what no law explains: proportions beyond 0 and 1, and values
+// so far from the plausible range that the unit must be another.
+func (b *builder) scales() {
+	for _, v := range b.model.Variables {
+		c := b.columns[v.ID]
+		if c.values == nil || c.computed != nil {
+			continue
+		}
+		low, high := extent(v.Values)
+		if v.Scale == study.Proportion && b.draftOf(v.ID) == nil && (low < 0 || high > 1) {
+			b.beyondUnit(c, "")
+			continue
+		}
+		width := v.High - v.Low
+		if !v.RangeGiven || len(v.Levels) > 0 || low >= v.Low-width && high <= v.High+width {
+			continue
+		}
+		far := high
+		if low < v.Low-width {
+			far = low
+		}
+		to := *c.variable
+		to.Range = nil
+		b.report(Problem{Code: "far", Variable: v.ID, Place: "range",
+			Message: fmt.Sprintf("%s is %s in row %d, far from its plausible range %s–%s: is the unit right?", v.ID, short(far), b.rowOf(v, slices.Index(v.Values, far))+1, short(v.Low), short(v.High)),
+			Repairs: []Repair{{Label: "Use the range seen", Edit: changeVariable(to)}}})
+	}
+}
+
+// beyondUnit reports a proportion beyond 0 and 1; a percent column is offered
+// ÷100.
+func (b *builder) beyondUnit(c *column, law string) {
+	v := c.variable
+	row := slices.IndexFunc(c.values, func(x float64) bool { return x < 0 || x > 1 })
+	var repairs []Repair
+	if low, high := extent(c.values); low >= 0 && high <= 100 && v.Divide <= 1 {
+		to := *v
+		to.Divide = 100
+		repairs = append(repairs, Repair{Label: "Divide by 100", Edit: changeVariable(to)})
+	}
+	to := *v
+	to.Scale = study.Real
+	repairs = append(repairs, Repair{Label: "Take " + v.ID + " as a real number", Edit: changeVariable(to)})
+	b.report(Problem{Code: "beyond-unit", Variable: v.ID, Place: "data", Stops: true, Repairs: repairs,
+		Message: fmt.Sprintf("%s%s: row %d is %s, but a proportion lies between 0 and 1.", v.ID, law, row+1, short(c.values[row]))})
 }
 
 // support looks for values that the law's family cannot take.
@@ -109,24 +157,16 @@ func (b *builder) support(d *draft) {
 			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
 		}
 	case catalog.Unit:
-		b.unitMisfits(d, values, first, report, law, rescale)
+		b.unitMisfits(d, values, first, report, law)
 	}
 }
 
-// unitMisfits is support for proportions: percent columns are offered ÷100,
-// exact ends another law.
+// unitMisfits is support for proportions.
 func (b *builder) unitMisfits(d *draft, values []float64, first func(func(float64) bool) (int, int),
-	report func(string, string, ...Repair), law func(string) Repair, rescale func(study.Scale) Repair) {
-	v := b.variable(d.variable.ID)
+	report func(string, string, ...Repair), law func(string) Repair) {
+	v := d.variable
 	if row, _ := first(func(x float64) bool { return x < 0 || x > 1 }); row >= 0 {
-		var repairs []Repair
-		if low, high := extent(values); low >= 0 && high <= 100 && v.Divide <= 1 {
-			to := *v
-			to.Divide = 100
-			repairs = append(repairs, Repair{Label: "Divide by 100", Edit: changeVariable(to)})
-		}
-		repairs = append(repairs, rescale(study.Real))
-		report("beyond-unit", fmt.Sprintf("row %d is %s, but a proportion lies between 0 and 1.", row+1, short(values[row])), repairs...)
+		b.beyondUnit(b.columns[v.ID], " ~ "+d.family.Name)
 		return
 	}
 	zeros, nZeros := first(func(x float64) bool { return x == 0 })

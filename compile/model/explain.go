@@ -57,7 +57,9 @@ func (b *builder) explainOne(d *draft) {
 	if i := d.family.Argument("trials"); i >= 0 {
 		d.law.Trials = d.given[i]
 	}
-	b.spanOf(d)
+	faults := len(b.problems)
+	b.support(d)
+	b.spanOf(d, len(b.problems) > faults)
 	if b.broken {
 		return
 	}
@@ -111,8 +113,9 @@ func carriedVariables(l *Law) []int {
 	return out
 }
 
-// spanOf reads the child's plausible range on its predictor's scale.
-func (b *builder) spanOf(d *draft) {
+// spanOf reads the child's plausible range on its predictor's scale. Where
+// values were found that the law cannot take, nothing more is said of it.
+func (b *builder) spanOf(d *draft, faulty bool) {
 	m := b.model
 	v := m.Variables[d.law.Variable]
 	low, high, shares := v.Low, v.High, false
@@ -135,13 +138,16 @@ func (b *builder) spanOf(d *draft) {
 	}
 	d.span = onLink(v, d.family, low, high, shares)
 	if w := d.span.width(); !(w > 0) || math.IsInf(w, 0) {
-		p := Problem{Code: "constant", Variable: v.ID, Place: "data"}
-		if len(v.Values) > 0 {
-			p.Message = fmt.Sprintf("%s is %s in every used row: nothing can be learned about it, and no prior can be made from its range.", v.ID, short(v.Values[0]))
-		} else {
-			p.Message = fmt.Sprintf("the plausible range of %s has no width", v.ID)
+		switch {
+		case faulty:
+			b.broken = true
+		case v.RangeGiven:
+			b.stop(Problem{Code: "range", Variable: v.ID, Place: "range",
+				Message: fmt.Sprintf("the plausible range of %s, %s–%s, leaves nothing that %s can take.", v.ID, short(v.Low), short(v.High), article(d.family.Name))})
+		default:
+			b.stop(Problem{Code: "constant", Variable: v.ID, Place: "data",
+				Message: fmt.Sprintf("%s is %s in every used row: nothing can be learned about it, and no prior can be made from its range.", v.ID, short(v.Low))})
 		}
-		b.stop(p)
 	}
 }
 
@@ -222,7 +228,7 @@ func (b *builder) predict(d *draft) {
 	if d.formula != nil {
 		terms := []formula.Expr{b.resolve(d, d.formula)}
 		for _, c := range d.carried {
-			if !contains(formula.Names(d.formula), c.id) {
+			if !slices.Contains(formula.Names(d.formula), c.id) {
 				terms = append(terms, b.term(d, &study.Arrow{From: c.id, To: d.variable.ID}, true, -1))
 			}
 		}

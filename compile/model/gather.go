@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"arrowroot/compile/formula"
 	"arrowroot/compile/study"
@@ -127,9 +128,14 @@ func (b *builder) computedBy(v *study.Variable) formula.Expr {
 	for _, n := range formula.Names(p.Right) {
 		u := b.variable(n)
 		switch {
-		case u == nil || n == v.ID || u.Unmeasured:
+		case u != nil && u.Unmeasured:
+			at.Code, at.Span = "unmeasured", spanOf(p.Right, n)
+			at.Message = fmt.Sprintf("*%s* was not measured, so that %s cannot be computed from it", n, v.ID)
+			b.stop(at)
+			return nil
+		case u == nil || n == v.ID:
 			at.Code, at.Span = "unknown-name", spanOf(p.Right, n)
-			at.Message = fmt.Sprintf("%s cannot be computed from *%s*: there is no other measured variable of this name", v.ID, n)
+			at.Message = fmt.Sprintf("%s cannot be computed from *%s*: there is no other variable of this name", v.ID, n)
 			b.stop(at)
 			return nil
 		case b.onSheet(v.ID) && b.onSheet(n) && !b.graph.HasArrow(b.graph.Index(n), b.graph.Index(v.ID)):
@@ -333,6 +339,7 @@ func (b *builder) plausible(out *Variable, v *study.Variable) {
 		out.Low, out.High, out.RangeGiven = v.Range.Low, v.Range.High, true
 	case out.Values != nil:
 		out.Low, out.High = extent(out.Values)
+	case slices.Contains(b.bare, v): // no prior is made from it
 	default:
 		b.stop(Problem{Code: "no-range", Variable: v.ID, Place: "range",
 			Message: fmt.Sprintf("%s has no plausible range and no data: say between which values it can lie, and every prior can be made from that.", v.ID)})

@@ -2,6 +2,7 @@ package model
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 	"unicode"
 
@@ -83,12 +84,12 @@ func (b *builder) parentsOf(d *draft) []string {
 		all = append(all, a.From)
 	}
 	for _, c := range d.carried {
-		if !contains(all, c.id) {
+		if !slices.Contains(all, c.id) {
 			all = append(all, c.id)
 		}
 	}
 	for _, n := range b.graph.Names {
-		if n != d.variable.ID && !contains(all, n) {
+		if n != d.variable.ID && !slices.Contains(all, n) {
 			all = append(all, n)
 		}
 	}

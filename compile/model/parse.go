@@ -302,7 +302,7 @@ func (b *builder) unusedPlates(d *draft, at Problem, fix func(string) study.Edit
 	_, varies := typedParts(at.Text, d.variable.ID)
 	alpha := b.names[meaning{role: baseline, child: d.variable.ID}]
 	for _, plate := range d.user.VariesBy {
-		if contains(varies, plate) {
+		if slices.Contains(varies, plate) {
 			continue
 		}
 		p := at
@@ -343,7 +343,7 @@ func (b *builder) unusedArrows(d *draft, at Problem, fix func(string) study.Edit
 	}
 	v := d.variable.ID
 	for _, a := range d.arrows {
-		if contains(used, a.From) {
+		if slices.Contains(used, a.From) {
 			continue
 		}
 		p := at

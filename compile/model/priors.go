@@ -271,7 +271,7 @@ func (b *builder) medianOffset(d *draft) (shift float64, words string) {
 	typed, _ := typedParts(d.user.Formula, d.variable.ID)
 	var offsets []string
 	for _, a := range d.arrows {
-		if a.Form == "offset" && d.formula == nil || contains(typed, a.From) {
+		if a.Form == "offset" && d.formula == nil || slices.Contains(typed, a.From) {
 			offsets = append(offsets, a.From)
 		}
 	}
@@ -429,7 +429,7 @@ func (b *builder) userPrior(p *Parameter, own *declaration) {
 	p.Why = ""
 }
 
-func (b *builder) inProgress(id string) bool { return contains(b.making, id) }
+func (b *builder) inProgress(id string) bool { return slices.Contains(b.making, id) }
 
 // phraseArguments puts a phrase's arguments into the family's order.
 func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fault func(string, ...any)) ([]formula.Expr, bool) {

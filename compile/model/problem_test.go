@@ -285,6 +285,57 @@ var troubles = []trouble{
 		message: "bees ~ binomial: in row 1 there are 58 out of 5 trials (hours).",
 	},
 	{
+		name: "percent in a given variable", code: "beyond-unit",
+		table: func(t *table.Table) {
+			for i, x := range t.Column("arable").Numbers {
+				set(t, "arable", i, 100*x)
+			}
+		},
+		message: "arable: row 1 is 46.66, but a proportion lies between 0 and 1.",
+		labels:  "Divide by 100|Take arable as a real number", mends: true,
+	},
+	{
+		name: "another unit", code: "far",
+		table:   func(t *table.Table) { set(t, "temp", 8, 64) },
+		message: "temp is 64 in row 9, far from its plausible range 10–26: is the unit right?",
+		labels:  "Use the range seen", mends: true,
+	},
+	{
+		name: "outcome given", code: "outcome-given",
+		study:   func(s *study.Study) { law(s, "bees").Treat = "given" },
+		message: "bees is the outcome of the question, but set to be given: no law of it would be fitted.",
+		labels:  "Model it", mends: true,
+	},
+	{
+		name: "constant parent", code: "constant",
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "temp", i, 20)
+			}
+		},
+		message: "temp is 20 in every used row: these data say nothing about what it does.",
+	},
+	{
+		name: "constant child without a range", code: "constant",
+		study: func(s *study.Study) { s.Variables[1].Range = nil },
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "bees", i, 7)
+			}
+		},
+		message: "bees is 7 in every used row: nothing can be learned about it, and no prior can be made from its range.",
+	},
+	{
+		name: "computed from the unmeasured", code: "unmeasured",
+		study: func(s *study.Study) {
+			s.Variables = append(s.Variables, &study.Variable{ID: "care", Scale: study.Real, Computed: "attitude + hedge"})
+			d := s.Rivals[0].Diagram
+			d.Nodes = append(d.Nodes, &study.Node{Variable: "care"})
+			d.Arrows = append(d.Arrows, &study.Arrow{From: "attitude", To: "care"}, &study.Arrow{From: "hedge", To: "care"}, &study.Arrow{From: "care", To: "flowers"})
+		},
+		message: "attitude + hedge\n^^^^^^^^ *attitude* was not measured, so that care cannot be computed from it",
+	},
+	{
 		name: "no data", code: "no-data",
 		table:   func(t *table.Table) { t.Rows = -1 }, // the test passes nil then
 		message: "There are no data to fit yet: open a table and bind its columns to the variables.",

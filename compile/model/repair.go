@@ -3,6 +3,7 @@ package model
 import (
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
+	"slices"
 )
 
 // Edits that repairs are made of.
@@ -56,7 +57,7 @@ func treatAsMissing(v *study.Variable, odd []table.Strange) Repair {
 	to := *v
 	to.Missing = append([]string(nil), v.Missing...)
 	for _, s := range odd {
-		if !contains(to.Missing, s.Text) {
+		if !slices.Contains(to.Missing, s.Text) {
 			to.Missing = append(to.Missing, s.Text)
 		}
 	}

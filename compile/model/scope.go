@@ -90,8 +90,10 @@ func (b *builder) checkName(d *draft, n *formula.Name, place string, fault fault
 	case parameter && (m.role == baselineBy || m.role == slopeBy || m.role == cutPoints):
 		fault(n.Span, "vector", fmt.Sprintf("*%s* has several entries; write *%s by %s*", n.ID, b.stem(m), m.plate))
 	case parameter:
-	case place == "argument" && b.table.Column(n.ID) != nil:
-		b.bare = append(b.bare, &study.Variable{ID: n.ID, Scale: study.Real, Column: n.ID})
+	case place == "argument" && (b.table == nil || b.table.Column(n.ID) != nil):
+		column := &study.Variable{ID: n.ID, Scale: study.Real, Column: n.ID}
+		b.bare = append(b.bare, column)
+		b.ledger[n.ID] = column
 	default:
 		b.unknownName(d, n, fault, replace)
 	}
@@ -110,12 +112,7 @@ func (b *builder) stem(m meaning) string {
 }
 
 func carries(d *draft, id string) bool {
-	for _, c := range d.carried {
-		if c.id == id {
-			return true
-		}
-	}
-	return false
+	return slices.ContainsFunc(d.carried, func(c carrier) bool { return c.id == id })
 }
 
 // descends reports whether of's arrows lead to id.
