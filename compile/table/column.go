@@ -25,7 +25,7 @@ func (r reader) column(fields []span) *Column {
 		decimal = r.findDecimal(fields)
 	}
 	c := &Column{Kind: Numeric, Numbers: make([]float64, len(fields))}
-	numbers, signs := 0, 0
+	numbers, signs, codes := 0, 0, 0
 	for i, f := range fields {
 		text := f.in(r.text)
 		c.Numbers[i] = math.NaN()
@@ -34,6 +34,9 @@ func (r reader) column(fields []span) *Column {
 			numbers++
 			if percent {
 				signs++
+			}
+			if padded(text) {
+				codes++
 			}
 			continue
 		}
@@ -45,6 +48,9 @@ func (r reader) column(fields []span) *Column {
 		if len(c.Strange) > 1000 && float64(len(c.Strange)) > (1-mostly)*float64(len(fields)) {
 			return r.words(fields) // already too many, whatever follows
 		}
+	}
+	if codes >= 2 && 100*codes >= numbers {
+		return r.words(fields) // 007 is nobody's measurement
 	}
 	if numbers == 0 && len(c.Strange) > 0 || float64(numbers) < mostly*float64(numbers+len(c.Strange)) {
 		return r.words(fields)
@@ -61,6 +67,12 @@ func (r reader) column(fields []span) *Column {
 		c.Strange[i].Text = strings.Clone(c.Strange[i].Text) // lets go of the file's text
 	}
 	return c
+}
+
+// padded reports whether digits alone begin with a zero, as numbers of houses,
+// sites or persons do.
+func padded(text string) bool {
+	return len(text) > 1 && text[0] == '0' && strings.Trim(text, "0123456789") == ""
 }
 
 // strangeWhere makes strange those numbers whose text is of the odd kind.

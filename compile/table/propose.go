@@ -192,6 +192,9 @@ func proposeWords(c *Column) Proposal {
 		}
 		return Proposal{Scale: "binary", Levels: levels, Words: "two words, “" + levels[0] + "” and “" + levels[1] + "”"}
 	}
+	if allDates(c.Levels) {
+		return Proposal{Scale: "category", Levels: slices.Sorted(slices.Values(c.Levels)), Words: fmt.Sprintf("%d different dates; a trend needs a column of days or years as numbers", len(c.Levels))}
+	}
 	for _, order := range orders {
 		if levels := inOrder(c.Levels, order); levels != nil {
 			return Proposal{Scale: "ordered", Levels: levels, Words: "words in an order, " + strings.Join(levels, " < ")}
@@ -208,6 +211,23 @@ func proposeWords(c *Column) Proposal {
 		p.Words += ", another one in each row"
 	}
 	return p
+}
+
+// allDates reports whether all levels look like dates: three numbers joined by
+// the same -, / or ., or the first part of ISO 8601 before a T.
+func allDates(levels []string) bool {
+	for _, l := range levels {
+		day, _, _ := strings.Cut(strings.ReplaceAll(l, "T", " "), " ")
+		mark := strings.Trim(day, "0123456789")
+		if mark == "" || !strings.ContainsRune("-/.", rune(mark[0])) {
+			return false
+		}
+		parts := strings.Split(day, mark[:1])
+		if len(parts) != 3 || strings.Trim(strings.Join(parts, ""), "0123456789") != "" || len(day) < 8 || len(day) > 10 {
+			return false
+		}
+	}
+	return true
 }
 
 // inOrder gives the levels as the order has them; nil if one is not in it.
@@ -227,13 +247,14 @@ func inOrder(levels, order []string) []string {
 
 // numbered gives levels such as "1 low", "2 mid" or "18-25", "26-40" by the
 // number that each begins with; nil unless there are few, all begin with a
-// number followed by something, and no two with the same.
+// number, no two with the same, and in some a word follows.
 func numbered(levels []string) []string {
 	if len(levels) > 12 {
 		return nil
 	}
 	first := make(map[string]float64)
 	seen := make(map[float64]bool)
+	follows := false
 	for _, l := range levels {
 		end := 0
 		for end < len(l) && ('0' <= l[end] && l[end] <= '9' || end > 0 && l[end] == '.') {
@@ -244,6 +265,10 @@ func numbered(levels []string) []string {
 			return nil
 		}
 		first[l], seen[v] = v, true
+		follows = follows || end < len(l)
+	}
+	if !follows {
+		return nil
 	}
 	sorted := slices.Clone(levels)
 	slices.SortFunc(sorted, func(a, b string) int {

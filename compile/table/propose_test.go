@@ -55,6 +55,8 @@ func TestPropose(t *testing.T) {
 		{"pain", "Severe Mild None Moderate", "ordered None, Mild, Moderate, Severe: words in an order, None < Mild < Moderate < Severe"},
 		{"answer", "agree strongly_disagree neutral", "ordered strongly disagree, neutral, agree: words in an order, strongly disagree < neutral < agree"},
 		{"age", "45-54 9-17 18-44", "ordered 9-17, 18-44, 45-54: words that begin with numbers, 9-17 … 45-54"},
+		{"day", "2024-05-01 2024-06-11 2024-05-01 2024-07-02", "category 2024-05-01, 2024-06-11, 2024-07-02: 3 different dates; a trend needs a column of days or years as numbers"},
+		{"site", "007 012 007 101", "category 007, 012, 101: 3 different words"},
 		{"farm", strings.Repeat("a b c d e f g h i j k l m n ", 2), "category a, b, c, d, e, f, g, h, i, j, k, l, m, n: 14 different words, perhaps the names of groups"},
 	} {
 		p := Propose(column(t, c.name, c.entries))

@@ -182,4 +182,6 @@ func free(name string, taken map[string]bool) string {
 }
 
 // cleanName makes one line of a heading.
-func cleanName(text string) string { return strings.Join(strings.Fields(text), " ") }
+func cleanName(text string) string {
+	return strings.Clone(strings.Join(strings.Fields(text), " ")) // lets go of the file's text
+}

@@ -75,6 +75,7 @@ func TestRead(t *testing.T) {
 		{"mostly words", "a,b\n1,1\n2b,1\n3c,1\n", `a: "1" "2b" "3c"; b: 1 1 1`},
 		{"numbers in every form", "a,b\n+1.50e2,1\n.5,1\n5.,1\n-0.25E-1,1\n12345678901234567890,1\n", "a: 150 0.5 5 -0.025 1.2345678901234567e+19; b: 1 1 1 1 1"},
 		{"what only looks like numbers", "a,b\n0x10,1\nInf,1\n1_000,1\n1e999,1\n", `a: "0x10" "Inf" "1_000" "1e999"; b: 1 1 1 1`},
+		{"codes with leading zeros", "a,b\n007,1\n012,2\n", `a: "007" "012"; b: 1 2`},
 		{"percent signs", "a,b\n10%,1\n20 %,1\n30,1\n", "a %: 10 20 !30; b: 1 1 1"},
 		{"a stray percent sign", "a,b\n10,1\n20%,1\n30,1\n", "a: 10 !20% 30; b: 1 1 1"},
 		{"empty lines", "a,b\n\n1,2\n\n", "a: 1; b: 2"},
