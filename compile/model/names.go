@@ -2,7 +2,6 @@ package model
 
 import (
 	"fmt"
-	"slices"
 	"strings"
 	"unicode"
 
@@ -58,38 +57,35 @@ func (b *builder) nameParameters() {
 			b.name("alpha_"+v+"_"+clean(p.Name), meaning{role: baselineBy, child: v, plate: p.Name})
 			b.name("tau_"+v+"_"+clean(p.Name), meaning{role: baselineSD, child: v, plate: p.Name})
 		}
-		for _, p := range b.parentsOf(d) {
+		for _, p := range b.others(d) {
 			b.name("beta_"+p+"_"+v, meaning{role: slope, child: v, parent: p})
 			b.name("step_"+p+"_"+v, meaning{role: steps, child: v, parent: p})
+		}
+		for _, p := range d.arrows {
 			for _, l := range b.study.Plates {
-				b.name("beta_"+p+"_"+v+"_"+clean(l.Name), meaning{role: slopeBy, child: v, parent: p, plate: l.Name})
-				b.name("tau_"+p+"_"+v+"_"+clean(l.Name), meaning{role: slopeSD, child: v, parent: p, plate: l.Name})
+				b.name("beta_"+p.From+"_"+v+"_"+clean(l.Name), meaning{role: slopeBy, child: v, parent: p.From, plate: l.Name})
+				b.name("tau_"+p.From+"_"+v+"_"+clean(l.Name), meaning{role: slopeSD, child: v, parent: p.From, plate: l.Name})
 			}
-			for _, a := range d.arrows {
-				if a.From != p && hasArrow(d.arrows, p) {
-					b.name("beta_"+p+"_"+a.From+"_"+v, meaning{role: product, child: v, parent: p, with: a.From})
-					b.name("step_"+p+"_"+a.From+"_"+v, meaning{role: stepsProduct, child: v, parent: p, with: a.From})
+			for _, q := range d.arrows {
+				if q.From != p.From {
+					b.name("beta_"+p.From+"_"+q.From+"_"+v, meaning{role: product, child: v, parent: p.From, with: q.From})
+					b.name("step_"+p.From+"_"+q.From+"_"+v, meaning{role: stepsProduct, child: v, parent: p.From, with: q.From})
 				}
 			}
 		}
 	}
 }
 
-// parentsOf lists what a law may have coefficients for: its drawn parents, its
-// carried variables, and the rest of the sheet, so that a formula that uses a
-// variable without an arrow is told of the arrow and not of its coefficient.
-func (b *builder) parentsOf(d *draft) []string {
+// others lists what a law may have coefficients for: its drawn parents first,
+// then the rest of the sheet, so that a formula that uses a variable without
+// an arrow is told of the arrow and not of its coefficient.
+func (b *builder) others(d *draft) []string {
 	var all []string
 	for _, a := range d.arrows {
 		all = append(all, a.From)
 	}
-	for _, c := range d.carried {
-		if !slices.Contains(all, c.id) {
-			all = append(all, c.id)
-		}
-	}
 	for _, n := range b.graph.Names {
-		if n != d.variable.ID && !slices.Contains(all, n) {
+		if n != d.variable.ID && !hasArrow(d.arrows, n) {
 			all = append(all, n)
 		}
 	}
