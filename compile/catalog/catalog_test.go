@@ -328,7 +328,7 @@ func TestExtremeArguments(t *testing.T) {
 				if bad {
 					t.Errorf("%s %v: quantile at %v is %v", f.Name, args, u, x)
 				}
-				if d := time.Since(start); d > time.Second {
+				if d := time.Since(start); d > 10*time.Second {
 					t.Errorf("%s %v: quantile at %v took %v", f.Name, args, u, d)
 				}
 			}

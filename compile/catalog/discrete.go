@@ -101,6 +101,9 @@ func poissonSD(a []float64) float64                  { return math.Sqrt(a[0]) }
 
 func negBinomialCount(a []float64) count {
 	mean, k := a[0], a[1]
+	if k > 1e18*(1+mean) { // a Poisson in double precision
+		return poissonCount(a)
+	}
 	p, q := k/(mean+k), mean/(mean+k)
 	return count{
 		first: math.Exp(-k * math.Log1p(mean/k)),
