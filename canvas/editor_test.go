@@ -255,23 +255,23 @@ func TestKeys(t *testing.T) {
 func TestDrawByKeyboard(t *testing.T) {
 	b := newBench(t, pair())
 	b.Select(scene.Selection{Nodes: []string{"hedge"}})
-	b.key(fyne.KeyA)
+	b.SetTool(scene.ArrowTool)
 	b.key(fyne.KeyRight)
 	b.key(fyne.KeyReturn)
 	if b.diagram().Arrow("hedge", "bees") == nil {
-		t.Fatal("A, →, Return drew no arrow")
+		t.Fatal("→, Return with the arrow tool drew no arrow")
 	}
-	b.Select(scene.Selection{Nodes: []string{"bees"}})
-	b.key(fyne.KeyC)
+	b.SetTool(scene.CauseTool) // from bees, where the arrow went
 	b.key(fyne.KeyLeft)
 	b.key(fyne.KeyReturn)
 	if b.diagram().Arc("hedge", "bees") == nil {
-		t.Fatal("C, ←, Return drew no arc")
+		t.Fatal("←, Return with the common cause tool drew no arc")
 	}
-	b.key(fyne.KeyN)
+	b.SetTool(scene.VariableTool)
+	b.key(fyne.KeyReturn)
 	b.typeName("soil")
 	if b.diagram().Node("soil") == nil {
-		t.Error("N made no variable")
+		t.Error("Return with the variable tool made no variable")
 	}
 }
 

@@ -61,9 +61,9 @@ type arranger struct {
 // Distances of the layout at zoom 1.
 const (
 	layerGap = 88.0
-	nodeStep = 80.0 // between nodes one above the other, with room for dots
-	lineStep = 32.0 // beside a dummy
-	bandStep = 104.0
+	nodeStep = 80.0  // between nodes one above the other, with room for dots
+	lineStep = 32.0  // beside a dummy
+	bandStep = 136.0 // room for the dots, two frames and a tab
 )
 
 func newArranger(s *study.Study, r *study.Rival, q *study.Question) *arranger {

@@ -319,7 +319,7 @@ func TestNaming(t *testing.T) {
 	s.type_("soil")
 	s.name = &Naming{}
 	s.type_("?")
-	s.expect("Add soil", "refused: soil is on the sheet already.", "Draw soil → bees", "refused: There is a variable bees already.", "refused: A name needs at least one letter.")
+	s.expect("Add soil", "refused: soil is on the sheet already", "Draw soil → bees", "refused: there is a variable bees already", "refused: a name needs at least one letter")
 	if n := len(s.in.Study.Variables); n != 7 {
 		t.Errorf("%d variables in the ledger", n)
 	}

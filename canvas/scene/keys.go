@@ -7,10 +7,11 @@ import (
 	"arrowroot/compile/study"
 )
 
-// The sheet's own keys: Escape, Delete, F2 and Return, the arrow keys (along
-// the arrows of the diagram; with Ctrl they move the selection), A and C (an
-// arrow or a common cause from the selected variable, aimed with the arrow
-// keys), N (a new variable). Every other key is a command of the window's.
+// The sheet's own keys: Escape, Delete, F2 and the arrow keys, which walk along
+// the arrows of the diagram and with Ctrl move the selection. With the arrow
+// or the common cause tool they aim at another variable, and Return draws; with
+// the variable tool Return makes one. Every other key is a command of the
+// window's.
 
 var directions = map[string]draw.Point{
 	"Left": {X: -1}, "Right": {X: 1}, "Up": {Y: -1}, "Down": {Y: 1},
@@ -20,7 +21,6 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 	if d, ok := directions[e.Key]; ok {
 		return h.arrowKey(in, m, e, d)
 	}
-	plain := !e.Ctrl && !e.Shift
 	switch {
 	case e.Key == "Escape":
 		return h.escape(in)
@@ -29,19 +29,21 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 			return Answer{Edit: edit, Select: &Selection{}}
 		}
 		return Answer{}
-	case h.grip == gripKeys && (e.Key == "Return" || e.Key == "Enter"):
+	case h.grip == gripKeys && e.Key == "Return":
 		h.grip = gripNone
+		to := h.link.To
 		a := h.connect(in)
 		a.Preview = &Preview{}
+		if a.Edit != nil { // the next arrow goes on from here
+			a.Select = &Selection{Nodes: []string{to}}
+		}
 		return a
 	case e.Key == "F2":
 		if len(in.Selected.Nodes) == 1 {
 			return Answer{Name: &Naming{Variable: in.Selected.Nodes[0]}}
 		}
 		return Answer{}
-	case (e.Key == "A" || e.Key == "C") && plain && len(in.Selected.Nodes) == 1:
-		return h.startKeys(in, e.Key == "C")
-	case e.Key == "N" && plain && in.Rival != nil:
+	case h.tool == VariableTool && e.Key == "Return" && in.Rival != nil:
 		return Answer{Name: &Naming{At: Free(in)}}
 	}
 	return Answer{Command: command(e)}
@@ -82,20 +84,13 @@ func (h *Hand) escape(in *Input) Answer {
 	return Answer{Command: "Escape"}
 }
 
-func (h *Hand) startKeys(in *Input, arc bool) Answer {
-	from := in.Selected.Nodes[0]
-	p, ok := in.layout()[from]
-	if !ok {
-		return Answer{}
-	}
-	h.grip = gripKeys
-	h.link = Draft{From: from, Arc: arc, End: study.Point{X: p.X + 96, Y: p.Y}}
-	d := h.link
-	return Answer{Preview: &Preview{Draw: &d}}
-}
-
 func (h *Hand) arrowKey(in *Input, m *Map, e Event, d draw.Point) Answer {
+	drawing := h.tool == ArrowTool || h.tool == CauseTool
 	switch {
+	case h.grip == gripNone && drawing && !e.Ctrl && !e.Shift && len(in.Selected.Nodes) == 1:
+		h.grip = gripKeys
+		h.link = Draft{From: in.Selected.Nodes[0], Arc: h.tool == CauseTool, End: in.layout()[in.Selected.Nodes[0]]}
+		return h.arrowKey(in, m, e, d)
 	case h.grip == gripKeys:
 		at := h.link.To
 		if at == "" {

@@ -39,7 +39,7 @@ func (n Naming) Edit(in *Input, text string) (study.Edit, error) {
 	case in.Rival == nil || in.Study == nil:
 		return nil, nil
 	case id == "":
-		return nil, errors.New("A name needs at least one letter.")
+		return nil, errors.New("a name needs at least one letter")
 	case n.Variable != "":
 		return n.rename(in, id, label)
 	case len(n.Members) > 0:
@@ -54,7 +54,7 @@ func (n Naming) rename(in *Input, id, label string) (study.Edit, error) {
 		return nil, nil
 	}
 	if in.Study.Variable(id) != nil {
-		return nil, fmt.Errorf("There is a variable %s already.", id)
+		return nil, fmt.Errorf("there is a variable %s already", id)
 	}
 	to := *v
 	to.ID = id
@@ -69,7 +69,7 @@ func (n Naming) add(in *Input, id, label string) (study.Edit, error) {
 	rival := in.Rival.Name
 	if in.Rival.Diagram.Node(id) != nil {
 		if n.From == "" || n.From == id {
-			return nil, fmt.Errorf("%s is on the sheet already.", id)
+			return nil, fmt.Errorf("%s is on the sheet already", id)
 		}
 		return study.AddArrow{Rival: rival, Arrow: study.Arrow{From: n.From, To: id}}, nil
 	}
