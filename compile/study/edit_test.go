@@ -233,6 +233,29 @@ func TestMovesMerge(t *testing.T) {
 	}
 }
 
+func TestGraph(t *testing.T) {
+	s := mustRead(t, example(t))
+	v := *s.Variable("temp")
+	v.Computed = "2 * hours"
+	g, err := apply(t, s, ChangeVariable{"temp", v}).Graph(nest)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if got := strings.Join(g.Names, " "); got != "hedge flowers pesticide soil hours temp attitude bees" {
+		t.Error(got)
+	}
+	hedge, bees := g.Index("hedge"), g.Index("bees")
+	if !g.HasArrow(hedge, bees) || len(g.Arrows) != 5 || !slices.Equal(g.Siblings[hedge], []int{g.Index("pesticide")}) {
+		t.Errorf("%+v", g)
+	}
+	if g.Measured[g.Index("attitude")] || !g.Measured[bees] || !g.Computed[g.Index("temp")] || g.Computed[bees] {
+		t.Error("unmeasured or computed marks are wrong")
+	}
+	if _, err := s.Graph("No"); err == nil || err.Error() != "there is no rival “No”" {
+		t.Error(err)
+	}
+}
+
 // someEdit draws an edit that fits the study more often than not.
 func someEdit(t *rapid.T, s *Study) Edit {
 	name := func(what string) string {
@@ -353,6 +376,14 @@ func TestAnyEdits(t *testing.T) {
 		}
 		if err := same(again, s); err != nil {
 			t.Fatal(err)
+		}
+		for _, v := range s.Variables {
+			to := *v
+			to.ID = "elsewhere"
+			there := apply(t, s, ChangeVariable{v.ID, to})
+			if back := apply(t, there, ChangeVariable{to.ID, *v}); !bytes.Equal(Write(back), Write(s)) {
+				t.Fatalf("%s renamed and named back:\n%s\nbefore:\n%s", v.ID, Write(back), Write(s))
+			}
 		}
 		for _, r := range s.Rivals {
 			if g, err := s.Graph(r.Name); err != nil || g.Len() != len(r.Diagram.Nodes) {
