@@ -15,7 +15,7 @@ import (
 // (SEMANTICS A9), with its own log density over unconstrained coordinates. It
 // never changes and can be shared by goroutines.
 type Block struct {
-	Name       string   // the variables whose laws it is about: "bees, flowers"
+	Name       string   // the variables whose laws it holds, "flowers, bees"; its parameters if it has priors only
 	Names      []string // its parameters' typed names, sorted: part of the seed key
 	Quantities []int    // indices in Density.Quantities, in order
 
@@ -169,15 +169,15 @@ func parameterOf(m *model.Model, p *model.Parameter) string {
 }
 
 func (b *Block) compile(l *lowering, g group, factors []factor) error {
-	var variables []string
-	for _, i := range g.parameters {
-		if of := l.m.Parameters[i].Of; of >= 0 && of < len(l.m.Variables) {
-			variables = append(variables, l.m.Variables[of].ID)
-		}
-	}
-	slices.Sort(variables)
-	b.Name = strings.Join(slices.Compact(variables), ", ")
 	slices.Sort(b.Names)
+	var variables []string
+	for _, i := range g.laws {
+		variables = append(variables, l.m.Variables[l.m.Laws[i].Variable].ID)
+	}
+	if len(variables) == 0 { // priors only
+		variables = b.Names
+	}
+	b.Name = strings.Join(variables, ", ")
 
 	total := l.b.Const(0)
 	b.factors = factors

@@ -1,8 +1,9 @@
 // Package density lowers a checked model to log densities that a sampler can
-// draw from. Read the files in this order: density.go (what comes out),
-// blocks.go (which parameters are drawn apart), transform.go (from the line of
-// reals to natural values), express.go (formulas), prior.go and law.go (the
-// factors), blame.go (who is at fault where a density is not finite).
+// draw from. Read the files in this order: density.go and block.go (what comes
+// out), blocks.go (which parameters are drawn apart), resolve.go (what names
+// mean), express.go (formulas), transform.go (from the line of reals to natural
+// values), prior.go and law.go (the factors), blame.go (who is at fault where a
+// density is not finite).
 package density
 
 import "arrowroot/compile/model"

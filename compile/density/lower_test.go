@@ -581,6 +581,41 @@ func TestFaultsNameTheirPlace(t *testing.T) {
 	if _, err := Lower(s.m); err == nil || !strings.Contains(err.Error(), "the law of y: there is nothing named hedges") {
 		t.Errorf("an unknown name: %v", err)
 	}
+	s = newSketch(t, 4)
+	farm := s.plate("farm", []int32{0, 0, 1, 1}, "north", "south")
+	s.variable("size", study.Positive, farm, 1, 0)
+	s.variable("x", study.Real, -1, 1, 2, 3, 4)
+	s.variable("soil", study.Category, farm, 0, 2)
+	s.vector("step", model.ZeroSum, 2, "normal", "0", "1")
+	s.parameter("a", catalog.Reals, "normal", "0", "1")
+	for predictor, want := range map[string]string{
+		"a + x":            "the law of size: a value that differs by row cannot serve each farm",
+		"a + step of soil": "the law of size: soil has level 2, but there are 2 entries",
+		"a + step":         "the law of size: step has several entries; say which",
+		"a by farm":        "the law of size: a does not vary by farm",
+		"a + x of soil":    "the law of size: x has no entry for each level of soil",
+	} {
+		s.m.Laws = nil
+		s.law("size", "gamma", []string{predictor}, "2")
+		if _, err := Lower(s.m); err == nil || err.Error() != want {
+			t.Errorf("%s: %v", predictor, err)
+		}
+	}
+	s.m.Laws = nil
+	s.law("size", "gamma", []string{"a"}, "2")
+	d, err := Lower(s.m)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, b := range d.Blocks {
+		if b.Name != "size" {
+			continue
+		}
+		if got := b.Blame(make([]float64, b.Dim())); got != "the law of size gives no probability at farm south, where size is 0" {
+			t.Errorf("blamed %q", got)
+		}
+	}
+
 	s = newSketch(t, 2)
 	s.parameter("a", catalog.Reals, "normal", "b", "1")
 	s.parameter("b", catalog.Reals, "normal", "a", "1")

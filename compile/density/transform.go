@@ -3,7 +3,6 @@ package density
 import (
 	"math"
 
-	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
 	"arrowroot/compile/model"
 	"arrowroot/compile/ops"
@@ -84,44 +83,8 @@ func measure(p *model.Prior) (yardstick, bool) {
 
 // constant evaluates a formula made of numbers.
 func constant(e formula.Expr) (float64, bool) {
-	switch e := e.(type) {
-	case *formula.Number:
-		return e.Value, true
-	case *formula.Unary:
-		x, ok := constant(e.X)
-		return -x, ok
-	case *formula.Binary:
-		x, ok := constant(e.X)
-		y, ok2 := constant(e.Y)
-		switch {
-		case !ok || !ok2:
-		case e.Op == '+':
-			return x + y, true
-		case e.Op == '-':
-			return x - y, true
-		case e.Op == '*':
-			return x * y, true
-		case e.Op == '/':
-			return x / y, true
-		case e.Op == '^':
-			return math.Pow(x, y), true
-		}
-	case *formula.Call:
-		f := catalog.FunctionByName(e.Function)
-		if f == nil || f.Args != len(e.Args) {
-			return 0, false
-		}
-		args := make([]float64, len(e.Args))
-		for i, a := range e.Args {
-			x, ok := constant(a)
-			if !ok {
-				return 0, false
-			}
-			args[i] = x
-		}
-		return f.Value(args), true
-	}
-	return 0, false
+	x := model.Evaluate(e, func(formula.Expr) float64 { return math.NaN() })
+	return x, !math.IsNaN(x)
 }
 
 // A placed parameter: its natural value, the value that its prior is about,

@@ -437,3 +437,49 @@ func TestThinningSameSeedAndCancel(t *testing.T) {
 		t.Errorf("after %d reports: %v", told, err)
 	}
 }
+
+// Exposures with levels are set by their words; a plate's mediator has one
+// value per level; a computed outcome is averaged as it stands.
+func TestWordsPlateMediatorsAndComputedOutcomes(t *testing.T) {
+	s := newSketch(t, 4)
+	s.plate("farm", 2, []int32{0, 0, 1, 1})
+	crop := s.variable("crop", study.Category, []float64{0, 1})
+	crop.Plate, crop.Levels = 0, []string{"oats", "rye"}
+	size := s.variable("size", study.Real, []float64{3, 4})
+	size.Plate = 0
+	double := s.variable("double", study.Real, []float64{6, 6, 8, 8})
+	double.Computed = s.parse("2 * size")
+	s.vector("step", model.ZeroSum, 1.5, -1.5)
+	s.law("size", "normal", "10 + step of crop", "1")
+	q := study.Question{Exposure: "crop", Outcome: "double", From: &study.Setting{Word: "oats"}, To: &study.Setting{Word: "rye"}}
+	got, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(3), source(), Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "oats", got.Expected.From[1], 23, 1e-9)
+	near(t, "rye against oats", got.Values[2], -6, 1e-9)
+	q.To.Word = "wheat"
+	if _, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(3), source(), Options{}); err == nil || err.Error() != `crop has no level "wheat"` {
+		t.Errorf("an unknown level: %v", err)
+	}
+	q = study.Question{Exposure: "crop", Outcome: "double", Shift: 1}
+	if _, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(3), source(), Options{}); err == nil || !strings.Contains(err.Error(), "not a shift") {
+		t.Errorf("a shift of levels: %v", err)
+	}
+	if _, err := FromLaw(context.Background(), s.m, ask("crop", "bees", 0, 1), s.draws(3), source(), Options{}); err == nil || err.Error() != "bees is not in this fit" {
+		t.Errorf("an outcome that is not there: %v", err)
+	}
+}
+
+func TestOutermostPlates(t *testing.T) {
+	m := &model.Model{Plates: []*model.Plate{
+		{Name: "field", Levels: make([]string, 4), Of: []int32{0, 1, 2, 3, 0, 1}},
+		{Name: "farm", Levels: make([]string, 2), Of: []int32{0, 0, 1, 1, 0, 0}},
+		{Name: "year", Levels: make([]string, 2), Of: []int32{0, 0, 0, 0, 1, 1}},
+		{Name: "holding", Levels: make([]string, 2), Of: []int32{1, 1, 0, 0, 1, 1}}, // farm by another name
+	}}
+	got := outermost(m)
+	if len(got) != 2 || got[0] != 1 || got[1] != 2 {
+		t.Errorf("outermost plates %v, want farm and year", got)
+	}
+}

@@ -1,8 +1,10 @@
 // Package effect turns draws into answers: contrasts between interventions
 // (SEMANTICS B), and the change along each arrow and at each node that paints
 // the sheet (SEMANTICS G). Read the files in this order: effect.go (what comes
-// out), resolve.go and eval.go (laws evaluated over rows, draw by draw), arm.go
-// (who moves when the exposure is set), contrast.go, arrows.go, nodes.go.
+// out), resolve.go, eval.go and expect.go (laws evaluated over rows, draw by
+// draw), arm.go (who moves when the exposure is set), contrast.go, simulation.go
+// and round.go (many draws, few replicates), population.go (weights), arrows.go,
+// nodes.go, words.go.
 //
 // A draw is the natural values of all parameters, in the order of
 // Model.Parameters, entries of vectors side by side (density.Quantities).

@@ -142,3 +142,59 @@ func TestNodes(t *testing.T) {
 		}
 	}
 }
+
+// An ordered child is painted by P(middle level or above), per draw.
+func TestArrowsIntoOrderedLevels(t *testing.T) {
+	s := newSketch(t, 101)
+	x := spreadOut(101, 0, 10)
+	s.variable("x", study.Real, x)
+	grade := s.variable("grade", study.Ordered, nil101(4))
+	grade.Levels = []string{"never", "rarely", "often", "always"}
+	s.vector("cut_grade", model.Cuts, -1, 0.5, 2)
+	s.law("grade", "ordered", "0.2 * x").Cutpoints = "cut_grade"
+	a := arrowsOf(t, s, 2)["x → grade"]
+	near(t, "P(often or above)", a.Values[0], logistic(0.2*a.High-0.5)-logistic(0.2*a.Low-0.5), 1e-12)
+	if a.Unsigned || !strings.Contains(a.Words, "in P(often or above) per 1") {
+		t.Errorf("%q", a.Words)
+	}
+}
+
+// A front door is painted by rule (b); the node after it too.
+func TestNodesByRuleB(t *testing.T) {
+	s := newSketch(t, 40)
+	x := spreadOut(40, -1, 1)
+	s.variable("x", study.Real, x)
+	m := s.variable("m", study.Real, x)
+	y := s.variable("y", study.Real, x)
+	m.Low, m.High, y.Low, y.High = 0, 1, 0, 1
+	s.law("m", "normal", "0.6 * x", "1")
+	s.law("y", "normal", "0.8 * m + 0.5 * x", "1") // x is carried for the arc
+	g, err := graph.New(graph.Spec{Names: []string{"x", "m", "y"}, Arrows: [][2]int{{0, 1}, {1, 2}}, Arcs: [][2]int{{0, 2}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	nodes, err := Nodes(context.Background(), s.m, g, ask("x", "y", 0, 1), s.draws(2), source(), Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	near(t, "m", nodes[0].Values[0], 0.6, 1e-9)
+	near(t, "y", nodes[1].Values[0], 0.48, 1e-9)
+	if _, err := Nodes(context.Background(), s.m, g, ask("z", "y", 0, 1), s.draws(2), source(), Options{}); err == nil {
+		t.Error("an exposure that is not there went unnoticed")
+	}
+}
+
+func TestShortNumbers(t *testing.T) {
+	for x, want := range map[float64]string{
+		1.0234: "1.02", 1.1: "1.1", 0.00052345: "0.000523", 0.0523: "0.0523", -41.62: "−41.6", 12345: "12345", 2.5e7: "2.5e+07", 0: "0",
+	} {
+		if got := short(x); got != want {
+			t.Errorf("short(%v) = %q, want %q", x, got, want)
+		}
+	}
+	for width, want := range map[float64]float64{180: 20, 100: 10, 1: 0.1, 0.7: 0.05, 9: 1, 0: 1} {
+		if got := niceStep(width); math.Abs(got-want) > 1e-12 {
+			t.Errorf("niceStep(%v) = %v, want %v", width, got, want)
+		}
+	}
+}

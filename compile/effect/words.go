@@ -21,7 +21,7 @@ func (s *simulation) words() string {
 		return "over " + rows + ", each row alike"
 	}
 	var groups []string
-	for _, p := range outermost(s.m) {
+	for _, p := range s.outer {
 		groups = append(groups, fmt.Sprintf("%s %s", grouped(len(s.m.Plates[p].Levels)), s.m.Plates[p].Name))
 	}
 	if len(groups) == 0 {

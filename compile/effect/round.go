@@ -1,0 +1,104 @@
+package effect
+
+import "math/rand/v2"
+
+// A bench is one goroutine's work space.
+type bench struct {
+	*simulation
+	w        *worker
+	weights  []float64
+	uniforms [][]float64 // per simulated step
+	changed  [][]float64 // per step: the column under the intervention
+	exposed  []float64
+	part     []float64
+	sides    [][]float64 // a round's averages, by arm
+}
+
+func newBench(s *simulation) *bench {
+	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([]float64, s.rows.n), exposed: make([]float64, s.rows.n)}
+	for _, st := range s.plan.steps {
+		b.changed = append(b.changed, make([]float64, s.rows.n))
+		n := s.rows.n
+		if st.law != nil && st.law.Plate >= 0 {
+			n = len(s.m.Plates[st.law.Plate].Levels)
+		}
+		b.uniforms = append(b.uniforms, make([]float64, n))
+	}
+	k := s.scale.parts()
+	b.part = make([]float64, k)
+	for range s.arms {
+		b.sides = append(b.sides, make([]float64, k))
+	}
+	return b
+}
+
+// round adds one replicate of draw i: all arms, with the same uniforms and
+// with their mirror images (antithetic variates), which cancel what is linear
+// in the noise of mediators.
+func (b *bench) round(i, round int) {
+	b.w.draw = b.draws[b.picked[i]]
+	b.weigh(b.seeds[i])
+	mirrors := 1
+	if b.plan.random > 0 {
+		mirrors = 2
+		rng := rand.New(rand.NewPCG(b.seeds[i], uint64(round)+1))
+		for _, u := range b.uniforms {
+			for j := range u {
+				u[j] = open(rng)
+			}
+		}
+	}
+	for a, arm := range b.arms {
+		clear(b.sides[a])
+		arm.apply(b.exposed, b.rows.columns[b.plan.exposure])
+		for mirror := range mirrors {
+			b.expect(mirror == 1)
+			for k, x := range b.part {
+				b.sides[a][k] += x / float64(mirrors)
+			}
+		}
+	}
+	k := len(b.part)
+	for a := range b.sides {
+		for j, x := range b.sides[a] {
+			b.sums[(len(b.arms)*i+a)*k+j] += x
+		}
+	}
+	b.rounds[i*b.perDraw+round] = b.summary(b.sides)
+}
+
+// open is a uniform number strictly between 0 and 1.
+func open(rng *rand.Rand) float64 { return (float64(rng.Uint64()>>11) + 0.5) / (1 << 53) }
+
+// expect fills part with the outcome's average under the exposed column.
+func (b *bench) expect(mirrored bool) {
+	w, p := b.w, b.plan
+	copy(w.columns, b.rows.columns)
+	w.columns[p.exposure] = b.exposed
+	for i, st := range p.steps {
+		if st.law == nil {
+			values := w.eval(st.computed)
+			for j := range b.changed[i] {
+				b.changed[i][j] = at(values, j)
+			}
+		} else {
+			b.look(st.variable)
+			w.simulate(b.changed[i], st.law, b.uniforms[i], mirrored)
+		}
+		w.columns[st.variable] = b.changed[i]
+	}
+	if p.outcome == nil || p.computed != nil {
+		averageOf(b.part, w.eval(p.computed), b.weights)
+		return
+	}
+	b.look(p.outcome.Variable)
+	w.expected(b.part, p.outcome, b.scale, b.weights)
+}
+
+// look shows a law the exposure that it reads: as set, or as it was observed.
+func (b *bench) look(variable int) {
+	b.w.columns[b.plan.exposure] = b.exposed
+	if b.plan.observed[variable] {
+		b.w.columns[b.plan.exposure] = b.rows.columns[b.plan.exposure]
+	}
+}

@@ -1,0 +1,207 @@
+package effect
+
+import (
+	"context"
+	"fmt"
+	"math"
+	"math/rand/v2"
+	"runtime"
+	"sync"
+)
+
+// Limits of simulation. A unit of work is one evaluation of a law at one row,
+// 20 to 50 ns.
+const (
+	defaultBudget = 5e7
+	fewestDraws   = 1000 // before rows are thinned: enough for an interval with an effective size of 400
+	fewestRows    = 2000
+	pilotDraws    = 64   // draws that show how large the simulation error is
+	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
+	rounding      = 1e-9 // of the values compared: not worth a replicate
+	moreWork      = 3    // budgets that further replicates may take
+)
+
+// quantileWork is what simulating one value costs, in units of work, where it
+// is far from one (measured).
+var quantileWork = map[string]float64{
+	"Student t": 160, "gamma": 80, "beta": 80, "negative binomial": 50, "half-t": 160, "Poisson": 12, "binomial": 20,
+}
+
+// A simulation evaluates one plan under several arms for many draws.
+type simulation struct {
+	*planner
+	plan      *plan
+	scale     *scale
+	arms      []arm
+	draws     [][]float64
+	opt       Options
+	bootstrap bool
+	summary   func(sides [][]float64) float64 // of the arms' parts
+
+	outer   []int // outermost plates, for the bootstrap
+	rows    *rowset
+	picked  []int // draws used
+	seeds   []uint64
+	perDraw int       // rounds
+	sums    []float64 // draw, arm, part: summed over rounds
+	rounds  []float64 // draw, round: the summary of that round alone
+	values  []float64
+	noise   float64 // simulation error of a value
+}
+
+// run fills values. If something is simulated, a pilot over some of the draws
+// tells how many rounds of replicates keep the simulation error small beside
+// the posterior sd.
+func (s *simulation) run(ctx context.Context, src rand.Source) error {
+	most := s.thin()
+	if s.rows.n == 0 || len(s.picked) == 0 {
+		return fmt.Errorf("there are no rows or no draws to average over")
+	}
+	if s.bootstrap {
+		s.outer = outermost(s.m)
+	}
+	s.seeds = make([]uint64, len(s.picked))
+	for i := range s.seeds {
+		s.seeds[i] = src.Uint64()
+	}
+	rounds := 1
+	if s.plan.random > 0 {
+		noise, spread, size, err := s.pilot(ctx)
+		if err != nil {
+			return err
+		}
+		if ratio := noise / (tolerance * spread); ratio > 1 && noise > rounding*size {
+			rounds = int(math.Min(float64(most), math.Ceil(ratio*ratio)))
+		}
+		s.noise = noise / math.Sqrt(float64(rounds))
+	}
+	return s.all(ctx, rounds)
+}
+
+// pilot runs two rounds of a few draws and gives the simulation error of one
+// round, the spread over draws without it, and the size of the averages.
+func (s *simulation) pilot(ctx context.Context) (noise, spread, size float64, err error) {
+	p := *s
+	p.picked, p.seeds, p.opt.Progress = nil, nil, nil
+	n := min(pilotDraws, len(s.picked))
+	for i := range n {
+		at := i * len(s.picked) / n
+		p.picked = append(p.picked, s.picked[at])
+		p.seeds = append(p.seeds, s.seeds[at])
+	}
+	if err := p.all(ctx, 2); err != nil {
+		return 0, 0, 0, err
+	}
+	within, between, mean := 0.0, 0.0, 0.0
+	for i, v := range p.values {
+		d := p.rounds[2*i] - p.rounds[2*i+1]
+		within += d * d / 2 / float64(n)
+		mean += v / float64(n)
+	}
+	for _, v := range p.values {
+		between += (v - mean) * (v - mean) / math.Max(1, float64(n-1))
+	}
+	for _, x := range p.sums {
+		size = math.Max(size, math.Abs(x))
+	}
+	return math.Sqrt(within), math.Sqrt(math.Max(0, between-within/2)), size, nil
+}
+
+// thin chooses draws and rows so that the work fits the budget, evenly and
+// without chance: draws down to fewestDraws first, then rows. It gives the
+// number of rounds that can be afforded when one does not suffice.
+func (s *simulation) thin() (most int) {
+	budget := s.opt.Budget
+	if budget <= 0 {
+		budget = defaultBudget
+	}
+	perRow := float64(len(s.arms))
+	if s.plan.random > 0 {
+		work := 1.0
+		for _, st := range s.plan.steps {
+			work++
+			if st.law != nil {
+				work += quantileWork[st.law.Family.Name]
+			}
+		}
+		perRow *= 2 * work // mirrored
+	}
+	rows := s.m.Rows.Used
+	afford := int(budget / (perRow * float64(max(rows, 1))))
+	stride := 1
+	if afford < len(s.draws) {
+		stride = (len(s.draws) + max(afford, fewestDraws) - 1) / max(afford, fewestDraws)
+	}
+	for i := 0; i < len(s.draws); i += stride {
+		s.picked = append(s.picked, i)
+	}
+	if cost := perRow * float64(rows) * float64(len(s.picked)); cost > budget {
+		rows = min(rows, max(fewestRows, int(float64(rows)*budget/cost)))
+	}
+	s.rows = rowsOf(s.m, rows)
+	return max(1, int(moreWork*budget/(perRow*float64(s.rows.n)*float64(len(s.picked)))))
+}
+
+// all evaluates that many rounds of every draw, on all cores, and sets values.
+// What a draw gives depends on its seed and rounds alone.
+func (s *simulation) all(ctx context.Context, rounds int) error {
+	s.perDraw = rounds
+	s.sums = make([]float64, len(s.picked)*len(s.arms)*s.scale.parts())
+	s.rounds = make([]float64, len(s.picked)*rounds)
+	s.values = make([]float64, len(s.picked))
+	clock := progress{tell: s.opt.Progress, of: len(s.picked)}
+	workers := min(runtime.GOMAXPROCS(0), len(s.picked))
+	var wait sync.WaitGroup
+	for g := range workers {
+		wait.Add(1)
+		go func() {
+			defer wait.Done()
+			b := newBench(s)
+			for i := g; i < len(s.picked); i += workers {
+				for r := range rounds {
+					if ctx.Err() != nil {
+						return
+					}
+					b.round(i, r)
+				}
+				clock.tick()
+			}
+		}()
+	}
+	wait.Wait()
+	sides := make([][]float64, len(s.arms))
+	for i := range s.values {
+		for a := range sides {
+			sides[a] = s.mean(i, a)
+		}
+		s.values[i] = s.summary(sides)
+	}
+	return ctx.Err()
+}
+
+// mean is the average of an arm's parts over the rounds of draw i.
+func (s *simulation) mean(i, arm int) []float64 {
+	k := s.scale.parts()
+	out := make([]float64, k)
+	for j := range out {
+		out[j] = s.sums[(len(s.arms)*i+arm)*k+j] / float64(s.perDraw)
+	}
+	return out
+}
+
+// progress counts finished work and tells it, one call at a time.
+type progress struct {
+	mu       sync.Mutex
+	tell     func(done, of int)
+	done, of int
+}
+
+func (p *progress) tick() {
+	if p.tell == nil {
+		return
+	}
+	p.mu.Lock()
+	defer p.mu.Unlock()
+	p.done++
+	p.tell(p.done, p.of)
+}
