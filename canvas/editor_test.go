@@ -91,8 +91,25 @@ func (b *bench) click(x, y float32, button desktop.MouseButton, mod fyne.KeyModi
 func (b *bench) doubleClick(x, y float32) {
 	b.click(x, y, desktop.MouseButtonPrimary, 0)
 	b.click(x, y, desktop.MouseButtonPrimary, 0)
-	p := at(x, y)
-	b.DoubleTapped(&p)
+	b.drain()
+}
+
+// Two quick clicks at different places are no double click, nor is a third.
+func TestDoubleClickNeedsOnePlace(t *testing.T) {
+	b := newBench(t, pair())
+	b.click(300, 400, desktop.MouseButtonPrimary, 0)
+	b.click(400, 400, desktop.MouseButtonPrimary, 0)
+	b.drain()
+	if b.entry.naming != nil {
+		t.Error("two clicks far apart opened the name entry")
+	}
+	b.doubleClick(500, 400)
+	b.entry.TypedKey(&fyne.KeyEvent{Name: fyne.KeyEscape})
+	b.click(500, 400, desktop.MouseButtonPrimary, 0)
+	b.drain()
+	if b.entry.naming != nil {
+		t.Error("the third click opened the name entry again")
+	}
 }
 
 func (b *bench) typeName(name string) {

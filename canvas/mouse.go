@@ -1,6 +1,8 @@
 package canvas
 
 import (
+	"time"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/driver/desktop"
 
@@ -9,12 +11,11 @@ import (
 )
 
 var (
-	_ desktop.Mouseable   = (*Editor)(nil)
-	_ desktop.Hoverable   = (*Editor)(nil)
-	_ desktop.Cursorable  = (*Editor)(nil)
-	_ fyne.Draggable      = (*Editor)(nil)
-	_ fyne.Scrollable     = (*Editor)(nil)
-	_ fyne.DoubleTappable = (*Editor)(nil)
+	_ desktop.Mouseable  = (*Editor)(nil)
+	_ desktop.Hoverable  = (*Editor)(nil)
+	_ desktop.Cursorable = (*Editor)(nil)
+	_ fyne.Draggable     = (*Editor)(nil)
+	_ fyne.Scrollable    = (*Editor)(nil)
 )
 
 // pressed is what is known of a press. Drag events carry no button and no
@@ -24,10 +25,18 @@ type pressed struct {
 	down   bool
 	window fyne.Position // of the press, on the window's canvas
 	at     draw.Point
-	before draw.Point // of the press before
+	when   time.Time
+	double bool // it follows another closely, in time and place
+	moved  bool
 	shift  bool
 	ctrl   bool
 }
+
+// A second press counts as a double click within this time and distance.
+const (
+	doubleTime  = 400 * time.Millisecond
+	doubleReach = 6 // dips
+)
 
 // modifiers are the keys held down, as the keyboard told.
 type modifiers struct{ shift, ctrl, space bool }
@@ -50,12 +59,15 @@ func buttonOf(b desktop.MouseButton) scene.Button {
 func (e *Editor) MouseDown(m *desktop.MouseEvent) {
 	e.entry.finish()
 	e.focus()
+	was := e.press
 	e.press = pressed{
 		button: buttonOf(m.Button), down: true, window: m.AbsolutePosition,
-		at: e.point(m.Position), before: e.press.at,
+		at: e.point(m.Position), when: time.Now(),
 		shift: m.Modifier&fyne.KeyModifierShift != 0,
 		ctrl:  m.Modifier&(fyne.KeyModifierControl|fyne.KeyModifierSuper) != 0,
 	}
+	e.press.double = !was.double && !was.moved && was.button == scene.Primary && e.press.button == scene.Primary &&
+		e.press.when.Sub(was.when) < doubleTime && e.press.at.Sub(was.at).Len() < doubleReach
 	e.pointer = e.press.at
 	e.handle(e.event(scene.Press))
 }
@@ -70,9 +82,15 @@ func (e *Editor) MouseUp(m *desktop.MouseEvent) {
 	e.lift()
 }
 
+// lift ends a press. Fyne's own double click waits for its main loop twice and
+// comes late when that is busy, so it is told here; and it is posted, as Fyne
+// takes the focus away from what a release has just opened.
 func (e *Editor) lift() {
 	e.press.down = false
 	e.handle(e.event(scene.Release))
+	if e.press.double && !e.press.moved {
+		e.post(func() { e.handle(e.event(scene.DoubleClick)) })
+	}
 }
 
 // Dragged implements fyne.Draggable.
@@ -81,6 +99,7 @@ func (e *Editor) Dragged(d *fyne.DragEvent) {
 		return
 	}
 	e.pointer = e.point(d.Position)
+	e.press.moved = true
 	e.handle(e.event(scene.Move))
 }
 
@@ -110,18 +129,6 @@ func (e *Editor) event(kind scene.EventKind) scene.Event {
 		Kind: kind, At: e.pointer, Button: e.press.button,
 		Shift: e.press.shift, Ctrl: e.press.ctrl, Space: e.keys.space,
 	}
-}
-
-// DoubleTapped implements fyne.DoubleTappable. Two quick clicks at different
-// places are no double click.
-func (e *Editor) DoubleTapped(p *fyne.PointEvent) {
-	const tremble = 6
-	if e.press.at.Sub(e.press.before).Len() > tremble && e.press.before != (draw.Point{}) {
-		return
-	}
-	e.pointer = e.point(p.Position)
-	e.press.button = scene.Primary
-	e.handle(e.event(scene.DoubleClick))
 }
 
 // Scrolled implements fyne.Scrollable: the wheel zooms at the pointer, a

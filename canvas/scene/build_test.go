@@ -92,6 +92,7 @@ func plates() Input {
 	return fitted(Input{
 		Study: s, Rival: r, LitPath: NoPath, Palette: Light(), Width: 640, Height: 480,
 		PlateCounts: map[string]int{"region": 6, "farm": 84, "observer": 5},
+		Selected:    Selection{Nodes: []string{"rain"}}, Hover: Target{Kind: OnNode, Node: "skill"},
 	})
 }
 

@@ -53,7 +53,7 @@ func (b *builder) drawNode(n *body) {
 	below := n.at.Y + n.h/2
 	below = b.drawRoles(n, below)
 	below = b.drawDots(n, below)
-	b.drawLevel(n, below)
+	b.drawFacts(n, below)
 	b.drawFinding(n)
 }
 
@@ -173,20 +173,22 @@ func (b *builder) drawDots(n *body, below float64) float64 {
 		Path:   draw.Polyline(draw.Point{X: left - 3*z, Y: base + 0.5}, draw.Point{X: left + st.Width + 3*z, Y: base + 0.5}),
 		Stroke: p.Muted, Width: 1, Crisp: true,
 	})
-	below = base + 2*z
+	return base + 2*z
+}
+
+// drawFacts prints small words under the node that is picked or under the
+// pointer: what is missing, and what its values belong to.
+func (b *builder) drawFacts(n *body, below float64) {
+	over := b.in.Hover.Node == n.id && (b.in.Hover.Kind == OnNode || b.in.Hover.Kind == OnEdge)
+	if n.variable == nil || !over && !b.in.Selected.HasNode(n.id) {
+		return
+	}
 	if share := b.in.Missing[n.id]; share > 0 {
 		below = b.caption(n, below, percent(share)+" missing")
 	}
-	return below
-}
-
-// drawLevel says what a coarse variable's values belong to, where its plate
-// also holds finer ones.
-func (b *builder) drawLevel(n *body, below float64) {
-	if n.variable == nil || len(n.variable.Plates) == 0 || b.zoom < dotsBelow {
-		return
+	if plates := n.variable.Plates; len(plates) > 0 {
+		b.caption(n, below, "one per "+strings.Join(plates, " × "))
 	}
-	b.caption(n, below, "one per "+strings.Join(n.variable.Plates, " × "))
 }
 
 // caption prints small words under a node; it returns where the next may go.
