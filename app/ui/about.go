@@ -19,7 +19,7 @@ func (d *desk) about() {
 		para("Free software under the BSD 3-clause licence. Set in DejaVu Sans; the window is made with Fyne.", tokenMuted),
 		row(8, space(), d.primary("Close", func() { p.close() })))
 	area := d.win.Canvas().Size()
-	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 90), width)
+	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 90), width)
 }
 
 // showKeys lists every key there is.
@@ -51,7 +51,7 @@ func (d *desk) showKeys() {
 		topRow(16, stretch(left), stretch(right)),
 		row(8, space(), d.primary("Close", func() { p.close() })))
 	area := d.win.Canvas().Size()
-	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 50), width)
+	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 50), width)
 }
 
 // turnShade changes between light and dark, and remembers it.

@@ -58,6 +58,19 @@ func (d *desk) sheetPoint(at fyne.Position) (p study.Point, ok bool) {
 	return d.editor.View().In(draw.Point{X: float64(in.X), Y: float64(in.Y)}), true
 }
 
+// showAll zooms out if something stands outside what is seen.
+func (d *desk) showAll() {
+	s := d.editor.Size()
+	const margin = 50
+	for _, at := range d.editor.Input().At {
+		p := d.editor.View().Out(at)
+		if p.X < margin || p.Y < margin/2 || p.X > float64(s.Width)-margin || p.Y > float64(s.Height)-margin {
+			d.editor.ZoomFit()
+			return
+		}
+	}
+}
+
 func (d *desk) newVariable() {
 	d.win.Canvas().Focus(d.editor)
 	d.editor.StartNaming()

@@ -5,9 +5,9 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
 
 	"arrowroot/app/words"
+	"arrowroot/compile/causal"
 	"arrowroot/compile/model"
 )
 
@@ -18,7 +18,7 @@ type banner struct {
 	d      *desk
 	object *fyne.Container
 	box    *fillBox
-	icon   *widget.Icon
+	icon   *icon
 	says   *prose
 	close  *press
 	inner  *fyne.Container
@@ -27,13 +27,13 @@ type banner struct {
 }
 
 func newBanner(d *desk) *banner {
-	b := &banner{d: d, box: bordered(tokenCard, tokenBorder, 6), icon: widget.NewIcon(iconWarn), says: newProse(sizeBody)}
-	b.close = d.iconButton(iconClose, "Put this away", func() {
+	b := &banner{d: d, box: bordered(tokenCard, tokenBorder, 6), icon: newIcon(iconWarn, tokenConfound, 18), says: newProse(sizeBody)}
+	b.close = d.foldButton(iconClose, "Put this away", func() {
 		if b.onHide != nil {
 			b.onHide()
 		}
 	})
-	b.inner = container.New(&columnLayout{padX: 10, padY: 7}, topRow(8, fixed(18, 18, b.icon), stretch(b.says), b.close))
+	b.inner = container.New(&columnLayout{padX: 10, padY: 7}, topRow(8, b.icon.object, stretch(b.says), b.close))
 	b.object = stack(b.box, b.inner)
 	b.object.Hide()
 	return b
@@ -103,7 +103,15 @@ func (d *desk) problem() *model.Problem {
 // early reports whether a problem is only that the work has just begun: no
 // data yet, or nothing drawn. The verdict strip and the Fit page say that.
 func (d *desk) early(p *model.Problem) bool {
-	return len(d.view.Study.Data) == 0 && (p.Place == "data" || p.Code == "no-data")
+	switch p.Place {
+	case "question":
+		return p.Code == "question" && d.view.Reading != nil && d.view.Reading.Verdict.Kind == causal.Incomplete
+	case "sheet":
+		return p.Code == "nothing"
+	case "data", "range", "levels", "scale":
+		return len(d.view.Study.Data) == 0
+	}
+	return false
 }
 
 func problemKey(p *model.Problem) string { return p.Code + "\x00" + p.Variable + "\x00" + p.Message }
@@ -143,6 +151,7 @@ func (b *banner) put(text string, token fyne.ThemeColorName, actions []fyne.Canv
 	}
 	b.says.set(spans...)
 	b.box.edge = token
+	b.icon.set(iconWarn, token)
 	b.object.Show()
 	b.object.Refresh()
 }

@@ -3,7 +3,6 @@ package ui
 import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-	"fyne.io/fyne/v2/widget"
 )
 
 // primary is the one filled button of a place.
@@ -69,12 +68,16 @@ func (k *kit) chip(label string, amber bool, tap func()) *press {
 }
 
 // iconButton is a small square with a glyph.
-func (k *kit) iconButton(icon fyne.Resource, tip string, tap func()) *press {
-	i := widget.NewIcon(icon)
-	p := k.press(fixed(16, 16, i), func(*press) skin { return skin{radius: 4} }, tap)
+func (k *kit) iconButton(of *icon, tip string, tap func()) *press {
+	p := k.press(of.object, func(*press) skin { return skin{radius: 4} }, tap)
 	p.padX, p.padY = 3, 3
 	p.tip = tip
 	return p
+}
+
+// foldButton is an iconButton with a chevron.
+func (k *kit) foldButton(of glyph, tip string, tap func()) *press {
+	return k.iconButton(newIcon(of, tokenMuted, 16), tip, tap)
 }
 
 // tile is a picture with a name under it, one of several to choose from.
@@ -163,12 +166,3 @@ func (t *tabs) choose(i int, tell bool) {
 
 // stack lays objects over one another.
 func stack(objects ...fyne.CanvasObject) *fyne.Container { return container.NewStack(objects...) }
-
-// setIcon changes the glyph of an icon button.
-func setIcon(p *press, icon fyne.Resource) {
-	if c, ok := p.content.(*fyne.Container); ok && len(c.Objects) == 1 {
-		if i, ok := c.Objects[0].(*widget.Icon); ok {
-			i.SetResource(icon)
-		}
-	}
-}

@@ -144,5 +144,5 @@ func (d *desk) bindDialog() {
 	}
 	fill()
 	area := d.win.Canvas().Size()
-	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 70), width)
+	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 70), width)
 }

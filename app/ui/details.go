@@ -153,7 +153,7 @@ func (x *details) update() {
 
 // head is the kind of thing, its name, and the fold button.
 func (x *details) head(s *sheaf, kind, name string, italic bool) {
-	fold := x.d.iconButton(iconFoldR, "Fold the details away", func() { x.d.frame.fold("right") })
+	fold := x.d.foldButton(iconFoldR, "Fold the details away", func() { x.d.frame.fold("right") })
 	s.keys["fold"] = fold
 	title := newLabel(name, sizeTitle, tokenInk, fyne.TextStyle{Bold: true, Italic: italic}).shrinkTo(60)
 	s.add(row(4, caption(kind), space(), fold), title)

@@ -36,7 +36,11 @@ func (x *details) variable(s *sheaf, v *study.Variable) {
 	x.head(s, kind, v.ID, v.Unmeasured)
 	for _, p := range d.view.Problems {
 		if p.Variable == v.ID {
-			s.text(p.Message, problemToken(p))
+			if d.early(&p) {
+				s.text(p.Message, tokenMuted)
+			} else {
+				s.text(p.Message, problemToken(p))
+			}
 			break
 		}
 	}
@@ -175,7 +179,7 @@ func (x *details) predictor(s *sheaf, v *study.Variable, law *study.Law) {
 		if len(wrong.spans) == 0 {
 			for _, p := range d.view.Problems {
 				if p.Variable == v.ID && p.Place == "formula" {
-					wrong.set(caretOf(law.Formula, p.Span, p.Message)...)
+					wrong.set(caretOf(or2(p.Text, law.Formula), p.Span, p.Message)...)
 					break
 				}
 			}

@@ -13,6 +13,7 @@ type drawer struct {
 	tabs   *tabs
 	pages  []page
 	fold   *press
+	arrow  *icon
 	body   *fyne.Container
 }
 
@@ -34,7 +35,8 @@ func newDrawer(d *desk) *drawer {
 		d.frame.unfold("drawer")
 		w.turn(i)
 	}
-	w.fold = d.iconButton(iconFoldD, "Fold the drawer   Ctrl+J", func() { d.frame.fold("drawer"); w.update() })
+	w.arrow = newIcon(iconFoldD, tokenMuted, 16)
+	w.fold = d.iconButton(w.arrow, "Fold the drawer   Ctrl+J", func() { d.frame.fold("drawer"); w.update() })
 	w.body = container.NewStack()
 	head := column(0, row(4, gapOf(6, 1), w.tabs.row, space(), w.fold, gapOf(4, 1)), hairline())
 	w.object = container.NewBorder(head, nil, nil, nil, w.body)
@@ -65,9 +67,9 @@ func (w *drawer) page() string { return w.pages[w.tabs.chosen].name() }
 
 func (w *drawer) update() {
 	w.pages[w.tabs.chosen].update()
-	icon := iconFoldD
-	if !w.d.frame.open("drawer") {
-		icon = iconFoldU
+	if w.d.frame.open("drawer") {
+		w.arrow.set(iconFoldD, tokenMuted)
+	} else {
+		w.arrow.set(iconFoldU, tokenMuted)
 	}
-	setIcon(w.fold, icon)
 }

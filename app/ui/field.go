@@ -77,6 +77,8 @@ func (f *field) TypedKey(e *fyne.KeyEvent) {
 		}
 		if f.escape != nil {
 			f.escape()
+		} else {
+			f.kit.closeTop()
 		}
 		return
 	}
@@ -89,9 +91,17 @@ func (f *field) MinSize() fyne.Size {
 	return m
 }
 
-// choice is a list to pick one word from.
-func (k *kit) choice(options []string, chosen string, pick func(string)) *widget.Select {
-	s := widget.NewSelect(options, nil)
+// A chooser is a list to pick one word from; Escape closes the popover it
+// stands in.
+type chooser struct {
+	widget.Select
+	kit *kit
+}
+
+func (k *kit) choice(options []string, chosen string, pick func(string)) *chooser {
+	s := &chooser{kit: k}
+	s.ExtendBaseWidget(s)
+	s.Options = options
 	s.Selected = chosen
 	s.PlaceHolder = "choose"
 	s.OnChanged = func(word string) {
@@ -99,3 +109,18 @@ func (k *kit) choice(options []string, chosen string, pick func(string)) *widget
 	}
 	return s
 }
+
+func (s *chooser) TypedKey(e *fyne.KeyEvent) {
+	if e.Name == fyne.KeyEscape {
+		s.kit.closeTop()
+		return
+	}
+	s.Select.TypedKey(e)
+}
+
+func (s *chooser) FocusGained() {
+	s.Select.FocusGained()
+	reveal(s)
+}
+
+func (s *chooser) MinSize() fyne.Size { return fyne.NewSize(48, s.Select.MinSize().Height) }

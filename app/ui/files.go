@@ -37,7 +37,7 @@ func (d *desk) orSaved(next func()) {
 				d.saveThen(next)
 			})))
 	area := d.win.Canvas().Size()
-	p = pop(d.win.Canvas(), body, fyne.NewPos((area.Width-360)/2, 120), 360)
+	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-360)/2, 120), 360)
 }
 
 func (d *desk) newStudy() {
@@ -97,7 +97,7 @@ func (d *desk) open(path string) {
 func (d *desk) forget() {
 	d.pick, d.paint, d.complaint = scene.Selection{}, "", ""
 	d.dismissed = make(map[string]bool)
-	d.agreed, d.loss = "", ""
+	d.agreed, d.loss, d.status.hint = "", "", ""
 	d.fitNext = true
 }
 

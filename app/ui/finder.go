@@ -53,7 +53,7 @@ func (k *kit) finder(c fyne.Canvas, commands commandTable, sentence func(string)
 	const width = 520
 	content := column(6, f.entry, fixed(0, finderRows*26, f.list))
 	area := c.Size()
-	f.pop = pop(c, content, fyne.NewPos((area.Width-width)/2, 64), width)
+	f.pop = k.pop(c, content, fyne.NewPos((area.Width-width)/2, 64), width)
 	f.search()
 	c.Focus(f.entry)
 	return f

@@ -43,8 +43,8 @@ type frame struct {
 
 func newFrame(k *kit, strip, left, sheet, status, right, drawer fyne.CanvasObject, now arrangement) *frame {
 	f := &frame{strip: strip, left: left, sheet: sheet, status: status, right: right, drawer: drawer, now: now}
-	f.leftStub = k.iconButton(iconFoldR, "Show the ledger", func() { f.fold("left") })
-	f.rightStub = k.iconButton(iconFoldL, "Show the details", func() { f.fold("right") })
+	f.leftStub = k.foldButton(iconFoldR, "Show the ledger", func() { f.fold("left") })
+	f.rightStub = k.foldButton(iconFoldL, "Show the details", func() { f.fold("right") })
 	f.handles[0] = newHandle(desktop.HResizeCursor, func(d fyne.Delta) {
 		f.now.Left = within(f.now.Left+d.DX, 170, 420)
 		f.changed()

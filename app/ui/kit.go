@@ -12,6 +12,8 @@ import (
 type kit struct {
 	post func(func())
 	tips *tips
+
+	popovers []*popover // opened, the last on top; some may be closed again
 }
 
 func newKit(post func(func())) *kit {

@@ -2,8 +2,6 @@ package ui
 
 import (
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/canvas"
-	"fyne.io/fyne/v2/widget"
 
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
@@ -41,7 +39,7 @@ func (l *ledger) update() {
 	add := l.d.quiet("+ variable", func() { l.d.commands.find("variable").run() })
 	add.tip = l.d.commands.find("variable").tip()
 	keys["add"] = add
-	fold := l.d.iconButton(iconFoldL, "Fold the ledger away", func() { l.d.frame.fold("left") })
+	fold := l.d.foldButton(iconFoldL, "Fold the ledger away", func() { l.d.frame.fold("left") })
 	head := row(4, gapOf(2, 1), caption("Ledger"), space(), add, fold)
 	objects := []fyne.CanvasObject{head, gapOf(1, 2)}
 	missing := 0
@@ -127,28 +125,7 @@ func (l *ledger) state(x *study.Variable) *label {
 // unmeasured one.
 func dot(x *study.Variable) fyne.CanvasObject {
 	if x.Unmeasured {
-		return fixed(14, 14, widget.NewIcon(iconRing))
+		return newIcon(iconRing, tokenMuted, 14).object
 	}
-	c := &disc{}
-	c.ExtendBaseWidget(c)
-	return c
+	return newIcon(iconDisc, tokenMuted, 14).object
 }
-
-type disc struct{ widget.BaseWidget }
-
-func (d *disc) MinSize() fyne.Size { return fyne.NewSize(14, 14) }
-func (d *disc) CreateRenderer() fyne.WidgetRenderer {
-	c := canvas.NewCircle(ink(tokenMuted))
-	return &discRenderer{c}
-}
-
-type discRenderer struct{ c *canvas.Circle }
-
-func (r *discRenderer) Layout(s fyne.Size) {
-	r.c.Resize(fyne.NewSize(9, 9))
-	r.c.Move(fyne.NewPos((s.Width-9)/2, (s.Height-9)/2))
-}
-func (r *discRenderer) MinSize() fyne.Size           { return fyne.NewSize(14, 14) }
-func (r *discRenderer) Refresh()                     { r.c.FillColor = ink(tokenMuted); r.c.Refresh() }
-func (r *discRenderer) Objects() []fyne.CanvasObject { return []fyne.CanvasObject{r.c} }
-func (r *discRenderer) Destroy()                     {}

@@ -14,7 +14,7 @@ type popover struct {
 }
 
 // pop shows content at a place of the window, moved so that all of it is seen.
-func pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, width float32) *popover {
+func (k *kit) pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, width float32) *popover {
 	inner := padded(12, 10, 8, content)
 	inner.Layout.(*columnLayout).width = width
 	p := &popover{up: widget.NewPopUp(inner, c), inner: inner, width: width}
@@ -24,6 +24,7 @@ func pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, width float
 	at.Y = within(at.Y, 8, max(8, area.Height-size.Height-16))
 	p.up.ShowAtPosition(at)
 	p.up.Resize(size)
+	k.popovers = append(k.popovers, p)
 	return p
 }
 
@@ -44,6 +45,20 @@ func (p *popover) close() {
 			p.closed()
 		}
 	}
+}
+
+// closeTop closes the popover that was opened last and still stands; false if
+// there is none.
+func (k *kit) closeTop() bool {
+	for n := len(k.popovers); n > 0; n-- {
+		p := k.popovers[n-1]
+		k.popovers = k.popovers[:n-1]
+		if p.up.Visible() {
+			p.close()
+			return true
+		}
+	}
+	return false
 }
 
 // below is the place under an object.

@@ -4,7 +4,6 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/canvas"
 	"fyne.io/fyne/v2/driver/desktop"
-	"fyne.io/fyne/v2/theme"
 	"fyne.io/fyne/v2/widget"
 )
 
@@ -160,6 +159,10 @@ func (p *press) TypedKey(e *fyne.KeyEvent) {
 		p.byMouse = false
 		p.Refresh()
 	}
+	if e.Name == fyne.KeyEscape {
+		p.kit.closeTop()
+		return
+	}
 	if p.disabled {
 		return
 	}
@@ -247,7 +250,7 @@ func (r *pressRenderer) Refresh() {
 	r.ring.StrokeColor = ink(tokenNone)
 	if p.focused && !p.byMouse {
 		r.ring.StrokeWidth = 2
-		r.ring.StrokeColor = theme.Color(theme.ColorNameFocus)
+		r.ring.StrokeColor = ink(tokenAction)
 	}
 	for _, o := range []fyne.CanvasObject{r.box, r.wash, r.bar, r.ring} {
 		o.Refresh()

@@ -31,7 +31,7 @@ func (d *desk) askQuestion(under fyne.CanvasObject) {
 	}
 	a.fill()
 	at := below(under)
-	a.pop = pop(d.win.Canvas(), a.body, at, 430)
+	a.pop = d.kit.pop(d.win.Canvas(), a.body, at, 430)
 	d.win.Canvas().Focus(a.focus)
 }
 

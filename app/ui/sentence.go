@@ -21,10 +21,8 @@ func (d *desk) sentenceOf(typed string) sentence {
 			return sentence{wrong: sentenceCase(err.Error())}
 		}
 		return sentence{does: "Draw " + strings.ReplaceAll(text, "->", "→"), run: func() {
-			empty := len(d.view.Rival.Diagram.Nodes) == 0
-			if d.do(study.TypeArrows{Rival: d.rival(), Text: lines}) && empty {
-				d.editor.ZoomReset()
-				d.editor.ZoomFit()
+			if d.do(study.TypeArrows{Rival: d.rival(), Text: lines}) {
+				d.showAll()
 			}
 		}}
 	}
@@ -128,7 +126,11 @@ func (d *desk) variableSentence(verb, rest string) sentence {
 			d.changeVariable(id, func(v *study.Variable) { v.Unmeasured = verb == "unmeasured" })
 		})
 	case "variable":
-		return sentence{does: "Add " + orNone(names), run: func() { d.do(study.TypeArrows{Rival: d.rival(), Text: strings.Join(names, "\n")}) }}
+		return sentence{does: "Add " + orNone(names), run: func() {
+			if d.do(study.TypeArrows{Rival: d.rival(), Text: strings.Join(names, "\n")}) {
+				d.showAll()
+			}
+		}}
 	case "compare":
 		from, to, ok := strings.Cut(rest, " to ")
 		if !ok {

@@ -19,7 +19,7 @@ func newDock(d *desk) *dock {
 	box := column(2)
 	for _, t := range []struct {
 		tool scene.Tool
-		icon fyne.Resource
+		icon glyph
 		id   string
 	}{
 		{scene.SelectTool, iconSelect, "tool-select"},
@@ -29,14 +29,13 @@ func newDock(d *desk) *dock {
 		{scene.PlateTool, iconPlate, "tool-plate"},
 	} {
 		c := d.commands.find(t.id)
-		p := d.iconButton(t.icon, c.tip(), c.run)
+		p := d.iconButton(newIcon(t.icon, tokenInk, 20), c.tip(), c.run)
 		p.skin = func(p *press) skin {
 			if p.selected {
 				return skin{fill: tokenTint, radius: 5}
 			}
 			return skin{radius: 5}
 		}
-		p.content = fixed(20, 20, p.content.(*fyne.Container).Objects[0])
 		p.padX, p.padY = 5, 5
 		k.tools[t.tool] = p
 		box.Add(p)

@@ -25,6 +25,7 @@ const (
 	tokenFault     fyne.ThemeColorName = "fault" // words about what stops a fit
 	tokenHover     fyne.ThemeColorName = "hoverWash"
 	tokenPressed   fyne.ThemeColorName = "pressedWash"
+	tokenFocus     fyne.ThemeColorName = "focusWash" // of stock widgets; ours have a ring
 	tokenNone      fyne.ThemeColorName = "none"
 )
 
@@ -50,6 +51,7 @@ var lightTokens = tokens{
 	tokenFault:     rgb(0xA1261B),
 	tokenHover:     {0x23, 0x27, 0x30, 0x12},
 	tokenPressed:   {0x23, 0x27, 0x30, 0x24},
+	tokenFocus:     {0x0E, 0x6B, 0x68, 0x38},
 	tokenNone:      {},
 }
 
@@ -70,6 +72,7 @@ var darkTokens = tokens{
 	tokenFault:     rgb(0xFF9A8C),
 	tokenHover:     {0xEC, 0xE9, 0xE2, 0x14},
 	tokenPressed:   {0xEC, 0xE9, 0xE2, 0x28},
+	tokenFocus:     {0x5C, 0xC2, 0xBC, 0x48},
 	tokenNone:      {},
 }
 

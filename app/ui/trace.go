@@ -50,6 +50,7 @@ type said struct {
 	Running  bool              `json:"running,omitempty"`
 	FitError string            `json:"fitError,omitempty"`
 	Status   string            `json:"status,omitempty"`
+	Popover  bool              `json:"popover,omitempty"` // something lies over the window: Escape closes it
 	Banner   string            `json:"banner,omitempty"`
 	Selected []string          `json:"selected,omitempty"`
 	Rival    string            `json:"rival"`
@@ -82,7 +83,7 @@ func (d *desk) said() said {
 	s := said{
 		Status: d.status.says.text, Running: v.Running, Stale: v.Stale, Paint: string(d.paint),
 		Rival: v.Rival.Name, Page: d.drawer.page(), Path: v.Path, Dirty: v.Dirty, Undo: v.Undo,
-		Selected: slices.Clone(d.pick.Nodes), Held: []string{},
+		Selected: slices.Clone(d.pick.Nodes), Popover: d.win.Canvas().Overlays().Top() != nil, Held: []string{},
 		Nodes: make(map[string][2]int), Buttons: make(map[string][2]int),
 	}
 	for _, a := range d.pick.Arrows {

@@ -5,7 +5,6 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/widget"
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
@@ -19,7 +18,7 @@ type strip struct {
 	object   *fyne.Container
 	capsule  *press
 	question *prose
-	icon     *widget.Icon
+	icon     *icon
 	says     *prose
 	actions  []*press
 	rows     *label
@@ -39,7 +38,7 @@ func newStrip(d *desk) *strip {
 	s.capsule.tip = "Ask for another effect   Ctrl+E"
 	s.capsule.key = "question"
 	d.capsule = s.capsule
-	s.icon = widget.NewIcon(iconAsk)
+	s.icon = newIcon(iconAsk, tokenMuted, 18)
 	s.says = newProse(sizeBody)
 	s.rows = small("")
 	s.trust = newLabel("", sizeBody, tokenAction, fyne.TextStyle{Bold: true})
@@ -48,7 +47,7 @@ func newStrip(d *desk) *strip {
 	s.fitWords = s.fit.content.(*label)
 	s.paint = d.plain("Paint ▾", func() { d.commands.find("paint").run() })
 	d.painter = s.paint
-	s.object = row(10, gapOf(2, 1), s.capsule, fixed(18, 18, s.icon), stretch(s.says), s.rows, s.trust, s.fit, s.paint, gapOf(2, 1))
+	s.object = row(10, gapOf(2, 1), s.capsule, s.icon.object, stretch(s.says), s.rows, s.trust, s.fit, s.paint, gapOf(2, 1))
 	return s
 }
 
@@ -58,23 +57,23 @@ func (s *strip) update() {
 	s.question.set(s.ask(v.Question)...)
 	s.capsule.minW = s.width(s.question.spans) + 2*s.capsule.padX + 2
 
-	icon, token := iconAsk, tokenMuted
+	mark, token, tone := iconAsk, tokenMuted, tokenMuted
 	sentence := "Nothing is asked yet: name an exposure and an outcome."
 	s.actions = nil
 	switch r := v.Reading; {
 	case v.GraphError != nil:
-		icon, token, sentence = iconWarn, tokenFault, v.GraphError.Error()
+		mark, token, tone, sentence = iconWarn, tokenFault, tokenFault, v.GraphError.Error()
 	case r == nil:
 	default:
 		sentence = r.Verdict.Sentence
 		switch r.Verdict.Kind {
 		case causal.Readable:
-			icon, token = iconGood, tokenInk
+			mark, token, tone = iconGood, tokenInk, tokenAction
 		case causal.Incomplete:
 		case causal.NoEffect:
 			token = tokenInk
 		default:
-			icon, token = iconWarn, tokenInk
+			mark, token, tone = iconWarn, tokenInk, tokenConfound
 		}
 		if r.Verdict.HasProposal {
 			ids := s.d.names(r.Verdict.Propose)
@@ -90,7 +89,7 @@ func (s *strip) update() {
 			s.actions = append(s.actions, chip)
 		}
 	}
-	s.icon.SetResource(icon)
+	s.icon.set(mark, tone)
 	first, rest, more := strings.Cut(strings.ReplaceAll(sentence, "*", ""), ". ")
 	spans := []span{{text: first, bold: true, token: token}}
 	if more {
@@ -106,8 +105,7 @@ func (s *strip) update() {
 	if m := v.Model; m != nil && m.Rows.Read > 0 {
 		s.rows.set(fmt.Sprintf("%s of %s rows", count(m.Rows.Used), count(m.Rows.Read)), tokenMuted)
 	}
-	word, tone := s.d.trustWords()
-	s.trust.set(word, tone)
+	s.trust.set(s.d.trustWords())
 	switch {
 	case v.Running:
 		s.fitWords.text = "Stop"

@@ -65,7 +65,15 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	d.win.SetMaster()
 	d.win.SetCloseIntercept(func() { d.orSaved(d.win.Close) })
 	d.win.SetOnDropped(func(at fyne.Position, dropped []fyne.URI) { w.dropped(dropped) })
-	d.win.Canvas().SetOnTypedKey(func(e *fyne.KeyEvent) { d.key(string(e.Name)) })
+	d.win.Canvas().SetOnTypedKey(func(e *fyne.KeyEvent) {
+		if e.Name == fyne.KeyEscape {
+			d.closeTop()
+			return
+		}
+		if d.win.Canvas().Overlays().Top() == nil {
+			d.key(string(e.Name))
+		}
+	})
 	app.Settings().AddListener(func(fyne.Settings) { d.repaint() })
 	s.Subscribe(w.show)
 	return w
