@@ -51,6 +51,20 @@ func FuzzParse(f *testing.F) {
 		if same := Rename(text, "a", "a"); same != text {
 			t.Fatalf("renaming a to itself changed %q to %q", text, same)
 		}
+		if there := Rename(text, "a", "zz9"); !strings.Contains(text, "zz9") {
+			if back := Rename(there, "zz9", "a"); back != text {
+				t.Fatalf("%q renamed is %q, and back %q", text, there, back)
+			}
+			if p, err := Parse(text); err == nil {
+				q, err := Parse(there)
+				if err != nil {
+					t.Fatalf("%q renamed is %q, which fails: %v", text, there, err)
+				}
+				if len(Names(q.Right)) != len(Names(p.Right)) {
+					t.Fatalf("%q renamed is %q", text, there)
+				}
+			}
+		}
 	})
 }
 

@@ -112,16 +112,30 @@ type MoveNodes struct {
 }
 
 // Apply rounds places to hundredths of a sheet unit, so that files stay short.
+// It runs at every step of a drag, so it looks at the places alone and not at
+// the whole study again.
 func (e MoveNodes) Apply(s *Study) (*Study, error) {
-	return onSheet(s, e.Rival, func(r *Rival) error {
-		for id := range e.To {
-			if r.Diagram.Node(id) == nil {
-				return notOnSheet(id, e.Rival)
-			}
+	i := slices.IndexFunc(s.Rivals, byRivalName(e.Rival))
+	if i < 0 {
+		return nil, noRival(e.Rival)
+	}
+	r := *s.Rivals[i]
+	for id, p := range e.To {
+		if r.Diagram.Node(id) == nil {
+			return nil, notOnSheet(id, e.Rival)
 		}
-		r.Layout = r.Layout.moved(e.To)
-		return nil
-	})
+		if !finite(p.X, p.Y) {
+			return nil, fmt.Errorf("%s cannot stand at (%g, %g)", id, p.X, p.Y)
+		}
+	}
+	layout := r.Layout.moved(e.To)
+	if maps.Equal(layout.At, r.Layout.At) {
+		return s, nil
+	}
+	r.Layout = layout
+	next := *s
+	next.Rivals = with(s.Rivals, i, &r)
+	return &next, nil
 }
 
 func (l *Layout) moved(to map[string]Point) *Layout {

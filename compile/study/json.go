@@ -146,6 +146,7 @@ func (p *jsonParser) value() *value {
 func (p *jsonParser) object(v *value) {
 	v.line = p.line
 	p.at++
+	lines := make(map[string]int) // of the keys
 	for first := true; ; first = false {
 		switch c := p.peek(); {
 		case c == '}':
@@ -160,11 +161,10 @@ func (p *jsonParser) object(v *value) {
 			p.fail("a key in quotes should stand here, not %s", p.seen())
 		}
 		m := member{line: p.line, key: p.string()}
-		for _, other := range v.members {
-			if other.key == m.key {
-				panic(&FileError{Line: m.line, Reason: fmt.Sprintf("%s is here twice; the first is in line %d", quote(m.key), other.line)})
-			}
+		if first, twice := lines[m.key]; twice {
+			panic(&FileError{Line: m.line, Reason: fmt.Sprintf("%s is here twice; the first is in line %d", quote(m.key), first)})
 		}
+		lines[m.key] = m.line
 		if p.peek() != ':' {
 			p.fail("a colon is missing after %s", quote(m.key))
 		}

@@ -132,8 +132,10 @@ func (r *reader) rival(o *object) {
 	d := rival.Diagram
 	named := o.get("nodes") == nil // then the arrows and arcs say what is on the sheet
 	o.list("nodes", "a node", func(o *object) { r.node(rival, o) })
+	seen := make(map[string]bool)
 	mention := func(id string, line int) {
-		if named && d.Node(id) == nil {
+		if named && !seen[id] {
+			seen[id] = true
 			n := &Node{Variable: id}
 			r.lines[n] = line
 			d.Nodes = append(d.Nodes, n)

@@ -25,18 +25,35 @@ func (f *Fault) Error() string { return f.Reason }
 // laws and formulas make sense is not asked here.
 func Check(s *Study) error {
 	c := checker{study: s}
-	c.data()
-	c.plates()
-	c.ledger()
-	c.rivals()
+	c.checkData()
+	c.checkPlates()
+	c.checkLedger()
+	c.checkRivals()
 	for _, q := range s.Questions {
-		c.question(q)
+		c.checkQuestion(q)
 	}
 	if c.fault == nil {
 		return nil
 	}
 	return c.fault
 }
+
+// repeated gives the first key that an item shares with an earlier one.
+func repeated[T any, K comparable](items []T, key func(T) K) (k K, found bool) {
+	if len(items) < 2 {
+		return k, false
+	}
+	seen := make(map[K]bool, len(items))
+	for _, item := range items {
+		if k = key(item); seen[k] {
+			return k, true
+		}
+		seen[k] = true
+	}
+	return k, false
+}
+
+func itself(text string) string { return text }
 
 // checked returns the study if it is sound. Edits end with it.
 func checked(s *Study) (*Study, error) {
@@ -47,9 +64,9 @@ func checked(s *Study) (*Study, error) {
 }
 
 type checker struct {
-	study     *Study
-	variables map[string]bool
-	fault     *Fault // the first
+	study                     *Study
+	tables, plates, variables map[string]bool // the names there are
+	fault                     *Fault          // the first
 }
 
 func (c *checker) insist(holds bool, part any, format string, args ...any) {
@@ -58,8 +75,9 @@ func (c *checker) insist(holds bool, part any, format string, args ...any) {
 	}
 }
 
-func (c *checker) data() {
+func (c *checker) checkData() {
 	seen := make(map[string]bool)
+	c.tables = seen
 	for _, d := range c.study.Data {
 		c.insist(d.Name != "", d, "a data table has no name")
 		c.insist(!seen[d.Name], d, "there are two data tables named “%s”", d.Name)
@@ -69,21 +87,29 @@ func (c *checker) data() {
 	}
 }
 
-func (c *checker) plates() {
+func (c *checker) checkPlates() {
 	seen := make(map[string]bool)
+	c.plates = seen
+	within := make(map[string]string)
 	for _, p := range c.study.Plates {
 		c.name(p, p.Name, "plate")
 		c.insist(!seen[p.Name], p, "there are two plates named %s", p.Name)
 		seen[p.Name] = true
+		within[p.Name] = p.Within
 	}
+	sound := make(map[string]bool) // plates known to end in one that is within none
 	for _, p := range c.study.Plates {
-		for n, at := 0, p; at != nil && at.Within != ""; n++ {
-			c.insist(seen[at.Within], p, "the plate %s is within %s, which is no plate", at.Name, at.Within)
-			if n > len(c.study.Plates) {
-				c.insist(false, p, "the plate %s is within itself", p.Name)
+		c.insist(p.Within == "" || seen[p.Within], p, "the plate %s is within %s, which is no plate", p.Name, p.Within)
+		way := make(map[string]bool)
+		for at := p.Name; at != "" && !sound[at]; at = within[at] {
+			if way[at] {
+				c.insist(false, p, "the plate %s is within itself", at)
 				break
 			}
-			at = c.study.Plate(at.Within)
+			way[at] = true
+		}
+		for name := range way {
+			sound[name] = true
 		}
 	}
 }
@@ -102,13 +128,14 @@ func (c *checker) name(part any, name, kind string) {
 }
 
 func (c *checker) plateNames(part any, where string, plates []string) {
-	for i, p := range plates {
-		c.insist(c.study.Plate(p) != nil, part, "%s names the plate %s, which does not exist", where, p)
-		c.insist(!slices.Contains(plates[:i], p), part, "%s names the plate %s twice", where, p)
+	for _, p := range plates {
+		c.insist(c.plates[p], part, "%s names the plate %s, which does not exist", where, p)
 	}
+	p, twice := repeated(plates, itself)
+	c.insist(!twice, part, "%s names the plate %s twice", where, p)
 }
 
-func (c *checker) ledger() {
+func (c *checker) checkLedger() {
 	seen := make(map[string]bool, len(c.study.Variables))
 	c.variables = seen
 	for _, v := range c.study.Variables {
@@ -119,11 +146,10 @@ func (c *checker) ledger() {
 		if v.Range != nil {
 			c.insist(finite(v.Range.Low, v.Range.High) && v.Range.Low < v.Range.High, v, "the plausible range of %s must go from a lower to a higher number", v.ID)
 		}
-		for i, l := range v.Levels {
-			c.insist(!slices.Contains(v.Levels[:i], l), v, "%s has the level “%s” twice", v.ID, l)
-		}
+		l, twice := repeated(v.Levels, itself)
+		c.insist(!twice, v, "%s has the level “%s” twice", v.ID, l)
 		c.plateNames(v, v.ID, v.Plates)
-		c.insist(v.Data == "" || c.study.Table(v.Data) != nil, v, "%s is bound to the data “%s”, which are not in the study", v.ID, v.Data)
+		c.insist(v.Data == "" || c.tables[v.Data], v, "%s is bound to the data “%s”, which are not in the study", v.ID, v.Data)
 		c.insist(finite(v.Divide) && v.Divide >= 0, v, "%s must be divided by a positive number", v.ID)
 		c.insist(finite(v.Nudge) && v.Nudge >= 0, v, "%s must be nudged by a positive number", v.ID)
 	}
@@ -146,7 +172,7 @@ func finite(values ...float64) bool {
 	return true
 }
 
-func (c *checker) rivals() {
+func (c *checker) checkRivals() {
 	seen := make(map[string]bool)
 	for _, r := range c.study.Rivals {
 		c.insist(r.Name != "", r, "a rival has no name")
@@ -155,11 +181,11 @@ func (c *checker) rivals() {
 		for id, p := range r.Layout.At {
 			c.insist(finite(p.X, p.Y), r, "%s has no place on the sheet of “%s”", id, r.Name)
 		}
-		c.diagram(r)
+		c.checkDiagram(r)
 	}
 }
 
-func (c *checker) diagram(r *Rival) {
+func (c *checker) checkDiagram(r *Rival) {
 	d := r.Diagram
 	on := make(map[string]bool)
 	for _, n := range d.Nodes {
@@ -167,7 +193,7 @@ func (c *checker) diagram(r *Rival) {
 		c.insist(!on[n.Variable], n, "the sheet of “%s” shows %s twice", r.Name, n.Variable)
 		on[n.Variable] = true
 		if n.Law != nil {
-			c.law(n)
+			c.checkLaw(n)
 		}
 	}
 	ends := func(part any, what, a, b string) {
@@ -185,19 +211,25 @@ func (c *checker) diagram(r *Rival) {
 		c.plateNames(a, fmt.Sprintf("the arrow %s → %s", a.From, a.To), a.VariesBy)
 	}
 	for _, a := range d.Arrows {
-		for i, w := range a.With {
+		for _, w := range a.With {
 			c.insist(drawn[[2]string{w, a.To}] && w != a.From, a, "the arrow %s → %s is a product with %s, which is no other parent of %s", a.From, a.To, w, a.To)
-			c.insist(!slices.Contains(a.With[:i], w), a, "the arrow %s → %s is a product with %s twice", a.From, a.To, w)
 		}
+		w, twice := repeated(a.With, itself)
+		c.insist(!twice, a, "the arrow %s → %s is a product with %s twice", a.From, a.To, w)
 	}
-	for i, a := range d.Arcs {
+	arcs := make(map[[2]string]bool)
+	for _, a := range d.Arcs {
 		ends(a, "an arc", a.A, a.B)
-		c.insist(find(d.Arcs[:i], byPair(a.A, a.B)) == nil, a, "the arc %s ↔ %s is drawn twice in “%s”", a.A, a.B, r.Name)
+		pair := [2]string{min(a.A, a.B), max(a.A, a.B)}
+		c.insist(!arcs[pair], a, "the arc %s ↔ %s is drawn twice in “%s”", a.A, a.B, r.Name)
+		arcs[pair] = true
 		c.plateNames(a, fmt.Sprintf("the arc %s ↔ %s", a.A, a.B), a.Plates)
 	}
-	for i, a := range d.Absent {
+	absent := make(map[[2]string]bool)
+	for _, a := range d.Absent {
 		ends(a, "an absent arrow", a.From, a.To)
-		c.insist(find(d.Absent[:i], byAbsentEnds(a.From, a.To)) == nil, a, "the absent arrow %s → %s is argued twice in “%s”", a.From, a.To, r.Name)
+		c.insist(!absent[[2]string{a.From, a.To}], a, "the absent arrow %s → %s is argued twice in “%s”", a.From, a.To, r.Name)
+		absent[[2]string{a.From, a.To}] = true
 		c.insist(!drawn[[2]string{a.From, a.To}], a, "the arrow %s → %s is drawn in “%s” and argued to be absent", a.From, a.To, r.Name)
 	}
 	if c.fault == nil && cyclic(d) {
@@ -215,18 +247,20 @@ func joined(part any, a, b string) string {
 
 var forms = [...]string{Slope, Steps, Offset}
 
-func (c *checker) law(n *Node) {
+func (c *checker) checkLaw(n *Node) {
 	l := n.Law
 	c.insist(l.Treat == "" || l.Treat == Given || l.Treat == Modelled, n, "%s is to be treated as “%s”; what can be is given or modelled", n.Variable, l.Treat)
 	c.plateNames(n, "the law of "+n.Variable, l.VariesBy)
-	for i, a := range l.Arguments {
+	for _, a := range l.Arguments {
 		c.insist(a.Name != "", n, "an argument in the law of %s has no name", n.Variable)
-		c.insist(!slices.ContainsFunc(l.Arguments[:i], func(b Argument) bool { return a.Name == b.Name }), n, "the law of %s has the argument %s twice", n.Variable, a.Name)
 	}
-	for i, p := range l.Priors {
+	name, twice := repeated(l.Arguments, func(a Argument) string { return a.Name })
+	c.insist(!twice, n, "the law of %s has the argument %s twice", n.Variable, name)
+	for _, p := range l.Priors {
 		c.insist(p.Parameter != "", n, "a prior in the law of %s is for no parameter", n.Variable)
-		c.insist(!slices.ContainsFunc(l.Priors[:i], func(b Prior) bool { return p.Parameter == b.Parameter }), n, "the law of %s has two priors for %s", n.Variable, p.Parameter)
 	}
+	name, twice = repeated(l.Priors, func(p Prior) string { return formula.Canonical(p.Parameter) })
+	c.insist(!twice, n, "the law of %s has two priors for %s", n.Variable, name)
 }
 
 // cyclic takes variables without parents away until none is left; on a cycle
@@ -288,16 +322,17 @@ func walk(arrows []*Arrow, from, to string) []string {
 	return nil
 }
 
-func (c *checker) question(q *Question) {
+func (c *checker) checkQuestion(q *Question) {
 	known := func(what, id string) {
 		c.insist(id == "" || c.variables[id], q, "the %s of a question is %s, which is not among the variables", what, id)
 	}
 	known("exposure", q.Exposure)
 	known("outcome", q.Outcome)
 	c.insist(q.Exposure == "" || q.Exposure != q.Outcome, q, "a question has %s as its exposure and its outcome", q.Exposure)
-	for i, h := range q.Held {
+	h, twice := repeated(q.Held, itself)
+	c.insist(!twice, q, "a question holds %s twice", h)
+	for _, h := range q.Held {
 		known("held variable", h)
-		c.insist(!slices.Contains(q.Held[:i], h), q, "a question holds %s twice", h)
 		c.insist(h != q.Exposure && h != q.Outcome, q, "a question holds %s, which is its exposure or outcome", h)
 	}
 	oneOf := func(what, word string, known ...string) {
