@@ -7,13 +7,33 @@
 //	graph.go      the graph: nodes, hash-consing, rebuilding
 //	op.go         the op table: one row per operation with its shape rule,
 //	              evaluation and gradient rule
-//	pass.go       the passes, one row each, and the order they must keep
-//	fold.go, collect.go, tally.go, gauss.go, gradient.go, fuse.go: a pass each
-//	verify.go     what must hold between passes (checked in tests)
+//	pass.go       the passes, one row each, the order they must keep
+//	              and why; then a file for each: fold.go and collect.go
+//	              (together "simplify"), gauss.go, tally.go, gradient.go, fuse.go
+//	verify.go     what must hold between passes; checked after each
 //	dump.go       the one text form of a graph and of a program
-//	schedule.go   stages, levels, storage
+//	schedule.go   stages, levels, where values lie, instructions
+//	elementwise.go, rows.go, dots.go, affine.go, density.go: the evaluations
 //	program.go    Program, immutable and shared
 //	evaluator.go  Evaluator, one per goroutine, and the blocked executor
+//
+// # What is made faster
+//
+// Terms that depend on data alone are computed once. Work on scalars and on
+// coarse plates is done before it is gathered to rows, and factors that are
+// the same for all rows are taken out of sums. A normal density of data with a
+// linear predictor is replaced by its sufficient statistics, and a density
+// that offers kernel.Tally goes through the distinct values of its data. A
+// linear predictor is one instruction, as are all sums and dot products over
+// one column. The rest runs in blocks of kernel.BlockRows rows, density and
+// gradient in the same go.
+//
+// # Adding an operation
+//
+// Give it a constant and a row of the table in op.go (shape rule, evaluation,
+// gradient rule), a method of Builder, a case in the slow evaluator of
+// slow_test.go and a check in opChecks of op_test.go; the tests fail until all
+// are there. If a pass should know it, that is a matter of its own.
 //
 // # Shapes
 //
@@ -34,6 +54,9 @@
 // first error, an *Error that names the operation; every method accepts the
 // zero Value and gives it back. Err tells it at any time, Program returns it.
 // So a lowering can be written straight through and checked once.
+//
+// Entries of a coarse plate to which no row leads are computed all the same; if
+// such an entry is not finite, so may the gradient be.
 //
 // # Aliasing
 //
