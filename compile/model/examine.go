@@ -19,6 +19,7 @@ func (b *builder) examine(string) {
 	b.constants()
 	b.scales()
 	for _, d := range b.drafts {
+		b.finite(d)
 		if d.law.Trials != nil {
 			b.trials(d)
 		}

@@ -179,7 +179,9 @@ func (b *builder) evaluateAt(e formula.Expr, plate, units int) []float64 {
 	return out
 }
 
-// takesSteps reports whether an arrow enters with a step for each level.
+// takesSteps reports whether an arrow enters with a step for each level. The
+// steps of an ordered parent are free here; SEMANTICS C4's monotone ones are
+// for a later version.
 func (b *builder) takesSteps(a *study.Arrow) bool {
 	switch b.variable(a.From).Scale {
 	case study.Category:

@@ -14,6 +14,7 @@ import (
 // for what lives at a plate's level (SEMANTICS A5, A8).
 func (b *builder) gather(string) {
 	order := b.used()
+	b.oneTable(order)
 	for _, id := range order {
 		b.read(b.columns[id])
 	}
@@ -88,6 +89,32 @@ func (b *builder) used() []string {
 		}
 	}
 	return order
+}
+
+// oneTable refuses laws that read two tables at once.
+func (b *builder) oneTable(order []string) {
+	first := ""
+	for _, id := range order {
+		v := b.variable(id)
+		if v.Column == "" || slices.Contains(b.bare, v) || len(b.study.Data) == 0 {
+			continue
+		}
+		switch {
+		case first == "":
+			first = id
+		case b.dataOf(id) != b.dataOf(first):
+			b.stop(Problem{Code: "two-tables", Variable: id, Place: "data",
+				Message: fmt.Sprintf("%s is in %s, but %s is in %s: this version fits one table at a time. Join the two by row before opening them.", first, b.dataOf(first), id, b.dataOf(id))})
+			return
+		}
+	}
+}
+
+func (b *builder) dataOf(id string) string {
+	if v := b.variable(id); v.Data != "" {
+		return v.Data
+	}
+	return b.study.Data[0].Name
 }
 
 // expressions lists what the user typed in a law.

@@ -336,6 +336,27 @@ var troubles = []trouble{
 		message: "attitude + hedge\n^^^^^^^^ *attitude* was not measured, so that care cannot be computed from it",
 	},
 	{
+		name: "log of zero", code: "not-finite",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * log(2 * hedge)"
+		},
+		table:   func(t *table.Table) { set(t, "hedge", 4, 0) },
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * log(2 * hedge)\n                                                                 ^^^^^^^^^^^^^^ *log(2 * hedge)* is no number in row 5, where hedge is 0",
+	},
+	{
+		name: "a known sd of zero", code: "argument-range",
+		study:   func(s *study.Study) { law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "hours - 4"}} },
+		message: "hours - 4\n^^^^^^^^^ the sd of hedge is 0 in row 2, but it must be positive",
+	},
+	{
+		name: "two tables", code: "two-tables",
+		study: func(s *study.Study) {
+			s.Data = []*study.Data{{Name: "traps"}, {Name: "weather"}}
+			s.Variables[5].Data = "weather"
+		},
+		message: "hedge is in traps, but temp is in weather: this version fits one table at a time. Join the two by row before opening them.",
+	},
+	{
 		name: "no data", code: "no-data",
 		table:   func(t *table.Table) { t.Rows = -1 }, // the test passes nil then
 		message: "There are no data to fit yet: open a table and bind its columns to the variables.",
