@@ -60,7 +60,7 @@ func poissonLogColumn(y, eta, deta, aux, rate []float64) float64 {
 	}
 	sum := s0 + s1
 	if math.IsNaN(sum) || math.IsInf(sum, 0) {
-		return notFinite(y, eta, rate, aux)
+		return notFinite(y, eta)
 	}
 	if deta != nil {
 		deta = deta[:len(eta)]
@@ -71,9 +71,9 @@ func poissonLogColumn(y, eta, deta, aux, rate []float64) float64 {
 	return sum
 }
 
-// notFinite sorts out a Poisson sum that is not finite: a NaN in gives NaN,
+// notFinite sorts out a sum over counts that is not finite: a NaN in gives NaN,
 // and everything else is impossible.
-func notFinite(y, eta, rate, aux []float64) float64 {
+func notFinite(y, eta []float64) float64 {
 	for i := range y {
 		if v := y[i] + eta[i]; v != v {
 			return v
@@ -148,6 +148,9 @@ func negBinomialLogColumn(y, eta, deta []float64, k float64, dover *float64, aux
 	}
 	if dover != nil {
 		*dover += slope
+	}
+	if math.IsNaN(sum) {
+		return notFinite(y, eta)
 	}
 	return sum
 }
