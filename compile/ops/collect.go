@@ -64,10 +64,7 @@ func (c *collector) node(n node) id {
 	case opSum, opSumOver:
 		return c.total(n)
 	}
-	if table[n.op].elementwise && n.op != opSub && n.op != opDiv {
-		return c.lifted(n)
-	}
-	if n.op == opSub || n.op == opDiv {
+	if table[n.op].elementwise {
 		return c.lifted(n)
 	}
 	return g.add(n)

@@ -154,13 +154,12 @@ func sufficient(columns [][]float64, y []float64) []float64 {
 		row = 1
 	}
 	last := work[len(work)-1]
-	for k, j := range at {
+	for k := range at {
 		reflect(work[k:], k)
-		for i := range at[k:] {
-			r[(row+k)*p+at[k+i]] = work[k+i][k]
+		for i, j := range at[k:] {
+			r[(row+k)*p+j] = work[k+i][k]
 		}
 		z[row+k] = last[k]
-		_ = j
 	}
 	rss := 0.0
 	for _, v := range last[len(at):] {
