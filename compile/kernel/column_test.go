@@ -149,3 +149,36 @@ func TestLogBetaTerm(t *testing.T) {
 		}
 	}
 }
+
+// Every length and every place of an odd value, so that groups of four, their
+// ends and values out of range between them are all met. Oracle: Exp.
+func TestExpToIsExp(t *testing.T) {
+	r := rand.New(rand.NewPCG(13, 14))
+	odd := []float64{800, -800, 709, -708, math.NaN(), math.Inf(1), math.Inf(-1), 0}
+	for n := range 40 {
+		for at := range n + 1 {
+			src, dst := make([]float64, n), make([]float64, n)
+			for i := range src {
+				src[i] = 700 * (2*r.Float64() - 1)
+				if i%2 == 0 {
+					src[i] = r.NormFloat64()
+				}
+			}
+			if at < n {
+				src[at] = odd[r.IntN(len(odd))]
+			}
+			ExpTo(dst, src)
+			for i, x := range src {
+				if math.Float64bits(dst[i]) != math.Float64bits(Exp(x)) {
+					t.Fatalf("length %d: exp(%v) at %d is %v in a column and %v alone", n, x, i, dst[i], Exp(x))
+				}
+			}
+			ExpTo(src, src)
+			for i := range src {
+				if math.Float64bits(dst[i]) != math.Float64bits(src[i]) {
+					t.Fatalf("length %d: in place %v, apart %v", n, src[i], dst[i])
+				}
+			}
+		}
+	}
+}
