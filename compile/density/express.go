@@ -106,21 +106,13 @@ func (l *lowering) express(e formula.Expr) (amount, error) {
 	case *formula.Element:
 		return l.element(e)
 	case *formula.Unary:
-		x, err := l.express(e.X)
-		return amount{l.neg(x.v, err), x.at}, err
+		return l.apply(operations["negate"], "-", e.X)
 	case *formula.Binary:
 		return l.apply(operations[string(e.Op)], string(e.Op), e.X, e.Y)
 	case *formula.Call:
 		return l.apply(operations[e.Function], e.Function, e.Args...)
 	}
 	return amount{}, fmt.Errorf("a formula part of kind %T", e)
-}
-
-func (l *lowering) neg(v ops.Value, err error) ops.Value {
-	if err != nil {
-		return 0
-	}
-	return l.b.Neg(v)
 }
 
 // value is a bare name's: a data column or a parameter.
@@ -192,10 +184,10 @@ var operations = map[string]operation{
 	"*":             {2, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Mul(x[0], x[1]) }},
 	"/":             {2, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Div(x[0], x[1]) }},
 	"^":             {2, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Pow(x[0], x[1]) }},
+	"negate":        {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Neg(x[0]) }},
 	"log":           {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Log(x[0]) }},
 	"exp":           {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Exp(x[0]) }},
 	"sqrt":          {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Sqrt(x[0]) }},
-	"square root":   {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Sqrt(x[0]) }},
 	"abs":           {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Abs(x[0]) }},
 	"logit":         {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.Logit(x[0]) }},
 	"inverse logit": {1, func(b *ops.Builder, x []ops.Value) ops.Value { return b.InvLogit(x[0]) }},

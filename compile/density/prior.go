@@ -29,7 +29,11 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 	n := coordinates(l.m, p)
 	fail := func(err error) (ops.Value, error) { return 0, &priorError{p.Name, err} }
 	if n == 0 { // one level only: nothing can move
-		l.natural[i] = l.b.Const(map[model.Shape]float64{model.Simplex: 1}[p.Shape])
+		only := 0.0
+		if p.Shape == model.Simplex {
+			only = 1
+		}
+		l.natural[i] = l.b.Const(only)
 		return l.b.Const(0), nil
 	}
 	if p.Shape == model.ByPlate {
@@ -96,8 +100,8 @@ func (l *lowering) transform(p *model.Parameter, u ops.Value, n int, args []ops.
 	case model.InverseRootPlus:
 		return l.inverseRootPlus(u), nil
 	}
-	support, from := narrower(p.Support, p.Prior.Family.Support)
-	if from == byParameter && !fixed {
+	support, cut := narrower(p.Support, p.Prior.Family.Support)
+	if cut && !fixed {
 		// A prior that is cut off has a norming constant; it may only be left
 		// out while it cannot change.
 		return placed{}, fmt.Errorf("%s reaches beyond where %s can lie; choose a distribution that does not, or fixed numbers", p.Prior.Family.Name, p.Name)
@@ -126,24 +130,17 @@ func (l *lowering) transform(p *model.Parameter, u ops.Value, n int, args []ops.
 	return placed{}, fmt.Errorf("%s is for whole numbers, and %s is none", p.Prior.Family.Name, p.Name)
 }
 
-// Whose support is the narrower.
-type narrowedBy int
-
-const (
-	byNobody narrowedBy = iota
-	byParameter
-)
-
-// narrower is the smaller of where a parameter and its prior allow values.
-func narrower(parameter, prior catalog.Support) (catalog.Support, narrowedBy) {
-	rank := map[catalog.Support]int{catalog.Reals: 1, catalog.NonNegatives: 2, catalog.Positives: 2, catalog.Unit: 3, catalog.Between: 4}
-	if rank[prior] == 0 {
-		return prior, byNobody
+// narrower is the smaller of where a parameter and its prior allow values; cut
+// says that the prior allows values that the parameter does not.
+func narrower(parameter, prior catalog.Support) (support catalog.Support, cut bool) {
+	room := map[catalog.Support]int{catalog.Reals: 3, catalog.NonNegatives: 2, catalog.Positives: 2, catalog.Unit: 1}
+	switch {
+	case prior == catalog.Between:
+		return prior, parameter != catalog.Reals // its ends are clipped
+	case room[prior] > room[parameter]:
+		return parameter, true
 	}
-	if rank[parameter] > rank[prior] {
-		return parameter, byParameter
-	}
-	return prior, byNobody
+	return prior, false
 }
 
 // placeByPlate lowers the entries of a parameter that varies by a plate:
@@ -153,36 +150,38 @@ func (l *lowering) placeByPlate(i, offset int) (ops.Value, error) {
 	p := l.m.Parameters[i]
 	plate := l.plate(level(p.Plate))
 	n := len(l.m.Plates[p.Plate].Levels)
-	mean, sd := l.b.Const(0), l.b.Const(1)
-	middle, scale := 0.0, 1.0
-	for _, part := range []struct {
-		name string
-		to   *ops.Value
-		size *float64
-	}{{p.Mean, &mean, &middle}, {p.SD, &sd, &scale}} {
-		if part.name == "" {
-			continue
-		}
-		x, err := l.express(&formula.Name{ID: part.name})
-		if err != nil || x.at != everywhere {
-			return 0, &priorError{p.Name, fmt.Errorf("%s is no single parameter", part.name)}
-		}
-		*part.to = x.v
-		if j, ok := l.params[part.name]; ok {
-			if y, ok := measure(&l.m.Parameters[j].Prior); ok && l.m.Parameters[j].Prior.On == model.Itself {
-				*part.size = y.middle
-			}
-		}
+	mean, middle, err := l.hyper(p.Mean, 0)
+	if err != nil {
+		return 0, &priorError{p.Name, err}
+	}
+	sd, scale, err := l.hyper(p.SD, 1)
+	if err != nil {
+		return 0, &priorError{p.Name, err}
 	}
 	u := l.b.Parameter(offset, plate)
 	if !p.Centred {
 		l.natural[i] = l.b.Add(mean, l.b.Mul(sd, u))
 		return l.b.Density(l.normal, u, l.b.Const(0), l.b.Const(1)), nil
 	}
-	if !(scale > 0) {
-		scale = 1
-	}
 	x := l.onLine(u, n, yardstick{middle, scale})
 	l.natural[i] = x.natural
 	return l.b.Add(l.b.Density(l.normal, x.natural, mean, sd), x.jacobian), nil
+}
+
+// hyper is the value of a by-plate parameter's mean or sd, and about where its
+// prior expects it; both are as given if nobody named a parameter.
+func (l *lowering) hyper(name string, given float64) (ops.Value, float64, error) {
+	if name == "" {
+		return l.b.Const(given), given, nil
+	}
+	x, err := l.express(&formula.Name{ID: name})
+	if err != nil || x.at != everywhere {
+		return 0, 0, fmt.Errorf("%s is no single parameter", name)
+	}
+	if i, ok := l.params[name]; ok && l.m.Parameters[i].Prior.On == model.Itself {
+		if y, ok := measure(&l.m.Parameters[i].Prior); ok {
+			return x.v, y.middle, nil
+		}
+	}
+	return x.v, given, nil
 }
