@@ -90,7 +90,25 @@ func door(err *error) {
 }
 
 func (p *jsonParser) fail(format string, args ...any) {
-	panic(&FileError{Line: p.line, Reason: fmt.Sprintf(format, args...)})
+	failAt(p.line, format, args...)
+}
+
+func failAt(line int, format string, args ...any) {
+	for i, a := range args {
+		if text, ok := a.(string); ok {
+			args[i] = clip(text)
+		}
+	}
+	panic(&FileError{Line: line, Reason: fmt.Sprintf(format, args...)})
+}
+
+// clip keeps what a file says from filling the screen.
+func clip(text string) string {
+	const most = 300
+	if len(text) <= most {
+		return text
+	}
+	return strings.ToValidUTF8(text[:most], "") + "…"
 }
 
 func (p *jsonParser) space() {
@@ -162,7 +180,7 @@ func (p *jsonParser) object(v *value) {
 		}
 		m := member{line: p.line, key: p.string()}
 		if first, twice := lines[m.key]; twice {
-			panic(&FileError{Line: m.line, Reason: fmt.Sprintf("%s is here twice; the first is in line %d", quote(m.key), first)})
+			failAt(m.line, "%s is here twice; the first is in line %d", quote(m.key), first)
 		}
 		lines[m.key] = m.line
 		if p.peek() != ':' {
@@ -209,7 +227,7 @@ func (p *jsonParser) next(closing byte, opened int) bool {
 	case 0:
 		p.fail("the file ends before the %c of line %d is closed", map[byte]byte{'}': '{', ']': '['}[closing], opened)
 	default:
-		panic(&FileError{Line: line, Reason: fmt.Sprintf("a comma or a %c is missing before %s", closing, p.seen())})
+		failAt(line, "a comma or a %c is missing before %s", closing, p.seen())
 	}
 	return false
 }

@@ -1,7 +1,6 @@
 package study
 
 import (
-	"fmt"
 	"slices"
 	"strconv"
 	"strings"
@@ -13,10 +12,6 @@ type object struct {
 	what  string // "a variable", for messages
 	value *value
 	known []string
-}
-
-func failAt(line int, format string, args ...any) {
-	panic(&FileError{Line: line, Reason: fmt.Sprintf(format, args...)})
 }
 
 func newObject(v *value, what string) *object {

@@ -5,9 +5,11 @@
 // a comparison of pointers and undo is keeping the old pointer. Read the files
 // in this order: study.go (the parts), find.go (looking them up), valid.go
 // (what must hold), edit.go and the files it names (how one study becomes the
-// next), rename.go (how a new name gets everywhere), arrows.go (arrows as
-// text), graph.go (the view that algorithms work on), read.go, write.go and
-// save.go (the .arrowroot file).
+// next), rename.go (how a new name gets everywhere), identifier.go and
+// arrows.go (IDs and arrows from what people type), graph.go (the view that
+// algorithms work on); for the .arrowroot file read.go over object.go over
+// json.go, write.go and save.go. The file is described in
+// assets/study.schema.json.
 package study
 
 // A Study is the whole document.

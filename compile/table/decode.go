@@ -19,12 +19,33 @@ func decode(data []byte) (text, note string, fault *Error) {
 	case utf8.Valid(bare):
 		text = string(bare)
 	default:
-		text, note = windows1252(bare), "not UTF-8; read as Windows-1252"
+		text, note = almostUTF8(bare)
 	}
 	if at := strings.IndexByte(text, 0); at >= 0 {
 		return "", "", &Error{Line: 1 + strings.Count(text[:at], "\n"), Reason: "there is a zero byte; this is not a text file"}
 	}
 	return text, note, nil
+}
+
+// almostUTF8 reads bytes that are not quite UTF-8: as UTF-8 with damage if more
+// of it is whole than broken, else as what spreadsheets in the West wrote
+// before.
+func almostUTF8(data []byte) (text, note string) {
+	whole, broken := 0, 0
+	for rest := data; len(rest) > 0; {
+		r, size := utf8.DecodeRune(rest)
+		switch {
+		case r == utf8.RuneError && size == 1:
+			broken++
+		case size > 1:
+			whole++
+		}
+		rest = rest[size:]
+	}
+	if whole > broken {
+		return strings.ToValidUTF8(string(data), "\ufffd"), "some bytes are not UTF-8 and now read \ufffd"
+	}
+	return windows1252(data), "not UTF-8; read as Windows-1252"
 }
 
 func utf16Text(data []byte, order binary.ByteOrder) string {

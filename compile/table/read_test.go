@@ -86,6 +86,7 @@ func TestRead(t *testing.T) {
 		{"neither name nor entries", "a,b,\n1,2,\n3,4,\n", "a: 1 3; b: 2 4"},
 		{"names that are numbers", "2001,2002\n1,2\n", "2001: 1; 2002: 2"},
 		{"Windows-1252", "a,b\ncaf\xe9,1\n\x80 5,2\n", `a: "café" "€ 5"; b: 1 2`},
+		{"UTF-8 with damage", "a,b\né,\xe9\nü,x\n", `a: "é" "ü"; b: "�" "x"`},
 		{"UTF-16", "\xff\xfea\x00,\x00b\x00\n\x001\x00,\x00\xe9\x00\n\x00", `a: 1; b: "é"`},
 	} {
 		if got := picture(mustRead(t, c.text)); got != c.want {
