@@ -6,8 +6,9 @@
 // without a check fails.
 //
 // Read kernel.go for the contract, densities.go for the list, then the file
-// of one family. Scalar functions stand in special.go, gamma.go and
-// normalcdf.go; exp.go, log.go and softplus.go hold the fast ones.
+// of one family; columns.go has the shape that most likelihoods have. Scalar
+// functions stand in special.go, gamma.go, gammaratio.go and normalcdf.go;
+// exp.go, log.go and softplus.go hold the fast ones.
 package kernel
 
 // BlockRows is the largest number of rows a kernel is called with. It fixes
