@@ -213,6 +213,11 @@ func (d *desk) fit(sure bool) {
 	if !d.canFit() {
 		return
 	}
+	if q := d.view.Question; q != nil && q.Exposure != "" && q.From == nil && q.To == nil && q.Shift == 0 {
+		if from, to := d.usualContrast(q.Exposure); from != nil {
+			d.changeQuestion(func(q *study.Question) { q.From, q.To = from, to })
+		}
+	}
 	rows := d.view.Model.Rows
 	key := fmt.Sprint(rows.Read, rows.Used, rows.Lost)
 	if rows.Used < rows.Read && !sure && d.agreed != key {

@@ -233,7 +233,8 @@ func (d *desk) fileDialog(opening bool, name string, endings []string, use func(
 	if list, err := storage.ListerForURI(storage.NewFileURI(folder)); err == nil {
 		x.SetLocation(list)
 	}
+	x.SetView(dialog.ListView)
+	x.Show()
 	size := d.win.Canvas().Size()
 	x.Resize(fyne.NewSize(min(820, size.Width-40), min(560, size.Height-40)))
-	x.Show()
 }

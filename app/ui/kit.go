@@ -13,11 +13,12 @@ type kit struct {
 	post func(func())
 	tips *tips
 
-	popovers []*popover // opened, the last on top; some may be closed again
+	onPopover func()     // one was opened or closed
+	popovers  []*popover // opened, the last on top; some may be closed again
 }
 
 func newKit(post func(func())) *kit {
-	return &kit{post: post, tips: newTips(post)}
+	return &kit{post: post, tips: newTips(post), onPopover: func() {}}
 }
 
 // ink is the present colour of a token.

@@ -7,10 +7,10 @@ import (
 
 // A popover is a panel above the window that a click outside or Escape closes.
 type popover struct {
-	up     *widget.PopUp
-	inner  *fyne.Container
-	width  float32
-	closed func()
+	up      *widget.PopUp
+	inner   *fyne.Container
+	width   float32
+	changed func()
 }
 
 // pop shows content at a place of the window, moved so that all of it is seen.
@@ -25,6 +25,8 @@ func (k *kit) pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, wi
 	p.up.ShowAtPosition(at)
 	p.up.Resize(size)
 	k.popovers = append(k.popovers, p)
+	p.changed = k.onPopover
+	k.onPopover()
 	return p
 }
 
@@ -41,9 +43,7 @@ func (p *popover) resize() {
 func (p *popover) close() {
 	if p.up.Visible() {
 		p.up.Hide()
-		if p.closed != nil {
-			p.closed()
-		}
+		p.changed()
 	}
 }
 

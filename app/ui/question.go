@@ -1,13 +1,16 @@
 package ui
 
 import (
+	"math"
 	"slices"
+	"strconv"
 	"strings"
 
 	"fyne.io/fyne/v2"
 
 	"arrowroot/app/words"
 	"arrowroot/compile/study"
+	"arrowroot/compile/table"
 )
 
 // asker is the popover in which a question is put together. It edits a draft
@@ -52,7 +55,7 @@ func (a *asker) fill() {
 		}
 	}
 	s.add(caption("Question"))
-	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) { a.read(); q.Exposure, q.From, q.To = w, nil, nil; again() })
+	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) { a.read(); q.Exposure = w; q.From, q.To = d.usualContrast(w); a.from = nil; again() })
 	s.choice("outcome", "on", ids, q.Outcome, func(w string) { a.read(); q.Outcome = w; again() })
 	a.from, a.to, a.shift = nil, nil, nil
 	x := d.view.Study.Variable(q.Exposure)
@@ -163,12 +166,47 @@ func shiftText(q *study.Question) string {
 // stays, unless it is the same.
 func (d *desk) setExposure(id string) {
 	d.changeQuestion(func(q *study.Question) {
-		q.Exposure, q.From, q.To, q.Shift = id, nil, nil, 0
+		q.Exposure, q.Shift = id, 0
+		q.From, q.To = d.usualContrast(id)
 		if q.Outcome == id {
 			q.Outcome = ""
 		}
 		q.Held = drop(q.Held, id)
 	})
+}
+
+// usualContrast is a first pair of values to compare, until the user says
+// others: the outer eighths of the data, or the ends of the levels.
+func (d *desk) usualContrast(id string) (from, to *study.Setting) {
+	v := d.view.Study.Variable(id)
+	switch {
+	case v == nil || v.Unmeasured:
+		return nil, nil
+	case len(v.Levels) > 1:
+		return &study.Setting{Word: v.Levels[0]}, &study.Setting{Word: v.Levels[len(v.Levels)-1]}
+	case v.Scale == study.Binary:
+		return &study.Setting{Number: 0}, &study.Setting{Number: 1}
+	}
+	c := d.view.Table.Column(v.Column)
+	if v.Column == "" || c == nil || c.Kind != table.Numeric {
+		return nil, nil
+	}
+	q := table.Quantiles(divided(c.Numbers, v.Divide), 4) // at 1/8, 3/8, 5/8 and 7/8
+	if len(q) != 4 || !(q[0] < q[3]) {
+		return nil, nil
+	}
+	low, high := rounded(q[0], q[3]-q[0]), rounded(q[3], q[3]-q[0])
+	return &study.Setting{Number: low}, &study.Setting{Number: high}
+}
+
+// rounded cuts x to a tenth of the order of size: 43.7 of a width of 20 is 44.
+func rounded(x, size float64) float64 {
+	unit := math.Pow(10, math.Floor(math.Log10(size))-1)
+	r := math.Round(x/unit) * unit
+	if short, err := strconv.ParseFloat(strconv.FormatFloat(r, 'g', 6, 64), 64); err == nil {
+		return short // 0.30000000000000004 is 0.3
+	}
+	return r
 }
 
 func (d *desk) setOutcome(id string) {

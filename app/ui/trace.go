@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"os"
 	"slices"
+	"time"
 
 	"fyne.io/fyne/v2"
 
@@ -19,9 +20,14 @@ const TraceVariable = "ARROWROOT_TRACE"
 
 // A trace appends to a file; nil is no trace.
 type trace struct {
-	file *os.File
-	last string
+	file    *os.File
+	last    string
+	pending bool
 }
+
+// traceDelay lets a frame be painted first: Fyne knows the place of a new
+// control only then.
+const traceDelay = 80 * time.Millisecond
 
 func newTrace() *trace {
 	path := os.Getenv(TraceVariable)
@@ -65,10 +71,21 @@ type said struct {
 
 var kindWords = []string{"incomplete", "confounded", "readable", "over-held", "no set", "no effect"}
 
+// note writes a line in a moment, if anything has changed by then.
 func (t *trace) note(d *desk) {
-	if t == nil || d.view == nil {
+	if t == nil || t.pending {
 		return
 	}
+	t.pending = true
+	time.AfterFunc(traceDelay, func() {
+		d.post(func() {
+			t.pending = false
+			t.write(d)
+		})
+	})
+}
+
+func (t *trace) write(d *desk) {
 	line, err := json.Marshal(d.said())
 	if err != nil || string(line) == t.last {
 		return

@@ -40,6 +40,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 		kit: newKit(post), app: app, session: s, dismissed: make(map[string]bool), fitNext: true,
 		win: app.NewWindow("Arrowroot"), editor: canvas.NewEditor(post), trace: newTrace(),
 	}
+	d.onPopover = func() { d.trace.note(d) }
 	d.commands = commandsOf(d)
 	w := &Window{desk: d}
 	d.view = s.View()
