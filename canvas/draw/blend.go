@@ -1,6 +1,7 @@
 package draw
 
 import (
+	"encoding/binary"
 	"image"
 
 	"github.com/golang/freetype/raster"
@@ -29,18 +30,22 @@ func clearBand(dst *image.RGBA, band image.Rectangle, c Color) {
 func over(pix []uint8, c Color, share uint32) {
 	a := (uint32(c.A)*share + 127) / 255
 	if a == 255 {
-		for i := 0; i+3 < len(pix); i += 4 {
-			pix[i], pix[i+1], pix[i+2], pix[i+3] = c.R, c.G, c.B, 255
+		pixel := uint32(c.R) | uint32(c.G)<<8 | uint32(c.B)<<16 | 255<<24
+		for len(pix) >= 4 {
+			binary.LittleEndian.PutUint32(pix, pixel)
+			pix = pix[4:]
 		}
 		return
 	}
 	r, g, b := uint32(c.R)*a+127, uint32(c.G)*a+127, uint32(c.B)*a+127
 	rest := 255 - a
-	for i := 0; i+3 < len(pix); i += 4 {
-		pix[i] = uint8((uint32(pix[i])*rest + r) / 255)
-		pix[i+1] = uint8((uint32(pix[i+1])*rest + g) / 255)
-		pix[i+2] = uint8((uint32(pix[i+2])*rest + b) / 255)
-		pix[i+3] = uint8((uint32(pix[i+3])*rest + 255*a + 127) / 255)
+	for len(pix) >= 4 {
+		p := pix[:4:4]
+		p[0] = uint8((uint32(p[0])*rest + r) / 255)
+		p[1] = uint8((uint32(p[1])*rest + g) / 255)
+		p[2] = uint8((uint32(p[2])*rest + b) / 255)
+		p[3] = uint8((uint32(p[3])*rest + 255*a + 127) / 255)
+		pix = pix[4:]
 	}
 }
 

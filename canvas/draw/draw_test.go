@@ -149,7 +149,9 @@ func TestOutside(t *testing.T) {
 		&Text{At: Point{-30, 25}, Text: "far away to the left", Size: 12, Color: red},
 		&Text{At: Point{20, 5000}, Text: "below", Size: 12, Color: red},
 		&Text{At: Point{20, 20}, Text: "huge", Size: 4000, Color: red},
-		&Discs{Centres: []Point{{-40, -40}, {50, 50}}, Radius: 5, Color: red},
+		&Discs{Centres: []Point{{-40, -40}, {50, 50}, {1e300, 2}, {math.NaN(), 2}}, Radius: 5, Color: red},
+		&Shape{Path: Polyline(Point{0, 0}, Point{1e300, 2}, Point{math.Inf(1), math.NaN()}), Stroke: red, Width: 3},
+		&Text{At: Point{math.NaN(), 1e300}, Text: "nowhere", Size: 12, Color: red},
 	)
 	Raster(l, 1)
 	Raster(l, 4)

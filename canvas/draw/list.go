@@ -5,8 +5,9 @@
 // Lengths are device-independent pixels (dips), x to the right, y down; the
 // painter multiplies by the scale of the screen. Read list.go (what a list
 // holds), path.go (curves), text.go and font.go (text and its measure), then
-// paint.go with stroke.go and glyph.go (the raster painter), svg.go (paper)
-// and the pictures: density.go, intervals.go, dots.go, trace.go, thumb.go.
+// paint.go with stroke.go, glyph.go and blend.go (the raster painter), svg.go
+// (paper), and the pictures: axis.go with density.go, intervals.go and
+// trace.go, dots.go, thumb.go.
 package draw
 
 import "image/color"

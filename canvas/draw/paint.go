@@ -104,6 +104,10 @@ func (p *Painter) prepare(view image.Rectangle, l *List, scale float64) {
 	}
 }
 
+// farthest is how far from the image, in device pixels, a shape may reach; one
+// that reaches further is not painted.
+const farthest = 200_000
+
 func (p *Painter) prepareShape(view image.Rectangle, s *Shape, scale float64) {
 	width := s.Width * scale
 	if s.Stroke.A != 0 {
@@ -113,6 +117,9 @@ func (p *Painter) prepareShape(view image.Rectangle, s *Shape, scale float64) {
 		}
 	}
 	bounds := s.Path.Bounds().Grow(2 * (s.Width + 1))
+	if !(max(-bounds.X, -bounds.Y, bounds.X+bounds.W, bounds.Y+bounds.H)*scale < farthest) {
+		return // NaN too
+	}
 	seen := image.Rect(
 		int(math.Floor(bounds.X*scale)), int(math.Floor(bounds.Y*scale)),
 		int(math.Ceil((bounds.X+bounds.W)*scale)), int(math.Ceil((bounds.Y+bounds.H)*scale)))
@@ -200,10 +207,11 @@ func (p *Painter) prepareText(view image.Rectangle, t *Text, scale float64) {
 		}
 		x -= w
 	}
-	y := int(math.Round(t.At.Y * scale))
-	if y < view.Min.Y-int(size) || y > view.Max.Y+int(2*size) {
-		return
+	base := math.Round(t.At.Y * scale)
+	if !(base > float64(view.Min.Y)-size && base < float64(view.Max.Y)+2*size && math.Abs(x) < farthest) {
+		return // NaN too
 	}
+	y := int(base)
 	face := typefaces[t.Face]()
 	for _, r := range t.Text {
 		g := face.glyph(r)
@@ -220,6 +228,9 @@ func (p *Painter) prepareDiscs(view image.Rectangle, d *Discs, scale float64) {
 		return
 	}
 	for _, c := range d.Centres {
+		if !(max(math.Abs(c.X), math.Abs(c.Y))*scale < farthest) {
+			continue // NaN too
+		}
 		x, y := int(math.Round(c.X*scale*4)), int(math.Round(c.Y*scale*4))
 		m := p.masks.find(maskKey{disc: true, shift: uint8(x&3 | y&3<<2), size: uint16(r)})
 		p.addMask(m, x>>2, y>>2, d.Color)

@@ -19,7 +19,7 @@ func WriteSVG(w io.Writer, l *List) error {
 		number(l.Width), number(l.Height), number(l.Width), number(l.Height))
 	s.printf(" font-family=\"'DejaVu Sans Condensed','DejaVu Sans',sans-serif\">\n")
 	if l.Background.A != 0 {
-		s.printf("<rect width=\"100%%\" height=\"100%%\"%s/>\n", paint("fill", l.Background))
+		s.printf("<rect width=\"%s\" height=\"%s\"%s/>\n", number(l.Width), number(l.Height), paint("fill", l.Background))
 	}
 	for i, item := range l.Items {
 		switch it := item.(type) {

@@ -3,10 +3,11 @@
 // turns pointer and key events into study edits, and Arrange finds places for
 // nodes.
 //
-// Read scene.go (what goes in), geometry.go (where things stand), build.go
-// with nodes.go, arrows.go, paths.go and plates.go (the picture), hit.go (what
-// the pointer meets), hand.go (the tools), naming.go (typed names) and
-// arrange.go (the layout).
+// Read scene.go and paint.go (what goes in), geometry.go and curve.go (where
+// things stand), build.go with nodes.go, arrows.go, paths.go, plates.go and
+// preview.go (the picture), hit.go (what the pointer meets), event.go, hand.go
+// and keys.go (the tools), pick.go and naming.go (selections and typed names),
+// arrange.go (the layout), fit.go, and palette.go with color.go.
 //
 // Positions come in two kinds: sheet units, in which nodes are placed and
 // saved (study.Point), and dips of the widget (draw.Point). A View joins them.
