@@ -34,6 +34,44 @@ func TestWriteGivesTheFileBack(t *testing.T) {
 	}
 }
 
+// A change of one part is a change of one to three lines, so that version
+// control can merge the work of two people.
+func TestOneChangeIsAFewLines(t *testing.T) {
+	s := mustRead(t, example(t))
+	law := *s.Rival(nest).Diagram.Node("bees").Law
+	law.Family = "Poisson"
+	for _, c := range []struct {
+		edit Edit
+		most int // lines taken out and put in
+	}{
+		{AddArrow{nest, Arrow{From: "soil", To: "bees"}}, 3},
+		{RemoveArrow{nest, "hedge", "flowers"}, 1},
+		{RemoveArrow{nest, "attitude", "hedge"}, 3},
+		{ChangeArrow{nest, "hours", "bees", Arrow{From: "hours", To: "bees", Why: "longer out"}}, 2},
+		{ChangeLaw{nest, "bees", &law}, 2},
+		{MoveNodes{nest, map[string]Point{"hedge": {1, 2}}}, 2},
+		{AddVariable{Variable{ID: "wasps"}}, 3},
+		{Hold{0, "soil", false}, 2},
+		{SetTitle{"Hedges"}, 2},
+	} {
+		next := apply(t, s, c.edit)
+		count := make(map[string]int)
+		for _, line := range strings.Split(string(Write(s)), "\n") {
+			count[line]--
+		}
+		for _, line := range strings.Split(string(Write(next)), "\n") {
+			count[line]++
+		}
+		changed := 0
+		for _, n := range count {
+			changed += max(n, -n)
+		}
+		if changed == 0 || changed > c.most {
+			t.Errorf("%s changes %d lines, want at most %d", c.edit.Label(), changed, c.most)
+		}
+	}
+}
+
 func TestReadIsLiberalWhereNothingElseCanBeMeant(t *testing.T) {
 	loose := `{"questions": [{"exposure": "dose", "outcome": "ill", "from": "1.5", "to": 2.0, "held": "age", "as": "Ratio"},
 	  {"exposure": "arm", "outcome": "ill", "from": 1, "to": "2", "held": []}],

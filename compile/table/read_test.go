@@ -80,6 +80,8 @@ func TestRead(t *testing.T) {
 		{"a stray percent sign", "a,b\n10,1\n20%,1\n30,1\n", "a: 10 !20% 30; b: 1 1 1"},
 		{"empty lines", "a,b\n\n1,2\n\n", "a: 1; b: 2"},
 		{"one column with an empty entry inside", "a\n1\n\n3\n\n", "a: 1 · 3"},
+		{"one column with decimal commas", "a\n1,5\n2,25\n", "a: 1.5 2.25"},
+		{"one column with commas in prose", "who\nTarn, Ida\nOtt, Per\n", `who: "Tarn, Ida" "Ott, Per"`},
 		{"no rows", "a,b\n", "a: ; b: "},
 		{"names twice", "a,a,b\n1,2,3\n", "a: 1; a (2): 2; b: 3"},
 		{"no name", ",b\n1,2\n", "column 1: 1; b: 2"},

@@ -125,14 +125,23 @@ func separatorOf(text string, given byte) (rest string, separator byte) {
 	if len(sample) > 1<<16 {
 		sample = sample[:1<<16]
 	}
-	best, evenest, most := byte(','), 0.0, 1
+	best, evenest, most := byte(0), 0.0, 1
 	for _, c := range separators {
 		even, fields := evenness(sample, c)
 		if fields > 1 && (even > evenest || even == evenest && fields > most) {
 			best, evenest, most = c, even, fields
 		}
 	}
-	return text, best
+	if best != 0 {
+		return text, best
+	}
+	// The first line has one name: commas further down are decimal or prose.
+	for _, c := range [...]byte{',', ';', '|', '\t'} {
+		if strings.IndexByte(sample, c) < 0 {
+			return text, c
+		}
+	}
+	return text, ','
 }
 
 // evenness is the share of the first 200 records that have as many fields as
