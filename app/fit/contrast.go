@@ -81,16 +81,22 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 	if e.Crude, err = oneLaw(ctx, req, q, model.Crude, "crude", watch); err != nil {
 		return nil, err
 	}
-	e.Crude.Association = !causal.ValidAdjustment(g, x, y, nil)
 	if len(held.Held) > 0 {
 		if e.Adjusted, err = oneLaw(ctx, req, held, model.Held, "held", watch); err != nil {
 			return nil, err
 		}
-	} else {
+	} else if e.Crude != nil {
 		same := *e.Crude
 		e.Adjusted = &same
 	}
-	e.Adjusted.Association = !e.HeldValid
+	if e.Crude != nil {
+		e.Crude.Association = !causal.ValidAdjustment(g, x, y, nil)
+	}
+	if e.Adjusted != nil {
+		e.Adjusted.Association = !e.HeldValid
+	} else {
+		e.Notes = append(e.Notes, "The run was stopped before there was a held number to compare with.")
+	}
 
 	kind, district, reason := causal.InterventionCase(g, x, y)
 	switch {
@@ -103,7 +109,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		for i, v := range district {
 			names[i] = g.Names[v]
 		}
-		c, err := effect.Simulate(ctx, full.Model, kind, names, q, full.Pooled(), source(req, "full"), effect.Options{})
+		c, err := effect.Simulate(context.WithoutCancel(ctx), full.Model, kind, names, q, full.Pooled(), source(req, "full"), effect.Options{})
 		var not *effect.NotSimulated
 		switch {
 		case errors.As(err, &not):
@@ -114,24 +120,31 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 			e.Full = number(c, full, req)
 		}
 	}
-	if e.Full != nil && e.HeldValid {
+	if e.Full != nil && e.Adjusted != nil && e.HeldValid {
 		gap := math.Abs(e.Full.Centre - e.Adjusted.Centre)
 		e.LawsDisagree = gap > disagreement*math.Hypot(e.Full.Spread, e.Adjusted.Spread)
 	}
 	return e, nil
 }
 
-// oneLaw fits the outcome's law alone and gives its contrast.
+// oneLaw fits the outcome's law alone and gives its contrast; nil if ctx is
+// cancelled before there are draws.
 func oneLaw(ctx context.Context, req *Request, q study.Question, kind model.Kind, purpose string, watch func(infer.Progress)) (*Number, error) {
+	if ctx.Err() != nil {
+		return nil, nil
+	}
 	m, problems := model.Build(req.Study, req.Rival, q, req.Table, kind)
 	if m == nil || model.Stops(problems) {
 		return nil, &Blocked{problems}
 	}
 	f, err := sampleModel(ctx, m, req, purpose, watch)
+	if errors.Is(err, ErrNoDraws) {
+		return nil, nil
+	}
 	if err != nil {
 		return nil, err
 	}
-	c, err := effect.FromLaw(ctx, m, q, f.Pooled(), source(req, purpose), effect.Options{})
+	c, err := effect.FromLaw(context.WithoutCancel(ctx), m, q, f.Pooled(), source(req, purpose), effect.Options{})
 	if err != nil {
 		return nil, err
 	}

@@ -60,7 +60,7 @@ type Result struct {
 	Arrows      []ArrowPaint
 	Nodes       []NodePaint
 	Fingerprint string // of the full model: a result is stale when the study's differs
-	Cut         bool   // the run was cancelled and its draws kept
+	Cut         bool   // the run was cancelled and what it had was kept
 	Took        time.Duration
 }
 
@@ -94,7 +94,8 @@ var ErrNoDraws = errors.New("cancelled in warm-up: there are no draws to keep")
 
 // Run fits the request. A *Blocked error lists what stops it. When ctx is
 // cancelled the draws so far are kept: the result comes with Cut set, or
-// ErrNoDraws if the warm-up was not over.
+// ErrNoDraws if the warm-up was not over. Crude and held numbers that need
+// fits of their own are then left out.
 func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result, error) {
 	began := time.Now()
 	g, err := req.Study.Graph(req.Rival)
@@ -112,20 +113,17 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	}
 	r := &Result{
 		Rival: req.Rival, Question: req.Question, Seed: req.Seed, Full: full,
-		Fingerprint: m.Fingerprint(), Cut: full.Cut,
-	}
-	// What follows is quick beside sampling; it is done even after a cancel,
-	// so that draws that were kept can be read.
-	after := ctx
-	if full.Cut {
-		after = context.WithoutCancel(ctx)
+		Fingerprint: m.Fingerprint(),
 	}
 	if asked(g, q) {
-		if r.Effect, err = contrasts(after, &req, g, full, watch); err != nil {
+		if r.Effect, err = contrasts(ctx, &req, g, full, watch); err != nil {
 			return nil, fmt.Errorf("effect of %s on %s: %w", q.Exposure, q.Outcome, err)
 		}
 	}
-	if err := r.paint(after, g, q); err != nil {
+	r.Cut = full.Cut || ctx.Err() != nil
+	// Paint is quick beside sampling; it is done even after a cancel, so that
+	// draws that were kept can be read.
+	if err := r.paint(context.WithoutCancel(ctx), g, q); err != nil {
 		return nil, fmt.Errorf("paint: %w", err)
 	}
 	r.Took = time.Since(began)

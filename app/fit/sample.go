@@ -97,10 +97,13 @@ func sampleModel(ctx context.Context, m *model.Model, req *Request, purpose stri
 
 func advance(ctx context.Context, d *density.Density, runs []*blockRun, req *Request, watch func(infer.Progress)) error {
 	w := newWatcher(runs, watch)
+	w.expect(max(req.Draws, roundSteps))
 	for steps := 0; ; {
+		// A fixed length is sampled in rounds too, so that a cancel finds
+		// draws of every chain and block.
 		round := roundSteps
 		if req.Draws > 0 {
-			round = min(req.Draws-steps, maxSteps)
+			round = min(round, req.Draws-steps)
 		}
 		w.expect(steps + round)
 		for _, r := range runs {
@@ -109,8 +112,11 @@ func advance(ctx context.Context, d *density.Density, runs []*blockRun, req *Req
 			}
 		}
 		steps += round
-		if req.Draws > 0 {
+		switch {
+		case steps == req.Draws:
 			return nil
+		case req.Draws > 0:
+			continue
 		}
 		worst, name := math.Inf(1), ""
 		for _, r := range runs {
