@@ -38,3 +38,35 @@ func BenchmarkProblems(b *testing.B) {
 		}
 	}
 }
+
+// BenchmarkRows builds a small model of a large table.
+func BenchmarkRows(b *testing.B) {
+	const rows = 1_000_000
+	tab := newTable("t", rows)
+	var variables []*study.Variable
+	for i := range 5 {
+		v := &study.Variable{ID: fmt.Sprintf("v%d", i), Scale: study.Real}
+		v.Column = v.ID
+		values := make([]float64, rows)
+		for r := range values {
+			values[r] = float64(r * (i + 3) % 101)
+		}
+		numbers(tab, v.ID, values...)
+		variables = append(variables, v)
+	}
+	farm := make([]int32, rows)
+	names := make([]string, 100)
+	for i := range farm {
+		farm[i] = int32(i % 100)
+	}
+	for i := range names {
+		names[i] = fmt.Sprint("farm ", i)
+	}
+	words(tab, "farm", farm, names...)
+	s := sheet(variables, "v0 -> v1; v0 -> v4; v1 -> v4; v2 -> v4; v3 -> v4", map[string]*study.Law{"v4": {VariesBy: []string{"farm"}}})
+	for b.Loop() {
+		if m, problems := Build(s, "R", study.Question{Exposure: "v0", Outcome: "v4"}, tab, Full); m == nil {
+			b.Fatal(messages(problems))
+		}
+	}
+}

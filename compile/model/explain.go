@@ -35,11 +35,12 @@ func (b *builder) explainOne(d *draft) {
 	at := b.at[d.variable.ID]
 	v := m.Variables[at]
 	d.law = &Law{Variable: at, Family: d.family, Plate: v.Plate, Typed: d.formula != nil}
+	offsets, _ := typedParts(d.user.Formula, d.variable.ID)
 	for _, a := range d.arrows {
 		if b.kind == Full || b.drawn(a) {
 			d.law.Drawn = append(d.law.Drawn, b.at[a.From])
 		}
-		if a.Form != "offset" {
+		if a.Form != "offset" && !slices.Contains(offsets, a.From) {
 			d.terms++
 		}
 	}
@@ -417,6 +418,9 @@ func (b *builder) argue(d *draft) {
 		case predicted:
 		case d.given[i] != nil:
 			d.law.Arguments[i] = b.resolve(d, d.given[i])
+			if n, ok := d.given[i].(*formula.Name); ok && a.Support == catalog.Positives {
+				b.keepPositive(d, n.ID)
+			}
 		case f.Link == catalog.Cumulate:
 			d.law.Cutpoints = b.model.Parameters[b.parameter(meaning{role: cutPoints, child: d.variable.ID})].Name
 		case f.Predicted < 0:
@@ -426,6 +430,22 @@ func (b *builder) argue(d *draft) {
 		default:
 			d.law.Arguments[i] = named(b.model.Parameters[b.parameter(meaning{role: argument, child: d.variable.ID, at: i})].Name)
 		}
+	}
+}
+
+// keepPositive has a user's parameter stay where the argument that it serves
+// can be.
+func (b *builder) keepPositive(d *draft, id string) {
+	_, i := b.model.Name(id)
+	if i < 0 || b.model.Parameters[i].Prior.Family == nil {
+		return
+	}
+	p := b.model.Parameters[i]
+	p.Support = catalog.Positives
+	fixed := !slices.ContainsFunc(p.Prior.Arguments, func(e formula.Expr) bool { return len(formula.Names(e)) > 0 })
+	if p.Prior.Family.Support == catalog.Reals && !fixed {
+		b.stop(Problem{Code: "prior", Variable: d.variable.ID, Place: "prior",
+			Message: fmt.Sprintf("%s must be positive, and a %s prior reaches below 0; half-normal does not.", id, p.Prior.Family.Name)})
 	}
 }
 

@@ -214,47 +214,38 @@ func (b *builder) selectRows(order []string) {
 	for i := range keep {
 		keep[i] = true
 	}
-	lose := func(name string, missing func(row int) bool) {
+	lost := func(name string, rows int) {
+		if rows > 0 {
+			m.Rows.Lost = append(m.Rows.Lost, Loss{Variable: name, Rows: rows})
+		}
+	}
+	for _, id := range order {
+		if c := b.columns[id]; c.computed == nil {
+			lost(id, drop(keep, c.values, false))
+		}
+	}
+	for _, id := range order { // only rows that its parents have left
+		if c := b.columns[id]; c.computed != nil {
+			lost(id, drop(keep, c.values, true))
+		}
+	}
+	for _, p := range b.plates {
+		if !p.used {
+			continue
+		}
 		n := 0
-		for i := range keep {
-			if missing(i) {
+		for i, l := range p.of {
+			if l < 0 {
 				keep[i] = false
 				n++
 			}
 		}
-		if n > 0 {
-			m.Rows.Lost = append(m.Rows.Lost, Loss{Variable: name, Rows: n})
-		}
-	}
-	for _, id := range order {
-		c := b.columns[id]
-		if c.computed == nil { // its parents lose the row
-			lose(id, func(i int) bool { return math.IsNaN(c.values[i]) })
-		}
-	}
-	for _, id := range order {
-		c := b.columns[id]
-		if c.computed != nil {
-			n := 0
-			for i := range keep {
-				if keep[i] && (math.IsNaN(c.values[i]) || math.IsInf(c.values[i], 0)) {
-					keep[i] = false
-					n++
-				}
-			}
-			if n > 0 {
-				m.Rows.Lost = append(m.Rows.Lost, Loss{Variable: id, Rows: n})
-			}
-		}
-	}
-	for _, p := range b.plates {
-		if p.used {
-			lose(p.name, func(i int) bool { return p.of[i] < 0 })
-		}
+		lost(p.name, n)
 	}
 	if b.kind != Full {
 		b.keepToFull(keep)
 	}
+	m.Rows.Index = make([]int, 0, len(keep))
 	for i, k := range keep {
 		if k {
 			m.Rows.Index = append(m.Rows.Index, i)
@@ -264,6 +255,20 @@ func (b *builder) selectRows(order []string) {
 	if m.Rows.Used == 0 {
 		b.noRows()
 	}
+}
+
+// drop takes the rows out in which a value is missing or not finite, and
+// counts them; with left, only those that were still in.
+func drop(keep []bool, values []float64, left bool) int {
+	n := 0
+	for i, x := range values {
+		if x-x == 0 || left && !keep[i] { // x − x is NaN for NaN and ±Inf
+			continue
+		}
+		keep[i] = false
+		n++
+	}
+	return n
 }
 
 // keepToFull drops the rows that the full model drops, if there is one.
@@ -328,12 +333,15 @@ func (b *builder) keepVariable(c *column) {
 		out.Plate = b.plates[c.plate].index
 	}
 	if c.values != nil {
-		if out.Plate < 0 {
+		switch {
+		case out.Plate < 0 && m.Rows.Used == m.Rows.Read:
+			out.Values = c.values // never written to: columns are shared
+		case out.Plate < 0:
 			out.Values = make([]float64, m.Rows.Used)
 			for i, row := range m.Rows.Index {
 				out.Values[i] = c.values[row]
 			}
-		} else {
+		default:
 			p := m.Plates[out.Plate]
 			out.Values = make([]float64, len(p.Levels))
 			for i, row := range m.Rows.Index {
