@@ -12,7 +12,8 @@
 //	              (together "simplify"), gauss.go, tally.go, gradient.go, fuse.go
 //	verify.go     what must hold between passes; checked after each
 //	dump.go       the one text form of a graph and of a program
-//	schedule.go   stages, levels, where values lie, instructions
+//	schedule.go   what a schedule is; levels.go and emit.go make it: first
+//	              stages, then where values lie, and the instructions
 //	elementwise.go, rows.go, dots.go, affine.go, density.go: the evaluations
 //	program.go    Program, immutable and shared
 //	evaluator.go  Evaluator, one per goroutine, and the blocked executor
