@@ -98,14 +98,14 @@ var ErrNoDraws = errors.New("cancelled in warm-up: there are no draws to keep")
 // fits of their own are then left out.
 func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result, error) {
 	began := time.Now()
-	g, err := req.Study.Graph(req.Rival)
-	if err != nil {
-		return nil, err
-	}
 	q := req.question()
 	m, problems := model.Build(req.Study, req.Rival, q, req.Table, model.Full)
 	if m == nil || model.Stops(problems) {
 		return nil, &Blocked{problems}
+	}
+	g, err := req.Study.Graph(req.Rival)
+	if err != nil {
+		return nil, err
 	}
 	full, err := sampleModel(ctx, m, &req, "full", watch)
 	if err != nil {
