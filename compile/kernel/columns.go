@@ -44,6 +44,42 @@ func normalColumn(y, mean, dmean []float64, inv float64) (ss float64) {
 	return s0 + s1
 }
 
+// normalEffects adds up z² and z for z = (y - mean)/sd, one mean for all, and
+// derivatives by y: the law of effects that vary by group.
+func normalEffects(y, dy []float64, mean, inv float64) (ss, sz float64) {
+	var ss1, sz1 float64
+	i := 0
+	if dy == nil {
+		for ; i+1 < len(y); i += 2 {
+			z0, z1 := (y[i]-mean)*inv, (y[i+1]-mean)*inv
+			ss += z0 * z0
+			sz += z0
+			ss1 += z1 * z1
+			sz1 += z1
+		}
+	} else {
+		dy = dy[:len(y)]
+		for ; i+1 < len(y); i += 2 {
+			z0, z1 := (y[i]-mean)*inv, (y[i+1]-mean)*inv
+			ss += z0 * z0
+			sz += z0
+			ss1 += z1 * z1
+			sz1 += z1
+			dy[i] -= z0 * inv
+			dy[i+1] -= z1 * inv
+		}
+	}
+	if i < len(y) {
+		z := (y[i] - mean) * inv
+		ss += z * z
+		sz += z
+		if dy != nil {
+			dy[i] -= z * inv
+		}
+	}
+	return ss + ss1, sz + sz1
+}
+
 // poissonLogColumn is the Poisson density of prepared counts; a y that is no
 // count has been prepared as +Inf.
 func poissonLogColumn(y, eta, deta, aux, rate []float64) float64 {

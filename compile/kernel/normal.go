@@ -18,6 +18,19 @@ func normalBlock(n int, y []float64, args [][]float64, dy []float64, dargs [][]f
 			return -0.5*ss - float64(n)*(math.Log(s)+halfLog2Pi)
 		}
 	}
+	if len(sd) == 1 && len(mean) == 1 && isColumn(y, n) {
+		if s := sd[0]; s > 0 {
+			inv := 1 / s
+			ss, sz := normalEffects(y, dy, mean[0], inv)
+			if dmean != nil {
+				dmean[0] += sz * inv
+			}
+			if dsd != nil {
+				dsd[0] += (ss - float64(n)) * inv
+			}
+			return -0.5*ss - float64(n)*(math.Log(s)+halfLog2Pi)
+		}
+	}
 	iy, im, is := mask(y), mask(mean), mask(sd)
 	last, inv, logsd := math.NaN(), 0.0, 0.0
 	sum := 0.0
