@@ -52,7 +52,7 @@ func (r reader) column(fields []span) *Column {
 	if codes >= 2 && 100*codes >= numbers {
 		return r.words(fields) // 007 is nobody's measurement
 	}
-	if numbers == 0 && len(c.Strange) > 0 || float64(numbers) < mostly*float64(numbers+len(c.Strange)) {
+	if !c.mostlyNumbers() {
 		return r.words(fields)
 	}
 	switch {
@@ -63,10 +63,20 @@ func (r reader) column(fields []span) *Column {
 	default:
 		r.strangeWhere(c, fields, func(text string) bool { return strings.HasSuffix(text, "%") })
 	}
+	if signs > 0 && !c.mostlyNumbers() {
+		return r.words(fields)
+	}
 	for i := range c.Strange {
 		c.Strange[i].Text = strings.Clone(c.Strange[i].Text) // lets go of the file's text
 	}
 	return c
+}
+
+// mostlyNumbers reports whether few enough entries are strange. A column
+// without entries counts as numbers.
+func (c *Column) mostlyNumbers() bool {
+	entries := len(c.Numbers) - c.Missing
+	return float64(entries-len(c.Strange)) >= mostly*float64(entries)
 }
 
 // padded reports whether digits alone begin with a zero, as numbers of houses,
