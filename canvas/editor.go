@@ -82,16 +82,8 @@ func (e *Editor) SetInput(in scene.Input) {
 	}
 	e.in = in
 	if other {
-		v, known := e.views[in.Rival.Name]
-		e.adrift = !known
-		e.in.View = v
-		e.in.Selected = scene.Selection{}
-		e.in.Hover = scene.Target{}
-		if was.Rival == nil || len(was.Rival.Diagram.Nodes) == 0 || !known {
-			e.fit()
-		}
-	} else if e.adrift && !e.hand.Busy() && nodes(was.Rival) == 0 {
-		e.fit()
+		e.in.Selected, e.in.Hover = scene.Selection{}, scene.Target{}
+		e.look(was)
 	}
 	e.changed()
 	if !e.in.Selected.Equal(was.Selected) && e.OnSelect != nil {
@@ -99,11 +91,31 @@ func (e *Editor) SetInput(in scene.Input) {
 	}
 }
 
-func nodes(r *study.Rival) int {
-	if r == nil || r.Diagram == nil {
-		return 0
+// look chooses the view of a rival that was not on the sheet: the same if its
+// nodes stand where those of the last one stood, so that flipping between
+// rivals shows the difference; else the one it was left with; else all of it.
+func (e *Editor) look(was scene.Input) {
+	if was.Rival != nil && alike(was.At, e.in.At) {
+		return
 	}
-	return len(r.Diagram.Nodes)
+	v, known := e.views[e.in.Rival.Name]
+	e.adrift = !known
+	if known {
+		e.in.View = v
+	} else {
+		e.fit()
+	}
+}
+
+// alike reports whether most nodes stand in the same place.
+func alike(a, b map[string]study.Point) bool {
+	same := 0
+	for id, p := range b {
+		if q, ok := a[id]; ok && p == q {
+			same++
+		}
+	}
+	return 2*same > len(b)
 }
 
 // SetPalette takes other colours.
@@ -266,6 +278,7 @@ func (e *Editor) handle(event scene.Event) {
 }
 
 func (e *Editor) edit(edit study.Edit) {
+	e.adrift = false // what was drawn stays where it was drawn
 	if e.OnEdit != nil {
 		e.OnEdit(edit)
 	}

@@ -355,3 +355,33 @@ func TestPaintsDevicePixels(t *testing.T) {
 		t.Error(c.Bounds())
 	}
 }
+
+// Flipping between rivals that stand alike keeps the view; another study is
+// shown whole; what is drawn stays where it was drawn.
+func TestViewOfRivals(t *testing.T) {
+	s := pair()
+	other := *s.Rivals[0]
+	other.Name = "two"
+	s.Rivals = append(s.Rivals, &other)
+	b := newBench(t, s)
+	b.SetView(scene.View{Zoom: 2, Pan: draw.Point{X: 5, Y: 6}})
+	was := b.View()
+	b.SetInput(scene.Input{Study: s, Rival: s.Rivals[1]})
+	if b.View() != was {
+		t.Errorf("a rival that stands alike: view %v, was %v", b.View(), was)
+	}
+	far := &study.Rival{Name: "three", Diagram: s.Rivals[0].Diagram, Layout: &study.Layout{At: map[string]study.Point{"hedge": {X: 5000, Y: 0}, "bees": {X: 5400, Y: 0}}}}
+	b.SetInput(scene.Input{Study: s, Rival: far})
+	r, ok := b.surface.mapNow().NodeRect("bees")
+	if !ok || r.X < 0 || r.X+r.W > 800 {
+		t.Errorf("a rival that stands elsewhere: bees at %v", r)
+	}
+	b = newBench(t, study.New())
+	b.adrift = true // as a new window has it
+	b.doubleClick(600, 401)
+	b.typeName("soil")
+	b.window.Resize(fyne.NewSize(820, 520))
+	if r, _ := b.surface.mapNow().NodeRect("soil"); r.Centre() != (draw.Point{X: 600, Y: 400}) {
+		t.Errorf("soil went to %v", r.Centre())
+	}
+}

@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"maps"
 	"math"
 	"slices"
 
@@ -275,7 +276,7 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 		if to[h.target.Node] == h.places[h.target.Node] || in.Rival == nil {
 			return Answer{Preview: none}
 		}
-		return Answer{Preview: none, Edit: study.MoveNodes{Rival: in.Rival.Name, To: to}}
+		return Answer{Preview: none, Edit: nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})}
 	case gripLink:
 		a := h.connect(in)
 		a.Preview = none
@@ -358,21 +359,31 @@ func spanned(a, b draw.Point) draw.Rect {
 }
 
 // nailed adds to an edit the places of nodes that stand where the automatic
-// layout put them, so that drawing never makes the rest of the sheet jump.
+// layout put them, so that no edit by hand makes the rest of the sheet jump.
 func nailed(in *Input, edit study.Edit) study.Edit {
-	if in.Rival == nil {
+	places := in.loose()
+	if len(places) == 0 {
 		return edit
 	}
-	loose := make(map[string]study.Point)
+	if move, ok := edit.(study.MoveNodes); ok {
+		maps.Copy(places, move.To)
+		return study.MoveNodes{Rival: move.Rival, To: places}
+	}
+	return study.Several{Name: edit.Label(), Edits: []study.Edit{study.MoveNodes{Rival: in.Rival.Name, To: places}, edit}}
+}
+
+// loose gives the places of nodes that have none in the rival's layout.
+func (in *Input) loose() map[string]study.Point {
+	if in.Rival == nil {
+		return nil
+	}
+	places := make(map[string]study.Point)
 	for id, p := range in.layout() {
 		if in.Rival.Layout == nil {
-			loose[id] = p
+			places[id] = p
 		} else if _, ok := in.Rival.Layout.At[id]; !ok {
-			loose[id] = p
+			places[id] = p
 		}
 	}
-	if len(loose) == 0 {
-		return edit
-	}
-	return study.Several{Name: edit.Label(), Edits: []study.Edit{study.MoveNodes{Rival: in.Rival.Name, To: loose}, edit}}
+	return places
 }

@@ -74,7 +74,7 @@ func (s *script) do(e study.Edit) {
 
 func (s *script) tell(line string) { s.told = append(s.told, line) }
 
-func (s *script) type_(text string) {
+func (s *script) enter(text string) {
 	s.t.Helper()
 	if s.name == nil {
 		s.t.Fatal("no name is asked for")
@@ -128,11 +128,11 @@ func (s *script) expect(lines ...string) {
 func TestSketch(t *testing.T) {
 	s := newScript(t, study.New())
 	s.play(Event{Kind: DoubleClick, At: draw.Point{X: 200, Y: 200}})
-	s.type_("hedge")
+	s.enter("hedge")
 	s.drag(Primary, false, s.rim("hedge"), draw.Point{X: 420, Y: 200})
-	s.type_("flowers")
+	s.enter("flowers")
 	s.drag(Primary, false, s.rim("flowers"), draw.Point{X: 640, Y: 200})
-	s.type_("bees")
+	s.enter("bees")
 	s.hand.Take(CauseTool)
 	s.drag(Primary, false, s.node("hedge"), s.node("bees"))
 	s.expect("Add hedge", "Draw hedge → flowers", "Draw flowers → bees", "Draw hedge ↔ bees")
@@ -256,20 +256,43 @@ func TestMenuAndOpen(t *testing.T) {
 	}
 }
 
-// Drawing on a sheet that was arranged automatically moves nothing.
+// No edit by hand on a sheet that was arranged automatically moves anything
+// but what is in the hand.
 func TestNailed(t *testing.T) {
-	st := hedgerows()
-	st.Rivals[0].Layout = &study.Layout{}
-	s := newScript(t, st)
-	before := s.in.layout()
-	s.play(Event{Kind: DoubleClick, At: draw.Point{X: 850, Y: 560}})
-	s.type_("rain")
-	for id, p := range before {
-		if q := s.in.layout()[id]; q != p {
-			t.Errorf("%s jumped from %v to %v", id, p, q)
+	for name, edit := range map[string]func(s *script){
+		"new variable": func(s *script) {
+			s.play(Event{Kind: DoubleClick, At: draw.Point{X: 850, Y: 560}})
+			s.enter("rain")
+		},
+		"move": func(s *script) {
+			s.drag(Primary, false, s.node("soil"), draw.Point{X: 850, Y: 560})
+		},
+		"nudge": func(s *script) {
+			s.in.Selected.Nodes = []string{"soil"}
+			s.play(Event{Kind: Key, Key: "Down", Ctrl: true})
+		},
+		"delete": func(s *script) {
+			s.in.Selected.Nodes = []string{"soil"}
+			s.key("Delete")
+		},
+		"arrow": func(s *script) {
+			s.drag(Primary, false, s.rim("soil"), s.node("bees"))
+		},
+	} {
+		st := hedgerows()
+		st.Rivals[0].Layout = &study.Layout{}
+		s := newScript(t, st)
+		before := s.in.layout()
+		edit(s)
+		if len(s.told) != 1 {
+			t.Errorf("%s: told %q", name, s.told)
+		}
+		for id, q := range s.in.layout() {
+			if p, was := before[id]; was && id != "soil" && q != p {
+				t.Errorf("%s: %s jumped from %v to %v", name, id, p, q)
+			}
 		}
 	}
-	s.expect("Add rain")
 }
 
 func TestZoomAt(t *testing.T) {
@@ -308,17 +331,17 @@ func TestNaming(t *testing.T) {
 	}
 	s.in.Study, s.in.Rival = next, next.Rivals[0]
 	s.name = &Naming{At: study.Point{X: 8, Y: 8}}
-	s.type_("soil") // of the ledger, back on the sheet
+	s.enter("soil") // of the ledger, back on the sheet
 	s.name = &Naming{At: study.Point{X: 8, Y: 8}}
-	s.type_("soil")
+	s.enter("soil")
 	s.name = &Naming{From: "soil"}
-	s.type_("bees")
+	s.enter("bees")
 	s.name = &Naming{Variable: "soil"}
-	s.type_("bees")
+	s.enter("bees")
 	s.name = &Naming{Variable: "soil"}
-	s.type_("soil")
+	s.enter("soil")
 	s.name = &Naming{}
-	s.type_("?")
+	s.enter("?")
 	s.expect("Add soil", "refused: soil is on the sheet already", "Draw soil → bees", "refused: there is a variable bees already", "refused: a name needs at least one letter")
 	if n := len(s.in.Study.Variables); n != 7 {
 		t.Errorf("%d variables in the ledger", n)

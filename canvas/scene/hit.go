@@ -29,8 +29,7 @@ const (
 // before plates; among lines the nearest counts.
 func (m *Map) Hit(p draw.Point) Target {
 	for _, n := range slices.Backward(m.nodes) {
-		d := n.depth(p)
-		if d <= -rimInside {
+		if n.depth(p) <= -min(rimInside, 0.18*n.h) {
 			return Target{Kind: OnNode, Node: n.id}
 		}
 	}

@@ -26,7 +26,7 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 		return h.escape(in)
 	case e.Key == "Delete" || e.Key == "BackSpace":
 		if edit := Remove(in.Rival, in.Selected); edit != nil {
-			return Answer{Edit: edit, Select: &Selection{}}
+			return Answer{Edit: nailed(in, edit), Select: &Selection{}}
 		}
 		return Answer{}
 	case h.grip == gripKeys && e.Key == "Return":
@@ -139,7 +139,7 @@ func nudge(in *Input, d draw.Point) Answer {
 	if len(to) == 0 || in.Rival == nil {
 		return Answer{}
 	}
-	return Answer{Edit: study.MoveNodes{Rival: in.Rival.Name, To: to}}
+	return Answer{Edit: nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})}
 }
 
 // first is the node that the keyboard begins at: the exposure or the first.
