@@ -49,6 +49,10 @@ func (c *collector) node(n node) id {
 		if g.fixed[y] || g.nodes[y].plate == Scalar && n.plate != Scalar {
 			return g.make(opMul, x, g.make(opDiv, g.constant(1), y))
 		}
+	case opPow:
+		if v, ok := c.power(n.args[0], n.args[1]); ok {
+			return v
+		}
 	case opAdd:
 		return c.sum(n)
 	case opMul:
@@ -68,6 +72,25 @@ func (c *collector) node(n node) id {
 		return c.lifted(n)
 	}
 	return g.add(n)
+}
+
+// power writes the powers that formulas have most without the general one.
+func (c *collector) power(x, y id) (id, bool) {
+	g := c.g
+	if g.nodes[y].op != opConst {
+		return 0, false
+	}
+	switch g.nodes[y].c {
+	case 1:
+		return x, true
+	case 2:
+		return g.make(opSquare, x), true
+	case 3:
+		return g.make(opMul, x, g.make(opSquare, x)), true
+	case -1:
+		return g.make(opDiv, g.constant(1), x), true
+	}
+	return 0, false
 }
 
 // coarser tells whether work on the gathered value's plate is worth less than

@@ -89,19 +89,26 @@ var opChecks = map[op]func(b *bench) Value{
 	opMul:       twoArgs(func(b *bench, x, y Value) Value { return b.Mul(x, y, x) }, anyNumber, anyNumber),
 	opSub:       twoArgs((*bench).sub, anyNumber, anyNumber),
 	opDiv:       twoArgs(func(b *bench, x, y Value) Value { return b.Div(x, y) }, anyNumber, positive),
-	opPow:       twoArgs(func(b *bench, x, y Value) Value { return b.Pow(x, y) }, positive, anyNumber),
-	opMin:       twoArgs(func(b *bench, x, y Value) Value { return b.Min(x, y) }, anyNumber, anyNumber),
-	opMax:       twoArgs(func(b *bench, x, y Value) Value { return b.Max(x, y) }, anyNumber, anyNumber),
-	opNeg:       unary(func(b *bench, x Value) Value { return b.Neg(x) }, anyNumber),
-	opExp:       unary(func(b *bench, x Value) Value { return b.Exp(x) }, anyNumber),
-	opLog:       unary(func(b *bench, x Value) Value { return b.Log(x) }, positive),
-	opLogit:     unary(func(b *bench, x Value) Value { return b.Logit(x) }, betweenZeroOne),
-	opInvLogit:  unary(func(b *bench, x Value) Value { return b.InvLogit(x) }, anyNumber),
-	opSoftplus:  unary(func(b *bench, x Value) Value { return b.Softplus(x) }, anyNumber),
-	opSqrt:      unary(func(b *bench, x Value) Value { return b.Sqrt(x) }, positive),
-	opInvSqrt:   unary(func(b *bench, x Value) Value { return b.InvSqrt(x) }, positive),
-	opSquare:    unary(func(b *bench, x Value) Value { return b.Square(x) }, anyNumber),
-	opAbs:       unary(func(b *bench, x Value) Value { return b.Abs(x) }, anyNumber),
+	opPow: func(b *bench) Value {
+		general := twoArgs(func(b *bench, x, y Value) Value { return b.Pow(x, y) }, positive, anyNumber)(b)
+		for _, y := range []float64{1, 2, 3, -1, 0.5, 0} {
+			x := func(x Value) Value { return b.weighed(b.Pow(positive(b, x), b.Const(y))) }
+			general = b.Add(general, x(b.s), x(b.v), x(b.r))
+		}
+		return general
+	},
+	opMin:      twoArgs(func(b *bench, x, y Value) Value { return b.Min(x, y) }, anyNumber, anyNumber),
+	opMax:      twoArgs(func(b *bench, x, y Value) Value { return b.Max(x, y) }, anyNumber, anyNumber),
+	opNeg:      unary(func(b *bench, x Value) Value { return b.Neg(x) }, anyNumber),
+	opExp:      unary(func(b *bench, x Value) Value { return b.Exp(x) }, anyNumber),
+	opLog:      unary(func(b *bench, x Value) Value { return b.Log(x) }, positive),
+	opLogit:    unary(func(b *bench, x Value) Value { return b.Logit(x) }, betweenZeroOne),
+	opInvLogit: unary(func(b *bench, x Value) Value { return b.InvLogit(x) }, anyNumber),
+	opSoftplus: unary(func(b *bench, x Value) Value { return b.Softplus(x) }, anyNumber),
+	opSqrt:     unary(func(b *bench, x Value) Value { return b.Sqrt(x) }, positive),
+	opInvSqrt:  unary(func(b *bench, x Value) Value { return b.InvSqrt(x) }, positive),
+	opSquare:   unary(func(b *bench, x Value) Value { return b.Square(x) }, anyNumber),
+	opAbs:      unary(func(b *bench, x Value) Value { return b.Abs(x) }, anyNumber),
 	opGather: func(b *bench) Value {
 		index := make([]int32, groupRows)
 		for i := range index {
