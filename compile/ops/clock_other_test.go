@@ -4,7 +4,7 @@ package ops
 
 import "time"
 
-var start = time.Now()
+var began = time.Now()
 
 // ownSeconds is the time of the wall clock, the best there is here.
-func ownSeconds() float64 { return time.Since(start).Seconds() }
+func ownSeconds() float64 { return time.Since(began).Seconds() }
