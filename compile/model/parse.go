@@ -156,6 +156,8 @@ func (b *builder) declare() {
 			id := canonicalParameter(p.Parameter)
 			if m, ok := b.scope[id]; ok && b.kind != Full && aboutArrows(m.role) {
 				continue // of a drawn arrow's slope; this model's slopes are others
+			} else if ok && b.kind != Full && m.role == baseline && n.Law.Formula != "" {
+				continue // of the formula's baseline; this model's parents are centred
 			}
 			if d == nil && b.kind == Full && b.scope[id] == (meaning{}) && b.variable(n.Variable).Computed != "" {
 				continue

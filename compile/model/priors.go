@@ -135,7 +135,10 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		fromData := p.Prior.FromData
 		p.Prior = b.normal(0, round(w/(1.96*root*reach)))
 		p.Prior.FromData = fromData
-		p.Why = d.reason() + "; the product taken as a parent"
+		p.Why = d.reason() + "; the product taken as a parent" + seenRange(second)
+		if m.role == product {
+			p.Why += seenRange(first)
+		}
 	case baselineBy, slopeBy:
 		p.Shape = ByPlate
 		p.Plate, p.Entries = b.levelsOf(m.plate)
@@ -163,7 +166,7 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		p.Unit, p.Support = b.unit(d, m.parent), catalog.Positives
 		p.Prior = b.halfNormal(round(w / (1.96 * root * b.rangeOf(parent)) / 2))
 		p.Prior.FromData = d.span.fromData || !parent.RangeGiven
-		p.Why = "half the default sd of " + b.symbol(meaning{role: slope, child: m.child, parent: m.parent})
+		p.Why = "half the default sd of " + b.symbol(meaning{role: slope, child: m.child, parent: m.parent}) + "; " + d.span.words + seenRange(parent)
 	case cutPoints: // C4
 		p.Shape, p.Size = Cuts, max(len(v.Levels)-1, 0)
 		for k := 1; k < len(v.Levels); k++ {

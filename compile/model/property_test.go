@@ -29,6 +29,12 @@ func anyStudy(t *rapid.T) (*study.Study, *table.Table, study.Question) {
 	for i := range n {
 		v := &study.Variable{ID: fmt.Sprintf("v%d", i), Scale: rapid.SampledFrom(study.Scales[:]).Draw(t, "scale")}
 		v.Column = v.ID
+		if rapid.IntRange(0, 2).Draw(t, "range") == 0 {
+			v.Range = &study.Range{Low: 0, High: 12}
+			if v.Scale == study.Proportion {
+				v.Range.High = 1
+			}
+		}
 		v.Unmeasured = i > 0 && i < n-1 && rapid.IntRange(0, 4).Draw(t, "unmeasured") == 0
 		if rapid.Bool().Draw(t, "unit") {
 			v.Unit = "kg"
@@ -177,6 +183,9 @@ func checkStatement(t *rapid.T, m *Model) {
 			if !ok || math.IsNaN(x.Value) || math.IsInf(x.Value, 0) || p.Prior.Family.Arguments[i].Name == "sd" && x.Value <= 0 {
 				t.Fatalf("%s: argument %d of its prior is %s", p.Name, i, formula.Format(a))
 			}
+		}
+		if p.Prior.FromData != strings.Contains(p.Why, "seen in the data") {
+			t.Fatalf("%s: from data %v, but its reason is %q", p.Name, p.Prior.FromData, p.Why)
 		}
 		if p.Size != max(len(p.Entries), 1) && p.Shape != Scalar {
 			t.Fatalf("%s has size %d and entries %v", p.Name, p.Size, p.Entries)

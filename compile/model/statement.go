@@ -366,7 +366,7 @@ func (w *writer) priors() {
 			l.Right = w.prior(p)
 		}
 		if p.Prior.FromUser {
-			l.Reason = "given"
+			l.Reason = "stated in the study"
 		}
 		w.line(l)
 	}
