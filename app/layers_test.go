@@ -14,8 +14,8 @@ import (
 // marked ! must not reach Fyne, even indirectly. It stands in DEVELOPERS.md too.
 const layers = `
 !compile/graph !compile/formula !compile/table !compile/kernel !infer !assets :
-!canvas/draw :
-!compile/study    : compile/graph
+!canvas/draw !canvas/internal/golden :
+!compile/study    : compile/graph compile/formula
 !compile/causal   : compile/graph
 !compile/ops      : compile/kernel
 !compile/catalog  : compile/kernel
