@@ -187,7 +187,7 @@ func (r *randomGraph) factor(p Plate) Value {
 
 // TestRandomGraphs compares, on graphs written at random, the program with the
 // slow evaluator, its gradient with differences along random directions, and
-// all passes with none and with all but one.
+// all passes with none, with all but one and with one alone.
 func TestRandomGraphs(t *testing.T) {
 	graphs := 40
 	if os.Getenv("ARROWROOT_LONG") != "" {
@@ -271,6 +271,8 @@ func TestRandomGraphs(t *testing.T) {
 			for i := range passes {
 				_, value, other := program(func(p *pass) bool { return p != &passes[i] })
 				same("without "+passes[i].name, value, other)
+				_, value, other = program(func(p *pass) bool { return p == &passes[i] })
+				same("only "+passes[i].name, value, other)
 			}
 		})
 	}
