@@ -5,6 +5,7 @@ import (
 	"math"
 	"slices"
 
+	"arrowroot/canvas/draw"
 	"arrowroot/compile/study"
 )
 
@@ -44,7 +45,7 @@ type spot struct {
 	layer, place int
 	band         int // higher bands stand higher; 0 = every plate holds it
 	width        float64
-	y            float64
+	x, y         float64
 	ins, outs    []int
 	dummy        bool
 }
@@ -195,9 +196,48 @@ func (a *arranger) run() map[string]study.Point {
 	}
 	for v := range a.real {
 		p := &a.spots[v]
-		at[a.names[v]] = study.Point{X: snap(columns[p.layer]), Y: snap((p.y-top)*stretch + 96)}
+		p.x, p.y = columns[p.layer], (p.y-top)*stretch+96
+	}
+	a.part(min(1, comfortable/x))
+	for v := range a.real {
+		at[a.names[v]] = study.Point{X: snap(a.spots[v].x), Y: snap(a.spots[v].y)}
 	}
 	return at
+}
+
+// comfortable is the width in which a window shows a whole sheet.
+const comfortable = 1000.0
+
+// part moves nodes of one band apart that would cover one another at a zoom:
+// names have a least size, so on a small picture nodes are relatively larger.
+func (a *arranger) part(zoom float64) {
+	type size struct{ w, h float64 }
+	sizes := make([]size, a.real)
+	for v := range a.real {
+		w, h, _ := nodeSize(a.names[v], draw.Bold, zoom)
+		sizes[v] = size{w / zoom, (h + 6) / zoom}
+	}
+	for range 30 {
+		still := true
+		for v := range a.real {
+			for w := range v {
+				p, q := &a.spots[v], &a.spots[w]
+				over := (sizes[v].h+sizes[w].h)/2 - math.Abs(p.y-q.y)
+				if p.band != q.band || over <= 0 || math.Abs(p.x-q.x) >= (sizes[v].w+sizes[w].w)/2+4/zoom {
+					continue
+				}
+				still = false
+				push := over/2 + 1
+				if p.y < q.y {
+					push = -push
+				}
+				p.y, q.y = p.y+push, q.y-push
+			}
+		}
+		if still {
+			return
+		}
+	}
 }
 
 // layer gives every node the least layer its parents allow, then moves it

@@ -118,8 +118,19 @@ func TestArrangePlates(t *testing.T) {
 	}
 }
 
-// The largest published diagrams are laid out in far less than the 100 ms that
-// an action may take; the bound leaves room for a busy machine.
+// Shown whole, names on the largest sheets do not cover one another.
+func TestArrangeBigReadable(t *testing.T) {
+	_, m := Build(fitted(bigInput()))
+	for i, n := range m.nodes {
+		for _, o := range m.nodes[:i] {
+			if n.rect().Meets(o.rect()) {
+				t.Errorf("%s covers %s", n.id, o.id)
+			}
+		}
+	}
+}
+
+// Sweeps and exchanges at least halve the crossings of a large diagram.
 func TestArrangeBigCrossings(t *testing.T) {
 	in := bigInput()
 	a := newArranger(in.Study, in.Rival, in.Question)

@@ -65,7 +65,7 @@ type line struct {
 	arc   *study.Arc
 	run   curve        // from outline to outline
 	pts   []draw.Point // along run
-	bow   float64
+	bend  bend
 }
 
 // route lays out arrows and arcs.
@@ -83,9 +83,9 @@ func (b *builder) route() {
 			ends, drawn = append(ends, [2]int{from, to}), append(drawn, a)
 		}
 	}
-	bow := bends(b.nodes, ends, b.zoom)
+	bent := bends(b.nodes, ends, b.zoom)
 	for i, a := range drawn {
-		l := &line{pair: [2]string{a.From, a.To}, arrow: a, from: b.nodes[ends[i][0]], to: b.nodes[ends[i][1]], bow: bow[i]}
+		l := &line{pair: [2]string{a.From, a.To}, arrow: a, from: b.nodes[ends[i][0]], to: b.nodes[ends[i][1]], bend: bent[i]}
 		if l.lay(0, 1.5) {
 			b.arrows = append(b.arrows, l)
 		}
@@ -97,25 +97,25 @@ func (b *builder) route() {
 			continue
 		}
 		l := &line{pair: [2]string{a.A, a.B}, arc: a, from: b.nodes[from], to: b.nodes[to]}
-		l.bow = b.arcBow(l.from, l.to)
+		l.bend = b.arcBend(l.from, l.to)
 		if l.lay(1.5, 1.5) {
 			b.arcs = append(b.arcs, l)
 		}
 	}
 }
 
-// arcBow bows an arc clearly, upwards if it can, so that it is never taken for
+// arcBend bows an arc clearly, upwards if it can, so that it is never taken for
 // an arrow between the same nodes.
-func (b *builder) arcBow(from, to *body) float64 {
+func (b *builder) arcBend(from, to *body) bend {
 	chord := to.at.Sub(from.at)
 	size := max(34*b.zoom, 0.2*chord.Len())
 	if chord.X < 0 || (chord.X == 0 && chord.Y > 0) {
 		size = -size // the left of the chord is down: bow to the other side
 	}
-	best, least := size, -1
+	best, least := bow(size), -1
 	for _, f := range []float64{1, -1, 1.7, -1.7, 2.4} {
 		hits := 0
-		for _, p := range sample(bow(from.at, to.at, size*f), 14*b.zoom) {
+		for _, p := range sample(joining(from.at, to.at, bow(size*f)), 14*b.zoom) {
 			for _, n := range b.nodes {
 				if n == from || n == to {
 					continue
@@ -128,7 +128,7 @@ func (b *builder) arcBow(from, to *body) float64 {
 			}
 		}
 		if least < 0 || hits < least {
-			best, least = size*f, hits
+			best, least = bow(size*f), hits
 		}
 		if hits == 0 {
 			break
@@ -139,7 +139,7 @@ func (b *builder) arcBow(from, to *body) float64 {
 
 // lay cuts the curve at the outlines.
 func (l *line) lay(gapFrom, gapTo float64) bool {
-	run, ok := bow(l.from.at, l.to.at, l.bow).between(l.from, l.to, gapFrom, gapTo)
+	run, ok := joining(l.from.at, l.to.at, l.bend).between(l.from, l.to, gapFrom, gapTo)
 	if !ok {
 		return false
 	}

@@ -171,7 +171,7 @@ func TestZoomRules(t *testing.T) {
 
 // No arrow passes behind a node that is not its end.
 func TestArrowsPassNodes(t *testing.T) {
-	for _, in := range []Input{hedgeInput(Light()), marks(), plates(), bigInput()} {
+	for _, in := range []Input{hedgeInput(Light()), marks(), plates(), bigInput(), fitted(bigInput())} {
 		_, m := Build(in)
 		for _, l := range m.arrows {
 			for _, n := range m.nodes {

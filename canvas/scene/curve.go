@@ -9,11 +9,22 @@ import (
 // A curve is a cubic Bézier curve.
 type curve [4]draw.Point
 
-// bow is the curve from a to b whose middle lies d to the left of the straight
-// line (on the screen).
-func bow(a, b draw.Point, d float64) curve {
-	side := b.Sub(a).Unit().Left().Times(d * 4 / 3)
-	return curve{a, a.Add(b.Sub(a).Times(1. / 3)).Add(side), a.Add(b.Sub(a).Times(2. / 3)).Add(side), b}
+// A bend says how far the control points of a curve lie to the left of the
+// straight line (on the screen), after a third and after two thirds of it.
+type bend struct{ near, far float64 }
+
+// bow is the bend whose middle lies d to the left.
+func bow(d float64) bend { return bend{d * 4 / 3, d * 4 / 3} }
+
+// joining is the curve from a to b with a bend.
+func joining(a, b draw.Point, d bend) curve {
+	side := b.Sub(a).Unit().Left()
+	return curve{
+		a,
+		a.Add(b.Sub(a).Times(1. / 3)).Add(side.Times(d.near)),
+		a.Add(b.Sub(a).Times(2. / 3)).Add(side.Times(d.far)),
+		b,
+	}
 }
 
 func (c curve) at(t float64) draw.Point { return draw.CubicAt(c[0], c[1], c[2], c[3], t) }
@@ -97,70 +108,109 @@ func (c curve) between(a, b *body, gapA, gapB float64) (curve, bool) {
 	return c.part(from, to), true
 }
 
-// bends says how far each arrow bows so that it passes behind no node: the
-// least bow that meets no other node and, if that is cheap, no dot strip.
-// Positions are those of the bodies; z is the zoom.
-func bends(all []*body, arrows [][2]int, z float64) []float64 {
-	const (
-		behindNode  = 1000.0
-		acrossStrip = 60.0
-		clearance   = 7.0
-	)
-	result := make([]float64, len(arrows))
-	steps := [...]float64{0, 20, -20, 34, -34, 50, -50, 68, -68, 90, -90, 116, -116, 148, -148, 186, -186, 230, -230}
-	type obstacle struct{ solid, soft, both draw.Rect }
-	obstacles := make([]obstacle, len(all))
+// bends says how each arrow bends so that it passes behind no node: the least
+// bow that meets no other node and, if that is cheap, no dot strip; where every
+// bow meets a node, bends that swing out at one end are tried too. Positions
+// are those of the bodies; z is the zoom.
+func bends(all []*body, arrows [][2]int, z float64) []bend {
+	r := router{obstacles: make([]obstacle, len(all)), z: z}
 	for k, b := range all {
 		solid, soft := b.rect().Grow(clearance*z), b.skirt(z)
-		obstacles[k] = obstacle{solid, soft, solid.Union(soft)}
+		r.obstacles[k] = obstacle{solid, soft, solid.Union(soft)}
 	}
-	var pts []draw.Point
+	result := make([]bend, len(arrows))
 	for i, a := range arrows {
-		from, to := all[a[0]].at, all[a[1]].at
-		length := to.Sub(from).Len() / z
-		best := math.Inf(1)
-		for _, d := range steps {
-			if math.Abs(d) > 0.5*length+20 || math.Abs(d) >= best {
-				break
-			}
-			cost := math.Abs(d)
-			c := bow(from, to, d*z)
-			box := c.box()
-			pts = pts[:0]
-			for k := range obstacles {
-				o := &obstacles[k]
-				if k == a[0] || k == a[1] || !o.both.Meets(box) {
-					continue
-				}
-				if len(pts) == 0 {
-					pts = appendSample(pts, c, 14*z)
-				}
-				hit, brush := 0, false
-				for _, p := range pts {
-					if o.solid.Contains(p) {
-						hit++
-					} else if o.soft.Contains(p) {
-						brush = true
-					}
-				}
-				if hit > 0 {
-					cost += behindNode + 20*float64(hit)
-				} else if brush {
-					cost += acrossStrip
-				}
-				if cost >= best {
-					break
-				}
-			}
-			if cost < best {
-				best, result[i] = cost, d*z
-			}
-			if cost == 0 {
-				break
-			}
-		}
+		r.from, r.to = a[0], a[1]
+		r.a, r.b = all[a[0]].at, all[a[1]].at
+		result[i] = r.route()
 	}
 	return result
+}
+
+// What a route costs, in dips of bow at zoom 1.
+const (
+	behindNode  = 1000.0
+	acrossStrip = 60.0
+	clearance   = 7.0 // kept from nodes
+)
+
+// bowSteps are the bows that are tried, the smallest first.
+var bowSteps = [...]float64{0, 20, -20, 34, -34, 50, -50, 68, -68, 90, -90, 116, -116, 148, -148, 186, -186, 230, -230}
+
+// An obstacle is a node that arrows should not meet: its outline, and its
+// dots below.
+type obstacle struct{ solid, soft, both draw.Rect }
+
+type router struct {
+	obstacles []obstacle
+	z         float64
+	from, to  int
+	a, b      draw.Point
+	pts       []draw.Point // scratch
+}
+
+func (r *router) route() bend {
+	length := r.b.Sub(r.a).Len() / r.z
+	best, least := bend{}, math.Inf(1)
+	try := func(d bend, cost float64) {
+		if cost >= least {
+			return
+		}
+		if cost = r.cost(d, cost, least); cost < least {
+			best, least = d, cost
+		}
+	}
+	for _, d := range bowSteps {
+		if math.Abs(d) > 0.5*length+20 {
+			break
+		}
+		try(bow(d*r.z), math.Abs(d))
+	}
+	if least < behindNode {
+		return best
+	}
+	for _, d := range bowSteps[1:] {
+		if math.Abs(d) > 0.5*length+20 {
+			break
+		}
+		for _, swing := range [...]bend{{2, 0.3}, {0.3, 2}, {1.5, -1.5}} {
+			try(bend{swing.near * d * r.z, swing.far * d * r.z}, 1.4*math.Abs(d))
+		}
+	}
+	return best
+}
+
+// cost adds to a cost what the curve meets; it stops where that exceeds limit.
+func (r *router) cost(d bend, cost, limit float64) float64 {
+	c := joining(r.a, r.b, d)
+	box := c.box()
+	r.pts = r.pts[:0]
+	for k := range r.obstacles {
+		o := &r.obstacles[k]
+		if k == r.from || k == r.to || !o.both.Meets(box) {
+			continue
+		}
+		if len(r.pts) == 0 {
+			r.pts = appendSample(r.pts, c, 14*r.z)
+		}
+		hit, brush := 0, false
+		for _, p := range r.pts {
+			if o.solid.Contains(p) {
+				hit++
+			} else if o.soft.Contains(p) {
+				brush = true
+			}
+		}
+		if hit > 0 {
+			cost += behindNode + 20*float64(hit)
+		} else if brush {
+			cost += acrossStrip
+		}
+		if cost >= limit {
+			break
+		}
+	}
+	return cost
 }
 
 // box holds the curve.

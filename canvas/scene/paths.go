@@ -68,7 +68,7 @@ func (b *builder) along(lines []*line, p *causal.Path) []*line {
 
 // full is the line from the middle of one node to the middle of the other, so
 // that marks meet under the nodes.
-func (l *line) full() []draw.Point { return bow(l.from.at, l.to.at, l.bow).line() }
+func (l *line) full() []draw.Point { return joining(l.from.at, l.to.at, l.bend).line() }
 
 // halo lays a soft amber band with one-pixel edges under lines. All bands are
 // one shape, so that where they overlap they are not darker.

@@ -43,7 +43,7 @@ func (b *builder) drawDraft(d *Draft) {
 	}
 	l := &line{from: from, to: target}
 	if d.Arc {
-		l.bow = b.arcBow(from, target)
+		l.bend = b.arcBend(from, target)
 	}
 	if !l.lay(0, 1.5) {
 		return
