@@ -128,10 +128,7 @@ func (s *simulation) thin() (most int) {
 	}
 	rows := s.m.Rows.Used
 	afford := int(budget / (perRow * float64(max(rows, 1))))
-	stride := 1
-	if afford < len(s.draws) {
-		stride = (len(s.draws) + max(afford, fewestDraws) - 1) / max(afford, fewestDraws)
-	}
+	stride := max(1, len(s.draws)/max(afford, fewestDraws))
 	for i := 0; i < len(s.draws); i += stride {
 		s.picked = append(s.picked, i)
 	}
