@@ -120,14 +120,6 @@ func (d *desk) prune() {
 // rival is the name of the rival on the sheet.
 func (d *desk) rival() string { return d.view.Rival.Name }
 
-// name is what people read for a variable.
-func (d *desk) name(id string) string {
-	if v := d.view.Study.Variable(id); v != nil {
-		return v.ID
-	}
-	return id
-}
-
 // onSheet reports whether a variable stands on the sheet.
 func (d *desk) onSheet(id string) bool { return d.view.Rival.Diagram.Node(id) != nil }
 

@@ -48,12 +48,6 @@ type sheaf struct {
 
 func (s *sheaf) add(objects ...fyne.CanvasObject) { s.objects = append(s.objects, objects...) }
 
-// keyed notes a control that keeps the focus across rebuilds.
-func (s *sheaf) keyed(key string, f fyne.Focusable) fyne.Focusable {
-	s.keys[key] = f
-	return f
-}
-
 // field adds a labelled entry.
 func (s *sheaf) field(key, label, text, hint string, commit func(string)) *field {
 	f := s.d.field(text, hint, commit)

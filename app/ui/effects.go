@@ -17,8 +17,6 @@ import (
 type effectPage struct {
 	d     *desk
 	pane  *pane
-	grid  *fyne.Container
-	cards *fyne.Container
 	seen  effectState
 	asked bool
 }

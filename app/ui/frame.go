@@ -10,7 +10,6 @@ import (
 
 // Sizes of the frame's parts.
 const (
-	stripHeight  float32 = 46
 	statusHeight float32 = 27
 	stubWidth    float32 = 24 // of a folded rail
 	tabsHeight   float32 = 32 // of a folded drawer
@@ -153,10 +152,11 @@ func (r *frameRenderer) Layout(s fyne.Size) {
 	f := r.f
 	w, h := s.Width, s.Height
 	place(r.panel, 0, 0, w, h)
-	place(r.stripBack, 0, 0, w, stripHeight)
-	place(f.strip, 0, 0, w, stripHeight)
-	place(r.lines[0], 0, stripHeight, w, 1)
-	top := stripHeight + 1
+	strip := stripHeight(w)
+	place(r.stripBack, 0, 0, w, strip)
+	place(f.strip, 0, 0, w, strip)
+	place(r.lines[0], 0, strip, w, 1)
+	top := strip + 1
 	bodyH := h - top
 
 	leftOpen, rightOpen, drawerOpen := f.open("left"), f.open("right"), f.open("drawer")

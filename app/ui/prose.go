@@ -131,7 +131,33 @@ func (p *prose) wrap(width float32) ([]piece, float32) {
 		return nil, 0
 	}
 	newLine()
-	return pieces, y
+	return p.limit(pieces, y, width)
+}
+
+// limit drops what lies below the last line that may be shown, and ends that
+// line with an ellipsis.
+func (p *prose) limit(pieces []piece, height, width float32) ([]piece, float32) {
+	if p.lines == 0 {
+		return pieces, height
+	}
+	line := fyne.MeasureText("Mg", p.size, fyne.TextStyle{}).Height + 2
+	bottom := line * float32(p.lines)
+	if height <= bottom+1 {
+		return pieces, height
+	}
+	n := 0
+	for n < len(pieces) && pieces[n].y < bottom-1 {
+		n++
+	}
+	pieces = pieces[:n]
+	if n > 0 {
+		last := &pieces[n-1]
+		last.text = shorten(last.text+" …", width-last.x, p.size, last.span.style())
+		if !strings.HasSuffix(last.text, "…") {
+			last.text += "…"
+		}
+	}
+	return pieces, bottom
 }
 
 // splitWords cuts text after spaces, keeping them.

@@ -176,21 +176,19 @@ func nodesOf(g *graph.Graph, p *causal.Path) []string {
 // pathState says whether a path is open, and what opens or closes it.
 func pathState(g *graph.Graph, p *causal.Path) string {
 	if p.Open {
-		for _, o := range p.OpenedAt {
-			if o.Node == o.By {
-				return "open: holding " + g.Names[o.By] + " opens it"
-			}
-			return "open: holding " + g.Names[o.By] + " opens it at " + g.Names[o.Node]
+		if len(p.OpenedAt) == 0 {
+			return "open"
 		}
-		return "open"
-	}
-	for _, c := range p.ClosedAt {
-		if c.Reason != "" {
-			return "closed at " + g.Names[c.Node] + ": " + c.Reason
+		o := p.OpenedAt[0]
+		if o.Node == o.By {
+			return "open: holding " + g.Names[o.By] + " opens it"
 		}
-		return "closed at " + g.Names[c.Node]
+		return "open: holding " + g.Names[o.By] + " opens it at " + g.Names[o.Node]
 	}
-	return "closed"
+	if len(p.ClosedAt) == 0 {
+		return "closed"
+	}
+	return "closed at " + g.Names[p.ClosedAt[0].Node] + ": " + p.ClosedAt[0].Reason
 }
 
 // advise fills the right side.

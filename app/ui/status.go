@@ -78,7 +78,7 @@ func (s *status) legends() []fyne.CanvasObject {
 	case scene.EffectPaint:
 		what := "effect"
 		if r.Question != nil {
-			what = "total effect of " + or2(words.Change(d.view.Study, r.Question), r.Question.Exposure)
+			what = strings.TrimSpace("total effect of " + r.Question.Exposure + " " + words.Change(d.view.Study, r.Question))
 		}
 		say("nodes: " + what + ", in plausible widths")
 		say("−")

@@ -164,9 +164,7 @@ func (d *desk) marks() map[string]fyne.CanvasObject {
 		switch p := p.(type) {
 		case *strip:
 			m["fit"] = p.fit
-			for _, a := range p.actions {
-				m["hold them"] = a
-			}
+			m["hold them"] = p.action
 		case *banner:
 			for _, x := range p.says.spans {
 				if b, ok := x.object.(*press); ok && p.object.Visible() {

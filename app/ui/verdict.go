@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
@@ -20,7 +21,10 @@ type strip struct {
 	question *prose
 	icon     *icon
 	says     *prose
-	actions  []*press
+	action   *press // what the sentence proposes
+	propose  func() // what it does; nil = nothing is proposed
+	label    *label // of the action
+	amber    bool   // the action mends a confounded comparison
 	rows     *label
 	trust    *label
 	fit      *press
@@ -47,19 +51,27 @@ func newStrip(d *desk) *strip {
 	s.fitWords = s.fit.content.(*label)
 	s.paint = d.plain("Paint ▾", func() { d.commands.find("paint").run() })
 	d.painter = s.paint
-	s.object = row(10, gapOf(2, 1), s.capsule, s.icon.object, stretch(s.says), s.rows, s.trust, s.fit, s.paint, gapOf(2, 1))
+	s.says.lines = 2
+	s.label = newLabel("", sizeBody, tokenConfound, fyne.TextStyle{Bold: true})
+	s.action = d.press(s.label, func(p *press) skin {
+		text, fill := tokenAction, tokenTint
+		if s.amber {
+			text, fill = tokenConfound, tokenAmberTint
+		}
+		s.label.token = text
+		return skin{fill: fill, edge: text, width: 1, radius: 11}
+	}, func() { s.propose() })
+	s.action.padX, s.action.padY = 10, 2
+	s.action.key = "hold them"
+	s.object = container.New(stripLayout{s}, s.capsule, s.icon.object, s.says, s.action, s.rows, s.trust, s.fit, s.paint)
 	return s
 }
 
 func (s *strip) update() {
 	v := s.d.view
-	s.capsule.minW = 0
-	s.question.set(s.ask(v.Question)...)
-	s.capsule.minW = s.width(s.question.spans) + 2*s.capsule.padX + 2
-
 	mark, token, tone := iconAsk, tokenMuted, tokenMuted
 	sentence := "Nothing is asked yet: name an exposure and an outcome."
-	s.actions = nil
+	s.propose = nil
 	switch r := v.Reading; {
 	case v.GraphError != nil:
 		mark, token, tone, sentence = iconWarn, tokenFault, tokenFault, v.GraphError.Error()
@@ -77,16 +89,16 @@ func (s *strip) update() {
 		}
 		if r.Verdict.HasProposal {
 			ids := s.d.names(r.Verdict.Propose)
-			label := proposal(ids)
+			s.label.text = proposal(ids)
 			if r.Verdict.Kind == causal.Confounded && len(ids) > 0 { // the sentence has the names
-				label = "Hold them"
+				s.label.text = "Hold them"
 				if len(ids) == 1 {
-					label = "Hold it"
+					s.label.text = "Hold it"
 				}
 			}
-			chip := s.d.chip(label, r.Verdict.Kind != causal.Readable, func() { s.d.holdAll(ids) })
-			chip.key, chip.tip = "hold them", "Hold "+orNone(ids)
-			s.actions = append(s.actions, chip)
+			s.amber = r.Verdict.Kind != causal.Readable
+			s.propose = func() { s.d.holdAll(ids) }
+			s.action.tip = "Hold " + orNone(ids)
 		}
 	}
 	s.icon.set(mark, tone)
@@ -96,10 +108,9 @@ func (s *strip) update() {
 		spans[0].text += "."
 		spans = append(spans, span{text: " " + rest, token: token})
 	}
-	for _, a := range s.actions {
-		spans = append(spans, span{text: "  "}, span{object: a})
-	}
-	s.says.set(spans...)
+	s.says.spans = spans
+	show(s.propose != nil, s.action)
+	s.action.Refresh()
 
 	s.rows.set("", tokenMuted)
 	if m := v.Model; m != nil && m.Rows.Read > 0 {
@@ -118,9 +129,68 @@ func (s *strip) update() {
 	s.fit.setDisabled(!s.d.commands.find("fit").ready())
 	s.fit.Refresh()
 	s.paint.setDisabled(v.Result == nil)
-	s.object.Refresh()
 	s.object.Layout.Layout(s.object.Objects, s.object.Size())
+	s.object.Refresh()
 }
+
+// stripLayout sets the strip in one line, or in a narrow window in two: the
+// question with the buttons, then the verdict.
+type stripLayout struct{ s *strip }
+
+const stripLine float32 = 46
+
+// stripHeight is the height of the strip in a window of a given width.
+func stripHeight(width float32) float32 {
+	if width < roomyWidth {
+		return stripLine + 38
+	}
+	return stripLine
+}
+
+func (l stripLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
+	s := l.s
+	const gap, edge = 10, 12
+	narrow := size.Width < roomyWidth
+	s.question.spans = s.ask(s.d.view.Question, size.Width > 760)
+	s.question.Refresh()
+
+	// The right end, from the edge inwards.
+	x := size.Width - edge
+	for _, o := range []fyne.CanvasObject{s.paint, s.fit, s.trust, s.rows} {
+		m := o.MinSize()
+		if m.Width < 1 {
+			continue
+		}
+		x -= m.Width
+		place(o, x, (stripLine-m.Height)/2, m.Width, m.Height)
+		x -= gap
+	}
+	w := min(s.width(s.question.spans)+2*s.capsule.padX+2, x-edge)
+	h := s.capsule.HeightFor(w)
+	place(s.capsule, edge, (stripLine-h)/2, w, h)
+
+	// The sentence with its action behind it, or at the end if it needs the room.
+	left, right, middle := edge+w+gap, x, stripLine/2
+	if narrow {
+		left, right, middle = edge, size.Width-edge, stripLine+16
+	}
+	place(s.icon.object, left, middle-9, 18, 18)
+	left += 18 + 8
+	if s.propose != nil {
+		m := s.action.MinSize()
+		right -= m.Width + gap
+		place(s.action, min(left+s.width(s.says.spans)+gap, right+gap), middle-m.Height/2, m.Width, m.Height)
+	}
+	s.says.size = sizeBody
+	if !narrow && s.width(s.says.spans) > 1.9*(right-left) {
+		s.says.size = sizeSmall
+	}
+	h = s.says.HeightFor(right - left)
+	place(s.says, left, middle-h/2, right-left, h)
+	s.says.Refresh()
+}
+
+func (l stripLayout) MinSize([]fyne.CanvasObject) fyne.Size { return fyne.NewSize(400, stripLine) }
 
 // width is that of spans in one line.
 func (s *strip) width(spans []span) float32 {
@@ -132,7 +202,7 @@ func (s *strip) width(spans []span) float32 {
 }
 
 // ask is the question in words; empty places show as boxes.
-func (s *strip) ask(q *study.Question) []span {
+func (s *strip) ask(q *study.Question, all bool) []span {
 	if q == nil {
 		q = &study.Question{}
 	}
@@ -144,7 +214,7 @@ func (s *strip) ask(q *study.Question) []span {
 	}
 	spans := []span{{text: "Effect of ", token: tokenMuted}, box(q.Exposure), {text: " on ", token: tokenMuted}, box(q.Outcome)}
 	tail := words.Change(s.d.view.Study, q)
-	if tail != "" && s.object.Size().Width > 1000 {
+	if tail != "" && all {
 		spans = append(spans, span{text: "   " + tail, token: tokenMuted})
 	}
 	return append(spans, span{text: "  ▾", token: tokenMuted})

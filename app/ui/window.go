@@ -177,15 +177,14 @@ func (d *desk) hover(t scene.Target) {
 	}
 }
 
-// dropped opens files that were dropped on the window.
+// dropped opens the first of the files that were dropped on the window.
 func (w *Window) dropped(files []fyne.URI) {
-	for _, f := range files {
-		if f.Extension() == ".arrowroot" {
-			w.desk.orSaved(func() { w.desk.open(f.Path()) })
-			return
-		}
-		w.desk.loadData(f.Path())
-		return
+	switch {
+	case len(files) == 0:
+	case files[0].Extension() == ".arrowroot":
+		w.desk.orSaved(func() { w.desk.open(files[0].Path()) })
+	default:
+		w.desk.loadData(files[0].Path())
 	}
 }
 
