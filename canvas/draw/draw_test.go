@@ -10,6 +10,7 @@ import (
 	"math/rand/v2"
 	"runtime"
 	"slices"
+	"strings"
 	"testing"
 
 	"arrowroot/canvas/internal/golden"
@@ -239,6 +240,34 @@ func TestMeasure(t *testing.T) {
 	}
 	if got := Shorten("soil", Bold, 12, 0); got != "…" {
 		t.Errorf("no room gives %q", got)
+	}
+}
+
+// Wrapped lines fit, keep every word in order, and say where they were cut.
+func TestWrap(t *testing.T) {
+	text := "honey is not bound to a column of hedgerows.csv"
+	for width := 20.0; width < 400; width += 7 {
+		for most := 1; most < 8; most++ {
+			lines := Wrap(text, Regular, 12, width, most)
+			if len(lines) == 0 || len(lines) > most {
+				t.Fatalf("%g wide: %d lines, at most %d", width, len(lines), most)
+			}
+			whole := strings.Join(lines, " ")
+			if whole != text && !strings.Contains(whole, "…") {
+				t.Errorf("%g wide, %d lines: %q lost words without a sign", width, most, whole)
+			}
+			for _, line := range lines {
+				if w := Measure(line, Regular, 12); w > width {
+					t.Errorf("%q is %.1f wide, more than %g", line, w, width)
+				}
+			}
+		}
+	}
+	if got := Wrap(text, Regular, 12, 400, 3); !slices.Equal(got, []string{text}) {
+		t.Errorf("what fits became %q", got)
+	}
+	if got := Wrap(" ", Regular, 12, 50, 3); len(got) != 0 {
+		t.Errorf("no words give %q", got)
 	}
 }
 

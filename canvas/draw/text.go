@@ -1,5 +1,7 @@
 package draw
 
+import "strings"
+
 // Vertical measures of the family, in ems, as DejaVu Sans has them.
 const (
 	Ascent    = 0.76 // of letters such as l and k
@@ -39,3 +41,31 @@ func Shorten(text string, face Face, size, width float64) string {
 // Drop is how far the baseline lies below the middle line of a name, so that
 // mostly lower-case words look centred.
 func Drop(size float64) float64 { return size * 0.34 }
+
+// Wrap breaks text into lines that fit a width, at spaces; a word that is too
+// long is cut. What does not fit in most lines ends in an ellipsis.
+func Wrap(text string, face Face, size, width float64, most int) []string {
+	var lines []string
+	now := ""
+	words := strings.Fields(text)
+	for i, word := range words {
+		longer := word
+		if now != "" {
+			longer = now + " " + word
+		}
+		if now == "" || Measure(longer, face, size) <= width {
+			now = longer
+			continue
+		}
+		if len(lines) == most-1 {
+			now += " " + strings.Join(words[i:], " ")
+			break
+		}
+		lines = append(lines, Shorten(now, face, size, width))
+		now = word
+	}
+	if now != "" {
+		lines = append(lines, Shorten(now, face, size, width))
+	}
+	return lines
+}

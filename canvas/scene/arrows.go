@@ -324,6 +324,31 @@ func (b *builder) nodeWords(n *body) {
 		words, color = b.in.Paint.Nodes[n.id].Words, p.Ink
 	}
 	if words != "" {
-		b.label(draw.Point{X: n.at.X, Y: n.at.Y - n.h/2 - 9}, words, draw.Regular, 11, color)
+		b.note(n.rect(), words, color)
+	}
+}
+
+// note prints words on a small card above a thing, or below it where there is
+// no room above, in up to four lines.
+func (b *builder) note(by draw.Rect, words string, ink draw.Color) {
+	const size, leading, pad, widest = 11.0, 15.0, 8.0, 300.0
+	lines := draw.Wrap(words, draw.Regular, size, widest, 4)
+	w := 0.0
+	for _, line := range lines {
+		w = max(w, draw.Measure(line, draw.Regular, size))
+	}
+	box := draw.Rect{W: w + 2*pad, H: leading*float64(len(lines)) + pad}
+	box.X = max(min(by.X+by.W/2-box.W/2, b.in.Width-box.W-4), 4)
+	box.Y = by.Y - box.H - 10
+	if box.Y < 4 {
+		box.Y = by.Y + by.H + 10
+	}
+	p := &b.in.Palette
+	b.list.Add(&draw.Shape{Path: draw.RoundRect(box, 5), Fill: p.Card, Stroke: p.Border, Width: 1, Crisp: true})
+	for i, line := range lines {
+		b.list.Add(&draw.Text{
+			At:   draw.Point{X: box.X + pad, Y: box.Y + pad/2 + leading*float64(i) + 11.5},
+			Text: line, Size: size, Color: ink,
+		})
 	}
 }

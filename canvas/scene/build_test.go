@@ -64,7 +64,7 @@ func marks() Input {
 	arrow(in.Rival, "hedge", "flowers").VariesBy = []string{"farm"}
 	arrow(in.Rival, "arable", "hedge").Form = "offset"
 	arrow(in.Rival, "flowers", "bees").With = []string{"hedge"}
-	in.Findings = map[string]string{"flowers": "flowers ~ beta: 9 rows are exactly 0"}
+	in.Findings = map[string]string{"flowers": "flowers ~ beta: 9 rows are exactly 0, which a beta law cannot be. Allow exact zeros, or nudge them to 0.001."}
 	in.Hover = Target{Kind: OnEdge, Node: "flowers"}
 	in.Rival.Layout.At["flowers"] = study.Point{X: 520, Y: 224}
 	in.Limits = []string{"arable"}

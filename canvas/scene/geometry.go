@@ -71,10 +71,17 @@ func (b *body) edge(p draw.Point) float64 {
 
 // skirt is the room below a node for its tab and its dots, at zoom 1.
 func (b *body) skirt(z float64) draw.Rect {
-	if !b.dots && b.roles == "" {
+	r := draw.Rect{X: b.at.X - 24*z, Y: b.at.Y + b.h/2, W: 48 * z}
+	if b.tab.H > 0 {
+		r.H = b.tab.H
+	}
+	if b.dots {
+		r.H += 26 * z
+	}
+	if r.H == 0 {
 		return draw.Rect{X: b.at.X, Y: b.at.Y}
 	}
-	return draw.Rect{X: b.at.X - 24*z, Y: b.at.Y + b.h/2, W: 48 * z, H: 28 * z}
+	return r
 }
 
 // nodeSize is the size of a node with such a name at a zoom.
