@@ -65,16 +65,24 @@ type step struct {
 	computed *node // … or worked out
 }
 
-// A plan says what changes, in which order, when the exposure is set, up to
-// one outcome. Variables that do not change keep their row values.
+// A target is a variable whose average is wanted under each arm.
+type target struct {
+	variable int
+	law      *law  // averaged by its expectation …
+	computed *node // … or as it is worked out
+	scale    *scale
+	at       int // first of its parts among those of all targets
+}
+
+// A plan says what changes, in which order, when the exposure is set, so far
+// as the targets read it. Variables that do not change keep their row values.
 type plan struct {
 	exposure int
 	observed []bool // laws of these variables read the exposure as it was observed (SEMANTICS B2 b)
-	steps    []step // all but the outcome
+	steps    []step // what targets and other steps read
 	random   int    // steps that are simulated
-	outcome  *law   // nil if the outcome is computed
-	computed *node
-	moves    bool // the outcome changes at all
+	targets  []target
+	parts    int // of all targets
 }
 
 // A planner knows the laws of a model.
@@ -106,59 +114,67 @@ func newPlanner(m *model.Model) (*planner, error) {
 	return p, nil
 }
 
-// plan lists what changes between the exposure and the outcome. District holds
-// the variables whose laws read the observed exposure. With alone, no other
-// law than the outcome's is simulated: variables in between keep their values.
-func (p *planner) plan(exposure, outcome int, district []int, alone bool) (*plan, error) {
+// plan lists what changes between the exposure and the targets. District holds
+// the variables whose laws read the observed exposure. With alone, no law but
+// the targets' is used: variables in between keep their values.
+func (p *planner) plan(exposure int, district []int, alone bool, targets ...target) (*plan, error) {
 	out := &plan{exposure: exposure, observed: make([]bool, len(p.m.Variables))}
 	for _, v := range district {
 		out.observed[v] = v != exposure
 	}
-	if outcome == exposure {
-		return nil, fmt.Errorf("%s cannot be exposure and outcome at once", p.m.Variables[outcome].ID)
-	}
-	out.outcome, out.computed = p.laws[outcome], p.computed[outcome]
-	if out.outcome == nil && out.computed == nil {
-		return nil, fmt.Errorf("%s has no law in this fit", p.m.Variables[outcome].ID)
-	}
 	changed := map[int]bool{exposure: true}
 	var visit func(v int) bool
+	follow := func(v int) (moved bool) { // adds the steps that v reads
+		for _, r := range p.readsOf(v) {
+			if (r != exposure || !out.observed[v]) && visit(r) {
+				moved = true
+			}
+		}
+		return moved
+	}
 	visit = func(v int) bool {
 		if known, ok := changed[v]; ok {
 			return known
 		}
 		changed[v] = false // a cycle cannot be: laws follow the arrows
-		l, n := p.laws[v], p.computed[v]
-		var reads []int
-		switch {
-		case n != nil:
-			reads = n.reads(nil)
-		case l != nil && (!alone || v == outcome):
-			reads = l.reads
+		if alone && p.computed[v] == nil || !follow(v) {
+			return false
 		}
-		moved := false
-		for _, r := range reads {
-			if r == exposure && out.observed[v] {
-				continue
-			}
-			if visit(r) {
-				moved = true
-			}
-		}
-		changed[v] = moved
-		if !moved || v == outcome {
-			return moved
-		}
-		if n != nil {
-			l = nil
-		} else {
+		changed[v] = true
+		st := step{variable: v, computed: p.computed[v]}
+		if st.computed == nil {
+			st.law = p.laws[v]
 			out.random++
 		}
-		out.steps = append(out.steps, step{v, l, n})
+		out.steps = append(out.steps, st)
 		return true
 	}
-	out.moves = visit(outcome)
+	for _, t := range targets {
+		id := p.m.Variables[t.variable].ID
+		if t.variable == exposure {
+			return nil, fmt.Errorf("%s cannot be exposure and outcome at once", id)
+		}
+		t.law, t.computed = p.laws[t.variable], p.computed[t.variable]
+		if t.law == nil && t.computed == nil {
+			return nil, fmt.Errorf("%s has no law in this fit", id)
+		}
+		follow(t.variable)
+		t.at = out.parts
+		out.parts += t.scale.parts()
+		out.targets = append(out.targets, t)
+	}
 	return out, nil
+}
+
+// readsOf lists the variables that a variable's formula or law reads.
+func (p *planner) readsOf(v int) []int {
+	switch {
+	case p.computed[v] != nil:
+		return p.computed[v].reads(nil)
+	case p.laws[v] != nil:
+		return p.laws[v].reads
+	}
+	return nil
 }
 
 // expectations are the names of arguments that are the expected value of one

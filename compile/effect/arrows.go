@@ -40,16 +40,16 @@ func Arrows(ctx context.Context, m *model.Model, draws [][]float64, opt Options)
 
 func (p *planner) arrow(ctx context.Context, parent, child int, draws [][]float64, opt Options) (*ArrowEffect, error) {
 	from, to := p.m.Variables[parent], p.m.Variables[child]
-	plan, err := p.plan(parent, child, nil, true)
-	if err != nil {
-		return nil, err
-	}
 	s, err := p.paintScale(child)
 	if err != nil {
 		return nil, err
 	}
+	plan, err := p.plan(parent, nil, true, target{variable: child, scale: s})
+	if err != nil {
+		return nil, err
+	}
 	out := &ArrowEffect{From: from.ID, To: to.ID, Unsigned: s.parts() > 1}
-	sim := &simulation{planner: p, plan: plan, scale: s, draws: draws, opt: opt.share()}
+	sim := &simulation{planner: p, plan: plan, draws: draws, opt: opt.share()}
 	sim.summary = func(sides [][]float64) float64 { return change(s, sides[0], sides[1]) }
 
 	levels := levelsOf(from)
@@ -83,7 +83,7 @@ func (p *planner) arrow(ctx context.Context, parent, child int, draws [][]float6
 
 // describe fills PerUnit and Words.
 func (p *planner) describe(out *ArrowEffect, sim *simulation, from, to *model.Variable, low, high, levels int, opt Options) {
-	s := sim.scale
+	s := sim.plan.targets[0].scale
 	if levels == 0 {
 		low, high = 2, 3
 	}
@@ -138,7 +138,7 @@ func (s *simulation) widest() (low, high int) {
 		for b := a + 1; b < len(s.arms); b++ {
 			mean := 0.0
 			for i := range s.values {
-				mean += change(s.scale, s.mean(i, a), s.mean(i, b))
+				mean += change(s.plan.targets[0].scale, s.mean(i, a), s.mean(i, b))
 			}
 			if math.Abs(mean) > most {
 				most, low, high = math.Abs(mean), a, b

@@ -43,11 +43,11 @@ func contrast(ctx context.Context, m *model.Model, district []string, q study.Qu
 	if err != nil {
 		return nil, err
 	}
-	plan, err := p.plan(exposure, outcome, p.indices(district), alone)
+	s, err := p.scaleOf(outcome, q.OutcomeLevels)
 	if err != nil {
 		return nil, err
 	}
-	s, err := p.scaleOf(outcome, q.OutcomeLevels)
+	plan, err := p.plan(exposure, p.indices(district), alone, target{variable: outcome, scale: s})
 	if err != nil {
 		return nil, err
 	}
@@ -59,7 +59,7 @@ func contrast(ctx context.Context, m *model.Model, district []string, q study.Qu
 		return nil, err
 	}
 	sim := &simulation{
-		planner: p, plan: plan, scale: s, arms: []arm{from, to}, draws: draws, opt: opt,
+		planner: p, plan: plan, arms: []arm{from, to}, draws: draws, opt: opt,
 		bootstrap: q.Over == study.PopulationAlike,
 		summary: func(sides [][]float64) float64 {
 			if q.As == study.Ratio {

@@ -2,7 +2,10 @@ package effect
 
 import (
 	"context"
+	"fmt"
+	"maps"
 	"math/rand/v2"
+	"slices"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
@@ -30,55 +33,72 @@ func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question
 	}
 	below := g.Descendants(x)
 	var out []NodeEffect
+	together := make(map[string][]int) // by district that reads the observed exposure: places in out
+	districts := make(map[string][]int)
 	for i, v := range m.Variables {
-		at := g.Index(v.ID)
 		if i == exposure {
 			continue
 		}
 		n := NodeEffect{Variable: v.ID}
+		at := g.Index(v.ID)
 		if at < 0 || !below[at] || (p.laws[i] == nil && p.computed[i] == nil) {
 			n.Plain = true
 			out = append(out, n)
 			continue
 		}
-		kind, district, _ := causal.InterventionCase(g, x, at)
-		if kind == causal.NotSimulated {
-			n.Refused = true
-			out = append(out, n)
-			continue
-		}
-		var ids []string
-		if kind == causal.ObservedForDistrict {
-			for _, member := range district {
-				ids = append(ids, g.Names[member])
+		kind, members, _ := causal.InterventionCase(g, x, at)
+		if n.Refused = kind == causal.NotSimulated; !n.Refused {
+			var district []int
+			if kind == causal.ObservedForDistrict {
+				for _, v := range members {
+					district = append(district, p.indices(g.Names[v:v+1])...)
+				}
 			}
-		}
-		if err := p.node(ctx, &n, exposure, i, ids, from, to, draws, src, opt); err != nil {
-			return nil, err
+			key := fmt.Sprint(district)
+			together[key] = append(together[key], len(out))
+			districts[key] = district
 		}
 		out = append(out, n)
+	}
+	for _, key := range slices.Sorted(maps.Keys(together)) {
+		var nodes []*NodeEffect
+		for _, at := range together[key] {
+			nodes = append(nodes, &out[at])
+		}
+		if err := p.nodes(ctx, nodes, exposure, districts[key], [2]arm{from, to}, draws, src, opt); err != nil {
+			return nil, err
+		}
 	}
 	return out, nil
 }
 
-func (p *planner) node(ctx context.Context, n *NodeEffect, exposure, variable int, district []string, from, to arm, draws [][]float64, src rand.Source, opt Options) error {
-	plan, err := p.plan(exposure, variable, p.indices(district), false)
+// nodes fills the values of variables that the same simulation serves.
+func (p *planner) nodes(ctx context.Context, nodes []*NodeEffect, exposure int, district []int, arms [2]arm, draws [][]float64, src rand.Source, opt Options) error {
+	var targets []target
+	for _, n := range nodes {
+		v := p.variables[n.Variable]
+		s, err := p.paintScale(v)
+		if err != nil {
+			return err
+		}
+		targets = append(targets, target{variable: v, scale: s})
+	}
+	plan, err := p.plan(exposure, district, false, targets...)
 	if err != nil {
 		return err
 	}
-	s, err := p.paintScale(variable)
-	if err != nil {
-		return err
-	}
-	n.Unsigned = s.parts() > 1
-	sim := &simulation{planner: p, plan: plan, scale: s, arms: []arm{from, to}, draws: draws, opt: opt.share()}
-	sim.summary = func(sides [][]float64) float64 { return change(s, sides[0], sides[1]) }
+	sim := &simulation{planner: p, plan: plan, arms: arms[:], draws: draws, opt: opt.share()}
 	if err := sim.run(ctx, src); err != nil {
 		return err
 	}
-	width := p.width(variable)
-	for _, v := range sim.values {
-		n.Values = append(n.Values, v/width)
+	for i := range sim.picked {
+		from, to := sim.mean(i, 0), sim.mean(i, 1)
+		for k, t := range plan.targets {
+			parts := t.scale.parts()
+			by := change(t.scale, from[t.at:t.at+parts], to[t.at:t.at+parts])
+			nodes[k].Values = append(nodes[k].Values, by/p.width(t.variable))
+			nodes[k].Unsigned = parts > 1
+		}
 	}
 	return nil
 }

@@ -24,7 +24,7 @@ func newBench(s *simulation) *bench {
 		}
 		b.uniforms = append(b.uniforms, make([]float64, n))
 	}
-	k := s.scale.parts()
+	k := s.plan.parts
 	b.part = make([]float64, k)
 	for range s.arms {
 		b.sides = append(b.sides, make([]float64, k))
@@ -64,13 +64,15 @@ func (b *bench) round(i, round int) {
 			b.sums[(len(b.arms)*i+a)*k+j] += x
 		}
 	}
-	b.rounds[i*b.perDraw+round] = b.summary(b.sides)
+	if b.summary != nil {
+		b.rounds[i*b.perDraw+round] = b.summary(b.sides)
+	}
 }
 
 // open is a uniform number strictly between 0 and 1.
 func open(rng *rand.Rand) float64 { return (float64(rng.Uint64()>>11) + 0.5) / (1 << 53) }
 
-// expect fills part with the outcome's average under the exposed column.
+// expect fills part with the targets' averages under the exposed column.
 func (b *bench) expect(mirrored bool) {
 	w, p := b.w, b.plan
 	copy(w.columns, b.rows.columns)
@@ -87,12 +89,15 @@ func (b *bench) expect(mirrored bool) {
 		}
 		w.columns[st.variable] = b.changed[i]
 	}
-	if p.outcome == nil || p.computed != nil {
-		averageOf(b.part, w.eval(p.computed), b.weights)
-		return
+	for _, t := range p.targets {
+		part := b.part[t.at : t.at+t.scale.parts()]
+		if t.computed != nil {
+			averageOf(part, w.eval(t.computed), b.weights)
+			continue
+		}
+		b.look(t.variable)
+		w.expected(part, t.law, t.scale, b.weights)
 	}
-	b.look(p.outcome.Variable)
-	w.expected(b.part, p.outcome, b.scale, b.weights)
 }
 
 // look shows a law the exposure that it reads: as set, or as it was observed.

@@ -18,6 +18,7 @@ const (
 	pilotDraws    = 64   // draws that show how large the simulation error is
 	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
 	rounding      = 1e-9 // of the values compared: not worth a replicate
+	enoughRows    = 1000 // rows × rounds of a simulation without a summary
 	moreWork      = 3    // budgets that further replicates may take
 )
 
@@ -31,12 +32,13 @@ var quantileWork = map[string]float64{
 type simulation struct {
 	*planner
 	plan      *plan
-	scale     *scale
 	arms      []arm
 	draws     [][]float64
 	opt       Options
 	bootstrap bool
-	summary   func(sides [][]float64) float64 // of the arms' parts
+	// summary is the number whose simulation error is kept small, of the arms'
+	// parts. Nil: there is none, and rounds are chosen by the number of rows.
+	summary func(sides [][]float64) float64
 
 	outer   []int // outermost plates, for the bootstrap
 	rows    *rowset
@@ -45,8 +47,8 @@ type simulation struct {
 	perDraw int       // rounds
 	sums    []float64 // draw, arm, part: summed over rounds
 	rounds  []float64 // draw, round: the summary of that round alone
-	values  []float64
-	noise   float64 // simulation error of a value
+	values  []float64 // per draw: the summary
+	noise   float64   // its simulation error
 }
 
 // run fills values. If something is simulated, a pilot over some of the draws
@@ -65,7 +67,11 @@ func (s *simulation) run(ctx context.Context, src rand.Source) error {
 		s.seeds[i] = src.Uint64()
 	}
 	rounds := 1
-	if s.plan.random > 0 {
+	switch {
+	case s.plan.random == 0:
+	case s.summary == nil:
+		rounds = min(most, max(1, enoughRows/s.rows.n))
+	default:
 		noise, spread, size, err := s.pilot(ctx)
 		if err != nil {
 			return err
@@ -115,16 +121,16 @@ func (s *simulation) thin() (most int) {
 	if budget <= 0 {
 		budget = defaultBudget
 	}
-	perRow := float64(len(s.arms))
+	work := float64(len(s.plan.targets))
+	perRow := float64(len(s.arms)) * work
 	if s.plan.random > 0 {
-		work := 1.0
 		for _, st := range s.plan.steps {
 			work++
 			if st.law != nil {
 				work += quantileWork[st.law.Family.Name]
 			}
 		}
-		perRow *= 2 * work // mirrored
+		perRow = float64(len(s.arms)) * 2 * work // mirrored
 	}
 	rows := s.m.Rows.Used
 	afford := int(budget / (perRow * float64(max(rows, 1))))
@@ -143,9 +149,10 @@ func (s *simulation) thin() (most int) {
 // What a draw gives depends on its seed and rounds alone.
 func (s *simulation) all(ctx context.Context, rounds int) error {
 	s.perDraw = rounds
-	s.sums = make([]float64, len(s.picked)*len(s.arms)*s.scale.parts())
-	s.rounds = make([]float64, len(s.picked)*rounds)
-	s.values = make([]float64, len(s.picked))
+	s.sums = make([]float64, len(s.picked)*len(s.arms)*s.plan.parts)
+	if s.summary != nil {
+		s.rounds = make([]float64, len(s.picked)*rounds)
+	}
 	clock := progress{tell: s.opt.Progress, of: len(s.picked)}
 	workers := min(runtime.GOMAXPROCS(0), len(s.picked))
 	var wait sync.WaitGroup
@@ -166,6 +173,10 @@ func (s *simulation) all(ctx context.Context, rounds int) error {
 		}()
 	}
 	wait.Wait()
+	if s.summary == nil {
+		return ctx.Err()
+	}
+	s.values = make([]float64, len(s.picked))
 	sides := make([][]float64, len(s.arms))
 	for i := range s.values {
 		for a := range sides {
@@ -178,7 +189,7 @@ func (s *simulation) all(ctx context.Context, rounds int) error {
 
 // mean is the average of an arm's parts over the rounds of draw i.
 func (s *simulation) mean(i, arm int) []float64 {
-	k := s.scale.parts()
+	k := s.plan.parts
 	out := make([]float64, k)
 	for j := range out {
 		out[j] = s.sums[(len(s.arms)*i+arm)*k+j] / float64(s.perDraw)
