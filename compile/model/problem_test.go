@@ -139,7 +139,71 @@ var troubles = []trouble{
 	{
 		name: "prior does not parse", code: "formula",
 		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[8].Prior = "normal with mean 0 sd 1" },
-		message: "", labels: "",
+		message: "normal with mean 0 sd 1\n                   ^^ a sign is missing before “sd”; a product is written with *",
+		labels:  "Replace",
+	},
+	{
+		name: "steps with a mean", code: "prior",
+		study:   func(s *study.Study) { law(s, "flowers").Priors = []study.Prior{{Parameter: "step_soil_flowers", Text: "normal with mean 1, sd 2"}} },
+		message: "normal with mean 1, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^ step_soil_flowers sums to zero: its prior is of the difference of two entries, normal with mean 0 and an sd",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "group effects with a number", code: "prior",
+		study:   func(s *study.Study) { law(s, "bees").Priors = []study.Prior{{Parameter: "α_bees by farm", Text: "normal with mean alpha_bees, sd 2"}} },
+		message: "normal with mean alpha_bees, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ what varies by a plate is normal around a parameter or 0, with a parameter as its sd",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "prior of an unknown parameter", code: "prior",
+		study:   func(s *study.Study) { law(s, "bees").Priors = []study.Prior{{Parameter: "beta_hedge_bees", Text: "normal with mean 0, sd omega"}} },
+		message: "normal with mean 0, sd omega\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^ *omega* in the prior of beta_hedge_bees is no parameter; give it a prior of its own",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "prior with a negative sd", code: "prior",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[8].Prior = "normal with mean 0, sd 0" },
+		message: "normal with mean 0, sd 0\n^^^^^^^^^^^^^^^^^^^^^^^^ the sd of a normal law must be positive",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "priors in a circle", code: "prior",
+		study: func(s *study.Study) {
+			law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "a"}}
+			law(s, "hedge").Priors = []study.Prior{{Parameter: "a", Text: "half-normal with scale b"}, {Parameter: "b", Text: "half-normal with scale a"}}
+		},
+		message: "half-normal with scale a\n^^^^^^^^^^^^^^^^^^^^^^^^ the priors of b and a refer to each other",
+		labels:  "Go back to the default",
+	},
+	{
+		name: "a spread that may be negative", code: "prior",
+		study: func(s *study.Study) {
+			law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "a"}}
+			law(s, "hedge").Priors = []study.Prior{{Parameter: "a", Text: "normal with mean b, sd 1"}, {Parameter: "b", Text: "normal with mean 0, sd 1"}}
+		},
+		message: "a must be positive, and a normal prior reaches below 0; half-normal does not.",
+	},
+	{
+		name: "two priors for one parameter", code: "prior-twice",
+		study: func(s *study.Study) {
+			law(s, "bees").Priors = []study.Prior{{Parameter: "beta_hedge_bees", Text: "normal with mean 0, sd 1"}}
+			s.Rivals[0].Diagram.Arrows[9].Prior = "normal with mean 0, sd 2"
+		},
+		message: "normal with mean 0, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^ beta_hedge_bees has a different prior already, at bees: “normal with mean 0, sd 1”",
+	},
+	{
+		name: "a cut point's prior", code: "prior",
+		study: func(s *study.Study) {
+			s.Variables[5].Scale, s.Variables[5].Levels = study.Ordered, []string{"10", "14", "20"}
+			law(s, "temp").Priors = []study.Prior{{Parameter: "cut_temp", Text: "normal with mean 0, sd 1"}}
+		},
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "temp", i, []float64{10, 14, 20}[i%3])
+			}
+		},
+		message: "normal with mean 0, sd 1\n^^^^^^^^^^^^^^^^^^^^^^^^ the cut points of an ordered law have equally plausible shares in this version; another prior cannot be given",
+		labels:  "Go back to the default", mends: true,
 	},
 	{
 		name: "prior of an unknown distribution", code: "prior",
