@@ -144,19 +144,25 @@ var troubles = []trouble{
 	},
 	{
 		name: "steps with a mean", code: "prior",
-		study:   func(s *study.Study) { law(s, "flowers").Priors = []study.Prior{{Parameter: "step_soil_flowers", Text: "normal with mean 1, sd 2"}} },
+		study: func(s *study.Study) {
+			law(s, "flowers").Priors = []study.Prior{{Parameter: "step_soil_flowers", Text: "normal with mean 1, sd 2"}}
+		},
 		message: "normal with mean 1, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^ step_soil_flowers sums to zero: its prior is of the difference of two entries, normal with mean 0 and an sd",
 		labels:  "Go back to the default", mends: true,
 	},
 	{
 		name: "group effects with a number", code: "prior",
-		study:   func(s *study.Study) { law(s, "bees").Priors = []study.Prior{{Parameter: "α_bees by farm", Text: "normal with mean alpha_bees, sd 2"}} },
+		study: func(s *study.Study) {
+			law(s, "bees").Priors = []study.Prior{{Parameter: "α_bees by farm", Text: "normal with mean alpha_bees, sd 2"}}
+		},
 		message: "normal with mean alpha_bees, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ what varies by a plate is normal around a parameter or 0, with a parameter as its sd",
 		labels:  "Go back to the default", mends: true,
 	},
 	{
 		name: "prior of an unknown parameter", code: "prior",
-		study:   func(s *study.Study) { law(s, "bees").Priors = []study.Prior{{Parameter: "beta_hedge_bees", Text: "normal with mean 0, sd omega"}} },
+		study: func(s *study.Study) {
+			law(s, "bees").Priors = []study.Prior{{Parameter: "beta_hedge_bees", Text: "normal with mean 0, sd omega"}}
+		},
 		message: "normal with mean 0, sd omega\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^ *omega* in the prior of beta_hedge_bees is no parameter; give it a prior of its own",
 		labels:  "Go back to the default", mends: true,
 	},
