@@ -63,7 +63,7 @@ func (b *builder) readPlates() {
 		return
 	}
 	for _, p := range b.study.Plates {
-		c, problem := b.readPlate(p, 0)
+		c, problem := b.readPlate(p)
 		switch {
 		case problem != nil && named[p.Name]:
 			b.stop(*problem)
@@ -126,8 +126,7 @@ func (b *builder) unknownPlate(owner, plate string) {
 
 // readPlate reads one plate's column. A plate within another tells its levels
 // apart by both names, since field 1 of one farm is not field 1 of the next.
-// depth ends what would go round in a circle of plates.
-func (b *builder) readPlate(p *study.Plate, depth int) (*plateColumn, *Problem) {
+func (b *builder) readPlate(p *study.Plate) (*plateColumn, *Problem) {
 	out := &plateColumn{name: p.Name, index: -1}
 	if b.table == nil {
 		return out, nil
@@ -148,8 +147,8 @@ func (b *builder) readPlate(p *study.Plate, depth int) (*plateColumn, *Problem) 
 	}
 	words, levels := asWords(c)
 	if p.Within != "" {
-		if outer := b.studyPlate(p.Within); outer != nil && depth < len(b.study.Plates) {
-			parent, problem := b.readPlate(outer, depth+1)
+		if outer := b.studyPlate(p.Within); outer != nil && outer != p {
+			parent, problem := b.readPlate(outer)
 			if problem != nil {
 				return nil, problem
 			}
