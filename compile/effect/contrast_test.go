@@ -396,7 +396,7 @@ func TestPopulationAlike(t *testing.T) {
 	}
 	near(t, "mean", m, (groups-1)/2.0, 0.1)
 	near(t, "sd", math.Sqrt(sum/4000)/math.Sqrt(spread/(groups+1)), 1, 0.05)
-	if !strings.Contains(got.Words, "30 school") {
+	if !strings.Contains(got.Words, "weighed by group: school (30)") {
 		t.Errorf("words: %q", got.Words)
 	}
 }

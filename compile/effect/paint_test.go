@@ -6,6 +6,7 @@ import (
 	"strings"
 	"testing"
 
+	"arrowroot/compile/causal"
 	"arrowroot/compile/formula"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
@@ -196,5 +197,36 @@ func TestShortNumbers(t *testing.T) {
 		if got := niceStep(width); math.Abs(got-want) > 1e-12 {
 			t.Errorf("niceStep(%v) = %v, want %v", width, got, want)
 		}
+	}
+}
+
+// One simulation serves all nodes of a chain; each gives what a contrast of
+// its own gives, within simulation error.
+func TestNodesAgreeWithContrasts(t *testing.T) {
+	s := newSketch(t, 200)
+	x := spreadOut(200, 0, 1)
+	s.variable("x", study.Real, x)
+	for _, id := range []string{"m", "k", "y"} {
+		v := s.variable(id, study.Real, x)
+		v.Low, v.High = 0, 2
+	}
+	s.law("m", "Poisson", "0.3 + 0.8 * x")
+	s.law("k", "Bernoulli", "-1 + 0.7 * m - x")
+	s.law("y", "gamma", "0.2 * m + 0.5 * k", "3")
+	g, err := graph.New(graph.Spec{Names: []string{"x", "m", "k", "y"}, Arrows: [][2]int{{0, 1}, {0, 2}, {1, 2}, {1, 3}, {2, 3}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	small := Options{Budget: 1e6}
+	nodes, err := Nodes(context.Background(), s.m, g, ask("x", "y", 0, 1), s.draws(400), source(), small)
+	if err != nil {
+		t.Fatal(err)
+	}
+	for i, width := range []float64{2, 1, 2} { // a probability's width is 1
+		c, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, ask("x", nodes[i].Variable, 0, 1), s.draws(400), source(), small)
+		if err != nil {
+			t.Fatal(err)
+		}
+		near(t, nodes[i].Variable, mean(nodes[i].Values)*width, mean(c.Values), 0.005)
 	}
 }

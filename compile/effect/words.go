@@ -22,12 +22,12 @@ func (s *simulation) words() string {
 	}
 	var groups []string
 	for _, p := range s.outer {
-		groups = append(groups, fmt.Sprintf("%s %s", grouped(len(s.m.Plates[p].Levels)), s.m.Plates[p].Name))
+		groups = append(groups, fmt.Sprintf("%s (%s)", s.m.Plates[p].Name, grouped(len(s.m.Plates[p].Levels))))
 	}
 	if len(groups) == 0 {
 		return "over a population like " + rows + ", weighed by row"
 	}
-	return "over a population like " + rows + ", weighed by group (" + strings.Join(groups, ", ") + ")"
+	return "over a population like " + rows + ", weighed by group: " + strings.Join(groups, ", ")
 }
 
 // grouped writes a whole number with thin groups of three digits: 12,000.
