@@ -37,6 +37,7 @@ func (c *certified) spread(scale float64) (sigma moment, factor float64) {
 }
 
 func TestNorris(t *testing.T) {
+	long(t)
 	t.Parallel()
 	var c certified
 	fromJSON(t, "norris", &c)
@@ -55,9 +56,7 @@ func TestNorris(t *testing.T) {
 // Columns are divided by the ledger and centred by the law; both are undone
 // here. Six of the seven columns nearly determine each other.
 func TestLongley(t *testing.T) {
-	if testing.Short() {
-		t.Skip("takes seconds")
-	}
+	long(t)
 	t.Parallel()
 	var c certified
 	fromJSON(t, "longley", &c)
@@ -89,9 +88,7 @@ func TestLongley(t *testing.T) {
 // sds are exactly Wampler3's certified standard errors; with another they are
 // in proportion. Wampler3 itself is fitted with σ unknown.
 func TestWampler(t *testing.T) {
-	if testing.Short() {
-		t.Skip("takes seconds")
-	}
+	long(t)
 	var third certified
 	fromJSON(t, "wampler3", &third)
 	for _, w := range []struct {

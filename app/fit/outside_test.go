@@ -46,6 +46,15 @@ func requestIn(t *testing.T, folder, name string) Request {
 	return req
 }
 
+// long leaves a test out of -short: with the race detector it takes minutes,
+// and what runs side by side is tested by TestSameSeedSameDraws.
+func long(t *testing.T) {
+	t.Helper()
+	if testing.Short() {
+		t.Skip("takes seconds")
+	}
+}
+
 func run(t *testing.T, req Request) *Result {
 	t.Helper()
 	r, err := Run(context.Background(), req, nil)

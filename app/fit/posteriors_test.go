@@ -12,7 +12,6 @@ import (
 type posterior struct {
 	study string
 	draws int // per chain: enough for an effective sample size of 4,000
-	slow  bool
 	is    map[string]value
 }
 
@@ -56,7 +55,7 @@ var posteriors = []posterior{
 		"b": parameter("beta_speed_distance"),
 		"s": parameter("sigma_distance"),
 	}},
-	{study: "cbpp_glmm", draws: 10000, slow: true, is: map[string]value{
+	{study: "cbpp_glmm", draws: 10000, is: map[string]value{
 		"b0": parameter("alpha_ill"),
 		"p2": parameter("beta_period_2_ill"),
 		"p3": parameter("beta_period_3_ill"),
@@ -109,11 +108,9 @@ func with(all map[string]value, name string, v value) map[string]value {
 // last two by quadrature (testdata/studies/SOURCE.md). Left out because this
 // version's laws cannot say it: the correlated slopes of sleepstudy.
 func TestPosteriors(t *testing.T) {
+	long(t)
 	for _, p := range posteriors {
 		t.Run(p.study, func(t *testing.T) {
-			if p.slow && testing.Short() {
-				t.Skip("takes seconds")
-			}
 			t.Parallel()
 			var want map[string]struct{ Mean, SD, Error float64 }
 			fromJSON(t, p.study, &want)
@@ -140,9 +137,7 @@ func TestPosteriors(t *testing.T) {
 // standard logistic density. Draws weighed by the ratio of the two priors are
 // draws from the source's posterior.
 func TestOrderedPosterior(t *testing.T) {
-	if testing.Short() {
-		t.Skip("takes seconds")
-	}
+	long(t)
 	t.Parallel()
 	var want map[string]struct{ Mean, SD, Error float64 }
 	fromJSON(t, "housing_ordered_logit", &want)

@@ -78,7 +78,7 @@ func TestSameSeedSameDraws(t *testing.T) {
 func TestCancelKeepsAPrefix(t *testing.T) {
 	t.Parallel()
 	req := request(t, "kidney_stones")
-	req.Draws = 3000
+	req.Draws = 600
 	whole := run(t, req)
 	settings := infer.NewRun(infer.Problem{Target: func() infer.Target { return nowhere{} }}, infer.Settings{}).Settings()
 	blocks := len(whole.Full.Density.Blocks)

@@ -27,6 +27,7 @@ func covers(n *Number, truth float64) bool { return n.Low <= truth && truth <= n
 // priors in each cell .0515 with sd .0336); a quarter of the posterior sd is
 // left to the priors.
 func TestKidneyStones(t *testing.T) {
+	long(t)
 	t.Parallel()
 	var known struct {
 		Stones struct {
@@ -71,9 +72,7 @@ func TestKidneyStones(t *testing.T) {
 // The built-in example knows its truth (assets/examples/generate): it lies in
 // the intervals of the full and the held number and outside the crude one.
 func TestHedgerows(t *testing.T) {
-	if testing.Short() {
-		t.Skip("takes seconds")
-	}
+	long(t)
 	t.Parallel()
 	var truth struct {
 		From, To, Ratio float64
@@ -110,6 +109,7 @@ func TestHedgerows(t *testing.T) {
 // outcome. The carried entry score gives the true .50; the drawn parents alone
 // give .72 (assets/examples/generate; in the limit of many rows).
 func TestScholarship(t *testing.T) {
+	long(t)
 	t.Parallel()
 	const truth, drawnOnly = 0.50, 0.72
 	req := request(t, "scholarship")
