@@ -39,16 +39,22 @@ func grouped(n int) string {
 	return s
 }
 
-// short writes a number with three digits that count, and a true minus sign.
-func short(x float64) string {
+// digits writes a number with three digits that count, and a true minus sign.
+func digits(x float64) string {
 	s := strconv.FormatFloat(x, 'g', 3, 64)
 	if a := math.Abs(x); a >= 0.001 && a < 1e6 {
 		s = strconv.FormatFloat(x, 'f', max(0, 2-int(math.Floor(math.Log10(a)))), 64)
-		if strings.Contains(s, ".") {
-			s = strings.TrimRight(strings.TrimRight(s, "0"), ".")
-		}
 	}
 	return strings.Replace(s, "-", "−", 1)
+}
+
+// short is digits without zeros at the end of a fraction.
+func short(x float64) string {
+	s := digits(x)
+	if strings.Contains(s, ".") && !strings.Contains(s, "e") {
+		s = strings.TrimRight(strings.TrimRight(s, "0"), ".")
+	}
+	return s
 }
 
 // signed is short with a plus sign before what is not negative.
@@ -93,12 +99,12 @@ func niceStep(width float64) float64 {
 	return 10 * scale
 }
 
-// amountWords is "×1.02 (90 %: 1.01 to 1.03)".
+// amountWords is "×1.02 (90 %: 1.00 to 1.04)" or "+2.5 (90 %: +1 to +4)".
 func amountWords(values []float64, ratio bool, level float64) string {
 	low, middle, high := between(values, level)
 	write, mark := signed, ""
 	if ratio {
-		write, mark = short, "×"
+		write, mark = digits, "×"
 	}
 	return fmt.Sprintf("%s%s (%s %%: %s to %s)", mark, write(middle), short(100*level), write(low), write(high))
 }
