@@ -217,6 +217,9 @@ func (h *Hand) moved(in *Input, e Event) map[string]study.Point {
 	}
 	to := make(map[string]study.Point, len(h.places))
 	for id, p := range h.places {
+		if in.Rival == nil || in.Rival.Diagram.Node(id) == nil {
+			continue // undone under the hand
+		}
 		to[id] = study.Point{X: p.X + dx, Y: p.Y + dy}
 	}
 	return to
@@ -273,7 +276,7 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 	switch g {
 	case gripMove:
 		to := h.moved(in, e)
-		if to[h.target.Node] == h.places[h.target.Node] || in.Rival == nil {
+		if len(to) == 0 || to[h.target.Node] == h.places[h.target.Node] {
 			return Answer{Preview: none}
 		}
 		return Answer{Preview: none, Edit: nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})}

@@ -70,6 +70,7 @@ func (s *script) do(e study.Edit) {
 	}
 	s.tell(e.Label())
 	s.in.Study, s.in.Rival = next, next.Rivals[0]
+	s.in.Selected = s.in.Selected.Kept(s.in.Study, s.in.Rival)
 }
 
 func (s *script) tell(line string) { s.told = append(s.told, line) }

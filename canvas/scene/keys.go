@@ -24,6 +24,8 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 	switch {
 	case e.Key == "Escape":
 		return h.escape(in)
+	case h.grip != gripNone && h.grip != gripKeys:
+		return Answer{} // a drag is not disturbed by other keys
 	case e.Key == "Delete" || e.Key == "BackSpace":
 		if edit := Remove(in.Rival, in.Selected); edit != nil {
 			return Answer{Edit: nailed(in, edit), Select: &Selection{}}
