@@ -244,7 +244,9 @@ func (d *desk) paintMenu() {
 		return m
 	}
 	menu := fyne.NewMenu("", item("Effect", scene.EffectPaint), item("Learned", scene.LearnedPaint), item("Trust", scene.TrustPaint), item("None", ""))
-	widget.ShowPopUpMenuAtPosition(menu, d.win.Canvas(), below(d.painter))
+	up := widget.NewPopUpMenu(menu, d.win.Canvas())
+	at := below(d.painter)
+	up.ShowAtPosition(at.SubtractXY(max(0, up.MinSize().Width-d.painter.Size().Width), 0)) // flush right, within the window
 }
 
 // Menus of the right button hold only what fits the thing.

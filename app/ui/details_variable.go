@@ -481,7 +481,7 @@ func (x *details) data(s *sheaf, v *study.Variable) {
 		plates = append(plates, p.Name)
 	}
 	if len(plates) > 0 {
-		s.toggles("level", "One value", plates, func(w string) bool { return slices.Contains(v.Plates, w) }, func(w string, on bool) {
+		s.toggles("level", "One value per", plates, func(w string) bool { return slices.Contains(v.Plates, w) }, func(w string, on bool) {
 			d.changeVariable(v.ID, func(v *study.Variable) { v.Plates = with(v.Plates, w, on) })
 		})
 		s.add(newProse(sizeSmall, span{text: "Choose a plate if it has one value for each of its levels; none = one for each row.", token: tokenMuted}))
@@ -530,7 +530,7 @@ func (x *details) column(s *sheaf, v *study.Variable, t *table.Table) {
 		spans = append(spans, span{text: ", " + count(c.Missing) + " missing (" + percent(float64(c.Missing)/float64(t.Rows)) + ")"})
 	}
 	if p.Words != "" {
-		spans = append(spans, span{text: ". " + p.Words, token: tokenMuted})
+		spans = append(spans, span{text: "; " + p.Words, token: tokenMuted})
 	}
 	s.add(newProse(sizeSmall, spans...))
 	for i, odd := range c.Strange {

@@ -35,7 +35,7 @@ type fitState struct {
 
 func newFitPage(d *desk) *fitPage {
 	p := &fitPage{d: d, pane: newPane(14, 8, 0), notes: newPane(16, 8, 5)}
-	p.split = container.New(&splitLayout{share: 0.62}, p.pane, hairline(), p.notes)
+	p.split = container.New(&splitLayout{share: 0.66}, p.pane, hairline(), p.notes)
 	return p
 }
 
@@ -57,7 +57,7 @@ func (p *fitPage) update() {
 }
 
 // Widths of the table's columns: centre, spread, interval, R-hat, ESS.
-var quantityColumns = []float32{64, 60, 128, 48, 84}
+var quantityColumns = []float32{54, 54, 116, 44, 92}
 
 func quantityRow(name fyne.CanvasObject, cells [5]string, token fyne.ThemeColorName) fyne.CanvasObject {
 	objects := []fyne.CanvasObject{stretch(name)}

@@ -188,7 +188,7 @@ func pathState(g *graph.Graph, p *causal.Path) string {
 	if len(p.ClosedAt) == 0 {
 		return "closed"
 	}
-	return "closed at " + g.Names[p.ClosedAt[0].Node] + ": " + p.ClosedAt[0].Reason
+	return "closed: " + p.ClosedAt[0].Reason
 }
 
 // advise fills the right side.

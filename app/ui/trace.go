@@ -23,6 +23,7 @@ type trace struct {
 	file    *os.File
 	last    string
 	pending bool
+	waited  int // for frames
 }
 
 // traceDelay lets a frame be painted first: Fyne knows the place of a new
@@ -80,6 +81,14 @@ func (t *trace) note(d *desk) {
 	time.AfterFunc(traceDelay, func() {
 		d.post(func() {
 			t.pending = false
+			for _, o := range d.marks() {
+				if o.Visible() && fyne.CurrentApp().Driver().CanvasForObject(o) == nil && t.waited < 20 {
+					t.waited++ // not painted yet: its place is not known
+					t.note(d)
+					return
+				}
+			}
+			t.waited = 0
 			t.write(d)
 		})
 	})
@@ -143,7 +152,7 @@ func (d *desk) said() said {
 		s.Nodes[id] = pixels(origin, d.editor.View().Out(at), scale)
 	}
 	for name, o := range d.marks() {
-		if o.Visible() {
+		if o.Visible() && driver.CanvasForObject(o) != nil {
 			at, size := driver.AbsolutePositionForObject(o), o.Size()
 			s.Buttons[name] = pixels(at, draw.Point{X: float64(size.Width / 2), Y: float64(size.Height / 2)}, scale)
 		}
