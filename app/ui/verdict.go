@@ -82,6 +82,9 @@ func (s *strip) update() {
 		case causal.Readable:
 			mark, token, tone = iconGood, tokenInk, tokenAction
 		case causal.Incomplete:
+			if off := s.d.askedOffSheet(); len(off) > 0 {
+				sentence = "The question cannot be read here: " + words.List(off) + " must stand on the sheet."
+			}
 		case causal.NoEffect:
 			token = tokenInk
 		default:
@@ -131,6 +134,21 @@ func (s *strip) update() {
 	s.paint.setDisabled(v.Result == nil)
 	s.object.Layout.Layout(s.object.Objects, s.object.Size())
 	s.object.Refresh()
+}
+
+// askedOffSheet are the ends of the question that this rival does not show.
+func (d *desk) askedOffSheet() []string {
+	q := d.view.Question
+	if q == nil {
+		return nil
+	}
+	var off []string
+	for _, id := range []string{q.Exposure, q.Outcome} {
+		if id != "" && !d.onSheet(id) {
+			off = append(off, id)
+		}
+	}
+	return off
 }
 
 // stripLayout sets the strip in one line, or in a narrow window in two: the

@@ -109,6 +109,9 @@ func (w *Window) show(v *session.View) {
 			d.status.notice = ""
 		}
 	}
+	if v.Rival.Name != before.Rival.Name {
+		d.status.hint = "" // the editor forgets its hover, too
+	}
 	if v.Result != nil && v.Result != before.Result && before.Running && d.paint == "" {
 		d.paint = scene.EffectPaint
 	}
