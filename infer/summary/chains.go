@@ -1,7 +1,9 @@
 package summary
 
 import (
+	"cmp"
 	"math"
+	"slices"
 	"sort"
 
 	"gonum.org/v1/gonum/dsp/fourier"
@@ -195,13 +197,13 @@ func normalScores(chains [][]float64) [][]float64 {
 		value    float64
 		chain, i int
 	}
-	var places []place
+	places := make([]place, 0, len(chains)*len(chains[0]))
 	for c, x := range chains {
 		for i, v := range x {
 			places = append(places, place{v, c, i})
 		}
 	}
-	sort.Slice(places, func(a, b int) bool { return places[a].value < places[b].value })
+	slices.SortFunc(places, func(a, b place) int { return cmp.Compare(a.value, b.value) })
 	scores := make([][]float64, len(chains))
 	for c, x := range chains {
 		scores[c] = make([]float64, len(x))
