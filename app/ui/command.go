@@ -49,6 +49,9 @@ func (c *command) shortcut() fyne.Shortcut {
 	if len(parts) < 2 {
 		return nil
 	}
+	if s := standardShortcuts[c.keys]; s != nil {
+		return s
+	}
 	s := &desktop.CustomShortcut{}
 	for _, p := range parts[:len(parts)-1] {
 		switch p {
@@ -70,6 +73,16 @@ func (c *command) shortcut() fyne.Shortcut {
 		s.KeyName = fyne.KeyName(last)
 	}
 	return s
+}
+
+// standardShortcuts are the keys that Fyne's window turns into shortcuts of its
+// own before a menu sees them: a custom one for the same keys never fires.
+var standardShortcuts = map[string]fyne.Shortcut{
+	"Ctrl+Z": &fyne.ShortcutUndo{},
+	"Ctrl+C": &fyne.ShortcutCopy{},
+	"Ctrl+X": &fyne.ShortcutCut{},
+	"Ctrl+V": &fyne.ShortcutPaste{},
+	"Ctrl+A": &fyne.ShortcutSelectAll{},
 }
 
 // A table of commands, in the order of the menus.
