@@ -4,6 +4,7 @@ import (
 	"context"
 	"errors"
 	"math"
+	"strings"
 	"sync"
 	"time"
 
@@ -67,7 +68,7 @@ func sampleModel(ctx context.Context, m *model.Model, req *Request, purpose stri
 	var runs []*blockRun
 	for _, b := range d.Blocks {
 		r := infer.NewRun(infer.Problem{
-			Name:   purpose + "\x00" + b.Name,
+			Name:   purpose + "\x00" + strings.Join(b.Names, " "),
 			Target: func() infer.Target { return b.Evaluator() },
 			Blame:  b.Blame,
 		}, settings)

@@ -37,6 +37,9 @@ func Of(r *fit.Result, kind scene.PaintKind, stale bool) *scene.Paint {
 	return p
 }
 
+// trustSigns tell the verdicts apart without colour.
+var trustSigns = map[summary.Verdict]string{summary.Sound: "✓", summary.Caution: "!", summary.Unusable: "×"}
+
 func node(r *fit.Result, n fit.NodePaint, kind scene.PaintKind) scene.NodePaint {
 	switch kind {
 	case scene.LearnedPaint:
@@ -48,7 +51,7 @@ func node(r *fit.Result, n fit.NodePaint, kind scene.PaintKind) scene.NodePaint 
 		if !n.Modelled {
 			return scene.NodePaint{Plain: true, Words: "given, not modelled"}
 		}
-		return scene.NodePaint{Bin: int(n.Trust.Verdict), Words: n.Trust.String()}
+		return scene.NodePaint{Bin: int(n.Trust.Verdict), Sign: trustSigns[n.Trust.Verdict], Words: n.Trust.String()}
 	}
 	if q := r.Question; q != nil && q.Exposure == n.Variable {
 		return scene.NodePaint{Plain: true, Words: "the exposure: it is set"}
