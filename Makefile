@@ -37,10 +37,12 @@ check:
 
 # Ratios measured side by side in one run; absolute times mean nothing here.
 bench:
-	go test -run '^$$' -bench 'Ratio|Feel' -benchtime 1x ./compile/ops ./compile/causal ./canvas/...
+	go test -run '^$$' -bench Ratio -benchtime 20x ./compile/ops
+	go test -run '^$$' -bench Reading ./compile/causal
+	go test -run '^$$' -bench Frame ./canvas/scene
 
 golden:
-	go test ./canvas/... ./compile/model/... ./app/report/... -update
+	go test ./canvas/... ./compile/model/... -update
 
 need:
 	@sh .build/need.sh run

@@ -1,9 +1,9 @@
 package causal
 
 import (
+	"math"
 	"math/rand/v2"
 	"testing"
-	"time"
 
 	"arrowroot/compile/graph"
 )
@@ -30,33 +30,43 @@ func large(t testing.TB) *graph.Graph {
 	return g
 }
 
+// BenchmarkReading reads a large diagram beside a yardstick of the same run: a
+// reading should take less than 100 ms, which is what a hand feels, where a
+// million square roots take a few.
 func BenchmarkReading(b *testing.B) {
 	g := large(b)
-	b.ReportAllocs()
-	for b.Loop() {
-		Read(g, Query{Exposure: 12, Outcome: 26, Held: []int{2, 5}})
-	}
+	b.Run("28 nodes, 99 arrows", func(b *testing.B) {
+		b.ReportAllocs()
+		for b.Loop() {
+			Read(g, Query{Exposure: 12, Outcome: 26, Held: []int{2, 5}})
+		}
+	})
+	b.Run("yardstick: a million square roots", func(b *testing.B) {
+		sum := 0.0
+		for b.Loop() {
+			for i := range 1_000_000 {
+				sum += math.Sqrt(float64(i))
+			}
+		}
+		if sum == 0 {
+			b.Fatal("nothing was added")
+		}
+	})
 }
 
-// Every question about a large diagram is read while a hand draws; the bound
-// is loose for a busy machine (the aim is 100 ms for one reading).
-func TestLargeDiagramsAreQuick(t *testing.T) {
+// Every question about a large diagram has a reading that says how much of it
+// was left out.
+func TestLargeDiagramsAreRead(t *testing.T) {
 	g := large(t)
-	start := time.Now()
-	longest, readings := time.Duration(0), 0
 	for x := range g.Len() {
 		for y := range g.Len() {
-			if (x+y)%5 != 0 {
+			if x == y || (x+y)%5 != 0 {
 				continue
 			}
-			began := time.Now()
-			Read(g, Query{Exposure: x, Outcome: y, Held: []int{2, 5}})
-			longest = max(longest, time.Since(began))
-			readings++
+			r := Read(g, Query{Exposure: x, Outcome: y, Held: []int{2, 5}})
+			if r.Verdict.Sentence == "" || len(r.Paths) > 500 || r.MorePaths && len(r.Paths) < 500 {
+				t.Errorf("%s on %s: %d paths, more %v, verdict %q", g.Names[x], g.Names[y], len(r.Paths), r.MorePaths, r.Verdict.Sentence)
+			}
 		}
-	}
-	t.Logf("%d readings, %v on average, longest %v", readings, time.Since(start)/time.Duration(readings), longest)
-	if longest > time.Second {
-		t.Errorf("one reading took %v", longest)
 	}
 }
