@@ -24,13 +24,14 @@ type desk struct {
 	editor   *canvas.Editor
 	commands commandTable
 
-	pick      scene.Selection
-	paint     scene.PaintKind // "" = none
-	dismissed map[string]bool // problems that the user has read and put away
-	complaint string          // why the last thing could not be done; "" = nothing
-	loss      string          // rows that a fit would lose and that the user is being asked about; "" = not asking
-	agreed    string          // the loss that the user agreed to
-	fitNext   bool            // show the whole sheet as soon as there is something on it
+	pick       scene.Selection
+	paint      scene.PaintKind // "" = none
+	dismissed  map[string]bool // problems that the user has read and put away
+	complaint  string          // why the last thing could not be done; "" = nothing
+	loss       string          // rows that a fit would lose and that the user is being asked about; "" = not asking
+	agreed     string          // the loss that the user agreed to
+	lastFolder string          // where a file was last opened or saved
+	fitNext    bool            // show the whole sheet as soon as there is something on it
 
 	frame   *frame
 	drawer  *drawer

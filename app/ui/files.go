@@ -2,14 +2,11 @@ package ui
 
 import (
 	"bytes"
-	"errors"
 	"os"
 	"path/filepath"
 	"strings"
 
 	"fyne.io/fyne/v2"
-	"fyne.io/fyne/v2/dialog"
-	"fyne.io/fyne/v2/storage"
 
 	"arrowroot/app/report"
 	"arrowroot/assets"
@@ -105,7 +102,7 @@ func (d *desk) save() { d.saveThen(func() {}) }
 
 func (d *desk) saveThen(next func()) {
 	if d.view.Path == "" {
-		d.fileDialog(false, suggested(d.view.Study)+".arrowroot", nil, func(path string) { d.saveTo(path, next) })
+		d.askFile("Save the study", "Save", false, suggested(d.view.Study)+".arrowroot", []string{".arrowroot"}, func(path string) { d.saveTo(path, next) })
 		return
 	}
 	d.saveTo(d.view.Path, next)
@@ -133,23 +130,23 @@ func suggested(s *study.Study) string {
 }
 
 func (d *desk) openDialog() {
-	d.orSaved(func() { d.fileDialog(true, "", []string{".arrowroot"}, d.open) })
+	d.orSaved(func() { d.askFile("Open a study", "Open", true, "", []string{".arrowroot"}, d.open) })
 }
 
 func (d *desk) saveDialog() {
-	d.fileDialog(false, suggested(d.view.Study)+".arrowroot", nil, func(path string) { d.saveTo(path, func() {}) })
+	d.askFile("Save the study as", "Save", false, suggested(d.view.Study)+".arrowroot", []string{".arrowroot"}, func(path string) { d.saveTo(path, func() {}) })
 }
 
 func (d *desk) dataDialog() {
-	d.fileDialog(true, "", []string{".csv", ".tsv", ".txt", ".tab"}, d.loadData)
+	d.askFile("Open data", "Open", true, "", []string{".csv", ".tsv", ".txt", ".tab"}, d.loadData)
 }
 
 func (d *desk) svgDialog() {
-	d.fileDialog(false, suggested(d.view.Study)+".svg", nil, d.saveSVG)
+	d.askFile("Save the sheet as SVG", "Save", false, suggested(d.view.Study)+".svg", []string{".svg"}, d.saveSVG)
 }
 
 func (d *desk) reportDialog() {
-	d.fileDialog(false, suggested(d.view.Study)+".html", nil, d.saveReport)
+	d.askFile("Save a report", "Save", false, suggested(d.view.Study)+".html", []string{".html"}, d.saveReport)
 }
 
 func (d *desk) reportInput() report.Input {
@@ -189,52 +186,4 @@ func (d *desk) saved(path string, err error) {
 		return
 	}
 	d.notice("Saved " + filepath.Base(path))
-}
-
-// fileDialog asks for a path: Fyne's own dialog, in the folder of the study.
-func (d *desk) fileDialog(opening bool, name string, endings []string, use func(path string)) {
-	var x *dialog.FileDialog
-	if opening {
-		x = dialog.NewFileOpen(func(r fyne.URIReadCloser, err error) {
-			if err != nil {
-				d.complain(err.Error())
-				return
-			}
-			if r != nil {
-				path := r.URI().Path()
-				_ = r.Close() // it is read again by its path, in the background
-				use(path)
-			}
-		}, d.win)
-	} else {
-		x = dialog.NewFileSave(func(w fyne.URIWriteCloser, err error) {
-			if err != nil {
-				d.complain(err.Error())
-				return
-			}
-			if w != nil {
-				path := w.URI().Path()
-				if err := w.Close(); err != nil && !errors.Is(err, os.ErrClosed) {
-					d.complain(err.Error())
-					return
-				}
-				use(path)
-			}
-		}, d.win)
-		x.SetFileName(name)
-	}
-	if len(endings) > 0 {
-		x.SetFilter(storage.NewExtensionFileFilter(endings))
-	}
-	folder := filepath.Dir(d.view.Path)
-	if d.view.Path == "" {
-		folder, _ = os.Getwd()
-	}
-	if list, err := storage.ListerForURI(storage.NewFileURI(folder)); err == nil {
-		x.SetLocation(list)
-	}
-	x.SetView(dialog.ListView)
-	x.Show()
-	size := d.win.Canvas().Size()
-	x.Resize(fyne.NewSize(min(820, size.Width-40), min(560, size.Height-40)))
 }

@@ -56,7 +56,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	d.drawer = newDrawer(d)
 	d.frame = newFrame(d.kit, strip.object, left, sheet, d.status.object, details.pane, d.drawer.object, remembered(app.Preferences()))
 	d.frame.onChange = func(a arrangement) { remember(app.Preferences(), a) }
-	d.panels = []panel{strip, ledger, rivals, details, d.drawer, banner, empty, dock, d.status, sheetPanel{d, sheet}, titlePanel{w}}
+	d.panels = []panel{strip, ledger, rivals, details, d.drawer, banner, empty, dock, sheetPanel{d, sheet}, d.status, titlePanel{w}}
 
 	w.wireSheet()
 	w.makeMenu()
