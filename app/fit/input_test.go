@@ -126,10 +126,13 @@ func TestNowhereFinite(t *testing.T) {
 			}
 		}
 	}
-	says(fitTraps(t, trapRows, formula("log rate = alpha_bees + beta_hedge_bees * log (hedge - 60) + beta_hours_bees * hours")),
-		"log (hedge - 60)", "row 1", "hedge is 40")
+	err := fitTraps(t, trapRows, formula("log rate = alpha_bees + beta_hedge_bees * log (hedge - 60) + beta_hours_bees * hours"))
+	says(err, "log (hedge - 60)", "row 1", "hedge is 40")
+	if blocked := new(Blocked); !errors.As(err, &blocked) || blocked.Problems[0].Variable != "bees" {
+		t.Errorf("%v, want a *Blocked about bees", err)
+	}
 
-	err := fitTraps(t, trapRows, formula("log rate = sqrt(a - 1000) + beta_hedge_bees * hedge + beta_hours_bees * hours",
+	err = fitTraps(t, trapRows, formula("log rate = sqrt(a - 1000) + beta_hedge_bees * hedge + beta_hours_bees * hours",
 		study.Prior{Parameter: "a", Text: "normal with mean 0, sd 1"}))
 	var start *infer.StartError
 	if !errors.As(err, &start) {
