@@ -330,6 +330,9 @@ func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 	} else {
 		s.add(newProse(sizeSmall, span{text: shapeWords(p), token: tokenMuted}))
 	}
+	if p.Shape == model.ByPlate {
+		return // its prior is the law of the levels: mean and spread stand by themselves
+	}
 	text, own := d.priorText(of, p.Name)
 	f := d.field(text, priorPhrase(p), func(text string) { d.setPrior(of, p.Name, text) })
 	s.keys["prior "+p.Name] = f

@@ -18,7 +18,7 @@ type kit struct {
 }
 
 func newKit(post func(func())) *kit {
-	return &kit{post: post, tips: newTips(post), onPopover: func() {}}
+	return &kit{post: post, tips: newTips(post), onPopover: func() {}, onKey: func(fyne.KeyName) {}}
 }
 
 // ink is the present colour of a token.

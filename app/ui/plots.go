@@ -70,9 +70,9 @@ func priorCurve(p *model.Parameter) draw.Curve {
 	const n = 160
 	step := (high - low) / n
 	var c draw.Curve
-	for i := range n + 1 {
-		x := low + step*float64(i)
-		y := (cdf(x+step/2) - cdf(max(x-step/2, low-step))) / step
+	for i := range n {
+		x := low + step*(float64(i)+0.5)
+		y := (cdf(x+step/2) - cdf(x-step/2)) / step
 		if math.IsNaN(y) || math.IsInf(y, 0) {
 			y = 0
 		}

@@ -19,6 +19,7 @@ type press struct {
 
 	key         string // names the control across rebuilds of its panel
 	tip         string
+	tipBeside   bool // the tip stands to the right, not below
 	padX, padY  float32
 	minW, minH  float32
 	onTap       func()
@@ -117,7 +118,7 @@ func (p *press) MouseIn(e *desktop.MouseEvent) {
 		p.onHover(true)
 	}
 	if p.tip != "" {
-		p.kit.tips.after(p.tip, p)
+		p.kit.tips.after(p.tip, p, p.tipBeside)
 	}
 }
 
@@ -174,6 +175,8 @@ func (p *press) TypedKey(e *fyne.KeyEvent) {
 		if p.onTap != nil {
 			p.onTap()
 		}
+	default:
+		p.kit.onKey(e.Name)
 	}
 }
 

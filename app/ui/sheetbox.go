@@ -30,6 +30,7 @@ func newDock(d *desk) *dock {
 	} {
 		c := d.commands.find(t.id)
 		p := d.iconButton(newIcon(t.icon, tokenInk, 20), c.tip(), c.run)
+		p.tipBeside = true
 		p.skin = func(p *press) skin {
 			if p.selected {
 				return skin{fill: tokenTint, radius: 5}

@@ -29,24 +29,28 @@ func newTips(post func(func())) *tips {
 	return t
 }
 
-func (t *tips) after(text string, over fyne.CanvasObject) {
+func (t *tips) after(text string, over fyne.CanvasObject, beside bool) {
 	t.turn++
 	turn := t.turn
 	time.AfterFunc(tipDelay, func() {
 		t.post(func() {
 			if turn == t.turn {
-				t.show(text, over)
+				t.show(text, over, beside)
 			}
 		})
 	})
 }
 
-func (t *tips) show(text string, over fyne.CanvasObject) {
+func (t *tips) show(text string, over fyne.CanvasObject, beside bool) {
 	d := fyne.CurrentApp().Driver()
 	if d.CanvasForObject(over) == nil {
 		return
 	}
 	at := d.AbsolutePositionForObject(over)
+	if beside {
+		t.put(text, at.AddXY(over.Size().Width+8, (over.Size().Height-22)/2), at.Y-4)
+		return
+	}
 	t.put(text, at.AddXY(0, over.Size().Height+4), at.Y-4)
 }
 

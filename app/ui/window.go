@@ -41,6 +41,11 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 		win: app.NewWindow("Arrowroot"), editor: canvas.NewEditor(post), trace: newTrace(),
 	}
 	d.onPopover = func() { d.trace.note(d) }
+	d.onKey = func(key fyne.KeyName) {
+		if len(key) > 1 && key[0] == 'F' { // F1, F2: they mean the same everywhere
+			d.key(string(key))
+		}
+	}
 	d.commands = commandsOf(d)
 	w := &Window{desk: d}
 	d.view = s.View()
