@@ -13,8 +13,9 @@ type kit struct {
 	post func(func())
 	tips *tips
 
-	onPopover func()     // one was opened or closed
-	popovers  []*popover // opened, the last on top; some may be closed again
+	onPopover func()             // one was opened or closed
+	onKey     func(fyne.KeyName) // a key that no control took
+	popovers  []*popover         // opened, the last on top; some may be closed again
 }
 
 func newKit(post func(func())) *kit {
