@@ -1,6 +1,7 @@
 package session
 
 import (
+	"bytes"
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
@@ -18,6 +19,7 @@ import (
 type loaded struct {
 	table *table.Table
 	err   error
+	text  []byte // of a built-in file that has no place on disk; nil otherwise
 }
 
 // Open puts the study at path in place of the present one. On an error
@@ -38,15 +40,26 @@ func (s *Session) Open(path string) error {
 	return nil
 }
 
-// OpenBuiltIn puts a study in place that has no file yet; its data are given
-// by name.
-func (s *Session) OpenBuiltIn(doc *study.Study, tables map[string]*table.Table) {
-	s.tables = make(map[string]*loaded)
-	for name, t := range tables {
-		s.tables[name] = &loaded{table: t}
+// OpenBuiltIn puts a study in place that has no file yet. files are the bytes
+// of the data files that it names; they are written beside the study when it
+// is saved.
+func (s *Session) OpenBuiltIn(doc *study.Study, files map[string][]byte) error {
+	tables := make(map[string]*loaded)
+	for _, d := range doc.Data {
+		text, ok := files[d.File]
+		if !ok {
+			continue
+		}
+		t, err := table.Read(d.Name, bytes.NewReader(text), table.Options{})
+		if err != nil {
+			return err
+		}
+		tables[d.Name] = &loaded{table: t, text: text}
 	}
+	s.tables = tables
 	s.replace(doc, "")
 	s.show()
+	return nil
 }
 
 // New puts an empty study in place.
@@ -93,26 +106,34 @@ func (s *Session) Save(path string) error {
 	return nil
 }
 
-// rebase names data files from another folder. Data that came with a built-in
-// study and has no file is written beside the study.
+// rebase names data files from another folder, absolute ones too: a study and
+// its data can then move together. Data that came with a built-in study are
+// written there.
 func (s *Session) rebase(doc *study.Study, folder string) (*study.Study, error) {
 	for _, d := range doc.Data {
-		if d.File == "" || filepath.IsAbs(d.File) {
+		if d.File == "" {
 			continue
 		}
 		to := *d
-		from := filepath.Join(s.folder(), d.File)
-		if _, err := os.Stat(from); err != nil || s.path == "" && s.builtIn(d) {
-			continue
+		if l := s.tables[d.Name]; l != nil && l.text != nil {
+			to.File = filepath.Base(d.File)
+			if err := writeOnce(filepath.Join(folder, to.File), l.text); err != nil {
+				return nil, err
+			}
+		} else {
+			full := filepath.FromSlash(d.File)
+			if !filepath.IsAbs(full) {
+				full = filepath.Join(s.folder(), full)
+			}
+			full, err := filepath.Abs(full)
+			if err != nil {
+				return nil, err
+			}
+			if to.File, err = filepath.Rel(folder, full); err != nil {
+				to.File = full // another drive
+			}
+			to.File = filepath.ToSlash(to.File)
 		}
-		full, err := filepath.Abs(from)
-		if err != nil {
-			return nil, err
-		}
-		if to.File, err = filepath.Rel(folder, full); err != nil {
-			to.File = full
-		}
-		to.File = filepath.ToSlash(to.File)
 		next, err := study.ChangeData{Name: d.Name, To: to}.Apply(doc)
 		if err != nil {
 			return nil, err
@@ -122,9 +143,19 @@ func (s *Session) rebase(doc *study.Study, folder string) (*study.Study, error) 
 	return doc, nil
 }
 
-func (s *Session) builtIn(d *study.Data) bool {
-	l := s.tables[d.Name]
-	return l != nil && l.table != nil
+// writeOnce writes a data file that is not there yet. One with other contents
+// is never written over.
+func writeOnce(path string, text []byte) error {
+	have, err := os.ReadFile(path)
+	switch {
+	case err == nil && bytes.Equal(have, text):
+		return nil
+	case err == nil:
+		return fmt.Errorf("%s is there already and differs from this study's data: save the study in another folder", path)
+	case !errors.Is(err, os.ErrNotExist):
+		return err
+	}
+	return os.WriteFile(path, text, 0o644)
 }
 
 // LoadData reads a table from a file and adds it to the study, binding

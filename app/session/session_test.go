@@ -132,6 +132,9 @@ func TestSaveAndReopen(t *testing.T) {
 	if s.View().Dirty {
 		t.Error("dirty after saving")
 	}
+	if f := s.View().Study.Data[0].File; f != "d.csv" {
+		t.Errorf("the data file is called %q from beside it", f)
+	}
 	text, err := os.ReadFile(path)
 	must(t, err)
 	must(t, s.Do(study.SetTitle{Title: "changed"}))
@@ -147,6 +150,28 @@ func TestSaveAndReopen(t *testing.T) {
 	before := s.View().Study
 	if err := s.Open(path); err == nil || s.View().Study != before {
 		t.Errorf("a study of another version: %v", err)
+	}
+}
+
+// A built-in study brings its data along when it is saved, and never writes
+// over a file of the user's.
+func TestSaveABuiltInStudy(t *testing.T) {
+	w, s := newWindow(t)
+	doc, err := study.Load("../../testdata/studies/scholarship.arrowroot")
+	must(t, err)
+	must(t, s.OpenBuiltIn(doc, map[string][]byte{"scholarship.csv": []byte("award,mark,hours,entry,income\n1,2,3,4,5\n2,3,4,5,6\n")}))
+	folder := t.TempDir()
+	path := filepath.Join(folder, "mine.arrowroot")
+	must(t, s.Save(path))
+	must(t, s.Open(path))
+	w.until(t, "the table", func() bool { return s.View().Table != nil })
+	if s.View().Table.Rows != 2 {
+		t.Errorf("%d rows", s.View().Table.Rows)
+	}
+	must(t, os.WriteFile(filepath.Join(folder, "scholarship.csv"), []byte("mine\n"), 0o644))
+	must(t, s.OpenBuiltIn(doc, map[string][]byte{"scholarship.csv": []byte("award\n1\n")}))
+	if err := s.Save(filepath.Join(folder, "other.arrowroot")); err == nil {
+		t.Error("a file of the user's was written over")
 	}
 }
 
@@ -186,9 +211,9 @@ func TestFitBecomesStale(t *testing.T) {
 	w, s := newWindow(t)
 	doc, err := study.Load("../../testdata/studies/scholarship.arrowroot")
 	must(t, err)
-	tab, err := ReadData("../../testdata/studies", doc.Data[0])
+	csv, err := os.ReadFile("../../testdata/studies/scholarship.csv")
 	must(t, err)
-	s.OpenBuiltIn(doc, map[string]*table.Table{doc.Data[0].Name: tab})
+	must(t, s.OpenBuiltIn(doc, map[string][]byte{"scholarship.csv": csv}))
 	w.until(t, "a model", func() bool { return s.View().Model != nil })
 	s.Fit()
 	if !s.View().Running {

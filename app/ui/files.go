@@ -13,7 +13,6 @@ import (
 	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
-	"arrowroot/compile/table"
 )
 
 // orSaved runs next, asking first if there is unsaved work.
@@ -62,28 +61,20 @@ func (d *desk) showExample() error {
 	if err != nil {
 		return err
 	}
-	tables := make(map[string]*table.Table)
+	files := make(map[string][]byte)
 	for _, x := range doc.Data {
-		if x.File == "" {
-			continue
-		}
-		data, err := assets.Example(x.File)
-		if err != nil {
-			return err
-		}
-		if tables[x.Name], err = table.Read(x.File, bytes.NewReader(data), table.Options{}); err != nil {
+		if files[x.File], err = assets.Example(x.File); err != nil {
 			return err
 		}
 	}
 	d.forget()
-	d.session.OpenBuiltIn(doc, tables)
-	return nil
+	return d.session.OpenBuiltIn(doc, files)
 }
 
 // open puts the study at a path in place.
 func (d *desk) open(path string) {
 	if err := d.session.Open(path); err != nil {
-		d.complain(err.Error() + ". Nothing was opened and nothing changed.")
+		d.complain(strings.TrimSuffix(err.Error(), ".") + ". The file was not opened and not changed.")
 		return
 	}
 	d.forget()
