@@ -24,7 +24,7 @@ func (d *desk) about() {
 
 // showKeys lists every key there is.
 func (d *desk) showKeys() {
-	const width = 560
+	const width = 600
 	var p *popover
 	left, right := column(3), column(3)
 	n := 0
@@ -42,7 +42,7 @@ func (d *desk) showKeys() {
 		if i >= (n+1)/2 {
 			side = right
 		}
-		side.Add(row(8, fixed(88, 0, newLabel(c.keys, sizeSmall, tokenAction, fyne.TextStyle{Bold: true})), stretch(newLabel(c.label, sizeSmall, tokenInk, fyne.TextStyle{}).shrinkTo(20))))
+		side.Add(row(8, fixed(104, 0, newLabel(c.keys, sizeSmall, tokenAction, fyne.TextStyle{Bold: true})), stretch(newLabel(c.label, sizeSmall, tokenInk, fyne.TextStyle{}).shrinkTo(20))))
 		i++
 	}
 	body := column(10,

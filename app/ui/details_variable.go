@@ -438,11 +438,32 @@ func (d *desk) priorText(of, name string) (text string, own bool) {
 			}
 		}
 	}
+	if a := d.arrowOf(of, name); a != nil && a.Prior != "" {
+		return a.Prior, true
+	}
 	return "", false
+}
+
+// arrowOf is the arrow whose coefficient a parameter is; nil if it is none.
+func (d *desk) arrowOf(to, parameter string) *study.Arrow {
+	for _, a := range d.view.Rival.Diagram.Arrows {
+		if a.To == to && (parameter == "beta_"+a.From+"_"+to || parameter == "step_"+a.From+"_"+to) {
+			return a
+		}
+	}
+	return nil
 }
 
 // setPrior gives a parameter another prior; an empty text is the default.
 func (d *desk) setPrior(of, name, text string) {
+	inLaw := false
+	if n := d.view.Rival.Diagram.Node(of); n != nil && n.Law != nil {
+		inLaw = slices.ContainsFunc(n.Law.Priors, func(p study.Prior) bool { return p.Parameter == name })
+	}
+	if a := d.arrowOf(of, name); a != nil && !inLaw {
+		d.changeArrow(a.From, a.To, func(a *study.Arrow) { a.Prior = text })
+		return
+	}
 	d.changeLaw(of, func(l *study.Law) {
 		l.Priors = slices.DeleteFunc(slices.Clone(l.Priors), func(p study.Prior) bool { return p.Parameter == name })
 		if text != "" {

@@ -185,7 +185,10 @@ func upperRune(r rune) rune {
 // they would be too narrow.
 type evenLayout struct{ gap float32 }
 
-const evenLeast = 190
+const (
+	evenLeast = 190
+	evenMost  = 460
+)
 
 func (l *evenLayout) columns(n int, width float32) int {
 	for n > 1 && (width-l.gap*float32(n-1))/float32(n) < evenLeast {
@@ -199,7 +202,7 @@ func (l *evenLayout) each(objects []fyne.CanvasObject, width float32, f func(o f
 	if n == 0 {
 		return 0
 	}
-	w := (width - l.gap*float32(n-1)) / float32(n)
+	w := min((width-l.gap*float32(n-1))/float32(n), evenMost)
 	y := float32(0)
 	for i := 0; i < len(objects); i += n {
 		line := objects[i:min(i+n, len(objects))]

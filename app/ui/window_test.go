@@ -2,6 +2,7 @@ package ui
 
 import (
 	"encoding/json"
+	"image/color"
 	"os"
 	"path/filepath"
 	"slices"
@@ -350,9 +351,42 @@ func TestRefusalStandsInTheBanner(t *testing.T) {
 		t.Fatal("the complaint stays after something else was done")
 	}
 	b.say("open " + filepath.Join(t.TempDir(), "nowhere.arrowroot"))
-	if !strings.Contains(b.banner(), "nothing changed") || len(b.view.Study.Variables) != 4 {
-		// unsaved work asks first
-		b.closeTop()
+	if !b.closeTop() {
+		t.Fatal("opening another file does not ask about unsaved work")
+	}
+	b.open(filepath.Join(t.TempDir(), "nowhere.arrowroot"))
+	if !strings.Contains(b.banner(), "not opened and not changed") || len(b.view.Study.Variables) != 4 {
+		t.Fatalf("the banner says %q", b.banner())
+	}
+}
+
+// The window paints in both shades and at the size of a small screen, the same
+// each time.
+func TestPaints(t *testing.T) {
+	b := newBench(t)
+	b.window.OpenExample()
+	b.wait("the model of the example", func() bool { return b.view.Model != nil })
+	seen := make(map[color.RGBA]bool)
+	for range 2 {
+		for _, size := range []fyne.Size{{Width: 1366, Height: 740}, {Width: 683, Height: 370}} {
+			b.win.Resize(size)
+			b.refresh()
+			one, two := b.win.Canvas().Capture(), b.win.Canvas().Capture()
+			r := one.Bounds()
+			for y := r.Min.Y; y < r.Max.Y; y += 7 {
+				for x := r.Min.X; x < r.Max.X; x += 7 {
+					if one.At(x, y) != two.At(x, y) {
+						t.Fatalf("two pictures of the same window differ at %d, %d", x, y)
+					}
+				}
+			}
+			seen[color.RGBAModel.Convert(one.At(r.Max.X-3, r.Max.Y-3)).(color.RGBA)] = true
+		}
+		b.commands.find("shade").run()
+		b.queue.drain()
+	}
+	if len(seen) < 2 {
+		t.Fatal("light and dark look alike")
 	}
 }
 
