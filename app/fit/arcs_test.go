@@ -56,7 +56,17 @@ func frontDoor(t *testing.T) Request {
 func TestFrontDoor(t *testing.T) {
 	long(t)
 	t.Parallel()
-	e := run(t, frontDoor(t)).Effect
+	req := frontDoor(t)
+	// Smoking, a carried term, acts differently with and without tar.
+	law := &study.Law{
+		Formula: "logit p = alpha_cancer + beta_tar_cancer * tar + beta_smoking_cancer * smoking + c * tar * smoking",
+		Priors:  []study.Prior{{Parameter: "c", Text: "normal with mean 0, sd 3"}},
+	}
+	var err error
+	if req.Study, err = (study.ChangeLaw{Rival: req.Rival, Variable: "cancer", Law: law}).Apply(req.Study); err != nil {
+		t.Fatal(err)
+	}
+	e := run(t, req).Effect
 	if !e.Identified || e.Full == nil || e.HeldValid {
 		t.Fatalf("identified %v, held valid %v, refusal %q", e.Identified, e.HeldValid, e.Refusal)
 	}

@@ -42,7 +42,7 @@ func TestNorris(t *testing.T) {
 	var c certified
 	fromJSON(t, "norris", &c)
 	req := request(t, "norris")
-	req.Draws = 3000
+	req.Draws = 4000
 	f := run(t, req).Full
 	sigma, factor := c.spread(5)
 	check(t, "sigma", f.of(t, parameter("sigma_y")), sigma)
@@ -61,7 +61,7 @@ func TestLongley(t *testing.T) {
 	var c certified
 	fromJSON(t, "longley", &c)
 	req := request(t, "longley")
-	req.Draws = 8000
+	req.Draws = 12000
 	f := run(t, req).Full
 	const residualUnit = 1000 // employed is divided by this
 	scaled := c
@@ -105,7 +105,7 @@ func TestWampler(t *testing.T) {
 			var c certified
 			fromJSON(t, w.study, &c)
 			req := request(t, w.study)
-			req.Draws = 5000
+			req.Draws = 8000
 			f := run(t, req).Full
 			factor := w.sd / third.ResidualSD
 			if w.sd == 0 {

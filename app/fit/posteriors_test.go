@@ -11,16 +11,16 @@ import (
 // which of theirs.
 type posterior struct {
 	study string
-	draws int // per chain: enough for an effective sample size of 4,000
+	draws int // per chain: an effective sample size near 10,000, so that 3 % of an sd are 4 of its errors
 	is    map[string]value
 }
 
 var posteriors = []posterior{
-	{study: "ucb_gender", draws: 4000, is: map[string]value{
+	{study: "ucb_gender", draws: 8000, is: map[string]value{
 		"intercept": parameter("alpha_admitted"),
 		"female":    parameter("beta_female_admitted"),
 	}},
-	{study: "ucb_gender_dept", draws: 5000, is: map[string]value{
+	{study: "ucb_gender_dept", draws: 8000, is: map[string]value{
 		"intercept": parameter("alpha_admitted"),
 		"female":    parameter("beta_female_admitted"),
 		"deptB":     parameter("beta_dept_b_admitted"),
@@ -29,16 +29,16 @@ var posteriors = []posterior{
 		"deptE":     parameter("beta_dept_e_admitted"),
 		"deptF":     parameter("beta_dept_f_admitted"),
 	}},
-	{study: "infert_logit", draws: 4000, is: map[string]value{
+	{study: "infert_logit", draws: 8000, is: map[string]value{
 		"intercept":   parameter("a"),
 		"spontaneous": parameter("b_spontaneous"),
 		"induced":     parameter("b_induced"),
 	}},
-	{study: "mtcars_am_logit", draws: 5000, is: map[string]value{
+	{study: "mtcars_am_logit", draws: 8000, is: map[string]value{
 		"a": parameter("alpha_manual"),
 		"b": parameter("beta_weight_manual"),
 	}},
-	{study: "insectsprays_poisson", draws: 5000, is: map[string]value{
+	{study: "insectsprays_poisson", draws: 10000, is: map[string]value{
 		"intercept": parameter("alpha_insects"),
 		"B":         parameter("beta_spray_b_insects"),
 		"C":         parameter("beta_spray_c_insects"),
@@ -46,8 +46,8 @@ var posteriors = []posterior{
 		"E":         parameter("beta_spray_e_insects"),
 		"F":         parameter("beta_spray_f_insects"),
 	}},
-	{study: "warpbreaks_poisson", draws: 5000, is: warpbreaks},
-	{study: "warpbreaks_negbin", draws: 6000, is: with(warpbreaks, "log_r", func(p func(string) float64) float64 {
+	{study: "warpbreaks_poisson", draws: 8000, is: warpbreaks},
+	{study: "warpbreaks_negbin", draws: 9000, is: with(warpbreaks, "log_r", func(p func(string) float64) float64 {
 		return math.Log(p("k_breaks"))
 	})},
 	{study: "cars_normal", draws: 4000, is: map[string]value{
@@ -74,7 +74,7 @@ var posteriors = []posterior{
 		"G":   entry("alpha_gain_school", "G"),
 		"H":   entry("alpha_gain_school", "H"),
 	}},
-	{study: "dyestuff_oneway", draws: 8000, is: map[string]value{
+	{study: "dyestuff_oneway", draws: 40000, is: map[string]value{
 		"mu": parameter("alpha_yield"),
 		"t":  parameter("tau_yield_batch"),
 		"s":  parameter("sigma_yield"),
