@@ -61,7 +61,7 @@ func meanVariance(x []float64) (mean, variance float64) {
 
 // RHat is the larger of the rank-normalised split R-hat of the draws and of
 // their distances from the median (Vehtari et al. 2021, section 4). NaN for a
-// constant.
+// constant and for chains of fewer than four draws.
 func RHat(chains [][]float64) float64 {
 	halves := split(chains)
 	if len(halves[0]) < 2 || constant(halves) {
@@ -191,7 +191,8 @@ func (a *autocovariance) add(dst, x []float64, share float64) {
 }
 
 // normalScores replaces draws by the normal quantiles of their pooled ranks,
-// ties averaged (Blom 1958 offset).
+// ties averaged (Blom 1958 offset). What is no number ranks first, each by
+// itself.
 func normalScores(chains [][]float64) [][]float64 {
 	type place struct {
 		value    float64
@@ -210,7 +211,7 @@ func normalScores(chains [][]float64) [][]float64 {
 	}
 	total := float64(len(places))
 	for from := 0; from < len(places); {
-		to := from
+		to := from + 1 // NaN does not equal itself
 		for to < len(places) && places[to].value == places[from].value {
 			to++
 		}

@@ -24,26 +24,38 @@ type Summary struct {
 	BulkESS   float64
 	TailESS   float64
 	MeanError float64 // Monte Carlo standard error of Centre
-	Constant  bool
+	Constant  bool    // every draw is the same, of enough draws to say so
+	NotFinite int     // draws that are no finite number; if any, nothing else is said
 }
 
+// constantDraws is how many equal draws make a constant: one draw is equal to
+// itself, which says nothing.
+const constantDraws = 50
+
 // Of summarises the draws of one quantity, one slice for each chain, all of
-// the same length.
+// the same length. Where a draw is no finite number, or there is none, every
+// number of the summary is NaN.
 func Of(chains [][]float64, level float64) Summary {
 	all := pooled(chains)
-	sort.Float64s(all)
 	s := Summary{Level: level}
-	if len(all) == 0 {
-		nan := math.NaN()
-		return Summary{Level: level, Centre: nan, Median: nan, Spread: nan, Low: nan, High: nan, RHat: nan, BulkESS: nan, TailESS: nan, MeanError: nan}
+	for _, x := range all {
+		if math.IsNaN(x) || math.IsInf(x, 0) {
+			s.NotFinite++
+		}
 	}
+	if len(all) == 0 || s.NotFinite > 0 {
+		nan := math.NaN()
+		return Summary{Level: level, NotFinite: s.NotFinite, Centre: nan, Median: nan, Spread: nan, Low: nan, High: nan, RHat: nan, BulkESS: nan, TailESS: nan, MeanError: nan}
+	}
+	sort.Float64s(all)
 	var variance float64
 	s.Centre, variance = meanVariance(all)
 	s.Spread = math.Sqrt(variance)
 	s.Median = Quantile(all, 0.5)
 	s.Low, s.High = Quantile(all, (1-level)/2), Quantile(all, (1+level)/2)
-	if s.Constant = all[0] == all[len(all)-1]; s.Constant {
+	if all[0] == all[len(all)-1] {
 		s.Centre, s.Spread = all[0], 0
+		s.Constant = len(all) >= constantDraws
 	}
 	s.RHat, s.BulkESS, s.TailESS = RHat(chains), BulkESS(chains), TailESS(chains)
 	s.MeanError = s.Spread / math.Sqrt(MeanESS(chains))
@@ -112,6 +124,7 @@ const (
 	cautionESS     = 100
 	cautionDiverge = 0.005
 	wantedChains   = 4
+	leastPerHalf   = 4 // draws of each half chain, without which nothing can be judged
 )
 
 // Judge gives the verdict on one quantity computed from a sampling. A
@@ -124,6 +137,10 @@ func Judge(q Summary, s Sampling) Trust {
 	}
 	if s.Draws == 0 {
 		worsen(Unusable, "there are no draws after warm-up")
+		return t
+	}
+	if !q.Constant && s.Draws < 2*leastPerHalf*s.Chains {
+		worsen(Unusable, "too few draws to judge")
 		return t
 	}
 	if s.Chains < wantedChains {
@@ -140,20 +157,30 @@ func Judge(q Summary, s Sampling) Trust {
 	if float64(s.AtLimit) >= soundAtLimit*float64(s.Draws) {
 		worsen(Caution, "%d of %d trajectories were cut at the depth limit", s.AtLimit, s.Draws)
 	}
+	if q.NotFinite > 0 {
+		worsen(Unusable, "%d of %d draws are not a finite number", q.NotFinite, s.Draws)
+		return t
+	}
 	if q.Constant {
 		return t
 	}
+	if math.IsNaN(q.RHat) || math.IsNaN(q.BulkESS) || math.IsNaN(q.TailESS) {
+		worsen(Unusable, "too few draws to judge")
+		return t
+	}
 	switch {
-	case !(q.RHat < cautionRHat):
+	case math.IsInf(q.RHat, 1):
+		worsen(Unusable, "chains disagree: none of them moves")
+	case q.RHat >= cautionRHat:
 		worsen(Unusable, "chains disagree (R-hat %.2f)", q.RHat)
-	case !(q.RHat < soundRHat):
+	case q.RHat >= soundRHat:
 		worsen(Caution, "chains do not quite agree (R-hat %.3f)", q.RHat)
 	}
 	worst := math.Min(q.BulkESS, q.TailESS)
 	switch {
-	case !(worst >= cautionESS):
+	case worst < cautionESS:
 		worsen(Unusable, "too few effective draws (%.0f)", worst)
-	case !(worst >= soundESS):
+	case worst < soundESS:
 		worsen(Caution, "few effective draws (%.0f)", worst)
 	}
 	return t

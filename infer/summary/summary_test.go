@@ -8,6 +8,7 @@ import (
 	"os"
 	"path/filepath"
 	"strconv"
+	"strings"
 	"testing"
 )
 
@@ -144,5 +145,65 @@ func TestVerdicts(t *testing.T) {
 		if got := Judge(q, s); got.Verdict != c.want || (len(got.Reasons) == 0) != (c.want == Sound) {
 			t.Errorf("%s: %v, want %v", c.name, got, c.want)
 		}
+	}
+}
+
+// chainsOf gives chains of independent normal draws.
+func chainsOf(chains, draws int) [][]float64 {
+	rng := rand.New(rand.NewPCG(1, 2))
+	out := make([][]float64, chains)
+	for c := range out {
+		for range draws {
+			out[c] = append(out[c], rng.NormFloat64())
+		}
+	}
+	return out
+}
+
+// A draw that is no finite number makes the quantity unusable, and nothing
+// loops for ever on it.
+func TestNotANumber(t *testing.T) {
+	for _, bad := range []float64{math.NaN(), math.Inf(1), math.Inf(-1)} {
+		chains := chainsOf(4, 500)
+		chains[2][17] = bad
+		s := Of(chains, 0.9)
+		trust := Judge(s, Sampling{Chains: 4, Draws: 2000, WorstEBFMI: 1})
+		if s.NotFinite != 1 || !math.IsNaN(s.Centre) || trust.Verdict != Unusable || trust.Reasons[0] != "1 of 2000 draws are not a finite number" {
+			t.Errorf("%v: %+v, %v", bad, s, trust)
+		}
+		RHat(chains)
+		BulkESS(chains)
+		TailESS(chains)
+	}
+}
+
+// Too few draws are no constant and cannot be judged; the reason names no NaN.
+func TestFewDraws(t *testing.T) {
+	for draws := 1; draws < 25; draws++ {
+		chains := chainsOf(4, draws)
+		trust := Judge(Of(chains, 0.9), Sampling{Chains: 4, Draws: 4 * draws, WorstEBFMI: 1})
+		if trust.Verdict != Unusable || strings.Contains(trust.String(), "NaN") {
+			t.Errorf("%d draws: %v", draws, trust)
+		}
+		if few := draws < 8; few != (trust.String() == "unusable: too few draws to judge") {
+			t.Errorf("%d draws: %v", draws, trust)
+		}
+	}
+	if s := Of([][]float64{{3}}, 0.9); s.Constant {
+		t.Error("one draw is no constant")
+	}
+	same := make([][]float64, 4)
+	for c := range same {
+		same[c] = make([]float64, 250)
+	}
+	if s := Of(same, 0.9); !s.Constant || Judge(s, Sampling{Chains: 4, Draws: 1000, WorstEBFMI: 1}).Verdict != Sound {
+		t.Errorf("a constant of 1,000 draws: %+v", s)
+	}
+	same[1] = []float64{1}
+	for len(same[1]) < 250 {
+		same[1] = append(same[1], 1)
+	}
+	if trust := Judge(Of(same, 0.9), Sampling{Chains: 4, Draws: 1000, WorstEBFMI: 1}); trust.Verdict != Unusable || strings.Contains(trust.String(), "Inf") || strings.Contains(trust.String(), "NaN") {
+		t.Errorf("chains that do not move: %v", trust)
 	}
 }
