@@ -10,6 +10,7 @@ import (
 func (d *desk) about() {
 	const width = 460
 	var p *popover
+	done := d.primary("Close", func() { p.close() })
 	body := column(8,
 		newLabel("Arrowroot", sizeTitle, tokenInk, fyne.TextStyle{Bold: true}),
 		para("Draw what you think causes what, read what follows, fit it to data, and see the effect with its interval on the same diagram.", tokenInk),
@@ -17,9 +18,10 @@ func (d *desk) about() {
 		para(words.Caution, tokenConfound),
 		para("Nothing leaves this machine: the program uses no network.", tokenMuted),
 		para("Free software under the BSD 3-clause licence. Set in DejaVu Sans; the window is made with Fyne.", tokenMuted),
-		row(8, space(), d.primary("Close", func() { p.close() })))
+		row(8, space(), done))
 	area := d.win.Canvas().Size()
 	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 90), width)
+	d.win.Canvas().Focus(done)
 }
 
 // showKeys lists every key there is.
@@ -45,13 +47,15 @@ func (d *desk) showKeys() {
 		side.Add(row(8, fixed(104, 0, newLabel(c.keys, sizeSmall, tokenAction, fyne.TextStyle{Bold: true})), stretch(newLabel(c.label, sizeSmall, tokenInk, fyne.TextStyle{}).shrinkTo(20))))
 		i++
 	}
+	done := d.primary("Close", func() { p.close() })
 	body := column(10,
 		bold("Keys"),
 		para("Letters alone work on the sheet. There: double-click for a new variable, drag from a variable's edge for an arrow, space and drag to pan, wheel to zoom, Escape to leave a tool.", tokenMuted),
 		topRow(16, stretch(left), stretch(right)),
-		row(8, space(), d.primary("Close", func() { p.close() })))
+		row(8, space(), done))
 	area := d.win.Canvas().Size()
 	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 50), width)
+	d.win.Canvas().Focus(done)
 }
 
 // turnShade changes between light and dark, and remembers it.

@@ -31,7 +31,7 @@ type desk struct {
 	loss       string          // rows that a fit would lose and that the user is being asked about; "" = not asking
 	agreed     string          // the loss that the user agreed to
 	lastFolder string          // where a file was last opened or saved
-	fitNext    bool            // show the whole sheet as soon as there is something on it
+	fitNext    bool            // the next view is of another study: show its whole sheet
 
 	frame   *frame
 	drawer  *drawer

@@ -22,18 +22,20 @@ func (d *desk) orSaved(next func()) {
 		return
 	}
 	var p *popover
+	save := d.primary("Save", func() {
+		p.close()
+		d.saveThen(next)
+	})
 	body := column(10,
 		bold("There is unsaved work"),
 		para("Save the study before it goes away?", tokenMuted),
 		row(8, space(),
 			d.plain("Cancel", func() { p.close() }),
 			d.plain("Drop it", func() { p.close(); next() }),
-			d.primary("Save", func() {
-				p.close()
-				d.saveThen(next)
-			})))
+			save))
 	area := d.win.Canvas().Size()
 	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-360)/2, 120), 360)
+	d.win.Canvas().Focus(save)
 }
 
 func (d *desk) newStudy() {
@@ -78,7 +80,9 @@ func (d *desk) open(path string) {
 		return
 	}
 	d.forget()
+	d.fitNext = false
 	d.refresh()
+	d.post(d.editor.ZoomFit)
 }
 
 // forget drops what the window remembers of the study before.

@@ -38,4 +38,16 @@ func TestHandsAreNotKeptWaiting(t *testing.T) {
 		t.Errorf("moving a node takes the window %v", least)
 	}
 	t.Logf("moving a node takes the window %v", least)
+
+	least = time.Hour
+	for i := range 6 {
+		start := time.Now()
+		b.hold("v9", i%2 == 0)
+		b.queue.drain()
+		least = min(least, time.Since(start))
+	}
+	t.Logf("holding a variable takes the window %v, with %d paths", least, len(b.view.Reading.Paths))
+	if least > 150*time.Millisecond { // the session gives reading and model 40 ms each before it shows without them
+		t.Errorf("holding a variable takes the window %v", least)
+	}
 }

@@ -82,8 +82,14 @@ func (s *strip) update() {
 		case causal.Readable:
 			mark, token, tone = iconGood, tokenInk, tokenAction
 		case causal.Incomplete:
-			if off := s.d.askedOffSheet(); len(off) > 0 {
+			q := v.Question
+			switch off := s.d.askedOffSheet(); {
+			case len(off) > 0:
 				sentence = "The question cannot be read here: " + words.List(off) + " must stand on the sheet."
+			case q != nil && q.Exposure != "" && q.Outcome == "":
+				sentence = "What does " + q.Exposure + " act on? Pick the outcome and press Y."
+			case q != nil && q.Outcome != "" && q.Exposure == "":
+				sentence = "What acts on " + q.Outcome + "? Pick the exposure and press X."
 			}
 		case causal.NoEffect:
 			token = tokenInk

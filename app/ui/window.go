@@ -124,9 +124,11 @@ func (w *Window) show(v *session.View) {
 		d.drawer.show("Effect")
 	}
 	d.refresh()
-	if d.fitNext && len(v.Rival.Diagram.Nodes) > 0 {
+	if d.fitNext {
 		d.fitNext = false
-		d.post(d.editor.ZoomFit)
+		if len(v.Rival.Diagram.Nodes) > 0 {
+			d.post(d.editor.ZoomFit)
+		}
 	}
 }
 
