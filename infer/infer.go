@@ -99,14 +99,14 @@ func (t *Trace) At(i, dim int) []float64 { return t.Q[i*dim : (i+1)*dim] }
 
 // A StartError means that no start with a finite log density was found.
 type StartError struct {
-	Factor string // what Blame named; "" if nothing
+	Factor string // what Blame said of the last try: "the law of bees gives no probability"; "" if nothing
 	Tries  int
 }
 
 func (e *StartError) Error() string {
-	where := e.Factor
-	if where == "" {
-		where = "the log density"
+	text := fmt.Sprintf("there is no place to start: in %d tries the density was nowhere finite", e.Tries)
+	if e.Factor != "" {
+		text += "; " + e.Factor
 	}
-	return fmt.Sprintf("%s is nowhere finite: %d starts were tried", where, e.Tries)
+	return text
 }

@@ -2,7 +2,6 @@ package infer
 
 import (
 	"context"
-	"fmt"
 	"runtime"
 	"sync"
 	"sync/atomic"
@@ -44,7 +43,7 @@ func (r *Run) Divergent() int { return int(r.diverged.Load()) }
 // Advance warms the chains up, the first time, and then adds steps draws to
 // each. When ctx is cancelled it stops within one gradient, keeps what it has
 // and returns ctx's error; called again, it goes on as if it had never been
-// stopped. A *StartError means that no chain could begin.
+// stopped. A *StartError means that a chain could not begin.
 func (r *Run) Advance(ctx context.Context, steps int) error {
 	r.stop.Store(false)
 	unhook := context.AfterFunc(ctx, func() { r.stop.Store(true) })
@@ -67,9 +66,9 @@ func (r *Run) Advance(ctx context.Context, steps int) error {
 		}()
 	}
 	wait.Wait()
-	for i, err := range errs {
+	for _, err := range errs {
 		if err != nil {
-			return fmt.Errorf("chain %d: %w", i+1, err)
+			return err
 		}
 	}
 	return ctx.Err()

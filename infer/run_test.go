@@ -180,10 +180,10 @@ func (nowhere) LogDensity(grad, _ []float64) float64 {
 
 func TestNowhereFiniteNamesTheFactor(t *testing.T) {
 	p := problem(nowhere{})
-	p.Blame = func([]float64) string { return "the law of bees" }
+	p.Blame = func([]float64) string { return "the law of bees gives no probability" }
 	err := NewRun(p, Settings{}).Advance(context.Background(), 10)
 	var start *StartError
-	if !errors.As(err, &start) || start.Factor != "the law of bees" {
+	if !errors.As(err, &start) || err.Error() != "there is no place to start: in 30 tries the density was nowhere finite; the law of bees gives no probability" {
 		t.Fatalf("got %v", err)
 	}
 }

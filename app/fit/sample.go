@@ -3,6 +3,7 @@ package fit
 import (
 	"context"
 	"errors"
+	"fmt"
 	"math"
 	"strings"
 	"sync"
@@ -81,6 +82,9 @@ func sampleModel(ctx context.Context, m *model.Model, req *Request, purpose stri
 		runs = append(runs, br)
 	}
 	err = advance(ctx, d, runs, req, watch)
+	if start := new(infer.StartError); errors.As(err, &start) {
+		return nil, fmt.Errorf("%w. Change that prior, law or formula, or the plausible ranges that it was made from", err)
+	}
 	cut := errors.Is(err, context.Canceled) || errors.Is(err, context.DeadlineExceeded)
 	if err != nil && !cut {
 		return nil, err

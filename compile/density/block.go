@@ -163,7 +163,7 @@ func (l *lowering) placeAll(parameters []int) ([]factor, error) {
 // parameterOf names a parameter with the variable whose law it belongs to.
 func parameterOf(m *model.Model, p *model.Parameter) string {
 	if p.Of >= 0 && p.Of < len(m.Variables) {
-		return p.Name + ", in the law of " + m.Variables[p.Of].ID
+		return p.Name + " in the law of " + m.Variables[p.Of].ID
 	}
 	return p.Name
 }

@@ -14,7 +14,7 @@ import (
 // A factor is one additive part of a block's log density, with the name by
 // which people know it.
 type factor struct {
-	what  string // "the law of bees", "the prior of beta_hedge_bees, in the law of bees"
+	what  string // "the law of bees", "the prior of beta_hedge_bees in the law of bees"
 	value ops.Value
 	law   *model.Law      // nil for a prior
 	form  *kernel.Density // of the law, with the arguments it takes
