@@ -184,6 +184,9 @@ func (p *parser) product() Expr {
 	x := p.unary()
 	for p.peek().is("*") || p.peek().is("/") {
 		op := p.take()
+		if again := p.peek(); op.is("*") && again.is("*") && again.span.Start == op.span.End {
+			p.fail(Span{op.span.Start, again.span.End}, "^", "a power is written with ^, as in x^2")
+		}
 		x = join(x, op.text[0], p.unary())
 	}
 	return x

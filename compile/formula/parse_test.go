@@ -125,6 +125,7 @@ func TestErrors(t *testing.T) {
 		{formula, "(a + b\n^ this bracket is not closed", ""},
 		{formula, "a + b)\n     ^ this bracket closes nothing", ""},
 		{formula, "2 * [x]\n    ^ brackets are round here", "("},
+		{formula, "x**2\n ^^ a power is written with ^, as in x^2", "^"},
 		{formula, "3x\n ^ a sign is missing before “x”; a product is written with *", "* x"},
 		{formula, "β_a→b (x - 1)\n      ^ a sign is missing before “(”; a product is written with *", "* ("},
 		{formula, "log x^2\n^^^^^^^ this can be read in two ways: write log(x^2) or (log x)^2", "log(x^2)"},

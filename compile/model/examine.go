@@ -48,12 +48,38 @@ func (b *builder) constants() {
 		switch {
 		case v.ID == m.Exposure:
 			b.report(Problem{Code: "constant-exposure", Variable: v.ID, Place: "data", Stops: true,
-				Message: fmt.Sprintf("%s is %s in every used row: with an exposure that never moves, these data say nothing about its effect.", v.ID, value)})
+				Message: fmt.Sprintf("%s is %s in every used row: with an exposure that never moves, these data say nothing about its effect.", v.ID, value),
+				Repairs: b.askInstead(v)})
 		case read[i]:
 			b.report(Problem{Code: "constant", Variable: v.ID, Place: "data", Stops: v.Low == v.High,
-				Message: fmt.Sprintf("%s is %s in every used row: these data say nothing about what it does.", v.ID, value)})
+				Message: fmt.Sprintf("%s is %s in every used row: these data say nothing about what it does.", v.ID, value),
+				Repairs: []Repair{b.offSheet(v.ID)}})
 		}
 	}
+}
+
+// askInstead offers to ask for the effect of another parent of the outcome:
+// the first that moves.
+func (b *builder) askInstead(exposure *Variable) []Repair {
+	at := b.questionAt()
+	if at < 0 {
+		return nil
+	}
+	for _, l := range b.model.Laws {
+		if b.model.Variables[l.Variable].ID != b.question.Outcome {
+			continue
+		}
+		for _, i := range l.Drawn {
+			v := b.model.Variables[i]
+			if low, high := extent(v.Values); v == exposure || !(low < high) {
+				continue
+			}
+			to := b.question
+			to.Exposure, to.From, to.To, to.Shift, to.Held = v.ID, nil, nil, 0, nil
+			return []Repair{{Label: "Ask for the effect of " + v.ID, Edit: study.ChangeQuestion{At: at, To: to}}}
+		}
+	}
+	return nil
 }
 
 // scales looks at what no law explains: proportions beyond 0 and 1, and values
@@ -77,11 +103,9 @@ func (b *builder) scales() {
 		if low < v.Low-width {
 			far = low
 		}
-		to := *c.variable
-		to.Range = nil
 		b.report(Problem{Code: "far", Variable: v.ID, Place: "range",
-			Message: fmt.Sprintf("%s is %s in row %d, far from its plausible range %s–%s: is the unit right?", v.ID, short(far), b.rowOf(v, slices.Index(v.Values, far))+1, short(v.Low), short(v.High)),
-			Repairs: []Repair{{Label: "Use the range seen", Edit: changeVariable(to)}}})
+			Message: fmt.Sprintf("%s is %s in row %d, far from its plausible range %s: is the unit right?", v.ID, short(far), b.rowOf(v, slices.Index(v.Values, far))+1, span(v.Low, v.High)),
+			Repairs: []Repair{b.rangeSeen(c.variable)}})
 	}
 }
 

@@ -144,7 +144,8 @@ func (b *builder) spanOf(d *draft, faulty bool) {
 			b.broken = true
 		case v.RangeGiven:
 			b.stop(Problem{Code: "range", Variable: v.ID, Place: "range",
-				Message: fmt.Sprintf("the plausible range of %s, %s–%s, leaves nothing that %s can take.", v.ID, short(v.Low), short(v.High), article(d.family.Name))})
+				Repairs: []Repair{b.rangeSeen(d.variable)},
+				Message: fmt.Sprintf("The plausible range of %s, %s, leaves nothing that %s can take.", v.ID, span(v.Low, v.High), article(d.family.Name))})
 		default:
 			b.stop(Problem{Code: "constant", Variable: v.ID, Place: "data",
 				Message: fmt.Sprintf("%s is %s in every used row: nothing can be learned about it, and no prior can be made from its range.", v.ID, short(v.Low))})
@@ -445,7 +446,7 @@ func (b *builder) keepPositive(d *draft, id string) {
 	fixed := !slices.ContainsFunc(p.Prior.Arguments, func(e formula.Expr) bool { return len(formula.Names(e)) > 0 })
 	if p.Prior.Family.Support == catalog.Reals && !fixed {
 		b.stop(Problem{Code: "prior", Variable: d.variable.ID, Place: "prior",
-			Message: fmt.Sprintf("%s must be positive, and a %s prior reaches below 0; half-normal does not.", id, p.Prior.Family.Name)})
+			Message: fmt.Sprintf("%s, prior of %s: %s must be positive, and a %s prior reaches below 0; half-normal does not.", d.variable.ID, id, id, p.Prior.Family.Name)})
 	}
 }
 

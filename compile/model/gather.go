@@ -143,13 +143,17 @@ func (b *builder) computedBy(v *study.Variable) formula.Expr {
 		b.stop(at)
 		return nil
 	}
+	rewritten := func(text string) study.Edit {
+		to := *v
+		to.Computed = text
+		return changeVariable(to)
+	}
+	plain := Repair{Label: "Do not compute " + v.ID, Edit: rewritten("")}
 	p, err := formula.Parse(v.Computed)
 	if err != nil {
-		b.stop(b.parseProblem(at, err, func(text string) study.Edit {
-			to := *v
-			to.Computed = text
-			return changeVariable(to)
-		}))
+		at = b.parseProblem(at, err, rewritten)
+		at.Repairs = append(at.Repairs, plain)
+		b.stop(at)
 		return nil
 	}
 	for _, n := range formula.Names(p.Right) {
@@ -158,11 +162,17 @@ func (b *builder) computedBy(v *study.Variable) formula.Expr {
 		case u != nil && u.Unmeasured:
 			at.Code, at.Span = "unmeasured", spanOf(p.Right, n)
 			at.Message = fmt.Sprintf("*%s* was not measured, so that %s cannot be computed from it", n, v.ID)
+			at.Repairs = []Repair{plain}
 			b.stop(at)
 			return nil
 		case u == nil || n == v.ID:
 			at.Code, at.Span = "unknown-name", spanOf(p.Right, n)
 			at.Message = fmt.Sprintf("%s cannot be computed from *%s*: there is no other variable of this name", v.ID, n)
+			if near := nearest(n, b.graph.Names); near != "" && near != v.ID {
+				at.Message += fmt.Sprintf("; did you mean *%s*?", near)
+				at.Repairs = []Repair{{Label: "Replace", Edit: rewritten(v.Computed[:at.Span.Start] + near + v.Computed[at.Span.End:])}}
+			}
+			at.Repairs = append(at.Repairs, plain)
 			b.stop(at)
 			return nil
 		case b.onSheet(v.ID) && b.onSheet(n) && !b.graph.HasArrow(b.graph.Index(n), b.graph.Index(v.ID)):

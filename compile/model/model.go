@@ -194,9 +194,12 @@ type Problem struct {
 	Place    string       // "law", "formula", "data", "prior", …
 	Text     string       // what was typed, where the problem is in it; "" if none
 	Span     formula.Span // in Text
-	Message  string       // one sentence with the user's names and the reason
+	Message  string       // one sentence with the user's names, the place and the reason
 	Repairs  []Repair
 	Stops    bool // no fit until mended
+
+	part string // of the place, where that is more than one word: "prior of beta_hedge_bees"
+	bare string // Message without variable and place, to stand under the text it is about
 }
 
 // A Repair is one click: a label and the edit it makes.

@@ -43,7 +43,7 @@ func TestCarriers(t *testing.T) {
 	}
 	// Four terms, the carried one counted: sd W/(1.96 √4 R) with W = R.
 	near4(t, "slope", arg(t, parameter(t, m, "beta_award_mark"), 1), 1/(1.96*2))
-	if p := parameter(t, m, "beta_score_mark"); p.Why != "3 parents and 1 carried term; range of mark −3–3" {
+	if p := parameter(t, m, "beta_score_mark"); p.Why != "3 parents and 1 carried term; range of mark −3 to 3" {
 		t.Error(p.Why)
 	}
 	last := mark.Terms[len(mark.Terms)-1]

@@ -14,6 +14,7 @@ import (
 // A declaration is a prior that the user gave, for a canonical parameter or
 // for a free one that exists because of it.
 type declaration struct {
+	id     string // canonical, "alpha_bees by farm" for what varies by a plate
 	owner  string // variable of the law it was written at
 	text   string
 	phrase *formula.Phrase
@@ -63,6 +64,7 @@ func (b *builder) chooseFamily(d *draft) {
 			p.Repairs = append(p.Repairs, Repair{Label: "Replace", Edit: b.changeLaw(v.ID, func(l *study.Law) { l.Family = near })})
 		}
 		p.Repairs = append(p.Repairs, b.defaultFamily(v, scale))
+		p.part = "distribution"
 		b.stop(p)
 		return
 	}
@@ -198,7 +200,7 @@ func canonicalParameter(text string) string {
 }
 
 func (b *builder) declareOne(owner, id, text string) {
-	at := Problem{Variable: owner, Place: "prior", Text: text, Span: formula.Span{End: len(text)}}
+	at := Problem{Variable: owner, Place: "prior", part: "prior of " + id, Text: text, Span: formula.Span{End: len(text)}}
 	if name, _, _ := strings.Cut(id, " by "); !formula.IsName(name) {
 		at.Code = "prior-name"
 		at.Message = fmt.Sprintf("“%s” cannot be the name of a parameter", id)
@@ -209,16 +211,19 @@ func (b *builder) declareOne(owner, id, text string) {
 		if have.text != text {
 			at.Code = "prior-twice"
 			at.Message = fmt.Sprintf("%s has a different prior already, at %s: “%s”", id, have.owner, have.text)
+			at.Repairs = []Repair{{Label: "Drop the one at " + have.owner, Edit: b.dropPrior(have.owner, id)}}
 			b.stop(at)
 		}
 		return
 	}
 	phrase, err := formula.ParsePhrase(text)
 	if err != nil {
-		b.stop(b.parseProblem(at, err, func(text string) study.Edit { return b.changePrior(owner, id, text) }))
+		at = b.parseProblem(at, err, func(text string) study.Edit { return b.changePrior(owner, id, text) })
+		at.Repairs = append(at.Repairs, Repair{Label: "Go back to the default", Edit: b.dropPrior(owner, id)})
+		b.stop(at)
 		return
 	}
-	b.declared[id] = &declaration{owner: owner, text: text, phrase: phrase}
+	b.declared[id] = &declaration{id: id, owner: owner, text: text, phrase: phrase}
 }
 
 // changePrior rewrites a prior where it stands, at the law or at the arrow.
@@ -370,7 +375,7 @@ func (b *builder) parseArguments(d *draft) {
 	v, f := d.variable, d.family
 	d.given = make([]formula.Expr, len(f.Arguments))
 	for n, arg := range d.user.Arguments {
-		at := Problem{Variable: v.ID, Place: "argument", Text: arg.Text, Span: formula.Span{End: len(arg.Text)}}
+		at := Problem{Variable: v.ID, Place: "argument", part: arg.Name, Text: arg.Text, Span: formula.Span{End: len(arg.Text)}}
 		fix := func(text string) study.Edit {
 			return b.changeLaw(v.ID, func(l *study.Law) { l.Arguments[n].Text = text })
 		}
@@ -378,7 +383,7 @@ func (b *builder) parseArguments(d *draft) {
 		i := f.Argument(arg.Name)
 		if i < 0 {
 			at.Code = "unknown-argument"
-			at.Message = fmt.Sprintf("%s has no argument *%s*; it has %s", article(f.Name), arg.Name, list(argumentNames(f)))
+			at.Message = fmt.Sprintf("%s ~ %s: %s has no argument *%s*; it has %s.", v.ID, f.Name, article(f.Name), arg.Name, list(argumentNames(f)))
 			at.Text, at.Span = "", formula.Span{}
 			at.Repairs = []Repair{drop}
 			b.stop(at)
@@ -386,7 +391,9 @@ func (b *builder) parseArguments(d *draft) {
 		}
 		e, err := formula.ParseExpr(arg.Text)
 		if err != nil {
-			b.stop(b.parseProblem(at, err, fix))
+			at = b.parseProblem(at, err, fix)
+			at.Repairs = append(at.Repairs, drop)
+			b.stop(at)
 			continue
 		}
 		if i == f.Predicted && len(formula.Names(e)) == 1 {

@@ -3,6 +3,7 @@ package model
 import (
 	"fmt"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -109,17 +110,28 @@ func (b *builder) plateAt(name string) int {
 func (b *builder) unknownPlate(owner, plate string) {
 	p := Problem{Code: "unknown-plate", Variable: owner, Place: "law"}
 	p.Message = fmt.Sprintf("There is no plate named %s", plate)
+	if owner != "" {
+		p.Message += ", over which the law of " + owner + " varies"
+		if v := b.variable(owner); v != nil && slices.Contains(v.Plates, plate) {
+			p.Message = fmt.Sprintf("There is no plate named %s, on which %s is said to live", plate, owner)
+		}
+	}
 	var names []string
 	for _, q := range b.study.Plates {
 		names = append(names, q.Name)
 	}
 	if near := nearest(plate, names); near != "" {
 		p.Message += fmt.Sprintf("; did you mean %s?", near)
+		if d := b.draftOf(owner); d != nil && slices.Contains(d.user.VariesBy, plate) {
+			p.Repairs = append(p.Repairs, Repair{Label: "Let it vary by " + near, Edit: b.changeLaw(owner, func(l *study.Law) {
+				l.VariesBy[slices.Index(l.VariesBy, plate)] = near
+			})})
+		}
 	} else {
 		p.Message += "."
 	}
 	if b.table.Column(plate) != nil {
-		p.Repairs = []Repair{{Label: "Make a plate of the column " + plate, Edit: study.AddPlate{Plate: study.Plate{Name: plate}}}}
+		p.Repairs = append(p.Repairs, Repair{Label: "Make a plate of the column " + plate, Edit: study.AddPlate{Plate: study.Plate{Name: plate}}})
 	}
 	b.stop(p)
 }
@@ -143,6 +155,7 @@ func (b *builder) readPlate(p *study.Plate) (*plateColumn, *Problem) {
 			to.Column = near
 			problem.Repairs = []Repair{{Label: "Use the column " + near, Edit: study.ChangePlate{Name: p.Name, To: to}}}
 		}
+		problem.Repairs = append(problem.Repairs, Repair{Label: "Remove the plate " + p.Name, Edit: study.RemovePlate{Name: p.Name}})
 		return nil, problem
 	}
 	words, levels := asWords(c)

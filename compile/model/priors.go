@@ -256,7 +256,7 @@ func seenRange(v *Variable) string {
 	if v.RangeGiven {
 		return ""
 	}
-	return fmt.Sprintf("; range of %s %s–%s seen in the data", v.ID, short(v.Low), short(v.High))
+	return fmt.Sprintf("; range of %s %s seen in the data", v.ID, span(v.Low, v.High))
 }
 
 // rangeOf is the width of a parent's plausible range. A parent without one
@@ -346,10 +346,10 @@ func (b *builder) freePrior(m meaning, p *Parameter) {
 
 // userPrior puts what the user typed in the place of the default.
 func (b *builder) userPrior(p *Parameter, own *declaration) {
-	at := Problem{Code: "prior", Variable: own.owner, Place: "prior", Text: own.text, Span: own.phrase.Span}
+	at := Problem{Code: "prior", Variable: own.owner, Place: "prior", part: "prior of " + own.id, Text: own.text, Span: own.phrase.Span}
 	fault := func(format string, args ...any) {
 		at.Message = fmt.Sprintf(format, args...)
-		at.Repairs = []Repair{{Label: "Go back to the default", Edit: b.dropPrior(own, p.Name)}}
+		at.Repairs = []Repair{{Label: "Go back to the default", Edit: b.dropPrior(own.owner, own.id)}}
 		b.stop(at)
 	}
 	f := catalog.FamilyByName(own.phrase.Family)
@@ -458,10 +458,10 @@ func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fau
 	return args, true
 }
 
-func (b *builder) dropPrior(own *declaration, id string) study.Edit {
-	for _, p := range b.userLaw(own.owner).Priors {
+func (b *builder) dropPrior(owner, id string) study.Edit {
+	for _, p := range b.userLaw(owner).Priors {
 		if canonicalParameter(p.Parameter) == id {
-			return b.changeLaw(own.owner, func(l *study.Law) {
+			return b.changeLaw(owner, func(l *study.Law) {
 				var kept []study.Prior
 				for _, p := range l.Priors {
 					if canonicalParameter(p.Parameter) != id {
@@ -472,14 +472,14 @@ func (b *builder) dropPrior(own *declaration, id string) study.Edit {
 			})
 		}
 	}
-	return b.changePrior(own.owner, id, "")
+	return b.changePrior(owner, id, "")
 }
 
 // unusedPrior says that a prior is for nothing.
 func (b *builder) unusedPrior(id string, own *declaration) {
 	b.report(Problem{Code: "unused-prior", Variable: own.owner, Place: "prior", Text: own.text,
 		Message: fmt.Sprintf("the prior of *%s* is not used: no law has this parameter", id),
-		Repairs: []Repair{{Label: "Drop it", Edit: b.dropPrior(own, id)}}})
+		Repairs: []Repair{{Label: "Drop it", Edit: b.dropPrior(own.owner, own.id)}}})
 }
 
 func (b *builder) prior(family string, args ...float64) Prior {

@@ -74,8 +74,8 @@ func TestRangesOnTheLink(t *testing.T) {
 		{study.Proportion, "", 0, 0.5, logOdds(.02), 0, "range of y 0–½ read as 0.02–½ on the log-odds scale"},
 		{study.Proportion, "", 0.1, 0.995, logOdds(.1), logOdds(.98), "range of y 0.1–0.995 read as 0.1–0.98 on the log-odds scale"},
 		{study.Binary, "", 0, 1, logOdds(.02), logOdds(.98), "probabilities of y read as .02–.98 on the log-odds scale"},
-		{study.Real, "", -3, 9, -3, 9, "range of y −3–9"},
-		{study.Real, "Student t", -3, 9, -3, 9, "range of y −3–9"},
+		{study.Real, "", -3, 9, -3, 9, "range of y −3 to 9"},
+		{study.Real, "Student t", -3, 9, -3, 9, "range of y −3 to 9"},
 	} {
 		s := sheet([]*study.Variable{
 			{ID: "x", Scale: study.Real, Range: &study.Range{Low: 10, High: 30}},

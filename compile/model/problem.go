@@ -1,6 +1,7 @@
 package model
 
 import (
+	"fmt"
 	"strings"
 	"unicode"
 	"unicode/utf8"
@@ -9,13 +10,28 @@ import (
 )
 
 // report adds a problem that a model can come along with.
-func (b *builder) report(p Problem) { b.problems = append(b.problems, p) }
+func (b *builder) report(p Problem) { b.problems = append(b.problems, p.placed()) }
 
 // stop adds a problem that leaves no model.
 func (b *builder) stop(p Problem) {
 	p.Stops = true
-	b.problems = append(b.problems, p)
+	b.report(p)
 	b.broken = true
+}
+
+// placed puts variable and place before a message about typed text: the text
+// is not always shown beside it.
+func (p Problem) placed() Problem {
+	if p.Text == "" || p.Variable == "" {
+		return p
+	}
+	part := p.part
+	if part == "" {
+		part = p.Place
+	}
+	p.bare = p.Message
+	p.Message = fmt.Sprintf("%s, %s: %s", p.Variable, part, p.Message)
+	return p
 }
 
 // Display is the message with the text it is about, a caret under the place,
@@ -24,7 +40,11 @@ func (p *Problem) Display() string {
 	if p.Text == "" {
 		return p.Message
 	}
-	return formula.Caret(p.Text, &formula.Error{Span: p.Span, Message: p.Message})
+	message := p.bare
+	if message == "" {
+		message = p.Message
+	}
+	return formula.Caret(p.Text, &formula.Error{Span: p.Span, Message: message})
 }
 
 func capital(s string) string {

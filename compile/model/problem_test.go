@@ -110,7 +110,8 @@ var troubles = []trouble{
 	{
 		name: "unknown plate", code: "unknown-plate",
 		study:   func(s *study.Study) { law(s, "bees").VariesBy = []string{"frm"} },
-		message: "There is no plate named frm; did you mean farm?",
+		message: "There is no plate named frm, over which the law of bees varies; did you mean farm?",
+		labels:  "Let it vary by farm", mends: true,
 	},
 	{
 		name: "unknown family", code: "unknown-family",
@@ -127,7 +128,7 @@ var troubles = []trouble{
 	{
 		name: "unknown argument", code: "unknown-argument",
 		study:   func(s *study.Study) { law(s, "bees").Arguments = []study.Argument{{Name: "sd", Text: "2"}} },
-		message: "a negative binomial law has no argument *sd*; it has mean and overdispersion",
+		message: "bees ~ negative binomial: a negative binomial law has no argument *sd*; it has mean and overdispersion.",
 		labels:  "Drop it", mends: true,
 	},
 	{
@@ -140,7 +141,7 @@ var troubles = []trouble{
 		name: "prior does not parse", code: "formula",
 		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[8].Prior = "normal with mean 0 sd 1" },
 		message: "normal with mean 0 sd 1\n                   ^^ a sign is missing before “sd”; a product is written with *",
-		labels:  "Replace",
+		labels:  "Replace|Go back to the default",
 	},
 	{
 		name: "steps with a mean", code: "prior",
@@ -187,7 +188,7 @@ var troubles = []trouble{
 			law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "a"}}
 			law(s, "hedge").Priors = []study.Prior{{Parameter: "a", Text: "normal with mean b, sd 1"}, {Parameter: "b", Text: "normal with mean 0, sd 1"}}
 		},
-		message: "a must be positive, and a normal prior reaches below 0; half-normal does not.",
+		message: "hedge, prior of a: a must be positive, and a normal prior reaches below 0; half-normal does not.",
 	},
 	{
 		name: "two priors for one parameter", code: "prior-twice",
@@ -196,6 +197,7 @@ var troubles = []trouble{
 			s.Rivals[0].Diagram.Arrows[9].Prior = "normal with mean 0, sd 2"
 		},
 		message: "normal with mean 0, sd 2\n^^^^^^^^^^^^^^^^^^^^^^^^ beta_hedge_bees has a different prior already, at bees: “normal with mean 0, sd 1”",
+		labels:  "Drop the one at bees", mends: true,
 	},
 	{
 		name: "a cut point's prior", code: "prior",
@@ -384,6 +386,7 @@ var troubles = []trouble{
 			}
 		},
 		message: "temp is 20 in every used row: these data say nothing about what it does.",
+		labels:  "Take temp off the sheet", mends: true,
 	},
 	{
 		name: "constant child without a range", code: "constant",
@@ -404,6 +407,7 @@ var troubles = []trouble{
 			d.Arrows = append(d.Arrows, &study.Arrow{From: "attitude", To: "care"}, &study.Arrow{From: "hedge", To: "care"}, &study.Arrow{From: "care", To: "flowers"})
 		},
 		message: "attitude + hedge\n^^^^^^^^ *attitude* was not measured, so that care cannot be computed from it",
+		labels:  "Do not compute care", mends: true,
 	},
 	{
 		name: "log of zero", code: "not-finite",
@@ -461,6 +465,9 @@ func TestProblems(t *testing.T) {
 			}
 			if c.message != "" && found.Display() != c.message {
 				t.Errorf("says\n%s\nnot\n%s", found.Display(), c.message)
+			}
+			if !strings.Contains(found.Message, found.Variable) {
+				t.Errorf("does not name %s: %s", found.Variable, found.Message)
 			}
 			var labels []string
 			for _, r := range found.Repairs {

@@ -38,12 +38,12 @@ func onLink(v *Variable, f *catalog.Family, low, high float64, shares bool) link
 	if r.fromData {
 		seen = " seen in the data"
 	}
-	stated := fmt.Sprintf("%s %s–%s%s", what, edge(low), edge(high), seen)
+	stated := fmt.Sprintf("%s %s%s", what, between(edge(low), edge(high)), seen)
 	readAs := func(l, h float64, scale string) {
 		if l == low && h == high {
 			r.words = stated + ", on the " + scale
 		} else {
-			r.words = fmt.Sprintf("%s read as %s–%s on the %s", stated, edge(l), edge(h), scale)
+			r.words = fmt.Sprintf("%s read as %s on the %s", stated, between(edge(l), edge(h)), scale)
 		}
 	}
 	switch {
@@ -59,7 +59,7 @@ func onLink(v *Variable, f *catalog.Family, low, high float64, shares bool) link
 		}
 		r.low, r.high = logit(l), logit(h)
 		if shares {
-			stated = fmt.Sprintf("share of %s in its trials %s–%s%s", v.ID, edge(low), edge(high), seen)
+			stated = fmt.Sprintf("share of %s in its trials %s%s", v.ID, between(edge(low), edge(high)), seen)
 		}
 		readAs(l, h, "log-odds scale")
 	case onLogScale(f):
@@ -113,6 +113,17 @@ func roundTo(v, width float64) float64 {
 		return v
 	}
 	return r + 0 // −0 prints as 0
+}
+
+// span writes a range: 0–120, but −5 to 5, since a dash beside a minus reads
+// as another minus.
+func span(low, high float64) string { return between(short(low), short(high)) }
+
+func between(low, high string) string {
+	if strings.Contains(low+high, "−") {
+		return low + " to " + high
+	}
+	return low + "–" + high
 }
 
 // edge writes an end of a range: ½ where C2 puts it.

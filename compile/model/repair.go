@@ -3,6 +3,7 @@ package model
 import (
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
+	"reflect"
 	"slices"
 )
 
@@ -39,6 +40,30 @@ func (b *builder) changeArrow(a *study.Arrow, change func(*study.Arrow)) study.E
 	to := *a
 	change(&to)
 	return study.ChangeArrow{Rival: b.rival.Name, From: a.From, To: a.To, Arrow: to}
+}
+
+// rangeSeen gives up a stated range for the one that the data show.
+func (b *builder) rangeSeen(v *study.Variable) Repair {
+	to := *v
+	to.Range = nil
+	return Repair{Label: "Use the range seen", Edit: changeVariable(to)}
+}
+
+// fromArrows gives up a typed formula for the one that the arrows make.
+func (b *builder) fromArrows(id string) Repair {
+	return Repair{Label: "Go back to the arrows", Edit: b.changeLaw(id, func(l *study.Law) { l.Formula = "" })}
+}
+
+// offSheet takes a variable off the rival's sheet; it stays in the ledger.
+func (b *builder) offSheet(id string) Repair {
+	return Repair{Label: "Take " + id + " off the sheet", Edit: study.RemoveNodes{Rival: b.rival.Name, Variables: []string{id}}}
+}
+
+// questionAt is the place of the question in the study; -1 if it is not there.
+func (b *builder) questionAt() int {
+	return slices.IndexFunc(b.study.Questions, func(q *study.Question) bool {
+		return reflect.DeepEqual(*q, b.question)
+	})
 }
 
 // onto puts a variable on the sheet with an arrow.

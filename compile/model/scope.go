@@ -68,7 +68,11 @@ func (b *builder) checkName(d *draft, n *formula.Name, place string, fault fault
 	m, parameter := b.scope[n.ID]
 	switch {
 	case v != nil && n.ID == child:
-		fault(n.Span, "itself", fmt.Sprintf("%s cannot act on itself", child))
+		var repairs []Repair
+		if place == "formula" {
+			repairs = append(repairs, b.fromArrows(child))
+		}
+		fault(n.Span, "itself", fmt.Sprintf("%s cannot act on itself", child), repairs...)
 	case v != nil && v.Unmeasured:
 		fault(n.Span, "unmeasured", fmt.Sprintf("*%s* was not measured and is left out of the fit, so no formula can use it", n.ID))
 	case v != nil && place == "formula" && !hasArrow(d.arrows, n.ID) && !carries(d, n.ID):
