@@ -12,7 +12,7 @@ import (
 
 // frontDoor is Pearl's table of smoking, tar and cancer (Causality, 2nd ed.
 // 2009, Table 3.1, from memory, arithmetic rechecked: testdata/numeric/causal)
-// written out as 800 people, an unnamed cause behind smoking and cancer.
+// written out as 8,000 people, an unnamed cause behind smoking and cancer.
 func frontDoor(t *testing.T) Request {
 	t.Helper()
 	var rows strings.Builder
@@ -20,7 +20,7 @@ func frontDoor(t *testing.T) Request {
 	for _, cell := range []struct {
 		smoking, tar string
 		people, ill  int
-	}{{"no", "no", 380, 38}, {"yes", "no", 20, 18}, {"no", "yes", 20, 1}, {"yes", "yes", 380, 323}} {
+	}{{"no", "no", 3800, 380}, {"yes", "no", 200, 180}, {"no", "yes", 200, 10}, {"yes", "yes", 3800, 3230}} {
 		for i := range cell.people {
 			cancer := "no"
 			if i < cell.ill {
