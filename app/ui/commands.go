@@ -26,6 +26,7 @@ func commandsOf(d *desk) commandTable {
 		{id: "example", menu: "Study", label: "Open the example", run: d.openExample},
 		{id: "save", menu: "Study", label: "Save", keys: "Ctrl+S", run: d.save, parted: true},
 		{id: "save-as", menu: "Study", label: "Save as …", keys: "Ctrl+Shift+S", run: d.saveDialog},
+		{id: "quit", menu: "Study", label: "Quit", keys: "Ctrl+Q", run: func() { d.orSaved(d.app.Quit) }, parted: true},
 
 		{id: "undo", menu: "Edit", label: "Undo", keys: "Ctrl+Z", live: func() string { return withLabel("Undo", d.view.Undo) },
 			on: func() bool { return d.view.Undo != "" || d.typing() }, run: func() { d.orText(&fyne.ShortcutUndo{}, d.session.Undo) }},

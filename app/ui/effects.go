@@ -26,6 +26,7 @@ type effectState struct {
 	stale    bool
 	question *study.Question
 	running  bool
+	ready    bool
 	dark     bool
 }
 
@@ -38,7 +39,7 @@ func (p *effectPage) content() fyne.CanvasObject { return p.pane }
 
 func (p *effectPage) update() {
 	v := p.d.view
-	state := effectState{v.Result, v.Stale, v.Question, v.Running, p.d.dark()}
+	state := effectState{v.Result, v.Stale, v.Question, v.Running, p.d.canFit(), p.d.dark()}
 	if p.asked && state == p.seen {
 		return
 	}

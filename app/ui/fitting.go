@@ -31,6 +31,7 @@ type fitState struct {
 	model     any
 	problems  int
 	canceling bool
+	ready     bool
 }
 
 func newFitPage(d *desk) *fitPage {
@@ -44,7 +45,7 @@ func (p *fitPage) content() fyne.CanvasObject { return p.split }
 
 func (p *fitPage) update() {
 	v := p.d.view
-	state := fitState{running: v.Running, step: v.Progress.Done, result: v.Result, stale: v.Stale, err: v.FitError, model: v.Model, problems: len(v.Problems), canceling: v.Progress.Cancelling}
+	state := fitState{running: v.Running, step: v.Progress.Done, result: v.Result, stale: v.Stale, err: v.FitError, model: v.Model, problems: len(v.Problems), canceling: v.Progress.Cancelling, ready: p.d.canFit()}
 	if p.opened && state == p.seen {
 		return
 	}

@@ -94,8 +94,31 @@ func (l *ledger) row(x *study.Variable) *press {
 		}
 	}
 	p.onSecondary = func(at fyne.Position) { d.variableMenu(x.ID, at) }
-	p.onKey = func(key fyne.KeyName) bool { return d.variableKey(x.ID, key) }
+	p.onKey = func(key fyne.KeyName) bool {
+		switch key {
+		case fyne.KeyUp:
+			l.step(x.ID, -1)
+		case fyne.KeyDown:
+			l.step(x.ID, 1)
+		default:
+			return d.variableKey(x.ID, key)
+		}
+		return true
+	}
 	return p
+}
+
+// step picks the variable above or below and takes the focus along.
+func (l *ledger) step(id string, by int) {
+	all := l.d.view.Study.Variables
+	for i, v := range all {
+		if v.ID == id && i+by >= 0 && i+by < len(all) {
+			next := all[i+by].ID
+			l.d.choose(scene.Selection{Nodes: []string{next}})
+			l.pane.focus("variable " + next)
+			return
+		}
+	}
 }
 
 // state is what a row says at its right end: what is missing, else the scale.

@@ -141,6 +141,17 @@ func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path, column floa
 	})
 	x.padX, x.padY, x.minH = 6, 2, 23
 	x.tip = path.Text(g) + ": " + state
+	x.onKey = func(key fyne.KeyName) bool {
+		switch key {
+		case fyne.KeyUp:
+			p.paths.focus(fmt.Sprint("path ", i-1))
+		case fyne.KeyDown:
+			p.paths.focus(fmt.Sprint("path ", i+1))
+		default:
+			return false
+		}
+		return true
+	}
 	x.onHover = func(in bool) {
 		if in {
 			p.d.editor.Highlight(i)

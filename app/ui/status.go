@@ -7,9 +7,11 @@ import (
 
 	"fyne.io/fyne/v2"
 
+	"arrowroot/app/session"
 	"arrowroot/app/words"
 	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
+	"arrowroot/compile/study"
 )
 
 // status is the line below the sheet: zoom, what just happened, and the
@@ -23,7 +25,9 @@ type status struct {
 	legend  *fyne.Container
 	refused string // why a gesture could not be done; goes with the next one
 	notice  string
-	hint    string // what the pointer is over
+	told    string       // the session's last notice
+	toldOf  *study.Study // what it was about
+	hint    string       // what the pointer is over
 }
 
 func newStatus(d *desk) *status {
@@ -56,12 +60,21 @@ func (s *status) text() string {
 		return s.notice
 	case v.Running:
 		return "Fitting: " + progressWords(v.Progress.Done, v.Progress.Total, v.Progress.Left, v.Progress.Cancelling)
-	case v.Notice != "":
+	case s.news(v):
 		return v.Notice
 	case s.hint != "":
 		return s.hint
 	}
 	return ""
+}
+
+// news reports whether the session's notice is about what is still there: it
+// goes with the next edit.
+func (s *status) news(v *session.View) bool {
+	if v.Notice != s.told {
+		s.told, s.toldOf = v.Notice, v.Study
+	}
+	return v.Notice != "" && s.toldOf == v.Study && v.Result == nil
 }
 
 // legends are those of the paint, in words, one for nodes and one for arrows.

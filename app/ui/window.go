@@ -340,6 +340,7 @@ func (w *Window) makeMenu() {
 			}
 		})
 		item.Shortcut = c.shortcut()
+		item.IsQuit = c.id == "quit" // else Fyne adds one that does not ask about unsaved work
 		w.items[item] = c
 		at.Items = append(at.Items, item)
 	}

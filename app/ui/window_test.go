@@ -446,3 +446,31 @@ func TestTraceTellsWhatTheWindowSays(t *testing.T) {
 		t.Fatalf("%+v", last)
 	}
 }
+
+// Arrow keys walk the ledger and the list of paths; a path in focus is lit.
+func TestListsWalkByKeyboard(t *testing.T) {
+	b := newBench(t)
+	b.say("soil -> rain, yield; rain -> growth -> yield")
+	b.say("exposure rain")
+	b.say("outcome yield")
+	b.wait("the reading", func() bool { return b.view.Reading != nil && len(b.view.Reading.Paths) == 2 })
+	var l *ledger
+	for _, p := range b.panels {
+		if x, ok := p.(*ledger); ok {
+			l = x
+		}
+	}
+	l.pane.focus("variable soil")
+	down := &fyne.KeyEvent{Name: fyne.KeyDown}
+	b.win.Canvas().Focused().TypedKey(down)
+	b.win.Canvas().Focused().TypedKey(down)
+	if got := b.picked(); got != b.view.Study.Variables[2].ID {
+		t.Errorf("two steps down from the first pick %q", got)
+	}
+	reading := b.drawer.pages[0].(*readingPage)
+	reading.paths.focus("path 0")
+	b.win.Canvas().Focused().TypedKey(down)
+	if lit := b.editor.Input().LitPath; lit != 1 {
+		t.Errorf("path %d is lit", lit)
+	}
+}
