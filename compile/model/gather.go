@@ -231,12 +231,7 @@ func (b *builder) selectRows(order []string) {
 	}
 	for _, id := range order {
 		if c := b.columns[id]; c.computed == nil {
-			lost(id, drop(keep, c.values, false))
-		}
-	}
-	for _, id := range order { // only rows that its parents have left
-		if c := b.columns[id]; c.computed != nil {
-			lost(id, drop(keep, c.values, true))
+			lost(id, drop(keep, c.values))
 		}
 	}
 	for _, p := range b.plates {
@@ -251,6 +246,11 @@ func (b *builder) selectRows(order []string) {
 			}
 		}
 		lost(p.name, n)
+	}
+	for _, id := range order { // in rows that nothing else has dropped
+		if c := b.columns[id]; c.computed != nil {
+			b.finiteComputed(c, keep)
+		}
 	}
 	if b.kind != Full {
 		b.keepToFull(keep)
@@ -268,11 +268,11 @@ func (b *builder) selectRows(order []string) {
 }
 
 // drop takes the rows out in which a value is missing or not finite, and
-// counts them; with left, only those that were still in.
-func drop(keep []bool, values []float64, left bool) int {
+// counts them.
+func drop(keep []bool, values []float64) int {
 	n := 0
 	for i, x := range values {
-		if x-x == 0 || left && !keep[i] { // x − x is NaN for NaN and ±Inf
+		if x-x == 0 { // NaN for NaN and ±Inf
 			continue
 		}
 		keep[i] = false

@@ -416,11 +416,53 @@ var troubles = []trouble{
 		},
 		table:   func(t *table.Table) { set(t, "hedge", 4, 0) },
 		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * log(2 * hedge)\n                                                                 ^^^^^^^^^^^^^^ *log(2 * hedge)* is no number in row 5, where hedge is 0",
+		labels:  "Go back to the arrows", mends: true,
+	},
+	{
+		name: "log of a variable that can be zero", code: "not-finite",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * log hedge"
+		},
+		table:   func(t *table.Table) { set(t, "hedge", 4, 0) },
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * log hedge\n                                                                 ^^^^^^^^^ *log hedge* is no number in row 5, where hedge is 0",
+		labels:  "Use log(hedge + 1)|Go back to the arrows", mends: true,
+	},
+	{
+		name: "a parameter divided by zero", code: "not-finite",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge / 0"
+		},
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * hedge / 0\n                                                                         ^ nothing can be divided by 0",
+		labels:  "Go back to the arrows", mends: true,
+	},
+	{
+		name: "a parameter divided by data that are zero", code: "not-finite",
+		study: func(s *study.Study) {
+			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers / (hedge - 50.5)"
+		},
+		table:   func(t *table.Table) { set(t, "hedge", 4, 50.5) },
+		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers / (hedge - 50.5)\n                                                                  ^^^^^^^^^^^^ *hedge - 50.5* is 0 in row 5, and nothing can be divided by 0",
+		labels:  "Go back to the arrows", mends: true,
+	},
+	{
+		name: "a computed value that is no number", code: "not-finite",
+		study:   func(s *study.Study) { compute(s, "bare", "2 + log(hedge - 40)") },
+		table:   func(t *table.Table) { set(t, "hedge", 0, 50); set(t, "hedge", 1, 12) },
+		message: "2 + log(hedge - 40)\n    ^^^^^^^^^^^^^^^ *log(hedge - 40)* is no number in row 2, where hedge is 12, nor is it one in 18 more rows",
+		labels:  "Do not compute bare", mends: true,
+	},
+	{
+		name: "a computed log of zero", code: "not-finite",
+		study:   func(s *study.Study) { compute(s, "more", "log hedge") },
+		table:   func(t *table.Table) { set(t, "hedge", 4, 0) },
+		message: "log hedge\n^^^^^^^^^ *log hedge* is no number in row 5, where hedge is 0",
+		labels:  "Use log(hedge + 1)|Do not compute more", mends: true,
 	},
 	{
 		name: "a known sd of zero", code: "argument-range",
 		study:   func(s *study.Study) { law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "hours - 4"}} },
 		message: "hours - 4\n^^^^^^^^^ the sd of hedge is 0 in row 2, but it must be positive",
+		labels:  "Drop it", mends: true,
 	},
 	{
 		name: "two tables", code: "two-tables",
