@@ -202,6 +202,10 @@ func (b *builder) strange(v *study.Variable, source *table.Column) {
 func (b *builder) readBinary(c *column, source *table.Column) {
 	v := c.variable
 	words, levels := asWords(source)
+	if n := len(v.Levels); n == 1 || n > 2 {
+		b.wrongNumberOfLevels(v, source, levels)
+		return
+	}
 	want := v.Levels
 	if len(want) != 2 {
 		want = append([]string(nil), levels...)
@@ -233,7 +237,43 @@ func (b *builder) readBinary(c *column, source *table.Column) {
 	c.levels = want
 	b.code(c, source, words, levels)
 	b.strange(v, source)
+	if len(v.Levels) == 0 {
+		b.whichIsOne(v, source, want)
+	}
 }
+
+// whichIsOne says which of two words counts as 1 where nobody has said so.
+func (b *builder) whichIsOne(v *study.Variable, source *table.Column, levels []string) {
+	b.report(Problem{Code: "which-is-one", Variable: v.ID, Place: "levels",
+		Message: fmt.Sprintf("%s, column %s: nobody has said which of “%s” and “%s” is the 1 of %s; it is “%s” for now.", b.table.Name, source.Name, levels[0], levels[1], v.ID, levels[1]),
+		Repairs: []Repair{oneIs(v, levels[0], levels[1]), oneIs(v, levels[1], levels[0])}})
+}
+
+// oneIs names both levels of a binary variable.
+func oneIs(v *study.Variable, zero, one string) Repair {
+	to := *v
+	to.Levels = []string{zero, one}
+	return Repair{Label: "“" + one + "” is 1", Edit: changeVariable(to)}
+}
+
+// wrongNumberOfLevels stops at a binary variable with one level named, or more
+// than two.
+func (b *builder) wrongNumberOfLevels(v *study.Variable, source *table.Column, seen []string) {
+	p := Problem{Code: "levels", Variable: v.ID, Place: "levels",
+		Message: fmt.Sprintf("%s, column %s: %s is binary, but has %s (%s), while the column holds %s. Name both, the one that counts as 1 last.",
+			b.table.Name, source.Name, v.ID, count(len(v.Levels), "level"), sample(v.Levels), list(quoted(first(seen, 4))))}
+	switch {
+	case len(seen) == 2:
+		p.Repairs = []Repair{oneIs(v, seen[0], seen[1]), oneIs(v, seen[1], seen[0])}
+	case len(seen) > 2:
+		to := *v
+		to.Scale, to.Levels = study.Category, seen
+		p.Repairs = []Repair{{Label: "Make it a category", Edit: changeVariable(to)}}
+	}
+	b.stop(p)
+}
+
+func first(words []string, n int) []string { return words[:min(n, len(words))] }
 
 func zeroOne(levels []string) bool {
 	for _, l := range levels {
@@ -259,6 +299,10 @@ func (b *builder) readLevels(c *column, source *table.Column) {
 	c.levels = c.variable.Levels
 	if len(c.levels) == 0 {
 		c.levels = levels
+		if c.variable.Scale == study.Ordered && source.Kind == table.Words && len(levels) > 1 {
+			b.sayTheOrder(c.variable, source)
+			return
+		}
 	}
 	if len(c.levels) < 2 {
 		b.stop(Problem{Code: "one-level", Variable: c.variable.ID, Place: "data",
@@ -267,6 +311,26 @@ func (b *builder) readLevels(c *column, source *table.Column) {
 	}
 	b.code(c, source, words, levels)
 }
+
+// sayTheOrder stops at words that come in an order which nobody has said: the
+// alphabet's, or the file's, would be an invention.
+func (b *builder) sayTheOrder(v *study.Variable, source *table.Column) {
+	found := sorted(source.Levels)
+	p := Problem{Code: "no-order", Variable: v.ID, Place: "levels",
+		Message: fmt.Sprintf("%s, column %s: %s is ordered, but nobody has said in which order its words come. Say the order, lowest first; found: %s.", b.table.Name, source.Name, v.ID, sample(found))}
+	take := func(levels []string) {
+		to := *v
+		to.Levels = levels
+		p.Repairs = append(p.Repairs, Repair{Label: "Take " + strings.Join(levels, " < "), Edit: changeVariable(to)})
+	}
+	if guess := table.Propose(source); guess.Scale == string(study.Ordered) && !slices.Equal(guess.Levels, found) {
+		take(guess.Levels)
+	}
+	take(found)
+	b.stop(p)
+}
+
+func sorted(words []string) []string { return slices.Sorted(slices.Values(words)) }
 
 // code translates a column's words into places in the variable's levels.
 func (b *builder) code(c *column, source *table.Column, words []int32, levels []string) {

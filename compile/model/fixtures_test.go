@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
-	"slices"
 	"strings"
 	"testing"
 
@@ -131,10 +130,4 @@ func build(t *testing.T, s *study.Study, q study.Question, tab *table.Table, kin
 		t.Fatal("no model and no problem")
 	}
 	return m
-}
-
-func sorted(s []string) []string {
-	out := slices.Clone(s)
-	slices.Sort(out)
-	return out
 }

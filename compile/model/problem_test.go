@@ -339,6 +339,45 @@ var troubles = []trouble{
 		labels:  "Add “sand” to the levels", mends: true,
 	},
 	{
+		name: "ordered words without an order", code: "no-order",
+		study:   func(s *study.Study) { s.Variables[4].Scale, s.Variables[4].Levels = study.Ordered, nil },
+		message: "traps, column soil: soil is ordered, but nobody has said in which order its words come. Say the order, lowest first; found: chalk, clay, sand.",
+		labels:  "Take chalk < clay < sand", mends: true,
+	},
+	{
+		name: "ordered words of a known order", code: "no-order",
+		study:   func(s *study.Study) { s.Variables[4].Scale, s.Variables[4].Levels = study.Ordered, nil },
+		table:   func(t *table.Table) { t.Column("soil").Levels = []string{"high", "low", "medium"} },
+		message: "traps, column soil: soil is ordered, but nobody has said in which order its words come. Say the order, lowest first; found: high, low, medium.",
+		labels:  "Take low < medium < high|Take high < low < medium", mends: true,
+	},
+	{
+		name: "an ordered outcome without an order", code: "no-order",
+		study: func(s *study.Study) {
+			s.Variables[1].Scale, s.Variables[1].Range = study.Ordered, nil
+			s.Rivals[0].Diagram.Arrows[11].Form = "slope"
+		},
+		table: func(t *table.Table) {
+			*t.Column("bees") = table.Column{Name: "bees", Kind: table.Words, Codes: t.Column("soil").Codes, Levels: []string{"many", "few", "some"}}
+		},
+		message: "traps, column bees: bees is ordered, but nobody has said in which order its words come. Say the order, lowest first; found: few, many, some.",
+		labels:  "Take few < many < some", mends: true,
+	},
+	{
+		name: "two words, and nobody said which is 1", code: "which-is-one",
+		study:   func(s *study.Study) { s.Variables[4].Scale, s.Variables[4].Levels = study.Binary, nil },
+		table:   twoSoils,
+		message: "traps, column soil: nobody has said which of “chalk” and “clay” is the 1 of soil; it is “clay” for now.",
+		labels:  "“clay” is 1|“chalk” is 1", mends: true,
+	},
+	{
+		name: "one level of a binary variable", code: "levels",
+		study:   func(s *study.Study) { s.Variables[4].Scale, s.Variables[4].Levels = study.Binary, []string{"chalk"} },
+		table:   twoSoils,
+		message: "traps, column soil: soil is binary, but has 1 level (chalk), while the column holds “chalk” and “clay”. Name both, the one that counts as 1 last.",
+		labels:  "“clay” is 1|“chalk” is 1", mends: true,
+	},
+	{
 		name: "trials missing", code: "no-trials",
 		study: func(s *study.Study) {
 			law(s, "bees").Family = "binomial"
@@ -483,6 +522,15 @@ var troubles = []trouble{
 		asks:    func(q *study.Question) { *q = study.Question{} },
 		message: "There is nothing to fit on this sheet yet: draw an arrow into a measured variable.",
 	},
+}
+
+// twoSoils has chalk and clay only.
+func twoSoils(t *table.Table) {
+	c := t.Column("soil")
+	c.Levels = []string{"chalk", "clay"}
+	for i := range c.Codes {
+		c.Codes[i] %= 2
+	}
 }
 
 func TestProblems(t *testing.T) {

@@ -8,6 +8,7 @@ import (
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
+	"arrowroot/compile/study"
 )
 
 // A Statement is a model in words and mathematical notation, as a methods
@@ -415,6 +416,11 @@ func (w *writer) notes() {
 	for _, v := range w.m.Variables {
 		if v.Nudged > 0 {
 			w.line(Line{Kind: NoteLine, Variable: v.ID, Right: fmt.Sprintf("%s: %s at the exact end of its scale, moved inwards by %s.", v.ID, rows(v.Nudged), short(v.Nudge))})
+		}
+	}
+	for _, v := range w.m.Variables {
+		if v.Scale == study.Binary && len(v.Levels) == 2 && !zeroOne(v.Levels) {
+			w.line(Line{Kind: NoteLine, Variable: v.ID, Right: fmt.Sprintf("%s: “%s” counts as 1, “%s” as 0.", v.ID, v.Levels[1], v.Levels[0])})
 		}
 	}
 	if len(w.m.Given) > 0 {
