@@ -443,10 +443,21 @@ func (b *builder) keepPositive(d *draft, id string) {
 	}
 	p := b.model.Parameters[i]
 	p.Support = catalog.Positives
+	own := b.declared[id]
+	fault := func(format string, args ...any) {
+		p := Problem{Code: "prior", Variable: d.variable.ID, Place: "prior", Message: fmt.Sprintf("%s, prior of %s: ", d.variable.ID, id) + fmt.Sprintf(format, args...)}
+		if own != nil {
+			p.Repairs = []Repair{{Label: "Use half-normal with scale 1", Edit: b.changePrior(own.owner, id, "half-normal with scale 1")}}
+		}
+		b.stop(p)
+	}
+	if nothingAbove0(p.Prior.Family, p.Prior.Arguments) {
+		fault("%s must be positive, and this prior lies below 0.", id)
+		return
+	}
 	fixed := !slices.ContainsFunc(p.Prior.Arguments, func(e formula.Expr) bool { return len(formula.Names(e)) > 0 })
 	if p.Prior.Family.Support == catalog.Reals && !fixed {
-		b.stop(Problem{Code: "prior", Variable: d.variable.ID, Place: "prior",
-			Message: fmt.Sprintf("%s, prior of %s: %s must be positive, and a %s prior reaches below 0; half-normal does not.", d.variable.ID, id, id, p.Prior.Family.Name)})
+		fault("%s must be positive, and a %s prior reaches below 0; half-normal does not.", id, p.Prior.Family.Name)
 	}
 }
 

@@ -413,6 +413,9 @@ func (b *builder) userPrior(p *Parameter, own *declaration) {
 			p.Mean = mean.ID
 		}
 		return
+	case p.Support == catalog.Positives && nothingAbove0(f, args):
+		fault("%s must be positive, and this prior lies below 0", p.Name)
+		return
 	case p.Support == catalog.Positives && f.Support == catalog.Reals && !fixed:
 		fault("%s must be positive, and %s reaches below 0; half-normal does not", p.Name, f.Name)
 		return
@@ -443,8 +446,14 @@ func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fau
 			fault("%s has no argument *%s*; it has %s", article(f.Name), a.Name, list(argumentNames(f)))
 			return nil, false
 		}
-		if x, ok := a.Value.(*formula.Number); ok && f.Arguments[i].Support == catalog.Positives && x.Value <= 0 {
+		if x, fixed := constant(a.Value); fixed && !isNumber(x) {
+			fault("the %s of %s is no number", f.Arguments[i].Name, article(f.Name))
+			return nil, false
+		} else if fixed && f.Arguments[i].Support == catalog.Positives && x <= 0 {
 			fault("the %s of %s must be positive", f.Arguments[i].Name, article(f.Name))
+			return nil, false
+		} else if fixed && f.Arguments[i].Support == catalog.Unit && (x <= 0 || x >= 1) {
+			fault("the %s of %s lies between 0 and 1", f.Arguments[i].Name, article(f.Name))
 			return nil, false
 		}
 		args[i] = a.Value
@@ -455,7 +464,46 @@ func (b *builder) phraseArguments(phrase *formula.Phrase, f *catalog.Family, fau
 			return nil, false
 		}
 	}
+	if f.Name == "uniform" {
+		low, fixed := constant(args[0])
+		high, also := constant(args[1])
+		if fixed && also && low >= high {
+			fault("low %s is not below high %s, so that no value is left", short(low), short(high))
+			return nil, false
+		}
+	}
 	return args, true
+}
+
+// constant works out an expression without names.
+func constant(e formula.Expr) (value float64, ok bool) {
+	if len(formula.Names(e)) > 0 {
+		return 0, false
+	}
+	return Evaluate(e, func(formula.Expr) float64 { return math.NaN() }), true
+}
+
+// farBelow is how many sds below 0 a mean must lie for the part of a normal
+// above 0 to be no more than a rounding error.
+const farBelow = 8
+
+// nothingAbove0 reports whether a prior leaves a positive parameter no value.
+func nothingAbove0(f *catalog.Family, args []formula.Expr) bool {
+	values := make([]float64, len(args))
+	for i, e := range args {
+		x, ok := constant(e)
+		if !ok {
+			return false
+		}
+		values[i] = x
+	}
+	switch f.Name {
+	case "uniform":
+		return values[1] <= 0
+	case "normal":
+		return values[0] < -farBelow*values[1]
+	}
+	return false
 }
 
 func (b *builder) dropPrior(owner, id string) study.Edit {

@@ -189,6 +189,48 @@ var troubles = []trouble{
 			law(s, "hedge").Priors = []study.Prior{{Parameter: "a", Text: "normal with mean b, sd 1"}, {Parameter: "b", Text: "normal with mean 0, sd 1"}}
 		},
 		message: "hedge, prior of a: a must be positive, and a normal prior reaches below 0; half-normal does not.",
+		labels:  "Use half-normal with scale 1", mends: true,
+	},
+	{
+		name: "uniform from high to low", code: "prior",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[9].Prior = "uniform with low 2, high 1" },
+		message: "uniform with low 2, high 1\n^^^^^^^^^^^^^^^^^^^^^^^^^^ low 2 is not below high 1, so that no value is left",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "a negative sd worked out", code: "prior",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[9].Prior = "normal with mean 0, sd 1 - 2" },
+		message: "normal with mean 0, sd 1 - 2\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^ the sd of a normal law must be positive",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "a mean that is no number", code: "prior",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[9].Prior = "normal with mean 1/0, sd 1" },
+		message: "normal with mean 1/0, sd 1\n^^^^^^^^^^^^^^^^^^^^^^^^^^ the mean of a normal law is no number",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "a beta prior around two", code: "prior",
+		study:   func(s *study.Study) { s.Rivals[0].Diagram.Arrows[9].Prior = "beta with mean 2, precision 3" },
+		message: "beta with mean 2, precision 3\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^^ the mean of a beta law lies between 0 and 1",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "a spread below zero", code: "prior",
+		study: func(s *study.Study) {
+			law(s, "hedge").Priors = []study.Prior{{Parameter: "sigma_hedge", Text: "uniform with low -2, high -1"}}
+		},
+		message: "uniform with low -2, high -1\n^^^^^^^^^^^^^^^^^^^^^^^^^^^^ sigma_hedge must be positive, and this prior lies below 0",
+		labels:  "Go back to the default", mends: true,
+	},
+	{
+		name: "an argument's own parameter below zero", code: "prior",
+		study: func(s *study.Study) {
+			law(s, "hedge").Arguments = []study.Argument{{Name: "sd", Text: "a"}}
+			law(s, "hedge").Priors = []study.Prior{{Parameter: "a", Text: "normal with mean -90, sd 1"}}
+		},
+		message: "hedge, prior of a: a must be positive, and this prior lies below 0.",
+		labels:  "Use half-normal with scale 1", mends: true,
 	},
 	{
 		name: "two priors for one parameter", code: "prior-twice",
