@@ -275,7 +275,7 @@ func (r *reading) logJacobian(d *density.Density, b *density.Block, q []float64)
 }
 
 // The printed statement and the log density that is sampled describe the same
-// model (DESIGN section 5): at random points, the density of the typed text
+// model: at random points, the density of the typed text
 // and the lowered density differ by one constant, the Jacobian counted.
 func agree(t interface {
 	Fatalf(string, ...any)
