@@ -59,7 +59,7 @@ func cutLast(s, sep string) (before, after string, ok bool) {
 
 // informative is the information about one group effect, in units of its
 // prior's, from which on the effects themselves are better coordinates than
-// their standard scores. ENGINE.md, section E: a logistic law with 20 rows per
+// their standard scores. Measured: a logistic law with 20 rows per
 // group favours scores, with 100 rows the effects.
 const informative = 20
 
