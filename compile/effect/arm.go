@@ -77,13 +77,16 @@ type target struct {
 // A plan says what changes, in which order, when the exposure is set, so far
 // as the targets read it. Variables that do not change keep their row values.
 type plan struct {
-	exposure int
+	exposure int    // none = nothing is set
 	observed []bool // laws of these variables read the exposure as it was observed (SEMANTICS B2 b)
 	steps    []step // what targets and other steps read
 	random   int    // steps that are simulated
 	targets  []target
 	parts    int // of all targets
 }
+
+// none stands for no variable.
+const none = -1
 
 // A planner knows the laws of a model.
 type planner struct {
@@ -122,7 +125,7 @@ func (p *planner) plan(exposure int, district []int, alone bool, targets ...targ
 	for _, v := range district {
 		out.observed[v] = v != exposure
 	}
-	changed := map[int]bool{exposure: true}
+	changed := map[int]bool{exposure: exposure != none}
 	var visit func(v int) bool
 	follow := func(v int) (moved bool) { // adds the steps that v reads
 		for _, r := range p.readsOf(v) {

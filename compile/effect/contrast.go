@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"slices"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/model"
@@ -34,6 +35,47 @@ func FromLaw(ctx context.Context, m *model.Model, q study.Question, draws [][]fl
 	return contrast(ctx, m, nil, q, draws, src, opt, true)
 }
 
+// FromLawThrough is FromLaw for an outcome that is computed from the variable
+// whose law m holds: that law is simulated, since the formula may bend its
+// noise, and the outcome worked out of it. Steps are the computed variables in
+// between and the outcome, each after those it reads.
+func FromLawThrough(ctx context.Context, m *model.Model, steps []*model.Variable, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
+	with := *m
+	with.Variables = slices.Clip(m.Variables)
+	for _, v := range steps {
+		bare := *v
+		bare.Plate, bare.Values = -1, nil // worked out at every row
+		with.Variables = append(with.Variables, &bare)
+	}
+	return contrast(ctx, &with, nil, q, draws, src, opt, false)
+}
+
+// NoChange gives the contrast where no arrows lead from exposure to outcome:
+// the expected outcome as it is, and exactly no change.
+func NoChange(ctx context.Context, m *model.Model, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
+	p, err := newPlanner(m)
+	if err != nil {
+		return nil, err
+	}
+	outcome, ok := p.variables[q.Outcome]
+	if !ok {
+		return nil, &unknownError{q.Outcome}
+	}
+	c, err := p.compare(ctx, none, outcome, nil, [2]arm{}, q, draws, src, opt, false)
+	if err != nil {
+		return nil, err
+	}
+	c.Exact = true
+	copy(c.Expected.To, c.Expected.From)
+	for i := range c.Values {
+		c.Values[i] = 0
+		if q.As == study.Ratio {
+			c.Values[i] = 1
+		}
+	}
+	return c, nil
+}
+
 func contrast(ctx context.Context, m *model.Model, district []string, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
 	p, err := newPlanner(m)
 	if err != nil {
@@ -43,23 +85,28 @@ func contrast(ctx context.Context, m *model.Model, district []string, q study.Qu
 	if err != nil {
 		return nil, err
 	}
+	from, to, err := arms(m.Variables[exposure], &q)
+	if err != nil {
+		return nil, err
+	}
+	return p.compare(ctx, exposure, outcome, p.indices(district), [2]arm{from, to}, q, draws, src, opt, alone)
+}
+
+// compare averages the outcome under two arms.
+func (p *planner) compare(ctx context.Context, exposure, outcome int, district []int, arms [2]arm, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
 	s, err := p.scaleOf(outcome, q.OutcomeLevels)
 	if err != nil {
 		return nil, err
 	}
-	plan, err := p.plan(exposure, p.indices(district), alone, target{variable: outcome, scale: s})
+	plan, err := p.plan(exposure, district, alone, target{variable: outcome, scale: s})
 	if err != nil {
 		return nil, err
 	}
 	if s.parts() > 1 {
 		return nil, fmt.Errorf("%s has levels; say the probability of which of them is asked for", q.Outcome)
 	}
-	from, to, err := arms(m.Variables[exposure], &q)
-	if err != nil {
-		return nil, err
-	}
 	sim := &simulation{
-		planner: p, plan: plan, arms: []arm{from, to}, draws: draws, opt: opt,
+		planner: p, plan: plan, arms: arms[:], draws: draws, opt: opt,
 		bootstrap: q.Over == study.PopulationAlike,
 		summary: func(sides [][]float64) float64 {
 			if q.As == study.Ratio {

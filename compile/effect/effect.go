@@ -19,6 +19,7 @@ type Contrast struct {
 	Draws  []int     // which draws were used; all of them unless thinned
 	Rows   int       // rows averaged over
 	Words  string    // what was averaged over what: "over these 237 rows"
+	Exact  bool      // no change, whatever the draws: no arrows lead from exposure to outcome
 	Error  float64   // simulation error of one draw's value (standard deviation); 0 = none was simulated
 }
 

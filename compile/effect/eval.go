@@ -13,6 +13,18 @@ type rowset struct {
 	n       int
 	columns [][]float64 // per variable
 	of      [][]int32   // per plate: level of each row
+	counts  [][]float64 // per plate: rows of each level
+}
+
+// units is how many levels of a plate have a row here.
+func (s *rowset) units(plate int) int {
+	n := 0
+	for _, rows := range s.counts[plate] {
+		if rows > 0 {
+			n++
+		}
+	}
+	return n
 }
 
 // rowsOf takes every used row, or n of them evenly spaced if there are more.
@@ -32,6 +44,11 @@ func rowsOf(m *model.Model, n int) *rowset {
 			of[i] = p.Of[row]
 		}
 		s.of = append(s.of, of)
+		in := make([]float64, len(p.Levels))
+		for _, level := range of {
+			in[level]++
+		}
+		s.counts = append(s.counts, in)
 	}
 	for _, v := range m.Variables {
 		c := make([]float64, n)

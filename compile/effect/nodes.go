@@ -22,17 +22,23 @@ func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question
 	if err != nil {
 		return nil, err
 	}
+	var out []NodeEffect
 	exposure, ok := p.variables[q.Exposure]
 	x := g.Index(q.Exposure)
-	if !ok || x < 0 {
+	if x < 0 {
 		return nil, &unknownError{q.Exposure}
+	}
+	if !ok { // no law reads it: nothing modelled descends from it
+		for _, v := range m.Variables {
+			out = append(out, NodeEffect{Variable: v.ID, Plain: true})
+		}
+		return out, nil
 	}
 	from, to, err := arms(m.Variables[exposure], &q)
 	if err != nil {
 		return nil, err
 	}
 	below := g.Descendants(x)
-	var out []NodeEffect
 	together := make(map[string][]int) // by district that reads the observed exposure: places in out
 	districts := make(map[string][]int)
 	for i, v := range m.Variables {

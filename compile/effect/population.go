@@ -8,19 +8,33 @@ import (
 )
 
 // weigh gives every row its weight: alike, or by a Bayesian bootstrap (Rubin
-// 1981) of the outermost groups; crossed ones multiply (Owen 2007).
+// 1981) of the outermost groups; crossed ones multiply (Owen 2007). For a
+// target at a plate's level the rows of one unit share what one unit gets:
+// it has one value, however many rows repeat it.
 func (b *bench) weigh(seed uint64) {
-	n := float64(b.rows.n)
-	for i := range b.weights {
-		b.weights[i] = 1 / n
+	base := b.weights[0]
+	for i := range base {
+		base[i] = 1
 	}
-	if !b.bootstrap {
-		return
+	if b.bootstrap {
+		b.resample(base, rand.New(rand.NewPCG(seed, 0)))
 	}
-	rng := rand.New(rand.NewPCG(seed, 0))
+	for plate, weights := range b.weights[1:] {
+		if weights == nil {
+			continue
+		}
+		for i, unit := range b.rows.of[plate] {
+			weights[i] = base[i] / b.rows.counts[plate][unit]
+		}
+		normalise(weights)
+	}
+	normalise(base)
+}
+
+func (b *bench) resample(weights []float64, rng *rand.Rand) {
 	if len(b.outer) == 0 {
-		for i := range b.weights {
-			b.weights[i] = rng.ExpFloat64()
+		for i := range weights {
+			weights[i] = rng.ExpFloat64()
 		}
 	}
 	for _, p := range b.outer {
@@ -29,15 +43,18 @@ func (b *bench) weigh(seed uint64) {
 			group[g] = rng.ExpFloat64()
 		}
 		for i, g := range b.rows.of[p] {
-			b.weights[i] *= group[g]
+			weights[i] *= group[g]
 		}
 	}
+}
+
+func normalise(weights []float64) {
 	total := 0.0
-	for _, x := range b.weights {
+	for _, x := range weights {
 		total += x
 	}
-	for i := range b.weights {
-		b.weights[i] /= total
+	for i := range weights {
+		weights[i] /= total
 	}
 }
 

@@ -6,7 +6,7 @@ import "math/rand/v2"
 type bench struct {
 	*simulation
 	w        *worker
-	weights  []float64
+	weights  [][]float64 // of rows, for targets at the level of a row and then of each plate; nil where there are none
 	uniforms [][]float64 // per simulated step
 	changed  [][]float64 // per step: the column under the intervention
 	exposed  []float64
@@ -15,7 +15,7 @@ type bench struct {
 }
 
 func newBench(s *simulation) *bench {
-	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([]float64, s.rows.n), exposed: make([]float64, s.rows.n)}
+	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([][]float64, 1+len(s.m.Plates)), exposed: make([]float64, s.rows.n)}
 	for _, st := range s.plan.steps {
 		b.changed = append(b.changed, make([]float64, s.rows.n))
 		n := s.rows.n
@@ -23,6 +23,12 @@ func newBench(s *simulation) *bench {
 			n = len(s.m.Plates[st.law.Plate].Levels)
 		}
 		b.uniforms = append(b.uniforms, make([]float64, n))
+	}
+	b.weights[0] = make([]float64, s.rows.n)
+	for _, t := range s.plan.targets {
+		if at := 1 + s.m.Variables[t.variable].Plate; b.weights[at] == nil {
+			b.weights[at] = make([]float64, s.rows.n)
+		}
 	}
 	k := s.plan.parts
 	b.part = make([]float64, k)
@@ -50,7 +56,9 @@ func (b *bench) round(i, round int) {
 	}
 	for a, arm := range b.arms {
 		clear(b.sides[a])
-		arm.apply(b.exposed, b.rows.columns[b.plan.exposure])
+		if b.plan.exposure != none {
+			arm.apply(b.exposed, b.rows.columns[b.plan.exposure])
+		}
 		for mirror := range mirrors {
 			b.expect(mirror == 1)
 			for k, x := range b.part {
@@ -76,7 +84,9 @@ func open(rng *rand.Rand) float64 { return (float64(rng.Uint64()>>11) + 0.5) / (
 func (b *bench) expect(mirrored bool) {
 	w, p := b.w, b.plan
 	copy(w.columns, b.rows.columns)
-	w.columns[p.exposure] = b.exposed
+	if p.exposure != none {
+		w.columns[p.exposure] = b.exposed
+	}
 	for i, st := range p.steps {
 		if st.law == nil {
 			values := w.eval(st.computed)
@@ -90,18 +100,22 @@ func (b *bench) expect(mirrored bool) {
 		w.columns[st.variable] = b.changed[i]
 	}
 	for _, t := range p.targets {
+		weights := b.weights[1+b.m.Variables[t.variable].Plate]
 		part := b.part[t.at : t.at+t.scale.parts()]
 		if t.computed != nil {
-			averageOf(part, w.eval(t.computed), b.weights)
+			averageOf(part, w.eval(t.computed), weights)
 			continue
 		}
 		b.look(t.variable)
-		w.expected(part, t.law, t.scale, b.weights)
+		w.expected(part, t.law, t.scale, weights)
 	}
 }
 
 // look shows a law the exposure that it reads: as set, or as it was observed.
 func (b *bench) look(variable int) {
+	if b.plan.exposure == none {
+		return
+	}
 	b.w.columns[b.plan.exposure] = b.exposed
 	if b.plan.observed[variable] {
 		b.w.columns[b.plan.exposure] = b.rows.columns[b.plan.exposure]

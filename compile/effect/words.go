@@ -17,15 +17,20 @@ func (s *simulation) words() string {
 	if s.rows.n < s.m.Rows.Used {
 		rows = fmt.Sprintf("%s of these %s rows, evenly spaced", grouped(s.rows.n), grouped(s.m.Rows.Used))
 	}
+	each := "row"
+	if plate := s.m.Variables[s.plan.targets[0].variable].Plate; plate >= 0 {
+		each = s.m.Plates[plate].Name
+		rows = fmt.Sprintf("the %s levels of %s in %s", grouped(s.rows.units(plate)), each, rows)
+	}
 	if !s.bootstrap {
-		return "over " + rows + ", each row alike"
+		return "over " + rows + ", each " + each + " alike"
 	}
 	var groups []string
 	for _, p := range s.outer {
 		groups = append(groups, fmt.Sprintf("%s (%s)", s.m.Plates[p].Name, grouped(len(s.m.Plates[p].Levels))))
 	}
 	if len(groups) == 0 {
-		return "over a population like " + rows + ", weighed by row"
+		return "over a population like " + rows + ", weighed by " + each
 	}
 	return "over a population like " + rows + ", weighed by group: " + strings.Join(groups, ", ")
 }
