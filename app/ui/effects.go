@@ -2,10 +2,12 @@ package ui
 
 import (
 	"fmt"
+	"slices"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 
+	"arrowroot/app/fit"
 	"arrowroot/app/words"
 	"arrowroot/canvas"
 	"arrowroot/canvas/draw"
@@ -71,31 +73,26 @@ func (p *effectPage) update() {
 		zero = 1
 	}
 
-	// All cards share one axis, so that they can be compared by eye.
-	low, high := zero, zero
-	var numbers []card
-	add := func(title, under string, c card, ok bool) {
-		c.title, c.under = title, under
-		c.missing = !ok
-		if ok {
-			low, high = min(low, c.low-0.6*(c.high-c.low)), max(high, c.high+0.6*(c.high-c.low))
+	held := "holding " + orNone(e.Held)
+	if e.HeldProposed {
+		held += " (proposed)"
+	}
+	refusal := sentenceCase(e.Refusal)
+	if !e.Identified { // the headline has the reason
+		refusal = "None: the effect is not identified."
+	}
+	cards := []card{
+		{"Crude", "nothing held", e.Crude, ""},
+		{"Held", held, e.Adjusted, ""},
+		{"Full model", "every law of the rival", e.Full, refusal},
+	}
+	cards = slices.DeleteFunc(cards, func(c card) bool { return c.number == nil && c.refusal == "" })
+	low, high := zero, zero // all cards share one axis, so that they can be compared by eye
+	for _, c := range cards {
+		if n := c.number; n != nil {
+			margin := 0.6 * (n.High - n.Low)
+			low, high = min(low, n.Low-margin), max(high, n.High+margin)
 		}
-		numbers = append(numbers, c)
-	}
-	if n := e.Crude; n != nil {
-		add("Crude", "nothing held", card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
-	}
-	if n := e.Adjusted; n != nil {
-		under := "holding " + orNone(e.Held)
-		if e.HeldProposed {
-			under += " (proposed)"
-		}
-		add("Held", under, card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
-	}
-	if n := e.Full; n != nil {
-		add("Full model", "every law of the rival", card{draws: n.Draws, centre: n.Centre, low: n.Low, high: n.High, level: n.Level, trust: n.Trust.Verdict.String(), words: n.Words, association: n.Association}, true)
-	} else {
-		add("Full model", "every law of the rival", card{words: e.Refusal}, false)
 	}
 
 	objects := []fyne.CanvasObject{p.headline()}
@@ -103,53 +100,56 @@ func (p *effectPage) update() {
 		objects = append(objects, para(note, tokenMuted))
 	}
 	grid := container.New(&evenLayout{gap: 12})
-	for _, c := range numbers {
+	for _, c := range cards {
 		grid.Add(p.card(c, zero, low, high))
 	}
 	objects = append(objects, grid)
 	p.pane.fill(nil, objects...)
 }
 
-// A card is one of the three numbers.
+// A card is one of the three numbers, or why it is not there.
 type card struct {
-	title, under         string
-	draws                []float64
-	centre, low, high    float64
-	level                float64
-	trust, words         string
-	association, missing bool
+	title, under string
+	number       *fit.Number
+	refusal      string
 }
 
 func (p *effectPage) card(c card, zero, from, to float64) fyne.CanvasObject {
 	objects := []fyne.CanvasObject{newProse(sizeBody, span{text: c.title, bold: true}, span{text: "  " + c.under, token: tokenMuted})}
-	if c.missing {
-		objects = append(objects, para(c.words, tokenConfound))
-		return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 8, 4, objects...))
+	n := c.number
+	if n == nil {
+		objects = append(objects, para(c.refusal, tokenConfound))
+		return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 6, 2, objects...))
 	}
 	style := p.d.style()
-	if c.association {
+	if n.Association {
 		style.Accent, style.Soft = style.Muted, draw.Alpha(style.Muted, 0.35)
 	}
-	curve := draw.KDE(c.draws, 160)
+	curve := draw.KDE(n.Draws, 160)
 	pic := canvas.NewPicture(100, 64, func(w, h float64) *draw.List {
-		return draw.DensityPlot(w, h, draw.Density{Posterior: curve, Low: c.low, High: c.high, Mark: &zero, From: from, To: to}, style)
+		return draw.DensityPlot(w, h, draw.Density{Posterior: curve, Low: n.Low, High: n.High, Mark: &zero, From: from, To: to}, style)
 	})
 	objects = append(objects, pic, newProse(sizeBody,
-		span{text: words.Number(c.centre), bold: true},
-		span{text: fmt.Sprintf("  %s: %s to %s", words.Percent(c.level), words.Number(c.low), words.Number(c.high))}))
-	token := tokenAction
-	switch c.trust {
-	case "caution":
-		token = tokenConfound
-	case "unusable":
-		token = tokenFault
-	}
-	spans := []span{{text: sentenceCase(c.trust), bold: true, token: token}, {text: " · " + c.words, token: tokenMuted}}
-	if c.association {
+		span{text: words.Number(n.Centre), bold: true},
+		span{text: fmt.Sprintf("  %s: %s to %s", words.Percent(n.Level), words.Number(n.Low), words.Number(n.High))}))
+	trust := n.Trust.Verdict.String()
+	spans := []span{{text: sentenceCase(trust), bold: true, token: verdictToken(trust)}, {text: " · " + n.Words, token: tokenMuted}}
+	if n.Association {
 		spans = append([]span{{text: "association, not an effect", bold: true, token: tokenConfound}, {text: " · "}}, spans...)
 	}
 	objects = append(objects, newProse(sizeSmall, spans...))
 	return stack(bordered(tokenSheet, tokenHairline, 6), padded(10, 6, 2, objects...))
+}
+
+// verdictToken is the colour of a verdict on a computation.
+func verdictToken(trust string) fyne.ThemeColorName {
+	switch trust {
+	case "caution":
+		return tokenConfound
+	case "unusable":
+		return tokenFault
+	}
+	return tokenAction
 }
 
 // headline is the answer in one sentence, as the report says it.
@@ -161,6 +161,9 @@ func (p *effectPage) headline() fyne.CanvasObject {
 		token = tokenConfound
 	}
 	spans := []span{{text: lines[0], bold: true, token: token}}
+	if v.Result.Effect.Headline() == nil {
+		return newProse(sizeBody, spans...)
+	}
 	word, tone := p.d.trustWords()
 	spans = append(spans, span{text: "  " + word + ".", bold: true, token: tone}, span{text: "  If the arrows drawn and not drawn are right.", token: tokenMuted})
 	return newProse(sizeBody, spans...)

@@ -88,11 +88,8 @@ func (p *fitPage) table() {
 			continue
 		}
 		token := tokenInk
-		switch q.Trust.Verdict.String() {
-		case "caution":
-			token = tokenConfound
-		case "unusable":
-			token = tokenFault
+		if trust := q.Trust.Verdict.String(); trust != "sound" {
+			token = verdictToken(trust)
 		}
 		name := newLabel(q.Symbol, sizeBody, token, fyne.TextStyle{}).shrinkTo(40)
 		rows = append(rows, quantityRow(name, [5]string{

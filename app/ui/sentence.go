@@ -21,7 +21,11 @@ func (d *desk) sentenceOf(typed string) sentence {
 			return sentence{wrong: sentenceCase(err.Error())}
 		}
 		return sentence{does: "Draw " + strings.ReplaceAll(text, "->", "→"), run: func() {
+			first := len(d.view.Rival.Diagram.Nodes) == 0
 			if d.do(study.TypeArrows{Rival: d.rival(), Text: lines}) {
+				if first {
+					d.editor.ZoomFit()
+				}
 				d.showAll()
 			}
 		}}

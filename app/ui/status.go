@@ -107,25 +107,15 @@ func (s *status) legends() []fyne.CanvasObject {
 		say("much")
 	case scene.TrustPaint:
 		say("nodes and arrows: can the computation be trusted?")
-		for _, w := range []string{"sound", "caution", "unusable"} {
-			say("  " + trustGlyph(w) + " " + w)
+		for i, w := range []string{"✓ sound", "! caution", "× unusable"} {
+			out = append(out, swatches(p.Learned[i:i+1], p))
+			say(w)
 		}
 	}
 	if d.view.Stale {
 		out = append(out, newLabel("  of an earlier version", sizeSmall, tokenConfound, fyne.TextStyle{}))
 	}
 	return out
-}
-
-// trustGlyph is the mark of a verdict where there is no room for the word.
-func trustGlyph(word string) string {
-	switch word {
-	case "caution":
-		return "◐"
-	case "unusable":
-		return "○"
-	}
-	return "●"
 }
 
 // swatches are the bins of a paint side by side.

@@ -99,7 +99,7 @@ func (s *strip) update() {
 		if r.Verdict.HasProposal {
 			ids := s.d.names(r.Verdict.Propose)
 			s.label.text = proposal(ids)
-			if r.Verdict.Kind == causal.Confounded && len(ids) > 0 { // the sentence has the names
+			if r.Verdict.Kind == causal.Confounded && len(ids) > 0 && len(r.Query.Held) == 0 { // the sentence has the names
 				s.label.text = "Hold them"
 				if len(ids) == 1 {
 					s.label.text = "Hold it"
@@ -268,15 +268,9 @@ func (d *desk) trustWords() (string, fyne.ThemeColorName) {
 	if v.Result == nil {
 		return "", tokenMuted
 	}
-	word, token := "Sound", tokenAction
-	switch v.Result.Trust().Verdict.String() {
-	case "caution":
-		word, token = "Caution", tokenConfound
-	case "unusable":
-		word, token = "Unusable", tokenFault
-	}
+	trust := v.Result.Trust().Verdict.String()
 	if v.Stale {
-		return word + " · stale", tokenMuted
+		return sentenceCase(trust) + " · stale", tokenMuted
 	}
-	return word, token
+	return sentenceCase(trust), verdictToken(trust)
 }
