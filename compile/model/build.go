@@ -27,6 +27,7 @@ func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind 
 		declared: make(map[string]*declaration),
 		columns:  make(map[string]*column),
 		at:       make(map[string]int),
+		aside:    make(map[string]string),
 		ledger:   make(map[string]*study.Variable, len(s.Variables)),
 	}
 	for _, v := range s.Variables {
@@ -91,6 +92,10 @@ type builder struct {
 	plates   []*plateColumn
 	model    *Model
 	at       map[string]int // variable ID → index in model.Variables
+
+	without []string          // mediators that a model of the outcome alone leaves out
+	trimmed bool              // and whether its typed formula lost summands
+	aside   map[string]string // stated priors that do not hold in this model: why, by canonical name
 
 	making   []string // parameters whose priors are being read
 	problems []Problem

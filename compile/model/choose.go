@@ -5,7 +5,6 @@ import (
 	"slices"
 
 	"arrowroot/compile/causal"
-	"arrowroot/compile/formula"
 	"arrowroot/compile/study"
 )
 
@@ -74,116 +73,6 @@ func (b *builder) carrier(c causal.Carried) carrier {
 }
 
 const unnamedCause = "an unnamed common cause"
-
-// chooseOutcome takes the outcome's law alone, on the exposure and, for Held,
-// the held set (SEMANTICS B8). Its offset, its trials and its varying baseline
-// stay; a drawn arrow lends its form, a variable without one enters with the
-// default form.
-func (b *builder) chooseOutcome() {
-	q := b.question
-	for _, id := range []string{q.Exposure, q.Outcome} {
-		switch v := b.variable(id); {
-		case id == "" || v == nil || !b.onSheet(id):
-			b.stop(Problem{Code: "question", Place: "question", Message: "The question needs an exposure and an outcome that stand on the sheet."})
-			return
-		case v.Unmeasured:
-			b.stop(Problem{Code: "question", Variable: id, Place: "question", Message: fmt.Sprintf("%s was not measured, so that no law can be fitted to it.", v.Name())})
-			return
-		}
-	}
-	if q.Exposure == q.Outcome {
-		b.stop(Problem{Code: "question", Variable: q.Exposure, Place: "question", Message: "Exposure and outcome are the same variable."})
-		return
-	}
-	want := []string{q.Exposure}
-	if b.kind == Held {
-		for _, h := range q.Held {
-			if v := b.variable(h); v == nil || v.Unmeasured || !b.onSheet(h) {
-				b.stop(Problem{Code: "held", Variable: h, Place: "question", Message: fmt.Sprintf("%s is held, but it is not a measured variable of this sheet.", h)})
-				return
-			}
-			if h != q.Exposure && h != q.Outcome {
-				want = append(want, h)
-			}
-		}
-	}
-	d := &draft{variable: b.variable(q.Outcome), user: b.userLaw(q.Outcome)}
-	kept := make(map[string]bool)
-	for _, id := range want {
-		kept[id] = true
-	}
-	offsets, varies := typedParts(d.user.Formula, q.Outcome)
-	for _, a := range b.rival.Diagram.Arrows {
-		if p := b.variable(a.From); a.To != q.Outcome || p == nil || p.Unmeasured || !b.onSheet(a.From) {
-			continue
-		}
-		drawn := *a
-		if slices.Contains(offsets, a.From) {
-			drawn.Form = "offset"
-		}
-		if !kept[a.From] && drawn.Form != "offset" {
-			continue
-		}
-		kept[a.From] = true
-		// The prior of a drawn slope is about a direct effect; this slope is another.
-		drawn.Prior = ""
-		drawn.With = nil
-		for _, w := range a.With {
-			if slices.Contains(want, w) {
-				drawn.With = append(drawn.With, w)
-			}
-		}
-		d.arrows = append(d.arrows, &drawn)
-	}
-	for _, id := range want {
-		if !hasArrow(d.arrows, id) {
-			d.arrows = append(d.arrows, &study.Arrow{From: id, To: q.Outcome})
-		}
-	}
-	d.user.Formula = ""
-	for _, p := range varies {
-		if !slices.Contains(d.user.VariesBy, p) {
-			d.user.VariesBy = append(append([]string(nil), d.user.VariesBy...), p)
-		}
-	}
-	b.drafts = []*draft{d}
-}
-
-// typedParts finds in a typed formula what a model of the outcome alone keeps:
-// the variables that enter as their bare log, and the plates over which the
-// baseline varies. A formula that does not parse has none.
-func typedParts(text, outcome string) (offsets, varies []string) {
-	if text == "" {
-		return nil, nil
-	}
-	p, err := formula.Parse(text)
-	if err != nil {
-		return nil, nil
-	}
-	for _, term := range summands(p.Right) {
-		switch t := term.(type) {
-		case *formula.Call:
-			if n, ok := t.Args[0].(*formula.Name); ok && t.Function == "log" && len(t.Args) == 1 {
-				offsets = append(offsets, n.ID)
-			}
-		case *formula.By:
-			if t.Name.ID == "alpha_"+outcome {
-				varies = append(varies, t.Plates...)
-			} else if len(t.Plates) == 1 && t.Name.ID == "alpha_"+outcome+"_"+clean(t.Plates[0]) {
-				varies = append(varies, t.Plates[0])
-			}
-		}
-	}
-	return offsets, varies
-}
-
-// summands splits a sum into what is added up at its top.
-func summands(e formula.Expr) []formula.Expr {
-	if b, ok := e.(*formula.Binary); ok && b.Op == '+' {
-		return append(summands(b.X), summands(b.Y)...)
-	}
-	return []formula.Expr{e}
-}
 
 func hasArrow(arrows []*study.Arrow, from string) bool {
 	return slices.ContainsFunc(arrows, func(a *study.Arrow) bool { return a.From == from })

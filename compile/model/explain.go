@@ -236,6 +236,13 @@ func (b *builder) predict(d *draft) {
 				terms = append(terms, b.term(d, &study.Arrow{From: c.id, To: d.variable.ID}, true, -1))
 			}
 		}
+		if b.kind != Full { // what the exposure or the held set adds to it
+			for _, a := range d.arrows {
+				if !slices.Contains(formula.Names(d.formula), a.From) {
+					terms = append(terms, b.term(d, a, false, -1))
+				}
+			}
+		}
 		d.law.Terms = nil
 		d.law.Predictors = []formula.Expr{sum(terms)}
 		return

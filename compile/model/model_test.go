@@ -109,14 +109,71 @@ func TestOutcomeAlone(t *testing.T) {
 			t.Errorf("%d rows, the full model has %d", m.Rows.Used, full.Rows.Used)
 		}
 	}
-	// The same from a typed formula: its varying baseline and offset stay, its
-	// priors of slopes do not.
-	m := build(t, typedBees(), beesQuestion(), tab, Crude)
-	if got := formula.Format(m.Laws[0].Predictors[0]); got != "alpha_bees_farm by farm + beta_hedge_bees * (hedge - 90) + log hours" {
-		t.Error(got)
+}
+
+// Of a typed formula the models of the outcome alone keep what they can, with
+// its priors (B8).
+func TestOutcomeAloneTyped(t *testing.T) {
+	for _, c := range []struct {
+		name, formula string
+		kind          Kind
+		held          []string
+		want          string
+	}{
+		{"summands dropped", "", Crude, nil,
+			"alpha_bees_farm by farm + beta_hedge_bees * (hedge - 90) / 10 + log hours"},
+		{"a held variable keeps its term, another gets a default one", "", Held, []string{"pesticide", "soil"},
+			"alpha_bees_farm by farm + beta_hedge_bees * (hedge - 90) / 10 + beta_pesticide_bees * log(pesticide + 1) + log hours + step_soil_bees of soil"},
+		{"whole", "", Held, []string{"pesticide", "flowers", "temp"},
+			"alpha_bees_farm by farm + beta_hedge_bees * (hedge - 90) / 10 + beta_flowers_bees * flowers + beta_pesticide_bees * log(pesticide + 1) + bend * (temp - 18)^2 + log hours"},
+		{"kept and dropped in one summand", "log rate = alpha_bees - bend * (hedge - flowers) + log hours + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
+			"alpha_bees + log hours + beta_hedge_bees * (hedge - 90)"},
+		{"signs", "log rate = log hours - (bend * hedge ^ 2 - alpha_bees + beta_flowers_bees * flowers) + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
+			"log hours - bend * hedge^2 + alpha_bees"},
+		{"no baseline left", "log rate = alpha_bees * exp(-bend * flowers) + beta_hedge_bees * hedge + log hours + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
+			"alpha_bees + beta_hedge_bees * (hedge - 90) + log hours"},
+	} {
+		t.Run(c.name, func(t *testing.T) {
+			s, q := typedBees(), beesQuestion()
+			if c.formula != "" {
+				law(s, "bees").Formula, law(s, "bees").VariesBy = c.formula, nil
+			}
+			q.Held = c.held
+			m := build(t, s, q, traps(), c.kind)
+			if got := formula.Format(m.Laws[0].Predictors[0]); got != c.want {
+				t.Errorf("%s\nnot\n%s", got, c.want)
+			}
+			for _, id := range []string{"beta_hedge_bees", "k_bees", "bend"} {
+				if _, i := m.Name(id); i >= 0 && !m.Parameters[i].Prior.FromUser && m.Laws[0].Typed {
+					t.Errorf("the stated prior of %s is lost", id)
+				}
+			}
+		})
 	}
-	if parameter(t, m, "beta_hedge_bees").Prior.FromUser || !parameter(t, m, "k_bees").Prior.FromUser {
-		t.Error("the crude model takes the wrong priors from the user")
+}
+
+// A stated prior of a slope holds where the slope means the same (B8).
+func TestOutcomeAlonePriors(t *testing.T) {
+	s := sheet([]*study.Variable{
+		{ID: "c", Scale: study.Real, Column: "hedge"}, {ID: "x", Scale: study.Real, Column: "temp"},
+		{ID: "m", Scale: study.Real, Column: "flowers"}, {ID: "y", Scale: study.Real, Column: "pesticide"},
+	}, "c -> x; c -> y; x -> y; x -> m", nil)
+	s.Rivals[0].Diagram.Arrows[2].Prior = "normal with mean 2, sd 0.01"
+	law(s, "y").Priors = []study.Prior{{Parameter: "beta_c_y", Text: "normal with mean 1, sd 1"}}
+	q := study.Question{Exposure: "x", Outcome: "y", Held: []string{"c"}}
+	m := build(t, s, q, traps(), Held)
+	for _, id := range []string{"beta_x_y", "beta_c_y"} {
+		if !parameter(t, m, id).Prior.FromUser {
+			t.Errorf("the stated prior of %s is lost", id)
+		}
+	}
+	s.Rivals[0].Diagram.Arrows = append(s.Rivals[0].Diagram.Arrows, &study.Arrow{From: "m", To: "y"})
+	m = build(t, s, q, traps(), Held)
+	for _, id := range []string{"beta_x_y", "beta_c_y"} {
+		p := parameter(t, m, id)
+		if p.Prior.FromUser || !strings.HasSuffix(p.Why, "; the stated prior is for a law with m, which this one leaves out") {
+			t.Errorf("%s: %s", id, p.Why)
+		}
 	}
 }
 

@@ -156,10 +156,11 @@ func (b *builder) declare() {
 		d := b.draftOf(n.Variable)
 		for _, p := range n.Law.Priors {
 			id := canonicalParameter(p.Parameter)
-			if m, ok := b.scope[id]; ok && b.kind != Full && aboutArrows(m.role) {
-				continue // of a drawn arrow's slope; this model's slopes are others
-			} else if ok && b.kind != Full && m.role == baseline && n.Law.Formula != "" {
-				continue // of the formula's baseline; this model's parents are centred
+			if m, ok := b.scope[id]; ok && aboutArrows(m.role) && b.otherSlopes(id) {
+				continue
+			} else if ok && b.trimmed && m.role == baseline {
+				b.aside[id] = "the stated prior is for a formula with terms that this law leaves out"
+				continue
 			}
 			if d == nil && b.kind == Full && b.scope[id] == (meaning{}) && b.variable(n.Variable).Computed != "" {
 				continue
@@ -176,9 +177,23 @@ func (b *builder) declare() {
 			if b.takesSteps(a) {
 				role = steps
 			}
-			b.declareOne(d.variable.ID, b.names[meaning{role: role, child: d.variable.ID, parent: a.From}], a.Prior)
+			id := b.names[meaning{role: role, child: d.variable.ID, parent: a.From}]
+			if !b.otherSlopes(id) {
+				b.declareOne(d.variable.ID, id, a.Prior)
+			}
 		}
 	}
+}
+
+// otherSlopes reports whether the coefficients of this model are of other
+// effects than the drawn ones, since a mediator was left out, and notes it for
+// the parameter whose stated prior does not hold then.
+func (b *builder) otherSlopes(id string) bool {
+	if len(b.without) == 0 {
+		return false
+	}
+	b.aside[id] = fmt.Sprintf("the stated prior is for a law with %s, which this one leaves out", list(b.without))
+	return true
 }
 
 func aboutArrows(r role) bool {
@@ -298,8 +313,10 @@ func (b *builder) parseFormula(d *draft) {
 	}
 	if b.checkNames(d, p.Right, at, fix) {
 		d.formula = p.Right
-		b.unusedArrows(d, at, fix)
-		b.unusedPlates(d, at, fix)
+		if b.kind == Full {
+			b.unusedArrows(d, at, fix)
+			b.unusedPlates(d, at, fix)
+		}
 	}
 }
 

@@ -25,6 +25,9 @@ func (b *builder) parameter(m meaning) int {
 	if d != nil {
 		p.Of = d.law.Variable
 		b.defaultPrior(d, m, p)
+		if why := b.aside[id]; why != "" {
+			p.Why += "; " + why
+		}
 	} else {
 		b.freePrior(m, p)
 	}
