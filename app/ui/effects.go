@@ -95,7 +95,11 @@ func (p *effectPage) update() {
 		}
 	}
 
-	objects := []fyne.CanvasObject{p.headline()}
+	var objects []fyne.CanvasObject
+	if v.Stale {
+		objects = append(objects, para("This answers an earlier version of the study or of the question.", tokenConfound))
+	}
+	objects = append(objects, p.headline())
 	for _, note := range e.Notes {
 		objects = append(objects, para(note, tokenMuted))
 	}
