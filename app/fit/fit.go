@@ -2,9 +2,11 @@
 // summaries, effects and paint. The window and the batch program both come
 // through here, so that they cannot say different things.
 //
-// Read fit.go (what goes in and comes out), sample.go (blocks in rounds),
-// quantities.go (parameters as numbers), contrast.go (crude, held and full
-// model side by side), learned.go (what the data taught).
+// Read fit.go (what goes in and comes out), question.go (questions that cannot
+// be answered yet), sample.go (blocks in rounds), quantities.go (parameters as
+// numbers), contrast.go (crude, held and full model side by side), onelaw.go
+// (one of them), number.go (a contrast as a number), paint.go (what the data
+// taught).
 package fit
 
 import (
@@ -24,13 +26,16 @@ import (
 
 // A Request says what to fit and how long.
 type Request struct {
-	Study    *study.Study
-	Rival    string
-	Question *study.Question // nil = none: the rival is fitted, no effect is computed
-	Table    *table.Table
-	Seed     uint64
-	Chains   int // 0 = 4
-	Draws    int // per chain; 0 = until every shown quantity is precise enough
+	Study     *study.Study
+	Rival     string
+	Question  *study.Question // nil = none: the rival is fitted, no effect is computed
+	Table     *table.Table
+	Seed      uint64
+	Chains    int  // 0 = 4
+	Draws     int  // per chain; 0 = until every shown quantity is precise enough
+	NoEffects bool // leave out crude, held and full model: the quantities are all that is wanted
+	NoPaint   bool // leave out what paints the sheet
+	Answer    bool // nothing is wanted but an answer: a question that lacks something is a *Blocked error
 }
 
 // Level is the credible level of intervals.
@@ -56,7 +61,8 @@ type Result struct {
 	Question    *study.Question
 	Seed        uint64
 	Full        *Fitted
-	Effect      *Effect // nil without a complete question
+	Effect      *Effect  // nil without a complete question
+	Unanswered  *Blocked // what the question lacks, where it was asked and Effect is nil for it
 	Arrows      []ArrowPaint
 	Nodes       []NodePaint
 	Fingerprint string // of the full model: a result is stale when the study's differs
@@ -92,14 +98,27 @@ func (e *Blocked) Error() string {
 // ErrNoDraws means that a run was cancelled before it had any draws.
 var ErrNoDraws = errors.New("cancelled in warm-up: there are no draws to keep")
 
-// Run fits the request. A *Blocked error lists what stops it. When ctx is
-// cancelled the draws so far are kept: the result comes with Cut set, or
-// ErrNoDraws if the warm-up was not over. Crude and held numbers that need
-// fits of their own are then left out.
+// After a cancel, what the draws so far can say at once is still said: each of
+// these is how long it may take.
+const (
+	graceOfEffects = time.Second
+	graceOfPaint   = time.Second
+)
+
+// Run fits the request. A *Blocked error lists what stops it; a question that
+// lacks something does not, and stands in Unanswered. When ctx is cancelled
+// the draws so far are kept: the result comes with Cut set, or ErrNoDraws if
+// the warm-up was not over. Crude and held numbers that need fits of their own
+// are then left out, and so is whatever takes more than a second.
 func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result, error) {
 	began := time.Now()
 	q := req.question()
 	m, problems := model.Build(req.Study, req.Rival, q, req.Table, model.Full)
+	problems, lacking := apart(problems)
+	if m == nil && lacking != nil && !model.Stops(problems) {
+		// The question alone is at fault: the rival can be fitted without it.
+		m, problems = model.Build(req.Study, req.Rival, study.Question{}, req.Table, model.Full)
+	}
 	if m == nil || model.Stops(problems) {
 		return nil, &Blocked{problems}
 	}
@@ -107,32 +126,44 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	if err != nil {
 		return nil, err
 	}
+	if lacking == nil {
+		lacking = incomplete(m, g, req.Question)
+	}
+	if req.Answer && lacking != nil {
+		return nil, lacking
+	}
 	full, err := sampleModel(ctx, m, &req, "full", watch)
 	if err != nil {
 		return nil, err
 	}
 	r := &Result{
-		Rival: req.Rival, Question: req.Question, Seed: req.Seed, Full: full,
+		Rival: req.Rival, Question: req.Question, Seed: req.Seed, Full: full, Unanswered: lacking,
 		Fingerprint: m.Fingerprint(),
 	}
-	if asked(g, q) {
+	if req.Question != nil && lacking == nil && !req.NoEffects {
 		if r.Effect, err = contrasts(ctx, &req, g, full, watch); err != nil {
 			return nil, fmt.Errorf("effect of %s on %s: %w", q.Exposure, q.Outcome, err)
 		}
 	}
 	r.Cut = full.Cut || ctx.Err() != nil
-	// Paint is quick beside sampling; it is done even after a cancel, so that
-	// draws that were kept can be read.
-	if err := r.paint(context.WithoutCancel(ctx), g, q); err != nil {
-		return nil, fmt.Errorf("paint: %w", err)
+	if !req.NoPaint {
+		if err := r.paint(ctx, &req, g); err != nil {
+			return nil, fmt.Errorf("paint: %w", err)
+		}
 	}
 	r.Took = time.Since(began)
 	return r, nil
 }
 
-// asked reports whether the question has both its ends on the sheet.
-func asked(g *graph.Graph, q study.Question) bool {
-	return q.Exposure != q.Outcome && g.Index(q.Exposure) >= 0 && g.Index(q.Outcome) >= 0
+// grace gives a context that outlives ctx's cancel by some time, so that draws
+// that were kept can be read.
+func grace(ctx context.Context, by time.Duration) (context.Context, context.CancelFunc) {
+	late, cancel := context.WithCancel(context.WithoutCancel(ctx))
+	stop := context.AfterFunc(ctx, func() {
+		timer := time.AfterFunc(by, cancel)
+		context.AfterFunc(late, func() { timer.Stop() })
+	})
+	return late, func() { stop(); cancel() }
 }
 
 // Read gives the reading of a question on a rival's graph, with the question's

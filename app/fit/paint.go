@@ -7,7 +7,6 @@ import (
 	"arrowroot/compile/effect"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
-	"arrowroot/compile/study"
 	"arrowroot/infer/summary"
 )
 
@@ -35,14 +34,24 @@ type NodePaint struct {
 	Modelled        bool
 }
 
-func (r *Result) paint(ctx context.Context, g *graph.Graph, q study.Question) error {
-	f := r.Full
-	level := defaultLevel
-	if q.Level > 0 && q.Level < 1 {
-		level = q.Level
+// paint fills in Arrows and Nodes. After a cancel it has a second for it; what
+// is not there by then stays unpainted.
+func (r *Result) paint(ctx context.Context, req *Request, g *graph.Graph) error {
+	late, cancel := grace(ctx, graceOfPaint)
+	defer cancel()
+	err := r.paintArrows(late, req, g)
+	if err == nil {
+		err = r.paintNodes(late, req, g)
 	}
-	draws := f.Pooled()
-	arrows, err := effect.Arrows(ctx, f.Model, draws, effect.Options{})
+	if late.Err() != nil {
+		return nil
+	}
+	return err
+}
+
+func (r *Result) paintArrows(ctx context.Context, req *Request, g *graph.Graph) error {
+	f, level := r.Full, req.Level()
+	arrows, err := effect.Arrows(ctx, f.Model, f.Pooled(), options(req))
 	if err != nil {
 		return err
 	}
@@ -59,10 +68,17 @@ func (r *Result) paint(ctx context.Context, g *graph.Graph, q study.Question) er
 		p.Trust = summary.Worst(p.Trust, summary.Judge(p.Summary, f.Sampling))
 		r.Arrows = append(r.Arrows, p)
 	}
+	return nil
+}
+
+// paintNodes gives every node what the data taught of it and, where a question
+// was asked that is complete, its change under the intervention.
+func (r *Result) paintNodes(ctx context.Context, req *Request, g *graph.Graph) error {
+	f, level := r.Full, req.Level()
 	var nodes []effect.NodeEffect
-	if asked(g, q) {
-		src := source(&Request{Seed: r.Seed}, "nodes")
-		if nodes, err = effect.Nodes(ctx, f.Model, g, q, draws, src, effect.Options{}); err != nil {
+	if req.Question != nil && r.Unanswered == nil {
+		var err error
+		if nodes, err = effect.Nodes(ctx, f.Model, g, *req.Question, f.Pooled(), source(req, "nodes"), options(req)); err != nil {
 			return err
 		}
 	}

@@ -4,6 +4,8 @@ import (
 	"fmt"
 	"math"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"arrowroot/app/fit"
 	"arrowroot/compile/model"
@@ -35,6 +37,10 @@ func Change(s *study.Study, q *study.Question) string {
 	switch {
 	case q.From != nil && q.To != nil:
 		return setting(q.From) + " → " + setting(q.To) + unit
+	case q.From != nil:
+		return setting(q.From) + unit + " → as it is"
+	case q.To != nil:
+		return "as it is → " + setting(q.To) + unit
 	case q.Shift != 0:
 		sign := "+"
 		if q.Shift < 0 {
@@ -89,33 +95,48 @@ func Trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string
 	return fmt.Sprintf("%s: R-hat %.2f, ESS %s, %s", title(t.Verdict.String()), s.RHat, Whole(math.Min(s.BulkESS, s.TailESS)), divergences)
 }
 
-func title(s string) string { return strings.ToUpper(s[:1]) + s[1:] }
+func title(s string) string {
+	first, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[size:]
+}
 
 // Effect says what a result answers to its question, a sentence a line: the
 // headline, the numbers side by side, what they rest on.
 func Effect(s *study.Study, r *fit.Result) []string {
 	e, q := r.Effect, r.Question
-	if e == nil || q == nil {
+	switch {
+	case r.Unanswered != nil:
+		return []string{r.Unanswered.Error()}
+	case e == nil || q == nil:
 		return []string{"Ask a question to see an effect: an exposure, an outcome and two values to compare."}
 	}
 	var lines []string
 	head := e.Headline()
 	switch {
+	case e.Cut:
+		lines = append(lines, "The run was stopped before the numbers could be set beside each other: none of them is the answer yet.")
+	case e.None && head != nil:
+		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s: this diagram says that %s changes nothing in it, whatever the data.", q.Exposure, q.Outcome, act(s, q)))
 	case head != nil:
 		lines = append(lines, headline(s, q, head))
 	case e.LawsDisagree:
 		lines = append(lines, fmt.Sprintf("Laws disagree: holding %s gives %s, the full model %s. Neither is the answer before one of the laws on the way from %s to %s is mended.",
 			List(e.Held), Value(q, e.Adjusted), Value(q, e.Full), q.Exposure, q.Outcome))
-	case !e.Identified:
-		lines = append(lines, fmt.Sprintf("%s What the data show is an association (%s), not an effect.", sentence(e.Refusal), Value(q, e.Crude)))
+	case !e.Identified && e.Crude != nil:
+		lines = append(lines, fmt.Sprintf("%s The association is %s.", sentence(e.Refusal), Value(q, e.Crude)))
 	default:
 		lines = append(lines, sentence(e.Refusal))
 	}
 	lines = append(lines, beside(q, e))
-	if head != nil && e.Refusal != "" {
-		lines = append(lines, "Full model: "+e.Refusal+".")
+	for _, missing := range []struct {
+		name   string
+		reason string
+	}{{"Crude", e.CrudeRefusal}, {"Held", e.AdjustedRefusal}, {"Full model", e.Refusal}} {
+		if missing.reason != "" && !e.Cut && (head != nil || missing.name != "Full model") {
+			lines = append(lines, missing.name+": "+strings.TrimSuffix(missing.reason, ".")+".")
+		}
 	}
-	if head != nil {
+	if head != nil && !head.Constant {
 		lines = append(lines, Trust(head.Trust, head.Summary, r.Full.Sampling)+".")
 	}
 	return lines
@@ -132,6 +153,14 @@ func sentence(s string) string {
 	return s
 }
 
+// act names the intervention: "setting hedge 40 → 90 m/ha".
+func act(s *study.Study, q *study.Question) string {
+	if q.From == nil && q.To == nil {
+		return "shifting " + q.Exposure + " by " + Change(s, q)
+	}
+	return "setting " + q.Exposure + " " + Change(s, q)
+}
+
 func headline(s *study.Study, q *study.Question, n *fit.Number) string {
 	name, unit := q.Outcome, ""
 	if v := s.Variable(q.Outcome); v != nil {
@@ -141,22 +170,19 @@ func headline(s *study.Study, q *study.Question, n *fit.Number) string {
 	if len(q.OutcomeLevels) > 0 {
 		what = "the probability that " + name + " is " + strings.Join(q.OutcomeLevels, " or ")
 	}
-	act := "Setting " + q.Exposure + " " + Change(s, q)
-	if q.From == nil && q.Shift != 0 {
-		act = "Shifting " + q.Exposure + " by " + Change(s, q)
-	}
+	doing := title(act(s, q))
 	interval := fmt.Sprintf("(%s %s to %s)", Percent(n.Level), Number(n.Low), Number(n.High))
 	over := ""
 	if n.Words != "" {
 		over = ", " + n.Words
 	}
 	if q.As == study.Ratio {
-		return fmt.Sprintf("%s multiplies %s by %s %s%s.", act, what, Number(n.Centre), interval, over)
+		return fmt.Sprintf("%s multiplies %s by %s %s%s.", doing, what, Number(n.Centre), interval, over)
 	}
 	if unit != "" {
 		unit = " " + unit
 	}
-	return fmt.Sprintf("%s changes %s by %s%s %s%s.", act, what, Number(n.Centre), unit, interval, over)
+	return fmt.Sprintf("%s changes %s by %s%s %s%s.", doing, what, Number(n.Centre), unit, interval, over)
 }
 
 // Value is one number with its interval.
