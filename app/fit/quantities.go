@@ -2,7 +2,10 @@ package fit
 
 import (
 	"fmt"
+	"maps"
 	"math"
+	"slices"
+	"strings"
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
@@ -55,28 +58,75 @@ func (f *Fitted) summarise(level float64, runs []*blockRun) {
 	}
 }
 
-// worstQuantity joins the verdicts but says of quantities only which is worst:
-// a hundred group effects with few draws are one reason, not a hundred.
+// namedReasons is how many quantities a joined verdict names; the others are
+// counted.
+const namedReasons = 3
+
+// worstQuantity joins the verdicts on quantities. Reasons that all of those
+// that are not sound share are said once; beyond them each parameter speaks
+// through its worst entry, since a hundred group effects with few draws are
+// one reason, and the worst three are named.
 func worstQuantity(all []Quantity, trusts []summary.Trust) summary.Trust {
 	var t summary.Trust
-	worst := -1
+	times := make(map[string]int)
+	worst := make(map[int]int) // by parameter: place in all
+	faults := 0
 	for i, x := range trusts {
-		if worst < 0 || x.Verdict > trusts[worst].Verdict ||
-			x.Verdict == trusts[worst].Verdict && weaker(all[i].Summary, all[worst].Summary) {
-			worst = i
+		t.Verdict = max(t.Verdict, x.Verdict)
+		if x.Verdict == summary.Sound {
+			continue
+		}
+		faults++
+		for _, r := range x.Reasons {
+			times[r]++
+		}
+		at, known := worst[all[i].Parameter]
+		if !known || x.Verdict > trusts[at].Verdict || x.Verdict == trusts[at].Verdict && weaker(all[i].Summary, all[at].Summary) {
+			worst[all[i].Parameter] = i
 		}
 	}
-	if worst < 0 {
-		return t
+	places := slices.SortedFunc(maps.Values(worst), func(a, b int) int {
+		switch {
+		case trusts[a].Verdict != trusts[b].Verdict:
+			return int(trusts[b].Verdict - trusts[a].Verdict)
+		case weaker(all[a].Summary, all[b].Summary):
+			return -1
+		case weaker(all[b].Summary, all[a].Summary):
+			return 1
+		}
+		return a - b
+	})
+	shared := func(reason string) bool { return faults > 1 && times[reason] == faults }
+	named, more := []string(nil), 0
+	for k, at := range places {
+		var own []string
+		for _, r := range trusts[at].Reasons {
+			if !shared(r) {
+				own = append(own, r)
+			} else if k == 0 {
+				t.Reasons = append(t.Reasons, r)
+			}
+		}
+		switch {
+		case len(own) == 0:
+		case len(named) < namedReasons:
+			named = append(named, all[at].Symbol+": "+strings.Join(own, ", "))
+		default:
+			more++
+		}
 	}
-	t.Verdict = trusts[worst].Verdict
-	for _, r := range trusts[worst].Reasons {
-		t.Reasons = append(t.Reasons, fmt.Sprintf("%s: %s", all[worst].Symbol, r))
+	if more > 0 {
+		named = append(named, fmt.Sprintf("and %d more", more))
 	}
+	t.Reasons = append(t.Reasons, named...)
 	return t
 }
 
+// weaker reports whether a has fewer effective draws; unknown is fewest.
 func weaker(a, b summary.Summary) bool {
+	if x, y := math.IsNaN(a.BulkESS+a.TailESS), math.IsNaN(b.BulkESS+b.TailESS); x || y {
+		return x && !y
+	}
 	return math.Min(a.BulkESS, a.TailESS) < math.Min(b.BulkESS, b.TailESS)
 }
 
