@@ -42,7 +42,7 @@ func (d *desk) freeColumns() []*table.Column {
 		used[v.Column] = true
 	}
 	for _, p := range d.view.Study.Plates {
-		used[or2(p.Column, p.Name)] = true
+		used[or(p.Column, p.Name)] = true
 	}
 	var out []*table.Column
 	for _, c := range t.Columns {
@@ -113,7 +113,7 @@ func (d *desk) bindDialog() {
 			options = append(options, c.Name)
 		}
 		for _, v := range d.view.Study.Variables {
-			chosen := or2(v.Column, notBound)
+			chosen := or(v.Column, notBound)
 			said := ""
 			if c := t.Column(v.Column); c != nil && v.Column != "" {
 				said = string(v.Scale)

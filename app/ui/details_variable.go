@@ -179,7 +179,7 @@ func (x *details) predictor(s *sheaf, v *study.Variable, law *study.Law) {
 		if len(wrong.spans) == 0 {
 			for _, p := range d.view.Problems {
 				if p.Variable == v.ID && p.Place == "formula" {
-					wrong.set(caretOf(or2(p.Text, law.Formula), p.Span, p.Message)...)
+					wrong.set(caretOf(or(p.Text, law.Formula), p.Span, p.Message)...)
 					break
 				}
 			}
@@ -382,7 +382,7 @@ func (d *desk) interval(name string) (low, high, level float64) {
 func shapeWords(p *model.Parameter) string {
 	switch p.Shape {
 	case model.ByPlate:
-		return "one for each level, around " + or2(p.Mean, "0") + " with spread " + p.SD
+		return "one for each level, around " + or(p.Mean, "0") + " with spread " + p.SD
 	case model.ZeroSum:
 		return times(p.Size, "entry", "entries") + " that sum to zero: " + words.List(p.Entries)
 	case model.Simplex:
@@ -391,13 +391,6 @@ func shapeWords(p *model.Parameter) string {
 		return times(p.Size, "cut point", "cut points") + " in rising order"
 	}
 	return times(p.Size, "entry", "entries") + ": " + words.List(p.Entries)
-}
-
-func or2(a, b string) string {
-	if a == "" {
-		return b
-	}
-	return a
 }
 
 // priorPhrase is a prior as one could type it.

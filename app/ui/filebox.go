@@ -91,7 +91,7 @@ func (f *fileBox) search() {
 	folder, part := filepath.Split(f.path())
 	f.rows = f.rows[:0]
 	f.note.set()
-	entries, err := os.ReadDir(or2(folder, "."))
+	entries, err := os.ReadDir(or(folder, "."))
 	if err != nil {
 		f.note.set(span{text: "There is no folder " + folder, token: tokenFault})
 	}

@@ -121,7 +121,7 @@ func suggested(s *study.Study) string {
 	name := strings.ToLower(strings.Join(strings.FieldsFunc(s.Title, func(r rune) bool {
 		return r == ' ' || r == '/' || r == '\\' || r == ':'
 	}), "-"))
-	return or2(name, "study")
+	return or(name, "study")
 }
 
 func (d *desk) openDialog() {

@@ -267,7 +267,8 @@ func (r *pressRenderer) Objects() []fyne.CanvasObject {
 
 func (r *pressRenderer) Destroy() {}
 
-func or(a, b fyne.ThemeColorName) fyne.ThemeColorName {
+// or is a, or b where a is empty.
+func or[T ~string](a, b T) T {
 	if a == "" {
 		return b
 	}

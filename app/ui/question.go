@@ -66,7 +66,7 @@ func (a *asker) fill() {
 		} else {
 			a.from = d.field(settingText(q.From), "", nil)
 			a.to = d.field(settingText(q.To), "", nil)
-			a.shift = d.field(shiftText(q), "or add", nil)
+			a.shift = d.field(shiftText(q), "", nil)
 			for _, f := range []*field{a.from, a.to, a.shift} {
 				f.OnSubmitted = func(string) { a.ask() }
 				f.escape = func() { a.pop.close() }
