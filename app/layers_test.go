@@ -30,7 +30,7 @@ canvas            : canvas/draw canvas/scene compile/study compile/graph compile
 !app/words        : app/fit compile/model compile/study infer/summary
 !app/paint        : app/fit app/words canvas/scene infer/summary
 !app/report       : app/fit app/paint app/words canvas/draw canvas/scene compile/*
-!app/batch        : app/fit app/report app/session compile/* infer infer/summary
+!app/batch        : app/fit app/report app/session app/words compile/* infer infer/summary
 app/ui            : app/fit app/paint app/words app/report app/session canvas canvas/* compile/* infer infer/summary assets
 app               : app/session app/ui assets
 !assets/examples/generate :

@@ -16,6 +16,7 @@ import (
 	"io"
 	"os"
 	"os/signal"
+	"strconv"
 )
 
 const usage = `use: batch VERB [flags] STUDY.arrowroot
@@ -31,11 +32,11 @@ flags
   -rival NAME     the rival; the first one without it
   -question N     the question, counted from 1; the first one without it
   -seed N         same study, same seed, same draws (1)
-  -chains N       chains side by side (4)
-  -draws N        draws of each chain; without it, until every quantity is precise enough
+  -chains N       chains side by side, 1 to 64 (4)
+  -draws N        draws of each chain, 1 to 1000000; without it, until every quantity is precise enough
   -out FILE       fit, effect: draws as CSV; report: the HTML file
-  -paths N        read: at most N paths (500)
-  -sets N         read: at most N sets to hold (100)
+  -paths N        read: at most N paths, 1 to 100000 (500)
+  -sets N         read: at most N sets to hold, 1 to 100000 (100)
 `
 
 // Exit statuses.
@@ -112,6 +113,12 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 	return done
 }
 
+// ranges of the flags that count something, from 1.
+var ranges = []struct {
+	flag string
+	most int
+}{{"question", 10000}, {"chains", 64}, {"draws", 1000000}, {"paths", 100000}, {"sets", 100000}}
+
 // parse takes flags before and after the study's name.
 func parse(args []string) (*options, error) {
 	opt := &options{}
@@ -143,8 +150,19 @@ func parse(args []string) (*options, error) {
 		return nil, fmt.Errorf("%w: no study file", errUse)
 	case len(words) > 2:
 		return nil, fmt.Errorf("%w: one study at a time, not %q", errUse, words[2:])
-	case opt.chains < 0 || opt.chains > 64 || opt.draws < 0 || opt.draws > 1000000 || opt.paths < 0 || opt.sets < 0 || opt.question < 0:
-		return nil, fmt.Errorf("%w: -chains takes 1 to 64, -draws 1 to 1000000, -question, -paths and -sets at least 1", errUse)
+	}
+	// A flag that was not given is zero and means its default; a zero that was
+	// given is out of its range.
+	var outside error
+	flags.Visit(func(f *flag.Flag) {
+		for _, r := range ranges {
+			if n, _ := strconv.Atoi(f.Value.String()); f.Name == r.flag && (n < 1 || n > r.most) {
+				outside = fmt.Errorf("%w: -%s takes 1 to %d, not %d", errUse, r.flag, r.most, n)
+			}
+		}
+	})
+	if outside != nil {
+		return nil, outside
 	}
 	opt.verb, opt.study = words[0], words[1]
 	return opt, nil

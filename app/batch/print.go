@@ -5,6 +5,7 @@ import (
 	"strings"
 
 	"arrowroot/app/fit"
+	"arrowroot/app/words"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
@@ -20,7 +21,7 @@ type questionOut struct {
 	Effect   string   `json:"effect"`
 	From     any      `json:"from"`
 	To       any      `json:"to"`
-	Shift    float64  `json:"shift,omitempty"`
+	Shift    float64  `json:"shift"`
 	Held     []string `json:"held"`
 	Over     string   `json:"over"`
 	As       string   `json:"as"`
@@ -33,26 +34,26 @@ type pathOut struct {
 	Kind      string            `json:"kind"`
 	Open      bool              `json:"open"`
 	ClosedAt  []string          `json:"closedAt"`
-	ClosedWhy map[string]string `json:"closedWhy,omitempty"`
-	OpenedAt  map[string]string `json:"openedAt,omitempty"` // collider → what is held that opens it
+	ClosedWhy map[string]string `json:"closedWhy"`
+	OpenedAt  map[string]string `json:"openedAt"` // collider → what is held that opens it
 }
 
 type readingOut struct {
 	Rival        string            `json:"rival"`
 	Question     *questionOut      `json:"question"`
 	Verdict      string            `json:"verdict"`
-	Way          string            `json:"way,omitempty"`
+	Way          string            `json:"way"`
 	Identified   bool              `json:"identified"`
 	ByHolding    bool              `json:"heldIsEnough"`
 	Hold         [][]string        `json:"hold"`
-	MoreSets     bool              `json:"moreSets,omitempty"`
-	MostPrecise  []string          `json:"mostPrecise,omitempty"`
+	MoreSets     bool              `json:"moreSets"`
+	MostPrecise  []string          `json:"mostPrecise"`
 	Forbidden    []string          `json:"forbidden"`
-	ForbiddenWhy map[string]string `json:"forbiddenWhy,omitempty"`
-	HeldFaults   map[string]string `json:"heldFaults,omitempty"`
-	WouldHelp    []string          `json:"wouldHelp,omitempty"` // unmeasured variables that, if measured, would give a set
+	ForbiddenWhy map[string]string `json:"forbiddenWhy"`
+	HeldFaults   map[string]string `json:"heldFaults"`
+	WouldHelp    []string          `json:"wouldHelp"` // unmeasured variables that, if measured, would give a set
 	Paths        []pathOut         `json:"paths"`
-	MorePaths    bool              `json:"morePaths,omitempty"`
+	MorePaths    bool              `json:"morePaths"`
 }
 
 var pathKinds = map[causal.PathKind]string{causal.Causal: "causal", causal.BackDoor: "back-door", causal.NonCausal: "non-causal"}
@@ -79,19 +80,13 @@ func printReading(j *job, g *graph.Graph, r *causal.Reading) *readingOut {
 	}
 	for i := range r.Paths {
 		p := &r.Paths[i]
-		po := pathOut{Path: p.Text(g), Nodes: names(g, p.Nodes), Kind: pathKinds[p.Kind], Open: p.Open, ClosedAt: []string{}}
+		po := pathOut{Path: p.Text(g), Nodes: names(g, p.Nodes), Kind: pathKinds[p.Kind], Open: p.Open, ClosedAt: []string{}, ClosedWhy: map[string]string{}, OpenedAt: map[string]string{}}
 		for _, s := range p.ClosedAt {
 			name := g.Names[s.Node]
 			po.ClosedAt = append(po.ClosedAt, name)
-			if po.ClosedWhy == nil {
-				po.ClosedWhy = map[string]string{}
-			}
 			po.ClosedWhy[name] = s.Reason
 		}
 		for _, o := range p.OpenedAt {
-			if po.OpenedAt == nil {
-				po.OpenedAt = map[string]string{}
-			}
 			po.OpenedAt[g.Names[o.Node]] = g.Names[o.By]
 		}
 		out.Paths = append(out.Paths, po)
@@ -136,8 +131,8 @@ func or(s, other string) string {
 
 type problemOut struct {
 	Code     string   `json:"code"`
-	Variable string   `json:"variable,omitempty"`
-	Place    string   `json:"place,omitempty"`
+	Variable string   `json:"variable"`
+	Place    string   `json:"place"`
 	Message  string   `json:"message"`
 	Repairs  []string `json:"repairs"`
 	Stops    bool     `json:"stops"`
@@ -187,14 +182,18 @@ type quantityOut struct {
 	RHat    *float64 `json:"rHat"`
 	ESS     essOut   `json:"ess"`
 	Trust   string   `json:"trust"`
-	Reasons []string `json:"reasons,omitempty"`
+	Reasons []string `json:"reasons"`
 }
 
 func printSummary(name, symbol string, s summary.Summary, t summary.Trust) quantityOut {
+	reasons := t.Reasons
+	if reasons == nil {
+		reasons = []string{}
+	}
 	return quantityOut{
 		Name: name, Symbol: symbol, Centre: finite(s.Centre), Spread: finite(s.Spread), Low: finite(s.Low), High: finite(s.High),
 		Level: s.Level, Error: finite(s.MeanError), RHat: finite(s.RHat), ESS: essOut{finite(s.BulkESS), finite(s.TailESS)},
-		Trust: t.Verdict.String(), Reasons: t.Reasons,
+		Trust: t.Verdict.String(), Reasons: reasons,
 	}
 }
 
@@ -238,7 +237,12 @@ type fitOut struct {
 	Run        runOut        `json:"run"`
 	Given      []string      `json:"given"`
 	Statement  []string      `json:"statement"`
-	Cut        bool          `json:"cut,omitempty"`
+	Typed      []string      `json:"typed"`
+	Cut        bool          `json:"cut"`
+}
+
+func printRun(f *fit.Fitted) runOut {
+	return runOut{len(f.Chains), f.Steps(), f.Sampling.Divergent, f.Gradients, f.Warmup}
 }
 
 func printFit(j *job, r *fit.Result) *fitOut {
@@ -246,7 +250,7 @@ func printFit(j *job, r *fit.Result) *fitOut {
 	out := &fitOut{
 		Rival: j.rival, Question: printQuestion(j.question), Seed: j.seed, Rows: printRows(f.Model.Rows),
 		Trust: printTrust(f.Trust), Quantities: []quantityOut{}, Given: f.Model.Given, Cut: r.Cut,
-		Run: runOut{len(f.Chains), f.Steps(), f.Sampling.Divergent, f.Gradients, f.Warmup},
+		Run: printRun(f),
 	}
 	if out.Given == nil {
 		out.Given = []string{}
@@ -254,13 +258,15 @@ func printFit(j *job, r *fit.Result) *fitOut {
 	for _, q := range f.Quantities {
 		out.Quantities = append(out.Quantities, printSummary(q.Name, q.Symbol, q.Summary, q.Trust))
 	}
+	out.Typed = []string{}
+	out.Typed = append(out.Typed, f.Model.Statement().Typed...)
 	out.Statement = strings.Split(strings.TrimRight(f.Model.Statement().String(), "\n"), "\n")
 	return out
 }
 
 type numberOut struct {
 	quantityOut
-	Association bool        `json:"association,omitempty"`
+	Association bool        `json:"association"`
 	Over        string      `json:"over"`
 	From        quantityOut `json:"expectedFrom"`
 	To          quantityOut `json:"expectedTo"`
@@ -269,27 +275,36 @@ type numberOut struct {
 type effectOut struct {
 	Rival        string       `json:"rival"`
 	Question     *questionOut `json:"question"`
+	Seed         uint64       `json:"seed"`
+	Answer       []string     `json:"answer"`
 	Identified   bool         `json:"identified"`
-	Refusal      string       `json:"refusal,omitempty"`
+	NoneDrawn    bool         `json:"noEffectDrawn"`
+	Refusal      string       `json:"refusal"`
 	HeldSet      []string     `json:"heldSet"`
-	HeldProposed bool         `json:"heldProposed,omitempty"`
+	HeldProposed bool         `json:"heldProposed"`
 	HeldEnough   bool         `json:"heldIsEnough"`
 	LawsDisagree bool         `json:"lawsDisagree"`
 	Headline     string       `json:"headline"` // "full", "held" or "none"
 	Crude        *numberOut   `json:"crude"`
 	Held         *numberOut   `json:"held"`
 	Full         *numberOut   `json:"full"`
+	CrudeRefusal string       `json:"crudeRefusal"`
+	HeldRefusal  string       `json:"heldRefusal"`
 	Rows         rowsOut      `json:"rows"`
 	Trust        trustOut     `json:"trust"`
+	Run          runOut       `json:"run"`
+	Cut          bool         `json:"cut"`
 }
 
 func printEffect(j *job, r *fit.Result) *effectOut {
 	e := r.Effect
 	out := &effectOut{
-		Rival: j.rival, Question: printQuestion(j.question), Identified: e.Identified, Refusal: e.Refusal,
+		Rival: j.rival, Question: printQuestion(j.question), Seed: j.seed, Answer: words.Effect(j.study, r),
+		Identified: e.Identified, NoneDrawn: e.None, Refusal: e.Refusal, CrudeRefusal: e.CrudeRefusal, HeldRefusal: e.AdjustedRefusal,
 		HeldSet: e.Held, HeldProposed: e.HeldProposed, HeldEnough: e.HeldValid, LawsDisagree: e.LawsDisagree,
 		Headline: "none", Crude: printNumber("crude", e.Crude), Held: printNumber("held", e.Adjusted), Full: printNumber("full", e.Full),
 		Rows: printRows(r.Full.Model.Rows), Trust: printTrust(r.Trust()),
+		Run: printRun(r.Full), Cut: r.Cut || e.Cut,
 	}
 	if out.HeldSet == nil {
 		out.HeldSet = []string{}

@@ -7,6 +7,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"io/fs"
 	"os"
 	"path/filepath"
 	"strconv"
@@ -15,7 +16,6 @@ import (
 	"arrowroot/app/fit"
 	"arrowroot/app/report"
 	"arrowroot/app/session"
-	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
@@ -33,12 +33,18 @@ type job struct {
 }
 
 func load(opt *options, stderr io.Writer) (*job, error) {
+	if err := writable(opt.out); err != nil {
+		return nil, err
+	}
 	doc, err := study.Load(opt.study)
 	if err != nil {
 		return nil, err
 	}
 	j := &job{options: opt, study: doc, rival: opt.rival, stderr: stderr}
-	if j.rival == "" && len(doc.Rivals) > 0 {
+	if len(doc.Rivals) == 0 {
+		return nil, errors.New("this study has no rival yet: draw one in the window, or write one with its arrows into the file")
+	}
+	if j.rival == "" {
 		j.rival = doc.Rivals[0].Name
 	}
 	if doc.Rival(j.rival) == nil {
@@ -65,13 +71,15 @@ func (j *job) table() (*table.Table, error) {
 	return session.ReadData(filepath.Dir(j.options.study), j.study.Data[0])
 }
 
+var errNoQuestion = errors.New("the study asks no question: add one with an exposure and an outcome")
+
 func read(_ context.Context, j *job) (any, error) {
 	g, err := j.study.Graph(j.rival)
 	if err != nil {
 		return nil, err
 	}
 	if j.question == nil {
-		return nil, errors.New("the study asks no question: add one with an exposure and an outcome")
+		return nil, errNoQuestion
 	}
 	for _, id := range []string{j.question.Exposure, j.question.Outcome} {
 		if g.Index(id) < 0 {
@@ -99,16 +107,16 @@ func validate(_ context.Context, j *job) (any, error) {
 	return answer, nil
 }
 
-// fitted runs the fit that all remaining verbs need.
-func (j *job) fitted(ctx context.Context) (*fit.Result, error) {
+// fitted runs the fit that all remaining verbs need; want says what of it the
+// verb does not print.
+func (j *job) fitted(ctx context.Context, want fit.Request) (*fit.Result, error) {
 	t, err := j.table()
 	if err != nil {
 		return nil, err
 	}
-	r, err := fit.Run(ctx, fit.Request{
-		Study: j.study, Rival: j.rival, Question: j.question, Table: t,
-		Seed: j.seed, Chains: j.chains, Draws: j.draws,
-	}, j.watch())
+	want.Study, want.Rival, want.Question, want.Table = j.study, j.rival, j.question, t
+	want.Seed, want.Chains, want.Draws = j.seed, j.chains, j.draws
+	r, err := fit.Run(ctx, want, j.watch())
 	var blocked *fit.Blocked
 	if errors.As(err, &blocked) {
 		for _, p := range blocked.Problems {
@@ -134,7 +142,7 @@ func (j *job) watch() func(infer.Progress) {
 }
 
 func fitVerb(ctx context.Context, j *job) (any, error) {
-	r, err := j.fitted(ctx)
+	r, err := j.fitted(ctx, fit.Request{NoEffects: true, NoPaint: true})
 	if err != nil {
 		return nil, err
 	}
@@ -146,14 +154,11 @@ func fitVerb(ctx context.Context, j *job) (any, error) {
 
 func effectVerb(ctx context.Context, j *job) (any, error) {
 	if j.question == nil {
-		return nil, errors.New("the study asks no question: add one with an exposure and an outcome")
+		return nil, errNoQuestion
 	}
-	r, err := j.fitted(ctx)
+	r, err := j.fitted(ctx, fit.Request{NoPaint: true, Answer: true})
 	if err != nil {
 		return nil, err
-	}
-	if r.Effect == nil {
-		return nil, fmt.Errorf("the question needs %q and %q on the sheet of %q", j.question.Exposure, j.question.Outcome, j.rival)
 	}
 	if err := j.writeDraws(r.Full); err != nil {
 		return nil, err
@@ -166,7 +171,7 @@ func reportVerb(ctx context.Context, j *job) (any, error) {
 	if err != nil {
 		return nil, err
 	}
-	r, err := j.fitted(ctx)
+	r, err := j.fitted(ctx, fit.Request{})
 	if err != nil {
 		return nil, err
 	}
@@ -174,7 +179,7 @@ func reportVerb(ctx context.Context, j *job) (any, error) {
 	if out == "" {
 		out = strings.TrimSuffix(j.options.study, filepath.Ext(j.options.study)) + ".html"
 	}
-	var reading *causal.Reading = fit.Read(g, j.question, 0, 0)
+	reading := fit.Read(g, j.question, 0, 0)
 	err = writeFile(out, func(w io.Writer) error {
 		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Result: r})
 	})
@@ -214,19 +219,52 @@ func (j *job) writeDraws(f *fit.Fitted) error {
 	})
 }
 
-// writeFile writes a whole file or none.
+// writeFile writes a whole file or none. Errors name that file.
 func writeFile(path string, write func(io.Writer) error) error {
+	fail := func(err error) error {
+		var place *fs.PathError
+		var move *os.LinkError
+		switch {
+		case errors.As(err, &place):
+			err = place.Err
+		case errors.As(err, &move):
+			err = move.Err
+		}
+		return fmt.Errorf("%s was not written: %w", path, err)
+	}
 	f, err := os.CreateTemp(filepath.Dir(path), ".arrowroot-*")
 	if err != nil {
-		return err
+		return fail(err)
 	}
 	defer os.Remove(f.Name())
 	w := bufio.NewWriter(f)
-	err = errors.Join(write(w), w.Flush(), f.Chmod(0o644), f.Close())
-	if err != nil {
-		return err
+	if err := errors.Join(write(w), w.Flush(), f.Chmod(0o644), f.Close()); err != nil {
+		return fail(err)
 	}
-	return os.Rename(f.Name(), path)
+	if err := os.Rename(f.Name(), path); err != nil {
+		return fail(err)
+	}
+	return nil
+}
+
+// writable finds out before hours of sampling whether a file can be written.
+func writable(path string) error {
+	if path == "" {
+		return nil
+	}
+	folder := filepath.Dir(path)
+	if at, err := os.Stat(folder); err != nil || !at.IsDir() {
+		return fmt.Errorf("%w: -out %s: there is no folder %s", errUse, path, folder)
+	}
+	if at, err := os.Stat(path); err == nil && at.IsDir() {
+		return fmt.Errorf("%w: -out %s is a folder; name a file in it", errUse, path)
+	}
+	probe, err := os.CreateTemp(folder, ".arrowroot-*")
+	if err != nil {
+		return fmt.Errorf("%w: -out %s: nothing can be written into the folder %s", errUse, path, folder)
+	}
+	probe.Close()
+	return os.Remove(probe.Name())
 }
 
 func names(g *graph.Graph, nodes []int) []string {

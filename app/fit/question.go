@@ -11,18 +11,19 @@ import (
 	"arrowroot/compile/study"
 )
 
-// apart separates the problems that stop only the question from the others.
+// apart separates the problems that keep only the question from an answer from
+// those of the fit.
 func apart(all []model.Problem) (others []model.Problem, lacking *Blocked) {
 	for _, p := range all {
-		switch {
-		case !strings.HasPrefix(p.Code, "question"):
+		if !strings.HasPrefix(p.Code, "question-") {
 			others = append(others, p)
-		case p.Stops && lacking == nil:
-			lacking = &Blocked{}
-			fallthrough
-		case p.Stops:
-			lacking.Problems = append(lacking.Problems, p)
+			continue
 		}
+		if lacking == nil {
+			lacking = &Blocked{}
+		}
+		p.Stops = true // the answer, that is
+		lacking.Problems = append(lacking.Problems, p)
 	}
 	return others, lacking
 }
