@@ -16,7 +16,11 @@ func commandsOf(d *desk) commandTable {
 	hasPick := func() bool { return !d.pick.Empty() }
 	fitted := func() bool { return d.view.Result != nil }
 	tool := func(t scene.Tool) func() {
-		return func() { d.editor.SetTool(t); d.refresh() }
+		return func() {
+			d.editor.SetTool(t)
+			d.win.Canvas().Focus(d.editor) // Escape leaves the tool
+			d.refresh()
+		}
 	}
 	page := func(name string) func() { return func() { d.drawer.show(name) } }
 	paint := func(kind scene.PaintKind) func() { return func() { d.setPaint(kind) } }

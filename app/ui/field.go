@@ -18,6 +18,7 @@ type field struct {
 	typing   func(string)
 	handled  func(*fyne.KeyEvent) bool // keys that do not reach the text
 	minWidth float32
+	pasting  func(string) string // what becomes of pasted text; nil = nothing
 }
 
 func (k *kit) field(text, hint string, commit func(string)) *field {
@@ -84,6 +85,20 @@ func (f *field) TypedKey(e *fyne.KeyEvent) {
 	}
 	f.Entry.TypedKey(e)
 }
+
+// TypedShortcut lets pasted text be changed on its way in.
+func (f *field) TypedShortcut(s fyne.Shortcut) {
+	if p, ok := s.(*fyne.ShortcutPaste); ok && f.pasting != nil {
+		s = &fyne.ShortcutPaste{Clipboard: oneTime(f.pasting(p.Clipboard.Content()))}
+	}
+	f.Entry.TypedShortcut(s)
+}
+
+// oneTime is a clipboard that holds one text.
+type oneTime string
+
+func (t oneTime) Content() string   { return string(t) }
+func (t oneTime) SetContent(string) {}
 
 func (f *field) MinSize() fyne.Size {
 	m := f.Entry.MinSize()

@@ -1,6 +1,8 @@
 package ui
 
 import (
+	"strings"
+
 	"fyne.io/fyne/v2"
 )
 
@@ -38,6 +40,9 @@ func (k *kit) finder(c fyne.Canvas, commands commandTable, sentence func(string)
 	f.entry = k.field("", "a command, or: hedge -> flowers -> bees", nil)
 	f.entry.typing = func(string) { f.search() }
 	f.entry.OnSubmitted = func(string) { f.run(f.at) }
+	f.entry.pasting = func(text string) string { // several lines of arrows at once
+		return strings.Join(strings.FieldsFunc(text, func(r rune) bool { return r == '\n' || r == '\r' }), "; ")
+	}
 	f.entry.escape = func() { f.pop.close() }
 	f.entry.handled = func(e *fyne.KeyEvent) bool {
 		switch e.Name {

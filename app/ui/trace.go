@@ -9,6 +9,7 @@ import (
 	"fyne.io/fyne/v2"
 
 	"arrowroot/app/words"
+	"arrowroot/canvas"
 	"arrowroot/canvas/draw"
 )
 
@@ -57,6 +58,7 @@ type said struct {
 	Running  bool              `json:"running,omitempty"`
 	FitError string            `json:"fitError,omitempty"`
 	Status   string            `json:"status,omitempty"`
+	Focus    string            `json:"focus,omitempty"`   // what the keyboard talks to: sheet, entry, or the control's words
 	Popover  bool              `json:"popover,omitempty"` // something lies over the window: Escape closes it
 	Banner   string            `json:"banner,omitempty"`
 	Selected []string          `json:"selected,omitempty"`
@@ -109,7 +111,7 @@ func (d *desk) said() said {
 	s := said{
 		Status: d.status.says.text, Running: v.Running, Stale: v.Stale, Paint: string(d.paint),
 		Rival: v.Rival.Name, Page: d.drawer.page(), Path: v.Path, Dirty: v.Dirty, Undo: v.Undo,
-		Selected: slices.Clone(d.pick.Nodes), Popover: d.win.Canvas().Overlays().Top() != nil, Held: []string{},
+		Selected: slices.Clone(d.pick.Nodes), Popover: d.win.Canvas().Overlays().Top() != nil, Focus: d.focus(), Held: []string{},
 		Nodes: make(map[string][2]int), Buttons: make(map[string][2]int),
 	}
 	for _, a := range d.pick.Arrows {
@@ -160,6 +162,23 @@ func (d *desk) said() said {
 	size := d.editor.Size()
 	s.Buttons["sheet"] = pixels(origin, draw.Point{X: float64(size.Width / 2), Y: float64(size.Height / 2)}, scale)
 	return s
+}
+
+// focus names what has the keyboard.
+func (d *desk) focus() string {
+	switch f := d.win.Canvas().Focused().(type) {
+	case nil:
+		return ""
+	case *canvas.Editor:
+		return "sheet"
+	case *press:
+		if l, ok := f.content.(*label); ok {
+			return l.text
+		}
+		return or(f.key, f.tip)
+	default:
+		return "entry"
+	}
 }
 
 func pixels(origin fyne.Position, p draw.Point, scale float32) [2]int {

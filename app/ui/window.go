@@ -42,7 +42,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	}
 	d.onPopover = func() { d.trace.note(d) }
 	d.onKey = func(key fyne.KeyName) {
-		if len(key) > 1 && key[0] == 'F' { // F1, F2: they mean the same everywhere
+		if d.win.Canvas().Overlays().Top() == nil { // a letter means the same on a button as on the sheet
 			d.key(string(key))
 		}
 	}
@@ -76,9 +76,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 			d.closeTop()
 			return
 		}
-		if d.win.Canvas().Overlays().Top() == nil {
-			d.key(string(e.Name))
-		}
+		d.onKey(e.Name)
 	})
 	app.Settings().AddListener(func(fyne.Settings) { d.repaint() })
 	s.Subscribe(w.show)

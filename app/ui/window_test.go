@@ -390,6 +390,19 @@ func TestPaints(t *testing.T) {
 	}
 }
 
+func TestPastedLinesDraw(t *testing.T) {
+	b := newBench(t)
+	b.app.Clipboard().SetContent("hedge -> flowers\nflowers -> bees\n? -> hedge, bees\n")
+	b.commands.find("finder").run()
+	b.commands.find("paste").run() // the menu hands it to the entry in focus
+	b.win.Canvas().Focused().TypedKey(&fyne.KeyEvent{Name: fyne.KeyReturn})
+	b.queue.drain()
+	d := b.view.Rival.Diagram
+	if len(d.Arrows) != 2 || len(d.Arcs) != 1 {
+		t.Fatalf("%d arrows and %d arcs were drawn", len(d.Arrows), len(d.Arcs))
+	}
+}
+
 func TestFinderSaysWhyArrowsAreWrong(t *testing.T) {
 	b := newBench(t)
 	if s := b.sentenceOf("a -> -> b"); s.run != nil || s.wrong == "" {
