@@ -314,8 +314,9 @@ func TestZoomAt(t *testing.T) {
 
 func TestIdentifier(t *testing.T) {
 	for text, want := range map[string][2]string{
-		"hedge": {"hedge", ""}, " farm  size ": {"farm_size", "farm size"}, "pH": {"pH", ""}, "2nd visit": {"v_2nd_visit", "2nd visit"},
+		"hedge": {"hedge", ""}, " farm  size ": {"farm_size", "farm size"}, "pH": {"pH", ""}, "2nd visit": {"v2nd_visit", "2nd visit"},
 		"größe": {"größe", ""}, "cost (€)": {"cost", "cost (€)"}, "": {"", ""}, "—": {"", ""}, "a-b/c.d": {"a_b_c_d", "a-b/c.d"}, "__x__": {"x", "__x__"},
+		"log": {"log_1", "log"}, "by": {"by_1", "by"}, "σ": {"sigma", "σ"}, // words of formulas, and Greek in its typed form
 	} {
 		if id, label := Identifier(text); id != want[0] || label != want[1] {
 			t.Errorf("%q: %q, %q, want %q", text, id, label, want)
@@ -343,7 +344,7 @@ func TestNaming(t *testing.T) {
 	s.enter("soil")
 	s.name = &Naming{}
 	s.enter("?")
-	s.expect("Add soil", "refused: soil is on the sheet already", "Draw soil → bees", "refused: there is a variable bees already", "refused: a name needs at least one letter")
+	s.expect("Add soil", "refused: soil is on the sheet already", "Draw soil → bees", "refused: there is a variable bees already", "refused: a name needs at least one letter or digit")
 	if n := len(s.in.Study.Variables); n != 7 {
 		t.Errorf("%d variables in the ledger", n)
 	}

@@ -6,7 +6,6 @@ import (
 	"math"
 	"slices"
 	"strings"
-	"unicode"
 
 	"arrowroot/compile/study"
 )
@@ -39,7 +38,7 @@ func (n Naming) Edit(in *Input, text string) (study.Edit, error) {
 	case in.Rival == nil || in.Study == nil:
 		return nil, nil
 	case id == "":
-		return nil, errors.New("a name needs at least one letter")
+		return nil, errors.New("a name needs at least one letter or digit")
 	case n.Variable != "":
 		return n.rename(in, id, label)
 	case len(n.Members) > 0:
@@ -108,31 +107,16 @@ func (n Naming) frame(in *Input, name string) (study.Edit, error) {
 	return study.Several{Name: "Draw a plate for each " + name, Edits: edits}, nil
 }
 
-// Identifier turns typed text into a variable's identifier and, where they
-// differ, the label that keeps the text: "farm size" gives farm_size and "farm
-// size".
+// Identifier turns typed text into the ID that study.IDOf gives it and, where
+// they differ, the label that keeps the text: "farm size" gives farm_size and
+// "farm size".
 func Identifier(text string) (id, label string) {
 	text = strings.Join(strings.Fields(text), " ")
-	var b strings.Builder
-	for _, r := range text {
-		switch {
-		case unicode.IsLetter(r), unicode.Is(unicode.Mn, r), unicode.IsDigit(r):
-			b.WriteRune(r)
-		case r == '_', r == ' ', r == '-', r == '.', r == '/':
-			b.WriteRune('_')
-		}
+	id = study.IDOf(text)
+	if id == "" || id == text {
+		return id, ""
 	}
-	id = strings.Trim(b.String(), "_")
-	if id == "" {
-		return "", ""
-	}
-	if first := []rune(id)[0]; !unicode.IsLetter(first) {
-		id = "v_" + id
-	}
-	if id != text {
-		label = text
-	}
-	return id, label
+	return id, text
 }
 
 // Free is a place near the middle of what is seen where a new node covers no

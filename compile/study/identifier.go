@@ -8,6 +8,20 @@ import (
 	"arrowroot/compile/formula"
 )
 
+// IDOf is the ID of a variable or plate that typed text stands for, whether or
+// not one has it already: the text itself where it can be a name, else what
+// FreeID would make of it were the ledger empty; "" where it holds no letter or
+// digit.
+func IDOf(text string) string {
+	if id := formula.Canonical(text); formula.IsName(id) {
+		return id
+	}
+	if !strings.ContainsFunc(text, func(r rune) bool { return unicode.IsLetter(r) || unicode.IsDigit(r) }) {
+		return ""
+	}
+	return freeName(text, func(string) bool { return false })
+}
+
 // FreeID makes an ID of any text, such as a heading or what somebody typed on
 // the sheet: one that can name a variable and that none has yet. "Hedge
 // density (m/ha)" gives Hedge_density_m_ha, "log" gives log_1.
