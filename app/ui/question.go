@@ -24,9 +24,10 @@ type asker struct {
 	to    *field
 	shift *field
 	focus fyne.Focusable // where the typing starts
+	keys  map[string]fyne.Focusable
 }
 
-func (d *desk) askQuestion(under fyne.CanvasObject) {
+func (d *desk) askQuestion(under fyne.CanvasObject) *asker {
 	a := &asker{d: d, body: column(8)}
 	if q := d.view.Question; q != nil {
 		a.draft = *q
@@ -36,6 +37,7 @@ func (d *desk) askQuestion(under fyne.CanvasObject) {
 	at := below(under)
 	a.pop = d.kit.pop(d.win.Canvas(), a.body, at, 430)
 	d.win.Canvas().Focus(a.focus)
+	return a
 }
 
 func (a *asker) fill() {
@@ -110,11 +112,21 @@ func (a *asker) fill() {
 		as = study.Difference
 	}
 	s.choice("as", "as", []string{study.Difference, study.Ratio}, as, func(w string) { q.As = w })
+	levels := []string{"50 %", "80 %", "90 %", "95 %"}
+	level := words.Percent(orLevel(q.Level))
+	if !slices.Contains(levels, level) {
+		levels = append(levels, level)
+	}
+	s.choice("level", "interval", levels, level, func(w string) {
+		if x, ok := number(strings.TrimSuffix(w, " %")); ok {
+			q.Level = x / 100
+		}
+	})
 	ask := d.primary("Ask", a.ask)
 	cancel := d.plain("Cancel", func() { a.pop.close() })
 	s.add(gapOf(1, 2), row(8, space(), cancel, ask))
 	a.body.Objects = s.objects
-	a.focus = s.keys["exposure"]
+	a.keys, a.focus = s.keys, s.keys["exposure"]
 }
 
 // read takes over what was typed.
@@ -139,6 +151,14 @@ func (a *asker) ask() {
 		return
 	}
 	a.d.changeQuestion(func(q *study.Question) { *q = a.draft })
+}
+
+// orLevel is the level of intervals when the question names none.
+func orLevel(level float64) float64 {
+	if level == 0 {
+		return 0.9
+	}
+	return level
 }
 
 func word(s *study.Setting) string {

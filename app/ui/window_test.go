@@ -487,3 +487,33 @@ func TestListsWalkByKeyboard(t *testing.T) {
 		t.Errorf("path %d is lit", lit)
 	}
 }
+
+// The question's popover puts a question together and asks it.
+func TestAskPopover(t *testing.T) {
+	b := newBench(t)
+	b.say("soil -> rain, yield; rain -> yield")
+	a := b.askQuestion(b.capsule)
+	pick := func(key, word string) {
+		t.Helper()
+		a.keys[key].(*chooser).SetSelected(word)
+		b.queue.drain()
+	}
+	pick("exposure", "rain")
+	pick("outcome", "yield")
+	pick("as", study.Ratio)
+	pick("level", "95 %")
+	a.from.SetText("40")
+	a.to.SetText("90,5")
+	test.Tap(a.keys["held soil"].(*press))
+	b.queue.drain()
+	a.ask()
+	b.queue.drain()
+	q := b.view.Question
+	if q == nil || q.Exposure != "rain" || q.Outcome != "yield" || q.As != study.Ratio || q.Level != 0.95 ||
+		q.From == nil || q.From.Number != 40 || q.To.Number != 90.5 || !slices.Equal(q.Held, []string{"soil"}) {
+		t.Fatalf("asked %+v", q)
+	}
+	if b.closeTop() {
+		t.Error("the popover stays after asking")
+	}
+}
