@@ -1,6 +1,9 @@
 package effect
 
-import "math/rand/v2"
+import (
+	"math"
+	"math/rand/v2"
+)
 
 // A bench is one goroutine's work space.
 type bench struct {
@@ -12,6 +15,7 @@ type bench struct {
 	exposed  []float64
 	part     []float64
 	sides    [][]float64 // a round's averages, by arm
+	plain    [][]float64 // likewise, without mirror images
 }
 
 func newBench(s *simulation) *bench {
@@ -34,24 +38,21 @@ func newBench(s *simulation) *bench {
 	b.part = make([]float64, k)
 	for range s.arms {
 		b.sides = append(b.sides, make([]float64, k))
+		b.plain = append(b.plain, make([]float64, k))
 	}
 	return b
 }
 
-// round adds one replicate of draw i: all arms, with the same uniforms and
-// with their mirror images (antithetic variates), which cancel what is linear
-// in the noise of mediators.
+// round adds one replicate of draw i: all arms, with the same uniforms and, if
+// asked for, with their mirror images (antithetic variates), which cancel what
+// is linear in the noise of mediators.
 func (b *bench) round(i, round int) {
 	b.w.draw = b.draws[b.picked[i]]
 	b.weigh(b.seeds[i])
-	mirrors := 1
 	if b.plan.random > 0 {
-		mirrors = 2
 		rng := rand.New(rand.NewPCG(b.seeds[i], uint64(round)+1))
 		for _, u := range b.uniforms {
-			for j := range u {
-				u[j] = open(rng)
-			}
+			stratified(u, rng)
 		}
 	}
 	for a, arm := range b.arms {
@@ -59,10 +60,13 @@ func (b *bench) round(i, round int) {
 		if b.plan.exposure != none {
 			arm.apply(b.exposed, b.rows.columns[b.plan.exposure])
 		}
-		for mirror := range mirrors {
+		for mirror := range b.mirrors {
 			b.expect(mirror == 1)
 			for k, x := range b.part {
-				b.sides[a][k] += x / float64(mirrors)
+				b.sides[a][k] += x / float64(b.mirrors)
+			}
+			if mirror == 0 {
+				copy(b.plain[a], b.part)
 			}
 		}
 	}
@@ -74,6 +78,28 @@ func (b *bench) round(i, round int) {
 	}
 	if b.summary != nil {
 		b.rounds[i*b.perDraw+round] = b.summary(b.sides)
+	}
+	if b.simulation.plain != nil {
+		at := b.simulation.plain[(i*b.perDraw+round)*(1+len(b.arms)):]
+		at[0] = b.summary(b.plain)
+		for a := range b.plain {
+			at[1+a] = b.plain[a][0]
+		}
+	}
+}
+
+// stratified fills u with uniform numbers, one in each of len(u) equal strata,
+// in random order (Latin hypercube: McKay, Beckman & Conover 1979): averages
+// over rows that resemble each other then hardly depend on chance.
+func stratified(u []float64, rng *rand.Rand) {
+	for j := range u {
+		k := rng.IntN(j + 1)
+		u[j] = u[k]
+		u[k] = float64(j)
+	}
+	n := float64(len(u))
+	for j, stratum := range u {
+		u[j] = math.Min((stratum+open(rng))/n, 1-0x1p-53)
 	}
 }
 

@@ -16,6 +16,7 @@ const (
 	fewestDraws   = 1000 // before rows are thinned: enough for an interval with an effective size of 400
 	fewestRows    = 2000
 	pilotDraws    = 64   // draws that show how large the simulation error is
+	unsure        = 1.2  // on a pilot's error, itself known to a tenth: what it may grow by
 	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
 	rounding      = 1e-9 // of the values compared: not worth a replicate
 	enoughRows    = 1000 // rows × rounds of a simulation without a summary
@@ -45,8 +46,10 @@ type simulation struct {
 	picked  []int // draws used
 	seeds   []uint64
 	perDraw int       // rounds
+	mirrors int       // 2: each round has the mirror images of its uniforms as well
 	sums    []float64 // draw, arm, part: summed over rounds
 	rounds  []float64 // draw, round: the summary of that round alone
+	plain   []float64 // draw, round: the summary and each arm without mirror images; nil outside the pilot
 	values  []float64 // per draw: the summary
 	noise   float64   // its simulation error
 }
@@ -67,26 +70,48 @@ func (s *simulation) run(ctx context.Context, src rand.Source) error {
 		s.seeds[i] = src.Uint64()
 	}
 	rounds := 1
+	s.mirrors = 2
 	switch {
 	case s.plan.random == 0:
+		s.mirrors = 1
 	case s.summary == nil:
 		rounds = min(most, max(1, enoughRows/s.rows.n))
 	default:
-		noise, spread, size, err := s.pilot(ctx)
+		noise, err := s.pilot(ctx)
 		if err != nil {
 			return err
 		}
-		if ratio := noise / (tolerance * spread); ratio > 1 && noise > rounding*size {
-			rounds = int(math.Min(float64(most), math.Ceil(ratio*ratio)))
+		rounds = min(most, noise.rounds())
+		// Mirror images cost as much again and are left out where they gain
+		// nothing: where a single set of uniforms is precise enough.
+		if noise.plainEnough {
+			s.mirrors, rounds, noise.error = 1, 1, noise.plain
 		}
-		s.noise = noise / math.Sqrt(float64(rounds))
+		s.noise = noise.error / math.Sqrt(float64(rounds))
 	}
 	return s.all(ctx, rounds)
 }
 
-// pilot runs two rounds of a few draws and gives the simulation error of one
-// round, the spread over draws without it, and the size of the averages.
-func (s *simulation) pilot(ctx context.Context) (noise, spread, size float64, err error) {
+// A noisiness is what a pilot finds of one round.
+type noisiness struct {
+	error       float64 // simulation error of the summary
+	spread      float64 // of the summary over draws, without simulation error
+	size        float64 // of the averages
+	plain       float64 // error without mirror images
+	plainEnough bool    // and it is small enough, for the summary and for each arm
+}
+
+// rounds is how many keep the simulation error small.
+func (n *noisiness) rounds() int {
+	ratio := n.error / (tolerance * n.spread)
+	if !(ratio > 1) || n.error <= rounding*n.size {
+		return 1
+	}
+	return int(math.Min(math.MaxInt32, math.Ceil(ratio*ratio)))
+}
+
+// pilot runs two rounds of a few draws.
+func (s *simulation) pilot(ctx context.Context) (*noisiness, error) {
 	p := *s
 	p.picked, p.seeds, p.opt.Progress = nil, nil, nil
 	n := min(pilotDraws, len(s.picked))
@@ -95,22 +120,42 @@ func (s *simulation) pilot(ctx context.Context) (noise, spread, size float64, er
 		p.picked = append(p.picked, s.picked[at])
 		p.seeds = append(p.seeds, s.seeds[at])
 	}
+	width := 1 + len(s.arms)
+	p.plain = make([]float64, 2*n*width)
 	if err := p.all(ctx, 2); err != nil {
-		return 0, 0, 0, err
+		return nil, err
 	}
-	within, between, mean := 0.0, 0.0, 0.0
-	for i, v := range p.values {
-		d := p.rounds[2*i] - p.rounds[2*i+1]
-		within += d * d / 2 / float64(n)
-		mean += v / float64(n)
-	}
-	for _, v := range p.values {
-		between += (v - mean) * (v - mean) / math.Max(1, float64(n-1))
-	}
+	out := &noisiness{plainEnough: true}
 	for _, x := range p.sums {
-		size = math.Max(size, math.Abs(x))
+		out.size = math.Max(out.size, math.Abs(x))
 	}
-	return math.Sqrt(within), math.Sqrt(math.Max(0, between-within/2)), size, nil
+	out.error, out.spread = apart(n, func(i, round int) float64 { return p.rounds[2*i+round] })
+	for k := range width {
+		noise, spread := apart(n, func(i, round int) float64 { return p.plain[(2*i+round)*width+k] })
+		if k == 0 {
+			out.plain = noise
+		}
+		if unsure*noise > math.Max(tolerance*spread, rounding*out.size) {
+			out.plainEnough = false
+		}
+	}
+	return out, nil
+}
+
+// apart tells the error of one round from the spread over draws, from two
+// rounds of each of n draws.
+func apart(n int, of func(draw, round int) float64) (noise, spread float64) {
+	within, between, mean := 0.0, 0.0, 0.0
+	middle := func(i int) float64 { return (of(i, 0) + of(i, 1)) / 2 }
+	for i := range n {
+		d := of(i, 0) - of(i, 1)
+		within += d * d / 2 / float64(n)
+		mean += middle(i) / float64(n)
+	}
+	for i := range n {
+		between += (middle(i) - mean) * (middle(i) - mean) / math.Max(1, float64(n-1))
+	}
+	return math.Sqrt(within), math.Sqrt(math.Max(0, between-within/2))
 }
 
 // thin chooses draws and rows so that the work fits the budget, evenly and
