@@ -24,7 +24,7 @@ report: batch
 
 # Everything, the driven window included.
 test: need-test build
-	ARROWROOT_WINDOW=1 go test -tags migrated_fynedo -timeout 20m ./...
+	ARROWROOT_WINDOW=1 go test -count=1 -tags migrated_fynedo -timeout 20m ./...
 
 # What a reviewer would otherwise have to look for by hand.
 check:

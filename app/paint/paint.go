@@ -78,9 +78,6 @@ func arrow(a fit.ArrowPaint, kind scene.PaintKind) scene.ArrowPaint {
 	}
 	bin, _, unsure := effectBin(a.Summary, a.Unsigned)
 	text := "direct, " + a.Words
-	if a.PerLow != 0 || a.PerHigh != 0 {
-		text += fmt.Sprintf(" (%s %s to %s)", words.Percent(a.Level), words.Number(a.PerLow), words.Number(a.PerHigh))
-	}
 	if a.Association {
 		text = "association, " + strings.TrimPrefix(text, "direct, ")
 	}

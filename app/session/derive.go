@@ -29,6 +29,7 @@ type derived struct {
 	statement   *model.Statement
 	fingerprint string
 	modelOf     modelSources
+	checking    bool // the model of the present document is on its way
 
 	readRev, modelRev int // of the newest work sent out
 }
@@ -108,6 +109,7 @@ func (s *Session) deriveModel() {
 		return
 	}
 	d.modelOf = sources
+	d.checking = true
 	d.modelRev++
 	rev, doc, rival := d.modelRev, s.study, s.rival
 	var q study.Question
@@ -128,6 +130,7 @@ func (s *Session) deriveModel() {
 		if s.derived.modelRev != rev {
 			return false
 		}
+		s.derived.checking = false
 		s.derived.model, s.derived.problems = c.model, c.problems
 		s.derived.statement, s.derived.fingerprint = c.statement, c.fingerprint
 		return true

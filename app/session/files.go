@@ -34,7 +34,6 @@ func (s *Session) Open(path string) error {
 	}
 	s.tables = make(map[string]*loaded)
 	s.replace(doc, path)
-	s.recovered = s.recovery.find(path, doc)
 	s.loadAll()
 	s.show()
 	return nil
@@ -66,7 +65,6 @@ func (s *Session) OpenBuiltIn(doc *study.Study, files map[string][]byte) error {
 func (s *Session) New() {
 	s.tables = make(map[string]*loaded)
 	s.replace(study.New(), "")
-	s.recovered = s.recovery.find("", s.study)
 	s.show()
 }
 
@@ -319,11 +317,17 @@ func (r *recovery) file(path string) string {
 
 // note writes the session's study in a moment, unless it is saved by then.
 func (r *recovery) note(s *Session) {
-	if r.folder == "" || s.study == s.saved {
+	if r.folder == "" {
 		return
 	}
 	if r.timer != nil {
 		r.timer.Stop()
+	}
+	if s.study == s.saved {
+		if s.recovered == nil {
+			_ = os.Remove(r.file(s.path))
+		}
+		return
 	}
 	path, doc := s.path, s.study
 	r.timer = time.AfterFunc(recoveryDelay, func() {

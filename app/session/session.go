@@ -183,13 +183,15 @@ func (s *Session) SetQuestion(q study.Question) error {
 }
 
 // replace puts another document in place of this one; its history is its own.
+// Work on it that was never saved is offered.
 func (s *Session) replace(doc *study.Study, path string) {
 	s.Cancel()
 	s.run++ // a fit still on its way belongs to the old document
 	s.running = nil
 	s.history, s.future = nil, nil
 	s.results = make(map[string]*fit.Result)
-	s.fitError, s.notice, s.recovered = nil, "", nil
+	s.fitError, s.notice = nil, ""
+	s.recovered = s.recovery.find(path, doc)
 	s.saved, s.path = doc, path
 	s.rival, s.question = "", 0
 	s.become(doc)
@@ -237,7 +239,9 @@ func (s *Session) show() {
 	}
 	if r := s.results[s.rival]; r != nil && sameQuestion(r.Question, v.Question) {
 		v.Result = r
-		v.Stale = s.derived.fingerprint != "" && s.derived.fingerprint != r.Fingerprint
+		// Until the present model is checked nobody knows; without one, the
+		// result cannot be of it.
+		v.Stale = !s.derived.checking && s.derived.fingerprint != r.Fingerprint
 	} else if r != nil {
 		v.Result, v.Stale = r, true
 	}

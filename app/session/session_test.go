@@ -196,6 +196,10 @@ func TestUnsavedWorkIsOffered(t *testing.T) {
 	if again.View().Recovered == nil {
 		t.Fatal("unsaved work is not offered")
 	}
+	s.Undo() // back at what was saved: nothing is left to offer
+	if _, err := os.Stat(s.recovery.file(path)); err == nil {
+		t.Error("the unsaved work was undone, and is still kept")
+	}
 	again.Recover()
 	if again.View().Study.Title != "unsaved" {
 		t.Errorf("title %q", again.View().Study.Title)
@@ -227,6 +231,11 @@ func TestFitBecomesStale(t *testing.T) {
 	}
 	must(t, s.Do(study.RemoveArrow{Rival: s.View().Rival.Name, From: "income", To: "mark"}))
 	w.until(t, "staleness", func() bool { return s.View().Stale })
+	s.Undo()
+	w.until(t, "freshness", func() bool { return !s.View().Stale })
+	// An edit that leaves no model makes it stale as well.
+	must(t, s.Do(study.Bind{Variable: "mark", Column: "nowhere"}))
+	w.until(t, "staleness without a model", func() bool { return s.View().Stale })
 	s.Undo()
 	w.until(t, "freshness", func() bool { return !s.View().Stale })
 }
