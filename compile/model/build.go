@@ -46,13 +46,15 @@ func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind 
 // in the builder. A phase sets broken where the next could not go on.
 func phases() []func(b *builder, rival string) {
 	return []func(*builder, string){
-		(*builder).frame,   // the rival, its graph
-		(*builder).choose,  // which laws are fitted, on what
-		(*builder).parse,   // what the user typed
-		(*builder).gather,  // columns, levels, rows
-		(*builder).explain, // predictors, arguments, parameters, priors
-		(*builder).examine, // what the data say against the laws
-		(*builder).finish,  // symbols, centring, what is given
+		(*builder).frame,    // the rival, its graph
+		(*builder).ends,     // the question's variables
+		(*builder).choose,   // which laws are fitted, on what
+		(*builder).parse,    // what the user typed
+		(*builder).gather,   // columns, levels, rows
+		(*builder).explain,  // predictors, arguments, parameters, priors
+		(*builder).examine,  // what the data say against the laws
+		(*builder).compared, // what the question compares
+		(*builder).finish,   // symbols, centring, what is given
 	}
 }
 

@@ -58,6 +58,7 @@ func (b *builder) read(c *column) {
 	if v.Scale == "" {
 		b.noScale(v, source)
 	}
+	b.namedTwice(v)
 	switch v.Scale {
 	case study.Binary:
 		b.readBinary(c, source)
@@ -100,6 +101,20 @@ func (b *builder) source(v *study.Variable) *table.Column {
 		b.stop(p)
 	}
 	return source
+}
+
+// namedTwice notes that a column's heading stands over another one as well: the
+// table has given that one a number.
+func (b *builder) namedTwice(v *study.Variable) {
+	second := v.Column + " (2)"
+	if b.table.Column(second) == nil || !slices.ContainsFunc(b.table.Notes, func(note string) bool {
+		return strings.HasPrefix(note, fmt.Sprintf("more than one column is named “%s”;", v.Column))
+	}) {
+		return
+	}
+	b.report(Problem{Code: "named-twice", Variable: v.ID, Place: "data",
+		Message: fmt.Sprintf("%s has more than one column named %s; %s reads the first, and the next is called “%s” here.", b.table.Name, v.Column, v.ID, second),
+		Repairs: []Repair{{Label: "Bind it to " + second, Edit: bindTo(v, second)}}})
 }
 
 // likely is the column that a variable without one probably means.

@@ -50,6 +50,12 @@ func (b *builder) constants() {
 			b.report(Problem{Code: "constant-exposure", Variable: v.ID, Place: "data", Stops: true,
 				Message: fmt.Sprintf("%s is %s in every used row: with an exposure that never moves, these data say nothing about its effect.", v.ID, value),
 				Repairs: b.askInstead(v)})
+		case v.ID == m.Outcome && b.draftOf(v.ID) != nil:
+			// Counts and yes or no can be the same by chance, and say how rare
+			// the other is; a measurement that never moves has no spread.
+			b.report(Problem{Code: "constant-outcome", Variable: v.ID, Place: "data", Stops: !b.draftOf(v.ID).family.Discrete,
+				Message: fmt.Sprintf("%s is %s in every used row: an outcome that never moves says nothing about what acts on it.", v.ID, value),
+				Repairs: b.elsewhere(v)})
 		case read[i]:
 			b.report(Problem{Code: "constant", Variable: v.ID, Place: "data", Stops: v.Low == v.High,
 				Message: fmt.Sprintf("%s is %s in every used row: these data say nothing about what it does.", v.ID, value),
@@ -61,10 +67,6 @@ func (b *builder) constants() {
 // askInstead offers to ask for the effect of another parent of the outcome:
 // the first that moves.
 func (b *builder) askInstead(exposure *Variable) []Repair {
-	at := b.questionAt()
-	if at < 0 {
-		return nil
-	}
 	for _, l := range b.model.Laws {
 		if b.model.Variables[l.Variable].ID != b.question.Outcome {
 			continue
@@ -74,10 +76,25 @@ func (b *builder) askInstead(exposure *Variable) []Repair {
 			if low, high := extent(v.Values); v == exposure || !(low < high) {
 				continue
 			}
-			to := b.question
-			to.Exposure, to.From, to.To, to.Shift, to.Held = v.ID, nil, nil, 0, nil
-			return []Repair{{Label: "Ask for the effect of " + v.ID, Edit: study.ChangeQuestion{At: at, To: to}}}
+			return b.reask("Ask for the effect of "+v.ID, func(q *study.Question) {
+				q.Exposure, q.From, q.To, q.Shift, q.Held = v.ID, nil, nil, 0, nil
+			})
 		}
+	}
+	return nil
+}
+
+// elsewhere offers to ask about another outcome: the first modelled variable
+// that moves and is not the exposure.
+func (b *builder) elsewhere(outcome *Variable) []Repair {
+	for _, l := range slices.Backward(b.model.Laws) {
+		v := b.model.Variables[l.Variable]
+		if low, high := extent(v.Values); v == outcome || v.ID == b.question.Exposure || !(low < high) {
+			continue
+		}
+		return b.reask("Ask about "+v.ID+" as the outcome", func(q *study.Question) {
+			q.Outcome, q.OutcomeLevels, q.Held = v.ID, nil, nil
+		})
 	}
 	return nil
 }

@@ -149,8 +149,12 @@ func (b *builder) readPlate(p *study.Plate) (*plateColumn, *Problem) {
 	}
 	c := b.table.Column(name)
 	if c == nil {
-		problem := &Problem{Code: "column-gone", Place: "plate", Message: fmt.Sprintf("%s has no column %s, which names the levels of the plate %s.", b.table.Name, name, p.Name)}
-		if near := nearest(name, columnNames(b.table)); near != "" {
+		problem := &Problem{Code: "column-gone", Place: "plate", Message: fmt.Sprintf("%s has no column %s, which names the levels of the plate %s", b.table.Name, name, p.Name)}
+		near := nearest(name, columnNames(b.table))
+		if near == "" {
+			problem.Message += "."
+		} else {
+			problem.Message += fmt.Sprintf("; did you mean %s?", near)
 			to := *p
 			to.Column = near
 			problem.Repairs = []Repair{{Label: "Use the column " + near, Edit: study.ChangePlate{Name: p.Name, To: to}}}

@@ -101,11 +101,13 @@ var troubles = []trouble{
 			law(s, "flowers").Formula = "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * sqr(hedge)"
 		},
 		message: "alpha_flowers + step_soil_flowers of soil + beta_hedge_flowers * sqr(hedge)\n                                                                 ^^^^^^^^^^ there is no function *sqr*; did you mean *sqrt*?",
+		labels:  "Replace|Go back to the arrows", mends: true,
 	},
 	{
 		name: "unmeasured in a formula", code: "unmeasured",
 		study:   func(s *study.Study) { law(s, "hedge").Formula = "alpha_hedge + attitude" },
 		message: "alpha_hedge + attitude\n              ^^^^^^^^ *attitude* was not measured and is left out of the fit, so no formula can use it",
+		labels:  "Go back to the arrows", mends: true,
 	},
 	{
 		name: "unknown plate", code: "unknown-plate",
@@ -341,6 +343,7 @@ var troubles = []trouble{
 			}
 		},
 		message: "hedge is 40 in every used row: with an exposure that never moves, these data say nothing about its effect.",
+		labels:  "Ask for the effect of pesticide", mends: true,
 	},
 	{
 		name: "no rows left", code: "no-rows",
@@ -470,6 +473,46 @@ var troubles = []trouble{
 		labels:  "Take temp off the sheet", mends: true,
 	},
 	{
+		name: "constant outcome", code: "constant-outcome",
+		table: func(t *table.Table) {
+			for i := range t.Rows {
+				set(t, "bees", i, 0)
+			}
+		},
+		message: "bees is 0 in every used row: an outcome that never moves says nothing about what acts on it.",
+		labels:  "Ask about flowers as the outcome", mends: true,
+	},
+	{
+		name: "a heading used twice", code: "named-twice",
+		table: func(t *table.Table) {
+			numbers(t, "temp (2)", t.Column("arable").Numbers...)
+			t.Notes = []string{"more than one column is named “temp”; column 10 is now called “temp (2)”"}
+		},
+		message: "traps has more than one column named temp; temp reads the first, and the next is called “temp (2)” here.",
+		labels:  "Bind it to temp (2)", mends: true,
+	},
+	{
+		name: "a plausible range that the law cannot have", code: "range",
+		study: func(s *study.Study) {
+			s.Variables[6].Range = &study.Range{Low: -5, High: -1}
+			law(s, "hours").Treat = "modelled"
+		},
+		message: "The plausible range of hours, −5 to −1, leaves nothing that a gamma law can take.",
+		labels:  "Use the range seen", mends: true,
+	},
+	{
+		name: "an outcome that acts on itself", code: "itself",
+		study:   func(s *study.Study) { law(s, "flowers").Formula = "alpha_flowers + alpha_flowers * flowers" },
+		message: "alpha_flowers + alpha_flowers * flowers\n                                ^^^^^^^ flowers cannot act on itself",
+		labels:  "Go back to the arrows", mends: true,
+	},
+	{
+		name: "a plate without its column", code: "column-gone",
+		study:   func(s *study.Study) { s.Plates[0].Column = "frm" },
+		message: "traps has no column frm, which names the levels of the plate farm; did you mean farm?",
+		labels:  "Use the column farm|Remove the plate farm", mends: true,
+	},
+	{
 		name: "constant child without a range", code: "constant",
 		study: func(s *study.Study) { s.Variables[1].Range = nil },
 		table: func(t *table.Table) {
@@ -591,6 +634,7 @@ func TestProblems(t *testing.T) {
 			if c.asks != nil {
 				c.asks(&q)
 			}
+			s.Questions = []*study.Question{&q}
 			found := find(Problems(s, "R", q, tab), c.code)
 			if found == nil {
 				t.Fatalf("no problem %s; there are %v", c.code, messages(Problems(s, "R", q, tab)))
@@ -615,7 +659,7 @@ func TestProblems(t *testing.T) {
 			}
 			if c.mends {
 				after, _ := found.Repairs[0].Edit.Apply(s)
-				if left := find(Problems(after, "R", q, tab), c.code); left != nil && left.Display() == found.Display() {
+				if left := find(Problems(after, "R", *after.Questions[0], tab), c.code); left != nil && left.Display() == found.Display() {
 					t.Errorf("repair %q leaves the problem: %s", found.Repairs[0].Label, left.Display())
 				}
 			}

@@ -20,6 +20,9 @@ func (b *builder) checkNames(d *draft, e formula.Expr, at Problem, fix func(stri
 			return
 		}
 		fine = false
+		if len(repairs) == 0 && at.Place == "formula" {
+			repairs = []Repair{b.fromArrows(d.variable.ID)}
+		}
 		at.Code, at.Span, at.Message, at.Repairs = code, span, message, repairs
 		b.stop(at)
 	}
@@ -37,7 +40,12 @@ func (b *builder) checkNames(d *draft, e formula.Expr, at Problem, fix func(stri
 				}
 				message := fmt.Sprintf("there is no function *%s*", e.Function)
 				if near := nearest(e.Function, names); near != "" {
-					fault(e.Span, "unknown-function", message+fmt.Sprintf("; did you mean *%s*?", near))
+					word := formula.Span{Start: e.Span.Start, End: min(e.Span.Start+len(e.Function), len(at.Text))}
+					repairs := []Repair{replace(word, near)}
+					if at.Place == "formula" {
+						repairs = append(repairs, b.fromArrows(d.variable.ID))
+					}
+					fault(e.Span, "unknown-function", message+fmt.Sprintf("; did you mean *%s*?", near), repairs...)
 				} else {
 					fault(e.Span, "unknown-function", message)
 				}

@@ -29,9 +29,9 @@ func specimens() []specimen {
 		{"hedgerows-held", hedgerows(), traps(), beesQuestion(), Held},
 		{"hedgerows-crude", hedgerows(), traps(), beesQuestion(), Crude},
 		{"levels", ofLevels(), nil, study.Question{}, Full},
-		{"plates", ofPlates(), plots(), study.Question{Exposure: "water", Outcome: "yield"}, Full},
+		{"plates", ofPlates(), plots(), study.Question{Exposure: "water", Outcome: "yield", Shift: 1}, Full},
 		{"schools", schools(), coached(), study.Question{}, Full},
-		{"trials", sown(), trays(), study.Question{Exposure: "warmth", Outcome: "sprouted"}, Full},
+		{"trials", sown(), trays(), study.Question{Exposure: "warmth", Outcome: "sprouted", Shift: 1}, Full},
 		{"typed", typedBees(), traps(), beesQuestion(), Full},
 	}
 }
