@@ -6,7 +6,7 @@ import (
 	"testing"
 )
 
-// BenchmarkBlock times the kernels of ENGINE's models with their usual shape:
+// BenchmarkBlock times the kernels of the common families in their usual shape:
 // y and the predictor are columns, the other arguments one number.
 func BenchmarkBlock(b *testing.B) {
 	r := rand.New(rand.NewPCG(1, 2))
