@@ -24,7 +24,7 @@ func newWindow(t *testing.T) (*window, *Session) {
 // until runs posted functions until ok holds.
 func (w *window) until(t *testing.T, what string, ok func() bool) {
 	t.Helper()
-	timeout := time.After(60 * time.Second)
+	timeout := time.After(5 * time.Minute) // a bound on hanging, not on speed
 	for !ok() {
 		select {
 		case f := <-w.queue:
