@@ -18,6 +18,7 @@ const (
 	pilotDraws    = 64   // draws that show how large the simulation error is
 	unsure        = 1.2  // on a pilot's error, itself known to a tenth: what it may grow by
 	tolerance     = 0.05 // simulation error allowed, in posterior sds (SEMANTICS B1)
+	sideTolerance = 0.15 // likewise of each arm alone: its sd grows by 1 %
 	rounding      = 1e-9 // of the values compared: not worth a replicate
 	enoughRows    = 1000 // rows × rounds of a simulation without a summary
 	moreWork      = 3    // budgets that further replicates may take
@@ -132,10 +133,11 @@ func (s *simulation) pilot(ctx context.Context) (*noisiness, error) {
 	out.error, out.spread = apart(n, func(i, round int) float64 { return p.rounds[2*i+round] })
 	for k := range width {
 		noise, spread := apart(n, func(i, round int) float64 { return p.plain[(2*i+round)*width+k] })
+		allowed := sideTolerance
 		if k == 0 {
-			out.plain = noise
+			out.plain, allowed = noise, tolerance
 		}
-		if unsure*noise > math.Max(tolerance*spread, rounding*out.size) {
+		if unsure*noise > math.Max(allowed*spread, rounding*out.size) {
 			out.plainEnough = false
 		}
 	}
