@@ -343,7 +343,9 @@ func (b *builder) outcomeAsked(v *Variable) {
 	b.ratio(v)
 }
 
-// ratio refuses a ratio of averages that may be 0 or below.
+// ratio warns of a ratio of averages that may be 0 or below. The effect itself
+// is refused where the expected outcome is not clear of 0, which only the fit
+// can tell.
 func (b *builder) ratio(v *Variable) {
 	d := b.draftOf(v.ID)
 	if b.question.As != study.Ratio || v.Scale != study.Real || d != nil && d.family.Support != catalog.Reals {
@@ -353,6 +355,7 @@ func (b *builder) ratio(v *Variable) {
 	if low > 0 && (!v.RangeGiven || v.Low > 0) {
 		return
 	}
-	b.asks("ratio", v.ID, fmt.Sprintf("%s is a real number that can be 0 or below, and a ratio of such averages says nothing: ask for a difference.", v.ID),
-		b.reask("Ask for the difference", func(q *study.Question) { q.As = study.Difference })...)
+	b.report(Problem{Code: "ratio", Variable: v.ID, Place: "question",
+		Message: fmt.Sprintf("%s is a real number that can be 0 or below: a ratio of its averages depends on where 0 lies, and says nothing near it. Ask for a difference.", v.ID),
+		Repairs: b.reask("Ask for the difference", func(q *study.Question) { q.As = study.Difference })})
 }

@@ -164,9 +164,9 @@ func TestQuestions(t *testing.T) {
 			labels:  "Ask for its expectation",
 		},
 		{
-			name: "a ratio that may cross zero", code: "question-ratio",
+			name: "a ratio that may cross zero", code: "ratio",
 			asks:    func(q *study.Question) { q.Outcome, q.As, q.Held = "pesticide", study.Ratio, nil },
-			message: "pesticide is a real number that can be 0 or below, and a ratio of such averages says nothing: ask for a difference.",
+			message: "pesticide is a real number that can be 0 or below: a ratio of its averages depends on where 0 lies, and says nothing near it. Ask for a difference.",
 			labels:  "Ask for the difference",
 		},
 	} {
