@@ -47,6 +47,7 @@ type reference struct {
 		FrontDoor   [][]string `json:"frontdoor_minimal"`
 		Instruments struct {
 			Total [][2]any
+			Edge  []json.RawMessage
 		}
 		Identifiable      bool
 		IdentifiableGiven *bool      `json:"identifiable_given_conditioned"`

@@ -1,0 +1,141 @@
+package causal
+
+import (
+	"fmt"
+	"slices"
+
+	"arrowroot/compile/graph"
+)
+
+// InstrumentSets is a variable that can serve as an instrument, with all
+// minimal sets that must be given for it.
+type InstrumentSets struct {
+	Node  int
+	Given [][]int // minimal, by (size, names); [[]] = nothing
+	More  bool    // the search stopped early: there may be more
+}
+
+const instrumentChecks = 3000 // steps of the search for one instrument
+
+// ArrowInstruments lists the instruments for the arrow from x to y, by node:
+// given a set that holds no descendant of y, they are related to x, and
+// unrelated to y once the arrow is cut (Brito & Pearl 2002). They give the
+// coefficient of the arrow in linear models. Nil if no such arrow is drawn.
+// Whether a given variable can serve is a hard question (van der Zander, Textor
+// & Liśkiewicz 2015), so More says where the search was cut short; a node that
+// is missing from the list may then still be one.
+func ArrowInstruments(g *graph.Graph, x, y int) []InstrumentSets {
+	if !g.HasArrow(x, y) {
+		return nil
+	}
+	cut := g.Keep(func(from, to int) bool { return from != x || to != y }, nil)
+	return instrumentSets(g, cut, x, y, g.Descendants(y))
+}
+
+// TotalInstruments lists the instruments for the total effect of x on y,
+// likewise: the arrows that begin causal paths are cut, and neither instrument
+// nor given set may descend from a causal node (Henckel, Buttenschoen &
+// Maathuis 2024).
+func TotalInstruments(g *graph.Graph, x, y int) []InstrumentSets {
+	c := newComparison(g, []int{x}, []int{y})
+	if x == y || !c.effect() {
+		return nil
+	}
+	return instrumentSets(g, c.backDoor, x, y, c.forbidden)
+}
+
+func instrumentSets(g, cut *graph.Graph, x, y int, barred []bool) []InstrumentSets {
+	can := available(g)
+	if !can[x] || !can[y] {
+		return nil
+	}
+	var usable []int
+	for v := range can {
+		if can[v] && !barred[v] && v != x && v != y {
+			usable = append(usable, v)
+		}
+	}
+	var all []InstrumentSets
+	for _, z := range usable {
+		s := &instrumentSearch{g: g, cut: cut, z: z, x: x, y: y, usable: minus(usable, []int{z}), budget: instrumentChecks}
+		if !s.separable() {
+			continue
+		}
+		s.bySeparators()
+		for size := 0; size <= len(s.usable) && s.budget > 0; size++ {
+			s.try(nil, 0, size)
+		}
+		if len(s.found) > 0 {
+			sortSets(g, s.found)
+			all = append(all, InstrumentSets{Node: z, Given: s.found, More: s.budget <= 0})
+		}
+	}
+	return all
+}
+
+type instrumentSearch struct {
+	g, cut  *graph.Graph
+	z, x, y int
+	usable  []int
+	found   [][]int
+	budget  int
+}
+
+func (s *instrumentSearch) works(given []int) bool {
+	return Separated(s.cut, []int{s.z}, []int{s.y}, given) && !Separated(s.g, []int{s.z}, []int{s.x}, given)
+}
+
+func (s *instrumentSearch) known(given []int) bool {
+	return slices.ContainsFunc(s.found, func(f []int) bool { return within(f, given) })
+}
+
+// separable reports whether instrument and outcome can be separated at all.
+func (s *instrumentSearch) separable() bool {
+	if slices.Contains(s.g.Computed, true) {
+		return true // what is computed may close paths in other ways; try
+	}
+	above := s.cut.Ancestors(s.z, s.y)
+	z := slices.DeleteFunc(slices.Clone(s.usable), func(v int) bool { return !above[v] })
+	return Separated(s.cut, []int{s.z}, []int{s.y}, z)
+}
+
+// bySeparators takes the minimal separators that leave instrument and exposure
+// related: as no smaller set separates, they are minimal.
+func (s *instrumentSearch) bySeparators() {
+	apart := newComparison(s.cut, []int{s.z}, []int{s.y})
+	apart.g, apart.backDoor = s.cut, s.cut
+	apart.usable = mark(s.g.Len(), s.usable)
+	sets, _ := apart.minimal(nil, instrumentTrials)
+	for _, given := range sets {
+		if s.works(given) {
+			s.found = append(s.found, given)
+		}
+	}
+}
+
+// try goes through the sets of one size: a set that separates without being
+// minimal may do, where holding a collider is what relates the instrument.
+func (s *instrumentSearch) try(chosen []int, from, left int) {
+	if s.budget--; s.budget <= 0 || s.known(chosen) {
+		return
+	}
+	if left == 0 {
+		if s.works(chosen) {
+			s.found = append(s.found, chosen)
+		}
+		return
+	}
+	for i := from; i+left <= len(s.usable); i++ {
+		s.try(append(slices.Clone(chosen), s.usable[i]), i+1, left-1)
+	}
+}
+
+// Sentence says what the instrument does for x and y.
+func (i *InstrumentSets) Sentence(g *graph.Graph, x, y int) string {
+	given := ""
+	if len(i.Given[0]) > 0 {
+		given = fmt.Sprintf(", given %s,", names(g, i.Given[0]))
+	}
+	return fmt.Sprintf("%s%s is related to %s and to %s in no other way: it can serve as an instrument where the laws are linear.",
+		g.Names[i.Node], given, g.Names[x], g.Names[y])
+}
