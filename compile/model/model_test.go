@@ -152,6 +152,20 @@ func TestOutcomeAloneTyped(t *testing.T) {
 	}
 }
 
+// A stated prior of the baseline is for the whole formula (B8).
+func TestOutcomeAloneBaseline(t *testing.T) {
+	s, q := typedBees(), beesQuestion()
+	law(s, "bees").Priors = append(law(s, "bees").Priors, study.Prior{Parameter: "alpha_bees", Text: "normal with mean 3, sd 1"})
+	q.Held = []string{"pesticide", "flowers", "temp"}
+	if !parameter(t, build(t, s, q, traps(), Held), "alpha_bees").Prior.FromUser {
+		t.Error("the stated prior is lost with the whole formula")
+	}
+	p := parameter(t, build(t, s, q, traps(), Crude), "alpha_bees")
+	if p.Prior.FromUser || !strings.HasSuffix(p.Why, "; the stated prior is for a formula with terms that this law leaves out") {
+		t.Error(p.Why)
+	}
+}
+
 // A stated prior of a slope holds where the slope means the same (B8).
 func TestOutcomeAlonePriors(t *testing.T) {
 	s := sheet([]*study.Variable{
