@@ -1,39 +1,20 @@
 package summary
 
-import (
-	"math"
-	"sort"
-)
+import "math"
 
 // BulkESS is the effective sample size of the rank-normalised split chains.
-func BulkESS(chains [][]float64) float64 {
-	halves := split(chains)
-	if len(halves[0]) < 4 || constant(halves) {
-		return math.NaN()
-	}
-	return effective(normalScores(halves))
-}
+func BulkESS(chains [][]float64) float64 { return sampleOf(chains).bulkESS() }
 
 // TailESS is the smaller effective sample size of the 5 % and 95 % quantiles.
-func TailESS(chains [][]float64) float64 {
-	halves := split(chains)
-	if len(halves[0]) < 4 || constant(halves) {
-		return math.NaN()
-	}
-	all := pooled(halves)
-	sort.Float64s(all)
-	low := indicatorESS(halves, Quantile(all, 0.05))
-	high := indicatorESS(halves, Quantile(all, 0.95))
-	return math.Min(low, high)
-}
+func TailESS(chains [][]float64) float64 { return sampleOf(chains).tailESS() }
 
 // MeanESS is the effective sample size for the mean: of the raw split chains.
-func MeanESS(chains [][]float64) float64 {
-	halves := split(chains)
-	if len(halves[0]) < 4 || constant(halves) {
-		return math.NaN()
-	}
-	return effective(halves)
+func MeanESS(chains [][]float64) float64 { return sampleOf(chains).meanESS() }
+
+// LeastESS is the smaller of BulkESS and TailESS, for a stopping rule.
+func LeastESS(chains [][]float64) float64 {
+	s := sampleOf(chains)
+	return math.Min(s.bulkESS(), s.tailESS())
 }
 
 func indicatorESS(halves [][]float64, at float64) float64 {
@@ -58,12 +39,8 @@ func effective(chains [][]float64) float64 {
 	if !(plus > 0) {
 		return math.NaN()
 	}
-	covariance := make([]float64, n) // mean over chains, lag by lag
-	transform := newAutocovariance(n)
-	for _, c := range chains {
-		transform.add(covariance, c, float64(m))
-	}
-	correlation := func(lag int) float64 { return 1 - (within-covariance[lag])/plus }
+	covariance := newAutocovariance(chains)
+	correlation := func(lag int) float64 { return 1 - (within-covariance.at(lag))/plus }
 	sum, previous := 0.0, math.Inf(1)
 	// The last pair is left out: its autocovariance is a single product.
 	for lag := 0; lag+2 < n; lag += 2 {

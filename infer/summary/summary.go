@@ -4,12 +4,13 @@
 // 16(2):667–718.
 //
 // Read summary.go (one quantity), trust.go (the verdict), then the diagnostics:
-// rhat.go, ess.go and energy.go, over scores.go and autocovariance.go.
+// rhat.go, ess.go and energy.go, over sample.go, scores.go and
+// autocovariance.go.
 package summary
 
 import (
 	"math"
-	"sort"
+	"slices"
 )
 
 // A Summary is what is said of one quantity.
@@ -46,7 +47,7 @@ func Of(chains [][]float64, level float64) Summary {
 		nan := math.NaN()
 		return Summary{Level: level, NotFinite: s.NotFinite, Centre: nan, Median: nan, Spread: nan, Low: nan, High: nan, RHat: nan, BulkESS: nan, TailESS: nan, MeanError: nan}
 	}
-	sort.Float64s(all)
+	slices.Sort(all)
 	var variance float64
 	s.Centre, variance = meanVariance(all)
 	s.Spread = math.Sqrt(variance)
@@ -56,8 +57,9 @@ func Of(chains [][]float64, level float64) Summary {
 		s.Centre, s.Spread = all[0], 0
 		s.Constant = len(all) >= constantDraws
 	}
-	s.RHat, s.BulkESS, s.TailESS = RHat(chains), BulkESS(chains), TailESS(chains)
-	s.MeanError = s.Spread / math.Sqrt(MeanESS(chains))
+	of := sampleOf(chains)
+	s.RHat, s.BulkESS, s.TailESS = of.rHat(), of.bulkESS(), of.tailESS()
+	s.MeanError = s.Spread / math.Sqrt(of.meanESS())
 	if s.Constant {
 		s.MeanError = 0
 	}

@@ -207,3 +207,20 @@ func TestFewDraws(t *testing.T) {
 		t.Errorf("chains that do not move: %v", trust)
 	}
 }
+
+// Lags summed one by one and lags from the transform are the same numbers.
+func TestAutocovarianceBothWays(t *testing.T) {
+	chains := chainsOf(3, 101)
+	for _, c := range chains {
+		for i := 1; i < len(c); i++ {
+			c[i] += 0.9 * c[i-1]
+		}
+	}
+	a := newAutocovariance(chains)
+	a.transform()
+	for lag := range directLags {
+		if x, y := a.at(lag), a.all[lag]; !(math.Abs(x-y) < 1e-12*a.all[0]) {
+			t.Errorf("lag %d: %v and %v", lag, x, y)
+		}
+	}
+}
