@@ -77,7 +77,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 
 	late, cancel := grace(ctx, graceOfEffects)
 	defer cancel()
-	one := &oneLaw{req: req, full: full.Model, watch: watch}
+	one := &oneLaw{req: req, full: full, watch: watch}
 	var err error
 	if e.Crude, e.CrudeRefusal, err = one.number(ctx, late, q, model.Crude, "crude"); err != nil {
 		return nil, err

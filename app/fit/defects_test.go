@@ -165,20 +165,31 @@ func TestNoEffectDrawn(t *testing.T) {
 }
 
 // A ratio of expectations that may be zero is refused, and the difference is
-// offered.
+// offered; also where all outcomes seen are positive and the comparison
+// reaches beyond them: the line through these is at 0 where rain is −6.
 func TestRatioAcrossZero(t *testing.T) {
 	t.Parallel()
-	req := sketched(t, rainAndYield, `"arrows": [{"from": "rain", "to": "yield"}]`,
-		`{"exposure": "rain", "outcome": "yield", "from": -0.29, "to": 1, "as": "ratio"}`, rainRows(100))
-	e := run(t, req).Effect
-	if e.Full != nil || e.Crude != nil || e.Headline() != nil || !strings.Contains(e.Refusal, "expected yield") || !strings.Contains(e.Refusal, "ask for the difference") {
-		t.Errorf("%v, %q", e.Full, e.Refusal)
+	var rows strings.Builder
+	fmt.Fprintln(&rows, "rain,yield")
+	for i := range 40 {
+		x := -2 + 4*float64(i)/39
+		fmt.Fprintf(&rows, "%.4f,%.4f\n", x, 4.2+0.7*x+0.4*math.Sin(float64(7*i)))
 	}
-	copied := *req.Question
-	copied.From = &study.Setting{Number: 0.6}
-	req.Question = &copied
-	if e = run(t, req).Effect; e.Full == nil || e.Refusal != "" {
-		t.Errorf("a ratio away from zero: %q", e.Refusal)
+	for from, refused := range map[string]bool{"-6": true, "0": false} {
+		req := sketched(t, `{"id": "rain", "scale": "real", "column": "rain", "range": [-7, 7]}, {"id": "yield", "scale": "real", "column": "yield", "range": [0.1, 9]}`,
+			`"arrows": [{"from": "rain", "to": "yield"}]`,
+			`{"exposure": "rain", "outcome": "yield", "from": `+from+`, "to": 1, "as": "ratio"}`, rows.String())
+		r := run(t, req)
+		e := r.Effect
+		if e == nil {
+			t.Fatal(r.Unanswered)
+		}
+		if refused && (e.Full != nil || e.Crude != nil || e.Headline() != nil || !strings.Contains(e.Refusal, "expected yield") || !strings.Contains(e.Refusal, "ask for the difference")) {
+			t.Errorf("from %s: %v, %q", from, e.Full, e.Refusal)
+		}
+		if !refused && (e.Full == nil || e.Refusal != "") {
+			t.Errorf("from %s: %q", from, e.Refusal)
+		}
 	}
 }
 
@@ -257,5 +268,16 @@ func TestCutIsNoAnswer(t *testing.T) {
 	e := r.Effect
 	if !r.Cut || !e.Cut || e.Headline() != nil || e.Crude != nil || e.CrudeRefusal != stopped {
 		t.Errorf("%+v", e)
+	}
+}
+
+// A crude law that is the full model is not sampled again.
+func TestSameModelIsFittedOnce(t *testing.T) {
+	t.Parallel()
+	req := sketched(t, rainAndYield, `"arrows": [{"from": "rain", "to": "yield"}]`,
+		`{"exposure": "rain", "outcome": "yield", "from": 0, "to": 1}`, rainRows(50))
+	e := run(t, req).Effect
+	if e.Crude.Centre != e.Full.Centre || e.Crude.Association {
+		t.Errorf("crude %v, full %v", e.Crude.Centre, e.Full.Centre)
 	}
 }

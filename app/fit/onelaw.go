@@ -17,7 +17,7 @@ import (
 // A oneLaw makes crude and held numbers: the outcome's law fitted alone.
 type oneLaw struct {
 	req   *Request
-	full  *model.Model
+	full  *Fitted
 	watch func(infer.Progress)
 }
 
@@ -31,7 +31,7 @@ func (o *oneLaw) number(ctx, late context.Context, q study.Question, kind model.
 		return nil, stopped, nil
 	}
 	fitted := q
-	computed := computedFrom(o.full, q.Outcome)
+	computed := computedFrom(o.full.Model, q.Outcome)
 	if computed != nil {
 		if len(computed.roots) != 1 || computed.roots[0] == q.Exposure {
 			return nil, fmt.Sprintf("%s is computed from %s, so that no single law of it can be fitted", q.Outcome, strings.Join(computed.roots, " and ")), nil
@@ -45,7 +45,7 @@ func (o *oneLaw) number(ctx, late context.Context, q study.Question, kind model.
 	if m == nil || model.Stops(problems) {
 		return nil, strings.TrimSuffix((&Blocked{problems}).Error(), "."), nil
 	}
-	f, err := sampleModel(ctx, m, o.req, purpose, o.watch)
+	f, err := o.fit(ctx, m, purpose)
 	if errors.Is(err, ErrNoDraws) {
 		return nil, stopped, nil
 	}
@@ -66,6 +66,14 @@ func (o *oneLaw) number(ctx, late context.Context, q study.Question, kind model.
 	}
 	n, refusal := number(c, f, o.req, q.Exposure+" → "+q.Outcome+", "+purpose)
 	return n, refusal, nil
+}
+
+// fit samples a model, unless the full model is the same one: then it has been.
+func (o *oneLaw) fit(ctx context.Context, m *model.Model, purpose string) (*Fitted, error) {
+	if m.Fingerprint() == o.full.Model.Fingerprint() {
+		return o.full, nil
+	}
+	return sampleModel(ctx, m, o.req, purpose, o.watch)
 }
 
 // A computation is what a computed variable hangs on.

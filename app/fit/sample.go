@@ -164,8 +164,7 @@ func (r *blockRun) check() (worst float64, at int) {
 			kept = append(kept, r.pending[i:]...)
 			break
 		}
-		chains := r.chains(q)
-		ess := math.Min(summary.BulkESS(chains), summary.TailESS(chains))
+		ess := summary.LeastESS(r.chains(q))
 		if ess >= wantedESS {
 			continue
 		}
