@@ -53,7 +53,7 @@ func bernoulliLogitBlock(n int, y []float64, args [][]float64, _ []float64, darg
 			return outside(v)
 		}
 		sign := 1 - 2*v
-		sp, sg := SoftplusSigmoid(sign * eta[i&ie])
+		sp, sg := softplusSigmoid(sign * eta[i&ie])
 		sum -= sp
 		if deta != nil {
 			deta[i&ie] -= sign * sg

@@ -80,7 +80,7 @@ func betaLogitBlock(n int, y []float64, args [][]float64, dy []float64, dargs []
 		}
 		// The smaller of m and 1-m and its log come from one exponential.
 		far := math.Abs(e)
-		small, m := SoftplusSigmoid(-far)
+		small, m := softplusSigmoid(-far)
 		w, logm, logw := 1-m, -far-small, -small
 		if e > 0 {
 			m, w, logm, logw = w, m, logw, logm

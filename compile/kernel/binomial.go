@@ -18,7 +18,7 @@ func binomialPrepare(y []float64, args [][]float64) []float64 {
 	iy, it := mask(y), mask(trials)
 	out := make([]float64, max(len(y), len(trials)))
 	for i := range out {
-		out[i] = LogChoose(trials[i&it], y[i&iy])
+		out[i] = logChoose(trials[i&it], y[i&iy])
 	}
 	return out
 }
@@ -42,7 +42,7 @@ func binomialBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]
 		if aux != nil {
 			sum += aux[i&ia]
 		} else {
-			sum += LogChoose(t, v)
+			sum += logChoose(t, v)
 		}
 		if v > 0 {
 			sum += v * math.Log(p)
@@ -77,11 +77,11 @@ func binomialLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs
 		if aux != nil {
 			sum += aux[i&ia]
 		} else {
-			sum += LogChoose(t, v)
+			sum += logChoose(t, v)
 		}
 		// log p = -softplus(-η) and log(1-p) = -softplus(η); the two differ by
 		// η, so the one with the smaller exponential gives both.
-		small, q := SoftplusSigmoid(-math.Abs(e))
+		small, q := softplusSigmoid(-math.Abs(e))
 		p, minusLogP, minusLogQ := q, small-e, small
 		if e > 0 {
 			p, minusLogP, minusLogQ = 1-q, small, small+e

@@ -62,7 +62,7 @@ func softmaxBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]f
 		scale := 1 / (1 + rest)
 		mine := rest * scale // 1 - p_k
 		if rest < math.MaxFloat64 {
-			sum -= Log1p(rest)
+			sum -= log1p(rest)
 		} else {
 			var value float64
 			value, scale = softmaxFar(e, args, i, k)

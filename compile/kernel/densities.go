@@ -9,13 +9,3 @@ func Densities() []*Density {
 		PoissonLog, NegativeBinomialLog, CategoricalSoftmax, OrderedLogit,
 	}
 }
-
-// ByName returns the kernel of that name, or nil.
-func ByName(name string) *Density {
-	for _, d := range Densities() {
-		if d.Name == name {
-			return d
-		}
-	}
-	return nil
-}

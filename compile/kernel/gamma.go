@@ -1,10 +1,6 @@
 package kernel
 
-import (
-	"math"
-
-	"gonum.org/v1/gonum/mathext"
-)
+import "math"
 
 const halfLog2Pi = 0.91893853320467274178032973640561763986139747363778
 
@@ -91,24 +87,8 @@ func stirlingSeries(x float64) (left, psiLeft float64) {
 	return left, psiLeft
 }
 
-// LogGammaTo stores log Γ(src[i]) in dst[i] and, where slope is not nil, the
-// digamma function in slope[i].
-func LogGammaTo(dst, slope, src []float64) {
-	dst = dst[:len(src)]
-	for i, x := range src {
-		l, d := LogGamma(x)
-		dst[i] = l
-		if slope != nil {
-			slope[i] = d
-		}
-	}
-}
-
-// Trigamma returns the second derivative of log Γ(x), for x > 0.
-func Trigamma(x float64) float64 { return mathext.Zeta(2, x) }
-
-// LogFactorial returns log y! for a whole y ≥ 0.
-func LogFactorial(y float64) float64 {
+// logFactorial returns log y! for a whole y ≥ 0.
+func logFactorial(y float64) float64 {
 	l, _ := LogGamma(y + 1)
 	return l
 }

@@ -43,9 +43,9 @@ func logMinusDigamma(x float64) float64 {
 	return 0.5/x + q
 }
 
-// LogChoose returns the log of the binomial coefficient, n over y, for whole
+// logChoose returns the log of the binomial coefficient, n over y, for whole
 // 0 ≤ y ≤ n.
-func LogChoose(n, y float64) float64 {
+func logChoose(n, y float64) float64 {
 	m := n - y
 	if y == 0 || m == 0 {
 		return 0

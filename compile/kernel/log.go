@@ -50,8 +50,8 @@ func logParts(bits uint64, c float64) float64 {
 	return hi + (rest + r2*(-1./2+r*(1./3)+r2*(-1./4+r*(1./5)+r2*(-1./6+r*(1./7)))))
 }
 
-// Log1p returns log(1 + w) for w ≥ 0, relatively accurate down to 0.
-func Log1p(w float64) float64 {
+// log1p returns log(1 + w) for w ≥ 0, relatively accurate down to 0.
+func log1p(w float64) float64 {
 	u := 1 + w
 	c := w - (u - 1) // what rounding 1+w lost
 	if w > 1 {

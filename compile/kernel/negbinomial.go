@@ -5,14 +5,14 @@ import "math"
 // NegativeBinomial has arguments mean and overdispersion k: variance is
 // mean + mean²/k, so that it tends to a Poisson as k grows.
 var NegativeBinomial = &Density{
-	Name: "negative binomial", Args: 2, Prepare: perRow(LogFactorial),
+	Name: "negative binomial", Args: 2, Prepare: perRow(logFactorial),
 	Block: negBinomialBlock(true),
 	Tally: &Tally{Arg: 1, Rows: &Density{Name: "negative binomial, by row", Args: 2, Block: negBinomialBlock(false)}, Values: negBinomialValues},
 }
 
 // NegativeBinomialLog has the log of the mean in its place.
 var NegativeBinomialLog = &Density{
-	Name: "negative binomial log", Args: 2, Prepare: perRow(LogFactorial),
+	Name: "negative binomial log", Args: 2, Prepare: perRow(logFactorial),
 	Block: negBinomialLogBlock(true),
 	Tally: &Tally{Arg: 1, Rows: &Density{Name: "negative binomial log, by row", Args: 2, Block: negBinomialLogBlock(false), Prepare: perRow(notCount)}, Values: negBinomialValues},
 }
@@ -35,7 +35,7 @@ func negBinomialValuesBlock(n int, y []float64, args [][]float64, _ []float64, d
 			return math.Inf(-1)
 		}
 		t, dt := logRising(k, v)
-		sum += c * (t - LogFactorial(v))
+		sum += c * (t - logFactorial(v))
 		if dover != nil {
 			dover[i&ik] += c * dt
 		}
@@ -66,7 +66,7 @@ func negBinomialBlock(whole bool) func(n int, y []float64, args [][]float64, _ [
 				t -= aux[i&ia]
 			default:
 				t, dt = logRising(k, v)
-				t -= LogFactorial(v)
+				t -= logFactorial(v)
 			}
 			r := m / k
 			l := math.Log1p(r)
@@ -123,12 +123,12 @@ func negBinomialLogBlock(whole bool) func(n int, y []float64, args [][]float64, 
 				t -= aux[i&ia]
 			default:
 				t, dt = logRising(k, v)
-				t -= LogFactorial(v)
+				t -= logFactorial(v)
 			}
 			// With u = log(mean/k), log(1 + mean/k) is softplus(u); the branch
 			// with the smaller exponential serves both signs of u.
 			u := e - logk
-			small, q := SoftplusSigmoid(-math.Abs(u))
+			small, q := softplusSigmoid(-math.Abs(u))
 			sp, s, w := small, q, 1-q
 			if u > 0 {
 				sp, s, w = small+u, 1-q, q

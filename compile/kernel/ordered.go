@@ -37,11 +37,11 @@ func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs 
 		switch {
 		case levels == 1:
 		case k == 0:
-			sp, s := SoftplusSigmoid(e - cuts[0][i&mask(cuts[0])])
+			sp, s := softplusSigmoid(e - cuts[0][i&mask(cuts[0])])
 			sum -= sp
 			db = s
 		case k == levels-1:
-			sp, s := SoftplusSigmoid(cuts[k-1][i&mask(cuts[k-1])] - e)
+			sp, s := softplusSigmoid(cuts[k-1][i&mask(cuts[k-1])] - e)
 			sum -= sp
 			da = -s
 		default:
@@ -57,8 +57,8 @@ func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs 
 			} else {
 				l, g = logGap(gap)
 			}
-			spb, sb := SoftplusSigmoid(e - hi)
-			spa, sa := SoftplusSigmoid(lo - e)
+			spb, sb := softplusSigmoid(e - hi)
+			spa, sa := softplusSigmoid(lo - e)
 			sum += l - spb - spa
 			da, db = -g-sa, g+sb
 		}
@@ -81,5 +81,5 @@ func orderedLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs 
 
 // logGap returns log(1 - exp(-gap)) and its derivative.
 func logGap(gap float64) (value, slope float64) {
-	return Log1mExp(-gap), 1 / math.Expm1(gap)
+	return log1mExp(-gap), 1 / math.Expm1(gap)
 }

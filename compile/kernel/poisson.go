@@ -13,7 +13,7 @@ func countFactorial(y float64) float64 {
 	if !isCount(y) {
 		return -outside(y)
 	}
-	return LogFactorial(y)
+	return logFactorial(y)
 }
 
 // isCount reports whether v is one of 0, 1, 2, …
@@ -84,7 +84,7 @@ func poissonLogBlock(n int, y []float64, args [][]float64, _ []float64, dargs []
 		if aux != nil {
 			sum += v*e - r - aux[i&ia]
 		} else {
-			sum += v*e - r - LogFactorial(v)
+			sum += v*e - r - logFactorial(v)
 		}
 		if deta != nil {
 			deta[i&ie] += v - r

@@ -287,9 +287,9 @@ func TestPublishedPoints(t *testing.T) {
 
 func TestSpecialFunctions(t *testing.T) {
 	var ref struct {
-		Gamma []struct{ X, Lgamma, Digamma, Trigamma float64 } `json:"gamma_family"`
-		Plus  []struct{ X, V float64 }                         `json:"log1p_exp"`
-		Minus []struct{ X, V float64 }                         `json:"log1m_exp"`
+		Gamma []struct{ X, Lgamma, Digamma float64 } `json:"gamma_family"`
+		Plus  []struct{ X, V float64 }               `json:"log1p_exp"`
+		Minus []struct{ X, V float64 }               `json:"log1m_exp"`
 	}
 	readReference(t, "special.json", &ref)
 	for _, r := range ref.Gamma {
@@ -302,46 +302,15 @@ func TestSpecialFunctions(t *testing.T) {
 		if !near(d, r.Digamma) && math.Abs(d-r.Digamma) > 4e-16 {
 			t.Errorf("ψ(%v) = %.17g, want %.17g", r.X, d, r.Digamma)
 		}
-		if g := Trigamma(r.X); !near(g, r.Trigamma) {
-			t.Errorf("ψ'(%v) = %.17g, want %.17g", r.X, g, r.Trigamma)
-		}
 	}
 	for _, r := range ref.Plus {
-		if g := Log1pExp(r.X); !near(g, r.V) {
+		if g, _ := softplusSigmoid(r.X); !near(g, r.V) {
 			t.Errorf("log(1+exp(%v)) = %.17g, want %.17g", r.X, g, r.V)
 		}
 	}
 	for _, r := range ref.Minus {
-		if g := Log1mExp(r.X); !near(g, r.V) {
+		if g := log1mExp(r.X); !near(g, r.V) {
 			t.Errorf("log(1-exp(%v)) = %.17g, want %.17g", r.X, g, r.V)
 		}
-	}
-}
-
-func TestLogNormalCDF(t *testing.T) {
-	var points []struct {
-		Dist   string
-		Params map[string]float64
-		X      float64
-		CDF    float64 `json:"log_cdf"`
-		Upper  float64 `json:"log_ccdf"`
-	}
-	readReference(t, "logcdf.json", &points)
-	checked := 0
-	for _, p := range points {
-		if p.Dist != "normal" {
-			continue
-		}
-		checked++
-		z := (p.X - p.Params["mu"]) / p.Params["sigma"]
-		if got, _ := LogNormalCDF(z); !near(got, p.CDF) && p.CDF != 0 {
-			t.Errorf("log Φ(%v) = %.17g, want %.17g", z, got, p.CDF)
-		}
-		if got, _ := LogNormalCDF(-z); !near(got, p.Upper) && p.Upper != 0 {
-			t.Errorf("log Φ(%v) = %.17g, want %.17g", -z, got, p.Upper)
-		}
-	}
-	if checked == 0 {
-		t.Error("no point")
 	}
 }

@@ -2,10 +2,10 @@ package kernel
 
 import "math"
 
-// SoftplusSigmoid returns log(1 + exp(x)) and its derivative 1/(1 + exp(-x))
+// softplusSigmoid returns log(1 + exp(x)) and its derivative 1/(1 + exp(-x))
 // for the price of one exponential, both accurate to some 5e-16 in both tails.
 // The sign of x decides nothing by a branch: on data it is a coin toss.
-func SoftplusSigmoid(x float64) (softplus, sigmoid float64) {
+func softplusSigmoid(x float64) (softplus, sigmoid float64) {
 	e := Exp(-math.Abs(x))
 	return positivePart(x) + log1pUnit(e), chosen(x, 1, e) / (1 + e)
 }
@@ -37,13 +37,13 @@ func SoftplusTo(dst, slope, src []float64) {
 	dst = dst[:len(src)]
 	if slope == nil {
 		for i, x := range src {
-			dst[i], _ = SoftplusSigmoid(x)
+			dst[i], _ = softplusSigmoid(x)
 		}
 		return
 	}
 	slope = slope[:len(src)]
 	for i, x := range src {
-		dst[i], slope[i] = SoftplusSigmoid(x)
+		dst[i], slope[i] = softplusSigmoid(x)
 	}
 }
 
@@ -51,6 +51,6 @@ func SoftplusTo(dst, slope, src []float64) {
 func SigmoidTo(dst, src []float64) {
 	dst = dst[:len(src)]
 	for i, x := range src {
-		_, dst[i] = SoftplusSigmoid(x)
+		_, dst[i] = softplusSigmoid(x)
 	}
 }

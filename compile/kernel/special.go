@@ -2,43 +2,14 @@ package kernel
 
 import "math"
 
-// Log1pExp returns log(1 + exp(x)), the softplus function, accurate in both
-// tails.
-func Log1pExp(x float64) float64 {
-	if x > 0 {
-		return x + math.Log1p(math.Exp(-x))
-	}
-	return math.Log1p(math.Exp(x))
-}
-
-// Log1mExp returns log(1 - exp(x)) for x < 0; -Inf at 0, NaN above. The
+// log1mExp returns log(1 - exp(x)) for x < 0; -Inf at 0, NaN above. The
 // switch at -log 2 keeps both branches at full relative accuracy (M. Mächler,
 // "Accurately computing log(1 - exp(-|a|))", 2012).
-func Log1mExp(x float64) float64 {
+func log1mExp(x float64) float64 {
 	if x > -math.Ln2 {
 		return math.Log(-math.Expm1(x))
 	}
 	return math.Log1p(-math.Exp(x))
-}
-
-// LogDiffExp returns log(exp(a) - exp(b)) for a ≥ b; -Inf at a = b, NaN for
-// a < b.
-func LogDiffExp(a, b float64) float64 {
-	if a == b {
-		return math.Inf(-1)
-	}
-	return a + Log1mExp(b-a)
-}
-
-// LogSumExp returns log(exp(a) + exp(b)).
-func LogSumExp(a, b float64) float64 {
-	if a < b {
-		a, b = b, a
-	}
-	if math.IsInf(a, 0) {
-		return a
-	}
-	return a + math.Log1p(math.Exp(b-a))
 }
 
 // Sigmoid returns 1/(1 + exp(-x)), the inverse logit, accurate in both tails.
@@ -83,7 +54,7 @@ func expm1mx(x float64) float64 {
 // at small x; it turns up where a spread parameter meets log(1+x).
 func ratioMinusLog(x float64) float64 {
 	if x > 1e-3 {
-		return x/(1+x) - Log1p(x)
+		return x/(1+x) - log1p(x)
 	}
 	return -log1pmx(x) - x*x/(1+x)
 }

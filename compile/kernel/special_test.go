@@ -29,12 +29,6 @@ func TestSpecialPoints(t *testing.T) {
 		check("log Γ", r[:1], l, r[1], 1.5e-15*math.Abs(r[1]))
 		check("ψ", r[:1], d, r[2], 1.5e-15*max(0.5, math.Abs(r[2])))
 	}
-	for _, r := range ref["normal"] {
-		l, s := LogNormalCDF(r[0])
-		// z/√2 is rounded before erfc sees it, hence the z².
-		check("log Φ", r[:1], l, r[1], 1e-15*math.Abs(r[1])*max(1, r[0]*r[0]))
-		check("φ/Φ", r[:1], s, r[2], 1e-15*math.Abs(r[2])*max(1, r[0]*r[0]))
-	}
 	for _, r := range ref["rising"] {
 		v, s := logRising(r[0], r[1])
 		// The value stands beside log y! and y log mean, which are larger.
@@ -42,7 +36,7 @@ func TestSpecialPoints(t *testing.T) {
 		check("slope of rising", r[:2], s, r[3], 1e-13*math.Abs(r[3])+1e-60)
 	}
 	for _, r := range ref["choose"] {
-		check("log choose", r[:2], LogChoose(r[0], r[1]), r[2], 2e-15*max(1, r[2]))
+		check("log choose", r[:2], logChoose(r[0], r[1]), r[2], 2e-15*max(1, r[2]))
 	}
 	for _, r := range ref["half step"] {
 		v, s := halfStep(r[0])
@@ -128,6 +122,14 @@ func TestExpAndLogEdges(t *testing.T) {
 	}
 }
 
+// plainSoftplus is log(1 + exp(x)) by the standard library.
+func plainSoftplus(x float64) float64 {
+	if x > 0 {
+		return x + math.Log1p(math.Exp(-x))
+	}
+	return math.Log1p(math.Exp(x))
+}
+
 // Oracle: math.Log1p and math.Exp, each within a unit in the last place, which
 // the tolerance includes.
 func TestSoftplus(t *testing.T) {
@@ -137,8 +139,8 @@ func TestSoftplus(t *testing.T) {
 		if i%4 == 0 {
 			x = 600 * (2*r.Float64() - 1)
 		}
-		sp, sg := SoftplusSigmoid(x)
-		if w := Log1pExp(x); math.Abs(sp-w) > 6e-16*w {
+		sp, sg := softplusSigmoid(x)
+		if w := plainSoftplus(x); math.Abs(sp-w) > 6e-16*w {
 			t.Errorf("softplus(%v) = %.17g, want %.17g", x, sp, w)
 		}
 		if w := Sigmoid(x); math.Abs(sg-w) > 6e-16*w {
@@ -146,12 +148,12 @@ func TestSoftplus(t *testing.T) {
 		}
 	}
 	for _, x := range []float64{0, 37, -37, 745, -745, 1e300, -1e300, math.Inf(1), math.Inf(-1)} {
-		sp, sg := SoftplusSigmoid(x)
-		if math.Abs(sp-Log1pExp(x)) > 6e-16*sp || sg != Sigmoid(x) || sp != sp {
+		sp, sg := softplusSigmoid(x)
+		if math.Abs(sp-plainSoftplus(x)) > 6e-16*sp || sg != Sigmoid(x) || sp != sp {
 			t.Errorf("softplus and sigmoid at %v are %v and %v", x, sp, sg)
 		}
 	}
-	if sp, sg := SoftplusSigmoid(math.NaN()); sp == sp || sg == sg {
+	if sp, sg := softplusSigmoid(math.NaN()); sp == sp || sg == sg {
 		t.Error("no NaN at NaN")
 	}
 }
@@ -208,12 +210,6 @@ func TestSmallDifferences(t *testing.T) {
 			t.Errorf("log(1+x)-x at %v = %v, off by %g", x, v, d)
 		}
 	}
-	if LogDiffExp(2, 2) != math.Inf(-1) || math.Abs(LogDiffExp(1000, 999)-(1000+math.Log1p(-math.Exp(-1)))) > 1e-12 {
-		t.Error("LogDiffExp")
-	}
-	if math.Abs(LogSumExp(1000, 1000)-(1000+math.Ln2)) > 1e-12 || LogSumExp(math.Inf(-1), 3) != 3 {
-		t.Error("LogSumExp")
-	}
 }
 
 func BenchmarkElementwise(b *testing.B) {
@@ -242,10 +238,14 @@ func BenchmarkElementwise(b *testing.B) {
 		{"softplus", func() { SoftplusTo(out, out2, x) }},
 		{"math softplus", func() {
 			for i := range x {
-				out[i], out2[i] = Log1pExp(x[i]), Sigmoid(x[i])
+				out[i], out2[i] = plainSoftplus(x[i]), Sigmoid(x[i])
 			}
 		}},
-		{"loggamma", func() { LogGammaTo(out, out2, u) }},
+		{"log gamma", func() {
+			for i := range x {
+				out[i], out2[i] = LogGamma(u[i])
+			}
+		}},
 		{"math.Lgamma", func() {
 			for i := range x {
 				out[i], _ = math.Lgamma(u[i])

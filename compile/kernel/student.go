@@ -16,7 +16,7 @@ func studentRow(z, nu, half, dhalf float64) (value, dz, dnu float64) {
 		l := 2*math.Log(math.Abs(z)) - math.Log(nu)
 		return half - halfLog2Pi - 0.5*(nu+1)*l, -(nu + 1) / z, 0.5 * (dhalf - l + 1 + 1/nu)
 	}
-	l, p := Log1p(w), w/(1+w)
+	l, p := log1p(w), w/(1+w)
 	less := p - l
 	if w < 1e-3 { // where p and l agree in too many digits
 		less = ratioMinusLog(w)
