@@ -48,11 +48,11 @@ func FuzzParse(f *testing.F) {
 		}
 		_, err = ParseSentence(text)
 		checkError(t, text, err)
-		if same := Rename(text, "a", "a"); same != text {
+		if same := renamed(text, "a", "a"); same != text {
 			t.Fatalf("renaming a to itself changed %q to %q", text, same)
 		}
-		if there := Rename(text, "a", "zz9"); !strings.Contains(text, "zz9") {
-			if back := Rename(there, "zz9", "a"); back != text {
+		if there := renamed(text, "a", "zz9"); !strings.Contains(text, "zz9") {
+			if back := renamed(there, "zz9", "a"); back != text {
 				t.Fatalf("%q renamed is %q, and back %q", text, there, back)
 			}
 			if p, err := Parse(text); err == nil {

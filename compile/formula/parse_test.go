@@ -217,7 +217,18 @@ func TestSpansPointIntoTheText(t *testing.T) {
 	}
 }
 
-func TestRename(t *testing.T) {
+// renamed gives one name, of a variable or of a plate, another.
+func renamed(text, old, new string) string {
+	one := func(id string) string {
+		if id == Canonical(old) {
+			return new
+		}
+		return id
+	}
+	return Replace(text, one, one)
+}
+
+func TestReplace(t *testing.T) {
 	for _, c := range []struct{ text, old, new, want string }{
 		{"log rate = alpha + rate * hedge", "rate", "speed", "log rate = alpha + speed * hedge"},
 		{"hedge + hedges + log hedge", "hedge", "rows", "rows + hedges + log rows"},
@@ -229,7 +240,7 @@ func TestRename(t *testing.T) {
 		{"max(max, 1)", "max", "top", "max(top, 1)"},
 		{"", "a", "b", ""},
 	} {
-		if got := Rename(c.text, c.old, c.new); got != c.want {
+		if got := renamed(c.text, c.old, c.new); got != c.want {
 			t.Errorf("%s with %s → %s: %s, want %s", c.text, c.old, c.new, got, c.want)
 		}
 	}

@@ -2,24 +2,11 @@ package formula
 
 import "strings"
 
-// Rename gives a variable, parameter or plate another name wherever the text
-// of a predictor or an expression mentions it, and leaves everything else as
-// it was typed. The name of what is predicted, left of "=", belongs to the
-// family and stays. The text need not be complete.
-func Rename(text, old, new string) string {
-	old = Canonical(old)
-	one := func(id string) string {
-		if id == old {
-			return new
-		}
-		return id
-	}
-	return Replace(text, one, one)
-}
-
-// Replace is Rename by functions: name gets each variable or parameter that is
-// mentioned, plate each plate, in its typed form; what they give comes in its
-// place. A nil function changes nothing.
+// Replace renames wherever the text of a predictor or an expression mentions a
+// name, and leaves everything else as it was typed: name gets each variable or
+// parameter, plate each plate, in its typed form; what they give comes in its
+// place. A nil function changes nothing. The name of what is predicted, left
+// of "=", belongs to the family and stays. The text need not be complete.
 func Replace(text string, name, plate func(id string) string) string {
 	right := 0
 	for _, t := range scan(text) {
