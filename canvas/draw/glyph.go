@@ -34,6 +34,8 @@ type masks struct {
 
 const maskLimit = 6000
 
+const xHeight = 0.547 // of DejaVu Sans, in ems
+
 func newMasks() *masks {
 	return &masks{kept: make(map[maskKey]*mask), raster: raster.NewRasterizer(1, 1)}
 }
@@ -71,7 +73,7 @@ func (m *masks) letter(o *outline, k maskKey, dx float64) {
 	}
 	sx := size / (float64(t.perEm) / 64)
 	sy := sx
-	if x := XHeight * size; x > 3 && x < 24 {
+	if x := xHeight * size; x > 3 && x < 24 {
 		sy *= math.Round(x) / x
 	}
 	at := func(p fixed.Point26_6) Point {

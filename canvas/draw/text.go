@@ -2,14 +2,6 @@ package draw
 
 import "strings"
 
-// Vertical measures of the family, in ems, as DejaVu Sans has them.
-const (
-	Ascent    = 0.76 // of letters such as l and k
-	Descent   = 0.24
-	CapHeight = 0.729
-	XHeight   = 0.547
-)
-
 // Measure is the width of a line of text in dips.
 func Measure(text string, face Face, size float64) float64 {
 	t := typefaces[face]()
