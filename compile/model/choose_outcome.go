@@ -2,6 +2,7 @@ package model
 
 import (
 	"fmt"
+	"maps"
 	"slices"
 	"strings"
 
@@ -46,16 +47,14 @@ func (b *builder) chooseOutcome() {
 		}
 	}
 	d := &draft{variable: b.variable(q.Outcome), user: b.userLaw(q.Outcome)}
-	kept := make(map[string]bool)
+	wanted := make(map[string]bool)
 	for _, id := range want {
-		kept[id] = true
+		wanted[id] = true
 	}
 	offsets, varies := typedParts(d.user.Formula, q.Outcome)
-	for _, id := range offsets {
-		kept[id] = true
-	}
-	typed, whole := b.trim(d.user.Formula, q.Outcome, kept)
+	typed, whole := b.trim(d.user.Formula, q.Outcome, b.stays(d, wanted, offsets))
 	b.trimmed = d.user.Formula != "" && !whole
+	used := wordsOf(typed)
 	below := b.graph.Descendants(b.graph.Index(q.Exposure))
 	for _, a := range b.rival.Diagram.Arrows {
 		if p := b.variable(a.From); a.To != q.Outcome || p == nil || p.Unmeasured || !b.onSheet(a.From) {
@@ -65,10 +64,7 @@ func (b *builder) chooseOutcome() {
 		if slices.Contains(offsets, a.From) {
 			drawn.Form = study.Offset
 		}
-		if typed != "" && drawn.Form == study.Offset && !kept[a.From] {
-			continue // the formula has no such offset
-		}
-		if !kept[a.From] && drawn.Form != study.Offset {
+		if keep := drawn.Form == study.Offset && typed == "" || slices.Contains(used, a.From); !keep && !wanted[a.From] {
 			if typed == "" && below[b.graph.Index(a.From)] {
 				b.without = append(b.without, a.From)
 			}
@@ -96,6 +92,34 @@ func (b *builder) chooseOutcome() {
 		}
 	}
 	b.drafts = []*draft{d}
+}
+
+// stays says what a typed formula may go on reading: the exposure, the held
+// set, offsets, and what counts the trials.
+func (b *builder) stays(d *draft, wanted map[string]bool, offsets []string) map[string]bool {
+	out := maps.Clone(wanted)
+	for _, a := range b.rival.Diagram.Arrows {
+		if a.To == d.variable.ID && (a.Form == study.Offset || slices.Contains(offsets, a.From)) {
+			out[a.From] = true
+		}
+	}
+	for _, a := range d.user.Arguments {
+		if a.Name == "trials" {
+			for _, n := range wordsOf(a.Text) {
+				out[n] = true
+			}
+		}
+	}
+	return out
+}
+
+// wordsOf lists the names in typed text; none if it does not parse.
+func wordsOf(text string) []string {
+	p, err := formula.Parse(text)
+	if text == "" || err != nil {
+		return nil
+	}
+	return formula.Names(p.Right)
 }
 
 // trim takes the summands out of a typed formula that read a variable which

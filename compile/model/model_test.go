@@ -130,6 +130,8 @@ func TestOutcomeAloneTyped(t *testing.T) {
 			"alpha_bees + log hours + beta_hedge_bees * (hedge - 90)"},
 		{"signs", "log rate = log hours - (bend * hedge ^ 2 - alpha_bees + beta_flowers_bees * flowers) + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
 			"log hours - bend * hedge^2 + alpha_bees"},
+		{"an offset with a power of its own", "log rate = alpha_bees + beta_hours_bees * log hours + beta_hedge_bees * hedge + beta_flowers_bees * flowers + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
+			"alpha_bees + beta_hours_bees * log hours + beta_hedge_bees * hedge"},
 		{"no baseline left", "log rate = alpha_bees * exp(-bend * flowers) + beta_hedge_bees * hedge + log hours + beta_temp_bees * temp + beta_pesticide_bees * pesticide", Crude, nil,
 			"alpha_bees + beta_hedge_bees * (hedge - 90) + log hours"},
 	} {
