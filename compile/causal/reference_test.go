@@ -50,9 +50,10 @@ type reference struct {
 			Edge  []json.RawMessage
 		}
 		Identifiable      bool
-		IdentifiableGiven *bool      `json:"identifiable_given_conditioned"`
-		OSet              *[]string  `json:"o_set"`
-		Best              [][]string `json:"best_minimal_by_graph"`
+		IdentifiableGiven *bool               `json:"identifiable_given_conditioned"`
+		Implied           [][]json.RawMessage `json:"implied_independences"`
+		OSet              *[]string           `json:"o_set"`
+		Best              [][]string          `json:"best_minimal_by_graph"`
 	}
 }
 

@@ -1,0 +1,150 @@
+package causal
+
+import (
+	"fmt"
+	"slices"
+
+	"arrowroot/compile/graph"
+)
+
+// An Independence says that two sets of measured variables are unrelated once
+// others are known. It holds in every model of the graph.
+type Independence struct {
+	A, B, Given []int
+}
+
+// Sentence says it in the user's names.
+func (i *Independence) Sentence(g *graph.Graph) string {
+	claim := fmt.Sprintf("%s and %s are unrelated", names(g, i.A), names(g, i.B))
+	if len(i.A) == 1 && len(i.B) > 1 {
+		claim = fmt.Sprintf("%s is unrelated to %s", names(g, i.A), names(g, i.B))
+	}
+	if len(i.Given) == 0 {
+		return "Your arrows say that " + claim + "."
+	}
+	return fmt.Sprintf("Your arrows say that %s once %s %s known.", claim, names(g, i.Given), be(len(i.Given)))
+}
+
+// A Separation is a pair of measured variables with all minimal sets of
+// measured variables that separate them. Without a set the pair is related
+// whatever is known.
+type Separation struct {
+	A, B  int
+	Given [][]int // by (size, names); nil = the pair cannot be separated
+	More  bool    // there are more sets than were asked for
+}
+
+// Separations lists every pair of measured variables in the order of the
+// nodes, with at most max sets each (0 = 100). A missing arrow with no
+// separating set promises no independence, though it may promise a functional
+// constraint. Pairs of which the given set computes one are left out: the data
+// cannot contradict them.
+func Separations(g *graph.Graph, max int) []Separation {
+	max = limit(max, 100)
+	nodes := list(available(g))
+	var all []Separation
+	for i, a := range nodes {
+		for _, b := range nodes[i+1:] {
+			s := Separation{A: a, B: b}
+			s.Given, s.More = MinimalSeparators(g, a, b, nil, max)
+			s.Given = slices.DeleteFunc(s.Given, func(z []int) bool {
+				known := fixed(g, mark(g.Len(), z))
+				return known[a] || known[b]
+			})
+			if len(s.Given) == 0 {
+				s.Given = nil
+			}
+			all = append(all, s)
+		}
+	}
+	return all
+}
+
+const basisSets = 64 // ancestral sets looked at for one variable
+
+// Basis is a list of independences from which all others between measured
+// variables follow: along the arrows, each variable is unrelated to earlier
+// ones given what shields it, in every ancestral set where the shield is
+// another one (the ordered local Markov property, Richardson 2003; without
+// unmeasured causes, earlier variables given the parents). Nothing is listed
+// that an unmeasured cause makes false. More says that a variable has so many
+// shields that the list may be incomplete. Statements about computed variables
+// are left out.
+func Basis(g *graph.Graph) (basis []Independence, more bool) {
+	p := Project(g)
+	h := p.Graph
+	var before []int
+	for _, v := range h.Order {
+		before = append(before, v)
+		if h.Computed[v] {
+			continue
+		}
+		start := ancestorsWithin(h, before, everything(h))
+		for v := range start {
+			start[v] = slices.Contains(before, v)
+		}
+		seen := map[string]bool{}
+		var found []Independence
+		for queue := [][]bool{start}; len(queue) > 0; queue = queue[1:] {
+			set := queue[0]
+			if k := fmt.Sprint(set); seen[k] {
+				continue
+			} else if len(seen) == basisSets {
+				more = true
+				break
+			} else {
+				seen[k] = true
+			}
+			given := shield(h, v, set)
+			known := fixed(h, mark(h.Len(), given))
+			var apart []int
+			for w := range set {
+				if set[w] && w != v && !known[w] {
+					apart = append(apart, w)
+				}
+			}
+			if len(apart) > 0 {
+				found = append(found, Independence{A: p.node([]int{v}), B: p.node(apart), Given: p.node(given)})
+			}
+			// Another shield needs a member of the district gone, and with it
+			// all that descends from it.
+			for w, in := range district(h, v, set) {
+				if !in || w == v {
+					continue
+				}
+				below := h.Descendants(w)
+				if below[v] {
+					continue
+				}
+				smaller := slices.Clone(set)
+				for u := range smaller {
+					smaller[u] = smaller[u] && !below[u]
+				}
+				queue = append(queue, smaller)
+			}
+		}
+		// What is said of more variables with the same shield says it all.
+		for i, s := range found {
+			covered := slices.ContainsFunc(found[:i], func(f Independence) bool { return slices.Equal(f.Given, s.Given) && within(s.B, f.B) })
+			if !covered {
+				basis = append(basis, s)
+			}
+		}
+	}
+	return basis, more
+}
+
+// Pairwise breaks independences into statements about pairs, each to be tested
+// alone. Other statements follow from those of a basis if probabilities are
+// positive.
+func Pairwise(basis []Independence) []Independence {
+	var all []Independence
+	for _, s := range basis {
+		for _, a := range s.A {
+			for _, b := range s.B {
+				all = append(all, Independence{A: []int{a}, B: []int{b}, Given: s.Given})
+			}
+		}
+	}
+	return all
+}

@@ -1,0 +1,89 @@
+package causal
+
+import (
+	"fmt"
+	"math"
+
+	"arrowroot/compile/graph"
+)
+
+// A Tetrad is a product of covariances that equals another if all laws are
+// linear: cov(A, C) cov(B, D) = cov(A, D) cov(B, C) (Spearman 1904).
+type Tetrad struct {
+	A, B, C, D int
+}
+
+const tetradQuartets = 4000 // sets of four variables looked at
+
+// Tetrads lists the tetrads that vanish in every linear model of the graph,
+// at most max (0 = 1000): one node lies on all treks between the two pairs
+// (Sullivant, Talaska & Draisma 2010). A tetrad of which both products are zero
+// is left out, being no more than independences.
+func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
+	max = limit(max, 1000)
+	named, _ := nameArcs(g)
+	nodes := list(available(g))
+	related := make([][]bool, g.Len())
+	for _, v := range nodes {
+		related[v] = reachable(named, []int{v}, make([]bool, named.Len()), make([]bool, named.Len()))
+	}
+	looked := 0
+	for i, a := range nodes {
+		for j, b := range nodes[i+1:] {
+			for k, c := range nodes[i+j+2:] {
+				for _, d := range nodes[i+j+k+3:] {
+					if looked++; looked > tetradQuartets {
+						return all, true
+					}
+					for _, t := range []Tetrad{{a, b, c, d}, {a, c, b, d}, {a, d, b, c}} {
+						first, second := related[t.A][t.C] && related[t.B][t.D], related[t.A][t.D] && related[t.B][t.C]
+						if !first && !second || treks(named, t) > 1 {
+							continue
+						}
+						if len(all) == max {
+							return all, true
+						}
+						all = append(all, t)
+					}
+				}
+			}
+		}
+	}
+	return all, false
+}
+
+// treks counts, up to two, treks from A and B to C and D no two of which share
+// a node on the same side: a smallest set that t-separates the pairs has as
+// many members.
+func treks(g *graph.Graph, t Tetrad) int {
+	n := g.Len()
+	// A node is entered and left on the way up, then on the way down.
+	const up, upOut, down, downOut = 0, 1, 2, 3
+	at := func(v, side int) int { return 4*v + side }
+	net := newNetwork(4*n + 2)
+	source, sink := 4*n, 4*n+1
+	for v := range n {
+		net.edge(at(v, up), at(v, upOut), 1)
+		net.edge(at(v, down), at(v, downOut), 1)
+		net.edge(at(v, upOut), at(v, down), math.Inf(1))
+		for _, c := range g.Children[v] {
+			net.edge(at(c, upOut), at(v, up), math.Inf(1))
+			net.edge(at(v, downOut), at(c, down), math.Inf(1))
+		}
+	}
+	for _, v := range []int{t.A, t.B} {
+		net.edge(source, at(v, up), 1)
+	}
+	for _, v := range []int{t.C, t.D} {
+		net.edge(at(v, downOut), sink, 1)
+	}
+	total, _ := net.most(source, sink)
+	return int(total)
+}
+
+// Sentence says the constraint.
+func (t *Tetrad) Sentence(g *graph.Graph) string {
+	a, b, c, d := g.Names[t.A], g.Names[t.B], g.Names[t.C], g.Names[t.D]
+	return fmt.Sprintf("If all laws are linear, cov(%s, %s) cov(%s, %s) = cov(%s, %s) cov(%s, %s): one variable carries all that ties %s and %s to %s and %s.",
+		a, c, b, d, a, d, b, c, a, b, c, d)
+}
