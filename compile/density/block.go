@@ -217,9 +217,6 @@ func (b *Block) Evaluator() *Evaluator {
 	return &Evaluator{program: b.density.NewEvaluator(), dim: b.Dim()}
 }
 
-// Dump is the program as text.
-func (b *Block) Dump() string { return b.density.Dump() }
-
 // An Evaluator evaluates one block's log density; it satisfies infer.Target.
 // It is for one goroutine at a time.
 type Evaluator struct {

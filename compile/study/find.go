@@ -24,14 +24,6 @@ func (s *Study) Table(name string) *Data {
 	return find(s.Data, byDataName(name))
 }
 
-// Bound finds the variable that is bound to a column; nil if there is none.
-func (s *Study) Bound(data, column string) *Variable {
-	table := s.Table(data)
-	return find(s.Variables, func(v *Variable) bool {
-		return v.Column == column && s.Table(v.Data) == table
-	})
-}
-
 // Node finds a variable on the sheet; nil if it is not there.
 func (d *Diagram) Node(variable string) *Node { return find(d.Nodes, byVariable(variable)) }
 
@@ -55,17 +47,6 @@ func (d *Diagram) Parents(variable string) []string {
 		}
 	}
 	return parents
-}
-
-// Children lists the drawn children of a variable in the order of their arrows.
-func (d *Diagram) Children(variable string) []string {
-	var children []string
-	for _, a := range d.Arrows {
-		if a.From == variable {
-			children = append(children, a.To)
-		}
-	}
-	return children
 }
 
 func byID(id string) func(*Variable) bool { return func(v *Variable) bool { return v.ID == id } }
