@@ -23,10 +23,6 @@ func fifty() Input {
 		s.Variables = append(s.Variables, &study.Variable{ID: id, Unmeasured: i%10 == 9})
 		r.Diagram.Nodes = append(r.Diagram.Nodes, &study.Node{Variable: id})
 		r.Layout.At[id] = study.Point{X: 90 + float64(i%10)*132, Y: 70 + float64(i/10)*146 + float64(i%2)*24}
-		q := make([]float64, 20)
-		for k := range q {
-			q[k] = float64(k*k) * rng.Float64()
-		}
 		dots[id] = someDots()["hedge"]
 	}
 	for len(r.Diagram.Arrows) < 100 {
