@@ -8,9 +8,8 @@ import (
 
 // An Edit is one change, as a value. Apply never changes its argument: it
 // gives a new study that shares every part the edit did not touch, the same
-// pointer if nothing changed, or an error that says why not. The edits are in
-// edit_ledger.go (data, variables, plates), edit_sheet.go (nodes, arrows,
-// arcs, laws), edit_rival.go and edit_question.go.
+// pointer if nothing changed, or an error that says why not. There is a
+// file for each thing that can be edited: edit_variable.go, edit_arrow.go, ….
 type Edit interface {
 	Apply(*Study) (*Study, error)
 	Label() string // for the Edit menu: "Draw hedge → bees"
