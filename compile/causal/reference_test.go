@@ -29,6 +29,14 @@ type reference struct {
 		Sets    [][]string
 		Queries [][][]string
 		Given   []string
+		Other   struct {
+			Nodes []string
+			Edges [][2]string
+		}
+		Directed, Undirected [][2]string
+		S                    string
+		External             []string
+		Partial              []string
 	}
 	Answer  json.RawMessage
 	Answers struct {
@@ -50,7 +58,8 @@ type reference struct {
 			Edge  []json.RawMessage
 		}
 		Identifiable      bool
-		IdentifiableGiven *bool               `json:"identifiable_given_conditioned"`
+		IdentifiableGiven *bool `json:"identifiable_given_conditioned"`
+		Cpdag             *classAnswer
 		Implied           [][]json.RawMessage `json:"implied_independences"`
 		OSet              *[]string           `json:"o_set"`
 		Best              [][]string          `json:"best_minimal_by_graph"`
