@@ -88,6 +88,9 @@ func Trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string
 	if len(t.Reasons) > 0 {
 		return title(t.Verdict.String()) + ": " + strings.Join(t.Reasons, "; ")
 	}
+	if s.Constant {
+		return title(t.Verdict.String()) + ": the same in every draw"
+	}
 	divergences := "no divergences"
 	if sampling.Divergent > 0 {
 		divergences = Plural(sampling.Divergent, "divergence")
@@ -136,7 +139,7 @@ func Effect(s *study.Study, r *fit.Result) []string {
 			lines = append(lines, missing.name+": "+strings.TrimSuffix(missing.reason, ".")+".")
 		}
 	}
-	if head != nil && !head.Constant {
+	if head != nil && !e.None {
 		lines = append(lines, Trust(head.Trust, head.Summary, r.Full.Sampling)+".")
 	}
 	return lines

@@ -2,9 +2,13 @@ package words
 
 import (
 	"math"
+	"strings"
 	"testing"
 
+	"arrowroot/app/fit"
 	"arrowroot/compile/model"
+	"arrowroot/compile/study"
+	"arrowroot/infer/summary"
 )
 
 func TestNumbersForPeople(t *testing.T) {
@@ -21,6 +25,36 @@ func TestNumbersForPeople(t *testing.T) {
 	} {
 		if c.got != c.want {
 			t.Errorf("%q, want %q", c.got, c.want)
+		}
+	}
+}
+
+// Answers that are no number say why, and no sentence holds a NaN.
+func TestAnswersWithoutANumber(t *testing.T) {
+	s := study.New()
+	q := &study.Question{Exposure: "hedge", Outcome: "bees", From: &study.Setting{Number: 40}, To: &study.Setting{Number: 90}}
+	number := &fit.Number{Summary: summary.Summary{Centre: 1.42, Low: 1.2, High: 1.7, Level: 0.9, RHat: 1, BulkESS: 900, TailESS: 800}}
+	same := &fit.Number{Summary: summary.Summary{Constant: true, Level: 0.9, RHat: math.NaN(), BulkESS: math.NaN(), TailESS: math.NaN()}}
+	for _, c := range []struct {
+		name   string
+		result *fit.Result
+		starts string
+		says   string
+	}{
+		{"a question that lacks something", &fit.Result{Unanswered: &fit.Blocked{Problems: []model.Problem{{Message: "ähre has no values to compare.", Stops: true}}}}, "ähre has no values", ""},
+		{"no effect drawn", &fit.Result{Effect: &fit.Effect{None: true, Identified: true, Crude: number, Adjusted: number, Full: same}},
+			"No arrows lead from hedge to bees: this diagram says that setting hedge 40 → 90 changes nothing in it", "Crude 1.42"},
+		{"stopped", &fit.Result{Effect: &fit.Effect{Cut: true, Identified: true, Full: number}}, "The run was stopped", "full model 1.42"},
+		{"not identified", &fit.Result{Effect: &fit.Effect{Crude: number, Adjusted: number, Refusal: "not identified: attitude was not measured. Measuring it would do."}},
+			"Not identified: attitude was not measured. Measuring it would do. The association is 1.42, 90 % 1.20 to 1.70.", ""},
+		{"no crude number", &fit.Result{Effect: &fit.Effect{Identified: true, Full: number, CrudeRefusal: "margin is computed from yield and rain"}},
+			"Setting hedge 40 → 90 changes expected bees by 1.42", "Crude: margin is computed from yield and rain."},
+		{"a constant", &fit.Result{Effect: &fit.Effect{Identified: true, Full: same}}, "Setting hedge", "the same in every draw"},
+	} {
+		c.result.Question, c.result.Full = q, &fit.Fitted{}
+		text := strings.Join(Effect(s, c.result), "\n")
+		if !strings.HasPrefix(text, c.starts) || !strings.Contains(text, c.says) || strings.Contains(text, "NaN") {
+			t.Errorf("%s:\n%s", c.name, text)
 		}
 	}
 }
