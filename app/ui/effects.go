@@ -54,6 +54,8 @@ func (p *effectPage) update() {
 			text = "Nothing is asked yet: name an exposure and an outcome."
 		} else if v.Running {
 			text = "The fit is going on."
+		} else if r != nil && r.Unanswered != nil {
+			text = sentenceCase(r.Unanswered.Error())
 		}
 		objects := []fyne.CanvasObject{bold("No answer yet"), para(text, tokenMuted)}
 		if !v.Running {
@@ -82,8 +84,8 @@ func (p *effectPage) update() {
 		refusal = "None: the effect is not identified."
 	}
 	cards := []card{
-		{"Crude", "nothing held", e.Crude, ""},
-		{"Held", held, e.Adjusted, ""},
+		{"Crude", "nothing held", e.Crude, sentenceCase(e.CrudeRefusal)},
+		{"Held", held, e.Adjusted, sentenceCase(e.AdjustedRefusal)},
 		{"Full model", "every law of the rival", e.Full, refusal},
 	}
 	cards = slices.DeleteFunc(cards, func(c card) bool { return c.number == nil && c.refusal == "" })
