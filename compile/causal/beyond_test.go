@@ -201,3 +201,35 @@ func TestWaysOfLargeDiagrams(t *testing.T) {
 		ArrowInstruments(g, q[0], q[1])
 	}
 }
+
+// The reading of a diagram with ten million paths comes at once, and says that
+// it is not all (case paths-k12).
+func TestPathsAreStreamed(t *testing.T) {
+	for _, c := range readReference(t, "beyond.json") {
+		if c.Question.Type != "count" {
+			continue
+		}
+		var want struct{ Paths, Causal int }
+		c.answer(t, &want)
+		g := c.graph(t)
+		x, y := g.Index(c.Exposure[0]), g.Index(c.Outcome[0])
+		if r := Read(g, Query{Exposure: x, Outcome: y}); len(r.Paths) != 500 || !r.MorePaths {
+			t.Errorf("%s: %d paths, more %v", c.ID, len(r.Paths), r.MorePaths)
+		}
+		onward := g.Keep(func(from, _ int) bool { return from != y }, nil)
+		var causal func(v int) int
+		causal = func(v int) int {
+			if v == y {
+				return 1
+			}
+			n := 0
+			for _, w := range onward.Children[v] {
+				n += causal(w)
+			}
+			return n
+		}
+		if n := causal(x); n != want.Causal {
+			t.Errorf("%s: %d causal paths", c.ID, n)
+		}
+	}
+}

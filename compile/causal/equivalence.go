@@ -17,6 +17,7 @@ type Class struct {
 	Listed     bool
 	Directed   [][2]int // arrows that all members share, in the order drawn; nil if not listed
 	Reversible [][2]int // arrows that point the other way in some member, in the order drawn
+	Undecided  [][2]int // arrows of which it could not be decided whether they can be turned round
 	Size       *big.Int // the number of members; nil if not listed, or too long to count
 	Sentence   string
 }
@@ -51,12 +52,20 @@ func listed(g *graph.Graph) bool {
 // turn finds the arrows that can be turned round one at a time.
 func (c *Class) turn(g *graph.Graph) {
 	can := available(g)
+	basis, _ := Basis(g)
 	for _, a := range g.Arrows {
 		if !can[a[0]] || !can[a[1]] || g.Computed[a[0]] || g.Computed[a[1]] {
 			continue
 		}
-		if turned := turnedRound(g, a); turned != nil && SameIndependences(g, turned).Same {
+		turned := turnedRound(g, a)
+		if turned == nil || notIn(g, basis, turned) != nil { // most fail here, at little cost
+			continue
+		}
+		switch s := compareIndependences(g, turned); {
+		case s.Same:
 			c.Reversible = append(c.Reversible, a)
+		case s.Unknown:
+			c.Undecided = append(c.Undecided, a)
 		}
 	}
 }
@@ -91,6 +100,12 @@ func (c *Class) sentence(g *graph.Graph) string {
 		turn = append(turn, arrowText(g, a[:]))
 	}
 	switch {
+	case len(c.Undecided) > 0:
+		text := fmt.Sprintf("Of %d arrows it could not be decided whether they could be turned round without changing an implied independence.", len(c.Undecided))
+		if len(turn) > 0 {
+			text = fmt.Sprintf("Without changing any implied independence, %s could be turned round, one at a time; of %d more it could not be decided.", series(turn, "and"), len(c.Undecided))
+		}
+		return text
 	case !c.Listed && len(turn) == 0:
 		return "No single arrow between measured variables could be turned round without changing an implied independence. With unmeasured causes or computed variables the diagrams that imply the same are not listed."
 	case !c.Listed:
@@ -168,6 +183,18 @@ const computedNodes = 10 // measured variables up to which all sets are tried wh
 // SameIndependences compares two diagrams. All that a basis of the one says
 // must hold in the other, and the reverse.
 func SameIndependences(a, b *graph.Graph) *Sameness {
+	s := compareIndependences(a, b)
+	if s.Same && s.Hidden {
+		for _, g := range []*graph.Graph{a, b} {
+			if f, _ := Functionals(g); len(f) > 0 && s.Functional == "" {
+				s.Functional = fmt.Sprintf("%s does not depend on %s", symbols(g, f[0].Formula, deeper(nil, Free(f[0].Formula))), g.Names[f[0].FreeOf])
+			}
+		}
+	}
+	return s
+}
+
+func compareIndependences(a, b *graph.Graph) *Sameness {
 	s := &Sameness{Hidden: hidden(a) || hidden(b)}
 	s.OnlyFirst, s.OnlySecond = onlyMeasured(a, b), onlyMeasured(b, a)
 	if len(s.OnlyFirst)+len(s.OnlySecond) > 0 {
@@ -188,13 +215,6 @@ func SameIndependences(a, b *graph.Graph) *Sameness {
 	}
 	s.Unknown = moreFirst || moreSecond
 	s.Same = !s.Unknown
-	if s.Hidden {
-		for _, g := range []*graph.Graph{a, b} {
-			if f, _ := Functionals(g); len(f) > 0 && s.Functional == "" {
-				s.Functional = fmt.Sprintf("%s does not depend on %s", symbols(g, f[0].Formula, deeper(nil, Free(f[0].Formula))), g.Names[f[0].FreeOf])
-			}
-		}
-	}
 	return s
 }
 

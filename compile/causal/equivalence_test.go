@@ -228,6 +228,10 @@ func TestClassSentences(t *testing.T) {
 	if c := ClassOf(tied); c.Listed || c.Size != nil || len(c.Reversible) != 2 {
 		t.Errorf("%+v", c)
 	}
+	many := sheet(t, "a -> b -> c -> d -> e -> f -> g -> h -> i -> j -> k -> =l")
+	if c := ClassOf(many); c.Listed || len(c.Undecided) == 0 || len(c.Reversible) > 0 {
+		t.Errorf("%+v", c)
+	}
 	if c := ClassOf(large(t)); c.Listed || c.Sentence == "" {
 		t.Errorf("%+v", c)
 	}

@@ -10,6 +10,13 @@
 // precision.go, ways.go, project.go, identify.go, carriers.go and intervene.go (what
 // SEMANTICS A1 and B2 ask for), verdict.go (all of it in a sentence).
 //
+// A Reading is cheap enough to follow the hand. What takes longer is asked for
+// by itself: estimand.go and formula.go (identification with a formula), aim.go,
+// direct.go and controls.go (adjustment in full), frontdoors.go and
+// instruments.go, implications.go, functional.go and tetrads.go (what the data
+// could contradict), pattern.go and equivalence.go (what they never could),
+// selection.go and missingness.go.
+//
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.
 package causal
 
