@@ -40,6 +40,7 @@ bench:
 	go test -run '^$$' -bench Ratio -benchtime 20x ./compile/ops
 	go test -run '^$$' -bench Reading ./compile/causal
 	go test -run '^$$' -bench Frame ./canvas/scene
+	go test -run '^$$' -bench Hand ./app/ui
 
 golden:
 	go test ./canvas/... ./compile/model/... -update

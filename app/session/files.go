@@ -320,9 +320,7 @@ func (r *recovery) note(s *Session) {
 	if r.folder == "" {
 		return
 	}
-	if r.timer != nil {
-		r.timer.Stop()
-	}
+	r.stop()
 	if s.study == s.saved {
 		if s.recovered == nil {
 			_ = os.Remove(r.file(s.path))
@@ -338,10 +336,14 @@ func (r *recovery) note(s *Session) {
 	})
 }
 
-func (r *recovery) drop(path string) {
+func (r *recovery) stop() {
 	if r.timer != nil {
 		r.timer.Stop()
 	}
+}
+
+func (r *recovery) drop(path string) {
+	r.stop()
 	if r.folder != "" {
 		_ = os.Remove(r.file(path))
 	}

@@ -98,6 +98,12 @@ func New(post func(func())) *Session {
 	return s
 }
 
+// Close stops what still goes on behind the window.
+func (s *Session) Close() {
+	s.Cancel()
+	s.recovery.stop()
+}
+
 // Subscribe calls f with every new view, on the window's goroutine, and once
 // at once.
 func (s *Session) Subscribe(f func(*View)) {

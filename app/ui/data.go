@@ -1,10 +1,8 @@
 package ui
 
 import (
-	"fmt"
 	"path/filepath"
 	"strings"
-	"unicode"
 
 	"fyne.io/fyne/v2"
 
@@ -64,31 +62,17 @@ func (d *desk) unbound() []*study.Variable {
 	return out
 }
 
-// freeID makes an identifier of a column's name that nothing has yet.
+// freeID makes an identifier of a column's name that neither the study nor the
+// edits to come have.
 func (d *desk) freeID(name string, edits []study.Edit) string {
-	id := strings.Map(func(r rune) rune {
-		if unicode.IsLetter(r) || unicode.IsDigit(r) || r == '_' {
-			return r
-		}
-		return '_'
-	}, strings.TrimSpace(name))
-	id = strings.Trim(id, "_")
-	if id == "" || unicode.IsDigit([]rune(id)[0]) {
-		id = "v_" + id
+	doc, err := study.Several{Edits: edits}.Apply(d.view.Study)
+	if err != nil { // they will be refused as a whole, and say why
+		doc = d.view.Study
 	}
-	taken := func(id string) bool {
-		for _, e := range edits {
-			if a, ok := e.(study.AddVariable); ok && a.Variable.ID == id {
-				return true
-			}
-		}
-		return d.view.Study.Variable(id) != nil
+	if id := doc.FreeID(name); id != "" {
+		return id
 	}
-	base := id
-	for i := 2; taken(id); i++ {
-		id = fmt.Sprintf("%s_%d", base, i)
-	}
-	return id
+	return doc.FreeID("v")
 }
 
 // bindDialog is the small table that ties variables to columns by hand.

@@ -47,13 +47,13 @@ func (q *queue) drain() {
 
 // A bench is a window in the test driver.
 type bench struct {
-	*testing.T
+	testing.TB
 	*desk
 	queue  *queue
 	window *Window
 }
 
-func newBench(t *testing.T) *bench {
+func newBench(t testing.TB) *bench {
 	t.Helper()
 	folder := t.TempDir()
 	t.Setenv("HOME", folder)
@@ -61,10 +61,11 @@ func newBench(t *testing.T) *bench {
 	q := &queue{}
 	app := test.NewTempApp(t)
 	w := New(app, session.New(q.post), q.post)
-	b := &bench{T: t, desk: w.desk, queue: q, window: w}
+	b := &bench{TB: t, desk: w.desk, queue: q, window: w}
 	b.win.Resize(fyne.NewSize(1366, 740))
 	b.refresh()
 	b.queue.drain()
+	t.Cleanup(b.session.Close)
 	return b
 }
 

@@ -6,7 +6,6 @@ import (
 	"slices"
 	"strings"
 	"testing"
-	"time"
 
 	"arrowroot/compile/graph"
 )
@@ -239,13 +238,7 @@ func TestNothingHangs(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		start := time.Now()
-		r := Read(g, c.q)
-		took := time.Since(start)
-		if took > 2*time.Second {
-			t.Errorf("%d nodes: took %v", g.Len(), took)
-		}
-		t.Logf("%d nodes, %d arrows: %d paths (more %v), %d sets (more %v) in %v", g.Len(), len(g.Arrows), len(r.Paths), r.MorePaths, len(r.Sets), r.MoreSets, took)
+		r := Read(g, c.q) // an endless search would hang here
 		for _, z := range r.Sets {
 			if !ValidAdjustment(g, c.q.Exposure, c.q.Outcome, z) {
 				t.Fatalf("set %v is not valid", z)
