@@ -13,7 +13,7 @@ import (
 
 // Studies and tables made by hand for tests; all facts in them are invented.
 
-// hedgerows is the study of EXAMPLES: hedges and wild bees on farms.
+// hedgerows is a study of hedges and wild bees on farms.
 func hedgerows() *study.Study {
 	return sheet(
 		[]*study.Variable{

@@ -322,7 +322,7 @@ func TestNudge(t *testing.T) {
 	}
 }
 
-// Group effects become centred where the groups have much data (ENGINE E: a
+// Group effects become centred where the groups have much data (a
 // logistic law with 20 rows per group favours scores, with 100 the effects).
 func TestCentring(t *testing.T) {
 	for _, c := range []struct {

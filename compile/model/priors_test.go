@@ -40,7 +40,7 @@ func near4(t *testing.T, what string, got, want float64) {
 	}
 }
 
-// The numbers that EXAMPLES prints: four parents, bees 0–120 read as ½–120,
+// Numbers worked out by hand from SEMANTICS C3: four parents, bees 0–120 read as ½–120,
 // sd 0.0078 per m/ha.
 func TestSlopeOfTheExample(t *testing.T) {
 	m := build(t, hedgerows(), beesQuestion(), traps(), Full)

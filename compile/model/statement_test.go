@@ -160,7 +160,7 @@ func buildSpecimen(t *testing.T, c specimen) *Model {
 }
 
 // Goldens: testdata/*.txt, rewritten with -update. They are checked by eye
-// against EXAMPLES' statement and SEMANTICS A and C.
+// against SEMANTICS A and C.
 func TestStatements(t *testing.T) {
 	for _, c := range specimens() {
 		t.Run(c.name, func(t *testing.T) {
