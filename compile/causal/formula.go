@@ -105,6 +105,9 @@ func (id *Identification) formula() (Estimand, *stuck) {
 	if slices.ContainsFunc(x, func(v int) bool { return g.Computed[v] }) {
 		return id.byAdjustment(), nil
 	}
+	if slices.Contains(g.Computed, true) {
+		g = seenThrough(g, union(x, y, given))
+	}
 	// Seeing z is as good as setting it if it is unrelated to the outcomes once
 	// the arrows into exposures and out of z are cut (IDC).
 	for again := true; again; {
@@ -121,7 +124,7 @@ func (id *Identification) formula() (Estimand, *stuck) {
 	}
 	joint, failed := unconditional(g, x, union(y, given))
 	if failed != nil {
-		if slices.Contains(g.Computed, true) { // holding what is computed may do what no algorithm for general laws can
+		if slices.Contains(id.Graph.Computed, true) { // holding what is computed may do what no algorithm for general laws can
 			if e := id.byAdjustment(); e != nil {
 				return e, nil
 			}
@@ -132,6 +135,39 @@ func (id *Identification) formula() (Estimand, *stuck) {
 		joint = quotient(joint, sum(y, joint))
 	}
 	return joint, nil
+}
+
+// seenThrough is g with every computed node that is not kept replaced by what it
+// is computed from. Such a node never varies apart from these, so a formula that
+// takes it for a variable of its own would ask for what no data show.
+func seenThrough(g *graph.Graph, kept []int) *graph.Graph {
+	spec := graph.Spec{Names: g.Names, Arcs: g.Arcs}
+	stands := make([][]int, g.Len()) // the nodes that stand for a node
+	for _, v := range g.Order {
+		if !g.Measured[v] {
+			spec.Unmeasured = append(spec.Unmeasured, v)
+		}
+		var parents []int
+		for _, p := range g.Parents[v] {
+			parents = append(parents, stands[p]...)
+		}
+		stands[v] = []int{v}
+		if g.Computed[v] && len(g.Siblings[v]) == 0 && !slices.Contains(kept, v) {
+			stands[v] = tidy(parents)
+			continue
+		}
+		if g.Computed[v] {
+			spec.Computed = append(spec.Computed, v)
+		}
+		for _, p := range parents {
+			spec.Arrows = append(spec.Arrows, [2]int{p, v})
+		}
+	}
+	through, err := graph.New(spec)
+	if err != nil { // shorter ways along the same arrows
+		panic(err)
+	}
+	return through
 }
 
 // unconditional finds P(y | do x) district by district.
