@@ -45,6 +45,9 @@ func identifiableGiven(g *graph.Graph, x, y, given []int) bool {
 }
 
 func identifiable(g *graph.Graph, x, y []int) bool {
+	if slices.Contains(g.Computed, true) {
+		g = seenThrough(g, union(x, y))
+	}
 	p := Project(g)
 	for _, v := range y {
 		if p.At[v] < 0 {
