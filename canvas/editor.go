@@ -30,6 +30,7 @@ type Editor struct {
 	OnMenu   func(at scene.Target, where fyne.Position) // a right click, where on the window's canvas
 	OnOpen   func(scene.Target)                         // a double click on an arrow, an arc or a plate
 	OnView   func(scene.View)                           // panned or zoomed
+	OnNaming func()                                     // the entry for a name has opened
 	OnTool   func(scene.Tool)                           // Escape went back to the select tool
 	OnRefuse func(reason string)                        // a gesture or a name that cannot be, and why
 
@@ -310,6 +311,9 @@ func (e *Editor) name(n scene.Naming) {
 		return
 	}
 	e.entry.open(n)
+	if e.OnNaming != nil {
+		e.OnNaming()
+	}
 }
 
 // MinSize implements fyne.CanvasObject.

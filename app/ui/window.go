@@ -149,6 +149,7 @@ func (w *Window) wireSheet() {
 		}
 	}
 	e.OnView = func(scene.View) { d.status.update(); d.trace.note(d) }
+	e.OnNaming = func() { d.trace.note(d) }
 	e.OnTool = func(scene.Tool) { d.refresh() }
 	e.OnRefuse = d.status.refuse
 	e.OnHover = func(t scene.Target) { d.hover(t) }
