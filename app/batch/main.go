@@ -8,6 +8,8 @@
 package main
 
 import (
+	"arrowroot/compile/model"
+
 	"context"
 	"encoding/json"
 	"errors"
@@ -89,11 +91,16 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 		fmt.Fprintln(stderr, err)
 		return wrongUse
 	}
-	if err != nil {
+	if err != nil && opt.verb != "validate" {
 		fmt.Fprintln(stderr, err)
 		return problems
 	}
-	answer, err := verb(ctx, j)
+	var answer any
+	if err != nil { // the study cannot even be opened: that is what is wrong with it
+		answer = printProblems([]model.Problem{{Code: "file", Place: "file", Message: err.Error(), Stops: true}})
+	} else {
+		answer, err = verb(ctx, j)
+	}
 	if answer != nil {
 		out := json.NewEncoder(stdout)
 		out.SetEscapeHTML(false)

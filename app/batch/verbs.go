@@ -60,15 +60,36 @@ func load(opt *options, stderr io.Writer) (*job, error) {
 	} else if opt.question > 0 {
 		return nil, fmt.Errorf("%w: there is no question %d; the study has %d", errUse, at, len(doc.Questions))
 	}
-	return j, nil
+	return j, j.spare(opt.out)
 }
 
-// table reads the study's data.
+// table reads the data that the rival is fitted to.
 func (j *job) table() (*table.Table, error) {
-	if len(j.study.Data) == 0 {
+	d := j.study.DataOf(j.rival)
+	if d == nil {
 		return nil, nil
 	}
-	return session.ReadData(filepath.Dir(j.options.study), j.study.Data[0])
+	return session.ReadData(filepath.Dir(j.options.study), d)
+}
+
+// spare makes sure that -out names neither the study nor any of its data.
+func (j *job) spare(path string) error {
+	at, err := os.Stat(path)
+	if err != nil {
+		return nil // not there yet
+	}
+	mine := []string{j.options.study}
+	for _, d := range j.study.Data {
+		if d.File != "" {
+			mine = append(mine, filepath.Join(filepath.Dir(j.options.study), filepath.FromSlash(d.File)), filepath.FromSlash(d.File))
+		}
+	}
+	for _, name := range mine {
+		if own, err := os.Stat(name); err == nil && os.SameFile(at, own) {
+			return fmt.Errorf("%w: -out %s is the study or its data, and would be written over", errUse, path)
+		}
+	}
+	return nil
 }
 
 var errNoQuestion = errors.New("the study asks no question: add one with an exposure and an outcome")
@@ -93,7 +114,7 @@ func read(_ context.Context, j *job) (any, error) {
 func validate(_ context.Context, j *job) (any, error) {
 	t, err := j.table()
 	if err != nil {
-		return nil, err
+		return printProblems([]model.Problem{{Code: "data", Place: "data", Message: err.Error(), Stops: true}}), err
 	}
 	var q study.Question
 	if j.question != nil {

@@ -34,14 +34,23 @@ type Effect struct {
 
 // Headline is the number to show first: the full model's, or the held one
 // where the full model may not be simulated; nil when laws disagree, nothing
-// may be read as an effect, or the run was cut short.
+// may be read as an effect, its computation cannot be trusted, or the run was
+// cut short.
 func (e *Effect) Headline() *Number {
+	if n := e.answer(); n != nil && n.Trust.Verdict < summary.Unusable {
+		return n
+	}
+	return nil
+}
+
+// answer is the number that would be shown first if it can be trusted.
+func (e *Effect) answer() *Number {
 	switch {
 	case e.Cut || e.LawsDisagree || !e.Identified:
 		return nil
 	case e.Full != nil:
 		return e.Full
-	case e.Adjusted != nil && e.HeldValid:
+	case e.HeldValid:
 		return e.Adjusted
 	}
 	return nil
@@ -106,7 +115,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 	if e.Cut {
 		e.Notes = append(e.Notes, "The run was stopped before the numbers could be set beside each other: none of them is the answer yet.")
 	}
-	if !e.None && e.Full != nil && e.Adjusted != nil && e.HeldValid && e.Full.Trust.Verdict < summary.Unusable && e.Adjusted.Trust.Verdict < summary.Unusable {
+	if e.Full != nil && e.Adjusted != nil && e.HeldValid && e.Full.Trust.Verdict < summary.Unusable && e.Adjusted.Trust.Verdict < summary.Unusable {
 		gap := math.Abs(e.Full.Centre - e.Adjusted.Centre)
 		e.LawsDisagree = gap > disagreement*math.Hypot(e.Full.Spread, e.Adjusted.Spread)
 	}

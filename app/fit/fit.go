@@ -74,7 +74,7 @@ type Result struct {
 // there is one, else the fit's.
 func (r *Result) Trust() summary.Trust {
 	if r.Effect != nil {
-		if n := r.Effect.Headline(); n != nil {
+		if n := r.Effect.answer(); n != nil {
 			return summary.Worst(n.Trust, r.Full.Trust)
 		}
 	}
@@ -144,6 +144,7 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 		if r.Effect, err = contrasts(ctx, &req, g, full, watch); err != nil {
 			return nil, fmt.Errorf("effect of %s on %s: %w", q.Exposure, q.Outcome, err)
 		}
+		r.Effect.Notes = append(r.Effect.Notes, remarks(problems)...)
 	}
 	r.Cut = full.Cut || ctx.Err() != nil
 	if !req.NoPaint {
@@ -153,6 +154,18 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	}
 	r.Took = time.Since(began)
 	return r, nil
+}
+
+// remarks are what must be said beside an answer: that it reaches beyond the
+// data, or hangs on which word counts as 1.
+func remarks(problems []model.Problem) []string {
+	var out []string
+	for _, p := range problems {
+		if p.Code == "overlap" || p.Code == "which-is-one" {
+			out = append(out, p.Message)
+		}
+	}
+	return out
 }
 
 // grace gives a context that outlives ctx's cancel by some time, so that draws

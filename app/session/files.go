@@ -184,8 +184,8 @@ func (s *Session) adopt(path string, t *table.Table) error {
 	}
 	data := study.Data{Name: name, File: file, SHA256: t.SHA256, Rows: t.Rows}
 	edits := []study.Edit{}
-	if len(s.study.Data) > 0 {
-		edits = append(edits, study.ChangeData{Name: s.study.Data[0].Name, To: data})
+	if old := s.study.DataOf(s.rival); old != nil {
+		edits = append(edits, study.ChangeData{Name: old.Name, To: data})
 	} else {
 		edits = append(edits, study.AddData{Data: data})
 	}
@@ -242,12 +242,12 @@ func Bound(v study.Variable, c *table.Column) study.Variable {
 	return v
 }
 
-// table is the study's first table as it stands; nil if it names none.
+// table is the table of the present rival as it stands; nil if there is none.
 func (s *Session) table() *loaded {
-	if len(s.study.Data) == 0 {
-		return nil
+	if d := s.study.DataOf(s.rival); d != nil {
+		return s.tables[d.Name]
 	}
-	return s.tables[s.study.Data[0].Name]
+	return nil
 }
 
 // loadAll reads the tables that the study names and that are not here yet.

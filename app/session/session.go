@@ -36,7 +36,7 @@ type View struct {
 	Graph      *graph.Graph // nil with GraphError
 	GraphError error
 	Reading    *causal.Reading // nil while it is being computed
-	Table      *table.Table    // the study's first table; nil = none, or still being read
+	Table      *table.Table    // of the present rival; nil = none, or still being read
 	DataError  error
 	Model      *model.Model // nil where problems do not allow one
 	Problems   []model.Problem

@@ -118,6 +118,9 @@ func Effect(s *study.Study, r *fit.Result) []string {
 	switch {
 	case e.Cut:
 		lines = append(lines, "The run was stopped before the numbers could be set beside each other: none of them is the answer yet.")
+	case e.None && e.LawsDisagree:
+		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s, yet holding %s they go together (%s): an arrow or an unmeasured cause of both is missing, or a law is wrong.",
+			q.Exposure, q.Outcome, List(e.Held), Value(q, e.Adjusted)))
 	case e.None && head != nil:
 		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s: this diagram says that %s changes nothing in it, whatever the data.", q.Exposure, q.Outcome, act(s, q)))
 	case head != nil:
@@ -127,8 +130,10 @@ func Effect(s *study.Study, r *fit.Result) []string {
 			List(e.Held), Value(q, e.Adjusted), Value(q, e.Full), q.Exposure, q.Outcome))
 	case !e.Identified && e.Crude != nil:
 		lines = append(lines, fmt.Sprintf("%s The association is %s.", sentence(e.Refusal), Value(q, e.Crude)))
-	default:
+	case e.Refusal != "":
 		lines = append(lines, sentence(e.Refusal))
+	default:
+		lines = append(lines, sentence("the computation cannot be trusted, and no number is given as the answer: "+strings.Join(unusableReasons(e), "; ")))
 	}
 	lines = append(lines, beside(q, e))
 	for _, missing := range []struct {
@@ -139,10 +144,26 @@ func Effect(s *study.Study, r *fit.Result) []string {
 			lines = append(lines, missing.name+": "+strings.TrimSuffix(missing.reason, ".")+".")
 		}
 	}
+	if !e.Cut {
+		for _, note := range e.Notes {
+			lines = append(lines, sentence(note))
+		}
+	}
 	if head != nil && !e.None {
 		lines = append(lines, Trust(head.Trust, head.Summary, r.Full.Sampling)+".")
 	}
 	return lines
+}
+
+// unusableReasons says why the number that would be the answer is not.
+func unusableReasons(e *fit.Effect) []string {
+	if e.Full != nil {
+		return e.Full.Trust.Reasons
+	}
+	if e.Adjusted != nil {
+		return e.Adjusted.Trust.Reasons
+	}
+	return nil
 }
 
 func sentence(s string) string {

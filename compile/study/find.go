@@ -24,6 +24,19 @@ func (s *Study) Table(name string) *Data {
 	return find(s.Data, byDataName(name))
 }
 
+// DataOf is the table that a rival is fitted to: the one its first bound
+// variable is in, the first of the study if none is bound; nil without data.
+func (s *Study) DataOf(rival string) *Data {
+	if r := s.Rival(rival); r != nil {
+		for _, n := range r.Diagram.Nodes {
+			if v := s.Variable(n.Variable); v != nil && v.Column != "" && !v.Unmeasured {
+				return s.Table(v.Data)
+			}
+		}
+	}
+	return s.Table("")
+}
+
 // Node finds a variable on the sheet; nil if it is not there.
 func (d *Diagram) Node(variable string) *Node { return find(d.Nodes, byVariable(variable)) }
 
