@@ -6,6 +6,7 @@ import (
 	"strings"
 	"testing"
 
+	"arrowroot/compile/graph"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -107,5 +108,22 @@ func TestNotIdentified(t *testing.T) {
 		if n.Variable == "cancer" && !(n.Refused && math.IsNaN(n.Centre) || n.Refused && n.Centre == 0) {
 			t.Errorf("cancer is painted with a change: %+v", n)
 		}
+	}
+}
+
+// An arrow is an association where an unmeasured cause reaches both its ends,
+// also through unmeasured variables (SEMANTICS G).
+func TestAssociationsAreNamed(t *testing.T) {
+	g, err := graph.New(graph.Spec{
+		Names:      []string{"u", "v", "x", "y", "z"},
+		Arrows:     [][2]int{{0, 1}, {0, 3}, {1, 2}, {2, 3}, {2, 4}},
+		Unmeasured: []int{0, 1},
+	})
+	if err != nil {
+		t.Fatal(err)
+	}
+	found := confounded(g)
+	if len(found) != 1 || !found[[2]string{"x", "y"}] {
+		t.Errorf("associations: %v", found)
 	}
 }

@@ -3,7 +3,9 @@ package fit
 import (
 	"context"
 	"math"
+	"slices"
 
+	"arrowroot/compile/causal"
 	"arrowroot/compile/effect"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
@@ -13,11 +15,10 @@ import (
 // An ArrowPaint is what a fit says of one drawn arrow (SEMANTICS G).
 type ArrowPaint struct {
 	From, To        string
-	summary.Summary        // change in plausible widths of the child
-	Unsigned        bool   // a distance: category children
-	Association     bool   // not causal: an unmeasured cause joins both ends
-	Words           string // "×1.02 per 10 m/ha"
-	PerLow, PerHigh float64
+	summary.Summary         // change in plausible widths of the child
+	Unsigned        bool    // a distance: category children
+	Association     bool    // not causal: an unmeasured cause joins both ends
+	Words           string  // "×1.02 (90 %: 0.99 to 1.05) per 10 m/ha"
 	Learned         float64 // 0 nothing … 1 everything; NaN where it cannot be said
 	Trust           summary.Trust
 }
@@ -60,10 +61,6 @@ func (r *Result) paintArrows(ctx context.Context, req *Request, g *graph.Graph) 
 		p := ArrowPaint{From: a.From, To: a.To, Unsigned: a.Unsigned, Words: a.Words,
 			Association: siblings[[2]string{a.From, a.To}]}
 		p.Summary = f.ofPooled(a.Values, level)
-		if len(a.PerUnit) > 0 {
-			per := f.ofPooled(a.PerUnit, level)
-			p.PerLow, p.PerHigh = per.Low, per.High
-		}
 		p.Learned, p.Trust = f.learned(arrowParameters(f.Model, a.From, a.To))
 		p.Trust = summary.Worst(p.Trust, summary.Judge(p.Summary, f.Sampling))
 		r.Arrows = append(r.Arrows, p)
@@ -159,30 +156,15 @@ func arrowParameters(m *model.Model, from, to string) func(int) bool {
 	return func(k int) bool { return chosen[k] }
 }
 
-// confounded marks the drawn arrows whose ends share an unmeasured cause: what
-// is fitted along them is an association.
+// confounded marks the drawn arrows whose ends share an unmeasured cause, near
+// or far: what is fitted along them is an association.
 func confounded(g *graph.Graph) map[[2]string]bool {
+	measured := causal.Project(g).Graph
 	out := make(map[[2]string]bool)
-	for _, a := range g.Arrows {
-		from, to := a[0], a[1]
-		shared := contains(g.Siblings[from], to)
-		for u := range g.Len() {
-			if !g.Measured[u] && g.HasArrow(u, from) && g.HasArrow(u, to) {
-				shared = true
-			}
-		}
-		if shared {
-			out[[2]string{g.Names[from], g.Names[to]}] = true
+	for _, a := range measured.Arrows {
+		if slices.Contains(measured.Siblings[a[0]], a[1]) {
+			out[[2]string{measured.Names[a[0]], measured.Names[a[1]]}] = true
 		}
 	}
 	return out
-}
-
-func contains(set []int, v int) bool {
-	for _, x := range set {
-		if x == v {
-			return true
-		}
-	}
-	return false
 }
