@@ -31,14 +31,14 @@ func Number(x float64) string {
 	return minus(strconv.FormatFloat(x, 'f', digits, 64))
 }
 
-// Whole is a count with thin groups: "12 000".
+// Whole is a count in groups of three: "12,000".
 func Whole(x float64) string {
 	if math.IsNaN(x) || math.IsInf(x, 0) {
 		return "–"
 	}
 	text := strconv.FormatFloat(math.Round(x), 'f', 0, 64)
 	for i := len(text) - 3; i > 0 && text[i-1] != '-'; i -= 3 {
-		text = text[:i] + " " + text[i:]
+		text = text[:i] + "," + text[i:]
 	}
 	return minus(text)
 }
