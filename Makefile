@@ -38,7 +38,7 @@ check:
 
 # Ratios measured side by side in one run; absolute times mean nothing here.
 bench:
-	go test -run '^$$' -bench Ratio -benchtime 20x ./compile/ops
+	go test -run '^$$' -bench Ratio -benchtime 10x ./compile/ops
 	go test -run '^$$' -bench Reading ./compile/causal
 	go test -run '^$$' -bench Frame ./canvas/scene
 	go test -run '^$$' -bench Hand ./app/ui
