@@ -133,7 +133,7 @@ func (d *desk) copyArrows() {
 	}
 	for _, a := range d.view.Rival.Diagram.Arcs {
 		if d.pick.HasArc(a.A, a.B) || d.pick.HasNode(a.A) && d.pick.HasNode(a.B) {
-			lines = append(lines, a.A+" <-> "+a.B)
+			lines = append(lines, "? -> "+a.A+", "+a.B)
 		}
 	}
 	if len(lines) == 0 {

@@ -42,7 +42,7 @@ func (d *desk) sentenceOf(typed string) sentence {
 }
 
 func isArrows(text string) bool {
-	for _, mark := range []string{"->", "→", "<-", "←", "<->", "↔"} {
+	for _, mark := range []string{"->", "→", "<-", "←", "↔"} {
 		if strings.Contains(text, mark) {
 			return true
 		}

@@ -17,8 +17,8 @@ type Typed struct {
 
 // ParseArrows reads arrows as text, a chain to a line: "hedge -> flowers ->
 // bees". Commas make lists ("hedge, soil -> bees" is two arrows), arrows may
-// point either way, be → or ←, and "<->" or ↔ is an arc. A question mark as
-// the cause joins what it points to by arcs: "? -> hedge, pesticide". A line
+// point either way and be → or ←. A question mark as the cause joins what it
+// points to by arcs: "? -> hedge, pesticide"; ↔ does as well. A line
 // with a single name only mentions a variable. Empty lines, and what follows
 // "#", are skipped.
 func ParseArrows(text string) (*Typed, error) {
@@ -38,9 +38,9 @@ func ParseArrows(text string) (*Typed, error) {
 	return t, nil
 }
 
-// links in the order they must be looked for: the longest first.
+// links are what may stand between two names.
 var links = [...]struct{ text, means string }{
-	{"<->", "arc"}, {"↔", "arc"}, {"->", "right"}, {"→", "right"}, {"<-", "left"}, {"←", "left"},
+	{"↔", "arc"}, {"->", "right"}, {"→", "right"}, {"<-", "left"}, {"←", "left"},
 }
 
 func (t *Typed) line(line string) error {

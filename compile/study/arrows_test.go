@@ -24,11 +24,11 @@ func TestParseArrows(t *testing.T) {
 		{"hedge→flowers\n\n# why not\nsoil → flowers # a reason", "hedge flowers soil: hedge→flowers soil→flowers"},
 		{"a, b -> c, d", "a b c d: a→c a→d b→c b→d"},
 		{"a -> b <- c", "a b c: a→b c→b"},
-		{"a <-> b ↔ c", "a b c: a↔b b↔c"},
+		{"a ↔ b ↔ c", "a b c: a↔b b↔c"},
 		{"? -> hedge, pesticide", "hedge pesticide: hedge↔pesticide"},
 		{"a, b, c <- ?", "a b c: a↔b a↔c b↔c"},
 		{"a", "a: "},
-		{"a -> b\na -> b\nb <-> a\na <-> b", "a b: a→b b↔a"},
+		{"a -> b\na -> b\n? -> b, a\na ↔ b", "a b: a→b b↔a"},
 		{"α -> β_x", "alpha beta_x: alpha→beta_x"},
 		{"", ": "},
 	} {
