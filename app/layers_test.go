@@ -23,15 +23,19 @@ const layers = `
 !compile/model    : compile/study compile/graph compile/formula compile/table compile/catalog compile/causal compile/kernel
 !compile/density  : compile/ops compile/kernel compile/catalog compile/formula compile/model
 !compile/effect   : compile/catalog compile/formula compile/model compile/graph compile/causal compile/study
+!compile/evidence : compile/study compile/graph compile/table compile/causal compile/kernel compile/catalog
+!compile/sensitivity : compile/study compile/graph compile/table compile/causal compile/kernel
+!compile/mistake  : compile/study compile/graph compile/table compile/causal
 !canvas/scene     : canvas/draw compile/study compile/graph compile/causal
 canvas            : canvas/draw canvas/scene compile/study compile/graph compile/causal
 !app/fit          : compile/* infer infer/summary
-!app/session      : app/fit compile/* infer
+!app/findings     : app/fit compile/*
+!app/session      : app/fit app/findings compile/* infer
 !app/words        : app/fit compile/model compile/study infer/summary
 !app/paint        : app/fit app/words canvas/scene infer/summary
-!app/report       : app/fit app/paint app/words canvas/draw canvas/scene compile/*
-!app/batch        : app/fit app/report app/session app/words compile/* infer infer/summary
-app/ui            : app/fit app/paint app/words app/report app/session canvas canvas/* compile/* infer infer/summary assets
+!app/report       : app/fit app/findings app/paint app/words canvas/draw canvas/scene compile/*
+!app/batch        : app/fit app/findings app/report app/session app/words compile/* infer infer/summary
+app/ui            : app/fit app/findings app/paint app/words app/report app/session canvas canvas/* compile/* infer infer/summary assets
 app               : app/session app/ui assets
 !assets/examples/generate :
 `
