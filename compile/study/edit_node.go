@@ -3,7 +3,6 @@ package study
 import (
 	"fmt"
 	"maps"
-	"math"
 	"slices"
 	"strings"
 )
@@ -89,7 +88,7 @@ func offSheet(r *Rival, variables []string) *Rival {
 	if slices.ContainsFunc(variables, func(id string) bool { _, placed := r.Layout.At[id]; return placed }) {
 		at := maps.Clone(r.Layout.At)
 		maps.DeleteFunc(at, func(id string, _ Point) bool { return gone(id) })
-		next.Layout = &Layout{At: at}
+		next.Layout = &Layout{At: at, Notes: r.Layout.Notes}
 	}
 	return &next
 }
@@ -143,9 +142,9 @@ func (l *Layout) moved(to map[string]Point) *Layout {
 		at = make(map[string]Point, len(to))
 	}
 	for id, p := range to {
-		at[id] = Point{math.Round(p.X*100) / 100, math.Round(p.Y*100) / 100}
+		at[id] = p.rounded()
 	}
-	return &Layout{At: at}
+	return &Layout{At: at, Notes: l.Notes}
 }
 
 // Label names the edit.

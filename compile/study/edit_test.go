@@ -274,6 +274,7 @@ func someEdit(t *rapid.T, s *Study) Edit {
 		return rapid.SampledFrom(s.Rivals).Draw(t, "rival").Name
 	}
 	at := func() int { return rapid.IntRange(0, max(len(s.Questions)-1, 0)).Draw(t, "at") }
+	note := func() int { return rapid.IntRange(0, 2).Draw(t, "note") }
 	point := func() Point {
 		n := rapid.IntRange(-3000, 3000)
 		return Point{float64(n.Draw(t, "x")) / 7, float64(n.Draw(t, "y"))}
@@ -308,6 +309,8 @@ func someEdit(t *rapid.T, s *Study) Edit {
 		func() Edit { return ChangeLaw{rival(), variable("variable"), law()} },
 		func() Edit { return AddAbsent{rival(), Absent{variable("from"), variable("to"), "no way"}} },
 		func() Edit { return RemoveAbsent{rival(), variable("from"), variable("to")} },
+		func() Edit { return AddNote{rival(), Note{point(), name("text")}} }, func() Edit { return ChangeNote{rival(), note(), name("text")} },
+		func() Edit { return MoveNotes{rival(), map[int]Point{note(): point()}} }, func() Edit { return RemoveNotes{rival(), []int{note()}} },
 		func() Edit { return AddPlate{Plate{Name: "farm"}} }, func() Edit { return AddPlate{Plate{Name: "field", Within: "farm"}} },
 		func() Edit { return ChangePlate{"farm", Plate{Name: "holding"}} }, func() Edit { return RemovePlate{"farm"} },
 		func() Edit { return CopyRival{rival(), "copy"} }, func() Edit { return RenameRival{rival(), name("rival")} },
@@ -398,7 +401,7 @@ func same(a, b *Study) error {
 	for i, r := range a.Rivals {
 		if len(r.Layout.At) == 0 && len(b.Rivals[i].Layout.At) == 0 {
 			c := *r
-			c.Layout = b.Rivals[i].Layout
+			c.Layout = &Layout{At: b.Rivals[i].Layout.At, Notes: r.Layout.Notes}
 			a.Rivals[i] = &c
 		}
 	}

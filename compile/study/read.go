@@ -164,6 +164,12 @@ func (r *reader) rival(o *object) {
 		r.lines[a] = o.value.line
 		d.Absent = append(d.Absent, a)
 	})
+	o.list("notes", "a note", func(o *object) {
+		n := &Note{Text: o.needText("text")}
+		n.At.X, n.At.Y, _ = o.pair("at")
+		r.lines[n] = o.value.line
+		rival.Layout.Notes = append(rival.Layout.Notes, n)
+	})
 	r.study.Rivals = append(r.study.Rivals, rival)
 }
 

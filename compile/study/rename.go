@@ -164,7 +164,7 @@ func (l *Layout) renamed(one func(string) string) *Layout {
 	if same {
 		return l
 	}
-	return &Layout{At: at}
+	return &Layout{At: at, Notes: l.Notes}
 }
 
 func (r renamer) law(l *Law, of string) *Law {

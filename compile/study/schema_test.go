@@ -62,6 +62,7 @@ func TestSchemaKnowsTheKeysOfTheReader(t *testing.T) {
 		"rivals arrows":    `{"arrowroot": 1, "rivals": [{"arrows": [{"from": "a", "to": "b", "x": 1}]}]}`,
 		"rivals arcs":      `{"arrowroot": 1, "rivals": [{"arcs": [{"between": ["a", "b"], "x": 1}]}]}`,
 		"rivals absent":    `{"arrowroot": 1, "rivals": [{"absent": [{"from": "a", "to": "b", "x": 1}]}]}`,
+		"rivals notes":     `{"arrowroot": 1, "rivals": [{"notes": [{"text": "a", "x": 1}]}]}`,
 		"questions":        `{"arrowroot": 1, "questions": [{"x": 1}]}`,
 	} {
 		_, err := Read("x", []byte(text))

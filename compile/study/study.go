@@ -100,9 +100,17 @@ type Rival struct {
 }
 
 // A Layout says where nodes stand, in sheet units, by variable ID. A node that
-// is missing here is placed by the automatic layout.
+// is missing here is placed by the automatic layout. Notes are words on the
+// sheet that no law and no reading knows of.
 type Layout struct {
-	At map[string]Point
+	At    map[string]Point
+	Notes []*Note
+}
+
+// A Note is written on a sheet; At is its upper left corner.
+type Note struct {
+	At   Point
+	Text string
 }
 
 // A Point on the sheet: x to the right, y down; the centre of a node.

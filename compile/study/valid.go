@@ -11,7 +11,7 @@ import (
 
 // A Fault is something in a study that must not be. Part points to the part
 // that is at fault: a *Variable, *Plate, *Data, *Rival, *Node, *Arrow, *Arc,
-// *Absent or *Question of the study.
+// *Absent, *Note or *Question of the study.
 type Fault struct {
 	Part   any
 	Reason string
@@ -180,6 +180,10 @@ func (c *checker) checkRivals() {
 		seen[r.Name] = true
 		for id, p := range r.Layout.At {
 			c.insist(finite(p.X, p.Y), r, "%s has no place on the sheet of “%s”", id, r.Name)
+		}
+		for _, n := range r.Layout.Notes {
+			c.insist(strings.TrimSpace(n.Text) != "", n, "a note on the sheet of “%s” says nothing", r.Name)
+			c.insist(finite(n.At.X, n.At.Y), n, "a note has no place on the sheet of “%s”", r.Name)
 		}
 		c.checkDiagram(r)
 	}

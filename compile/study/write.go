@@ -191,6 +191,14 @@ func writeRival(r *Rival) string {
 			return f.String()
 		}, "    "))
 	}
+	if notes := r.Layout.Notes; len(notes) > 0 {
+		f.raw("notes", lines(notes, func(n *Note) string {
+			var f fields
+			f.raw("at", pair(n.At.X, n.At.Y))
+			f.text("text", n.Text)
+			return f.String()
+		}, "    "))
+	}
 	return f.String()
 }
 
