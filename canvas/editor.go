@@ -60,7 +60,7 @@ func NewEditor(post func(func())) *Editor {
 }
 
 // SetInput shows something else. The editor keeps its own size, view,
-// selection, hover, lit path and preview; those fields of in are ignored. A
+// selection, hover, lit path, mark and preview; those fields of in are ignored. A
 // zero palette keeps the one at hand.
 func (e *Editor) SetInput(in scene.Input) {
 	was := e.in
@@ -71,9 +71,9 @@ func (e *Editor) SetInput(in scene.Input) {
 	in.Width, in.Height, in.View = was.Width, was.Height, was.View
 	in.Selected = was.Selected.Kept(in.Study, in.Rival)
 	in.Hover, in.Preview = was.Hover, was.Preview
-	in.LitPath = was.LitPath
+	in.LitPath, in.Mark = was.LitPath, was.Mark
 	if in.Reading != was.Reading {
-		in.LitPath = scene.NoPath
+		in.LitPath, in.Mark = scene.NoPath, nil
 	}
 	if in.Palette == (scene.Palette{}) {
 		in.Palette = was.Palette
@@ -152,6 +152,14 @@ func (e *Editor) Input() scene.Input { return e.in }
 func (e *Editor) Highlight(path int) {
 	if e.in.LitPath != path {
 		e.in.LitPath = path
+		e.changed()
+	}
+}
+
+// Point marks what a list beside the sheet points at; nil marks nothing.
+func (e *Editor) Point(m *scene.Mark) {
+	if e.in.Mark != m {
+		e.in.Mark = m
 		e.changed()
 	}
 }

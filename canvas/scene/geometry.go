@@ -179,7 +179,7 @@ func bodies(in *Input) []*body {
 		b.w, b.h, b.text = nodeSize(b.name, nameFace(b.variable), zoom)
 		b.dots = len(in.Dots[n.Variable]) > 0 && !b.unmeasured && zoom >= dotsBelow
 		words := roles(in, n.Variable)
-		b.square = slices.Contains(words, held) || slices.Contains(words, limits)
+		b.square = slices.Contains(words, held) || slices.Contains(words, limits) || in.Mark.boxes(n.Variable)
 		if len(words) > 0 {
 			b.roles = strings.Join(words, " · ")
 			size := roleSize(zoom)

@@ -32,7 +32,7 @@ func (b *builder) drawNode(n *body) {
 		outline.Stroke, outline.Dash = p.Muted, []float64{5, 4}
 	}
 	b.ring(n)
-	if b.in.Selected.HasNode(n.id) {
+	if b.in.Selected.HasNode(n.id) || b.in.Mark.boxes(n.id) {
 		outline.Stroke = p.Action
 		outline.Width = 2
 	}
@@ -96,6 +96,7 @@ func (b *builder) ring(n *body) {
 	hover := b.in.Hover.Node == n.id && (b.in.Hover.Kind == OnNode || b.in.Hover.Kind == OnEdge)
 	aimed := b.in.Preview.Draw != nil && b.in.Preview.Draw.To == n.id && b.in.Preview.Draw.Refuse == ""
 	switch {
+	case b.markRing(n):
 	case b.in.Selected.HasNode(n.id):
 		b.list.Add(&draw.Shape{Path: grow(4), Fill: draw.Alpha(p.Action, 0.18)})
 	case aimed:

@@ -15,6 +15,10 @@ const mostPaths = 5
 // ones with an amber halo, causal ones with two thin rails, the one picked out
 // alone, closed ones only when picked out.
 func (b *builder) drawPaths() {
+	if !b.in.Mark.empty() {
+		b.drawMarks()
+		return
+	}
 	r := b.in.Reading
 	if r == nil || r.Graph == nil || b.in.HidePaths {
 		return
@@ -50,7 +54,11 @@ func (b *builder) drawLit(p *causal.Path) {
 	case p.Open:
 		b.halo(lines)
 	default:
-		b.closed(lines, p)
+		var stops []string
+		for _, stop := range p.ClosedAt {
+			stops = append(stops, b.in.Reading.Graph.Names[stop.Node])
+		}
+		b.closed(lines, stops)
 	}
 }
 
@@ -104,14 +112,13 @@ func (b *builder) rails(lines []*line) {
 
 // closed draws a closed path in thin grey with a tick across it beside each
 // node that closes it.
-func (b *builder) closed(lines []*line, p *causal.Path) {
+func (b *builder) closed(lines []*line, stops []string) {
 	var bands, ticks draw.Path
 	for _, l := range lines {
 		for _, d := range []float64{4, -4} {
 			bands.Append(draw.Polyline(draw.Offset(l.full(), d)...))
 		}
-		for _, stop := range p.ClosedAt {
-			name := b.in.Reading.Graph.Names[stop.Node]
+		for _, name := range stops {
 			at, towards := l.run.at(0.12), l.run.at(0.13).Sub(l.run.at(0.11)).Unit()
 			if l.to.id == name {
 				at, towards = l.run.at(0.8), l.run.at(0.81).Sub(l.run.at(0.79)).Unit()

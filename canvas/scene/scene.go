@@ -4,8 +4,8 @@
 // nodes.
 //
 // Read scene.go and paint.go (what goes in), geometry.go and curve.go (where
-// things stand), build.go with nodes.go, arrows.go, paths.go, plates.go and
-// preview.go (the picture), hit.go (what the pointer meets), event.go, hand.go
+// things stand), build.go with nodes.go, arrows.go, paths.go, marks.go,
+// plates.go and preview.go (the picture), hit.go (what the pointer meets), event.go, hand.go
 // and keys.go (the tools), pick.go and naming.go (selections and typed names),
 // arrange.go with arrange_layers.go, arrange_order.go, arrange_heights.go and
 // arrange_settle.go (the layout, step by step), fit.go, and palette.go with
@@ -42,6 +42,7 @@ type Input struct {
 	Hover     Target
 	LitPath   int // place in Reading.Paths of the path to mark alone; -1 = none (see NoPath)
 	HidePaths bool
+	Mark      *Mark // what a list beside the sheet points at; nil = nothing
 
 	Focused bool // the sheet has the keyboard
 
