@@ -15,6 +15,19 @@ type Spec struct {
 	Arcs       [][2]int // both ends share an unmeasured cause that nobody named
 	Unmeasured []int    // drawn, but never available for holding or as data
 	Computed   []int    // deterministic functions of their parents
+
+	// Where rows come in groups: the plates, and by node and by arc (in the
+	// order of Arcs) those at whose level it lives, several where it has one
+	// value for each pair of their groups. Nil or an empty entry is the row.
+	Plates    []Plate
+	Levels    [][]int
+	ArcLevels [][]int
+}
+
+// A Plate puts rows into groups.
+type Plate struct {
+	Name   string
+	Within int // the coarser plate in whose groups its own lie; -1 = none
 }
 
 // A Graph is an acyclic directed graph with arcs (an acyclic directed mixed
@@ -29,6 +42,10 @@ type Graph struct {
 	Arrows   [][2]int
 	Arcs     [][2]int
 	Order    []int // a topological order; ties by place in Names
+
+	Plates    []Plate
+	Levels    [][]int // by node: the plates at whose level it lives; an empty entry is the row
+	ArcLevels [][]int // likewise, in the order of Arcs
 }
 
 // A CycleError names the arrows that close a cycle, first node repeated last.
@@ -51,7 +68,10 @@ func New(spec Spec) (*Graph, error) {
 		Parents:  make([][]int, n),
 		Children: make([][]int, n),
 		Siblings: make([][]int, n),
+		Plates:   append([]Plate(nil), spec.Plates...),
+		Levels:   make([][]int, n),
 	}
+	copy(g.Levels, spec.Levels)
 	for i := range g.Measured {
 		g.Measured[i] = true
 	}
@@ -70,13 +90,18 @@ func New(spec Spec) (*Graph, error) {
 			g.Arrows = append(g.Arrows, a)
 		}
 	}
-	for _, a := range spec.Arcs {
+	for i, a := range spec.Arcs {
 		if a[0] == a[1] {
 			panic(fmt.Sprintf("graph: an arc from %s to itself", spec.Names[a[0]]))
 		}
 		if insert(&g.Siblings[a[0]], a[1]) {
 			insert(&g.Siblings[a[1]], a[0])
 			g.Arcs = append(g.Arcs, a)
+			var level []int
+			if i < len(spec.ArcLevels) {
+				level = spec.ArcLevels[i]
+			}
+			g.ArcLevels = append(g.ArcLevels, level)
 		}
 	}
 	if cycle := g.sort(); cycle != nil {
@@ -92,6 +117,16 @@ func (g *Graph) Len() int { return len(g.Names) }
 func (g *Graph) Index(name string) int {
 	for i, s := range g.Names {
 		if s == name {
+			return i
+		}
+	}
+	return -1
+}
+
+// Plate finds a plate by name; -1 if there is none.
+func (g *Graph) Plate(name string) int {
+	for i, p := range g.Plates {
+		if p.Name == name {
 			return i
 		}
 	}

@@ -12,6 +12,8 @@ func (g *Graph) Keep(arrow func(from, to int) bool, arc func(a, b int) bool) *Gr
 		Children: make([][]int, n),
 		Siblings: make([][]int, n),
 		Order:    g.Order, // fewer arrows ask for less
+		Plates:   g.Plates,
+		Levels:   g.Levels,
 	}
 	for _, a := range g.Arrows {
 		if arrow == nil || arrow(a[0], a[1]) {
@@ -20,11 +22,12 @@ func (g *Graph) Keep(arrow func(from, to int) bool, arc func(a, b int) bool) *Gr
 			kept.Arrows = append(kept.Arrows, a)
 		}
 	}
-	for _, a := range g.Arcs {
+	for i, a := range g.Arcs {
 		if arc == nil || arc(a[0], a[1]) {
 			insert(&kept.Siblings[a[0]], a[1])
 			insert(&kept.Siblings[a[1]], a[0])
 			kept.Arcs = append(kept.Arcs, a)
+			kept.ArcLevels = append(kept.ArcLevels, g.ArcLevels[i])
 		}
 	}
 	return kept

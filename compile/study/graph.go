@@ -2,6 +2,7 @@ package study
 
 import (
 	"fmt"
+	"slices"
 
 	"arrowroot/compile/graph"
 )
@@ -13,7 +14,7 @@ func (s *Study) Graph(rival string) (*graph.Graph, error) {
 	if r == nil {
 		return nil, fmt.Errorf("there is no rival “%s”", rival)
 	}
-	spec := graph.Spec{}
+	spec := graph.Spec{Plates: s.platesOf()}
 	index := make(map[string]int, len(r.Diagram.Nodes))
 	for i, n := range r.Diagram.Nodes {
 		index[n.Variable] = i
@@ -28,6 +29,7 @@ func (s *Study) Graph(rival string) (*graph.Graph, error) {
 		if v.Computed != "" {
 			spec.Computed = append(spec.Computed, i)
 		}
+		spec.Levels = append(spec.Levels, s.level(v.Plates))
 	}
 	for _, a := range r.Diagram.Arrows {
 		ends, err := endsOf(index, rival, a.From, a.To)
@@ -42,8 +44,32 @@ func (s *Study) Graph(rival string) (*graph.Graph, error) {
 			return nil, err
 		}
 		spec.Arcs = append(spec.Arcs, ends)
+		spec.ArcLevels = append(spec.ArcLevels, s.level(a.Plates))
 	}
 	return graph.New(spec)
+}
+
+// platesOf are the study's plates by place. A plate within one that is not
+// there stands alone.
+func (s *Study) platesOf() []graph.Plate {
+	var out []graph.Plate
+	for _, p := range s.Plates {
+		out = append(out, graph.Plate{Name: p.Name, Within: slices.IndexFunc(s.Plates, byPlateName(p.Within))})
+	}
+	return out
+}
+
+// level is a level by place; the row if it names a plate that is not there.
+func (s *Study) level(plates []string) []int {
+	var out []int
+	for _, name := range plates {
+		i := slices.IndexFunc(s.Plates, byPlateName(name))
+		if i < 0 {
+			return nil
+		}
+		out = append(out, i)
+	}
+	return out
 }
 
 func endsOf(index map[string]int, rival, a, b string) ([2]int, error) {
