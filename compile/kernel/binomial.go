@@ -23,6 +23,15 @@ func binomialPrepare(y []float64, args [][]float64) []float64 {
 	return out
 }
 
+// chosenWays is the log of the binomial coefficient, from what was prepared if
+// anything was.
+func chosenWays(t, v float64, aux []float64, at int) float64 {
+	if aux != nil {
+		return aux[at]
+	}
+	return logChoose(t, v)
+}
+
 // inTrials reports whether v successes of t trials are possible.
 func inTrials(v, t float64) bool { return v >= 0 && v <= t && v == math.Floor(v) && t == math.Floor(t) }
 
@@ -39,11 +48,7 @@ func binomialBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]
 		if p < 0 || p > 1 {
 			return math.Inf(-1)
 		}
-		if aux != nil {
-			sum += aux[i&ia]
-		} else {
-			sum += logChoose(t, v)
-		}
+		sum += chosenWays(t, v, aux, i&ia)
 		if v > 0 {
 			sum += v * math.Log(p)
 		}
@@ -74,11 +79,7 @@ func binomialLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs
 		if !inTrials(v, t) {
 			return outside(v + t)
 		}
-		if aux != nil {
-			sum += aux[i&ia]
-		} else {
-			sum += logChoose(t, v)
-		}
+		sum += chosenWays(t, v, aux, i&ia)
 		// log p = -softplus(-η) and log(1-p) = -softplus(η); the two differ by
 		// η, so the one with the smaller exponential gives both.
 		small, q := softplusSigmoid(-math.Abs(e))

@@ -29,6 +29,16 @@ func samples() []sample {
 		}
 		return float64(r.IntN(k)), p
 	}
+	cuts := func(r *rand.Rand) (float64, []float64) {
+		y, p := levels(r)
+		p[0] = eta(r)
+		cut := -2.0
+		for i := range p[1:] {
+			cut += positive(r)
+			p[i+1] = cut
+		}
+		return y, p
+	}
 	realArgs := func(k *Density) sample {
 		return sample{k, true, 0, func(r *rand.Rand) (float64, []float64) {
 			return eta(r), []float64{eta(r), positive(r), 8 * positive(r)}[:k.Args]
@@ -46,6 +56,34 @@ func samples() []sample {
 		{BetaLogit, true, 0, func(r *rand.Rand) (float64, []float64) { return unit(r), []float64{eta(r), 10 * positive(r)} }},
 		{Uniform, true, 0, func(r *rand.Rand) (float64, []float64) { return unit(r), []float64{-positive(r), 1 + positive(r)} }},
 		{HalfNormal, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{positive(r)} }},
+		realArgs(Cauchy), realArgs(Laplace), realArgs(Logistic), realArgs(Gumbel),
+		{SkewNormal, true, 0, func(r *rand.Rand) (float64, []float64) { return eta(r), []float64{eta(r), positive(r), 2 * eta(r)} }},
+		{HalfCauchy, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{positive(r)} }},
+		{Weibull, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{positive(r), positive(r)} }},
+		{WeibullLog, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{0.5 * eta(r), positive(r)} }},
+		{InverseGamma, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{positive(r), 5 * positive(r)} }},
+		{Pareto, true, 0, func(r *rand.Rand) (float64, []float64) {
+			m := positive(r)
+			return m * (1.01 + positive(r)), []float64{m, positive(r)}
+		}},
+		{Triangular, true, 0, func(r *rand.Rand) (float64, []float64) {
+			m := unit(r)
+			if r.IntN(2) == 0 {
+				return m - 0.05*(1+r.Float64()), []float64{m - 1 - positive(r), m + positive(r), m}
+			}
+			return m + 0.05*(1+r.Float64()), []float64{m - positive(r), m + 1 + positive(r), m}
+		}},
+		{VonMises, true, 0, func(r *rand.Rand) (float64, []float64) { return eta(r), []float64{eta(r), 8 * positive(r)} }},
+		{Geometric, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{unit(r)} }},
+		{GeometricLogit, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{eta(r)} }},
+		{BetaBinomial, false, 1, func(r *rand.Rand) (float64, []float64) {
+			y := count(r)
+			return y, []float64{unit(r), 10 * positive(r), y + count(r)}
+		}},
+		{BetaBinomialLogit, false, 1, func(r *rand.Rand) (float64, []float64) {
+			y := count(r)
+			return y, []float64{eta(r), 10 * positive(r), y + count(r)}
+		}},
 		{HalfT, true, 0, func(r *rand.Rand) (float64, []float64) { return positive(r), []float64{positive(r), 8 * positive(r)} }},
 		{Bernoulli, false, 0, func(r *rand.Rand) (float64, []float64) { return float64(r.IntN(2)), []float64{unit(r)} }},
 		{BernoulliLogit, false, 0, func(r *rand.Rand) (float64, []float64) { return float64(r.IntN(2)), []float64{eta(r)} }},
@@ -70,16 +108,7 @@ func samples() []sample {
 			}
 			return y, p
 		}},
-		{OrderedLogit, false, 0, func(r *rand.Rand) (float64, []float64) {
-			y, p := levels(r)
-			p[0] = eta(r)
-			cut := -2.0
-			for i := range p[1:] {
-				cut += positive(r)
-				p[i+1] = cut
-			}
-			return y, p
-		}},
+		{OrderedLogit, false, 0, cuts}, {OrderedProbit, false, 0, cuts},
 	}
 }
 
@@ -273,7 +302,9 @@ func TestOutsideSupport(t *testing.T) {
 	beyond := map[*Density][]float64{
 		LogNormal: {0, -1}, LogNormalLog: {0, -1}, Gamma: {0, -1}, GammaLog: {0, -1},
 		Exponential: {-1}, ExponentialLog: {-1}, Beta: {0, 1, -1, 2}, BetaLogit: {0, 1, -1, 2},
-		Uniform: {-1e9, 1e9}, HalfNormal: {-1}, HalfT: {-1},
+		Uniform: {-1e9, 1e9}, HalfNormal: {-1}, HalfT: {-1}, HalfCauchy: {-1}, Weibull: {0, -1}, WeibullLog: {0, -1}, InverseGamma: {0, -1},
+		Pareto: {0, -1}, Triangular: {-1e9, 1e9}, Geometric: {-1, 0.5, math.Inf(1)}, GeometricLogit: {-1, 0.5, math.Inf(1)},
+		BetaBinomial: {-1, 0.5, 1e6}, BetaBinomialLogit: {-1, 0.5, 1e6}, OrderedProbit: {-1, 0.5, 9},
 		Bernoulli: {-1, 0.5, 2}, BernoulliLogit: {-1, 0.5, 2}, Binomial: {-1, 0.5, 1e6}, BinomialLogit: {-1, 0.5, 1e6},
 		Poisson: {-1, 0.5, math.Inf(1)}, PoissonLog: {-1, 0.5, math.Inf(1)},
 		NegativeBinomial: {-1, 0.5, math.Inf(1)}, NegativeBinomialLog: {-1, 0.5, math.Inf(1)},
@@ -292,7 +323,7 @@ func TestOutsideSupport(t *testing.T) {
 		for i := range args {
 			broken := append([]float64(nil), args...)
 			broken[i] = math.NaN()
-			used := s.kernel.Args >= 0 || s.kernel == CategoricalSoftmax || i == 0 && s.kernel == OrderedLogit || float64(i) == y
+			used := s.kernel.Args >= 0 || s.kernel == CategoricalSoftmax || i == 0 && (s.kernel == OrderedLogit || s.kernel == OrderedProbit) || float64(i) == y
 			if got := s.at(y, broken); used && got == got {
 				t.Errorf("log density with argument %d NaN is %v", i, got)
 			}
@@ -310,6 +341,11 @@ func TestOutsideSupport(t *testing.T) {
 		{Uniform, 0, []float64{1, -1}}, {HalfNormal, 1, []float64{-1}}, {HalfT, 1, []float64{-1, 3}}, {HalfT, 1, []float64{1, -3}},
 		{Bernoulli, 1, []float64{1.1}}, {Bernoulli, 0, []float64{-0.1}}, {Binomial, 1, []float64{1.1, 2}}, {Poisson, 1, []float64{-1}},
 		{NegativeBinomial, 1, []float64{-1, 1}}, {NegativeBinomial, 1, []float64{1, -1}}, {NegativeBinomialLog, 1, []float64{1, -1}},
+		{Cauchy, 0, []float64{0, 0}}, {Laplace, 0, []float64{0, -1}}, {Logistic, 0, []float64{0, 0}}, {Gumbel, 0, []float64{0, -1}}, {SkewNormal, 0, []float64{0, 0, 1}},
+		{HalfCauchy, 1, []float64{0}}, {Weibull, 1, []float64{0, 1}}, {Weibull, 1, []float64{1, 0}}, {WeibullLog, 1, []float64{0, 0}}, {InverseGamma, 1, []float64{0, 1}},
+		{InverseGamma, 1, []float64{1, -1}}, {Pareto, 1, []float64{2, 1}}, {Pareto, 1, []float64{0, 1}}, {Pareto, 1, []float64{1, 0}}, {Triangular, 0, []float64{-1, 1, 2}},
+		{VonMises, 0, []float64{0, -1}}, {Geometric, 1, []float64{1.1}}, {BetaBinomial, 1, []float64{1.1, 1, 2}}, {BetaBinomial, 1, []float64{0.5, 0, 2}},
+		{BetaBinomialLogit, 1, []float64{0, -1, 2}}, {OrderedProbit, 1, []float64{0, 1, 1}},
 		{Categorical, 0, []float64{1.2, -0.2}}, {OrderedLogit, 1, []float64{0, 1, 1}}, {OrderedLogit, 1, []float64{0, 1, 0.5}},
 	} {
 		if got := (sample{kernel: c.k}).at(c.y, c.a); !math.IsInf(got, -1) {
@@ -332,6 +368,8 @@ func TestLinkTails(t *testing.T) {
 		ExponentialLog: {[]float64{0, 1e-300, 1, 1e300}, [][]float64{nil}}, BetaLogit: {[]float64{1e-10, 0.5, 1 - 1e-10}, [][]float64{{2}, {1e-3}, {1e6}}},
 		BernoulliLogit: {[]float64{0, 1}, [][]float64{nil}}, BinomialLogit: {[]float64{0, 3, 7}, [][]float64{{7}}},
 		PoissonLog: {[]float64{0, 1, 1e6}, [][]float64{nil}}, NegativeBinomialLog: {[]float64{0, 1, 1e6}, [][]float64{{1}, {1e-6}, {1e12}}},
+		WeibullLog: {[]float64{1e-300, 1, 1e300}, [][]float64{{2}, {1e-3}}}, GeometricLogit: {[]float64{0, 1, 1e6}, [][]float64{nil}},
+		BetaBinomialLogit: {[]float64{0, 3, 7}, [][]float64{{2, 7}, {1e-6, 7}, {1e12, 7}}}, OrderedProbit: {[]float64{0, 1, 2}, [][]float64{{-1, 1}, {0, 1e-9}, {-30, 30}}},
 		CategoricalSoftmax: {[]float64{0, 1, 2}, [][]float64{{0, 0}, {1e300, -1e300}, {700, -700}}}, OrderedLogit: {[]float64{0, 1, 2}, [][]float64{{-1, 1}, {0, 1e-9}, {-800, 800}}},
 	}
 	for k, c := range linked {
@@ -371,19 +409,29 @@ func TestLinkedIsNatural(t *testing.T) {
 		}
 		return out
 	}
-	cumulative := func(a []float64) []float64 {
-		out, below := make([]float64, len(a)), 0.0
-		for j, c := range a[1:] {
-			p := 1 / (1 + math.Exp(a[0]-c))
-			out[j], below = p-below, p
+	logistic := func(x float64) float64 { return 1 / (1 + math.Exp(-x)) }
+	normalCDF := func(x float64) float64 { return 0.5 * math.Erfc(-x/math.Sqrt2) }
+	cumulative := func(inverse func(float64) float64) func([]float64) []float64 {
+		return func(a []float64) []float64 {
+			out, lo := make([]float64, len(a)), math.Inf(-1)
+			for j := range a {
+				hi := math.Inf(1)
+				if j+1 < len(a) {
+					hi = a[j+1] - a[0]
+				}
+				if lo > 0 { // in the tail where the difference keeps its digits
+					out[j] = inverse(-lo) - inverse(-hi)
+				} else {
+					out[j] = inverse(hi) - inverse(lo)
+				}
+				lo = hi
+			}
+			return out
 		}
-		out[len(a)-1] = 1 - below
-		return out
 	}
 	first := func(f func(float64) float64) func([]float64) []float64 {
 		return func(a []float64) []float64 { return append([]float64{f(a[0])}, a[1:]...) }
 	}
-	logistic := func(x float64) float64 { return 1 / (1 + math.Exp(-x)) }
 	pairs := map[*Density]struct {
 		natural *Density
 		inverse func([]float64) []float64
@@ -391,7 +439,8 @@ func TestLinkedIsNatural(t *testing.T) {
 		LogNormalLog: {LogNormal, first(math.Exp)}, GammaLog: {Gamma, first(math.Exp)}, ExponentialLog: {Exponential, first(math.Exp)},
 		BetaLogit: {Beta, first(logistic)}, BernoulliLogit: {Bernoulli, first(logistic)}, BinomialLogit: {Binomial, first(logistic)},
 		PoissonLog: {Poisson, first(math.Exp)}, NegativeBinomialLog: {NegativeBinomial, first(math.Exp)},
-		CategoricalSoftmax: {Categorical, softmax}, OrderedLogit: {Ordered, cumulative},
+		CategoricalSoftmax: {Categorical, softmax}, OrderedLogit: {Ordered, cumulative(logistic)}, WeibullLog: {Weibull, first(math.Exp)},
+		GeometricLogit: {Geometric, first(logistic)}, BetaBinomialLogit: {BetaBinomial, first(logistic)}, OrderedProbit: {Ordered, cumulative(normalCDF)},
 	}
 	eachSample(t, func(t *testing.T, s sample, r *rand.Rand) {
 		pair, ok := pairs[s.kernel]

@@ -6,7 +6,8 @@
 // without a check fails.
 //
 // Read kernel.go for the contract, densities.go for the list, then the file
-// of one family; columns.go has the shape that most likelihoods have. Scalar
+// of one family (those with a location and a scale share located.go);
+// columns.go has the shape that most likelihoods have. Scalar
 // functions stand in special.go, gamma.go, gammaratio.go and normalcdf.go;
 // exp.go, log.go and softplus.go hold the fast ones.
 package kernel

@@ -102,6 +102,39 @@ func referenceCases() []referenceCase {
 	return []referenceCase{
 		direct("normal", Normal, "mu", "sigma"),
 		direct("Student t", StudentT, "mu", "sigma", "nu"),
+		direct("cauchy", Cauchy, "mu", "scale"),
+		direct("laplace", Laplace, "mu", "b"),
+		direct("logistic", Logistic, "mu", "s"),
+		direct("gumbel", Gumbel, "mu", "beta"),
+		direct("skew normal", SkewNormal, "xi", "omega", "alpha"),
+		direct("half-Cauchy", HalfCauchy, "scale"),
+		direct("weibull", Weibull, "scale", "shape"),
+		{dist: "weibull", kernel: WeibullLog,
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{math.Log(p["scale"]), p["shape"]} },
+			grad: func(p named, d []float64) map[string][]float64 {
+				return map[string][]float64{"scale": one(d[0] / p["scale"]), "shape": d[1:]}
+			}},
+		direct("inverse gamma", InverseGamma, "scale", "shape"),
+		direct("pareto", Pareto, "xmin", "alpha"),
+		direct("von Mises", VonMises, "mu", "kappa"),
+		direct("triangular", Triangular, "low", "high", "mode"),
+		direct("geometric", Geometric, "p"),
+		{dist: "geometric", kernel: GeometricLogit,
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{Logit(p["p"])} },
+			grad: func(p named, d []float64) map[string][]float64 {
+				return map[string][]float64{"p": one(d[0] / p["p"] / (1 - p["p"]))}
+			}},
+		{dist: "beta-binomial", kernel: BetaBinomial, // κ = a+b, mean = a/κ
+			args: func(p named, _ map[string]numbers) []float64 {
+				return []float64{p["a"] / (p["a"] + p["b"]), p["a"] + p["b"], p["n"]}
+			},
+			grad: byShapes(func(m float64, d []float64) float64 { return d[0] })},
+		{dist: "beta-binomial", kernel: BetaBinomialLogit,
+			args: func(p named, _ map[string]numbers) []float64 {
+				return []float64{math.Log(p["a"] / p["b"]), p["a"] + p["b"], p["n"]}
+			},
+			grad: byShapes(func(m float64, d []float64) float64 { return d[0] / m / (1 - m) })},
+		vector("ordered probit", OrderedProbit, "eta", "c", 0),
 		{dist: "cauchy", kernel: StudentT, // ν = 1
 			args: func(p named, _ map[string]numbers) []float64 { return []float64{p["mu"], p["scale"], 1} },
 			grad: func(_ named, d []float64) map[string][]float64 {
@@ -144,10 +177,7 @@ func referenceCases() []referenceCase {
 			args: func(p named, _ map[string]numbers) []float64 {
 				return []float64{p["a"] / (p["a"] + p["b"]), p["a"] + p["b"]}
 			},
-			grad: func(p named, d []float64) map[string][]float64 {
-				k := p["a"] + p["b"]
-				return map[string][]float64{"a": one(d[1] + d[0]*p["b"]/k/k), "b": one(d[1] - d[0]*p["a"]/k/k)}
-			}},
+			grad: byShapes(func(_ float64, d []float64) float64 { return d[0] })},
 		direct("beta by mean and precision", Beta, "mu", "phi"),
 		{dist: "beta by mean and precision", kernel: BetaLogit,
 			args: func(p named, _ map[string]numbers) []float64 { return []float64{Logit(p["mu"]), p["phi"]} },
@@ -186,11 +216,20 @@ func referenceCases() []referenceCase {
 	}
 }
 
+// byShapes takes derivatives by mean and precision to those by the two shapes of
+// a beta; toMean gives the one in the mean.
+func byShapes(toMean func(m float64, d []float64) float64) func(p named, d []float64) map[string][]float64 {
+	return func(p named, d []float64) map[string][]float64 {
+		k := p["a"] + p["b"]
+		dm := toMean(p["a"]/k, d)
+		return map[string][]float64{"a": one(d[1] + dm*p["b"]/k/k), "b": one(d[1] - dm*p["a"]/k/k)}
+	}
+}
+
 // unread are distributions of the reference that no kernel expresses.
 var unread = map[string]bool{
-	"laplace": true, "logistic": true, "inverse gamma": true, "weibull": true, "gumbel": true, "pareto": true,
-	"von Mises": true, "skew normal": true, "truncated normal": true, "normal truncated below at zero": true,
-	"censored normal": true, "beta-binomial": true, "geometric": true, "zero-inflated Poisson": true,
+	"truncated normal": true, "normal truncated below at zero": true,
+	"censored normal": true, "zero-inflated Poisson": true,
 	"discrete uniform": true, "multinomial": true, "dirichlet": true, "multivariate normal": true,
 	"LKJ correlation": true, "LKJ correlation, Cholesky factor": true,
 }
@@ -228,6 +267,9 @@ func slack(pt referencePoint, of string) float64 {
 func TestPublishedPoints(t *testing.T) {
 	var points []referencePoint
 	readReference(t, "logpdf.json", &points)
+	var further struct{ Points []referencePoint }
+	readReference(t, "further.json", &further)
+	points = append(points, further.Points...)
 	used, seen := map[string]bool{}, map[*Density]bool{}
 	scratch := make([]float64, 4*BlockRows)
 	for _, c := range referenceCases() {
@@ -301,6 +343,15 @@ func TestSpecialFunctions(t *testing.T) {
 		}
 		if !near(d, r.Digamma) && math.Abs(d-r.Digamma) > 4e-16 {
 			t.Errorf("ψ(%v) = %.17g, want %.17g", r.X, d, r.Digamma)
+		}
+	}
+	var further struct {
+		Normal []struct{ X, V, D float64 } `json:"normal_log_cdf"`
+	}
+	readReference(t, "further.json", &further)
+	for _, r := range further.Normal {
+		if v, d := LogNormalCDF(r.X); !near(v, r.V) || !near(d, r.D) {
+			t.Errorf("log Φ(%v) = %.17g with slope %.17g, want %.17g and %.17g", r.X, v, d, r.V, r.D)
 		}
 	}
 	for _, r := range ref.Plus {
