@@ -1,11 +1,10 @@
 package session
 
 import (
+	"context"
 	"reflect"
 	"time"
 
-	"arrowroot/app/fit"
-	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
@@ -20,9 +19,8 @@ type derived struct {
 
 	graph      *graph.Graph
 	graphError error
-	reading    *causal.Reading
-	readFor    *study.Question
-	readOf     *graph.Graph
+	reader     *reader // of the present sources; nil without a graph
+	readOf     readSources
 
 	model       *model.Model
 	problems    []model.Problem
@@ -31,7 +29,7 @@ type derived struct {
 	modelOf     modelSources
 	checking    bool // the model of the present document is on its way
 
-	readRev, modelRev int // of the newest work sent out
+	modelRev int // of the newest work sent out
 }
 
 // modelSources is everything that a checked model is made from.
@@ -42,7 +40,7 @@ type modelSources struct {
 	table    *table.Table
 }
 
-// patience is how long an edit waits for what it changes before showing
+// patience is how long an edit waits for all that it changes before showing
 // without it: shorter than a hand can feel.
 const patience = 40 * time.Millisecond
 
@@ -50,41 +48,39 @@ func (s *Session) derive() {
 	d := &s.derived
 	r := s.study.Rival(s.rival)
 	if r == nil {
-		*d = derived{readRev: d.readRev + 1, modelRev: d.modelRev + 1}
+		d.reader.stop()
+		*d = derived{modelRev: d.modelRev + 1}
 		return
 	}
 	if d.diagram != r.Diagram || !samePointers(d.variables, s.study.Variables) {
 		d.diagram, d.variables = r.Diagram, s.study.Variables
 		d.graph, d.graphError = s.study.Graph(s.rival)
 	}
+	late, cancel := context.WithTimeout(context.Background(), patience)
+	defer cancel()
 	s.deriveReading()
-	s.deriveModel()
+	s.deriveModel(late)
+	if r := d.reader; r != nil && r.now == nil {
+		select {
+		case <-r.first:
+		case <-late.Done():
+		}
+		r.take()
+	}
 }
 
+// deriveReading sends out a reading of the present sources.
 func (s *Session) deriveReading() {
 	d := &s.derived
-	q := s.asked()
-	if d.graph == nil {
-		d.reading = nil
-		d.readRev++
+	sources := readSources{diagram: d.diagram, study: readStudy(s.study, d.readOf.study), question: s.asked(), table: s.openTable()}
+	if d.reader != nil && sources == d.readOf {
 		return
 	}
-	if d.readOf == d.graph && d.readFor == q {
-		return
+	d.reader.stop()
+	d.reader, d.readOf = nil, sources
+	if d.graph != nil {
+		d.reader = s.look(s.study, s.rival, sources.question, sources.table, s.show)
 	}
-	d.readOf, d.readFor = d.graph, q
-	d.reading = nil
-	d.readRev++
-	rev, g := d.readRev, d.graph
-	out := make(chan *causal.Reading, 1)
-	go func() { out <- fit.Read(g, q, 0, 0) }()
-	wait(s, out, func(reading *causal.Reading) bool {
-		if s.derived.readRev == rev {
-			s.derived.reading = reading
-			return true
-		}
-		return false
-	})
 }
 
 // checked is what a background check of the model gives.
@@ -95,14 +91,11 @@ type checked struct {
 	fingerprint string
 }
 
-func (s *Session) deriveModel() {
+func (s *Session) deriveModel(late context.Context) {
 	d := &s.derived
-	var t *table.Table
-	if l := s.table(); l != nil {
-		t = l.table
-		if t == nil && l.err == nil {
-			return // still being read: derive comes again
-		}
+	t := s.openTable()
+	if l := s.table(); l != nil && t == nil && l.err == nil {
+		return // still being read: derive comes again
 	}
 	sources := modelSources{diagram: d.diagram, study: modelStudy(s.study, s.rival, d.modelOf.study), question: s.asked(), table: t}
 	if sources == d.modelOf {
@@ -126,7 +119,7 @@ func (s *Session) deriveModel() {
 		}
 		out <- c
 	}()
-	wait(s, out, func(c checked) bool {
+	wait(s, late, out, func(c checked) bool {
 		if s.derived.modelRev != rev {
 			return false
 		}
@@ -135,6 +128,14 @@ func (s *Session) deriveModel() {
 		s.derived.statement, s.derived.fingerprint = c.statement, c.fingerprint
 		return true
 	})
+}
+
+// openTable is the present rival's table; nil while there is none.
+func (s *Session) openTable() *table.Table {
+	if l := s.table(); l != nil {
+		return l.table
+	}
+	return nil
 }
 
 // modelStudy gives last where doc differs from it only in what no model reads:
@@ -153,13 +154,11 @@ func modelStudy(doc *study.Study, rival string, last *study.Study) *study.Study 
 // wait gives quick work a moment to arrive before the view is shown; slow work
 // comes through post and shows itself. keep stores the value and reports
 // whether it is still wanted.
-func wait[T any](s *Session, out <-chan T, keep func(T) bool) {
-	timer := time.NewTimer(patience)
-	defer timer.Stop()
+func wait[T any](s *Session, late context.Context, out <-chan T, keep func(T) bool) {
 	select {
 	case v := <-out:
 		keep(v)
-	case <-timer.C:
+	case <-late.Done():
 		go func() {
 			v := <-out
 			s.post(func() {

@@ -4,13 +4,15 @@
 // through post.
 //
 // Read session.go (edits and history), derive.go (what follows from the
-// document), run.go (fits), files.go (open, save, recover).
+// document), reading.go (what
+// follows from the arrows alone), run.go (fits), files.go (open, save, recover).
 package session
 
 import (
 	"context"
 	"path/filepath"
 
+	"arrowroot/app/findings"
 	"arrowroot/app/fit"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
@@ -35,8 +37,10 @@ type View struct {
 
 	Graph      *graph.Graph // nil with GraphError
 	GraphError error
-	Reading    *causal.Reading // nil while it is being computed
-	Table      *table.Table    // of the present rival; nil = none, or still being read
+	Reading    *causal.Reading    // nil while it is being computed
+	Findings   *findings.Findings // all that has been read so far; nil as Reading
+	Considered string             // label of the edit that a hand is about to make: Graph, Reading and Findings are as after it; "" = none
+	Table      *table.Table       // of the present rival; nil = none, or still being read
 	DataError  error
 	Model      *model.Model // nil where problems do not allow one
 	Problems   []model.Problem
@@ -69,6 +73,7 @@ type Session struct {
 	question int
 
 	derived  derived
+	consider *considered
 	tables   map[string]*loaded
 	results  map[string]*fit.Result
 	running  context.CancelFunc
@@ -101,6 +106,8 @@ func New(post func(func())) *Session {
 // Close stops what still goes on behind the window.
 func (s *Session) Close() {
 	s.Cancel()
+	s.derived.reader.stop()
+	s.consider.drop()
 	s.recovery.stop()
 }
 
@@ -211,6 +218,8 @@ func (s *Session) become(doc *study.Study) {
 	}
 	s.question = min(max(s.question, 0), max(len(doc.Questions)-1, 0))
 	s.recovery.note(s)
+	s.consider.drop()
+	s.consider = nil
 	s.derive()
 	s.show()
 }
@@ -229,11 +238,12 @@ func (s *Session) show() {
 	v := &View{
 		Rev: s.rev, Study: s.study, Path: s.path, Dirty: s.study != s.saved,
 		Rival: s.study.Rival(s.rival), Question: s.asked(), QuestionAt: s.question,
-		Graph: s.derived.graph, GraphError: s.derived.graphError, Reading: s.derived.reading,
+		Graph: s.derived.graph, GraphError: s.derived.graphError,
 		Model: s.derived.model, Problems: s.derived.problems, Statement: s.derived.statement,
 		Running: s.running != nil, Progress: s.progress, FitError: s.fitError,
 		Results: s.results, Recovered: s.recovered, Notice: s.notice,
 	}
+	s.showReading(v)
 	if t := s.table(); t != nil {
 		v.Table, v.DataError = t.table, t.err
 	}
