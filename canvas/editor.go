@@ -8,6 +8,8 @@
 package canvas
 
 import (
+	"reflect"
+
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/widget"
 
@@ -32,6 +34,7 @@ type Editor struct {
 	OnView   func(scene.View)                           // panned or zoomed
 	OnNaming func()                                     // the entry for a name has opened
 	OnTool   func(scene.Tool)                           // Escape went back to the select tool
+	OnDraft  func(study.Edit)                           // an arrow in the hand has come over a variable: what letting go would draw; nil = no longer
 	OnRefuse func(reason string)                        // a gesture or a name that cannot be, and why
 
 	in      scene.Input
@@ -45,6 +48,7 @@ type Editor struct {
 	focused bool
 	post    func(func())
 	press   pressed
+	drafted study.Edit // what OnDraft was last told
 }
 
 // NewEditor makes an empty editor. post runs a function on the window's
@@ -228,6 +232,13 @@ func (e *Editor) StartNaming() {
 // StartRename opens the name entry over a node.
 func (e *Editor) StartRename(variable string) { e.name(scene.Naming{Variable: variable}) }
 
+// StartNote opens a note of the rival for its words.
+func (e *Editor) StartNote(note int) {
+	if n := scene.NoteNaming(&e.in, note); n != nil {
+		e.name(*n)
+	}
+}
+
 // changed asks for a new picture.
 func (e *Editor) changed() { e.surface.changed() }
 
@@ -283,6 +294,20 @@ func (e *Editor) handle(event scene.Event) {
 	}
 	if a.Command != "" && e.OnKey != nil {
 		e.OnKey(a.Command)
+	}
+	e.draft()
+}
+
+// draft tells what letting go of the arrow in the hand would draw, once for
+// every variable that it comes over.
+func (e *Editor) draft() {
+	var now study.Edit
+	if e.in.Rival != nil {
+		now = e.in.Preview.Draw.Edit(e.in.Rival.Name)
+	}
+	if e.OnDraft != nil && !reflect.DeepEqual(now, e.drafted) {
+		e.drafted = now
+		e.OnDraft(now)
 	}
 }
 

@@ -20,6 +20,7 @@ type Hand struct {
 	shift   bool
 	view    View                   // when a pan began
 	places  map[string]study.Point // of the nodes that move, when the move began
+	papers  map[int]study.Point    // of the notes that move with them
 	before  Selection              // when a marquee began
 	link    Draft
 }
@@ -57,11 +58,11 @@ func (h *Hand) Cursor(over Target) Cursor {
 	switch {
 	case h.grip == gripPan || h.grip == gripMove:
 		return GrabCursor
-	case h.grip == gripLink || h.tool == VariableTool || h.tool == PlateTool:
+	case h.grip == gripLink || h.tool == VariableTool || h.tool == PlateTool || h.tool == NoteTool && over.Kind != OnNote:
 		return CrossCursor
 	case over.Kind == OnEdge, over.Kind == OnNode && h.tool != SelectTool:
 		return CrossCursor
-	case over.Kind != Nothing && h.tool == SelectTool:
+	case over.Kind != Nothing && (h.tool == SelectTool || over.Kind == OnNote):
 		return GrabCursor
 	}
 	return PlainCursor
@@ -124,6 +125,10 @@ func (h *Hand) press(in *Input, m *Map, e Event) Answer {
 		if h.target.Node == "" {
 			return Answer{}
 		}
+	case NoteTool:
+		if h.target.Kind != OnNote {
+			return Answer{}
+		}
 	}
 	return h.pick(in)
 }
@@ -146,9 +151,14 @@ func (h *Hand) pick(in *Input) Answer {
 	case !s.covers(t):
 		s = only(t)
 	}
-	if t.Kind == OnNode {
+	if t.Kind == OnNode || t.Kind == OnNote {
 		h.grip = gripMove
-		h.places = make(map[string]study.Point)
+		h.places, h.papers = make(map[string]study.Point), make(map[int]study.Point)
+		for i, p := range in.notePlaces() {
+			if s.HasNote(i) {
+				h.papers[i] = p
+			}
+		}
 		places := in.layout()
 		for _, id := range s.Nodes {
 			if p, ok := places[id]; ok {
@@ -182,7 +192,8 @@ func (h *Hand) move(in *Input, m *Map, e Event) Answer {
 		v.Pan = v.Pan.Add(e.At.Sub(h.start))
 		return Answer{View: &v}
 	case gripMove:
-		return Answer{Preview: &Preview{Moved: h.moved(in, e)}}
+		nodes, notes := h.moved(in, e)
+		return Answer{Preview: &Preview{Moved: nodes, MovedNotes: notes}}
 	case gripLink:
 		h.aim(in, m.nodeAt(e.At), in.View.In(e.At))
 		d := h.link
@@ -200,6 +211,11 @@ func (h *Hand) move(in *Input, m *Map, e Event) Answer {
 					s.Nodes = append(slices.Clone(s.Nodes), id)
 				}
 			}
+			for _, i := range m.NotesWithin(box) {
+				if !s.HasNote(i) {
+					s.Notes = append(slices.Clone(s.Notes), i)
+				}
+			}
 			a.Select = &s
 		}
 		return a
@@ -207,22 +223,39 @@ func (h *Hand) move(in *Input, m *Map, e Event) Answer {
 	return Answer{}
 }
 
-// moved is where the nodes in the hand stand: the one that was pressed snaps
-// to the grid, the others keep their distance from it. Ctrl lets go of the grid.
-func (h *Hand) moved(in *Input, e Event) map[string]study.Point {
+// moved is where the nodes and notes in the hand stand: the one that was
+// pressed snaps to the grid, the others keep their distance from it. Ctrl lets
+// go of the grid.
+func (h *Hand) moved(in *Input, e Event) (to map[string]study.Point, notes map[int]study.Point) {
 	z := in.View.Scale()
 	dx, dy := (e.At.X-h.start.X)/z, (e.At.Y-h.start.Y)/z
-	if lead, ok := h.places[h.target.Node]; ok && !e.Ctrl {
+	if lead, ok := h.lead(); ok && !e.Ctrl {
 		dx, dy = snap(lead.X+dx)-lead.X, snap(lead.Y+dy)-lead.Y
 	}
-	to := make(map[string]study.Point, len(h.places))
+	to, notes = make(map[string]study.Point, len(h.places)), make(map[int]study.Point, len(h.papers))
+	now := in.notePlaces()
+	for i, p := range h.papers {
+		if _, there := now[i]; there {
+			notes[i] = study.Point{X: p.X + dx, Y: p.Y + dy}
+		}
+	}
 	for id, p := range h.places {
 		if in.Rival == nil || in.Rival.Diagram.Node(id) == nil {
 			continue // undone under the hand
 		}
 		to[id] = study.Point{X: p.X + dx, Y: p.Y + dy}
 	}
-	return to
+	return to, notes
+}
+
+// lead is where the thing that was pressed stood.
+func (h *Hand) lead() (p study.Point, ok bool) {
+	if h.target.Kind == OnNote {
+		p, ok = h.papers[h.target.Note]
+		return p, ok
+	}
+	p, ok = h.places[h.target.Node]
+	return p, ok
 }
 
 func snap(v float64) float64 { return math.Round(v/unit) * unit }
@@ -253,11 +286,22 @@ func (h *Hand) aim(in *Input, to string, end study.Point) {
 }
 
 // linkEdit draws the arrow or arc in the hand.
-func (h *Hand) linkEdit(in *Input) study.Edit {
-	if h.link.Arc {
-		return study.AddArc{Rival: in.Rival.Name, Arc: study.Arc{A: h.link.From, B: h.link.To}}
+func (h *Hand) linkEdit(in *Input) study.Edit { return h.link.draw(in.Rival.Name) }
+
+func (d *Draft) draw(rival string) study.Edit {
+	if d.Arc {
+		return study.AddArc{Rival: rival, Arc: study.Arc{A: d.From, B: d.To}}
 	}
-	return study.AddArrow{Rival: in.Rival.Name, Arrow: study.Arrow{From: h.link.From, To: h.link.To}}
+	return study.AddArrow{Rival: rival, Arrow: study.Arrow{From: d.From, To: d.To}}
+}
+
+// Edit is what letting go of the draft here would draw between two variables;
+// nil if it would draw nothing.
+func (d *Draft) Edit(rival string) study.Edit {
+	if d == nil || d.To == "" || d.Refuse != "" {
+		return nil
+	}
+	return d.draw(rival)
 }
 
 func (h *Hand) release(in *Input, m *Map, e Event) Answer {
@@ -265,6 +309,9 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 	if g == gripNone || g == gripKeys {
 		if h.tool == VariableTool && e.Button == Primary && h.target.Kind == Nothing && in.Rival != nil {
 			return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
+		}
+		if h.tool == NoteTool && e.Button == Primary && h.target.Kind != OnNote && in.Rival != nil {
+			return Answer{Name: &Naming{At: snapped(in.View.In(e.At)), Note: true, Which: -1}}
 		}
 		return Answer{}
 	}
@@ -275,11 +322,7 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 	none := &Preview{}
 	switch g {
 	case gripMove:
-		to := h.moved(in, e)
-		if len(to) == 0 || to[h.target.Node] == h.places[h.target.Node] {
-			return Answer{Preview: none}
-		}
-		return Answer{Preview: none, Edit: nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})}
+		return Answer{Preview: none, Edit: h.moveEdit(in, e)}
 	case gripLink:
 		a := h.connect(in)
 		a.Preview = none
@@ -294,12 +337,34 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 	return Answer{Preview: none}
 }
 
+// moveEdit puts what is in the hand where it was let go; nil if that is where
+// it was.
+func (h *Hand) moveEdit(in *Input, e Event) study.Edit {
+	nodes, notes := h.moved(in, e)
+	var edits []study.Edit
+	if len(nodes) > 0 {
+		edits = append(edits, nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: nodes}))
+	}
+	if len(notes) > 0 {
+		edits = append(edits, study.MoveNotes{Rival: in.Rival.Name, To: notes})
+	}
+	lead, _ := h.lead()
+	switch {
+	case len(edits) == 0 || h.target.Kind == OnNote && notes[h.target.Note] == lead || h.target.Kind == OnNode && nodes[h.target.Node] == lead:
+		return nil
+	case len(edits) == 1:
+		return edits[0]
+	}
+	return study.Several{Name: "Move the selection", Edits: edits}
+}
+
 // click is a press that never became a drag.
 func (h *Hand) click(in *Input) Answer {
 	t := h.target
 	s := only(t)
 	switch {
-	case t.Kind == OnNode && h.tool == SelectTool && (h.shift || !in.Selected.HasNode(t.Node) || len(in.Selected.Nodes) == 1):
+	case t.Kind == OnNode && h.tool == SelectTool && (h.shift || !in.Selected.HasNode(t.Node) || len(in.Selected.Nodes) == 1),
+		t.Kind == OnNote && (h.shift || !in.Selected.HasNote(t.Note)):
 		return Answer{} // done on press
 	case h.shift && t.Kind == Nothing:
 		return Answer{}
@@ -344,12 +409,14 @@ func (h *Hand) double(in *Input, m *Map, e Event) Answer {
 	t := m.Hit(e.At)
 	switch t.Kind {
 	case Nothing:
-		if in.Rival == nil || h.tool == PlateTool {
+		if in.Rival == nil || h.tool == PlateTool || h.tool == NoteTool {
 			return Answer{}
 		}
 		return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
 	case OnNode, OnEdge:
 		return Answer{Name: &Naming{Variable: t.Node}}
+	case OnNote:
+		return Answer{Name: NoteNaming(in, t.Note)}
 	}
 	return Answer{Open: &t}
 }
