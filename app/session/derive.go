@@ -21,6 +21,7 @@ type derived struct {
 	graphError error
 	reader     *reader // of the present sources; nil without a graph
 	readOf     readSources
+	tester     *tester // of what it found; nil without data
 
 	model       *model.Model
 	problems    []model.Problem
@@ -49,6 +50,7 @@ func (s *Session) derive() {
 	r := s.study.Rival(s.rival)
 	if r == nil {
 		d.reader.stop()
+		d.tester.stop()
 		*d = derived{modelRev: d.modelRev + 1}
 		return
 	}
@@ -67,6 +69,13 @@ func (s *Session) derive() {
 		}
 		r.take()
 	}
+	s.deriveEvidence()
+}
+
+// readMore shows that the reading has come further.
+func (s *Session) readMore() {
+	s.deriveEvidence()
+	s.show()
 }
 
 // deriveReading sends out a reading of the present sources.
@@ -79,7 +88,7 @@ func (s *Session) deriveReading() {
 	d.reader.stop()
 	d.reader, d.readOf = nil, sources
 	if d.graph != nil {
-		d.reader = s.look(s.study, s.rival, sources.question, sources.table, s.show)
+		d.reader = s.look(s.study, s.rival, sources.question, sources.table, s.readMore)
 	}
 }
 

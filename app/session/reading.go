@@ -182,6 +182,9 @@ func (s *Session) showReading(v *View) {
 	if c := s.consider; c != nil && c.reader.now != nil {
 		r, v.Considered = c.reader, c.edit.Label()
 	}
+	if t := s.derived.tester; t != nil && v.Considered == "" {
+		v.Evidence = t.evidence
+	}
 	if r == nil || r.now == nil {
 		return
 	}

@@ -4,8 +4,8 @@
 // through post.
 //
 // Read session.go (edits and history), derive.go (what follows from the
-// document), reading.go (what
-// follows from the arrows alone), run.go (fits), files.go (open, save, recover).
+// document), reading.go (what follows from the arrows alone), evidence.go (what
+// the data say of it), run.go (fits), files.go (open, save, recover).
 package session
 
 import (
@@ -15,6 +15,7 @@ import (
 	"arrowroot/app/findings"
 	"arrowroot/app/fit"
 	"arrowroot/compile/causal"
+	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
@@ -39,6 +40,7 @@ type View struct {
 	GraphError error
 	Reading    *causal.Reading    // nil while it is being computed
 	Findings   *findings.Findings // all that has been read so far; nil as Reading
+	Evidence   *evidence.Evidence // what the data say of it; nil without data, and until it is known
 	Considered string             // label of the edit that a hand is about to make: Graph, Reading and Findings are as after it; "" = none
 	Table      *table.Table       // of the present rival; nil = none, or still being read
 	DataError  error
@@ -107,6 +109,7 @@ func New(post func(func())) *Session {
 func (s *Session) Close() {
 	s.Cancel()
 	s.derived.reader.stop()
+	s.derived.tester.stop()
 	s.consider.drop()
 	s.recovery.stop()
 }
