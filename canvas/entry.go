@@ -2,6 +2,7 @@ package canvas
 
 import (
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/driver/desktop"
 	"fyne.io/fyne/v2/widget"
 
 	"arrowroot/canvas/draw"
@@ -16,6 +17,7 @@ type nameEntry struct {
 	widget.Entry
 	editor *Editor
 	naming *scene.Naming // nil = closed
+	shift  bool          // held down: Return makes a new line in a note
 }
 
 func newNameEntry(e *Editor) *nameEntry {
@@ -30,6 +32,12 @@ func newNameEntry(e *Editor) *nameEntry {
 func (n *nameEntry) open(naming scene.Naming) {
 	n.naming = &naming
 	n.SetPlaceHolder(naming.Hint())
+	n.MultiLine, n.Wrapping = naming.Note, fyne.TextWrapOff
+	if naming.Note {
+		n.Wrapping = fyne.TextWrapWord
+		n.SetMinRowsVisible(3)
+	}
+	n.shift = false
 	n.SetText(naming.Text())
 	n.Show()
 	n.place()
@@ -50,6 +58,10 @@ func (n *nameEntry) place() {
 	e := n.editor
 	at := e.in.View.Out(n.naming.At)
 	w, h := float32(128), n.MinSize().Height
+	if n.naming.Note { // its text stands where the note's will
+		w = min(240, e.Size().Width)
+		at = at.Add(draw.Point{X: float64(w) / 2, Y: float64(h)/2 - 4})
+	}
 	if id := n.naming.Variable; id != "" {
 		if r, ok := e.surface.mapNow().NodeRect(id); ok {
 			at = draw.Point{X: r.X + r.W/2, Y: r.Y + r.H/2}
@@ -81,7 +93,15 @@ func (n *nameEntry) submit() {
 		return
 	}
 	n.editor.edit(edit)
-	if len(naming.Members) == 0 {
+	switch {
+	case naming.Note:
+		if at := naming.Which; at >= 0 || text != "" {
+			if at < 0 {
+				at = len(n.editor.in.Rival.Layout.Notes) - 1
+			}
+			n.editor.pick(scene.Selection{Notes: []int{at}})
+		}
+	case len(naming.Members) == 0:
 		id, _ := scene.Identifier(text)
 		n.editor.pick(scene.Selection{Nodes: []string{id}})
 	}
@@ -115,7 +135,32 @@ func (n *nameEntry) TypedKey(k *fyne.KeyEvent) {
 		n.close()
 		return
 	}
+	if n.MultiLine && !n.shift && (k.Name == fyne.KeyReturn || k.Name == fyne.KeyEnter) {
+		n.submit()
+		return
+	}
+	if n.MultiLine && n.shift && (k.Name == fyne.KeyReturn || k.Name == fyne.KeyEnter) {
+		n.TypedRune('\n')
+		n.place()
+		return
+	}
 	n.Entry.TypedKey(k)
+}
+
+// KeyDown implements desktop.Keyable.
+func (n *nameEntry) KeyDown(k *fyne.KeyEvent) {
+	if k.Name == desktop.KeyShiftLeft || k.Name == desktop.KeyShiftRight {
+		n.shift = true
+	}
+	n.Entry.KeyDown(k)
+}
+
+// KeyUp implements desktop.Keyable.
+func (n *nameEntry) KeyUp(k *fyne.KeyEvent) {
+	if k.Name == desktop.KeyShiftLeft || k.Name == desktop.KeyShiftRight {
+		n.shift = false
+	}
+	n.Entry.KeyUp(k)
 }
 
 // FocusLost implements fyne.Focusable. The keyboard went elsewhere in the

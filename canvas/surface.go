@@ -65,7 +65,7 @@ func (s *surface) paint(w, h int) image.Image {
 func (e *Editor) shown() scene.Input {
 	in := e.in
 	in.Focused = e.focused
-	if n := e.entry.naming; n != nil && n.Variable == "" && len(n.Members) == 0 {
+	if n := e.entry.naming; n != nil && n.Variable == "" && len(n.Members) == 0 && !n.Note {
 		in.Preview.Ghost = &n.At
 		if n.From != "" {
 			in.Preview.Draw = &scene.Draft{From: n.From, End: n.At}

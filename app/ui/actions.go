@@ -89,6 +89,9 @@ func (d *desk) selectAll() {
 	for _, n := range d.view.Rival.Diagram.Nodes {
 		s.Nodes = append(s.Nodes, n.Variable)
 	}
+	for i := range d.view.Rival.Layout.Notes {
+		s.Notes = append(s.Notes, i)
+	}
 	d.choose(s)
 }
 
@@ -113,6 +116,9 @@ func (d *desk) deletePicked() {
 	}
 	if p.Plate != "" {
 		edits = append(edits, study.RemovePlate{Name: p.Plate})
+	}
+	if len(p.Notes) > 0 {
+		edits = append(edits, study.RemoveNotes{Rival: d.rival(), Notes: p.Notes})
 	}
 	switch len(edits) {
 	case 0:
@@ -276,6 +282,9 @@ func (d *desk) sheetMenu(t scene.Target, at fyne.Position) {
 	case scene.OnPlate:
 		d.choose(scene.Selection{Plate: t.Plate})
 		d.menuAt(at, "delete")
+	case scene.OnNote:
+		d.choose(scene.Selection{Notes: []int{t.Note}})
+		d.menuAt(at, "rename", "delete")
 	default:
 		d.menuAt(at, "variable", "place-all", "arrange", "paste", "zoom-fit")
 	}

@@ -13,6 +13,7 @@ import (
 func commandsOf(d *desk) commandTable {
 	pickedNode := func() bool { return d.picked() != "" }
 	onSheet := func() bool { return d.picked() != "" && d.onSheet(d.picked()) }
+	oneNote := func() bool { return len(d.pick.Nodes) == 0 && len(d.pick.Notes) == 1 }
 	hasPick := func() bool { return !d.pick.Empty() }
 	fitted := func() bool { return d.view.Result != nil }
 	tool := func(t scene.Tool) func() {
@@ -43,7 +44,18 @@ func commandsOf(d *desk) commandTable {
 		{id: "paste", menu: "Edit", label: "Paste", keys: "Ctrl+V", run: func() { d.orText(&fyne.ShortcutPaste{Clipboard: d.app.Clipboard()}, d.pasteArrows) }},
 		{id: "select-all", menu: "Edit", label: "Select all", keys: "Ctrl+A", run: func() { d.orText(&fyne.ShortcutSelectAll{}, d.selectAll) }},
 		{id: "delete", menu: "Edit", label: "Take off the sheet", keys: "Delete", on: hasPick, run: d.deletePicked},
-		{id: "rename", menu: "Edit", label: "Rename", keys: "F2", on: onSheet, run: func() { d.editor.StartRename(d.picked()) }},
+		{id: "rename", menu: "Edit", label: "Rename", keys: "F2", on: func() bool { return onSheet() || oneNote() }, live: func() string {
+			if oneNote() {
+				return "Change the note"
+			}
+			return "Rename"
+		}, run: func() {
+			if oneNote() {
+				d.editor.StartNote(d.pick.Notes[0])
+				return
+			}
+			d.editor.StartRename(d.picked())
+		}},
 		{id: "finder", menu: "Edit", label: "Type a command …", keys: "Ctrl+K", parted: true, run: d.find},
 
 		{id: "variable", menu: "Sheet", label: "New variable", keys: "Ctrl+Shift+V", run: d.newVariable},
@@ -54,6 +66,7 @@ func commandsOf(d *desk) commandTable {
 		{id: "tool-arrow", menu: "Sheet", label: "Draw arrows", keys: "A", run: tool(scene.ArrowTool)},
 		{id: "tool-cause", menu: "Sheet", label: "Draw common causes", keys: "C", run: tool(scene.CauseTool)},
 		{id: "tool-plate", menu: "Sheet", label: "Draw plates", keys: "P", run: tool(scene.PlateTool)},
+		{id: "tool-note", menu: "Sheet", label: "Write notes", keys: "N", run: tool(scene.NoteTool)},
 		{id: "zoom-fit", menu: "Sheet", label: "Show all", keys: "Ctrl+1", parted: true, run: func() { d.editor.ZoomFit() }},
 		{id: "zoom-reset", menu: "Sheet", label: "Zoom to 100 %", keys: "Ctrl+0", run: func() { d.editor.ZoomReset() }},
 		{id: "zoom-in", menu: "Sheet", label: "Zoom in", keys: "Ctrl++", run: func() { d.editor.ZoomBy(1.25) }},

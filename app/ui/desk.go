@@ -98,7 +98,7 @@ func (d *desk) choose(s scene.Selection) {
 // picked is the one variable that is picked; "" if it is not one.
 func (d *desk) picked() string {
 	p := d.pick
-	if len(p.Nodes) == 1 && len(p.Arrows) == 0 && len(p.Arcs) == 0 && p.Plate == "" {
+	if len(p.Nodes) == 1 && len(p.Arrows) == 0 && len(p.Arcs) == 0 && p.Plate == "" && len(p.Notes) == 0 {
 		return p.Nodes[0]
 	}
 	return ""
@@ -113,6 +113,7 @@ func (d *desk) prune() {
 	d.pick.Arcs = slices.DeleteFunc(slices.Clone(d.pick.Arcs), func(a [2]string) bool {
 		return !slices.ContainsFunc(diagram.Arcs, func(c *study.Arc) bool { return c.A == a[0] && c.B == a[1] })
 	})
+	d.pick.Notes = slices.DeleteFunc(slices.Clone(d.pick.Notes), func(i int) bool { return i >= len(d.view.Rival.Layout.Notes) })
 	if d.pick.Plate != "" && s.Plate(d.pick.Plate) == nil {
 		d.pick.Plate = ""
 	}

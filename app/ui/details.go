@@ -115,7 +115,7 @@ func (x *details) update() {
 	p := d.pick
 	state := detailsState{
 		study: v.Study, rival: v.Rival, question: v.Question, model: v.Model, result: v.Result, table: v.Table,
-		pick: fmt.Sprint(p.Nodes, p.Arrows, p.Arcs, p.Plate), stale: v.Stale, dark: d.dark(), problems: len(v.Problems),
+		pick: fmt.Sprint(p.Nodes, p.Arrows, p.Arcs, p.Plate, p.Notes), stale: v.Stale, dark: d.dark(), problems: len(v.Problems),
 		tab: fmt.Sprint(x.tab),
 	}
 	if state == x.seen {
@@ -124,7 +124,7 @@ func (x *details) update() {
 	samePick := state.pick == x.seen.pick
 	x.seen = state
 	s := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
-	n := len(p.Nodes) + len(p.Arrows) + len(p.Arcs)
+	n := len(p.Nodes) + len(p.Arrows) + len(p.Arcs) + len(p.Notes)
 	switch {
 	case n > 1:
 		x.several(s)
@@ -134,6 +134,8 @@ func (x *details) update() {
 		x.arrow(s, v.Rival.Diagram.Arrow(p.Arrows[0][0], p.Arrows[0][1]))
 	case len(p.Arcs) == 1:
 		x.arc(s, p.Arcs[0])
+	case len(p.Notes) == 1 && p.Notes[0] < len(v.Rival.Layout.Notes):
+		x.note(s, p.Notes[0])
 	case p.Plate != "" && v.Study.Plate(p.Plate) != nil:
 		x.plate(s, v.Study.Plate(p.Plate))
 	default:
@@ -177,7 +179,7 @@ func (x *details) showTab(kind, tab string) {
 
 func (x *details) several(s *sheaf) {
 	p := x.d.pick
-	x.head(s, "Several", times(len(p.Nodes)+len(p.Arrows)+len(p.Arcs), "thing", "things"), false)
+	x.head(s, "Several", times(len(p.Nodes)+len(p.Arrows)+len(p.Arcs)+len(p.Notes), "thing", "things"), false)
 	if len(p.Nodes) > 0 {
 		s.text("Variables: "+words.List(p.Nodes)+".", tokenInk)
 	}
@@ -189,6 +191,26 @@ func (x *details) several(s *sheaf) {
 		s.text("Arrows: "+words.List(names)+".", tokenInk)
 	}
 	b := x.d.plain("Take off the sheet", func() { x.d.commands.find("delete").run() })
+	s.keys["delete"] = b
+	s.add(row(8, b))
+}
+
+// note is what is written on the sheet.
+func (x *details) note(s *sheaf, at int) {
+	d := x.d
+	x.head(s, "Note", "on the sheet", false)
+	text := d.kit.note(d.view.Rival.Layout.Notes[at].Text, "What should a reader of the sheet know?", func(text string) {
+		if text == "" {
+			d.do(study.RemoveNotes{Rival: d.rival(), Notes: []int{at}})
+			return
+		}
+		d.do(study.ChangeNote{Rival: d.rival(), Note: at, Text: text})
+	})
+	text.SetMinRowsVisible(6)
+	s.keys["text"] = text
+	s.add(text)
+	s.text("It stands in figures and reports, and changes no result.", tokenMuted)
+	b := d.plain("Remove", func() { d.commands.find("delete").run() })
 	s.keys["delete"] = b
 	s.add(row(8, b))
 }

@@ -27,6 +27,7 @@ func newDock(d *desk) *dock {
 		{scene.ArrowTool, iconArrow, "tool-arrow"},
 		{scene.CauseTool, iconArc, "tool-cause"},
 		{scene.PlateTool, iconPlate, "tool-plate"},
+		{scene.NoteTool, iconNote, "tool-note"},
 	} {
 		c := d.commands.find(t.id)
 		p := d.iconButton(newIcon(t.icon, tokenInk, 20), c.tip(), c.run)

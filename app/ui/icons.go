@@ -33,6 +33,7 @@ var (
 	iconArrow    = glyph{lines: []draw.Path{open(4, 19.5, 15, 9)}, areas: []draw.Path{closed(20, 4.5, 17.6, 12, 12.4, 6.6)}}
 	iconArc      = glyph{lines: []draw.Path{bow()}, dash: []float64{3, 2.4}, areas: []draw.Path{closed(4.4, 19.4, 2.2, 13.8, 7.8, 14.2), closed(19.6, 19.4, 16.2, 14.2, 21.8, 13.8)}}
 	iconPlate    = glyph{lines: []draw.Path{closed(4, 4, 17, 4, 17, 17, 4, 17), open(7.5, 20.5, 20.5, 20.5, 20.5, 7.5)}}
+	iconNote     = glyph{lines: []draw.Path{open(5, 4, 5, 20), open(9.5, 6.5, 20, 6.5), open(9.5, 12, 20, 12), open(9.5, 17.5, 15.5, 17.5)}}
 	iconFoldL    = glyph{lines: []draw.Path{open(14.5, 6, 8.5, 12, 14.5, 18)}}
 	iconFoldR    = glyph{lines: []draw.Path{open(9.5, 6, 15.5, 12, 9.5, 18)}}
 	iconFoldD    = glyph{lines: []draw.Path{open(6, 9.5, 12, 15.5, 18, 9.5)}}

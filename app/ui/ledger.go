@@ -72,7 +72,7 @@ func (l *ledger) row(x *study.Variable) *press {
 	}
 	name := newLabel(x.ID, sizeBody, token, fyne.TextStyle{Italic: x.Unmeasured}).shrinkTo(40)
 	right := l.state(x)
-	line := row(6, dot(x), stretch(name), small(x.Unit).shrinkTo(12), right)
+	line := row(6, dot(x), stretch(name), unitLabel(x.Unit), right)
 	p := d.press(line, func(p *press) skin {
 		if p.selected {
 			return skin{fill: tokenTint, radius: 4}
@@ -106,6 +106,16 @@ func (l *ledger) row(x *study.Variable) *press {
 		return true
 	}
 	return p
+}
+
+// unitLabel shows a unit as far as it leaves room for the name.
+func unitLabel(unit string) *label {
+	const most = 60
+	w := small(unit)
+	if w.MinSize().Width > most {
+		w.shrinkTo(most)
+	}
+	return w
 }
 
 // step picks the variable above or below and takes the focus along.

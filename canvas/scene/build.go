@@ -23,6 +23,7 @@ func Build(in Input) (*draw.List, *Map) {
 	b.drawPaths()
 	b.drawArcs()
 	b.drawArrows()
+	b.drawNotes()
 	b.drawNodes()
 	b.drawWords()
 	b.drawPreview()
@@ -42,6 +43,7 @@ func measure(in *Input) *builder {
 	}
 	b.route()
 	b.frames()
+	b.slips()
 	return b
 }
 

@@ -66,6 +66,7 @@ const (
 	ArrowTool    Tool = "arrow"
 	CauseTool    Tool = "common cause"
 	PlateTool    Tool = "plate"
+	NoteTool     Tool = "note"
 )
 
 // Cursor is the shape of the pointer.

@@ -14,7 +14,8 @@ const (
 	unit       = 8.0
 	nodeHeight = 34.0
 	nodeMin    = 88.0  // width of a node with a short name
-	nodeMax    = 216.0 // names that are longer are cut
+	nodeMax    = 216.0 // names that are longer are wrapped
+	nameLines  = 4     // and cut after so many lines
 	nameSize   = 12.5
 	nameLeast  = 11.0 // names are never smaller
 	tabSize    = 10.5
@@ -29,8 +30,9 @@ type body struct {
 	name       string // as printed, with "=" and sign
 	at         draw.Point
 	w, h       float64
-	text       float64 // size of the name
-	square     bool    // held, or limits the rows
+	text       float64  // size of the name
+	lines      []string // the name as it is wrapped; nil = in one line
+	square     bool     // held, or limits the rows
 	unmeasured bool
 	roles      string
 	tab        draw.Rect // of the roles; empty without
@@ -46,7 +48,7 @@ func (b *body) corner() float64 {
 	if b.square {
 		return min(3, b.h/8)
 	}
-	return b.h / 2
+	return min(b.h, b.text*nodeHeight/nameSize) / 2 // a wrapped name needs the corners
 }
 
 // depth is how far outside of the outline a point lies; negative inside.
@@ -91,7 +93,45 @@ func nodeSize(name string, face draw.Face, zoom float64) (w, h, text float64) {
 	w = min(max(w, nodeMin*zoom), nodeMax*max(zoom, 0.6))
 	step := 2 * unit * zoom
 	w = math.Ceil(w/step-1e-9) * step // both halves on the grid
-	return w, max(nodeHeight*zoom, text*1.7), text
+	h = max(nodeHeight*zoom, text*1.7)
+	if n := len(wrapName(name, face, text, w)); n > 1 {
+		h += float64(n-1) * nameStep * text
+	}
+	return w, h, text
+}
+
+// nameStep is the distance of two lines of a wrapped name, in sizes of its text.
+const nameStep = 1.25
+
+// wrapName breaks a name that is too long for a node of a width at its spaces
+// and underscores, within a word where it has none; nil if one line will do.
+func wrapName(name string, face draw.Face, text, width float64) []string {
+	room := width - text
+	if draw.Measure(name, face, text) <= room {
+		return nil
+	}
+	var lines []string
+	for name != "" && len(lines) < nameLines-1 {
+		end, soft, used := len(name), 0, 0.0
+		for i, r := range name {
+			used += draw.Measure(string(r), face, text)
+			if used > room && i > 0 {
+				end = i
+				break
+			}
+			if r == '_' || r == ' ' {
+				soft = i + 1
+			}
+		}
+		if end < len(name) && soft > 0 {
+			end = soft
+		}
+		lines, name = append(lines, strings.TrimSpace(name[:end])), strings.TrimLeft(name[end:], " ")
+	}
+	if name != "" {
+		lines = append(lines, draw.Shorten(name, face, text, room))
+	}
+	return lines
 }
 
 // face is the cut a variable's name is set in.
@@ -177,6 +217,7 @@ func bodies(in *Input) []*body {
 			}
 		}
 		b.w, b.h, b.text = nodeSize(b.name, nameFace(b.variable), zoom)
+		b.lines = wrapName(b.name, nameFace(b.variable), b.text, b.w)
 		b.dots = len(in.Dots[n.Variable]) > 0 && !b.unmeasured && zoom >= dotsBelow
 		words := roles(in, n.Variable)
 		b.square = slices.Contains(words, held) || slices.Contains(words, limits) || in.Mark.boxes(n.Variable)

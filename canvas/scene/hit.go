@@ -14,6 +14,7 @@ type Map struct {
 	arrows []*line
 	arcs   []*line
 	plates []*frame
+	notes  []*slip
 	zoom   float64
 }
 
@@ -25,8 +26,8 @@ const (
 	rimBeyond = 7.0
 )
 
-// Hit says what is at a place of the widget. Nodes come before lines, lines
-// before plates; among lines the nearest counts.
+// Hit says what is at a place of the widget. Nodes come before notes, notes
+// before lines, lines before plates; among lines the nearest counts.
 func (m *Map) Hit(p draw.Point) Target {
 	for _, n := range slices.Backward(m.nodes) {
 		if n.depth(p) <= -min(rimInside, 0.18*n.h) {
@@ -36,6 +37,11 @@ func (m *Map) Hit(p draw.Point) Target {
 	for _, n := range slices.Backward(m.nodes) {
 		if n.depth(p) <= rimBeyond {
 			return Target{Kind: OnEdge, Node: n.id}
+		}
+	}
+	for _, s := range slices.Backward(m.notes) {
+		if s.box.Contains(p) {
+			return Target{Kind: OnNote, Note: s.note}
 		}
 	}
 	best, found := lineReach, Target{}
@@ -91,6 +97,9 @@ func (m *Map) bounds() (r draw.Rect, ok bool) {
 	}
 	for _, f := range m.plates {
 		add(f.box)
+	}
+	for _, s := range m.notes {
+		add(s.box)
 	}
 	return r, ok
 }

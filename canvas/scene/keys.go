@@ -44,9 +44,14 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 		if len(in.Selected.Nodes) == 1 {
 			return Answer{Name: &Naming{Variable: in.Selected.Nodes[0]}}
 		}
+		if len(in.Selected.Nodes) == 0 && len(in.Selected.Notes) == 1 {
+			return Answer{Name: NoteNaming(in, in.Selected.Notes[0])}
+		}
 		return Answer{}
 	case h.tool == VariableTool && e.Key == "Return" && in.Rival != nil:
 		return Answer{Name: &Naming{At: Free(in)}}
+	case h.tool == NoteTool && e.Key == "Return" && in.Rival != nil:
+		return Answer{Name: &Naming{At: Free(in), Note: true, Which: -1}}
 	}
 	return Answer{Command: command(e)}
 }
@@ -138,10 +143,23 @@ func nudge(in *Input, d draw.Point) Answer {
 			to[id] = study.Point{X: p.X + d.X*unit, Y: p.Y + d.Y*unit}
 		}
 	}
-	if len(to) == 0 || in.Rival == nil {
+	notes := make(map[int]study.Point)
+	for i, p := range in.notePlaces() {
+		if in.Selected.HasNote(i) {
+			notes[i] = study.Point{X: p.X + d.X*unit, Y: p.Y + d.Y*unit}
+		}
+	}
+	if len(to)+len(notes) == 0 || in.Rival == nil {
 		return Answer{}
 	}
-	return Answer{Edit: nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})}
+	move := nailed(in, study.MoveNodes{Rival: in.Rival.Name, To: to})
+	switch {
+	case len(notes) == 0:
+		return Answer{Edit: move}
+	case len(to) == 0:
+		return Answer{Edit: study.MoveNotes{Rival: in.Rival.Name, To: notes}}
+	}
+	return Answer{Edit: study.Several{Name: "Move the selection", Edits: []study.Edit{move, study.MoveNotes{Rival: in.Rival.Name, To: notes}}}}
 }
 
 // first is the node that the keyboard begins at: the exposure or the first.

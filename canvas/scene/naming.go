@@ -12,20 +12,33 @@ import (
 
 // A Naming waits for a typed name: of a new variable (the zero value with At),
 // of a variable at the end of a new arrow (From), of one that is there
-// (Variable), or of a plate around some (Members).
+// (Variable), or of a plate around some (Members); or for the words of a note
+// (Note).
 type Naming struct {
 	At       study.Point
 	From     string
 	Variable string
 	Members  []string
+
+	Note  bool
+	Which int    // the note that is there; -1 = a new one
+	Was   string // its words
 }
 
 // Text is what the entry shows at first.
-func (n Naming) Text() string { return n.Variable }
+func (n Naming) Text() string {
+	if n.Note {
+		return n.Was
+	}
+	return n.Variable
+}
 
 // Hint is what the empty entry says.
 func (n Naming) Hint() string {
-	if len(n.Members) > 0 {
+	switch {
+	case n.Note:
+		return "a note; Shift+Return for a new line"
+	case len(n.Members) > 0:
 		return "one for each …"
 	}
 	return "name"
@@ -37,6 +50,8 @@ func (n Naming) Edit(in *Input, text string) (study.Edit, error) {
 	switch {
 	case in.Rival == nil || in.Study == nil:
 		return nil, nil
+	case n.Note:
+		return n.write(in.Rival.Name, text), nil
 	case id == "":
 		return nil, errors.New("a name needs at least one letter or digit")
 	case n.Variable != "":

@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"slices"
 	"strings"
 
 	"arrowroot/canvas/draw"
@@ -37,19 +38,25 @@ func (b *builder) drawNode(n *body) {
 		outline.Width = 2
 	}
 	b.list.Add(outline)
-	name, face := n.name, nameFace(n.variable)
-	if paint != nil && paint.Sign != "" {
-		name += " " + paint.Sign
+	lines, face := n.lines, nameFace(n.variable)
+	if lines == nil {
+		lines = []string{n.name}
 	}
-	name = draw.Shorten(name, face, n.text, n.w-n.text)
+	if paint != nil && paint.Sign != "" {
+		last := len(lines) - 1
+		lines = append(slices.Clone(lines[:last]), draw.Shorten(lines[last], face, n.text, n.w-2.2*n.text)+" "+paint.Sign)
+	}
 	ink := readable(fill, p.Ink, p.Sheet)
 	if n.unmeasured && paint == nil {
 		ink = p.Ink
 	}
 	if paint != nil && paint.Hatched {
-		b.hatch(n, name, face, fill)
+		b.hatch(n, lines, face, fill)
 	}
-	b.list.Add(&draw.Text{At: draw.Point{X: n.at.X, Y: n.at.Y + draw.Drop(n.text)}, Text: name, Face: face, Size: n.text, Color: ink, Anchor: draw.Middle})
+	for i, line := range lines {
+		y := n.at.Y + (float64(i)-float64(len(lines)-1)/2)*nameStep*n.text
+		b.list.Add(&draw.Text{At: draw.Point{X: n.at.X, Y: y + draw.Drop(n.text)}, Text: line, Face: face, Size: n.text, Color: ink, Anchor: draw.Middle})
+	}
 	below := n.at.Y + n.h/2
 	below = b.drawRoles(n, below)
 	below = b.drawDots(n, below)
@@ -109,7 +116,7 @@ func (b *builder) ring(n *body) {
 }
 
 // hatch fills a node with diagonal lines and clears the ground of its name.
-func (b *builder) hatch(n *body, name string, face draw.Face, ground draw.Color) {
+func (b *builder) hatch(n *body, name []string, face draw.Face, ground draw.Color) {
 	const gap = 5.0
 	var lines draw.Path
 	r := n.rect()
@@ -133,8 +140,12 @@ func (b *builder) hatch(n *body, name string, face draw.Face, ground draw.Color)
 		}
 	}
 	b.list.Add(&draw.Shape{Path: lines, Stroke: draw.Alpha(b.in.Palette.Muted, 0.75), Width: 1})
-	w := draw.Measure(name, face, n.text) + 8
-	b.list.Add(&draw.Shape{Path: draw.RoundRect(draw.Rect{X: n.at.X - w/2, Y: n.at.Y - n.text*0.75, W: w, H: n.text * 1.5}, 3), Fill: ground})
+	w := 0.0
+	for _, line := range name {
+		w = max(w, draw.Measure(line, face, n.text)+8)
+	}
+	h := n.text * (1.5 + float64(len(name)-1)*nameStep)
+	b.list.Add(&draw.Shape{Path: draw.RoundRect(draw.Rect{X: n.at.X - w/2, Y: n.at.Y - h/2, W: w, H: h}, 3), Fill: ground})
 }
 
 // drawRoles prints the roles on a dark tab under the lower edge; it returns

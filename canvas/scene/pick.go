@@ -17,6 +17,8 @@ func only(t Target) Selection {
 		return Selection{Arcs: [][2]string{t.Pair}}
 	case OnPlate:
 		return Selection{Plate: t.Plate}
+	case OnNote:
+		return Selection{Notes: []int{t.Note}}
 	}
 	return Selection{}
 }
@@ -32,6 +34,8 @@ func (s Selection) covers(t Target) bool {
 		return s.HasArc(t.Pair[0], t.Pair[1])
 	case OnPlate:
 		return s.Plate == t.Plate
+	case OnNote:
+		return s.HasNote(t.Note)
 	}
 	return false
 }
@@ -51,6 +55,8 @@ func (s Selection) toggled(t Target) Selection {
 		} else {
 			s.Plate = t.Plate
 		}
+	case OnNote:
+		s.Notes = toggle(s.Notes, t.Note)
 	}
 	return s
 }
@@ -87,12 +93,17 @@ func (s Selection) Kept(st *study.Study, r *study.Rival) Selection {
 	if st.Plate(s.Plate) != nil {
 		kept.Plate = s.Plate
 	}
+	for _, i := range s.Notes {
+		if r.Layout != nil && i < len(r.Layout.Notes) {
+			kept.Notes = append(kept.Notes, i)
+		}
+	}
 	return kept
 }
 
 // Equal reports whether two selections hold the same things in the same order.
 func (s Selection) Equal(t Selection) bool {
-	return slices.Equal(s.Nodes, t.Nodes) && slices.Equal(s.Arrows, t.Arrows) && slices.Equal(s.Arcs, t.Arcs) && s.Plate == t.Plate
+	return slices.Equal(s.Nodes, t.Nodes) && slices.Equal(s.Arrows, t.Arrows) && slices.Equal(s.Arcs, t.Arcs) && s.Plate == t.Plate && slices.Equal(s.Notes, t.Notes)
 }
 
 // Remove is the edit that deletes a selection from a rival; nil if it is
@@ -118,6 +129,9 @@ func Remove(r *study.Rival, s Selection) study.Edit {
 	}
 	if s.Plate != "" {
 		edits = append(edits, study.RemovePlate{Name: s.Plate})
+	}
+	if len(s.Notes) > 0 {
+		edits = append(edits, study.RemoveNotes{Rival: r.Name, Notes: s.Notes})
 	}
 	switch len(edits) {
 	case 0:

@@ -108,15 +108,19 @@ type Selection struct {
 	Arrows [][2]string // from, to
 	Arcs   [][2]string // A, B as in the study
 	Plate  string
+	Notes  []int // their places in the layout
 }
 
 // Empty reports whether nothing is picked.
 func (s Selection) Empty() bool {
-	return len(s.Nodes) == 0 && len(s.Arrows) == 0 && len(s.Arcs) == 0 && s.Plate == ""
+	return len(s.Nodes) == 0 && len(s.Arrows) == 0 && len(s.Arcs) == 0 && s.Plate == "" && len(s.Notes) == 0
 }
 
 // HasNode reports whether a node is picked.
 func (s Selection) HasNode(id string) bool { return slices.Contains(s.Nodes, id) }
+
+// HasNote reports whether a note is picked.
+func (s Selection) HasNote(note int) bool { return slices.Contains(s.Notes, note) }
 
 // HasArrow reports whether an arrow is picked.
 func (s Selection) HasArrow(from, to string) bool {
@@ -137,6 +141,7 @@ const (
 	OnArrow
 	OnArc
 	OnPlate // the tab of a plate
+	OnNote  // words on the sheet
 )
 
 // A Target is what a place of the sheet belongs to.
@@ -145,15 +150,17 @@ type Target struct {
 	Node  string
 	Pair  [2]string // of an arrow (from, to) or an arc
 	Plate string
+	Note  int // its place in the layout
 }
 
 // A Preview is what a gesture in progress would do; it is drawn, not done.
 type Preview struct {
-	Moved map[string]study.Point // nodes under the pointer, at their places for now
-	Draw  *Draft
-	Box   *draw.Rect   // a marquee or a plate being drawn, in dips
-	Plate bool         // Box is a plate
-	Ghost *study.Point // a variable that waits for its name
+	Moved      map[string]study.Point // nodes under the pointer, at their places for now
+	MovedNotes map[int]study.Point    // the same for notes
+	Draw       *Draft
+	Box        *draw.Rect   // a marquee or a plate being drawn, in dips
+	Plate      bool         // Box is a plate
+	Ghost      *study.Point // a variable that waits for its name
 }
 
 // A Draft is an arrow or arc being drawn.
