@@ -18,6 +18,7 @@ func (e AddAbsent) Apply(s *Study) (*Study, error) {
 			return fmt.Errorf("the arrow %s → %s is drawn; delete it before you argue its absence", e.Absent.From, e.Absent.To)
 		}
 		a := e.Absent
+		a.References = list(a.References)
 		i := slices.IndexFunc(r.Diagram.Absent, byAbsentEnds(a.From, a.To))
 		if i >= 0 {
 			r.Diagram.Absent = with(r.Diagram.Absent, i, &a)

@@ -18,7 +18,7 @@ func (e AddArc) Apply(s *Study) (*Study, error) {
 			return fmt.Errorf("the arc %s ↔ %s is drawn already", e.Arc.A, e.Arc.B)
 		}
 		a := e.Arc
-		a.Plates = list(a.Plates)
+		a.Plates, a.References = list(a.Plates), list(a.References)
 		r.Diagram.Arcs = and(r.Diagram.Arcs, &a)
 		return nil
 	})
@@ -60,7 +60,7 @@ func (e ChangeArc) Apply(s *Study) (*Study, error) {
 			return fmt.Errorf("there is no arc %s ↔ %s", e.A, e.B)
 		}
 		a := e.Arc
-		a.Plates = list(a.Plates)
+		a.Plates, a.References = list(a.Plates), list(a.References)
 		r.Diagram.Arcs = with(r.Diagram.Arcs, i, &a)
 		return nil
 	})

@@ -14,12 +14,17 @@ func (e AddData) Apply(s *Study) (*Study, error) {
 	if find(s.Data, byDataName(e.Data.Name)) != nil {
 		return nil, taken("data table", e.Data.Name)
 	}
-	d := e.Data
+	d := copyData(e.Data)
 	return changed(s, func(s *Study) { s.Data = and(s.Data, &d) })
 }
 
 // Label names the edit.
 func (e AddData) Label() string { return "Open " + e.Data.Name }
+
+func copyData(d Data) Data {
+	d.Keep = copyConditions(d.Keep)
+	return d
+}
 
 // ChangeData replaces a table. A new name goes to the variables bound to it.
 type ChangeData struct {
@@ -33,10 +38,11 @@ func (e ChangeData) Apply(s *Study) (*Study, error) {
 	if i < 0 {
 		return nil, noData(e.Name)
 	}
-	if *s.Data[i] == e.To {
+	to := copyData(e.To)
+	if reflect.DeepEqual(s.Data[i], &to) {
 		return s, nil
 	}
-	next, to := *s, e.To
+	next := *s
 	next.Data = with(s.Data, i, &to)
 	if e.Name != to.Name {
 		if find(s.Data, byDataName(to.Name)) != nil {

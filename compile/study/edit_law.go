@@ -18,7 +18,8 @@ func (e ChangeLaw) Apply(s *Study) (*Study, error) {
 		if i < 0 {
 			return notOnSheet(e.Variable, e.Rival)
 		}
-		n := Node{Variable: e.Variable, Law: copyLaw(e.Law)}
+		n := *r.Diagram.Nodes[i]
+		n.Law = copyLaw(e.Law)
 		r.Diagram.Nodes = with(r.Diagram.Nodes, i, &n)
 		return nil
 	})

@@ -82,6 +82,14 @@ func (e RemovePlate) Apply(s *Study) (*Study, error) {
 		}
 		return without(plates, func(p string) bool { return p == e.Name })
 	})
+	next.Questions = mapped(s.Questions, func(q *Question) *Question {
+		if !s.HoldsPlate(e.Name) || !slices.Contains(q.Held, e.Name) {
+			return q
+		}
+		to := *q
+		to.Held = q.heldWithout(e.Name)
+		return &to
+	})
 	return checked(&next)
 }
 

@@ -30,6 +30,7 @@ func (q *Question) ends() string {
 // copyQuestion keeps an empty Held apart from nil: the one says "none".
 func copyQuestion(q Question) Question {
 	q.Held, q.OutcomeLevels = slices.Clone(q.Held), list(q.OutcomeLevels)
+	q.Fixed, q.Where = list(q.Fixed), copyConditions(q.Where)
 	for _, set := range [2]**Setting{&q.From, &q.To} {
 		if *set != nil {
 			value := **set

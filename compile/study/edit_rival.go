@@ -30,7 +30,7 @@ type CopyRival struct {
 }
 
 // Apply refuses a name that is taken. Both rivals share diagram and layout
-// until one of them changes.
+// until one of them changes. What was set aside of the one is of the other.
 func (e CopyRival) Apply(s *Study) (*Study, error) {
 	i := slices.IndexFunc(s.Rivals, byRivalName(e.From))
 	if i < 0 {
@@ -41,7 +41,14 @@ func (e CopyRival) Apply(s *Study) (*Study, error) {
 	}
 	r := *s.Rivals[i]
 	r.Name = e.Name
-	return changed(s, func(s *Study) { s.Rivals = slices.Insert(slices.Clone(s.Rivals), i+1, &r) })
+	return changed(s, func(s *Study) {
+		s.Rivals = slices.Insert(slices.Clone(s.Rivals), i+1, &r)
+		for _, d := range s.Dismissed {
+			if d.Rival == e.From {
+				s.Dismissed = and(s.Dismissed, &Dismissal{Rival: e.Name, Key: d.Key, Why: d.Why})
+			}
+		}
+	})
 }
 
 // Label names the edit.
@@ -57,9 +64,19 @@ func (e RenameRival) Apply(s *Study) (*Study, error) {
 	if e.Old != e.New && s.Rival(e.New) != nil {
 		return nil, taken("rival", e.New)
 	}
-	return onSheet(s, e.Old, func(r *Rival) error {
-		r.Name = e.New
-		return nil
+	i := slices.IndexFunc(s.Rivals, byRivalName(e.Old))
+	if i < 0 {
+		return nil, noRival(e.Old)
+	}
+	r := *s.Rivals[i]
+	r.Name = e.New
+	return changed(s, func(s *Study) {
+		s.Rivals = with(s.Rivals, i, &r)
+		s.Dismissed = mapped(s.Dismissed, func(d *Dismissal) *Dismissal {
+			to := *d
+			to.Rival = e.New
+			return kept(d, to, d.Rival != e.Old)
+		})
 	})
 }
 
@@ -90,7 +107,10 @@ func (e RemoveRival) Apply(s *Study) (*Study, error) {
 	if s.Rival(e.Name) == nil {
 		return nil, noRival(e.Name)
 	}
-	return changed(s, func(s *Study) { s.Rivals = without(s.Rivals, byRivalName(e.Name)) })
+	return changed(s, func(s *Study) {
+		s.Rivals = without(s.Rivals, byRivalName(e.Name))
+		s.Dismissed = without(s.Dismissed, func(d *Dismissal) bool { return d.Rival == e.Name })
+	})
 }
 
 // Label names the edit.

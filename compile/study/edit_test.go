@@ -66,7 +66,8 @@ func TestEditsThatChangeNothingGiveTheSameStudy(t *testing.T) {
 		ChangeLaw{Rival: nest, Variable: "hedge"}, ChangeLaw{Rival: nest, Variable: "hedge", Law: &Law{}},
 		ChangeLaw{Rival: nest, Variable: "bees", Law: s.Rival(nest).Diagram.Node("bees").Law},
 		ChangePlate{Name: "farm", To: *s.Plates[0]}, ChangeData{Name: "traps", To: *s.Data[0]},
-		ChangeQuestion{At: 0, To: *s.Questions[0]}, Hold{At: 0, Variable: "soil", On: true}, Hold{At: 0, Variable: "temp"},
+		ChangeQuestion{At: 0, To: *s.Questions[0]}, ChangeQuestion{At: 1, To: *s.Questions[1]},
+		LimitRows{Rival: nest, Variable: "temp", On: true}, Dismiss{*s.Dismissed[0]}, Hold{At: 0, Variable: "soil", On: true}, Hold{At: 0, Variable: "temp"},
 		RenameRival{Old: nest, New: nest}, AddAbsent{Rival: nest, Absent: *s.Rival(nest).Diagram.Absent[0]},
 		TypeArrows{Rival: nest, Text: "hedge -> flowers -> bees"},
 	} {
@@ -78,6 +79,11 @@ func TestEditsThatChangeNothingGiveTheSameStudy(t *testing.T) {
 
 func TestEditsRefuse(t *testing.T) {
 	s := mustRead(t, example(t))
+	ask := func(change func(*Question)) Edit { // the example's second question, changed
+		q := copyQuestion(*s.Questions[1])
+		change(&q)
+		return ChangeQuestion{1, q}
+	}
 	for _, c := range []struct {
 		edit Edit
 		want string
@@ -106,6 +112,27 @@ func TestEditsRefuse(t *testing.T) {
 		{AddPlate{Plate{Name: "farm"}}, "there is a plate named “farm” already"},
 		{AddPlate{Plate{Name: "field", Within: "field"}}, "the plate field is within itself"},
 		{Bind{Variable: "bees", Data: "nets", Column: "x"}, "bees is bound to the data “nets”, which are not in the study"},
+		{Hold{At: 0, Variable: "field", On: true}, "a question holds field, which is neither among the variables nor among the plates"},
+		{Dismiss{Dismissal{Rival: "No", Key: "M1"}}, "a finding is set aside for the rival “No”, which does not exist"},
+		{Dismiss{Dismissal{Rival: nest, Key: " "}}, "it is not said which finding is set aside"},
+		{Restore{nest, "M1"}, "the finding “M1” of “Nest and feed” was not set aside"},
+		{LimitRows{nest, "wasps", true}, "wasps is not on the sheet of “Nest and feed”"},
+		{ask(func(q *Question) { q.Effect = "" }), "a question fixes a variable, which only a controlled direct effect does"},
+		{ask(func(q *Question) { q.Fixed[0].Variable = "hedge" }), "a question fixes hedge, which is its exposure or outcome"},
+		{ask(func(q *Question) { q.Fixed[0].Variable = "wasps" }), "a question fixes wasps, which is not among the variables"},
+		{ask(func(q *Question) { q.Fixed[0].Variable = "soil" }), "a question fixes soil twice"},
+		{ask(func(q *Question) { q.Fixed[0].Variable = "pesticide" }), "a question holds pesticide and fixes it; only one of them can be meant"},
+		{ask(func(q *Question) { q.Where[0].Variable = "wasps" }), "a question has a condition on wasps, which is not among the variables"},
+		{ask(func(q *Question) { q.Where = append(q.Where, q.Where[0]) }), "a question has two conditions on pesticide"},
+		{ask(func(q *Question) { q.Where[0].High = new(float64) }), "a question asks for pesticide from a higher to a lower number"},
+		{ask(func(q *Question) { q.Where[0].Low = nil }), "a question has a condition on pesticide that asks for nothing: give words or bounds"},
+		{ask(func(q *Question) { q.Where[0].Words = []string{"a"} }), "a question asks for words and for bounds of pesticide; only one of them can be meant"},
+		{ask(func(q *Question) { q.Groups = "old groups" }), "“old groups” is not a choice of groups this version knows (these groups, new groups)"},
+		{ask(func(q *Question) { q.Weigh = "by weight" }), "“by weight” is not a way to weigh this version knows (by rows, by groups)"},
+		{ChangeData{"traps", Data{Name: "traps", Keep: []Condition{{Variable: "soil", Words: []string{"clay", "clay"}}}}}, "the row filter of “traps” asks for “clay” of soil twice"},
+		{ChangeVariable{"temp", Variable{ID: "temp", Records: "temp"}}, "temp cannot be a record of itself"},
+		{ChangeVariable{"temp", Variable{ID: "temp", Answers: "wasps"}}, "temp says where wasps is recorded, which is not among the variables"},
+		{ChangeVariable{"temp", Variable{ID: "temp", Cost: -1}}, "measuring temp cannot cost less than nothing"},
 		{Several{Edits: []Edit{SetTitle{"x"}, RemoveRival{"No"}}}, "there is no rival “No”"},
 	} {
 		if next, err := c.edit.Apply(s); err == nil || next != nil || !strings.Contains(err.Error(), c.want) {
@@ -138,6 +165,7 @@ func TestRenamingAVariableReachesEverything(t *testing.T) {
 		`"log rate = alpha_bees by farm + beta_rows_bees * (rows - 90) + log hours"`,
 		`{"beta_rows_bees": "normal with mean 0, sd 0.01"}`, `"computed": "rows * bees"`, `{"variable": "rows", "at": [320, 200]}`,
 		`{"from": "rows", "to": "flowers"`, `{"between": ["rows", "pesticide"]`, `{"exposure": "rows"`,
+		`"finding": "M3 rows flowers"`,
 	} {
 		if !strings.Contains(text, want) {
 			t.Errorf("%s is not in\n%s", want, text)
@@ -190,6 +218,48 @@ func TestTypedNamesOfParameters(t *testing.T) {
 	}
 	if got := renameParameter("alpha_a_b", "a_b", to, known); got != "alpha_a_b" {
 		t.Errorf("in the law of a_b: %s", got)
+	}
+}
+
+// Every place outside formulas where a variable can be named but for ends of
+// arrows follows its name and goes with it.
+func TestNamesOutsideDiagrams(t *testing.T) {
+	s := mustRead(t, example(t))
+	for _, id := range []string{"flowers", "soil", "temp", "pesticide", "attitude", "hours"} {
+		v := *s.Variable(id)
+		v.ID = "elsewhere"
+		v.Label, v.Column = "", ""
+		renamed := apply(t, s, SetTitle{""}, ChangeVariable{id, v})
+		removed := apply(t, s, SetTitle{""}, RemoveVariable{id})
+		for _, next := range []*Study{renamed, removed} {
+			for _, line := range strings.Split(string(Write(next)), "\n") {
+				if _, quoted, found := strings.Cut(line, `"`+id+`"`); found || strings.Contains(line, `M3 hedge `+id) {
+					t.Errorf("%s is left in %s %s", id, line, quoted)
+				}
+			}
+		}
+		if next := apply(t, renamed, ChangeVariable{"elsewhere", *s.Variable(id)}, SetTitle{s.Title}); !bytes.Equal(Write(next), Write(s)) {
+			t.Errorf("%s renamed and named back:\n%s", id, Write(next))
+		}
+	}
+	next := apply(t, s, RemoveVariable{"soil"})
+	if next.Data[0].Keep[0].Variable != "temp" || len(next.Questions[1].Fixed) != 1 || next.Dismissed[0] != s.Dismissed[0] {
+		t.Error("more than soil is gone")
+	}
+	next = apply(t, s, RenameRival{nest, "Other"})
+	if next.Dismissal("Other", "M3 hedge flowers") == nil || next.Rival("Other").Diagram != s.Rivals[0].Diagram {
+		t.Error("a renamed rival lost what was set aside, or its diagram")
+	}
+	next = apply(t, s, CopyRival{nest, "Copy"}, RemoveRival{nest}, Restore{"Copy", "M3 hedge flowers"})
+	if next.Dismissed != nil {
+		t.Errorf("left: %+v", next.Dismissed[0])
+	}
+	next = apply(t, s, ChangeLaw{nest, "temp", &Law{Family: "Student t"}}, ChangePlate{"farm", Plate{Name: "holding"}})
+	if !next.Rival(nest).Diagram.Node("temp").Limits || !slices.Equal(next.Questions[1].Held, []string{"pesticide", "holding"}) || s.HoldsPlate("pesticide") || !next.HoldsPlate("holding") {
+		t.Error("a law or a plate's name took something else along")
+	}
+	if next = apply(t, next, RemovePlate{"holding"}); !slices.Equal(next.Questions[1].Held, []string{"pesticide"}) {
+		t.Error("a plate that is gone is still held")
 	}
 }
 
@@ -281,7 +351,8 @@ func someEdit(t *rapid.T, s *Study) Edit {
 	}
 	line := func() Variable {
 		return Variable{ID: name("id"), Label: name("label"), Scale: rapid.SampledFrom(Scales[:]).Draw(t, "scale"),
-			Range: &Range{0.1, point().X + 1000}, Computed: rapid.SampledFrom([]string{"", "a + log a_b"}).Draw(t, "computed"), Missing: []string{"?"}}
+			Range: &Range{0.1, point().X + 1000}, Computed: rapid.SampledFrom([]string{"", "a + log a_b"}).Draw(t, "computed"), Missing: []string{"?"},
+			Records: rapid.SampledFrom([]string{"", "a"}).Draw(t, "records"), Answers: rapid.SampledFrom([]string{"", "b"}).Draw(t, "answers"), Cost: 1.5}
 	}
 	arrow := func() Arrow {
 		return Arrow{From: variable("from"), To: variable("to"), Why: "because of \"it\"\n", Prior: "normal with mean 0, sd a",
@@ -291,9 +362,19 @@ func someEdit(t *rapid.T, s *Study) Edit {
 		return &Law{Family: "normal", Formula: "mean = alpha_a + beta_a_b by farm * a", Arguments: []Argument{{"sd", "2 * b"}},
 			Priors: []Prior{{"beta_" + name("parent") + "_" + name("child"), "normal with mean 0, sd 1"}}}
 	}
+	conditions := func() []Condition {
+		low := point().Y
+		return rapid.SampledFrom([][]Condition{nil, {{Variable: variable("where"), Words: []string{"x", "y"}}},
+			{{Variable: variable("where"), Low: &low}, {Variable: variable("where too"), Low: &low, High: &low}}}).Draw(t, "conditions")
+	}
 	question := func() Question {
-		return Question{Exposure: variable("exposure"), Outcome: variable("outcome"), From: &Setting{Number: point().X}, To: &Setting{Word: "high"},
-			Held: rapid.SampledFrom([][]string{nil, {}, {"d"}}).Draw(t, "held")}
+		q := Question{Exposure: variable("exposure"), Outcome: variable("outcome"), From: &Setting{Number: point().X}, To: &Setting{Word: "high"},
+			Held: rapid.SampledFrom([][]string{nil, {}, {"d"}, {"farm"}}).Draw(t, "held"), Where: conditions(),
+			Groups: rapid.SampledFrom([]string{"", TheseGroups, NewGroups}).Draw(t, "groups"), Weigh: rapid.SampledFrom([]string{"", ByGroups}).Draw(t, "weigh")}
+		if rapid.Bool().Draw(t, "direct") {
+			q.Effect, q.Fixed = DirectEffect, []Fix{{Variable: variable("fixed"), At: Setting{Word: "low"}}}
+		}
+		return q
 	}
 	kinds := []func() Edit{
 		func() Edit { return AddVariable{line()} }, func() Edit { return ChangeVariable{variable("variable"), line()} },
@@ -307,7 +388,9 @@ func someEdit(t *rapid.T, s *Study) Edit {
 		func() Edit { return AddArc{rival(), Arc{A: variable("end"), B: variable("end")}} },
 		func() Edit { return RemoveArc{rival(), variable("end"), variable("end")} },
 		func() Edit { return ChangeLaw{rival(), variable("variable"), law()} },
-		func() Edit { return AddAbsent{rival(), Absent{variable("from"), variable("to"), "no way"}} },
+		func() Edit {
+			return AddAbsent{rival(), Absent{From: variable("from"), To: variable("to"), Why: "no way", References: []string{"r"}}}
+		},
 		func() Edit { return RemoveAbsent{rival(), variable("from"), variable("to")} },
 		func() Edit { return AddNote{rival(), Note{point(), name("text")}} }, func() Edit { return ChangeNote{rival(), note(), name("text")} },
 		func() Edit { return MoveNotes{rival(), map[int]Point{note(): point()}} }, func() Edit { return RemoveNotes{rival(), []int{note()}} },
@@ -317,8 +400,11 @@ func someEdit(t *rapid.T, s *Study) Edit {
 		func() Edit { return RemoveRival{rival()} }, func() Edit { return AddRival{Rival{Name: "R"}} }, func() Edit { return NoteRival{rival(), "n"} },
 		func() Edit { return AddQuestion{question()} }, func() Edit { return ChangeQuestion{at(), question()} },
 		func() Edit { return RemoveQuestion{at()} }, func() Edit { return Hold{at(), variable("held"), rapid.Bool().Draw(t, "on")} },
-		func() Edit { return AddData{Data{Name: "t", Text: "a,b\n1,2\n"}} }, func() Edit { return ChangeData{"t", Data{Name: "u", File: "u.csv", Rows: 3}} },
+		func() Edit { return AddData{Data{Name: "t", Text: "a,b\n1,2\n"}} }, func() Edit { return ChangeData{"t", Data{Name: "u", File: "u.csv", Rows: 3, Keep: conditions()}} },
 		func() Edit { return RemoveData{"u"} }, func() Edit { return Bind{variable("bound"), "", name("column")} },
+		func() Edit { return Dismiss{Dismissal{rival(), "M1 " + variable("finding"), "seen"}} },
+		func() Edit { return Restore{rival(), "M1 " + variable("finding")} },
+		func() Edit { return LimitRows{rival(), variable("limits"), rapid.Bool().Draw(t, "on")} },
 		func() Edit { return SetTitle{name("title")} }, func() Edit { return SetNote{name("note")} },
 		func() Edit { return TypeArrows{rival(), name("p") + " -> " + name("q") + " <- " + name("r")} },
 	}

@@ -3,6 +3,7 @@ package study
 import (
 	"reflect"
 	"slices"
+	"strings"
 )
 
 // AddVariable adds a line to the ledger.
@@ -75,7 +76,7 @@ func list[T any](items []T) []T {
 }
 
 // RemoveVariable takes a variable out of the ledger and off every sheet, with
-// its arrows, and out of every question.
+// its arrows, and out of every question, row filter and dismissed finding.
 type RemoveVariable struct{ ID string }
 
 // Apply leaves texts of formulas as they are.
@@ -86,16 +87,35 @@ func (e RemoveVariable) Apply(s *Study) (*Study, error) {
 	next := *s
 	next.Variables = without(s.Variables, byID(e.ID))
 	next.Rivals = mapped(s.Rivals, func(r *Rival) *Rival { return offSheet(r, []string{e.ID}) })
+	next.Variables = mapped(next.Variables, func(v *Variable) *Variable {
+		if v.Records != e.ID && v.Answers != e.ID {
+			return v
+		}
+		to := *v
+		if v.Records == e.ID {
+			to.Records = ""
+		}
+		if v.Answers == e.ID {
+			to.Answers = ""
+		}
+		return &to
+	})
+	next.Data = mapped(s.Data, func(d *Data) *Data {
+		to := *d
+		to.Keep = without(d.Keep, func(c Condition) bool { return c.Variable == e.ID })
+		return kept(d, to, len(to.Keep) == len(d.Keep))
+	})
+	next.Dismissed = without(s.Dismissed, func(d *Dismissal) bool { return slices.Contains(strings.Fields(d.Key), e.ID) })
 	next.Questions = mapped(s.Questions, func(q *Question) *Question {
-		is := q.Exposure == e.ID || q.Outcome == e.ID
-		held := slices.Contains(q.Held, e.ID)
-		if !is && !held {
+		if !q.names(e.ID) {
 			return q
 		}
 		to := *q
-		if held {
-			to.Held = append([]string{}, without(q.Held, func(id string) bool { return id == e.ID })...)
+		if slices.Contains(q.Held, e.ID) {
+			to.Held = q.heldWithout(e.ID)
 		}
+		to.Fixed = without(q.Fixed, func(f Fix) bool { return f.Variable == e.ID })
+		to.Where = without(q.Where, func(c Condition) bool { return c.Variable == e.ID })
 		if q.Exposure == e.ID {
 			to.Exposure, to.From, to.To, to.Shift = "", nil, nil, 0
 		}

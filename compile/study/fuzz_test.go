@@ -32,6 +32,7 @@ func FuzzRead(f *testing.F) {
 		`{"arrowroot": 1, "variables": [{"id": "a", "scale": "Count", "levels": [1, "2"], "range": [1e-3, 2E2]}], "rivals": [{"nodes": []}]}`,
 		`{"arrowroot": 1, "variables": [{"id": "a"}, {"id": "b"}], "rivals": [{"arrows": [{"from": "a", "to": "b"}, {"from": "b", "to": "a"}]}]}`,
 		`{"arrowroot": 1, "data": [{"file": "x/y.csv"}, {"text": ["a", "1", ""], "name": "t"}], "questions": [{"from": "3", "held": []}, {"shift": -1}]}`,
+		`{"arrowroot": 1, "variables": [{"id": "a", "records": "b"}, {"id": "b", "scale": "binary", "cost": 3}], "questions": [{"effect": "Controlled direct", "fixed": [{"variable": "b", "at": "1"}], "where": [{"variable": "a", "low": 1}], "groups": "new groups"}]}`,
 		`{"arrowroot": 1, "arrowroot": 1}`, `{"arrowroot": 01}`, "[[[[", `{"a": -0.5e+3, "b": [true, null]}`,
 	} {
 		f.Add(s)

@@ -58,6 +58,11 @@ func (r *reader) top(v *value) {
 	o.list("plates", "a plate", r.plate)
 	o.list("rivals", "a rival", r.rival)
 	o.list("questions", "a question", r.question)
+	o.list("dismissed", "a finding that was set aside", func(o *object) {
+		d := &Dismissal{Rival: o.needText("rival"), Key: o.needText("finding"), Why: o.text("why")}
+		r.lines[d] = o.value.line
+		s.Dismissed = append(s.Dismissed, d)
+	})
 	o.finish()
 }
 
@@ -82,6 +87,7 @@ func (r *reader) data(o *object) {
 	if v := o.get("text"); v != nil {
 		d.Text = strings.Join(o.texts("text"), "\n")
 	}
+	d.Keep = readConditions(o, "keep")
 	if d.Name == "" {
 		base := filepath.Base(filepath.FromSlash(d.File))
 		d.Name = strings.TrimSuffix(base, filepath.Ext(base))
@@ -113,6 +119,7 @@ func (r *reader) variable(o *object) {
 		v.Range = &Range{low, high}
 	}
 	v.Plates, v.Tier, v.Note = o.texts("plates"), o.whole("tier"), o.text("note")
+	v.Records, v.Answers, v.Cost = o.text("records"), o.text("answers"), o.number("cost")
 	r.lines[v] = o.value.line
 	r.study.Variables = append(r.study.Variables, v)
 }
@@ -153,14 +160,14 @@ func (r *reader) rival(o *object) {
 		if len(ends) != 2 {
 			wrong("between", v, "a list of two variables")
 		}
-		a := &Arc{A: ends[0], B: ends[1], Plates: o.texts("plates"), Why: o.text("why")}
+		a := &Arc{A: ends[0], B: ends[1], Plates: o.texts("plates"), Why: o.text("why"), References: o.texts("references")}
 		r.lines[a] = o.value.line
 		mention(a.A, o.value.line)
 		mention(a.B, o.value.line)
 		d.Arcs = append(d.Arcs, a)
 	})
 	o.list("absent", "an absent arrow", func(o *object) {
-		a := &Absent{From: o.needText("from"), To: o.needText("to"), Why: o.text("why")}
+		a := &Absent{From: o.needText("from"), To: o.needText("to"), Why: o.text("why"), References: o.texts("references")}
 		r.lines[a] = o.value.line
 		d.Absent = append(d.Absent, a)
 	})
@@ -174,7 +181,7 @@ func (r *reader) rival(o *object) {
 }
 
 func (r *reader) node(rival *Rival, o *object) {
-	n := &Node{Variable: o.needText("variable")}
+	n := &Node{Variable: o.needText("variable"), Limits: o.flag("limits")}
 	if x, y, given := o.pair("at"); given {
 		if rival.Layout.At == nil {
 			rival.Layout.At = make(map[string]Point)
@@ -222,20 +229,48 @@ func (r *reader) question(o *object) {
 	q := &Question{
 		Exposure: o.text("exposure"),
 		Outcome:  o.text("outcome"),
-		Effect:   o.oneOf("effect", "an effect", TotalEffect),
+		Effect:   o.oneOf("effect", "an effect", TotalEffect, DirectEffect),
 	}
 	exposure := r.study.Variable(q.Exposure)
 	q.From, q.To = readSetting(o, "from", exposure), readSetting(o, "to", exposure)
 	q.Shift = o.number("shift")
+	o.list("fixed", "a variable that is fixed", func(o *object) {
+		f := Fix{Variable: o.needText("variable")}
+		o.need("at")
+		f.At = *readSetting(o, "at", r.study.Variable(f.Variable))
+		q.Fixed = append(q.Fixed, f)
+	})
 	if o.get("held") != nil {
 		q.Held = append([]string{}, o.texts("held")...)
 	}
+	q.Where = readConditions(o, "where")
 	q.Over = o.oneOf("over", "a population", TheseRows, PopulationAlike)
+	q.Groups = o.oneOf("groups", "a choice of groups", TheseGroups, NewGroups)
+	q.Weigh = o.oneOf("weigh", "a way to weigh", ByRows, ByGroups)
 	q.As = o.oneOf("as", "a way to compare", Difference, Ratio)
 	q.OutcomeLevels = o.texts("outcome levels")
 	q.Level = o.number("level")
 	r.lines[q] = o.value.line
 	r.study.Questions = append(r.study.Questions, q)
+}
+
+// readConditions reads what is asked of rows.
+func readConditions(o *object, key string) []Condition {
+	var out []Condition
+	o.list(key, "a condition", func(o *object) {
+		c := Condition{Variable: o.needText("variable"), Words: o.texts("words")}
+		for _, bound := range [...]struct {
+			key string
+			to  **float64
+		}{{"low", &c.Low}, {"high", &c.High}} {
+			if v := o.get(bound.key); v != nil {
+				n := numberOf(bound.key, v)
+				*bound.to = &n
+			}
+		}
+		out = append(out, c)
+	})
+	return out
 }
 
 // readSetting reads a number or a word. A number in quotes is a number, and a

@@ -30,11 +30,12 @@ func renameVariable(s *Study, old, new string) {
 	s.Variables = mapped(s.Variables, func(v *Variable) *Variable {
 		next := *v
 		next.Computed = r.text(v.Computed, v.ID)
-		return kept(v, next, next.Computed == v.Computed)
+		next.Records, next.Answers = one(v.Records), one(v.Answers)
+		return kept(v, next, next.Computed == v.Computed && next.Records == v.Records && next.Answers == v.Answers)
 	})
 	r.rivals(s)
 	s.Questions = mapped(s.Questions, func(q *Question) *Question {
-		if q.Exposure != old && q.Outcome != old && !slices.Contains(q.Held, old) {
+		if !q.names(old) {
 			return q
 		}
 		next := copyQuestion(*q)
@@ -42,7 +43,26 @@ func renameVariable(s *Study, old, new string) {
 		for i, h := range q.Held {
 			next.Held[i] = one(h)
 		}
+		for i, f := range q.Fixed {
+			next.Fixed[i].Variable = one(f.Variable)
+		}
+		for i, c := range q.Where {
+			next.Where[i].Variable = one(c.Variable)
+		}
 		return &next
+	})
+	s.Data = mapped(s.Data, func(d *Data) *Data {
+		next, same := copyData(*d), true
+		for i, c := range d.Keep {
+			next.Keep[i].Variable = one(c.Variable)
+			same = same && c.Variable != old
+		}
+		return kept(d, next, same)
+	})
+	s.Dismissed = mapped(s.Dismissed, func(d *Dismissal) *Dismissal {
+		next := *d
+		next.Key = strings.Join(eachWord(strings.Split(d.Key, " "), one), " ")
+		return kept(d, next, next.Key == d.Key)
 	})
 }
 
@@ -71,6 +91,13 @@ func renamePlate(s *Study, old, new string) {
 	}
 	isVariable := s.Variable(old) != nil
 	known[old] = true
+	if !isVariable { // else a held name is that of the variable
+		s.Questions = mapped(s.Questions, func(q *Question) *Question {
+			next := *q
+			next.Held = eachWord(q.Held, one)
+			return kept(q, next, slices.Equal(next.Held, q.Held))
+		})
+	}
 	r := renamer{plate: one, parameter: func(id, of string) string {
 		if isVariable {
 			return id // tau_farm could be of either; leave it
@@ -141,7 +168,7 @@ func (r renamer) rivals(s *Study) {
 		d.Absent = mapped(d.Absent, func(a *Absent) *Absent {
 			next := *a
 			next.From, next.To = one(a.From), one(a.To)
-			return kept(a, next, next == *a)
+			return kept(a, next, next.From == a.From && next.To == a.To)
 		})
 		next := *rival
 		if !sameSlice(d.Nodes, rival.Diagram.Nodes) || !sameSlice(d.Arrows, rival.Diagram.Arrows) ||
@@ -274,7 +301,8 @@ func eachPlateList(s *Study, change func([]string) []string) {
 			}
 			law := *n.Law
 			law.VariesBy = change(law.VariesBy)
-			next := Node{Variable: n.Variable, Law: copyLaw(&law)}
+			next := *n
+			next.Law = copyLaw(&law)
 			return kept(n, next, slices.Equal(law.VariesBy, n.Law.VariesBy))
 		})
 		d.Arrows = mapped(d.Arrows, func(a *Arrow) *Arrow {

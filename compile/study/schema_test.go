@@ -37,6 +37,9 @@ func TestSchemaKnowsTheKeysOfTheReader(t *testing.T) {
 			if items, ok := part["items"].(map[string]any); ok {
 				part = items
 			}
+			if part["$ref"] == "#/$defs/condition" {
+				part = schema["$defs"].(map[string]any)["condition"].(map[string]any)
+			}
 		}
 		var keys []string
 		for key, p := range part["properties"].(map[string]any) {
@@ -64,6 +67,10 @@ func TestSchemaKnowsTheKeysOfTheReader(t *testing.T) {
 		"rivals absent":    `{"arrowroot": 1, "rivals": [{"absent": [{"from": "a", "to": "b", "x": 1}]}]}`,
 		"rivals notes":     `{"arrowroot": 1, "rivals": [{"notes": [{"text": "a", "x": 1}]}]}`,
 		"questions":        `{"arrowroot": 1, "questions": [{"x": 1}]}`,
+		"questions fixed":  `{"arrowroot": 1, "questions": [{"fixed": [{"variable": "a", "at": 1, "x": 1}]}]}`,
+		"questions where":  `{"arrowroot": 1, "questions": [{"where": [{"variable": "a", "x": 1}]}]}`,
+		"data keep":        `{"arrowroot": 1, "data": [{"keep": [{"variable": "a", "x": 1}]}]}`,
+		"dismissed":        `{"arrowroot": 1, "dismissed": [{"rival": "a", "finding": "b", "x": 1}]}`,
 	} {
 		_, err := Read("x", []byte(text))
 		if err == nil {

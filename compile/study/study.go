@@ -21,6 +21,7 @@ type Study struct {
 	Plates    []*Plate
 	Rivals    []*Rival
 	Questions []*Question
+	Dismissed []*Dismissal
 }
 
 // Data is a table that the study reads. Exactly one of File and Text is set,
@@ -31,6 +32,16 @@ type Data struct {
 	Text   string // embedded CSV
 	SHA256 string // of the bytes last read; "" if never read
 	Rows   int
+	Keep   []Condition // only the rows that meet all of these are used; nil = every row
+}
+
+// A Condition says which rows are meant: those whose value of a variable is
+// one of the words or lies between the bounds, both included. Either words or
+// at least one bound are given; a missing entry meets no condition.
+type Condition struct {
+	Variable  string
+	Words     []string // levels of a category, ordered or worded binary variable
+	Low, High *float64 // in the variable's unit, after any division; nil = no bound on this side
 }
 
 // Scale says what values a variable can take.
@@ -74,6 +85,9 @@ type Variable struct {
 	Computed   string   // formula of a deterministic variable; "" = not computed
 	Tier       int      // time tier; 0 = not said
 	Note       string
+	Records    string  // this is an error-prone record of that variable; "" = of none
+	Answers    string  // this says in which rows that variable is recorded; "" = of none
+	Cost       float64 // what measuring it costs, in any one unit; 0 = not said
 }
 
 // Name is what people read: the label if there is one.
@@ -130,6 +144,7 @@ type Diagram struct {
 type Node struct {
 	Variable string
 	Law      *Law // nil = the default law of the variable's scale
+	Limits   bool // only rows with one value of this variable are in the data
 }
 
 // A Law says how a variable gets its value. Empty fields mean the default.
@@ -167,15 +182,17 @@ type Arrow struct {
 
 // An Arc joins two variables that share an unmeasured cause nobody named.
 type Arc struct {
-	A, B   string
-	Plates []string // the level at which the cause lives; empty = the row
-	Why    string
+	A, B       string
+	Plates     []string // the level at which the cause lives; empty = the row
+	Why        string
+	References []string
 }
 
 // An Absent arrow is an assumption with a reason.
 type Absent struct {
-	From, To string
-	Why      string
+	From, To   string
+	Why        string
+	References []string
 }
 
 // A Setting is a value given to the exposure: a number, or a level's word.
@@ -184,12 +201,19 @@ type Setting struct {
 	Word   string // for category, ordered and worded binary exposures; "" = Number counts
 }
 
-// Words of Question.Effect, Over and As.
+// Words of Question.Effect, Over, Groups, Weigh and As.
 const (
-	TotalEffect = "total"
+	TotalEffect  = "total"
+	DirectEffect = "controlled direct"
 
 	TheseRows       = "these rows"
 	PopulationAlike = "a population like these"
+
+	TheseGroups = "these groups"
+	NewGroups   = "new groups"
+
+	ByRows   = "by rows"
+	ByGroups = "by groups"
 
 	Difference = "difference"
 	Ratio      = "ratio"
@@ -210,10 +234,34 @@ type Question struct {
 	Exposure, Outcome string
 	Effect            string // "" = total
 	From, To          *Setting
-	Shift             float64  // with From and To nil: add this to every row's own value
-	Held              []string // nil = nobody said yet; empty = said to be none
-	Over              string   // "" = these rows
-	As                string   // "" = difference
-	OutcomeLevels     []string // category and ordered outcomes: the levels whose probability is asked for
-	Level             float64  // credible level of intervals; 0 = 0.9
+	Shift             float64     // with From and To nil: add this to every row's own value
+	Fixed             []Fix       // controlled direct: what else is set, and at which value
+	Held              []string    // variables and plates; nil = nobody said yet; empty = said to be none
+	Where             []Condition // the rows asked about meet all of these; nil = every row
+	Over              string      // "" = these rows
+	Groups            string      // "" = these groups: the levels of the plates that are in the data
+	Weigh             string      // "" = by rows; by groups: each level of the outermost plate counts the same
+	As                string      // "" = difference
+	OutcomeLevels     []string    // category and ordered outcomes: the levels whose probability is asked for
+	Level             float64     // credible level of intervals; 0 = 0.9
+}
+
+// A Fix sets one variable more, besides the exposure: a controlled direct
+// effect is the exposure's with these at one value throughout.
+type Fix struct {
+	Variable string
+	At       Setting
+}
+
+// HoldsPlate reports whether a name in Question.Held is that of a plate. A
+// variable of the same name comes first.
+func (s *Study) HoldsPlate(held string) bool {
+	return s.Variable(held) == nil && s.Plate(held) != nil
+}
+
+// A Dismissal sets a finding on one rival aside, with a reason. Key is the
+// finding's code and what it is about, parted by spaces: "M1 hedge bees". The
+// names of variables in it follow renaming.
+type Dismissal struct {
+	Rival, Key, Why string
 }

@@ -11,7 +11,7 @@ import (
 
 // A Fault is something in a study that must not be. Part points to the part
 // that is at fault: a *Variable, *Plate, *Data, *Rival, *Node, *Arrow, *Arc,
-// *Absent, *Note or *Question of the study.
+// *Absent, *Note, *Question or *Dismissal of the study.
 type Fault struct {
 	Part   any
 	Reason string
@@ -28,10 +28,12 @@ func Check(s *Study) error {
 	c.checkData()
 	c.checkPlates()
 	c.checkLedger()
+	c.checkConditions()
 	c.checkRivals()
 	for _, q := range s.Questions {
 		c.checkQuestion(q)
 	}
+	c.checkDismissed()
 	if c.fault == nil {
 		return nil
 	}
@@ -152,6 +154,13 @@ func (c *checker) checkLedger() {
 		c.insist(v.Data == "" || c.tables[v.Data], v, "%s is bound to the data “%s”, which are not in the study", v.ID, v.Data)
 		c.insist(finite(v.Divide) && v.Divide >= 0, v, "%s must be divided by a positive number", v.ID)
 		c.insist(finite(v.Nudge) && v.Nudge >= 0, v, "%s must be nudged by a positive number", v.ID)
+		c.insist(finite(v.Cost) && v.Cost >= 0, v, "measuring %s cannot cost less than nothing", v.ID)
+	}
+	for _, v := range c.study.Variables {
+		c.insist(v.Records == "" || seen[v.Records], v, "%s is a record of %s, which is not among the variables", v.ID, v.Records)
+		c.insist(v.Records != v.ID, v, "%s cannot be a record of itself", v.ID)
+		c.insist(v.Answers == "" || seen[v.Answers], v, "%s says where %s is recorded, which is not among the variables", v.ID, v.Answers)
+		c.insist(v.Answers != v.ID, v, "%s cannot say where it is recorded itself", v.ID)
 	}
 }
 
@@ -336,19 +345,74 @@ func (c *checker) checkQuestion(q *Question) {
 	h, twice := repeated(q.Held, itself)
 	c.insist(!twice, q, "a question holds %s twice", h)
 	for _, h := range q.Held {
-		known("held variable", h)
+		c.insist(c.variables[h] || c.plates[h], q, "a question holds %s, which is neither among the variables nor among the plates", h)
 		c.insist(h != q.Exposure && h != q.Outcome, q, "a question holds %s, which is its exposure or outcome", h)
 	}
 	oneOf := func(what, word string, known ...string) {
 		c.insist(word == "" || slices.Contains(known, word), q, "“%s” is not %s this version knows (%s)", word, what, strings.Join(known, ", "))
 	}
-	oneOf("an effect", q.Effect, TotalEffect)
+	oneOf("an effect", q.Effect, TotalEffect, DirectEffect)
 	oneOf("a population", q.Over, TheseRows, PopulationAlike)
+	oneOf("a choice of groups", q.Groups, TheseGroups, NewGroups)
+	oneOf("a way to weigh", q.Weigh, ByRows, ByGroups)
 	oneOf("a way to compare", q.As, Difference, Ratio)
 	for _, set := range [2]*Setting{q.From, q.To} {
 		c.insist(set == nil || finite(set.Number), q, "a question compares values that are not numbers")
 	}
 	c.insist(finite(q.Shift), q, "a question shifts by something that is not a number")
 	c.insist(q.Shift == 0 || q.From == nil && q.To == nil, q, "a question asks for a shift and for two values; only one of them can be meant")
+	c.checkFixed(q)
+	c.conditions(q, "a question", q.Where)
 	c.insist(q.Level >= 0 && q.Level < 1, q, "the credible level of a question must lie between 0 and 1, as in 0.9")
+}
+
+func (c *checker) checkFixed(q *Question) {
+	c.insist(q.Fixed == nil || q.Effect == DirectEffect, q, "a question fixes a variable, which only a %s effect does", DirectEffect)
+	name, twice := repeated(q.Fixed, func(f Fix) string { return f.Variable })
+	c.insist(!twice, q, "a question fixes %s twice", name)
+	for _, f := range q.Fixed {
+		c.insist(c.variables[f.Variable], q, "a question fixes %s, which is not among the variables", f.Variable)
+		c.insist(f.Variable != q.Exposure && f.Variable != q.Outcome, q, "a question fixes %s, which is its exposure or outcome", f.Variable)
+		c.insist(!slices.Contains(q.Held, f.Variable), q, "a question holds %s and fixes it; only one of them can be meant", f.Variable)
+		c.insist(finite(f.At.Number), q, "a question fixes %s at something that is not a number", f.Variable)
+	}
+}
+
+// checkConditions looks at row filters, which name variables and so are looked
+// at when the ledger is known.
+func (c *checker) checkConditions() {
+	for _, d := range c.study.Data {
+		c.conditions(d, "the row filter of “"+d.Name+"”", d.Keep)
+	}
+}
+
+// conditions checks what one place (a question, a row filter) asks of rows.
+// Whether the words are levels of the variable is for the model to say.
+func (c *checker) conditions(part any, where string, conditions []Condition) {
+	name, twice := repeated(conditions, func(c Condition) string { return c.Variable })
+	c.insist(!twice, part, "%s has two conditions on %s", where, name)
+	for _, one := range conditions {
+		v := one.Variable
+		c.insist(c.variables[v], part, "%s has a condition on %s, which is not among the variables", where, v)
+		bounded := one.Low != nil || one.High != nil
+		c.insist(bounded || len(one.Words) > 0, part, "%s has a condition on %s that asks for nothing: give words or bounds", where, v)
+		c.insist(!bounded || len(one.Words) == 0, part, "%s asks for words and for bounds of %s; only one of them can be meant", where, v)
+		for _, bound := range [2]*float64{one.Low, one.High} {
+			c.insist(bound == nil || finite(*bound), part, "%s bounds %s by something that is not a number", where, v)
+		}
+		c.insist(one.Low == nil || one.High == nil || *one.Low <= *one.High, part, "%s asks for %s from a higher to a lower number", where, v)
+		word, twice := repeated(one.Words, itself)
+		c.insist(!twice, part, "%s asks for “%s” of %s twice", where, word, v)
+	}
+}
+
+func (c *checker) checkDismissed() {
+	seen := make(map[[2]string]bool)
+	for _, d := range c.study.Dismissed {
+		c.insist(c.study.Rival(d.Rival) != nil, d, "a finding is set aside for the rival “%s”, which does not exist", d.Rival)
+		c.insist(strings.TrimSpace(d.Key) != "", d, "it is not said which finding is set aside")
+		finding := [2]string{d.Rival, d.Key}
+		c.insist(!seen[finding], d, "the finding “%s” on “%s” is set aside twice", d.Key, d.Rival)
+		seen[finding] = true
+	}
 }

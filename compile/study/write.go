@@ -32,6 +32,13 @@ func Write(s *Study) []byte {
 	})
 	section(&w, "rivals", s.Rivals, writeRival)
 	section(&w, "questions", s.Questions, writeQuestion)
+	section(&w, "dismissed", s.Dismissed, func(d *Dismissal) string {
+		var f fields
+		f.text("rival", d.Rival)
+		f.text("finding", d.Key)
+		f.text("why", d.Why)
+		return f.String()
+	})
 	w.raw("\n}\n")
 	return w.Bytes()
 }
@@ -91,6 +98,34 @@ func (f *fields) texts(key string, values []string) {
 	}
 }
 
+func (f *fields) setting(key string, value Setting) {
+	if value.Word != "" {
+		f.raw(key, quote(value.Word))
+		return
+	}
+	f.raw(key, formula.FormatNumber(value.Number))
+}
+
+func (f *fields) conditions(key string, conditions []Condition) {
+	if len(conditions) == 0 {
+		return
+	}
+	written := make([]string, len(conditions))
+	for i, c := range conditions {
+		var f fields
+		f.text("variable", c.Variable)
+		f.texts("words", c.Words)
+		if c.Low != nil {
+			f.raw("low", formula.FormatNumber(*c.Low))
+		}
+		if c.High != nil {
+			f.raw("high", formula.FormatNumber(*c.High))
+		}
+		written[i] = f.String()
+	}
+	f.raw(key, "["+strings.Join(written, ", ")+"]")
+}
+
 func (f *fields) String() string { return "{" + f.Builder.String() + "}" }
 
 func textList(values []string) string {
@@ -128,6 +163,7 @@ func writeData(d *Data) string {
 	}
 	f.text("sha256", d.SHA256)
 	f.number("rows", float64(d.Rows))
+	f.conditions("keep", d.Keep)
 	return f.String()
 }
 
@@ -153,6 +189,9 @@ func writeVariable(v *Variable) string {
 	f.texts("plates", v.Plates)
 	f.number("tier", float64(v.Tier))
 	f.text("note", v.Note)
+	f.text("records", v.Records)
+	f.text("answers", v.Answers)
+	f.number("cost", v.Cost)
 	return f.String()
 }
 
@@ -179,6 +218,7 @@ func writeRival(r *Rival) string {
 			f.raw("between", textList([]string{a.A, a.B}))
 			f.texts("plates", a.Plates)
 			f.text("why", a.Why)
+			f.texts("references", a.References)
 			return f.String()
 		}, "    "))
 	}
@@ -188,6 +228,7 @@ func writeRival(r *Rival) string {
 			f.text("from", a.From)
 			f.text("to", a.To)
 			f.text("why", a.Why)
+			f.texts("references", a.References)
 			return f.String()
 		}, "    "))
 	}
@@ -210,6 +251,9 @@ func writeNode(n *Node, layout *Layout) string {
 	}
 	if n.Law != nil {
 		f.raw("law", writeLaw(n.Law))
+	}
+	if n.Limits {
+		f.raw("limits", "true")
 	}
 	return f.String()
 }
@@ -258,19 +302,28 @@ func writeQuestion(q *Question) string {
 		key   string
 		value *Setting
 	}{{"from", q.From}, {"to", q.To}} {
-		switch {
-		case set.value == nil:
-		case set.value.Word != "":
-			f.raw(set.key, quote(set.value.Word))
-		default:
-			f.raw(set.key, formula.FormatNumber(set.value.Number))
+		if set.value != nil {
+			f.setting(set.key, *set.value)
 		}
 	}
 	f.number("shift", q.Shift)
+	if len(q.Fixed) > 0 {
+		fixed := make([]string, len(q.Fixed))
+		for i, one := range q.Fixed {
+			var f fields
+			f.text("variable", one.Variable)
+			f.setting("at", one.At)
+			fixed[i] = f.String()
+		}
+		f.raw("fixed", "["+strings.Join(fixed, ", ")+"]")
+	}
 	if q.Held != nil {
 		f.raw("held", textList(q.Held))
 	}
+	f.conditions("where", q.Where)
 	f.text("over", q.Over)
+	f.text("groups", q.Groups)
+	f.text("weigh", q.Weigh)
 	f.text("as", q.As)
 	f.texts("outcome levels", q.OutcomeLevels)
 	f.number("level", q.Level)
