@@ -81,6 +81,15 @@ func (e MoveNotes) Label() string {
 	return "Move notes"
 }
 
+// Merge makes one step of two moves of the same notes.
+func (e MoveNotes) Merge(next Edit) (Edit, bool) {
+	n, ok := next.(MoveNotes)
+	if !ok || n.Rival != e.Rival || !slices.Equal(slices.Sorted(maps.Keys(n.To)), slices.Sorted(maps.Keys(e.To))) {
+		return nil, false
+	}
+	return n, true
+}
+
 // RemoveNotes takes notes off a sheet.
 type RemoveNotes struct {
 	Rival string
