@@ -147,26 +147,43 @@ func (e TypeArrows) Apply(s *Study) (*Study, error) {
 	if r == nil {
 		return nil, noRival(e.Rival)
 	}
-	var edits []Edit
-	for _, id := range t.Variables {
-		if s.Variable(id) == nil {
-			edits = append(edits, AddVariable{Variable{ID: id}})
+	if s, err = changed(s, func(s *Study) {
+		for _, id := range t.Variables {
+			if s.Variable(id) == nil {
+				s.Variables = and(s.Variables, &Variable{ID: id})
+			}
 		}
-		if r.Diagram.Node(id) == nil {
-			edits = append(edits, AddNode{Rival: e.Rival, Variable: id})
+	}); err != nil {
+		return nil, err
+	}
+	return onSheet(s, e.Rival, t.draw)
+}
+
+// draw puts on a sheet what is not there yet: all at once, because a cycle is
+// looked for once and not for every arrow.
+func (t *Typed) draw(r *Rival) error {
+	d := r.Diagram
+	for _, id := range t.Variables {
+		if d.Node(id) == nil {
+			d.Nodes = and(d.Nodes, &Node{Variable: id})
 		}
 	}
 	for _, a := range t.Arrows {
-		if r.Diagram.Arrow(a[0], a[1]) == nil {
-			edits = append(edits, AddArrow{Rival: e.Rival, Arrow: Arrow{From: a[0], To: a[1]}})
+		if d.Arrow(a[0], a[1]) == nil {
+			d.Arrows = and(d.Arrows, &Arrow{From: a[0], To: a[1]})
+			d.Absent = without(d.Absent, byAbsentEnds(a[0], a[1]))
 		}
 	}
 	for _, a := range t.Arcs {
-		if r.Diagram.Arc(a[0], a[1]) == nil {
-			edits = append(edits, AddArc{Rival: e.Rival, Arc: Arc{A: a[0], B: a[1]}})
+		if d.Arc(a[0], a[1]) == nil {
+			d.Arcs = and(d.Arcs, &Arc{A: a[0], B: a[1]})
 		}
 	}
-	return Several{Edits: edits}.Apply(s)
+	if cyclic(d) {
+		a, cycle := closing(d)
+		return &CycleError{From: a.From, To: a.To, Cycle: cycle}
+	}
+	return nil
 }
 
 // Label names the edit.

@@ -315,6 +315,10 @@ func closing(d *Diagram) (*Arrow, []string) {
 // walk finds a shortest way along arrows between two variables, both ends
 // included; nil if there is none.
 func walk(arrows []*Arrow, from, to string) []string {
+	children := make(map[string][]string, len(arrows))
+	for _, a := range arrows {
+		children[a.From] = append(children[a.From], a.To)
+	}
 	before := map[string]string{from: ""}
 	for queue := []string{from}; len(queue) > 0; queue = queue[1:] {
 		if queue[0] == to {
@@ -325,10 +329,10 @@ func walk(arrows []*Arrow, from, to string) []string {
 			slices.Reverse(way)
 			return way
 		}
-		for _, a := range arrows {
-			if _, seen := before[a.To]; a.From == queue[0] && !seen {
-				before[a.To] = a.From
-				queue = append(queue, a.To)
+		for _, next := range children[queue[0]] {
+			if _, seen := before[next]; !seen {
+				before[next] = queue[0]
+				queue = append(queue, next)
 			}
 		}
 	}
