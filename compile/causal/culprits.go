@@ -1,26 +1,34 @@
 package causal
 
-import "arrowroot/compile/graph"
+import (
+	"slices"
 
-// findCulprits asks which unmeasured variables, drawn or behind an arc, would
-// give an adjustment set if only they were measured: each that does alone, or
-// else a smallest-by-dropping collection that does together.
+	"arrowroot/compile/graph"
+)
+
+// findCulprits asks for them for the reading's pair.
 func (r *Reading) findCulprits() {
-	g := r.Graph
+	r.Culprits, r.CulpritArcs, r.CulpritsAll = Culprits(r.Graph, []int{r.Query.Exposure}, []int{r.Query.Outcome})
+}
+
+// Culprits asks which unmeasured variables, drawn or behind an arc, would give
+// an adjustment set if only they were measured: each that does alone, or else,
+// when all is set, a smallest-by-dropping collection that does together.
+func Culprits(g *graph.Graph, exposures, outcomes []int) (nodes []int, arcs [][2]int, all bool) {
 	named, first := nameArcs(g)
 	var hidden []int
 	for v, measured := range named.Measured {
-		if !measured && v != r.Query.Exposure && v != r.Query.Outcome {
+		if !measured && !slices.Contains(exposures, v) && !slices.Contains(outcomes, v) {
 			hidden = append(hidden, v)
 		}
 	}
 	gives := func(measured []int) bool {
 		h := *named
-		h.Measured = append([]bool(nil), named.Measured...)
+		h.Measured = slices.Clone(named.Measured)
 		for _, v := range measured {
 			h.Measured[v] = true
 		}
-		return newComparison(&h, []int{r.Query.Exposure}, []int{r.Query.Outcome}).exists(nil)
+		return newComparison(&h, exposures, outcomes).exists(nil)
 	}
 	var culprits []int
 	for _, v := range hidden {
@@ -29,7 +37,7 @@ func (r *Reading) findCulprits() {
 		}
 	}
 	if culprits == nil && gives(hidden) {
-		r.CulpritsAll = true
+		all = true
 		culprits = hidden
 		for _, v := range hidden {
 			if fewer := minus(culprits, []int{v}); gives(fewer) {
@@ -39,11 +47,12 @@ func (r *Reading) findCulprits() {
 	}
 	for _, v := range culprits {
 		if v < first {
-			r.Culprits = append(r.Culprits, v)
+			nodes = append(nodes, v)
 		} else {
-			r.CulpritArcs = append(r.CulpritArcs, g.Arcs[v-first])
+			arcs = append(arcs, g.Arcs[v-first])
 		}
 	}
+	return nodes, arcs, all
 }
 
 // nameArcs draws the cause behind every arc as an unmeasured node of its own;
