@@ -117,7 +117,7 @@ type Untested struct {
 // model of the arrows.
 type Tetrad struct {
 	causal.Tetrad
-	Effect             // difference of the products of correlations, −1 to 1
+	Effect      // difference of the products of correlations, −1 to 1
 	P, Adjusted float64
 	Rows        int
 	Verdict     Verdict
@@ -129,7 +129,7 @@ type Tetrad struct {
 // it names has few levels.
 type Functional struct {
 	causal.Functional
-	Effect             // largest difference of a probability, 0 to 1
+	Effect      // largest difference of a probability, 0 to 1
 	P, Adjusted float64
 	Rows        int
 	Verdict     Verdict
