@@ -283,8 +283,10 @@ func (e *Editor) handle(event scene.Event) {
 	if a.Refuse != "" {
 		e.refuse(a.Refuse)
 	}
-	if a.Name != nil {
-		e.name(*a.Name)
+	if n := a.Name; n != nil && event.Kind == scene.Release {
+		e.post(func() { e.name(*n) }) // Fyne takes the focus away from what a release opens
+	} else if n != nil {
+		e.name(*n)
 	}
 	if a.Menu != nil && e.OnMenu != nil {
 		e.OnMenu(*a.Menu, e.press.window)

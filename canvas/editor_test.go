@@ -79,6 +79,7 @@ func (b *bench) drag(x0, y0, x1, y1 float32, button desktop.MouseButton, mod fyn
 	}
 	b.MouseUp(&desktop.MouseEvent{PointEvent: at(x1, y1), Button: button, Modifier: mod})
 	b.DragEnd()
+	b.drain()
 	b.MouseMoved(&desktop.MouseEvent{PointEvent: at(x1, y1)})
 }
 

@@ -72,6 +72,9 @@ func (n *nameEntry) place() {
 	y := min(max(float32(at.Y)-h/2, 0), max(e.Size().Height-h, 0))
 	n.Resize(fyne.NewSize(w, h))
 	n.Move(fyne.NewPos(x, y))
+	if n.naming.Note && n.naming.Which < 0 { // a new note stands where it was typed, all of it in sight
+		n.naming.At = scene.Snapped(e.in.View.In(draw.Point{X: float64(x), Y: float64(y) + 4}))
+	}
 }
 
 // submit takes the typed name; a name that cannot be keeps the entry open.

@@ -19,6 +19,7 @@ func TestNoteOnTheSheet(t *testing.T) {
 	b := newBench(t, pair())
 	b.SetTool(scene.NoteTool)
 	b.click(300, 320, desktop.MouseButtonPrimary, 0)
+	b.drain()
 	if b.entry.naming == nil || !b.entry.MultiLine {
 		t.Fatal("no entry for a note")
 	}

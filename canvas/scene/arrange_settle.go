@@ -70,11 +70,11 @@ func (a *arranger) freeNear(want study.Point, width float64, placed map[string]s
 	}
 	for ring := range 40 {
 		for _, d := range [][2]int{{0, 1}, {0, -1}, {1, 0}, {-1, 0}, {1, 1}, {1, -1}, {-1, 1}, {-1, -1}} {
-			p := snapped(study.Point{X: want.X + float64(d[0]*ring)*32, Y: want.Y + float64(d[1]*ring)*24})
+			p := Snapped(study.Point{X: want.X + float64(d[0]*ring)*32, Y: want.Y + float64(d[1]*ring)*24})
 			if free(p) {
 				return p
 			}
 		}
 	}
-	return snapped(want)
+	return Snapped(want)
 }

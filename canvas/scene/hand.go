@@ -308,10 +308,10 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 	g := h.grip
 	if g == gripNone || g == gripKeys {
 		if h.tool == VariableTool && e.Button == Primary && h.target.Kind == Nothing && in.Rival != nil {
-			return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
+			return Answer{Name: &Naming{At: Snapped(in.View.In(e.At))}}
 		}
 		if h.tool == NoteTool && e.Button == Primary && h.target.Kind != OnNote && in.Rival != nil {
-			return Answer{Name: &Naming{At: snapped(in.View.In(e.At)), Note: true, Which: -1}}
+			return Answer{Name: &Naming{At: Snapped(in.View.In(e.At)), Note: true, Which: -1}}
 		}
 		return Answer{}
 	}
@@ -332,7 +332,7 @@ func (h *Hand) release(in *Input, m *Map, e Event) Answer {
 		if len(ids) == 0 {
 			return Answer{Preview: none, Refuse: "A plate needs variables in it: draw the frame around some."}
 		}
-		return Answer{Preview: none, Name: &Naming{Members: ids, At: snapped(in.View.In(h.start))}}
+		return Answer{Preview: none, Name: &Naming{Members: ids, At: Snapped(in.View.In(h.start))}}
 	}
 	return Answer{Preview: none}
 }
@@ -386,7 +386,7 @@ func (h *Hand) connect(in *Input) Answer {
 	case l.To == "" && l.Arc:
 		return Answer{Refuse: "A common cause joins two variables: let go of it on the other one."}
 	case l.To == "":
-		return Answer{Name: &Naming{At: snapped(l.End), From: l.From}}
+		return Answer{Name: &Naming{At: Snapped(l.End), From: l.From}}
 	}
 	h.link = l
 	edit := h.linkEdit(in)
@@ -412,7 +412,7 @@ func (h *Hand) double(in *Input, m *Map, e Event) Answer {
 		if in.Rival == nil || h.tool == PlateTool || h.tool == NoteTool {
 			return Answer{}
 		}
-		return Answer{Name: &Naming{At: snapped(in.View.In(e.At))}}
+		return Answer{Name: &Naming{At: Snapped(in.View.In(e.At))}}
 	case OnNode, OnEdge:
 		return Answer{Name: &Naming{Variable: t.Node}}
 	case OnNote:
@@ -421,7 +421,8 @@ func (h *Hand) double(in *Input, m *Map, e Event) Answer {
 	return Answer{Open: &t}
 }
 
-func snapped(p study.Point) study.Point { return study.Point{X: snap(p.X), Y: snap(p.Y)} }
+// Snapped is the point of the grid next to a point of the sheet.
+func Snapped(p study.Point) study.Point { return study.Point{X: snap(p.X), Y: snap(p.Y)} }
 
 // spanned is the rectangle between two corners.
 func spanned(a, b draw.Point) draw.Rect {

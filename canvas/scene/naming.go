@@ -137,7 +137,7 @@ func Identifier(text string) (id, label string) {
 // Free is a place near the middle of what is seen where a new node covers no
 // other.
 func Free(in *Input) study.Point {
-	middle := snapped(in.View.In(in.middle()))
+	middle := Snapped(in.View.In(in.middle()))
 	places := in.layout()
 	clear := func(p study.Point) bool {
 		for _, q := range places {

@@ -15,7 +15,7 @@ import (
 // Sizes of a note at zoom 1, in dips.
 const (
 	noteSize  = 11.5
-	noteLeast = 9.0 // its text is never smaller
+	noteLeast = 11.0 // its text is never smaller
 	noteWidth = 208.0
 	noteInset = 10.0 // of the text from the rule
 	noteLines = 60
