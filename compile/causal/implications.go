@@ -2,6 +2,7 @@ package causal
 
 import (
 	"fmt"
+	"iter"
 	"slices"
 
 	"arrowroot/compile/graph"
@@ -41,24 +42,32 @@ type Separation struct {
 // cannot contradict them. There are as many searches as pairs: some seconds for
 // 100 variables, so not for the window's goroutine.
 func Separations(g *graph.Graph, max int) []Separation {
-	max = limit(max, 100)
-	nodes := list(available(g))
-	var all []Separation
-	for i, a := range nodes {
-		for _, b := range nodes[i+1:] {
-			s := Separation{A: a, B: b}
-			s.Given, s.More = MinimalSeparators(g, a, b, nil, max)
-			s.Given = slices.DeleteFunc(s.Given, func(z []int) bool {
-				known := fixed(g, mark(g.Len(), z))
-				return known[a] || known[b]
-			})
-			if len(s.Given) == 0 {
-				s.Given = nil
+	return slices.Collect(EachSeparation(g, max))
+}
+
+// EachSeparation is Separations one pair at a time, for who may have enough
+// before the last.
+func EachSeparation(g *graph.Graph, max int) iter.Seq[Separation] {
+	return func(yield func(Separation) bool) {
+		max = limit(max, 100)
+		nodes := list(available(g))
+		for i, a := range nodes {
+			for _, b := range nodes[i+1:] {
+				s := Separation{A: a, B: b}
+				s.Given, s.More = MinimalSeparators(g, a, b, nil, max)
+				s.Given = slices.DeleteFunc(s.Given, func(z []int) bool {
+					known := fixed(g, mark(g.Len(), z))
+					return known[a] || known[b]
+				})
+				if len(s.Given) == 0 {
+					s.Given = nil
+				}
+				if !yield(s) {
+					return
+				}
 			}
-			all = append(all, s)
 		}
 	}
-	return all
 }
 
 const basisSets = 64 // ancestral sets looked at for one variable
