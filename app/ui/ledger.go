@@ -2,6 +2,7 @@ package ui
 
 import (
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
 
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
@@ -10,9 +11,11 @@ import (
 // ledger lists the study's variables. A row picks its variable; dragged onto
 // the sheet it puts the variable there.
 type ledger struct {
-	d    *desk
-	pane *pane
-	seen ledgerState
+	d      *desk
+	object fyne.CanvasObject
+	pane   *roll
+	seen   ledgerState
+	on     map[string]bool // on the sheet
 }
 
 // ledgerState is everything the ledger shows: it is rebuilt only when one of
@@ -25,7 +28,13 @@ type ledgerState struct {
 }
 
 func newLedger(d *desk) *ledger {
-	return &ledger{d: d, pane: newPane(8, 6, 1)}
+	l := &ledger{d: d, pane: newRoll(8, 2, 1)}
+	add := d.quiet("+ variable", func() { d.commands.find("variable").run() })
+	add.tip = d.commands.find("variable").tip()
+	fold := d.foldButton(iconFoldL, "Fold the ledger away", func() { d.frame.fold("left") })
+	head := padded(8, 6, 0, row(4, gapOf(2, 1), caption("Ledger"), space(), add, fold))
+	l.object = container.NewBorder(head, nil, nil, nil, l.pane)
+	return l
 }
 
 func (l *ledger) update() {
@@ -35,37 +44,37 @@ func (l *ledger) update() {
 		return
 	}
 	l.seen = state
-	keys := make(map[string]fyne.Focusable)
-	add := l.d.quiet("+ variable", func() { l.d.commands.find("variable").run() })
-	add.tip = l.d.commands.find("variable").tip()
-	keys["add"] = add
-	fold := l.d.foldButton(iconFoldL, "Fold the ledger away", func() { l.d.frame.fold("left") })
-	head := row(4, gapOf(2, 1), caption("Ledger"), space(), add, fold)
-	objects := []fyne.CanvasObject{head, gapOf(1, 2)}
+	l.on = make(map[string]bool)
+	for _, n := range v.Rival.Diagram.Nodes {
+		l.on[n.Variable] = true
+	}
+	var rows []rollRow
+	height := max(23, fyne.MeasureText("Mg", sizeBody, fyne.TextStyle{}).Height+4)
 	missing := 0
 	for _, x := range v.Study.Variables {
-		r := l.row(x)
-		keys["variable "+x.ID] = r
-		objects = append(objects, r)
-		if !l.d.onSheet(x.ID) {
+		rows = append(rows, rollRow{
+			key:    "variable " + x.ID,
+			height: func(float32) float32 { return height },
+			build:  func() fyne.CanvasObject { return l.row(x) },
+		})
+		if !l.on[x.ID] {
 			missing++
 		}
 	}
 	switch {
 	case len(v.Study.Variables) == 0:
-		objects = append(objects, padded(4, 4, 0, para("No variables yet. Draw one with a double click on the sheet, or open data.", tokenMuted)))
+		rows = append(rows, still(padded(4, 4, 0, para("No variables yet. Draw one with a double click on the sheet, or open data.", tokenMuted))))
 	case missing > 0:
 		all := l.d.quiet("place all", func() { l.d.commands.find("place-all").run() })
 		all.tip = "Put every variable on the sheet"
-		keys["place all"] = all
-		objects = append(objects, row(2, gapOf(14, 1), all, stretch(small(times(missing, "is off the sheet", "are off the sheet")).shrinkTo(20))))
+		rows = append(rows, still(row(2, gapOf(14, 1), all, stretch(small(times(missing, "is off the sheet", "are off the sheet")).shrinkTo(20)))))
 	}
-	l.pane.fill(keys, objects...)
+	l.pane.fill(rows...)
 }
 
 func (l *ledger) row(x *study.Variable) *press {
 	d := l.d
-	on := d.onSheet(x.ID)
+	on := l.on[x.ID]
 	token := tokenInk
 	if !on {
 		token = tokenMuted

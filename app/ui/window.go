@@ -57,7 +57,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	d.status = newStatus(d)
 	ground := filled(tokenSheet)
 	sheet := container.New(&sheetLayout{ground, d.editor, dock.object, banner.object, empty.object}, ground, d.editor, empty.object, dock.object, banner.object)
-	left := container.New(&railLayout{share: 0.62}, ledger.pane, hairline(), rivals.pane)
+	left := container.New(&railLayout{share: 0.62}, ledger.object, hairline(), rivals.pane)
 	d.drawer = newDrawer(d)
 	d.frame = newFrame(d.kit, strip.object, left, sheet, d.status.object, details.pane, d.drawer.object, remembered(app.Preferences()))
 	d.frame.onChange = func(a arrangement) { remember(app.Preferences(), a) }
