@@ -18,22 +18,23 @@ import (
 type column struct {
 	scale  study.Scale
 	values []float64
-	levels int // of words; 0 for numbers
-	gaps   int // missing entries
+	levels []string // of words; nil for numbers
+	gaps   int      // missing entries
 }
 
 // columns reads what each node of a graph is bound to.
 type columns struct {
 	study *study.Study
+	data  *study.Data // what the rival is fitted to
 	table *table.Table
 	rows  []int // kept ones
 	of    []*column
 	lacks []string // why a node has none
 }
 
-func readColumns(s *study.Study, t *table.Table, g *graph.Graph) *columns {
-	c := &columns{study: s, table: t, of: make([]*column, g.Len()), lacks: make([]string, g.Len())}
-	c.rows = keptRows(s, t)
+func readColumns(s *study.Study, rival string, t *table.Table, g *graph.Graph) *columns {
+	c := &columns{study: s, data: s.DataOf(rival), table: t, of: make([]*column, g.Len()), lacks: make([]string, g.Len())}
+	c.rows = c.kept()
 	for _, v := range g.Order { // parents first: computed variables read theirs
 		c.of[v], c.lacks[v] = c.read(g, v)
 		if c.of[v] != nil {
@@ -57,6 +58,14 @@ func (c *columns) read(g *graph.Graph, node int) (*column, string) {
 		return nil, id + " was not measured"
 	case v.Computed != "":
 		return c.compute(g, v)
+	}
+	return c.bound(v)
+}
+
+// bound reads the column that a variable is bound to.
+func (c *columns) bound(v *study.Variable) (*column, string) {
+	id := v.ID
+	switch {
 	case v.Column == "":
 		return nil, id + " is not bound to a column"
 	case !c.here(v):
@@ -74,7 +83,7 @@ func (c *columns) read(g *graph.Graph, node int) (*column, string) {
 		return nil, fmt.Sprintf("the column of %s holds words", id)
 	}
 	out := &column{scale: v.Scale, values: source.Numbers}
-	if v.Divide < 0 { // any other division keeps the order, which is all that counts here
+	if v.Divide != 0 && v.Divide != 1 {
 		out.values = make([]float64, len(source.Numbers))
 		for i, x := range source.Numbers {
 			out.values[i] = x / v.Divide
@@ -86,14 +95,17 @@ func (c *columns) read(g *graph.Graph, node int) (*column, string) {
 // here reports whether a variable is in the table that is tested.
 func (c *columns) here(v *study.Variable) bool {
 	d := c.study.Table(v.Data)
-	return d == nil || len(c.study.Data) < 2 || d.Name == c.table.Name || d.File == c.table.Name
+	return d == nil || d == c.data
 }
 
 // words reads the entries of a column as places in the variable's levels.
 func words(v *study.Variable, source *table.Column) *column {
 	out := &column{scale: v.Scale}
 	if v.Scale == study.Binary && source.Kind == table.Numeric && zeroOne(source.Numbers) {
-		out.values, out.levels = source.Numbers, 2
+		out.values, out.levels = source.Numbers, []string{"0", "1"}
+		if len(v.Levels) == 2 {
+			out.levels = v.Levels
+		}
 		return out
 	}
 	levels := v.Levels
@@ -114,7 +126,7 @@ func words(v *study.Variable, source *table.Column) *column {
 			}
 		}
 	}
-	out.levels = len(levels)
+	out.levels = levels
 	out.values = make([]float64, len(as.Codes))
 	for i, code := range as.Codes {
 		out.values[i] = math.NaN()
@@ -149,13 +161,40 @@ func (c *columns) compute(g *graph.Graph, v *study.Variable) (*column, string) {
 	return out, ""
 }
 
-// keptRows are the rows of the table that the study uses at all.
-func keptRows(s *study.Study, t *table.Table) []int {
-	rows := make([]int, t.Rows)
-	for i := range rows {
-		rows[i] = i
+// kept are the rows of the table that meet the conditions of the study's data.
+func (c *columns) kept() []int {
+	var tests []func(row int) bool
+	var conditions []study.Condition
+	if c.data != nil {
+		conditions = c.data.Keep
+	}
+	for _, k := range conditions {
+		v := c.study.Variable(k.Variable)
+		if v == nil {
+			continue
+		}
+		if col, _ := c.bound(v); col != nil {
+			tests = append(tests, func(row int) bool { return meets(k, col, row) })
+		}
+	}
+	rows := make([]int, 0, c.table.Rows)
+	for i := range c.table.Rows {
+		if !slices.ContainsFunc(tests, func(ok func(int) bool) bool { return !ok(i) }) {
+			rows = append(rows, i)
+		}
 	}
 	return rows
+}
+
+func meets(k study.Condition, c *column, row int) bool {
+	x := c.values[row]
+	switch {
+	case math.IsNaN(x):
+		return false
+	case len(k.Words) > 0:
+		return int(x) < len(c.levels) && slices.ContainsFunc(k.Words, func(w string) bool { return sameWord(w, c.levels[int(x)]) })
+	}
+	return (k.Low == nil || x >= *k.Low) && (k.High == nil || x <= *k.High)
 }
 
 // A grouping is an outermost plate over the rows of the table: rows of one

@@ -44,7 +44,7 @@ func (b *bench) controls() []Control {
 		}
 	}
 	for v := range b.g.Len() {
-		if v == x || v == y || b.data.of[v] == nil || b.g.Computed[v] || slices.Contains(held, v) || slices.Contains(b.req.Selected, v) {
+		if v == x || v == y || b.data.of[v] == nil || b.g.Computed[v] || slices.Contains(held, v) || b.selected(v) {
 			continue
 		}
 		if !below[v] && !b.apart(x, v, nil) && b.apart(x, v, held) {

@@ -134,7 +134,7 @@ func indicators(values []float64, least int) [][]float64 {
 
 // scoresOf gives the scores of one side of an independence.
 func scoresOf(c *column, values []float64) [][]float64 {
-	if c.scale == study.Category && c.levels > 2 {
+	if c.scale == study.Category && len(c.levels) > 2 {
 		return indicators(values, fewestOfLevel)
 	}
 	if s := normalScores(values); s != nil {

@@ -13,6 +13,7 @@ import (
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
+	"arrowroot/compile/study"
 )
 
 const (
@@ -27,7 +28,7 @@ func test(ctx context.Context, req Request, watch func(done, total int)) (*Evide
 	g := req.Graph
 	if g == nil {
 		var err error
-		if g, err = req.Study.Graph(req.Rival); err != nil {
+		if g, req.Selected, err = chosen(&req); err != nil {
 			return nil, err
 		}
 	}
@@ -54,6 +55,10 @@ func test(ctx context.Context, req Request, watch func(done, total int)) (*Evide
 	}
 	var testable []causal.Independence
 	for _, s := range statements {
+		if slices.ContainsFunc(slices.Concat(s.A, s.B), b.selected) {
+			continue // the same in all rows
+		}
+		s.Given = slices.DeleteFunc(slices.Clone(s.Given), b.selected)
 		if reason := b.untestable(s); reason != "" {
 			e.Untested = append(e.Untested, b.untested(s, reason))
 		} else {
@@ -94,6 +99,41 @@ func test(ctx context.Context, req Request, watch func(done, total int)) (*Evide
 	return e, nil
 }
 
+// chosen is the graph of a rival with what its rows were chosen by: nodes that
+// limit them, and a node behind those of the sheet for each variable on which
+// the data are filtered.
+func chosen(req *Request) (*graph.Graph, []int, error) {
+	g, err := req.Study.Graph(req.Rival)
+	if err != nil {
+		return nil, nil, err
+	}
+	var selected []int
+	for _, n := range req.Study.Rival(req.Rival).Diagram.Nodes {
+		if n.Limits {
+			selected = append(selected, g.Index(n.Variable))
+		}
+	}
+	data := req.Study.DataOf(req.Rival)
+	if data == nil || len(data.Keep) == 0 {
+		return g, selected, nil
+	}
+	spec := specOf(g)
+	spec.Names = slices.Clone(spec.Names)
+	spec.Arrows = slices.Clone(spec.Arrows)
+	for _, k := range data.Keep {
+		if v := g.Index(k.Variable); v >= 0 {
+			selected = append(selected, len(spec.Names))
+			spec.Arrows = append(spec.Arrows, [2]int{v, len(spec.Names)})
+			spec.Names = append(spec.Names, "rows kept by "+k.Variable)
+		}
+	}
+	g, err = graph.New(spec)
+	return g, selected, err
+}
+
+// selected reports whether the rows were chosen by a node.
+func (b *bench) selected(v int) bool { return slices.Contains(b.req.Selected, v) }
+
 // A bench is where statements are tested: data read once, scores kept.
 type bench struct {
 	req    *Request
@@ -121,7 +161,7 @@ type sharedDesign struct {
 
 func newBench(req *Request, g *graph.Graph) *bench {
 	return &bench{
-		req: req, g: g, data: readColumns(req.Study, req.Table, g), groups: groupings(req.Study, req.Table),
+		req: req, g: g, data: readColumns(req.Study, req.Rival, req.Table, g), groups: groupings(req.Study, req.Table),
 		subset: map[string][]int{}, scores: map[string]*keptScores{}, given: map[string]*sharedDesign{},
 	}
 }
@@ -321,7 +361,7 @@ func (b *bench) design(given []int, gaps string, rows []int) *sharedDesign {
 				for i, g := range of {
 					fixed[i] = float64(g)
 				}
-				with, values = append(with, &column{scale: "category", levels: n}), append(values, fixed)
+				with, values = append(with, &column{scale: study.Category}), append(values, fixed)
 				continue
 			}
 			schemes = append(schemes, scheme{plate: p.name, of: of, units: n})

@@ -72,6 +72,8 @@ func (b *bench) constraintShown(v Verdict, e Effect, short, what, otherwise stri
 			text += " " + otherwise
 		}
 		return text
+	case Doubtful:
+		return fmt.Sprintf("These data speak against it (%s), but among so many tests chance can do that.", size)
 	case Trifling:
 		return fmt.Sprintf("In these data it is not quite so (%s), by too little to matter for most purposes.", size)
 	case Holds:

@@ -57,9 +57,10 @@ func (b *bench) unmeasured() []Untested {
 				with = append(with, v)
 			}
 		}
-		if len(with) == 0 {
+		if len(with) == 0 || slices.ContainsFunc(slices.Concat(s.A, s.B), b.selected) {
 			continue
 		}
+		s.Given = slices.DeleteFunc(slices.Clone(s.Given), b.selected)
 		if len(all) == mostUnmeasured {
 			break
 		}

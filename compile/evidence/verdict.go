@@ -16,6 +16,7 @@ type Verdict int
 // The verdicts, in the order in which findings are listed.
 const (
 	Contradicted Verdict = iota // the data refuse it, all tests counted, and not by a trifle
+	Doubtful                    // the interval holds no 0, but so many were tested that chance may do that
 	Trifling                    // refused, all tests counted, yet too weak to matter
 	Undecided                   // neither refused nor shown to hold
 	Holds                       // the interval keeps close to none
@@ -24,7 +25,7 @@ const (
 
 // String is a word or two for the verdict.
 func (v Verdict) String() string {
-	return [...]string{"contradicted", "a trifle", "undecided", "holds", "too few rows"}[v]
+	return [...]string{"contradicted", "in doubt", "a trifle", "undecided", "holds", "too few rows"}[v]
 }
 
 const (
@@ -59,6 +60,8 @@ func verdict(e Effect, adjusted float64) (Verdict, string) {
 		return Contradicted, "contradicted"
 	case adjusted <= falseAlarm:
 		return Trifling, "a trace, within " + bound(reach, e.Signed)
+	case sure(e) > 0 && reach > trifle:
+		return Doubtful, fmt.Sprintf("in doubt: %s to %s", number(e.Low), number(e.High))
 	case reach <= trifle:
 		return Holds, "holds within " + bound(reach, e.Signed)
 	}
@@ -133,6 +136,8 @@ func (b *bench) shown(f *Finding) string {
 			are = "it is not"
 		}
 		return fmt.Sprintf("In these data %s (%s).", are, size)
+	case Doubtful:
+		return fmt.Sprintf("These data speak against it (%s), but among so many tests chance can do that.", size)
 	case Trifling:
 		return fmt.Sprintf("In these data a trace of association is left (%s), too weak to matter for most purposes.", size)
 	case Holds:
@@ -172,11 +177,11 @@ func (b *bench) summary(e *Evidence) string {
 	case n[TooFew] == total:
 		return fmt.Sprintf("These arrows imply %s that the data could contradict, but there are too few rows to say.", plural(total, "independence"))
 	}
-	text := fmt.Sprintf("Of %s that these arrows imply and the data could contradict, %s, %s, %s",
-		plural(total, "independence"), are(n[Contradicted], "contradicted"), hold(n[Holds]+n[Trifling]), stay(n[Undecided]+n[TooFew]))
+	text := fmt.Sprintf("Of %s that these arrows imply and the data could contradict, %s, %s, %s, %s",
+		plural(total, "independence"), are(n[Contradicted], "contradicted"), are(n[Doubtful], "in doubt"), hold(n[Holds]+n[Trifling]), stay(n[Undecided]+n[TooFew]))
 	if total == 1 {
 		text = "The one independence that these arrows imply and the data could contradict is " + map[Verdict]string{
-			Contradicted: "contradicted", Trifling: "kept but for a trace", Holds: "kept", Undecided: "left undecided",
+			Contradicted: "contradicted", Doubtful: "in doubt", Trifling: "kept but for a trace", Holds: "kept", Undecided: "left undecided",
 		}[e.Findings[0].Verdict]
 	}
 	return text + "."
