@@ -392,6 +392,7 @@ func someEdit(t *rapid.T, s *Study) Edit {
 			return AddAbsent{rival(), Absent{From: variable("from"), To: variable("to"), Why: "no way", References: []string{"r"}}}
 		},
 		func() Edit { return RemoveAbsent{rival(), variable("from"), variable("to")} },
+		func() Edit { return DrawTruth{rival(), variable("record"), name("truth")} },
 		func() Edit { return AddNote{rival(), Note{point(), name("text")}} }, func() Edit { return ChangeNote{rival(), note(), name("text")} },
 		func() Edit { return MoveNotes{rival(), map[int]Point{note(): point()}} }, func() Edit { return RemoveNotes{rival(), []int{note()}} },
 		func() Edit { return AddPlate{Plate{Name: "farm"}} }, func() Edit { return AddPlate{Plate{Name: "field", Within: "farm"}} },
