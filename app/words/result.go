@@ -25,7 +25,8 @@ func Question(s *study.Study, q *study.Question) string {
 	if c := Change(s, q); c != "" {
 		parts = append(parts, c)
 	}
-	return strings.Join(append(parts, or(q.Over, study.TheseRows)), ", ")
+	parts = append(parts, or(q.Over, study.TheseRows))
+	return strings.Join(append(parts, Asides(s, q)...), ", ")
 }
 
 // Change is the two settings compared, with the unit.
