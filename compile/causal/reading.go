@@ -8,7 +8,8 @@
 // Read the files in this order: separation.go (which sets separate), path.go
 // and walk.go (the paths), adjust.go and separators.go (the sets),
 // precision.go, ways.go, project.go, identify.go, carriers.go and intervene.go (what
-// SEMANTICS A1 and B2 ask for), verdict.go (all of it in a sentence).
+// SEMANTICS A1 and B2 ask for), plates.go (comparing within groups), verdict.go
+// (all of it in a sentence).
 //
 // A Reading is cheap enough to follow the hand. What takes longer is asked for
 // by itself: estimand.go and formula.go (identification with a formula), aim.go,
@@ -31,8 +32,9 @@ import (
 type Query struct {
 	Exposure, Outcome int // -1 = not said yet
 	Held              []int
-	MaxPaths          int // 0 = 500
-	MaxSets           int // 0 = 100
+	MaxPaths          int   // 0 = 500
+	MaxSets           int   // 0 = 100
+	Within            []int // held plates of the graph: the comparison is within their groups
 }
 
 // A Reading is everything the arrows say about a query. It never changes.
@@ -53,6 +55,9 @@ type Reading struct {
 	Effect     bool // some causal path is drawn
 	HeldValid  bool // the held set is a valid adjustment set
 	HeldFaults []Fault
+
+	Groups      []Groups     // what holding a plate gives, of each at whose level something lives
+	PlateFaults []PlateFault // of held plates
 
 	Identifiable bool // from measured variables, by adjustment or any other way
 
@@ -88,7 +93,7 @@ type Fault struct {
 // exposure or outcome yet (-1, or the same node twice) the verdict says so and
 // the rest is empty. A node number outside the graph panics.
 func Read(g *graph.Graph, q Query) *Reading {
-	q.Held = tidy(q.Held)
+	q.Held, q.Within = tidy(q.Held), tidy(q.Within)
 	q.MaxPaths, q.MaxSets = limit(q.MaxPaths, 500), limit(q.MaxSets, 100)
 	r := &Reading{Graph: g, Query: q, Precise: -1}
 	if q.Exposure < 0 || q.Outcome < 0 || q.Exposure == q.Outcome {
@@ -122,6 +127,7 @@ func Read(g *graph.Graph, q Query) *Reading {
 		}
 	}
 	r.Verdict = r.verdict(c)
+	r.compareWithin(c)
 	return r
 }
 

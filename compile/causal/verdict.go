@@ -20,11 +20,12 @@ const (
 
 // A Verdict is the reading in a sentence or two.
 type Verdict struct {
-	Kind        VerdictKind
-	Sentence    string
-	Propose     []int // the set to hold instead of the present one
-	HasProposal bool
-	Way         string // what else there is to say or do; "" = nothing
+	Kind          VerdictKind
+	Sentence      string
+	Propose       []int // the set to hold instead of the present one …
+	ProposeWithin []int // … and the plates
+	HasProposal   bool
+	Way           string // what else there is to say or do; "" = nothing
 }
 
 func (r *Reading) incomplete() Verdict {

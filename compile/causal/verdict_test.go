@@ -133,7 +133,7 @@ func TestVerdicts(t *testing.T) {
 
 func TestIncomplete(t *testing.T) {
 	g := sheet(t, farms)
-	for _, q := range []Query{{-1, -1, nil, 0, 0}, {0, -1, nil, 0, 0}, {-1, 0, nil, 0, 0}, {1, 1, nil, 0, 0}} {
+	for _, q := range []Query{{Exposure: -1, Outcome: -1}, {Exposure: 0, Outcome: -1}, {Exposure: -1, Outcome: 0}, {Exposure: 1, Outcome: 1}} {
 		r := Read(g, q)
 		if r.Verdict.Kind != Incomplete || r.Verdict.Sentence == "" || r.Precise != -1 {
 			t.Errorf("%v: %+v", q, r.Verdict)
