@@ -2,7 +2,10 @@ package findings
 
 import (
 	"context"
+	"slices"
 
+	"arrowroot/app/fit"
+	"arrowroot/compile/causal"
 	"arrowroot/compile/study"
 )
 
@@ -14,16 +17,100 @@ func Read(ctx context.Context, s *study.Study, rival string, ask Ask, limits Lim
 	return Stream(ctx, s, rival, ask, limits, nil)
 }
 
-// Stream is Read, and calls each with all that is there so far whenever a
-// section is added: paths first. Values handed to each are never changed.
+// Stream is Read, and calls each with all that is there so far whenever there
+// is more: paths first, long lists last. Values handed to each never change.
 func Stream(ctx context.Context, s *study.Study, rival string, ask Ask, limits Limits, each func(*Findings)) (*Findings, error) {
-	g, err := s.Graph(rival)
+	sh, err := newSheet(s, rival)
 	if err != nil {
 		return nil, err
 	}
-	f := &Findings{Study: s, Rival: rival, Ask: ask, Graph: g, Sheet: g.Len(), Done: true}
-	if each != nil {
-		each(f)
+	r := &reader{ctx: ctx, sheet: sh, limits: limits.orDefault()}
+	f := &Findings{Study: s, Rival: rival, Ask: ask, Graph: sh.graph, Sheet: sh.drawn.Len(), Selected: sh.selected}
+	steps := r.ask(f)
+	for i, step := range steps {
+		if ctx.Err() != nil {
+			return f, ctx.Err()
+		}
+		next := *f
+		step(&next)
+		next.Done = i == len(steps)-1 && ctx.Err() == nil
+		f = &next
+		if each != nil {
+			each(f)
+		}
 	}
 	return f, ctx.Err()
+}
+
+// A reader is one reading under way.
+type reader struct {
+	ctx    context.Context
+	sheet  *sheet
+	limits Limits
+}
+
+// A step adds a section, or more of one, to findings that nobody has seen yet.
+type step func(*Findings)
+
+// ask finds the nodes that a question names and gives the steps that answer it:
+// what follows the hand first, then lists that can grow long.
+func (r *reader) ask(f *Findings) []step {
+	g := f.Graph
+	nodes := func(ids []string) []int {
+		out := []int{}
+		for _, id := range ids {
+			if v := g.Index(id); v >= 0 && v < f.Sheet {
+				out = append(out, v)
+			}
+		}
+		slices.Sort(out)
+		return slices.Compact(out)
+	}
+	f.Exposures, f.Outcomes, f.Given, f.Held = nodes(f.Ask.Exposures), nodes(f.Ask.Outcomes), nodes(f.Ask.Given), nodes(f.Ask.Held)
+	f.Lacks = f.lacks()
+	if f.Lacks != "" {
+		f.Verdict = causal.Verdict{Kind: causal.Incomplete, Sentence: f.Lacks}
+		return []step{r.laws, r.rows, r.basis, r.class, r.functionals, r.independences, r.tetrads, r.rivals}
+	}
+	steps := []step{r.paths, r.adjustment}
+	if len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
+		steps = append(steps, r.controls, r.direct)
+	}
+	steps = append(steps, r.identification, r.laws, r.rows, r.basis, r.class)
+	if len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
+		steps = append(steps, r.doors, r.instruments)
+	}
+	return append(steps, r.functionals, r.independences, r.tetrads, r.rivals)
+}
+
+// total is the reading of one exposure and one outcome with what limits the
+// rows held too.
+func (r *reader) total(f *Findings) *causal.Reading {
+	if len(f.Exposures) != 1 || len(f.Outcomes) != 1 {
+		return nil
+	}
+	q := &study.Question{Exposure: f.Graph.Names[f.Exposures[0]], Outcome: f.Graph.Names[f.Outcomes[0]], Held: f.Ask.Held}
+	q.Held = slices.Concat(q.Held, f.names(f.Selected))
+	return fit.Read(f.Graph, q, r.limits.Paths, r.limits.Sets)
+}
+
+func (l Limits) orDefault() Limits {
+	if l.Paths <= 0 {
+		l.Paths = 500
+	}
+	if l.Sets <= 0 {
+		l.Sets = 100
+	}
+	return l
+}
+
+// add puts a finding into a section, with the reason why it was set aside if
+// it was.
+func (f *Findings) add(s *Section, one Finding) {
+	if d := f.Study.Dismissal(f.Rival, one.Key); d != nil {
+		one.Dismissed = d.Why
+	}
+	one.Nodes = f.onSheet(one.Nodes)
+	one.Edges = slices.DeleteFunc(slices.Clone(one.Edges), func(e causal.Edge) bool { return e.From >= f.Sheet || e.To >= f.Sheet })
+	s.Findings = append(s.Findings, one)
 }

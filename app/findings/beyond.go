@@ -1,0 +1,164 @@
+package findings
+
+import (
+	"fmt"
+
+	"arrowroot/app/words"
+	"arrowroot/compile/causal"
+)
+
+const (
+	doorNodes       = 120 // variables on a sheet up to which all front doors are looked for
+	instrumentNodes = 60  // likewise for instruments
+)
+
+// identification asks whether anything gives the effect, and by what formula.
+func (r *reader) identification(f *Findings) {
+	b := &Beyond{Section: Section{Name: BeyondSection}}
+	exposures := union(f.Exposures, r.fixed(f))
+	id := causal.Identify(f.Graph, exposures, f.Outcomes, f.Given)
+	b.Identification = id
+	b.Summary = id.Sentence
+	one := Finding{Key: "identification " + id.Query(), Kind: "identified", Sentence: id.Sentence, Nodes: union(union(exposures, f.Outcomes), f.Given)}
+	if id.Identified {
+		one.Why = fmt.Sprintf("In symbols: %s = %s.", id.Query(), id.Symbols())
+	} else {
+		one.Kind = "not identified"
+		if id.Whole != nil {
+			one.Nodes = id.Whole
+			one.Edges = inside(f, id.Whole)
+			one.Why = fmt.Sprintf("The two parts that stand in the way are %s, and within them %s.", words.List(f.names(id.Whole)), words.List(f.names(id.Part)))
+		}
+	}
+	f.add(&b.Section, one)
+	if len(f.Selected) > 0 {
+		f.add(&b.Section, Finding{Key: "identification supposes all rows", Kind: "supposes", Nodes: f.Selected, Sentence: fmt.Sprintf("This supposes data on all rows, where these were chosen by %s.", f.rowsBy())})
+	}
+	f.Beyond = b
+}
+
+// inside are all edges among some nodes.
+func inside(f *Findings, nodes []int) []causal.Edge {
+	in := map[int]bool{}
+	for _, v := range nodes {
+		in[v] = true
+	}
+	var edges []causal.Edge
+	for _, a := range f.Graph.Arrows {
+		if in[a[0]] && in[a[1]] {
+			edges = append(edges, causal.Edge{From: a[0], To: a[1]})
+		}
+	}
+	for _, a := range f.Graph.Arcs {
+		if in[a[0]] && in[a[1]] {
+			edges = append(edges, causal.Edge{From: a[0], To: a[1], Arc: true})
+		}
+	}
+	return edges
+}
+
+// more is the section so far, to be added to.
+func (b *Beyond) more() *Beyond {
+	next := *b
+	next.Findings = append([]Finding{}, b.Findings...)
+	return &next
+}
+
+// leave says what else a limit cut off.
+func (s *Section) leave(sentence string) {
+	if s.LeftOut != "" {
+		sentence = s.LeftOut + " " + sentence
+	}
+	s.LeftOut = sentence
+}
+
+func (r *reader) doors(f *Findings) {
+	b := f.Beyond.more()
+	defer func() { f.Beyond = b }()
+	x, y := f.Exposures[0], f.Outcomes[0]
+	more := false
+	if f.Sheet <= doorNodes {
+		b.Doors, more = causal.FrontDoors(f.Graph, x, y, r.limits.Sets)
+	} else {
+		if f.Reading.FrontDoor != nil {
+			b.Doors = []causal.FrontDoor{*f.Reading.FrontDoor}
+		}
+		more = true
+	}
+	for i := range b.Doors {
+		d := &b.Doors[i]
+		f.add(&b.Section, Finding{
+			Key: "front door " + joined(f.names(d.Through)) + " | " + joined(f.names(d.Given)), Kind: "front door",
+			Sentence: d.Sentence(f.Graph, x, y), Nodes: union(union(d.Through, d.Given), []int{x, y}),
+		})
+	}
+	if more {
+		b.leave("There may be more front doors than were looked for.")
+	}
+	f.ways(b)
+}
+
+func (r *reader) instruments(f *Findings) {
+	b := f.Beyond.more()
+	defer func() { f.Beyond = b }()
+	x, y := f.Exposures[0], f.Outcomes[0]
+	if f.Sheet > instrumentNodes {
+		for _, one := range f.Reading.Instruments {
+			b.TotalInstruments = append(b.TotalInstruments, causal.InstrumentSets{Node: one.Node, Given: [][]int{one.Given}, More: true})
+		}
+		b.leave(fmt.Sprintf("There may be more instruments than were looked for: the sheet has more than %d variables.", instrumentNodes))
+	} else {
+		b.TotalInstruments = causal.TotalInstruments(f.Graph, x, y)
+		if r.ctx.Err() == nil {
+			b.ArrowInstruments = causal.ArrowInstruments(f.Graph, x, y)
+		}
+	}
+	cut := false
+	for _, kind := range []struct {
+		list []causal.InstrumentSets
+		name string
+		of   string
+	}{{b.TotalInstruments, "instrument", "the effect"}, {b.ArrowInstruments, "instrument for the arrow", "the arrow alone"}} {
+		for i := range kind.list {
+			z := &kind.list[i]
+			name := f.Graph.Names[z.Node]
+			if z.Node >= f.Sheet {
+				continue
+			}
+			cut = cut || z.More && f.Sheet <= instrumentNodes
+			f.add(&b.Section, Finding{
+				Key: kind.name + " " + name, Kind: kind.name, Sentence: z.Sentence(f.Graph, x, y),
+				Why: fmt.Sprintf("It gives %s of %s on %s.", kind.of, f.Graph.Names[x], f.Graph.Names[y]), Nodes: union(z.Given[0], []int{z.Node, x, y}),
+			})
+		}
+	}
+	if cut {
+		b.leave("The search for what to give with an instrument was cut short; there may be more.")
+	}
+	f.ways(b)
+}
+
+// ways says beside identification which other ways were found.
+func (f *Findings) ways(b *Beyond) {
+	b.Summary = b.Identification.Sentence
+	var found []string
+	if n := len(b.Doors); n > 0 {
+		found = append(found, words.Plural(n, "front door"))
+	}
+	if n := len(b.TotalInstruments); n > 0 {
+		found = append(found, words.Plural(n, "instrument")+" for the effect")
+	}
+	if n := len(b.ArrowInstruments); n > 0 {
+		found = append(found, words.Plural(n, "instrument")+" for the arrow")
+	}
+	if len(found) > 0 {
+		b.Summary += fmt.Sprintf(" There %s %s.", areOne(len(found) == 1 && len(b.Doors)+len(b.TotalInstruments)+len(b.ArrowInstruments) == 1), words.List(found))
+	}
+}
+
+func areOne(one bool) string {
+	if one {
+		return "is"
+	}
+	return "are"
+}

@@ -1,0 +1,64 @@
+package findings
+
+import (
+	"fmt"
+	"slices"
+
+	"arrowroot/app/words"
+	"arrowroot/compile/causal"
+)
+
+const controlNodes = 300 // variables on a sheet up to which each is judged
+
+// controls judges each measured variable beside the held ones.
+func (r *reader) controls(f *Findings) {
+	c := &Controls{Section: Section{Name: ControlSection}}
+	defer func() { f.Controls = c }()
+	if f.Sheet > controlNodes {
+		c.Summary = "Single variables are not judged on a sheet of this size."
+		c.LeftOut = fmt.Sprintf("Verdicts on %s variables are left out: more than %d.", words.Whole(float64(f.Sheet)), controlNodes)
+		return
+	}
+	counts := map[causal.ControlKind]int{}
+	for _, one := range causal.Controls(f.Graph, f.Exposures[0], f.Outcomes[0], union(f.Held, f.Selected)) {
+		if slices.Contains(f.Selected, one.Node) {
+			continue
+		}
+		counts[one.Kind]++
+		c.List = append(c.List, one)
+		f.add(&c.Section, Finding{
+			Key: "control " + f.Graph.Names[one.Node], Kind: one.Kind.String(), Sentence: one.Sentence,
+			Nodes: union([]int{one.Node}, one.Path), Edges: along(f.Graph, one.Path),
+		})
+	}
+	good, idle, bad := counts[causal.GoodControl]+counts[causal.PartOfControl], counts[causal.SharpensControl]+counts[causal.NeutralControl]+counts[causal.BluntsControl], counts[causal.BadControl]
+	c.Summary = fmt.Sprintf("Of %s, %s to be held, %s not needed and %s to be left free.", words.Plural(len(c.List), "measured variable"), beMany(good), beMany(idle), beMany(bad))
+	if len(c.List) == 0 {
+		c.Summary = "No measured variable besides exposure and outcome could be held."
+	}
+}
+
+// direct reads the controlled direct effect.
+func (r *reader) direct(f *Findings) {
+	d := &Direct{Section: Section{Name: DirectSection}}
+	var fixed []int
+	if f.direct() {
+		fixed = minus(f.Adjustment.Aim.Exposures, f.Exposures)
+	}
+	d.Direct = causal.ReadDirect(f.Graph, f.Exposures[0], f.Outcomes[0], fixed)
+	d.Summary = d.Sentence
+	kind := "not identified"
+	switch {
+	case !d.Effect:
+		kind = "none drawn"
+	case d.Direct.Adjustment.Sets != nil:
+		kind = "by holding"
+	case d.Identification.Identified:
+		kind = "by a formula"
+	}
+	f.add(&d.Section, Finding{
+		Key: "direct " + f.Ask.Exposures[0] + " " + f.Ask.Outcomes[0] + " | " + joined(f.names(d.Fixed)), Kind: kind, Sentence: d.Sentence,
+		Nodes: union(d.Fixed, []int{d.Exposure, d.Outcome}),
+	})
+	f.Direct = d
+}

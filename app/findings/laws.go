@@ -1,0 +1,108 @@
+package findings
+
+import (
+	"fmt"
+
+	"arrowroot/app/words"
+	"arrowroot/compile/causal"
+)
+
+// laws gives the carriers of every fitted law (SEMANTICS A1) and the case of
+// the intervention (B2), from the arrows as drawn.
+func (r *reader) laws(f *Findings) {
+	l := &Laws{Section: Section{Name: LawSection}}
+	g := r.sheet.drawn
+	x, y := -1, -1
+	if f.Lacks == "" && len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
+		x, y = f.Exposures[0], f.Outcomes[0]
+	}
+	l.List = causal.CarriersFor(g, x, y)
+	carried := 0
+	for _, law := range l.List {
+		if len(law.Carried) > 0 {
+			carried++
+		}
+		f.lawFinding(&l.Section, law)
+	}
+	switch {
+	case len(l.List) == 0:
+		l.Summary = "Nothing is measured, so there is no law to fit."
+	case carried == 0:
+		l.Summary = "Every law is fitted on the drawn parents alone."
+	default:
+		l.Summary = fmt.Sprintf("%s more than the drawn parents, for the sake of what is left out.", upper(lawsCarry(carried, len(l.List))))
+	}
+	if x >= 0 {
+		l.Case, l.District, l.Reason = causal.InterventionCase(g, x, y)
+		f.caseFinding(l)
+	}
+	f.Laws = l
+}
+
+func lawsCarry(n, of int) string {
+	verb := "carry"
+	if n == 1 {
+		verb = "carries"
+	}
+	return fmt.Sprintf("%s of %s %s", words.Whole(float64(n)), words.Plural(of, "law"), verb)
+}
+
+func (f *Findings) lawFinding(s *Section, law causal.Fitted) {
+	name := f.Graph.Names[law.Node]
+	one := Finding{Key: "law " + name, Kind: "law", Nodes: union([]int{law.Node}, law.Parents)}
+	for _, p := range law.Parents {
+		one.Edges = append(one.Edges, causal.Edge{From: p, To: law.Node})
+	}
+	text := fmt.Sprintf("The law of %s is fitted on %s", name, words.List(f.names(law.Parents)))
+	switch {
+	case f.Graph.Computed[law.Node]:
+		one.Kind, text = "computed", fmt.Sprintf("%s is computed from %s", name, words.List(f.names(law.Parents)))
+	case len(law.Parents) == 0:
+		text = fmt.Sprintf("The law of %s has no drawn parent that was measured", name)
+	}
+	if len(law.Carried) > 0 {
+		one.Kind = "law with carried terms"
+		var terms, causes []int
+		unnamed := false
+		for _, c := range law.Carried {
+			terms = append(terms, c.Node)
+			for _, u := range c.For {
+				if u < 0 {
+					unnamed = true
+				} else {
+					causes = append(causes, u)
+				}
+			}
+		}
+		causes = union(causes, nil)
+		because := f.names(causes)
+		if unnamed {
+			because = append(because, "a common cause that nobody named")
+		}
+		was := "was"
+		if len(because) > 1 {
+			was = "were"
+		}
+		one.Nodes = union(union(one.Nodes, terms), causes)
+		text += fmt.Sprintf(", and carries %s, because %s %s left out", words.List(f.names(terms)), words.List(because), was)
+	}
+	one.Sentence = text + "."
+	f.add(s, one)
+}
+
+// caseFinding says whether the fitted laws may be simulated under the
+// intervention.
+func (f *Findings) caseFinding(l *Laws) {
+	one := Finding{Key: "simulation", Why: upper(l.Reason) + ".", Nodes: union(union(f.Exposures, f.Outcomes), l.District)}
+	x := f.Graph.Names[f.Exposures[0]]
+	switch l.Case {
+	case causal.PinAndSimulate:
+		one.Kind, one.Sentence = "case (a)", fmt.Sprintf("The full model can be simulated with %s set: %s.", x, l.Reason)
+	case causal.ObservedForDistrict:
+		one.Kind, one.Sentence = "case (b)", fmt.Sprintf("The full model can be simulated with %s set, if the laws of %s go by the %s that was observed: %s.", x, words.List(f.names(l.District)), x, l.Reason)
+	default:
+		one.Kind, one.Sentence = "case (c)", fmt.Sprintf("The full model must not be simulated with %s set: %s.", x, l.Reason)
+	}
+	f.add(&l.Section, one)
+	l.Summary += " " + one.Sentence
+}

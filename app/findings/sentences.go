@@ -1,0 +1,23 @@
+package findings
+
+import (
+	"slices"
+	"strings"
+	"unicode"
+	"unicode/utf8"
+)
+
+// upper begins a sentence.
+func upper(s string) string {
+	first, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[size:]
+}
+
+// joined makes a key of names, whatever their order.
+func joined(names []string) string {
+	sorted := slices.Clone(names)
+	slices.Sort(sorted)
+	return strings.Join(sorted, ", ")
+}
+
+func quoted(name string) string { return "“" + name + "”" }
