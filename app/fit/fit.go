@@ -114,7 +114,11 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	began := time.Now()
 	q := req.question()
 	m, problems := model.Build(req.Study, req.Rival, q, req.Table, model.Full)
-	problems, lacking := apart(problems)
+	problems, asked := model.Apart(problems)
+	if req.Question != nil {
+		asked = append(asked, model.HalfAsked(q)...)
+	}
+	lacking := lacks(asked)
 	if m == nil && lacking != nil && !model.Stops(problems) {
 		// The question alone is at fault: the rival can be fitted without it.
 		m, problems = model.Build(req.Study, req.Rival, study.Question{}, req.Table, model.Full)
@@ -125,9 +129,6 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	g, err := req.Study.Graph(req.Rival)
 	if err != nil {
 		return nil, err
-	}
-	if lacking == nil {
-		lacking = incomplete(m, g, req.Question)
 	}
 	if req.Answer && lacking != nil {
 		return nil, lacking

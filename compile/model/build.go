@@ -92,6 +92,7 @@ type builder struct {
 	ledger   map[string]*study.Variable
 	bare     []*study.Variable // columns that arguments read, not in the study's ledger
 	plates   []*plateColumn
+	outside  []bool // rows of the table that its row filter leaves out; nil = none
 	model    *Model
 	at       map[string]int // variable ID → index in model.Variables
 

@@ -22,6 +22,10 @@ func (b *builder) gather(string) {
 	if b.broken {
 		return
 	}
+	b.filter(order)
+	if b.broken {
+		return
+	}
 	for _, id := range order {
 		b.compute(b.columns[id])
 	}
@@ -222,7 +226,10 @@ func (b *builder) selectRows(order []string) {
 	m.Rows.Read = b.table.Rows
 	keep := make([]bool, b.table.Rows)
 	for i := range keep {
-		keep[i] = true
+		keep[i] = b.outside == nil || !b.outside[i]
+		if !keep[i] {
+			m.Rows.Filtered++
+		}
 	}
 	lost := func(name string, rows int) {
 		if rows > 0 {
@@ -231,7 +238,7 @@ func (b *builder) selectRows(order []string) {
 	}
 	for _, id := range order {
 		if c := b.columns[id]; c.computed == nil {
-			lost(id, drop(keep, c.values))
+			lost(id, drop(keep, c.values, b.outside))
 		}
 	}
 	for _, p := range b.plates {
@@ -242,7 +249,9 @@ func (b *builder) selectRows(order []string) {
 		for i, l := range p.of {
 			if l < 0 {
 				keep[i] = false
-				n++
+				if b.outside == nil || !b.outside[i] {
+					n++
+				}
 			}
 		}
 		lost(p.name, n)
@@ -268,15 +277,17 @@ func (b *builder) selectRows(order []string) {
 }
 
 // drop takes the rows out in which a value is missing or not finite, and
-// counts them.
-func drop(keep []bool, values []float64) int {
+// counts those that no row filter has left out.
+func drop(keep []bool, values []float64, outside []bool) int {
 	n := 0
 	for i, x := range values {
 		if x-x == 0 { // NaN for NaN and ±Inf
 			continue
 		}
 		keep[i] = false
-		n++
+		if outside == nil || !outside[i] {
+			n++
+		}
 	}
 	return n
 }
@@ -307,7 +318,7 @@ func (b *builder) keepToFull(keep []bool) {
 
 func (b *builder) noRows() {
 	p := Problem{Code: "no-rows", Place: "data"}
-	worst := Loss{}
+	worst, left := Loss{}, b.model.Rows.Read-b.model.Rows.Filtered
 	for _, l := range b.model.Rows.Lost {
 		if l.Rows > worst.Rows {
 			worst = l
@@ -316,12 +327,12 @@ func (b *builder) noRows() {
 	switch {
 	case b.model.Rows.Read == 0:
 		p.Message = fmt.Sprintf("%s has no rows.", b.table.Name)
-	case worst.Rows == b.model.Rows.Read:
+	case worst.Rows == left:
 		p.Variable = worst.Variable
 		p.Message = fmt.Sprintf("No rows are left: %s is missing in all %d.", worst.Variable, worst.Rows)
 	default:
 		p.Variable = worst.Variable
-		p.Message = fmt.Sprintf("No rows are left: in each of the %d rows some variable is missing, most often %s (%d rows).", b.model.Rows.Read, worst.Variable, worst.Rows)
+		p.Message = fmt.Sprintf("No rows are left: in each of the %d rows some variable is missing, most often %s (%d rows).", left, worst.Variable, worst.Rows)
 	}
 	if v := b.variable(worst.Variable); v != nil {
 		to := *v

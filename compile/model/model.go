@@ -6,7 +6,7 @@
 // Read the files in this order: model.go (what comes out), build.go (the
 // phases), choose.go and choose_outcome.go (which laws), names.go and parse.go
 // (what parameters are called, what the user typed), scope.go (what names mean
-// there), gather.go, columns.go and plates.go (data), ranges.go and priors.go
+// there), gather.go, columns.go, plates.go and conditions.go (data), ranges.go and priors.go
 // (SEMANTICS C), explain.go (predictors), examine.go and finite.go (data
 // against laws), question.go (what is asked), statement.go and typed.go (the
 // model in print). problem.go and repair.go hold what goes wrong and how it is
@@ -36,6 +36,7 @@ type Model struct {
 	Exposure   string // whose fit this is: it orders the carriers
 	Outcome    string // of the question; "" if it has none
 	Rows       Rows
+	Asked      *Subset // the used rows that the question asks about; nil = all of them
 	Plates     []*Plate
 	Variables  []*Variable // every measured variable that a law reads or explains
 	Parameters []*Parameter
@@ -46,6 +47,7 @@ type Model struct {
 // Rows says which rows of the table are used and why the others are not.
 type Rows struct {
 	Read, Used int
+	Filtered   int // outside the row filter: of those read, nothing else was looked at
 	Lost       []Loss
 	Index      []int // of each used row in the table
 }

@@ -18,13 +18,32 @@ const questionCode = "question-"
 // QuestionProblems picks the problems for which the effect that the question
 // asks about cannot be computed, though the rival may be fitted.
 func QuestionProblems(problems []Problem) []Problem {
-	var out []Problem
+	_, out := Apart(problems)
+	return out
+}
+
+// Apart separates the problems of the fit from those that keep only the
+// question from an answer.
+func Apart(problems []Problem) (fit, question []Problem) {
 	for _, p := range problems {
 		if strings.HasPrefix(p.Code, questionCode) {
-			out = append(out, p)
+			question = append(question, p)
+		} else {
+			fit = append(fit, p)
 		}
 	}
-	return out
+	return fit, question
+}
+
+// HalfAsked says what a question that is still being asked lacks: while it is
+// typed that is no mistake, but there is no answer either.
+func HalfAsked(q study.Question) []Problem {
+	for _, end := range []struct{ role, id string }{{"exposure", q.Exposure}, {"outcome", q.Outcome}} {
+		if end.id == "" {
+			return []Problem{{Code: questionCode + "ends", Place: "question", Message: fmt.Sprintf("The question has no %s yet: say which variable it is.", end.role)}}
+		}
+	}
+	return nil
 }
 
 // asks reports a mistake of the question.
@@ -61,9 +80,15 @@ func (b *builder) ends(string) {
 		b.asks("same", q.Exposure, fmt.Sprintf("%s is both exposure and outcome of the question.", q.Exposure))
 	}
 	for _, id := range q.Held {
-		if id != q.Exposure && id != q.Outcome {
+		if id != q.Exposure && id != q.Outcome && !b.study.HoldsPlate(id) {
 			b.end("held", id)
 		}
+	}
+	for _, f := range q.Fixed {
+		b.end("fixed", f.Variable)
+	}
+	for _, c := range q.Where {
+		b.asked(c)
 	}
 }
 
@@ -75,6 +100,12 @@ func (b *builder) end(what, id string) {
 		role = id + " is held"
 		repairs = b.reask("Do not hold "+id, func(q *study.Question) {
 			q.Held = slices.DeleteFunc(append([]string{}, q.Held...), func(h string) bool { return h == id })
+		})
+	}
+	if what == "fixed" {
+		role = id + " is fixed"
+		repairs = b.reask("Do not fix "+id, func(q *study.Question) {
+			q.Fixed = slices.DeleteFunc(slices.Clone(q.Fixed), func(f study.Fix) bool { return f.Variable == id })
 		})
 	}
 	switch v := b.variable(id); {
@@ -104,23 +135,30 @@ func (b *builder) end(what, id string) {
 	case v.Unmeasured && what == "held":
 		b.asks("unmeasured", id, fmt.Sprintf("%s, but was not measured: only what was measured can be held.", role), repairs...)
 	case v.Unmeasured:
-		b.asks("unmeasured", id, fmt.Sprintf("%s, but was not measured.", role))
+		b.asks("unmeasured", id, fmt.Sprintf("%s, but was not measured.", role), repairs...)
 	}
 }
 
 // compared looks at the values that the question compares and at how.
 func (b *builder) compared(string) {
+	b.subset()
 	if b.kind != Full || !b.whole() || b.table == nil {
 		return
 	}
-	x, _ := b.model.Name(b.question.Exposure)
-	y, _ := b.model.Name(b.question.Outcome)
-	if x >= 0 && b.model.Variables[x].Values != nil {
+	q := b.question
+	x, _ := b.model.Name(q.Exposure)
+	y, _ := b.model.Name(q.Outcome)
+	switch {
+	case x >= 0 && b.model.Variables[x].Values != nil:
 		b.exposureValues(b.model.Variables[x])
+	case q.From == nil && q.To == nil && q.Shift == 0: // no law reads it
+		b.asks("values", q.Exposure, fmt.Sprintf("The question names no values of %s: say two values to compare.", q.Exposure))
 	}
 	if y >= 0 && b.model.Variables[y].Values != nil {
 		b.outcomeAsked(b.model.Variables[y])
 	}
+	b.fixedAsked()
+	b.groupsAsked()
 }
 
 func (b *builder) exposureValues(v *Variable) {
@@ -142,7 +180,7 @@ func (b *builder) exposureValues(v *Variable) {
 	}
 	var at [2]float64
 	for i, s := range []*study.Setting{q.From, q.To} {
-		x, ok := b.setting(v, s)
+		x, ok := b.setting(v, s, b.seenValues(v))
 		if !ok {
 			return
 		}
@@ -153,14 +191,15 @@ func (b *builder) exposureValues(v *Variable) {
 		return
 	}
 	for _, x := range at {
-		b.overlap(v, x)
+		b.overlap(v, x, b.seenValues(v))
 	}
 }
 
-// setting reads one value of the exposure and reports it where it cannot be.
-func (b *builder) setting(v *Variable, s *study.Setting) (float64, bool) {
+// setting reads one value of a variable that is set and reports it where it
+// cannot be.
+func (b *builder) setting(v *Variable, s *study.Setting, repairs []Repair) (float64, bool) {
 	impossible := func(format string, args ...any) (float64, bool) {
-		b.asks("value", v.ID, fmt.Sprintf(format, args...), b.seenValues(v)...)
+		b.asks("value", v.ID, fmt.Sprintf(format, args...), repairs...)
 		return 0, false
 	}
 	levelled := v.Scale == study.Category || v.Scale == study.Ordered
@@ -248,10 +287,10 @@ func (b *builder) shifted(v *Variable) {
 const farOutside = 0.25
 
 // overlap notes a value at which there are no data.
-func (b *builder) overlap(v *Variable, x float64) {
+func (b *builder) overlap(v *Variable, x float64, repairs []Repair) {
 	low, high := extent(v.Values)
 	note := func(message string) {
-		b.report(Problem{Code: "overlap", Variable: v.ID, Place: "question", Message: message, Repairs: b.seenValues(v)})
+		b.report(Problem{Code: "overlap", Variable: v.ID, Place: "question", Message: message, Repairs: repairs})
 	}
 	if len(v.Levels) > 0 {
 		if !slices.Contains(v.Values, x) {
