@@ -22,6 +22,7 @@ type derived struct {
 	reader     *reader // of the present sources; nil without a graph
 	readOf     readSources
 	tester     *tester // of what it found; nil without data
+	critic     *critic // of the present sources; nil without a graph
 
 	model       *model.Model
 	problems    []model.Problem
@@ -69,11 +70,15 @@ func (s *Session) derive() {
 		}
 		r.take()
 	}
+	s.deriveMistakes(late)
 	s.deriveEvidence()
 }
 
 // readMore shows that the reading has come further.
 func (s *Session) readMore() {
+	late, cancel := context.WithTimeout(context.Background(), patience)
+	defer cancel()
+	s.deriveMistakes(late)
 	s.deriveEvidence()
 	s.show()
 }

@@ -17,6 +17,7 @@ import (
 	"arrowroot/compile/causal"
 	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
+	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
@@ -42,6 +43,8 @@ type View struct {
 	Findings   *findings.Findings // all that has been read so far; nil as Reading
 	Evidence   *evidence.Evidence // what the data say of it; nil without data, and until it is known
 	Considered string             // label of the edit that a hand is about to make: Graph, Reading and Findings are as after it; "" = none
+	Mistakes   []mistake.Mistake  // of this rival and question, the gravest first, but for those set aside
+	Aside      []mistake.Mistake  // those set aside, with the reason
 	Table      *table.Table       // of the present rival; nil = none, or still being read
 	DataError  error
 	Model      *model.Model // nil where problems do not allow one
@@ -247,6 +250,7 @@ func (s *Session) show() {
 		Results: s.results, Recovered: s.recovered, Notice: s.notice,
 	}
 	s.showReading(v)
+	s.showMistakes(v)
 	if t := s.table(); t != nil {
 		v.Table, v.DataError = t.table, t.err
 	}

@@ -7,6 +7,7 @@ import (
 	"time"
 
 	"arrowroot/compile/causal"
+	"arrowroot/compile/mistake"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -238,4 +239,24 @@ func TestFitBecomesStale(t *testing.T) {
 	w.until(t, "staleness without a model", func() bool { return s.View().Stale })
 	s.Undo()
 	w.until(t, "freshness", func() bool { return !s.View().Stale })
+}
+
+// TestMistakesFollowTheHand: a held mediator is told, set aside with a reason,
+// brought back, and gone once it is free.
+func TestMistakesFollowTheHand(t *testing.T) {
+	w, s := newWindow(t)
+	defer s.Close()
+	must(t, s.Do(study.TypeArrows{Rival: s.View().Rival.Name, Text: "? -> hedge, soil\nhedge -> flowers -> bees"}))
+	must(t, s.SetQuestion(study.Question{Exposure: "hedge", Outcome: "bees", From: &study.Setting{}, To: &study.Setting{Number: 1}, Held: []string{"flowers"}}))
+	told := func() bool { m := s.View().Mistakes; return len(m) == 1 && m[0].Code == mistake.HeldMediator }
+	w.until(t, "the held mediator", told)
+	rival, key := s.View().Rival.Name, s.View().Mistakes[0].Key
+	must(t, s.Do(study.Dismiss{Dismissal: study.Dismissal{Rival: rival, Key: key, Why: "asked for"}}))
+	if v := s.View(); len(v.Mistakes) != 0 || len(v.Aside) != 1 || v.Aside[0].Aside != "asked for" {
+		t.Errorf("set aside: %v, %v", v.Mistakes, v.Aside)
+	}
+	s.Undo()
+	w.until(t, "it again", told)
+	must(t, s.Do(s.View().Mistakes[0].Repairs[0].Edit))
+	w.until(t, "silence", func() bool { v := s.View(); return v.Reading != nil && len(v.Mistakes)+len(v.Aside) == 0 && len(v.Question.Held) == 0 })
 }
