@@ -36,6 +36,7 @@ type Editor struct {
 	OnTool   func(scene.Tool)                           // Escape went back to the select tool
 	OnDraft  func(study.Edit)                           // an arrow in the hand has come over a variable: what letting go would draw; nil = no longer
 	OnRefuse func(reason string)                        // a gesture or a name that cannot be, and why
+	OnCycle  func(*study.CycleError)                    // instead of OnRefuse, if set: an arrow that would close a cycle
 
 	in      scene.Input
 	hand    *scene.Hand
@@ -280,7 +281,10 @@ func (e *Editor) handle(event scene.Event) {
 			e.OnTool(*a.Tool)
 		}
 	}
-	if a.Refuse != "" {
+	switch {
+	case a.Cycle != nil && e.OnCycle != nil:
+		e.OnCycle(a.Cycle)
+	case a.Refuse != "":
 		e.refuse(a.Refuse)
 	}
 	if n := a.Name; n != nil && event.Kind == scene.Release {

@@ -50,10 +50,11 @@ type Answer struct {
 	Preview *Preview
 	Name    *Naming // ask for a name in place
 	Tool    *Tool
-	Menu    *Target // a context menu for this
-	Open    *Target // show the details of this
-	Command string  // a key that is not the sheet's own
-	Refuse  string  // why nothing was done, for the user
+	Menu    *Target           // a context menu for this
+	Open    *Target           // show the details of this
+	Command string            // a key that is not the sheet's own
+	Refuse  string            // why nothing was done, for the user
+	Cycle   *study.CycleError // what Refuse is about, where it is an arrow that would close a cycle
 }
 
 // A Tool is what a drag on the sheet does.

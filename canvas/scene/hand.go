@@ -1,6 +1,7 @@
 package scene
 
 import (
+	"errors"
 	"maps"
 	"math"
 	"slices"
@@ -392,7 +393,9 @@ func (h *Hand) connect(in *Input) Answer {
 	edit := h.linkEdit(in)
 	h.link = Draft{}
 	if _, err := edit.Apply(in.Study); err != nil {
-		return Answer{Refuse: err.Error()}
+		a := Answer{Refuse: err.Error()}
+		errors.As(err, &a.Cycle)
+		return a
 	}
 	s := Selection{Arrows: [][2]string{{l.From, l.To}}}
 	if l.Arc {
