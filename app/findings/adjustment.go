@@ -6,6 +6,7 @@ import (
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
 )
 
 // fixed are the variables that a direct effect keeps at set values.
@@ -26,7 +27,8 @@ func (r *reader) fixed(f *Findings) []int {
 func (r *reader) adjustment(f *Findings) {
 	exposures := union(f.Exposures, r.fixed(f))
 	a := &Adjustment{Section: Section{Name: AdjustmentSection}}
-	found := causal.Adjust(f.Graph, causal.Aim{Exposures: exposures, Outcomes: f.Outcomes, Forced: f.Selected, Costs: r.sheet.costs, MaxSets: r.limits.Sets})
+	g := f.within()
+	found := causal.Adjust(g, causal.Aim{Exposures: exposures, Outcomes: f.Outcomes, Forced: f.Selected, Costs: r.sheet.costs, MaxSets: r.limits.Sets})
 	a.Adjustment = found
 	a.Summary = found.Sentence
 	if len(f.Selected) > 0 {
@@ -34,9 +36,10 @@ func (r *reader) adjustment(f *Findings) {
 		a.Summary = f.selectedSummary(a.Adjustment)
 	}
 	if found.Sets == nil && r.ctx.Err() == nil {
-		a.Culprits, a.CulpritArcs, a.CulpritsAll = causal.Culprits(f.Graph, exposures, f.Outcomes)
+		a.Culprits, a.CulpritArcs, a.CulpritsAll = causal.Culprits(g, exposures, f.Outcomes)
 	}
 	f.setFindings(a, r.sheet.costs != nil)
+	f.groupFindings(a)
 	f.forbiddenFindings(a)
 	f.unavailableFindings(a)
 	if a.MoreSets {
@@ -44,6 +47,35 @@ func (r *reader) adjustment(f *Findings) {
 	}
 	f.Adjustment = a
 	f.judge(exposures)
+}
+
+// within is the graph as it is within the groups of the plates that are held,
+// the graph itself if none is or none can be.
+func (f *Findings) within() *graph.Graph {
+	if r := f.Reading; r != nil && len(r.Query.Within) > 0 && len(r.PlateFaults) == 0 {
+		return causal.Within(f.Graph, r.Query.Within)
+	}
+	return f.Graph
+}
+
+// groupFindings says what comparing within groups gives.
+func (f *Findings) groupFindings(a *Adjustment) {
+	if f.Reading == nil || f.direct() {
+		return
+	}
+	for _, one := range f.Reading.Groups {
+		plate := f.Graph.Plates[one.Plate].Name
+		switch {
+		case one.Refused != "":
+			f.add(&a.Section, Finding{Key: "within " + plate, Kind: "not within groups", Sentence: fmt.Sprintf("%s cannot be held: %s.", plate, one.Refused)})
+		case one.Sets == nil:
+			f.add(&a.Section, Finding{Key: "within " + plate, Kind: "not within groups", Sentence: fmt.Sprintf("Comparing within each %s does not give the effect either, whatever else is held.", plate)})
+		case len(one.Sets[0]) == 0:
+			f.add(&a.Section, Finding{Key: "within " + plate, Kind: "within groups", Sentence: fmt.Sprintf("Comparing within each %s gives the effect, with nothing else held.", plate)})
+		default:
+			f.add(&a.Section, Finding{Key: "within " + plate, Kind: "within groups", Nodes: one.Sets[0], Sentence: fmt.Sprintf("Comparing within each %s gives the effect, with %s held besides.", plate, words.List(f.names(one.Sets[0])))})
+		}
+	}
 }
 
 // freed is an adjustment whose sets leave out what limits the rows.

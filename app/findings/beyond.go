@@ -18,7 +18,14 @@ func (r *reader) identification(f *Findings) {
 	exposures := union(f.Exposures, r.fixed(f))
 	id := causal.Identify(f.Graph, exposures, f.Outcomes, f.Given)
 	b.Identification = id
-	b.Summary = id.Sentence
+	b.ByHolding = byHolding(f, id)
+	b.Summary = b.first()
+	if h := b.ByHolding; h != nil {
+		f.add(&b.Section, Finding{
+			Key: "adjustment " + h.Query(), Kind: "identified by holding", Sentence: h.Sentence, Why: fmt.Sprintf("In symbols: %s = %s.", h.Query(), h.Symbols()),
+			Nodes: union(causal.Free(h.Estimand), h.Given),
+		})
+	}
 	one := Finding{Key: "identification " + id.Query(), Kind: "identified", Sentence: id.Sentence, Nodes: union(union(exposures, f.Outcomes), f.Given)}
 	if id.Identified {
 		one.Why = fmt.Sprintf("In symbols: %s = %s.", id.Query(), id.Symbols())
@@ -35,6 +42,34 @@ func (r *reader) identification(f *Findings) {
 		f.add(&b.Section, Finding{Key: "identification supposes all rows", Kind: "supposes", Nodes: f.Selected, Sentence: fmt.Sprintf("This supposes data on all rows, where these were chosen by %s.", f.rowsBy())})
 	}
 	f.Beyond = b
+}
+
+// byHolding writes the estimand that the proposed set gives: the shortest to
+// read, and the same number.
+func byHolding(f *Findings, id *causal.Identification) *causal.Identification {
+	if len(f.Adjustment.Sets) == 0 || !f.Adjustment.Effect || f.within() != f.Graph || len(id.Given) > 0 || len(f.Selected) > 0 {
+		return nil
+	}
+	set := proposalOf(f.Adjustment.Adjustment)
+	if f.Verdict.Kind == causal.Readable && len(f.Ask.Held) == len(f.Held) {
+		set = f.Held
+	}
+	h := &causal.Identification{Graph: id.Graph, Exposures: id.Exposures, Outcomes: id.Outcomes, Given: id.Given, Identified: true}
+	outcome := causal.Probability{Of: id.Outcomes, Given: union(id.Exposures, set)}
+	h.Estimand = outcome
+	if len(set) > 0 {
+		h.Estimand = causal.Sum{Over: set, Body: causal.Product{Factors: []causal.Estimand{outcome, causal.Probability{Of: set, Given: []int{}}}}}
+	}
+	h.Sentence = fmt.Sprintf("With %s held, %s is %s.", words.List(f.names(set)), h.Query(), h.Words())
+	return h
+}
+
+// first is what identification comes to, in the shortest words.
+func (b *Beyond) first() string {
+	if b.ByHolding != nil {
+		return b.ByHolding.Sentence
+	}
+	return b.Identification.Sentence
 }
 
 // inside are all edges among some nodes.
@@ -118,7 +153,7 @@ func (r *reader) instruments(f *Findings) {
 		list []causal.InstrumentSets
 		name string
 		of   string
-	}{{b.TotalInstruments, "instrument", "the effect"}, {b.ArrowInstruments, "instrument for the arrow", "the arrow alone"}} {
+	}{{b.TotalInstruments, "instrument", "the effect of %s on %s"}, {b.ArrowInstruments, "instrument for the arrow", "what the arrow %s → %s carries"}} {
 		for i := range kind.list {
 			z := &kind.list[i]
 			name := f.Graph.Names[z.Node]
@@ -128,7 +163,7 @@ func (r *reader) instruments(f *Findings) {
 			cut = cut || z.More && f.Sheet <= instrumentNodes
 			f.add(&b.Section, Finding{
 				Key: kind.name + " " + name, Kind: kind.name, Sentence: z.Sentence(f.Graph, x, y),
-				Why: fmt.Sprintf("It gives %s of %s on %s.", kind.of, f.Graph.Names[x], f.Graph.Names[y]), Nodes: union(z.Given[0], []int{z.Node, x, y}),
+				Why: fmt.Sprintf("It gives "+kind.of+".", f.Graph.Names[x], f.Graph.Names[y]), Nodes: union(z.Given[0], []int{z.Node, x, y}),
 			})
 		}
 	}
@@ -140,19 +175,18 @@ func (r *reader) instruments(f *Findings) {
 
 // ways says beside identification which other ways were found.
 func (f *Findings) ways(b *Beyond) {
-	b.Summary = b.Identification.Sentence
+	b.Summary = b.first()
 	var found []string
-	if n := len(b.Doors); n > 0 {
-		found = append(found, words.Plural(n, "front door"))
-	}
-	if n := len(b.TotalInstruments); n > 0 {
-		found = append(found, words.Plural(n, "instrument")+" for the effect")
-	}
-	if n := len(b.ArrowInstruments); n > 0 {
-		found = append(found, words.Plural(n, "instrument")+" for the arrow")
+	for _, way := range []struct {
+		n         int
+		what, use string
+	}{{len(b.Doors), "front door", ""}, {len(b.TotalInstruments), "instrument", " for the effect"}, {len(b.ArrowInstruments), "instrument", " for the arrow"}} {
+		if way.n > 0 {
+			found = append(found, words.Plural(way.n, way.what)+way.use)
+		}
 	}
 	if len(found) > 0 {
-		b.Summary += fmt.Sprintf(" There %s %s.", areOne(len(found) == 1 && len(b.Doors)+len(b.TotalInstruments)+len(b.ArrowInstruments) == 1), words.List(found))
+		b.Summary += fmt.Sprintf(" Found besides: %s.", words.List(found))
 	}
 }
 

@@ -10,7 +10,8 @@ import (
 
 const controlNodes = 300 // variables on a sheet up to which each is judged
 
-// controls judges each measured variable beside the held ones.
+// controls judges each measured variable beside the held ones, or beside the set
+// that is proposed in their stead.
 func (r *reader) controls(f *Findings) {
 	c := &Controls{Section: Section{Name: ControlSection}}
 	defer func() { f.Controls = c }()
@@ -20,7 +21,11 @@ func (r *reader) controls(f *Findings) {
 		return
 	}
 	counts := map[causal.ControlKind]int{}
-	for _, one := range causal.Controls(f.Graph, f.Exposures[0], f.Outcomes[0], union(f.Held, f.Selected)) {
+	c.Beside = f.Held
+	if f.Verdict.HasProposal { // beside what is not enough, everything that is idle would look bad
+		c.Beside = f.Verdict.Propose
+	}
+	for _, one := range causal.Controls(f.within(), f.Exposures[0], f.Outcomes[0], union(c.Beside, f.Selected)) {
 		if slices.Contains(f.Selected, one.Node) {
 			continue
 		}
@@ -32,7 +37,11 @@ func (r *reader) controls(f *Findings) {
 		})
 	}
 	good, idle, bad := counts[causal.GoodControl]+counts[causal.PartOfControl], counts[causal.SharpensControl]+counts[causal.NeutralControl]+counts[causal.BluntsControl], counts[causal.BadControl]
-	c.Summary = fmt.Sprintf("Of %s, %s to be held, %s not needed and %s to be left free.", words.Plural(len(c.List), "measured variable"), beMany(good), beMany(idle), beMany(bad))
+	beside := ""
+	if len(c.Beside) > 0 {
+		beside = "Beside " + words.List(f.names(c.Beside)) + ": "
+	}
+	c.Summary = upper(fmt.Sprintf("%sof %s, %s to be held, %s not needed and %s to be left free.", beside, words.Plural(len(c.List), "measured variable"), beMany(good), beMany(idle), beMany(bad)))
 	if len(c.List) == 0 {
 		c.Summary = "No measured variable besides exposure and outcome could be held."
 	}

@@ -109,7 +109,8 @@ type Adjustment struct {
 // Controls has a verdict on every measured variable; finding i is about List[i].
 type Controls struct {
 	Section
-	List []causal.Control
+	Beside []int // the set beside which each is judged: what is held, or what is proposed instead
+	List   []causal.Control
 }
 
 // Direct is the controlled direct effect of the exposure: of the question's
@@ -123,6 +124,7 @@ type Direct struct {
 type Beyond struct {
 	Section
 	Identification   *causal.Identification
+	ByHolding        *causal.Identification // the same by adjustment, shorter; nil = no set, or something is given
 	Doors            []causal.FrontDoor
 	ArrowInstruments []causal.InstrumentSets
 	TotalInstruments []causal.InstrumentSets

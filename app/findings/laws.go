@@ -93,7 +93,7 @@ func (f *Findings) lawFinding(s *Section, law causal.Fitted) {
 // caseFinding says whether the fitted laws may be simulated under the
 // intervention.
 func (f *Findings) caseFinding(l *Laws) {
-	one := Finding{Key: "simulation", Why: upper(l.Reason) + ".", Nodes: union(union(f.Exposures, f.Outcomes), l.District)}
+	one := Finding{Key: "simulation", Nodes: union(union(f.Exposures, f.Outcomes), l.District)}
 	x := f.Graph.Names[f.Exposures[0]]
 	switch l.Case {
 	case causal.PinAndSimulate:

@@ -38,8 +38,8 @@ func (r *reader) selection(f *Findings) {
 		}
 		return
 	}
-	// What the sheet shows beyond these rows is known from nowhere, so the sets
-	// are those that need nothing from elsewhere.
+	// First what these rows show by themselves, then with how the measured
+	// variables spread in all rows known from elsewhere.
 	s.Selection = causal.ReadSelection(f.Graph, f.Exposures[0], f.Outcomes[0], f.Selected, nil)
 	text := s.Selection.Sentence
 	kind := "selection, harmless"
