@@ -2,32 +2,47 @@ package ui
 
 import (
 	"fmt"
+	"strconv"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
-
-	"arrowroot/app/words"
-	"arrowroot/canvas/scene"
-	"arrowroot/compile/causal"
-	"arrowroot/compile/graph"
 )
 
-// readingPage shows what follows from the arrows: every path on the left, what
-// to hold and what not to on the right.
+// readingPage shows everything that the arrows tell: the subjects on the left,
+// the findings of one of them on the right. A row that the pointer or the
+// keyboard is on shows on the sheet what it is about; clicked, it stays lit. It
+// computes nothing: the session reads behind the window, and what is ready is
+// shown while the rest is looked for.
 type readingPage struct {
-	d      *desk
-	split  fyne.CanvasObject
-	paths  *pane
-	advice *pane
-	seen   *causal.Reading
-	failed error
-	open   bool // list open paths only
-	asked  bool
+	d       *desk
+	split   *fyne.Container
+	nav     *roll
+	rows    *roll
+	chosen  string // name of a section
+	pinned  string // key of the row that stays lit; "" = none
+	open    bool   // list open paths only
+	through bool   // list paths through what is picked only
+	lines   []readingLine
+	seen    readingState
+	asked   bool
+}
+
+// readingState is everything the page shows: it is filled again only when one
+// of these is another.
+type readingState struct {
+	findings, evidence any
+	failed             error
+	considered, held   string
+	picked             string
+	chosen             string
+	open, through      bool
+	testing            bool
 }
 
 func newReadingPage(d *desk) *readingPage {
-	p := &readingPage{d: d, paths: newPane(14, 8, 1), advice: newPane(16, 8, 5)}
-	p.split = container.New(&splitLayout{share: 0.6}, p.paths, hairline(), p.advice)
+	p := &readingPage{d: d, nav: newRoll(6, 6, 0), rows: newRoll(10, 6, 1), chosen: firstSubject}
+	p.rows.onLeft = func() { p.nav.focus(p.chosen) }
+	p.split = container.New(navLayout{}, p.nav, hairline(), p.rows)
 	return p
 }
 
@@ -36,273 +51,190 @@ func (p *readingPage) content() fyne.CanvasObject { return p.split }
 
 func (p *readingPage) update() {
 	v := p.d.view
-	if p.asked && v.Reading == p.seen && v.GraphError == p.failed {
+	state := readingState{
+		findings: v.Findings, evidence: v.Evidence, failed: v.GraphError, considered: v.Considered,
+		picked: p.d.picked(), chosen: p.chosen, open: p.open, through: p.through, testing: v.Table != nil,
+	}
+	if v.Question != nil {
+		state.held = fmt.Sprint(v.Question.Held == nil, v.Question.Held)
+	}
+	if p.asked && state == p.seen {
 		return
 	}
-	p.asked, p.seen, p.failed = true, v.Reading, v.GraphError
+	p.asked, p.seen = true, state
 	p.fill()
 }
 
 func (p *readingPage) fill() {
 	v := p.d.view
-	r := v.Reading
-	keys := make(map[string]fyne.Focusable)
+	p.lines = nil
+	var rows []rollRow
 	switch {
 	case v.GraphError != nil:
-		p.paths.fill(nil, para(v.GraphError.Error(), tokenFault))
-		p.advice.fill(nil)
-		return
-	case r == nil && v.Question != nil && v.Graph != nil:
-		p.paths.fill(nil, para("Reading the arrows …", tokenMuted))
-		p.advice.fill(nil)
-		return
-	case r == nil || r.Verdict.Kind == causal.Incomplete:
-		p.paths.fill(nil,
-			bold("Nothing is asked yet"),
-			para("Pick a variable on the sheet and press X to make it the exposure; pick another and press Y to make it the outcome. Every path between them then stands here, with what closes it.", tokenMuted))
-		p.advice.fill(nil)
-		return
-	}
-	g := v.Graph
-	q := r.Query
-	kinds := map[causal.PathKind]int{}
-	open := 0
-	for i := range r.Paths {
-		kinds[r.Paths[i].Kind]++
-		if r.Paths[i].Open && r.Paths[i].Kind != causal.Causal {
-			open++
+		rows = append(rows, still(para(v.GraphError.Error(), tokenFault)))
+	case v.Findings == nil:
+		rows = append(rows, still(para("Reading the arrows …", tokenMuted)))
+	default:
+		if v.Considered != "" {
+			rows = append(rows, still(newProse(sizeBody, span{text: "If you let go here: ", token: tokenConfound}, span{text: v.Considered, bold: true, token: tokenConfound})))
 		}
-	}
-	about := times(kinds[causal.Causal], "causal", "causal")
-	if n := kinds[causal.BackDoor]; n > 0 {
-		about += fmt.Sprintf(" · %d back-door", n)
-	}
-	if n := kinds[causal.NonCausal]; n > 0 {
-		about += fmt.Sprintf(" · %d other", n)
-	}
-	if open > 0 {
-		about += fmt.Sprintf(" · %d open that should not be", open)
-	}
-	only := p.d.toggle("open only", p.open, func(on bool) { p.open = on; p.fill() })
-	keys["open"] = only
-	objects := []fyne.CanvasObject{row(8, bold("Paths from "+g.Names[q.Exposure]+" to "+g.Names[q.Outcome]), stretch(small(about).shrinkTo(30)), only), gapOf(1, 2)}
-	shown := 0
-	column := p.column(g, r)
-	for i := range r.Paths {
-		path := &r.Paths[i]
-		if p.open && !path.Open {
-			continue
+		s := subjectOf(p.d, p.chosen)
+		p.lines = s.lines(p)
+		rows = append(rows, p.head(s)...)
+		for i := range p.lines {
+			rows = append(rows, p.row(i))
 		}
-		line := p.path(g, i, path, column)
-		keys[fmt.Sprint("path ", i)] = line
-		objects = append(objects, line)
-		if shown++; shown == 200 {
-			break
-		}
+		rows = append(rows, p.tail(s)...)
 	}
-	if shown == 0 {
-		objects = append(objects, para("No path is drawn between them.", tokenMuted))
-	}
-	if more := len(r.Paths) - shown; !p.open && more > 0 || r.MorePaths {
-		objects = append(objects, small("and more paths than are listed here"))
-	}
-	p.paths.fill(keys, objects...)
-	p.advise(g, r)
+	p.fillNav()
+	p.rows.fill(rows...)
+	p.relight()
 }
 
-// path is one line of the list; hovered or reached by keyboard it is lit on
-// the sheet alone.
-func (p *readingPage) path(g *graph.Graph, i int, path *causal.Path, column float32) *press {
-	kind, token := "back-door", tokenConfound
-	switch path.Kind {
-	case causal.Causal:
-		kind, token = "causal", tokenInk
-	case causal.NonCausal:
-		kind = "other"
-	}
-	if !path.Open && path.Kind != causal.Causal {
-		token = tokenMuted
-	}
-	state := pathState(g, path)
-	mark := filled(token)
-	mark.radius, mark.least = 4, fyne.NewSize(8, 8)
-	line := row(8,
-		fixed(8, 8, mark),
-		fixed(64, 0, newLabel(kind, sizeBody, token, fyne.TextStyle{})),
-		fixed(column, 0, body(path.Text(g)).shrinkTo(60)),
-		stretch(small(state).shrinkTo(40)))
-	x := p.d.press(line, func(x *press) skin {
-		if x.focused || x.hovered {
-			return skin{fill: tokenAmberTint, radius: 4}
+// head is what stands above the rows: the subject, and what it comes to.
+func (p *readingPage) head(s *subject) []rollRow {
+	title := row(10, bold(sentenceCase(s.name)), space())
+	if s.name == firstSubject && len(p.lines)+s.hidden > 0 {
+		title.Add(p.d.toggle("open only", p.open, func(on bool) { p.open = on; p.update() }))
+		if id := p.d.picked(); id != "" {
+			title.Add(p.d.toggle("through "+id, p.through, func(on bool) { p.through = on; p.update() }))
 		}
-		return skin{radius: 4}
-	}, func() {
-		p.d.choose(scene.Selection{Nodes: nodesOf(g, path)})
-	})
-	x.padX, x.padY, x.minH = 6, 2, 23
-	x.tip = path.Text(g) + ": " + state
-	x.onKey = func(key fyne.KeyName) bool {
-		switch key {
-		case fyne.KeyUp:
-			p.paths.focus(fmt.Sprint("path ", i-1))
-		case fyne.KeyDown:
-			p.paths.focus(fmt.Sprint("path ", i+1))
-		default:
-			return false
-		}
-		return true
 	}
-	x.onHover = func(in bool) {
-		if in {
-			p.d.editor.Highlight(i)
-		} else {
-			p.d.editor.Highlight(scene.NoPath)
-		}
-		x.Refresh()
-	}
-	return x
-}
-
-// column is the width of the paths' own column: as wide as the widest, within
-// a share of the page.
-func (p *readingPage) column(g *graph.Graph, r *causal.Reading) float32 {
-	w := float32(120)
-	for i := range r.Paths {
-		if i == 60 {
-			break
-		}
-		w = max(w, fyne.MeasureText(r.Paths[i].Text(g), sizeBody, fyne.TextStyle{}).Width+4)
-	}
-	return min(w, max(120, 0.52*p.paths.Size().Width))
-}
-
-func nodesOf(g *graph.Graph, p *causal.Path) []string {
-	var out []string
-	for _, v := range p.Nodes {
-		out = append(out, g.Names[v])
+	out := []rollRow{still(title)}
+	for _, text := range s.says {
+		out = append(out, still(para(text, tokenMuted)))
 	}
 	return out
 }
 
-// pathState says whether a path is open, and what opens or closes it.
-func pathState(g *graph.Graph, p *causal.Path) string {
-	if p.Open {
-		if len(p.OpenedAt) == 0 {
-			return "open"
-		}
-		o := p.OpenedAt[0]
-		if o.Node == o.By {
-			return "open: holding " + g.Names[o.By] + " opens it"
-		}
-		return "open: holding " + g.Names[o.By] + " opens it at " + g.Names[o.Node]
+// tail says what is not there.
+func (p *readingPage) tail(s *subject) (out []rollRow) {
+	for _, text := range s.left {
+		out = append(out, still(para(text, tokenMuted)))
 	}
-	if len(p.ClosedAt) == 0 {
-		return "closed"
+	if s.hidden > 0 {
+		out = append(out, still(para(times(s.hidden, "path is", "paths are")+" not shown here.", tokenMuted)))
 	}
-	return "closed: " + p.ClosedAt[0].Reason
+	if s.waiting {
+		out = append(out, still(para("Still looking …", tokenMuted)))
+	}
+	return out
 }
 
-// advise fills the right side.
-func (p *readingPage) advise(g *graph.Graph, r *causal.Reading) {
-	d := p.d
-	keys := make(map[string]fyne.Focusable)
-	objects := []fyne.CanvasObject{bold("What to hold")}
+// fillNav lists the subjects with how much there is of each.
+func (p *readingPage) fillNav() {
+	var rows []rollRow
+	for _, s := range subjects(p.d) {
+		rows = append(rows, rollRow{
+			key:    s.name,
+			height: func(float32) float32 { return navHeight() },
+			build:  func() fyne.CanvasObject { return p.subject(s) },
+		})
+	}
+	p.nav.fill(rows...)
+}
+
+// navHeight follows the size of the type, not a number of pixels.
+func navHeight() float32 { return fyne.MeasureText("Mg", sizeBody, fyne.TextStyle{}).Height + 5 }
+
+func (p *readingPage) subject(s *subject) *press {
+	token := tokenInk
+	count := strconv.Itoa(s.count)
 	switch {
-	case len(r.Sets) == 0:
-		text := "No set of measured variables closes every back-door path."
-		if r.Identifiable {
-			text += " The effect still follows from what was measured, by another way."
+	case s.waiting && s.count == 0:
+		count, token = "…", tokenMuted
+	case s.count == 0:
+		count, token = "–", tokenMuted
+	}
+	name := newLabel(sentenceCase(s.name), sizeBody, token, fyne.TextStyle{}).shrinkTo(30)
+	number := newLabel(count, sizeSmall, tokenMuted, fyne.TextStyle{})
+	if s.alarm != "" {
+		number.set(s.alarm, tokenConfound)
+	}
+	x := p.d.press(row(6, stretch(name), number), func(x *press) skin {
+		if x.selected {
+			return skin{fill: tokenTint, radius: 4}
 		}
-		objects = append(objects, para(text, tokenConfound))
-	default:
-		for i, set := range r.Sets {
-			ids := d.names(set)
-			label := orNone(ids)
-			note := ""
-			switch {
-			case len(r.Sets) == 1:
-				note = "only minimal set"
-			case i == r.Precise:
-				note = "most precise"
-			}
-			if sameSet(ids, d.view.Question.Held) && (len(ids) > 0 || d.view.Question.Held != nil) {
-				if note != "" {
-					note += " · "
-				}
-				note += "held now"
-			}
-			b := p.set(label, note, func() { d.holdAll(ids) })
-			keys[fmt.Sprint("set ", i)] = b
-			objects = append(objects, b)
-			if i == 24 {
-				objects = append(objects, small(fmt.Sprintf("and %d more", len(r.Sets)-i-1)))
-				break
-			}
+		return skin{radius: 4}
+	}, func() { p.turn(s.name) })
+	x.padX, x.padY = 8, 1
+	x.selected = s.name == p.chosen
+	x.key = "read " + s.name
+	x.onKey = func(key fyne.KeyName) bool {
+		switch key {
+		case fyne.KeyRight, fyne.KeyReturn, fyne.KeyEnter:
+			p.turn(s.name)
+			p.rows.focus("")
+			return true
 		}
-	}
-	for _, f := range r.HeldFaults {
-		b := d.quiet("Leave it free", func() { d.hold(g.Names[f.Node], false) })
-		keys["free "+g.Names[f.Node]] = b
-		objects = append(objects, newProse(sizeBody, span{text: g.Names[f.Node], bold: true}, span{text: ": " + f.Reason + " ", token: tokenConfound}, span{object: b}))
-	}
-	if len(r.Forbidden) > 0 {
-		objects = append(objects, gapOf(1, 3), bold("Not to be held"))
-		for _, f := range r.Forbidden {
-			objects = append(objects, newProse(sizeBody, span{text: g.Names[f.Node], bold: true}, span{text: " · " + f.Reason, token: tokenMuted}))
-		}
-	}
-	if len(r.Culprits) > 0 {
-		objects = append(objects, gapOf(1, 3), bold("What was not measured"))
-		names := words.List(d.names(r.Culprits))
-		text := "Measuring any one of " + names + " would give a set to hold."
-		if len(r.Culprits) == 1 {
-			text = "Measuring " + names + " would give a set to hold."
-		} else if r.CulpritsAll {
-			text = "Measuring all of " + names + " together would give a set to hold."
-		}
-		objects = append(objects, para(text, tokenMuted))
-	}
-	if r.Verdict.Way != "" {
-		objects = append(objects, gapOf(1, 3), bold("What else could be done"), markedProse(r.Verdict.Way, tokenMuted))
-	}
-	p.advice.fill(keys, objects...)
-}
-
-// set is a clickable set of variables to hold.
-func (p *readingPage) set(label, note string, tap func()) *press {
-	w := newLabel(label, sizeBody, tokenAction, fyne.TextStyle{Bold: true}).shrinkTo(40)
-	n := small(note)
-	n.token = tokenAction
-	b := p.d.press(row(8, stretch(w), n), func(*press) skin { return skin{fill: tokenTint, radius: 5} }, tap)
-	b.padX, b.padY, b.minH = 10, 3, 25
-	b.tip = "Hold " + label
-	return b
-}
-
-func sameSet(a, b []string) bool {
-	if len(a) != len(b) {
 		return false
 	}
-	in := make(map[string]bool, len(a))
-	for _, x := range a {
-		in[x] = true
-	}
-	for _, x := range b {
-		if !in[x] {
-			return false
+	x.onHover = func(in bool) {
+		if in && x.focused && !x.byMouse && p.chosen != s.name {
+			p.turn(s.name)
 		}
 	}
-	return true
+	return x
 }
 
-// splitLayout sets two panes side by side with a line between them.
-type splitLayout struct{ share float32 }
+// turn shows another subject.
+func (p *readingPage) turn(name string) {
+	if p.chosen == name {
+		return
+	}
+	p.chosen, p.pinned = name, ""
+	p.d.editor.Point(nil)
+	p.rows.scroll.ScrollToTop()
+	p.update()
+	p.d.trace.note(p.d)
+}
 
-func (l *splitLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
-	w := s.Width * l.share
+// relight marks on the sheet the row that stays lit, if it is still there.
+func (p *readingPage) relight() {
+	if p.pinned == "" {
+		return
+	}
+	for i := range p.lines {
+		if p.lines[i].key == p.pinned {
+			p.d.editor.Point(p.lines[i].mark())
+			return
+		}
+	}
+	p.pinned = ""
+	p.d.editor.Point(nil)
+}
+
+// light shows on the sheet what a row is about, for as long as the pointer or
+// the keyboard is on it.
+func (p *readingPage) light(l *readingLine, on bool) {
+	if on {
+		p.d.editor.Point(l.mark())
+		return
+	}
+	p.d.editor.Point(nil)
+	p.relight()
+}
+
+// pin keeps a row lit, or lets go of it.
+func (p *readingPage) pin(l *readingLine) {
+	if p.pinned == l.key {
+		p.pinned = ""
+	} else {
+		p.pinned = l.key
+	}
+	p.light(l, true)
+	p.rows.content.Refresh()
+	p.d.trace.note(p.d)
+}
+
+// navLayout sets a narrow list beside a wide one.
+type navLayout struct{}
+
+func (navLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
+	w := min(228, 0.36*s.Width)
 	place(o[0], 0, 0, w, s.Height)
 	place(o[1], w, 8, 1, s.Height-16)
 	place(o[2], w+1, 0, s.Width-w-1, s.Height)
 }
 
-func (l *splitLayout) MinSize([]fyne.CanvasObject) fyne.Size { return fyne.NewSize(80, 24) }
+func (navLayout) MinSize([]fyne.CanvasObject) fyne.Size { return fyne.NewSize(80, 24) }

@@ -78,7 +78,7 @@ func (r *roll) fill(rows ...rollRow) {
 
 func (r *roll) find(key string) int {
 	for i := range r.rows {
-		if r.rows[i].key == key {
+		if key != "" && r.rows[i].key == key {
 			return i
 		}
 	}

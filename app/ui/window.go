@@ -152,6 +152,7 @@ func (w *Window) wireSheet() {
 	e.OnNaming = func() { d.trace.note(d) }
 	e.OnTool = func(scene.Tool) { d.refresh() }
 	e.OnRefuse = d.status.refuse
+	e.OnDraft = d.session.Consider
 	e.OnHover = func(t scene.Target) { d.hover(t) }
 }
 

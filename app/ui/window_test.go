@@ -482,10 +482,10 @@ func TestListsWalkByKeyboard(t *testing.T) {
 		t.Errorf("two steps down from the first pick %q", got)
 	}
 	reading := b.drawer.pages[0].(*readingPage)
-	reading.paths.focus("path 0")
+	reading.rows.focus("")
 	b.win.Canvas().Focused().TypedKey(down)
-	if lit := b.editor.Input().LitPath; lit != 1 {
-		t.Errorf("path %d is lit", lit)
+	if m := b.editor.Input().Mark; m == nil || len(m.Trails) != 1 || m.Trails[0].Legs[1].To != "yield" || m.Trails[0].Legs[1].From != "growth" {
+		t.Errorf("the second path down is marked as %+v", m)
 	}
 }
 
