@@ -185,6 +185,7 @@ func (s *Session) adopt(path string, t *table.Table) error {
 	data := study.Data{Name: name, File: file, SHA256: t.SHA256, Rows: t.Rows}
 	edits := []study.Edit{}
 	if old := s.study.DataOf(s.rival); old != nil {
+		data.Keep = old.Keep
 		edits = append(edits, study.ChangeData{Name: old.Name, To: data})
 	} else {
 		edits = append(edits, study.AddData{Data: data})

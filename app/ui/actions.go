@@ -272,7 +272,7 @@ func (d *desk) sheetMenu(t scene.Target, at fyne.Position) {
 	switch t.Kind {
 	case scene.OnNode, scene.OnEdge:
 		d.choose(pickNode(t.Node))
-		d.menuAt(at, "exposure", "outcome", "hold", "unmeasured", "rename", "delete")
+		d.menuAt(at, d.nodeCommands()...)
 	case scene.OnArrow:
 		d.chooseArrow(t.Pair[0], t.Pair[1])
 		d.menuAt(at, "delete")
@@ -290,10 +290,21 @@ func (d *desk) sheetMenu(t scene.Target, at fyne.Position) {
 	}
 }
 
+// nodeCommands are those that fit the node that is picked.
+func (d *desk) nodeCommands() []string {
+	ids := []string{"exposure", "outcome", "hold", "unmeasured", "limits"}
+	for _, id := range []string{"truth", "indicator"} {
+		if d.commands.find(id).ready() {
+			ids = append(ids, id)
+		}
+	}
+	return append(ids, "rename", "delete")
+}
+
 func (d *desk) variableMenu(id string, at fyne.Position) {
 	d.choose(pickNode(id))
 	if d.onSheet(id) {
-		d.menuAt(at, "exposure", "outcome", "hold", "unmeasured", "rename", "delete")
+		d.menuAt(at, d.nodeCommands()...)
 		return
 	}
 	menu := fyne.NewMenu("",

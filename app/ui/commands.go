@@ -89,6 +89,10 @@ func commandsOf(d *desk) commandTable {
 			d.changeVariable(id, func(v *study.Variable) { v.Unmeasured = !v.Unmeasured })
 		}},
 
+		{id: "truth", menu: "Data", label: "Measured with error", on: d.canRecord, run: func() { d.drawTruth(d.picked()) }},
+		{id: "indicator", menu: "Data", label: "Response indicator", on: d.canIndicate, run: func() { d.drawIndicator(d.picked()) }},
+		{id: "limits", menu: "Data", label: "Limits the rows, or not", keys: "L", on: onSheet, run: func() { d.limitRows(d.picked()) }},
+
 		{id: "question", menu: "Reading", label: "Ask …", keys: "Ctrl+E", run: func() { d.askQuestion(d.capsule) }},
 		{id: "exposure", menu: "Reading", label: "Make it the exposure", keys: "X", on: onSheet, run: func() { d.setExposure(d.picked()) }},
 		{id: "outcome", menu: "Reading", label: "Make it the outcome", keys: "Y", on: onSheet, run: func() { d.setOutcome(d.picked()) }},

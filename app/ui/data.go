@@ -55,7 +55,7 @@ func (d *desk) freeColumns() []*table.Column {
 func (d *desk) unbound() []*study.Variable {
 	var out []*study.Variable
 	for _, v := range d.view.Study.Variables {
-		if !v.Unmeasured && v.Computed == "" && v.Column == "" {
+		if !v.Unmeasured && v.Computed == "" && v.Column == "" && v.Answers == "" {
 			out = append(out, v)
 		}
 	}
@@ -75,16 +75,51 @@ func (d *desk) freeID(name string, edits []study.Edit) string {
 	return doc.FreeID("v")
 }
 
+// boundNumbersAndWords are the variables that have a column to choose rows by.
+func (d *desk) boundNumbersAndWords() []string {
+	var out []string
+	for _, v := range d.view.Study.Variables {
+		if v.Column != "" && !v.Unmeasured && d.view.Table.Column(v.Column) != nil {
+			out = append(out, v.ID)
+		}
+	}
+	return out
+}
+
+// keepRows uses only the rows of a table that meet all conditions.
+func (d *desk) keepRows(name string, conditions []study.Condition) {
+	data := d.view.Study.Table(name)
+	if data == nil {
+		return
+	}
+	to := *data
+	to.Keep = conditions
+	d.do(study.Several{Name: "Choose the rows of " + name, Edits: []study.Edit{study.ChangeData{Name: name, To: to}}})
+}
+
 // bindDialog is the small table that ties variables to columns by hand.
 func (d *desk) bindDialog() {
 	t := d.view.Table
-	if t == nil {
+	if t == nil || d.view.Study.DataOf(d.rival()) == nil {
 		return
 	}
 	const width = 520
 	body := column(6)
 	var p *popover
 	fill := func() {}
+	data := d.view.Study.DataOf(d.rival())
+	kept := d.pickRows(data.Keep, func() { fill() })
+	wrong := ""
+	done := func() {
+		conditions, fault := kept.conditions()
+		if wrong = fault; fault != "" {
+			fill()
+			return
+		}
+		p.close()
+		d.keepRows(data.Name, conditions)
+	}
+	kept.done = done
 	fill = func() {
 		objects := []fyne.CanvasObject{
 			row(8, bold("Columns of "+t.Name), space(), small(times(t.Rows, "row", "rows")+", "+times(len(t.Columns), "column", "columns"))),
@@ -110,7 +145,7 @@ func (d *desk) bindDialog() {
 			}
 			line := row(8,
 				fixed(130, 0, newLabel(v.ID, sizeBody, tokenInk, fyne.TextStyle{Bold: true, Italic: v.Unmeasured}).shrinkTo(30)),
-				fixed(180, 0, d.choice(options, chosen, func(w string) { d.bind(v.ID, w); fill() })),
+				fixed(180, 0, d.choice(options, chosen, func(w string) { kept.read(); d.bind(v.ID, w); fill() })),
 				stretch(small(said).shrinkTo(20)))
 			lines = append(lines, line)
 		}
@@ -120,7 +155,15 @@ func (d *desk) bindDialog() {
 		if n := len(d.freeColumns()); n > 0 {
 			objects = append(objects, row(0, d.quiet("Make variables of the other "+times(n, "column", "columns"), func() { p.close(); d.adoptColumns() })))
 		}
-		objects = append(objects, row(8, space(), d.primary("Done", func() { p.close() })))
+		rows := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
+		rows.add(hairline(), muted("Rows that are used"))
+		kept.among = d.boundNumbersAndWords()
+		kept.add(rows, "keep")
+		if wrong != "" {
+			rows.text(wrong, tokenFault)
+		}
+		objects = append(objects, rows.objects...)
+		objects = append(objects, row(8, space(), d.primary("Done", done)))
 		body.Objects = objects
 		if p != nil {
 			p.resize()

@@ -8,6 +8,7 @@ import (
 	"fyne.io/fyne/v2"
 
 	"arrowroot/app/words"
+	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
 )
 
@@ -190,6 +191,9 @@ func (x *details) several(s *sheaf) {
 		}
 		s.text("Arrows: "+words.List(names)+".", tokenInk)
 	}
+	if len(p.Nodes) == 2 && len(p.Arrows)+len(p.Arcs)+len(p.Notes) == 0 {
+		x.absent(s, p.Nodes[0], p.Nodes[1])
+	}
 	b := x.d.plain("Take off the sheet", func() { x.d.commands.find("delete").run() })
 	s.keys["delete"] = b
 	s.add(row(8, b))
@@ -228,6 +232,11 @@ func (x *details) arc(s *sheaf, pair [2]string) {
 			})
 			s.keys["why"] = why
 			s.add(why)
+			x.references(s, a.References, func(refs []string) {
+				next := *a
+				next.References = refs
+				d.do(study.ChangeArc{Rival: d.rival(), A: a.A, B: a.B, Arc: next})
+			})
 		}
 	}
 	b := d.plain("Remove", func() { d.commands.find("delete").run() })
@@ -330,7 +339,15 @@ func (x *details) rival(s *sheaf) {
 	if len(r.Diagram.Absent) > 0 {
 		s.section("Arrows left out on purpose")
 		for _, a := range r.Diagram.Absent {
-			s.text(a.From+" → "+a.To+": "+strings.TrimSpace(a.Why), tokenMuted)
+			text := a.From + " → " + a.To + ": " + or(strings.TrimSpace(a.Why), "no reason given yet")
+			if n := len(a.References); n > 0 {
+				text += " (" + times(n, "reference", "references") + ")"
+			}
+			line := para(text, tokenMuted)
+			b := d.press(line, func(*press) skin { return skin{radius: 4} }, func() { d.choose(scene.Selection{Nodes: []string{a.From, a.To}}) })
+			b.padX, b.padY, b.tip = 4, 2, "Pick the two, to change the reason"
+			s.keys["absent "+a.From+" "+a.To] = b
+			s.add(b)
 		}
 	}
 }

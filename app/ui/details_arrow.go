@@ -156,12 +156,24 @@ func (x *details) reason(s *sheaf, a *study.Arrow) {
 	})
 	s.keys["why"] = why
 	s.add(why)
-	s.section("References")
-	refs := d.note(strings.Join(a.References, "\n"), "one to a line", func(text string) {
-		d.changeArrow(a.From, a.To, func(a *study.Arrow) {
-			a.References = slices.DeleteFunc(strings.Split(text, "\n"), func(l string) bool { return strings.TrimSpace(l) == "" })
-		})
+	x.references(s, a.References, func(refs []string) {
+		d.changeArrow(a.From, a.To, func(a *study.Arrow) { a.References = refs })
 	})
+}
+
+// references are where a reason is written, one to a line.
+func (x *details) references(s *sheaf, have []string, commit func([]string)) {
+	s.section("References")
+	refs := x.d.note(strings.Join(have, "\n"), "one to a line", func(text string) {
+		var list []string
+		for _, l := range strings.Split(text, "\n") {
+			if l = strings.TrimSpace(l); l != "" {
+				list = append(list, l)
+			}
+		}
+		commit(list)
+	})
+	refs.SetMinRowsVisible(3)
 	s.keys["references"] = refs
 	s.add(refs)
 }

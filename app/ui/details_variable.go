@@ -477,6 +477,7 @@ func (x *details) data(s *sheaf, v *study.Variable) {
 	if !v.Unmeasured {
 		x.column(s, v, t)
 	}
+	x.recording(s, v, t)
 	scales := make([]string, 0, len(study.Scales))
 	for _, sc := range study.Scales {
 		scales = append(scales, string(sc))
@@ -644,6 +645,7 @@ func (x *details) about(s *sheaf, v *study.Variable) {
 	})
 	s.keys["note"] = note
 	s.add(note)
+	x.plan(s, v)
 	if n := d.view.Rival.Diagram.Node(v.ID); n != nil {
 		text := ""
 		if n.Law != nil {

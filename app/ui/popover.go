@@ -2,6 +2,7 @@ package ui
 
 import (
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
 	"fyne.io/fyne/v2/widget"
 )
 
@@ -17,7 +18,7 @@ type popover struct {
 func (k *kit) pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, width float32) *popover {
 	inner := padded(12, 10, 8, content)
 	inner.Layout.(*columnLayout).width = width
-	p := &popover{up: widget.NewPopUp(inner, c), inner: inner, width: width}
+	p := &popover{up: widget.NewPopUp(container.NewVScroll(inner), c), inner: inner, width: width} // what is too tall for the window scrolls
 	size := p.size()
 	area := c.Size()
 	at.X = within(at.X, 8, max(8, area.Width-size.Width-16))

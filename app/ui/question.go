@@ -23,7 +23,11 @@ type asker struct {
 	from  *field
 	to    *field
 	shift *field
-	focus fyne.Focusable // where the typing starts
+	where *rowPicker
+	fixed map[string]*field // values of what is fixed, by variable
+	more  bool              // the parts that most questions do without are shown
+	wrong string            // why it cannot be asked so
+	focus fyne.Focusable    // where the typing starts
 	keys  map[string]fyne.Focusable
 }
 
@@ -33,6 +37,10 @@ func (d *desk) askQuestion(under fyne.CanvasObject) *asker {
 		a.draft = *q
 		a.draft.Held = slices.Clone(q.Held)
 	}
+	q := &a.draft
+	a.more = q.Effect == study.DirectEffect || len(q.Where) > 0 || q.Groups == study.NewGroups || q.Weigh == study.ByGroups
+	a.where = d.pickRows(q.Where, a.again)
+	a.where.done = a.ask
 	a.fill()
 	at := below(under)
 	a.pop = d.kit.pop(d.win.Canvas(), a.body, at, 430)
@@ -48,17 +56,17 @@ func (a *asker) fill() {
 	}
 	slices.Sort(ids)
 	s := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
-	again := func() {
-		a.read()
-		a.fill()
-		a.body.Refresh()
-		if a.pop != nil {
-			a.pop.resize()
-		}
-	}
+	again := a.again
 	s.add(caption("Question"))
-	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) { a.read(); q.Exposure = w; q.From, q.To = d.usualContrast(w); a.from = nil; again() })
-	s.choice("outcome", "on", ids, q.Outcome, func(w string) { a.read(); q.Outcome = w; again() })
+	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) {
+		a.read()
+		q.Exposure = w
+		q.From, q.To = d.usualContrast(w)
+		a.from = nil
+		a.tidy()
+		again()
+	})
+	s.choice("outcome", "on", ids, q.Outcome, func(w string) { a.read(); q.Outcome = w; a.tidy(); again() })
 	a.from, a.to, a.shift = nil, nil, nil
 	x := d.view.Study.Variable(q.Exposure)
 	if x != nil {
@@ -92,9 +100,19 @@ func (a *asker) fill() {
 			free = append(free, id)
 		}
 	}
+	fixing := func(id string) bool {
+		return slices.ContainsFunc(q.Fixed, func(f study.Fix) bool { return f.Variable == id })
+	}
+	free = slices.DeleteFunc(free, fixing)
+	for _, p := range d.view.Study.Plates {
+		if d.view.Study.Variable(p.Name) == nil { // else the name means the variable
+			free = append(free, heldPlate+p.Name)
+		}
+	}
 	if len(free) > 0 {
-		s.toggles("held", "Holding", free, func(w string) bool { return slices.Contains(q.Held, w) }, func(w string, on bool) {
+		s.toggles("held", "Holding", free, func(w string) bool { return slices.Contains(q.Held, strings.TrimPrefix(w, heldPlate)) }, func(w string, on bool) {
 			a.read()
+			w = strings.TrimPrefix(w, heldPlate)
 			q.Held = with(q.Held, w, on)
 			if q.Held == nil {
 				q.Held = []string{}
@@ -122,6 +140,10 @@ func (a *asker) fill() {
 			q.Level = x / 100
 		}
 	})
+	a.asides(s)
+	if a.wrong != "" {
+		s.text(a.wrong, tokenFault)
+	}
 	ask := d.primary("Ask", a.ask)
 	cancel := d.plain("Cancel", func() { a.pop.close() })
 	s.add(gapOf(1, 2), row(8, space(), cancel, ask))
@@ -131,6 +153,17 @@ func (a *asker) fill() {
 
 // read takes over what was typed.
 func (a *asker) read() {
+	a.wrong = a.where.read()
+	for i := range a.draft.Fixed {
+		if f := a.fixed[a.draft.Fixed[i].Variable]; f != nil {
+			x, ok := number(f.Text)
+			if !ok {
+				a.wrong = "Say a number at which " + a.draft.Fixed[i].Variable + " is fixed."
+				continue
+			}
+			a.draft.Fixed[i].At = study.Setting{Number: x}
+		}
+	}
 	if a.from == nil {
 		return
 	}
@@ -146,6 +179,14 @@ func (a *asker) read() {
 
 func (a *asker) ask() {
 	a.read()
+	if a.wrong != "" {
+		wrong := a.wrong
+		a.fill()
+		a.wrong = wrong
+		a.pop.resize()
+		return
+	}
+	a.draft.Where, _ = a.where.conditions()
 	a.pop.close()
 	if a.draft.Exposure == "" && a.draft.Outcome == "" {
 		return

@@ -238,10 +238,21 @@ func (s *strip) ask(q *study.Question, all bool) []span {
 	}
 	spans := []span{{text: "Effect of ", token: tokenMuted}, box(q.Exposure), {text: " on ", token: tokenMuted}, box(q.Outcome)}
 	tail := words.Change(s.d.view.Study, q)
+	if asides := words.Asides(s.d.view.Study, q); len(asides) > 0 && all {
+		tail = strings.TrimPrefix(tail+" · "+shortened(strings.Join(asides, " · "), 44), " · ")
+	}
 	if tail != "" && all {
 		spans = append(spans, span{text: "   " + tail, token: tokenMuted})
 	}
 	return append(spans, span{text: "  ▾", token: tokenMuted})
+}
+
+// shortened cuts a text after so many letters.
+func shortened(text string, most int) string {
+	if r := []rune(text); len(r) > most {
+		return strings.TrimRight(string(r[:most]), " ") + "…"
+	}
+	return text
 }
 
 func settingWords(s *study.Setting) string {

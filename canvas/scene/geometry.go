@@ -255,7 +255,7 @@ func roles(in *Input, id string) []string {
 			words = append(words, held)
 		}
 	}
-	if slices.Contains(in.Limits, id) {
+	if n := in.Rival.Diagram.Node(id); n != nil && n.Limits || slices.Contains(in.Limits, id) {
 		words = append(words, limits)
 	}
 	return words
