@@ -1,31 +1,50 @@
 package graph
 
-// sort fills Order, or returns the names along a cycle.
+import "container/heap"
+
+// sort fills Order, or returns the names along a cycle. Of the nodes that can
+// come next the first by place does.
 func (g *Graph) sort() []string {
 	n := g.Len()
 	waiting := make([]int, n)
+	var ready places
 	for v := range n {
-		waiting[v] = len(g.Parents[v])
+		if waiting[v] = len(g.Parents[v]); waiting[v] == 0 {
+			ready = append(ready, v) // in order, so a heap already
+		}
 	}
-	done := make([]bool, n)
-	for len(g.Order) < n {
-		next := -1
-		for v := range n {
-			if !done[v] && waiting[v] == 0 {
-				next = v
-				break
+	g.Order = make([]int, 0, n)
+	for len(ready) > 0 {
+		v := heap.Pop(&ready).(int)
+		g.Order = append(g.Order, v)
+		for _, c := range g.Children[v] {
+			if waiting[c]--; waiting[c] == 0 {
+				heap.Push(&ready, c)
 			}
 		}
-		if next < 0 {
-			return g.cycle(done)
-		}
-		done[next] = true
-		g.Order = append(g.Order, next)
-		for _, c := range g.Children[next] {
-			waiting[c]--
-		}
 	}
-	return nil
+	if len(g.Order) == n {
+		return nil
+	}
+	done := make([]bool, n)
+	for _, v := range g.Order {
+		done[v] = true
+	}
+	return g.cycle(done)
+}
+
+// places is a heap of nodes, the first by place on top.
+type places []int
+
+func (p places) Len() int           { return len(p) }
+func (p places) Less(i, j int) bool { return p[i] < p[j] }
+func (p places) Swap(i, j int)      { p[i], p[j] = p[j], p[i] }
+func (p *places) Push(v any)        { *p = append(*p, v.(int)) }
+func (p *places) Pop() any {
+	last := len(*p) - 1
+	v := (*p)[last]
+	*p = (*p)[:last]
+	return v
 }
 
 // cycle walks from parent to parent among the unsorted nodes until one repeats.
