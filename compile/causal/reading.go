@@ -32,8 +32,8 @@ import (
 type Query struct {
 	Exposure, Outcome int // -1 = not said yet
 	Held              []int
-	MaxPaths          int   // 0 = 500
-	MaxSets           int   // 0 = 100
+	MaxPaths          int   // listed; 0 = 500
+	MaxSets           int   // listed; 0 = 100
 	Within            []int // held plates of the graph: the comparison is within their groups
 }
 
@@ -94,8 +94,10 @@ type Fault struct {
 // the rest is empty. A node number outside the graph panics.
 func Read(g *graph.Graph, q Query) *Reading {
 	q.Held, q.Within = tidy(q.Held), tidy(q.Within)
-	q.MaxPaths, q.MaxSets = limit(q.MaxPaths, 500), limit(q.MaxSets, 100)
+	maxPaths, maxSets := limit(q.MaxPaths, enoughPaths), limit(q.MaxSets, enoughSets)
+	q.MaxPaths, q.MaxSets = max(maxPaths, enoughPaths), max(maxSets, enoughSets)
 	r := &Reading{Graph: g, Query: q, Precise: -1}
+	defer r.shorten(maxPaths, maxSets)
 	if q.Exposure < 0 || q.Outcome < 0 || q.Exposure == q.Outcome {
 		r.Verdict = r.incomplete()
 		return r
@@ -129,6 +131,27 @@ func Read(g *graph.Graph, q Query) *Reading {
 	r.Verdict = r.verdict(c)
 	r.compareWithin(c)
 	return r
+}
+
+// However few paths and sets are to be listed, so many are looked at, so that
+// the verdict is the same.
+const (
+	enoughPaths = 500
+	enoughSets  = 100
+)
+
+// shorten keeps to what was to be listed.
+func (r *Reading) shorten(maxPaths, maxSets int) {
+	r.Query.MaxPaths, r.Query.MaxSets = maxPaths, maxSets
+	if len(r.Paths) > maxPaths {
+		r.Paths, r.MorePaths = r.Paths[:maxPaths], true
+	}
+	if len(r.Sets) > maxSets {
+		r.Sets, r.MoreSets = r.Sets[:maxSets], true
+	}
+	if r.Precise >= len(r.Sets) {
+		r.Precise = -1
+	}
 }
 
 func (r *Reading) findPaths() {

@@ -296,3 +296,15 @@ func TestCarriersSayWhy(t *testing.T) {
 		t.Errorf("districts: %s", got)
 	}
 }
+
+// What is listed changes no verdict.
+func TestVerdictWithShortLists(t *testing.T) {
+	g := sheet(t, "L -> H, L -> P, P -> B, S -> H, S -> F, (U) -> H, U -> P, H -> F -> B, H -> B")
+	q := Query{Exposure: g.Index("H"), Outcome: g.Index("B")}
+	long := Read(g, q)
+	q.MaxPaths, q.MaxSets = 2, 1
+	short := Read(g, q)
+	if len(short.Paths) != 2 || !short.MorePaths || short.Verdict.Sentence != long.Verdict.Sentence {
+		t.Errorf("%d paths, more %v: %q, not %q", len(short.Paths), short.MorePaths, short.Verdict.Sentence, long.Verdict.Sentence)
+	}
+}
