@@ -28,6 +28,7 @@ func Build(s *study.Study, rival string, q study.Question, t *table.Table, kind 
 		columns:  make(map[string]*column),
 		at:       make(map[string]int),
 		aside:    make(map[string]string),
+		means:    make(map[string]groupMean),
 		ledger:   make(map[string]*study.Variable, len(s.Variables)),
 	}
 	for _, v := range s.Variables {
@@ -92,7 +93,8 @@ type builder struct {
 	ledger   map[string]*study.Variable
 	bare     []*study.Variable // columns that arguments read, not in the study's ledger
 	plates   []*plateColumn
-	outside  []bool // rows of the table that its row filter leaves out; nil = none
+	means    map[string]groupMean // by the ID of the variable that each becomes
+	outside  []bool               // rows of the table that its row filter leaves out; nil = none
 	model    *Model
 	at       map[string]int // variable ID → index in model.Variables
 
@@ -111,6 +113,7 @@ type draft struct {
 	user     study.Law // what the user said; the zero value if nothing
 	arrows   []*study.Arrow
 	carried  []carrier
+	within   []grouped
 	family   *catalog.Family
 	formula  formula.Expr   // right-hand side as typed, nil = from the arrows
 	given    []formula.Expr // arguments as typed, in the family's order
@@ -159,10 +162,7 @@ func (b *builder) cycle(e *graph.CycleError) Problem {
 // fitted lists the rival's measured laws in fitting order.
 func (b *builder) fitted() []causal.Fitted {
 	x, y := b.graph.Index(b.question.Exposure), b.graph.Index(b.question.Outcome)
-	if x >= 0 && y >= 0 {
-		return causal.CarriersFor(b.graph, x, y)
-	}
-	return causal.Carriers(b.graph, x)
+	return causal.CarriersFor(causal.AsFitted(b.graph, x, y), x, y)
 }
 
 // variable finds a variable of the ledger, or a column that a law's argument

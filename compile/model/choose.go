@@ -40,7 +40,9 @@ func (b *builder) chooseFull() {
 			}
 		}
 		for _, c := range f.Carried {
-			d.carried = append(d.carried, b.carrier(c))
+			if b.graph.Measured[c.Node] { // else what it is shared by stands in for it
+				d.carried = append(d.carried, b.carrier(c))
+			}
 		}
 		explained := len(d.arrows) > 0 || len(d.carried) > 0 || joined[f.Node] ||
 			speaks(d.user) || v.ID == b.question.Outcome
@@ -53,6 +55,7 @@ func (b *builder) chooseFull() {
 			b.drafts = append(b.drafts, d)
 		}
 	}
+	b.share()
 }
 
 // speaks reports whether a user said how the variable gets its value.

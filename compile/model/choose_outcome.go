@@ -35,8 +35,13 @@ func (b *builder) chooseOutcome() {
 		return
 	}
 	want := []string{q.Exposure}
+	var plates []string
 	if b.kind == Held {
 		for _, h := range q.Held {
+			if b.study.HoldsPlate(h) {
+				plates = append(plates, h)
+				continue
+			}
 			if v := b.variable(h); v == nil || v.Unmeasured || !b.onSheet(h) {
 				b.stop(Problem{Code: "held", Variable: h, Place: "question", Message: fmt.Sprintf("%s is held, but it is not a measured variable of this sheet.", h)})
 				return
@@ -90,6 +95,9 @@ func (b *builder) chooseOutcome() {
 				d.user.VariesBy = append(append([]string(nil), d.user.VariesBy...), p)
 			}
 		}
+	}
+	for _, p := range plates {
+		b.hold(d, p)
 	}
 	b.drafts = []*draft{d}
 }

@@ -50,6 +50,10 @@ func (b *builder) explainOne(d *draft) {
 		}
 		d.law.Carried = append(d.law.Carried, Carried{Variable: b.at[c.id], For: c.sake})
 	}
+	b.groupMeans(d)
+	if b.broken {
+		return
+	}
 	d.products = len(b.products(d))
 	d.terms += d.products
 	if !b.levels(d) {
@@ -65,6 +69,10 @@ func (b *builder) explainOne(d *draft) {
 		return
 	}
 	m.Laws = append(m.Laws, d.law)
+	for _, w := range d.within {
+		plate, _ := b.levelsOf(w.plate)
+		d.law.Within = append(d.law.Within, Within{Plate: plate, Means: w.means, For: w.sake})
+	}
 	b.predict(d)
 	b.argue(d)
 }
@@ -243,10 +251,12 @@ func (b *builder) predict(d *draft) {
 				}
 			}
 		}
+		terms = append(append(terms, b.around(d)...), b.meanTerms(d)...)
 		d.law.Terms = nil
 		d.law.Predictors = []formula.Expr{sum(terms)}
 		return
 	}
+	d.varies()
 	if f.Link != catalog.Softmax {
 		d.law.Predictors = []formula.Expr{b.linear(d, -1)}
 		return
@@ -265,7 +275,7 @@ func (b *builder) predict(d *draft) {
 // whose predictor it is, −1 otherwise.
 func (b *builder) linear(d *draft, level int) formula.Expr {
 	var terms []formula.Expr
-	if d.family.Link != catalog.Cumulate || len(d.user.VariesBy) > 0 {
+	if !d.family.Link.Cumulative() || len(d.user.VariesBy) > 0 {
 		terms = append(terms, b.baseline(d, level)...)
 	}
 	var offsets []formula.Expr
@@ -284,6 +294,7 @@ func (b *builder) linear(d *draft, level int) formula.Expr {
 			terms = append(terms, b.term(d, &study.Arrow{From: c.id, To: d.variable.ID}, true, level))
 		}
 	}
+	terms = append(terms, b.meanTerms(d)...)
 	return sum(append(terms, offsets...))
 }
 
@@ -292,6 +303,11 @@ func (b *builder) linear(d *draft, level int) formula.Expr {
 func (b *builder) baseline(d *draft, level int) []formula.Expr {
 	v := d.variable.ID
 	if level >= 0 {
+		if len(d.within) > 0 {
+			b.stop(Problem{Code: "varying-category", Variable: v, Place: "law",
+				Message: fmt.Sprintf("%s is a category: this version does not compare one within the groups of %s.", v, d.within[0].plate)})
+			return []formula.Expr{number(0)}
+		}
 		if len(d.user.VariesBy) > 0 {
 			b.stop(Problem{Code: "varying-category", Variable: v, Place: "law",
 				Message: fmt.Sprintf("%s is a category: this version fits no baseline that varies for it.", v),
@@ -429,7 +445,7 @@ func (b *builder) argue(d *draft) {
 			if n, ok := d.given[i].(*formula.Name); ok && a.Support == catalog.Positives {
 				b.keepPositive(d, n.ID)
 			}
-		case f.Link == catalog.Cumulate:
+		case f.Link.Cumulative():
 			d.law.Cutpoints = b.model.Parameters[b.parameter(meaning{role: cutPoints, child: d.variable.ID})].Name
 		case f.Predicted < 0:
 			b.stop(Problem{Code: "no-argument", Variable: d.variable.ID, Place: "argument",

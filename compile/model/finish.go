@@ -21,7 +21,7 @@ func (b *builder) finish(string) {
 		explained[l.Variable] = true
 	}
 	for i, v := range m.Variables {
-		if !explained[i] && v.Computed == nil {
+		if !explained[i] && v.Computed == nil && v.MeanOf == "" {
 			m.Given = append(m.Given, v.ID)
 		}
 	}

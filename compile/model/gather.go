@@ -52,6 +52,9 @@ func (b *builder) gather(string) {
 func (b *builder) used() []string {
 	var visit func(id string)
 	visit = func(id string) {
+		if g, is := b.means[id]; is {
+			id = g.of
+		}
 		v := b.variable(id)
 		if b.columns[id] != nil || v == nil {
 			return
@@ -74,6 +77,11 @@ func (b *builder) used() []string {
 		}
 		for _, c := range d.carried {
 			visit(c.id)
+		}
+		for _, w := range d.within {
+			for _, id := range w.ids {
+				visit(id)
+			}
 		}
 		for _, e := range d.expressions() {
 			for _, n := range formula.Names(e) {

@@ -75,6 +75,8 @@ type Variable struct {
 	Low, High       float64   // plausible range on the variable's own scale
 	RangeGiven      bool      // false: seen in the data, and every prior made from it says so
 	Computed        formula.Expr
+	MeanOf          string  // the variable whose mean within the groups of Plate this is, as observed (SEMANTICS A6); "" = none
+	ShareOf         string  // with MeanOf: the level whose share it is instead; "" = the mean
 	Nudge           float64 // exact ends of the scale were moved inwards by this …
 	Nudged          int     // … in so many used rows
 }
@@ -104,6 +106,7 @@ type Law struct {
 	Terms     []Term // what each term of a default predictor is, for painting and priors; empty for a typed formula
 	Drawn     []int  // variables that are drawn parents
 	Carried   []Carried
+	Within    []Within
 	Typed     bool // the predictor was typed by the user
 }
 
@@ -112,6 +115,14 @@ type Law struct {
 type Carried struct {
 	Variable int
 	For      []string // names of the unmeasured variables, or "an unnamed common cause"
+}
+
+// Within says that a law compares within the groups of a plate: its baseline
+// varies by the plate, and the means of what it reads stand beside it.
+type Within struct {
+	Plate int
+	Means []int    // variables with MeanOf
+	For   []string // the left-out causes it is for, as in Carried; nil = the question holds the plate
 }
 
 // TermKind says what a term of a linear predictor is.

@@ -57,6 +57,7 @@ func (b *builder) nameParameters() {
 			b.name("alpha_"+v+"_"+clean(p.Name), meaning{role: baselineBy, child: v, plate: p.Name})
 			b.name("tau_"+v+"_"+clean(p.Name), meaning{role: baselineSD, child: v, plate: p.Name})
 		}
+		b.nameMeans(d)
 		for _, p := range b.others(d) {
 			b.name("beta_"+p+"_"+v, meaning{role: slope, child: v, parent: p})
 			b.name("step_"+p+"_"+v, meaning{role: steps, child: v, parent: p})
@@ -169,6 +170,8 @@ func (b *builder) unit(d *draft, parents ...string) string {
 		scale = "log scale"
 	case catalog.Logit, catalog.Softmax, catalog.Cumulate:
 		scale = "log-odds"
+	case catalog.Probit:
+		scale = "probit scale"
 	default:
 		scale = d.variable.Unit
 	}

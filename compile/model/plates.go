@@ -38,6 +38,9 @@ func (b *builder) readPlates() {
 	}
 	for _, d := range b.drafts {
 		name(d.variable.ID, d.user.VariesBy...)
+		for _, w := range d.within {
+			name(d.variable.ID, w.plate)
+		}
 		for _, a := range d.arrows {
 			name(d.variable.ID, a.VariesBy...)
 		}

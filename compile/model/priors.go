@@ -201,6 +201,9 @@ func (b *builder) argumentPrior(d *draft, stem string, p *Parameter) {
 	case "nu":
 		p.Prior = b.prior("gamma", 20, 2) // shape 2, rate 0.1
 		p.Why = "from heavy tails to nearly normal ones"
+	case "skew":
+		p.Prior = b.prior("normal", 0, 2)
+		p.Why = "no more likely skewed to one side than to the other"
 	default: // sigma
 		p.Unit = b.unit(d)
 		p.Prior = b.halfNormal(round(d.span.width() / 4))
@@ -213,7 +216,7 @@ func (b *builder) argumentPrior(d *draft, stem string, p *Parameter) {
 // itself. Only those of the first plate do; the mean would count twice
 // otherwise.
 func (b *builder) anchors(mean, own meaning, d *draft) bool {
-	if slices.Contains(d.around0, own) || mean.role == baseline && d.family.Link == catalog.Cumulate {
+	if slices.Contains(d.around0, own) || mean.role == baseline && d.family.Link.Cumulative() {
 		return false
 	}
 	if d.anchor == nil {
@@ -235,7 +238,11 @@ func (d *draft) reason() string {
 		}
 	}
 	parts := []string{}
-	if n := d.terms - carried - d.products; n > 0 || d.terms == 0 {
+	means := 0
+	for _, w := range d.within {
+		means += len(w.means)
+	}
+	if n := d.terms - carried - d.products - means; n > 0 || d.terms == 0 {
 		parts = append(parts, count(n, "parent"))
 	}
 	if d.products > 0 {
@@ -243,6 +250,9 @@ func (d *draft) reason() string {
 	}
 	if carried > 0 {
 		parts = append(parts, count(carried, "carried term"))
+	}
+	if means > 0 {
+		parts = append(parts, count(means, "group mean"))
 	}
 	return list(parts) + "; " + d.span.words
 }

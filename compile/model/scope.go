@@ -83,7 +83,7 @@ func (b *builder) checkName(d *draft, n *formula.Name, place string, fault fault
 		fault(n.Span, "itself", fmt.Sprintf("%s cannot act on itself", child), repairs...)
 	case v != nil && v.Unmeasured:
 		fault(n.Span, "unmeasured", fmt.Sprintf("*%s* was not measured and is left out of the fit, so no formula can use it", n.ID))
-	case v != nil && place == "formula" && !hasArrow(d.arrows, n.ID) && !carries(d, n.ID):
+	case v != nil && place == "formula" && !hasArrow(d.arrows, n.ID) && !carries(d, n.ID) && !b.readsMean(d, n.ID):
 		message := fmt.Sprintf("the formula of %s uses *%s*, but no arrow %s → %s is drawn", child, n.ID, n.ID, child)
 		var repairs []Repair
 		if !b.descends(n.ID, child) {

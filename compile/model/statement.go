@@ -260,7 +260,15 @@ func (w *writer) predicted(l *Law) string {
 	return stem(l) + "_" + w.index(l.Plate)
 }
 
-func (w *writer) variable(v *Variable) string { return v.ID + "_" + w.index(v.Plate) }
+func (w *writer) variable(v *Variable) string {
+	switch {
+	case v.ShareOf != "":
+		return fmt.Sprintf("share %s of %s_%s", v.ShareOf, v.MeanOf, w.index(v.Plate))
+	case v.MeanOf != "":
+		return fmt.Sprintf("mean %s_%s", v.MeanOf, w.index(v.Plate))
+	}
+	return v.ID + "_" + w.index(v.Plate)
+}
 
 // parameter prints a parameter by its typed name.
 func (w *writer) parameter(id string) string {
@@ -394,6 +402,22 @@ func (w *writer) prior(p *Parameter) string {
 	return text
 }
 
+// within prints that a law compares within the groups of a plate, and what its
+// baselines and group means are for.
+func (w *writer) within(l *Law, p Within) {
+	id, plate := w.m.Variables[l.Variable].ID, w.m.Plates[p.Plate].Name
+	terms := []string{"a baseline that varies by " + plate}
+	for _, i := range p.Means {
+		terms = append(terms, w.m.Variables[i].Label)
+	}
+	if p.For == nil {
+		w.line(Line{Kind: NoteLine, Variable: id, Right: fmt.Sprintf("%s is compared within each %s: its law has %s.", id, plate, list(terms))})
+		return
+	}
+	w.line(Line{Kind: CarriedLine, Variable: id,
+		Right: fmt.Sprintf("carried terms (for %s, at %s, left out): %s in the law of %s.", list(p.For), plate, list(terms), id)})
+}
+
 // notes prints what the laws carry for the sake of what was left out, and what
 // is given.
 func (w *writer) notes() {
@@ -411,6 +435,11 @@ func (w *writer) notes() {
 			id := w.m.Variables[l.Variable].ID
 			w.line(Line{Kind: CarriedLine, Variable: id,
 				Right: fmt.Sprintf("carried terms (for %s, left out): %s in the law of %s.", s, list(bySake[s]), id)})
+		}
+	}
+	for _, l := range slices.Backward(w.m.Laws) {
+		for _, p := range l.Within {
+			w.within(l, p)
 		}
 	}
 	for _, v := range w.m.Variables {
