@@ -5,25 +5,52 @@ import (
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
+	"fyne.io/fyne/v2/driver/desktop"
 
 	"arrowroot/app/words"
+	"arrowroot/canvas/scene"
 	"arrowroot/compile/causal"
+	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
 )
 
 // banner is the one message at a time above the sheet: what, why, what to do.
 // Complaints about the last action come first, then what an earlier session
-// left behind, then the study's problems, those that stop a fit first.
+// left behind; then by severity what is wrong with the study: what stops a
+// fit, mistakes that would make the answer wrong, other problems and mistakes,
+// notes.
 type banner struct {
 	d      *desk
 	object *fyne.Container
 	box    *fillBox
+	area   *hoverArea
 	icon   *icon
 	says   *prose
 	close  *press
 	inner  *fyne.Container
 	text   string // for tests and the trace
+	acts   string // the words of the actions
 	onHide func()
+	mark   *scene.Mark // what the message is about, on the sheet; nil = nothing to show
+	pinned bool        // the mark stays when the pointer leaves
+}
+
+// A message is what the banner says.
+type message struct {
+	text    string // what
+	why     string // set after it, muted
+	icon    glyph
+	token   fyne.ThemeColorName
+	actions []action
+	mark    *scene.Mark
+	hide    func() // puts it away; nil = it cannot be
+}
+
+// An action is a button in a message.
+type action struct {
+	words string
+	amber bool
+	run   func()
 }
 
 func newBanner(d *desk) *banner {
@@ -33,53 +60,75 @@ func newBanner(d *desk) *banner {
 			b.onHide()
 		}
 	})
+	b.area = newHoverArea(func(in bool) {
+		if !b.pinned {
+			b.point(in)
+		}
+	})
 	b.inner = container.New(&columnLayout{padX: 10, padY: 7}, topRow(8, b.icon.object, stretch(b.says), b.close))
-	b.object = stack(b.box, b.inner)
+	b.object = stack(b.box, b.area, b.inner)
 	b.object.Hide()
 	return b
 }
 
 func (b *banner) update() {
-	d, v := b.d, b.d.view
+	if m := b.d.message(); m != nil {
+		b.put(m)
+		return
+	}
+	b.hide()
+}
+
+// message is what the banner has to say; nil = nothing.
+func (d *desk) message() *message {
+	v := d.view
 	switch {
 	case d.complaint != "":
-		b.put(d.complaint, tokenFault, nil, func() { d.complaint = ""; d.refresh() })
-		return
+		m := &message{text: d.complaint, icon: iconWarn, token: tokenFault, hide: func() { d.complaint, d.cycle = "", nil; d.refresh() }}
+		if c := d.cycle; c != nil {
+			m.mark = &scene.Mark{Trails: []scene.Trail{d.trail(c.Cycle[:len(c.Cycle)-1], scene.BiasTrail)}, Offer: [][2]string{{c.From, c.To}}}
+			if edit, err := mistake.Unroll(v.Study, d.rival(), c.From, c.To); err == nil {
+				m.actions = []action{{"Draw it over time", false, func() { d.do(edit) }}}
+			}
+		}
+		return m
 	case d.loss != "" && v.Model != nil:
 		r := v.Model.Rows
-		b.put(fmt.Sprintf("A fit would use %s.", words.Rows(r)), tokenConfound, []fyne.CanvasObject{
-			d.chip("Fit on "+times(r.Used, "row", "rows"), false, func() { d.fit(true) }),
-		}, func() { d.loss = ""; d.refresh() })
-		return
+		return &message{text: fmt.Sprintf("A fit would use %s.", words.Rows(r)), icon: iconWarn, token: tokenConfound,
+			actions: []action{{"Fit on " + times(r.Used, "row", "rows"), false, func() { d.fit(true) }}},
+			hide:    func() { d.loss = ""; d.refresh() }}
 	case v.Recovered != nil:
-		b.put("There is unsaved work from before, newer than this file.", tokenConfound, []fyne.CanvasObject{
-			d.chip("Take it up", false, d.session.Recover),
-			d.chip("Drop it", false, d.session.Forget),
-		}, d.session.Forget)
-		return
+		return &message{text: "There is unsaved work from before, newer than this file.", icon: iconWarn, token: tokenConfound,
+			actions: []action{{"Take it up", false, d.session.Recover}, {"Drop it", false, d.session.Forget}},
+			hide:    d.session.Forget}
 	case v.DataError != nil:
-		b.put(v.DataError.Error(), tokenFault, []fyne.CanvasObject{
-			d.chip("Open data …", false, func() { d.commands.find("data").run() }),
-		}, nil)
-		return
+		return &message{text: v.DataError.Error(), icon: iconWarn, token: tokenFault,
+			actions: []action{{"Open data …", false, func() { d.commands.find("data").run() }}}}
 	}
-	p := d.problem()
-	if p == nil {
-		b.hide()
-		return
+	p, m := d.problem(), d.mistake()
+	switch {
+	case p != nil && (p.Stops || m == nil || m.Severity == mistake.Note):
+		return d.problemMessage(p)
+	case m != nil:
+		return d.mistakeMessage(m)
 	}
-	var actions []fyne.CanvasObject
+	return nil
+}
+
+func (d *desk) problemMessage(p *model.Problem) *message {
+	m := &message{text: p.Message, icon: iconWarn, token: problemToken(*p)}
 	for _, r := range p.Repairs {
-		actions = append(actions, d.chip(r.Label, !p.Stops, func() { d.do(r.Edit) }))
+		m.actions = append(m.actions, action{r.Label, !p.Stops, func() { d.do(r.Edit) }})
 	}
 	if p.Variable != "" && d.picked() != p.Variable {
-		actions = append(actions, d.chip("Show "+p.Variable, false, func() { d.goTo(p) }))
+		m.actions = append(m.actions, action{"Show " + p.Variable, false, func() { d.goTo(p) }})
 	}
 	key := problemKey(p)
-	b.put(p.Message, problemToken(*p), actions, func() {
+	m.hide = func() {
 		d.dismissed[key] = true
 		d.refresh()
-	})
+	}
+	return m
 }
 
 // problem is the one to show; nil if there is none that was not put away.
@@ -87,7 +136,7 @@ func (d *desk) problem() *model.Problem {
 	var first *model.Problem
 	for i := range d.view.Problems {
 		p := &d.view.Problems[i]
-		if d.dismissed[problemKey(p)] || d.early(p) {
+		if d.dismissed[problemKey(p)] || d.early(p) || d.told(p) {
 			continue
 		}
 		if p.Stops {
@@ -98,6 +147,19 @@ func (d *desk) problem() *model.Problem {
 		}
 	}
 	return first
+}
+
+// told reports whether a mistake says the same as a problem.
+func (d *desk) told(p *model.Problem) bool {
+	if p.Code != "question-values" {
+		return false
+	}
+	for _, m := range d.view.Mistakes {
+		if m.Code == mistake.NoContrast {
+			return true
+		}
+	}
+	return false
 }
 
 // early reports whether a problem is only that the work has just begun: no
@@ -138,25 +200,102 @@ func (d *desk) goTo(p *model.Problem) {
 	d.editor.Reveal(p.Variable)
 }
 
-func (b *banner) put(text string, token fyne.ThemeColorName, actions []fyne.CanvasObject, hide func()) {
-	if text == b.text && b.object.Visible() {
-		b.onHide = hide
+// put shows a message. The same words keep their buttons, so that the keyboard
+// stays where it is; what a button does is always that of the newest message.
+func (b *banner) put(m *message) {
+	var acts []action
+	if m.mark != nil {
+		acts = append(acts, action{"Show", false, func() { b.pin(!b.pinned) }})
+	}
+	acts = append(m.actions, acts...)
+	key := m.why
+	for _, a := range acts {
+		key += "\x00" + a.words
+	}
+	same := m.text == b.text && key == b.acts && b.object.Visible()
+	b.onHide, b.mark = m.hide, m.mark
+	show(m.hide != nil, b.close)
+	spans := []span{{text: m.text, token: tokenInk}}
+	if m.why != "" {
+		spans = append(spans, span{text: " " + m.why, token: tokenMuted})
+	}
+	for i, a := range acts {
+		spans = append(spans, span{text: "  "})
+		if same {
+			old := b.says.spans[len(spans)].object.(*press)
+			old.onTap = a.run
+			spans = append(spans, span{object: old})
+			continue
+		}
+		chip := b.d.chip(a.words, a.amber, a.run)
+		if m.mark != nil && i == len(acts)-1 || a.words == "Show" {
+			chip.onHover = b.area.over
+		}
+		spans = append(spans, span{object: chip})
+	}
+	if same {
+		b.says.spans = spans
 		return
 	}
-	b.text, b.onHide = text, hide
-	show(hide != nil, b.close)
-	spans := []span{{text: text, token: tokenInk}}
-	for _, a := range actions {
-		spans = append(spans, span{text: "  "}, span{object: a})
-	}
+	b.pin(false)
+	b.text, b.acts = m.text, key
 	b.says.set(spans...)
-	b.box.edge = token
-	b.icon.set(iconWarn, token)
+	b.box.edge = m.token
+	b.icon.set(m.icon, m.token)
 	b.object.Show()
 	b.object.Refresh()
 }
 
 func (b *banner) hide() {
-	b.text, b.onHide = "", nil
+	b.pin(false)
+	b.text, b.acts, b.onHide, b.mark = "", "", nil, nil
 	b.object.Hide()
 }
+
+// pin keeps what the message is about lit on the sheet, or lets it go dark.
+func (b *banner) pin(on bool) {
+	if on == b.pinned && !on {
+		return
+	}
+	b.pinned = on
+	b.point(on)
+	if on && b.mark != nil {
+		for _, id := range b.mark.Ring {
+			b.d.editor.Reveal(id)
+			break
+		}
+	}
+}
+
+// point lights what the message is about.
+func (b *banner) point(on bool) {
+	switch {
+	case on && b.mark != nil:
+		b.d.editor.Point(b.mark)
+	case !on:
+		b.d.editor.Point(nil)
+	}
+}
+
+// A hoverArea lies behind other things and tells when the pointer is over it.
+type hoverArea struct {
+	fillBox
+	over func(in bool)
+}
+
+var _ desktop.Hoverable = (*hoverArea)(nil)
+
+func newHoverArea(over func(in bool)) *hoverArea {
+	a := &hoverArea{fillBox: fillBox{token: tokenNone}, over: over}
+	a.ExtendBaseWidget(a)
+	return a
+}
+
+// MouseIn implements desktop.Hoverable.
+func (a *hoverArea) MouseIn(*desktop.MouseEvent) { a.over(true) }
+
+// MouseMoved implements desktop.Hoverable.
+func (a *hoverArea) MouseMoved(*desktop.MouseEvent) {}
+
+// MouseOut implements desktop.Hoverable.
+func (a *hoverArea) MouseOut() { a.over(false) }

@@ -1,6 +1,7 @@
 package ui
 
 import (
+	"errors"
 	"slices"
 	"strings"
 
@@ -25,13 +26,16 @@ type desk struct {
 	commands commandTable
 
 	pick       scene.Selection
-	paint      scene.PaintKind // "" = none
-	dismissed  map[string]bool // problems that the user has read and put away
-	complaint  string          // why the last thing could not be done; "" = nothing
-	loss       string          // rows that a fit would lose and that the user is being asked about; "" = not asking
-	agreed     string          // the loss that the user agreed to
-	lastFolder string          // where a file was last opened or saved
-	fitNext    bool            // the next view is of another study: show its whole sheet
+	paint      scene.PaintKind   // "" = none
+	dismissed  map[string]bool   // problems that the user has read and put away
+	complaint  string            // why the last thing could not be done; "" = nothing
+	cycle      *study.CycleError // what the complaint is about, if it is an arrow that would close a cycle
+	doubt      string            // the mistake that a fit was asked for in spite of; "" = none
+	agreedTo   map[string]bool   // the mistakes that the user fitted in spite of
+	loss       string            // rows that a fit would lose and that the user is being asked about; "" = not asking
+	agreed     string            // the loss that the user agreed to
+	lastFolder string            // where a file was last opened or saved
+	fitNext    bool              // the next view is of another study: show its whole sheet
 
 	frame   *frame
 	drawer  *drawer
@@ -67,23 +71,29 @@ func (d *desk) do(e study.Edit) bool {
 		return false
 	}
 	if err := d.session.Do(e); err != nil {
-		d.complain(err.Error())
+		var cycle *study.CycleError
+		errors.As(err, &cycle)
+		d.refuseCycle(err.Error(), cycle)
 		return false
 	}
 	d.settle()
 	return true
 }
 
-// complain shows why something could not be done.
-func (d *desk) complain(why string) {
+// refuseCycle complains; if it is about a cycle, the banner offers a way out.
+func (d *desk) refuseCycle(why string, cycle *study.CycleError) {
+	d.cycle = cycle
 	d.complaint = why
 	d.refresh()
 }
 
+// complain shows why something could not be done.
+func (d *desk) complain(why string) { d.refuseCycle(why, nil) }
+
 // settle forgets the last complaint: something else has been done since.
 func (d *desk) settle() {
 	if d.complaint != "" {
-		d.complaint = ""
+		d.complaint, d.cycle = "", nil
 		d.refresh()
 	}
 }

@@ -37,7 +37,7 @@ type Window struct {
 func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	app.Settings().SetTheme(Theme{Shade: Shade(app.Preferences().String(prefShade))})
 	d := &desk{
-		kit: newKit(post), app: app, session: s, dismissed: make(map[string]bool), fitNext: true,
+		kit: newKit(post), app: app, session: s, dismissed: make(map[string]bool), agreedTo: make(map[string]bool), fitNext: true,
 		win: app.NewWindow("Arrowroot"), editor: canvas.NewEditor(post), trace: newTrace(),
 	}
 	d.onPopover = func() { d.trace.note(d) }
@@ -152,6 +152,7 @@ func (w *Window) wireSheet() {
 	e.OnNaming = func() { d.trace.note(d) }
 	e.OnTool = func(scene.Tool) { d.refresh() }
 	e.OnRefuse = d.status.refuse
+	e.OnCycle = func(c *study.CycleError) { d.refuseCycle(c.Error(), c) }
 	e.OnDraft = d.session.Consider
 	e.OnHover = func(t scene.Target) { d.hover(t) }
 }
