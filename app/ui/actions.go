@@ -213,10 +213,10 @@ func (d *desk) canFit() bool {
 	return true
 }
 
-// fit starts a fit; if rows would be lost it asks first, once for each way of
-// losing them.
+// fit starts a fit. It asks first if a grave mistake stands, and if rows would
+// be lost, once for each way of losing them.
 func (d *desk) fit(sure bool) {
-	if !d.canFit() {
+	if !d.canFit() || d.doubts() {
 		return
 	}
 	if q := d.view.Question; q != nil && q.Exposure != "" && q.From == nil && q.To == nil && q.Shift == 0 {

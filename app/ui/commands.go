@@ -99,6 +99,7 @@ func commandsOf(d *desk) commandTable {
 		{id: "hold", menu: "Reading", label: "Hold, or leave free", keys: "H", on: onSheet, run: func() { d.hold(d.picked(), !d.held(d.picked())) }},
 		{id: "hold-them", menu: "Reading", label: "Hold what the reading says", on: d.proposes, run: func() { d.holdAll(d.names(d.view.Reading.Verdict.Propose)) }},
 		{id: "hold-none", menu: "Reading", label: "Leave all free", on: func() bool { return d.view.Question != nil && len(d.view.Question.Held) > 0 }, run: func() { d.holdAll(nil) }},
+		{id: "aside", menu: "Reading", label: "Findings set aside …", on: d.hasAside, run: d.showAside},
 		{id: "page-reading", menu: "Reading", label: "Reading", keys: "Alt+1", run: page("Reading"), parted: true},
 		{id: "page-statement", menu: "Reading", label: "Statement", keys: "Alt+2", run: page("Statement")},
 
