@@ -10,6 +10,7 @@ import (
 type popover struct {
 	up      *widget.PopUp
 	inner   *fyne.Container
+	at      fyne.Position // where it hangs
 	width   float32
 	changed func()
 }
@@ -22,8 +23,8 @@ func (k *kit) pop(c fyne.Canvas, content fyne.CanvasObject, at fyne.Position, wi
 	size := p.size()
 	area := c.Size()
 	at.X = within(at.X, 8, max(8, area.Width-size.Width-16))
-	at.Y = within(at.Y, 8, max(8, area.Height-size.Height-16))
-	p.up.ShowAtPosition(at)
+	p.at = at
+	p.up.ShowAtPosition(p.place(size))
 	p.up.Resize(size)
 	k.popovers = append(k.popovers, p)
 	p.changed = k.onPopover
@@ -35,10 +36,18 @@ func (p *popover) size() fyne.Size {
 	return fyne.NewSize(p.width, min(heightFor(p.inner, p.width), p.up.Canvas.Size().Height-16))
 }
 
+// place is where it stands: where it hangs, or higher if all of it would not be
+// seen.
+func (p *popover) place(size fyne.Size) fyne.Position {
+	return fyne.NewPos(p.at.X, within(p.at.Y, 8, max(8, p.up.Canvas.Size().Height-size.Height-16)))
+}
+
 // resize fits the popover to content that has changed.
 func (p *popover) resize() {
 	p.inner.Refresh()
-	p.up.Resize(p.size())
+	size := p.size()
+	p.up.Move(p.place(size))
+	p.up.Resize(size)
 }
 
 func (p *popover) close() {
