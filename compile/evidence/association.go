@@ -10,8 +10,8 @@ import (
 type association struct {
 	Effect
 	p      float64
-	groups int
-	plate  string
+	groups int    // of the coarsest scheme; 0 = rows are independent
+	plate  string // of that
 }
 
 // A scheme says which rows may depend on each other.
@@ -70,11 +70,12 @@ func associate(a, b [][]float64, schemes []scheme, level float64) (found associa
 				return found, "few"
 			}
 		}
-		if s.of != nil {
-			next.groups, next.plate = s.units, s.plate
-		}
 		if next.p > found.p {
+			next.groups, next.plate = found.groups, found.plate
 			found, next = next, found
+		}
+		if s.of != nil && (found.groups == 0 || s.units < found.groups) {
+			found.groups, found.plate = s.units, s.plate
 		}
 		if found.Signed && next.p >= 0 {
 			found.Low, found.High = math.Min(found.Low, next.Low), math.Max(found.High, next.High)
