@@ -4,10 +4,12 @@
 // help and lowering all read it.
 //
 // Read the types here, then the rows in families.go and functions.go; the
-// distribution functions stand in continuous.go and discrete.go.
+// distribution functions stand in continuous.go, heavy.go, skew.go, circle.go and
+// discrete.go.
 package catalog
 
 import (
+	"math"
 	"strings"
 
 	"arrowroot/compile/kernel"
@@ -25,8 +27,10 @@ const (
 	ZeroOne              // 0 or 1
 	UpTo                 // 0 … trials
 	Levels               // 0 … K-1
-	Between              // between two arguments (uniform)
+	Between              // between the first two arguments (uniform)
 	NonNegatives         // ≥ 0 (half-normal, exponential)
+	Above                // from the first argument on (Pareto)
+	Turn                 // angles in radians, within half a turn of the first argument
 )
 
 // A Link maps the predicted argument to the line of reals.
@@ -39,7 +43,26 @@ const (
 	Logit    Link = "logit"
 	Softmax  Link = "softmax"          // K zero-sum predictors
 	Cumulate Link = "cumulative logit" // one predictor, K-1 ordered cut points
+	Probit   Link = "cumulative probit"
 )
+
+// Cumulative reports whether the predictor moves a whole distribution of
+// levels past its cut points.
+func (l Link) Cumulative() bool { return l == Cumulate || l == Probit }
+
+// Inverse returns the argument whose link is x; for a cumulative link, the
+// probability of staying below a cut point that lies x above the predictor.
+func (l Link) Inverse(x float64) float64 {
+	switch l {
+	case Log:
+		return math.Exp(x)
+	case Logit, Cumulate:
+		return kernel.Sigmoid(x)
+	case Probit:
+		return standardNormalCDF(x)
+	}
+	return x
+}
 
 // An Argument of a family.
 type Argument struct {

@@ -4,6 +4,8 @@ import (
 	"math"
 
 	"gonum.org/v1/gonum/mathext"
+
+	"arrowroot/compile/kernel"
 )
 
 // search returns the smallest whole number x ≥ 0 with cdf(x) ≥ u, starting
@@ -138,6 +140,95 @@ func binomialCDF(x float64, a []float64) float64      { return binomialCount(a).
 func binomialQuantile(u float64, a []float64) float64 { return binomialCount(a).quantile(u) }
 func binomialMean(a []float64) float64                { return a[0] * a[1] }
 func binomialSD(a []float64) float64                  { return math.Sqrt(a[1] * a[0] * (1 - a[0])) }
+
+func geometricCount(a []float64) count { return negBinomialCount([]float64{a[0], 1}) }
+
+func geometricCDF(x float64, a []float64) float64      { return geometricCount(a).below(x) }
+func geometricQuantile(u float64, a []float64) float64 { return geometricCount(a).quantile(u) }
+func geometricSD(a []float64) float64                  { return math.Sqrt(a[0] + a[0]*a[0]) }
+
+// betaBinomialMiddle returns the probability of the number of successes next
+// to the mean, from where ratios lead to all others.
+func betaBinomialMiddle(a []float64) (at, p float64) {
+	at = math.Round(betaBinomialMean(a))
+	y := [1]float64{at}
+	args := [3][]float64{a[:1], a[1:2], a[2:3]}
+	return at, math.Exp(kernel.BetaBinomial.Block(1, y[:], args[:], nil, nil, nil, nil))
+}
+
+// betaBinomialRatio is p(j+1)/p(j).
+func betaBinomialRatio(j float64, a []float64) float64 {
+	m, k, n := a[0], a[1], a[2]
+	return (n - j) / (j + 1) * ((m*k + j) / ((1-m)*k + n - j - 1))
+}
+
+// betaBinomialTails returns P(y ≤ x) and P(y > x), the smaller one by adding
+// up what it consists of.
+func betaBinomialTails(x float64, a []float64) (lower, upper float64) {
+	x = math.Floor(x)
+	switch {
+	case x < 0:
+		return 0, 1
+	case x >= a[2]:
+		return 1, 0
+	}
+	at, p := betaBinomialMiddle(a)
+	for ; at > x; at-- {
+		p /= betaBinomialRatio(at-1, a)
+	}
+	for ; at < x; at++ {
+		p *= betaBinomialRatio(at, a)
+	}
+	if x < betaBinomialMean(a) {
+		for ; at >= 0 && p > 1e-18*lower; at-- {
+			lower += p
+			if at > 0 {
+				p /= betaBinomialRatio(at-1, a)
+			}
+		}
+		return lower, 1 - lower
+	}
+	for p *= betaBinomialRatio(at, a); at < a[2] && p > 1e-18*upper; p *= betaBinomialRatio(at, a) {
+		upper += p
+		at++
+	}
+	return 1 - upper, upper
+}
+
+// fewTrials is up to where the tails of a beta-binomial are added up. Beyond,
+// shares of the trials are taken as a beta with the same mean and sd.
+const fewTrials = 1e6
+
+func betaBinomialCDF(x float64, a []float64) float64 {
+	if a[2] > fewTrials {
+		return betaCDF((math.Floor(x)+1)/(a[2]+1), betaBinomialShare(a))
+	}
+	lower, _ := betaBinomialTails(x, a)
+	return lower
+}
+
+func betaBinomialShare(a []float64) []float64 {
+	k, n := a[1], a[2]
+	return []float64{a[0], n*((k+1)/(k+n)) - 1}
+}
+
+func betaBinomialQuantile(u float64, a []float64) float64 {
+	if a[0] <= 0 || a[0] >= 1 || a[1] <= 0 {
+		return math.Round(a[0]) * a[2]
+	}
+	if a[2] > fewTrials {
+		return max(0, min(a[2], math.Ceil(betaQuantile(u, betaBinomialShare(a))*(a[2]+1))-1))
+	}
+	sd := betaBinomialSD(a)
+	return search(u, betaBinomialMean(a)+sd*mathext.NormalQuantile(u), a[2], func(x float64) float64 { return betaBinomialCDF(x, a) })
+}
+
+func betaBinomialMean(a []float64) float64 { return a[0] * a[2] }
+
+func betaBinomialSD(a []float64) float64 {
+	m, k, n := a[0], a[1], a[2]
+	return math.Sqrt(n * m * (1 - m) * ((k + n) / (k + 1)))
+}
 
 func bernoulliCDF(x float64, a []float64) float64 {
 	switch {

@@ -19,7 +19,8 @@ func TestDistributionEnds(t *testing.T) {
 }
 
 // Common knowledge of the trade: a Student t has a mean from above 1 degree of
-// freedom on, and an sd from above 2; so has its half.
+// freedom on, and an sd from above 2; so have its half, and Pareto and inverse
+// gamma by their shapes.
 func TestMomentsThatDoNotExist(t *testing.T) {
 	for _, c := range []struct {
 		family   string
@@ -30,6 +31,12 @@ func TestMomentsThatDoNotExist(t *testing.T) {
 		{"Student t", []float64{3, 1, 2}, 3, math.Inf(1)},
 		{"half-t", []float64{1, 1}, math.Inf(1), math.NaN()},
 		{"half-t", []float64{1, 2}, math.Sqrt2, math.Inf(1)},
+		{"Cauchy", []float64{3, 1}, math.NaN(), math.NaN()},
+		{"half-Cauchy", []float64{3}, math.Inf(1), math.NaN()},
+		{"Pareto", []float64{2, 1}, math.Inf(1), math.NaN()},
+		{"Pareto", []float64{2, 2}, 4, math.Inf(1)},
+		{"inverse gamma", []float64{2, 1}, math.Inf(1), math.NaN()},
+		{"inverse gamma", []float64{2, 2}, 2, math.Inf(1)},
 	} {
 		f := FamilyByName(c.family)
 		same := func(a, b float64) bool { return a == b || a != a && b != b || math.Abs(a-b) < 1e-14 }

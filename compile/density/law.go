@@ -36,7 +36,7 @@ func (l *lowering) law(law *model.Law) (factor, error) {
 			return fail(err)
 		}
 	}
-	if law.Family.Link == catalog.Cumulate {
+	if law.Family.Link.Cumulative() {
 		kind, p, err := l.name(law.Cutpoints)
 		if err != nil {
 			return fail(err)
@@ -62,7 +62,7 @@ func (l *lowering) arguments(law *model.Law) ([]formula.Expr, *kernel.Density, e
 		}
 		return nil, fmt.Errorf("its %s is missing", f.Arguments[i].Name)
 	}
-	if f.Link == catalog.Softmax || f.Link == catalog.Cumulate {
+	if f.Link == catalog.Softmax || f.Link.Cumulative() {
 		if len(law.Predictors) == 0 {
 			return nil, nil, fmt.Errorf("it has no predictor")
 		}

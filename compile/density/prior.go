@@ -3,6 +3,7 @@ package density
 import (
 	"fmt"
 	"math"
+	"slices"
 
 	"arrowroot/compile/catalog"
 	"arrowroot/compile/formula"
@@ -49,8 +50,9 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 		shares := p.Size
 		if p.Shape == model.Simplex {
 			x = l.simplex(p.Name, u, shares)
+		} else if shares++; l.probit(p.Name) {
+			x = l.probitCuts(p.Name, u, shares)
 		} else {
-			shares++
 			x = l.cuts(p.Name, u, shares)
 		}
 		l.natural[i] = x.natural
@@ -81,6 +83,13 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 	l.natural[i] = x.natural
 	prior := l.b.Density(p.Prior.Family.Natural, x.about, args...)
 	return l.b.Add(prior, x.jacobian), nil
+}
+
+// probit reports whether cut points belong to a law on the probit scale.
+func (l *lowering) probit(cutpoints string) bool {
+	return slices.ContainsFunc(l.m.Laws, func(law *model.Law) bool {
+		return law.Cutpoints == cutpoints && law.Family.Link == catalog.Probit
+	})
 }
 
 // transform chooses the way from coordinates to natural values by what the
@@ -126,6 +135,14 @@ func (l *lowering) transform(p *model.Parameter, u ops.Value, n int, args []ops.
 			low, high = l.b.Max(low, l.b.Const(0)), l.b.Min(high, l.b.Const(1))
 		}
 		return l.between(u, n, low, high), nil
+	case catalog.Above:
+		x := l.positive(u, 1)
+		x.natural = l.b.Add(args[0], x.natural)
+		x.about = x.natural
+		return x, nil
+	case catalog.Turn:
+		half := l.b.Const(math.Pi)
+		return l.between(u, n, l.b.Sub(args[0], half), l.b.Add(args[0], half)), nil
 	}
 	return placed{}, fmt.Errorf("%s is for whole numbers, and %s is none", p.Prior.Family.Name, p.Name)
 }
@@ -137,6 +154,10 @@ func narrower(parameter, prior catalog.Support) (support catalog.Support, cut bo
 	switch {
 	case prior == catalog.Between:
 		return prior, parameter != catalog.Reals // its ends are clipped
+	case prior == catalog.Above: // its minimum is positive
+		return prior, parameter == catalog.Unit
+	case prior == catalog.Turn:
+		return prior, parameter != catalog.Reals
 	case room[prior] > room[parameter]:
 		return parameter, true
 	}

@@ -4,6 +4,7 @@ import (
 	"math"
 
 	"arrowroot/compile/formula"
+	"arrowroot/compile/kernel"
 	"arrowroot/compile/model"
 	"arrowroot/compile/ops"
 )
@@ -205,6 +206,30 @@ func (l *lowering) cuts(name string, u ops.Value, n int) placed {
 		natural = l.b.Stack(l.b.Plate(name, n-1), points...)
 	}
 	return placed{natural: natural, jacobian: jacobian}
+}
+
+// probitCuts takes n-1 coordinates to the n-1 ordered cut points at which level
+// shares add up on the scale of the normal distribution function. The first is
+// a coordinate, the others lie exp of one above; since share 0 + … + share j is
+// Φ(cut j), a density over shares has the Jacobian ∏ φ(cut).
+func (l *lowering) probitCuts(name string, u ops.Value, n int) placed {
+	points := make([]ops.Value, n-1)
+	points[0] = u
+	jacobian := l.b.Const(0)
+	for j := 1; j < n-1; j++ {
+		step := l.b.Element(u, j)
+		if j == 1 {
+			points[0] = l.b.Element(u, 0)
+		}
+		points[j] = l.b.Add(points[j-1], l.b.Exp(step))
+		jacobian = l.b.Add(jacobian, step)
+	}
+	natural := points[0]
+	if n > 2 {
+		natural = l.b.Stack(l.b.Plate(name, n-1), points...)
+	}
+	normal := l.b.Density(kernel.Normal, natural, l.b.Const(0), l.b.Const(1))
+	return placed{natural: natural, jacobian: l.b.Add(jacobian, normal)}
 }
 
 func (l *lowering) logSum(name string, terms []ops.Value) ops.Value {

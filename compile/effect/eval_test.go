@@ -28,7 +28,7 @@ func TestEvalAgainstOneRowAtATime(t *testing.T) {
 		"inverse logit(log(2) * x + logit(0.3))", "(x - (size - (a - d))) / (1 + x ^ 2)",
 	}
 	r := newResolver(s.m)
-	rows := rowsOf(s.m, 0)
+	rows := rowsOf(s.m, nil, 0)
 	for _, text := range texts {
 		e := s.parse(text)
 		n, err := r.expr(e)
@@ -102,7 +102,7 @@ func TestSimulateFollowsTheLaw(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		w := newWorker(rowsOf(s.m, 0), r.slots)
+		w := newWorker(rowsOf(s.m, nil, 0), r.slots)
 		y, m, sd := make([]float64, n), 0.0, 0.0
 		shuffled := rand.New(rand.NewPCG(1, 1)).Perm(n)
 		mixed := make([]float64, n)
@@ -135,8 +135,10 @@ func TestExtremeDraws(t *testing.T) {
 			if err != nil {
 				t.Fatal(err)
 			}
-			w := newWorker(rowsOf(s.m, 0), r.slots)
+			w := newWorker(rowsOf(s.m, nil, 0), r.slots)
 			w.simulate(make([]float64, 3), resolved, []float64{1e-9, 0.5, 1 - 1e-9}, false)
 		}
 	}
 }
+
+func logistic(x float64) float64 { return 1 / (1 + math.Exp(-x)) }

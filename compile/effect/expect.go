@@ -41,13 +41,13 @@ func (w *worker) row(e *natural, i int) []float64 {
 	switch l.Family.Link {
 	case catalog.Softmax:
 		return w.softmax(e, i)
-	case catalog.Cumulate:
+	case catalog.Cumulate, catalog.Probit:
 		return w.cumulate(e, i)
 	}
 	args := w.args[:0]
 	for a, x := range e.arguments {
 		if x == nil {
-			args = append(args, inverseLink(l.Family.Link, at(e.predictors[0], i)))
+			args = append(args, l.Family.Link.Inverse(at(e.predictors[0], i)))
 		} else {
 			args = append(args, at(e.arguments[a], i))
 		}
@@ -75,35 +75,17 @@ func (w *worker) softmax(e *natural, i int) []float64 {
 	return shares
 }
 
-// cumulate: P(level ≤ j) = logistic(cut j − predictor).
+// cumulate: P(level ≤ j) is the inverse link of cut j − predictor.
 func (w *worker) cumulate(e *natural, i int) []float64 {
 	shares := w.shares[:0]
 	eta, below := at(e.predictors[0], i), 0.0
 	for _, c := range e.cuts {
-		upTo := logistic(c - eta)
+		upTo := e.law.Family.Link.Inverse(c - eta)
 		shares = append(shares, upTo-below)
 		below = upTo
 	}
 	w.shares = append(shares, 1-below)
 	return w.shares
-}
-
-func inverseLink(link catalog.Link, eta float64) float64 {
-	switch link {
-	case catalog.Log:
-		return math.Exp(eta)
-	case catalog.Logit:
-		return logistic(eta)
-	}
-	return eta
-}
-
-func logistic(x float64) float64 {
-	if x >= 0 {
-		return 1 / (1 + math.Exp(-x))
-	}
-	e := math.Exp(x)
-	return e / (1 + e)
 }
 
 // simulate writes a variable's values, the quantiles of u under its law. A law
@@ -175,7 +157,7 @@ func (w *worker) expected(sum []float64, l *law, s *scale, weights []float64) {
 	if s.predicted {
 		eta := w.eval(l.predictors[0])
 		for i, weight := range weights {
-			sum[0] += weight * inverseLink(l.Family.Link, at(eta, i))
+			sum[0] += weight * l.Family.Link.Inverse(at(eta, i))
 		}
 	} else {
 		w.average(sum, l, s, weights)

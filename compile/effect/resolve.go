@@ -97,7 +97,7 @@ func (r *resolver) resolveLaw(l *model.Law) (*law, error) {
 	switch l.Family.Link {
 	case catalog.Softmax:
 		out.levels = len(l.Predictors)
-	case catalog.Cumulate:
+	case catalog.Cumulate, catalog.Probit:
 		p, ok := r.params[l.Cutpoints]
 		if !ok {
 			return fail(fmt.Errorf("no cut points named %q", l.Cutpoints))

@@ -74,8 +74,8 @@ func samples() []sample {
 			return m + 0.05*(1+r.Float64()), []float64{m - positive(r), m + 1 + positive(r), m}
 		}},
 		{VonMises, true, 0, func(r *rand.Rand) (float64, []float64) { return eta(r), []float64{eta(r), 8 * positive(r)} }},
-		{Geometric, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{unit(r)} }},
-		{GeometricLogit, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{eta(r)} }},
+		{Geometric, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{5 * positive(r)} }},
+		{GeometricLog, false, 0, func(r *rand.Rand) (float64, []float64) { return count(r), []float64{eta(r)} }},
 		{BetaBinomial, false, 1, func(r *rand.Rand) (float64, []float64) {
 			y := count(r)
 			return y, []float64{unit(r), 10 * positive(r), y + count(r)}
@@ -303,7 +303,7 @@ func TestOutsideSupport(t *testing.T) {
 		LogNormal: {0, -1}, LogNormalLog: {0, -1}, Gamma: {0, -1}, GammaLog: {0, -1},
 		Exponential: {-1}, ExponentialLog: {-1}, Beta: {0, 1, -1, 2}, BetaLogit: {0, 1, -1, 2},
 		Uniform: {-1e9, 1e9}, HalfNormal: {-1}, HalfT: {-1}, HalfCauchy: {-1}, Weibull: {0, -1}, WeibullLog: {0, -1}, InverseGamma: {0, -1},
-		Pareto: {0, -1}, Triangular: {-1e9, 1e9}, Geometric: {-1, 0.5, math.Inf(1)}, GeometricLogit: {-1, 0.5, math.Inf(1)},
+		Pareto: {0, -1}, Triangular: {-1e9, 1e9}, Geometric: {-1, 0.5, math.Inf(1)}, GeometricLog: {-1, 0.5, math.Inf(1)},
 		BetaBinomial: {-1, 0.5, 1e6}, BetaBinomialLogit: {-1, 0.5, 1e6}, OrderedProbit: {-1, 0.5, 9},
 		Bernoulli: {-1, 0.5, 2}, BernoulliLogit: {-1, 0.5, 2}, Binomial: {-1, 0.5, 1e6}, BinomialLogit: {-1, 0.5, 1e6},
 		Poisson: {-1, 0.5, math.Inf(1)}, PoissonLog: {-1, 0.5, math.Inf(1)},
@@ -344,7 +344,7 @@ func TestOutsideSupport(t *testing.T) {
 		{Cauchy, 0, []float64{0, 0}}, {Laplace, 0, []float64{0, -1}}, {Logistic, 0, []float64{0, 0}}, {Gumbel, 0, []float64{0, -1}}, {SkewNormal, 0, []float64{0, 0, 1}},
 		{HalfCauchy, 1, []float64{0}}, {Weibull, 1, []float64{0, 1}}, {Weibull, 1, []float64{1, 0}}, {WeibullLog, 1, []float64{0, 0}}, {InverseGamma, 1, []float64{0, 1}},
 		{InverseGamma, 1, []float64{1, -1}}, {Pareto, 1, []float64{2, 1}}, {Pareto, 1, []float64{0, 1}}, {Pareto, 1, []float64{1, 0}}, {Triangular, 0, []float64{-1, 1, 2}},
-		{VonMises, 0, []float64{0, -1}}, {Geometric, 1, []float64{1.1}}, {BetaBinomial, 1, []float64{1.1, 1, 2}}, {BetaBinomial, 1, []float64{0.5, 0, 2}},
+		{VonMises, 0, []float64{0, -1}}, {Geometric, 1, []float64{-1}}, {BetaBinomial, 1, []float64{1.1, 1, 2}}, {BetaBinomial, 1, []float64{0.5, 0, 2}},
 		{BetaBinomialLogit, 1, []float64{0, -1, 2}}, {OrderedProbit, 1, []float64{0, 1, 1}},
 		{Categorical, 0, []float64{1.2, -0.2}}, {OrderedLogit, 1, []float64{0, 1, 1}}, {OrderedLogit, 1, []float64{0, 1, 0.5}},
 	} {
@@ -368,7 +368,7 @@ func TestLinkTails(t *testing.T) {
 		ExponentialLog: {[]float64{0, 1e-300, 1, 1e300}, [][]float64{nil}}, BetaLogit: {[]float64{1e-10, 0.5, 1 - 1e-10}, [][]float64{{2}, {1e-3}, {1e6}}},
 		BernoulliLogit: {[]float64{0, 1}, [][]float64{nil}}, BinomialLogit: {[]float64{0, 3, 7}, [][]float64{{7}}},
 		PoissonLog: {[]float64{0, 1, 1e6}, [][]float64{nil}}, NegativeBinomialLog: {[]float64{0, 1, 1e6}, [][]float64{{1}, {1e-6}, {1e12}}},
-		WeibullLog: {[]float64{1e-300, 1, 1e300}, [][]float64{{2}, {1e-3}}}, GeometricLogit: {[]float64{0, 1, 1e6}, [][]float64{nil}},
+		WeibullLog: {[]float64{1e-300, 1, 1e300}, [][]float64{{2}, {1e-3}}}, GeometricLog: {[]float64{0, 1, 1e6}, [][]float64{nil}},
 		BetaBinomialLogit: {[]float64{0, 3, 7}, [][]float64{{2, 7}, {1e-6, 7}, {1e12, 7}}}, OrderedProbit: {[]float64{0, 1, 2}, [][]float64{{-1, 1}, {0, 1e-9}, {-30, 30}}},
 		CategoricalSoftmax: {[]float64{0, 1, 2}, [][]float64{{0, 0}, {1e300, -1e300}, {700, -700}}}, OrderedLogit: {[]float64{0, 1, 2}, [][]float64{{-1, 1}, {0, 1e-9}, {-800, 800}}},
 	}
@@ -440,7 +440,7 @@ func TestLinkedIsNatural(t *testing.T) {
 		BetaLogit: {Beta, first(logistic)}, BernoulliLogit: {Bernoulli, first(logistic)}, BinomialLogit: {Binomial, first(logistic)},
 		PoissonLog: {Poisson, first(math.Exp)}, NegativeBinomialLog: {NegativeBinomial, first(math.Exp)},
 		CategoricalSoftmax: {Categorical, softmax}, OrderedLogit: {Ordered, cumulative(logistic)}, WeibullLog: {Weibull, first(math.Exp)},
-		GeometricLogit: {Geometric, first(logistic)}, BetaBinomialLogit: {BetaBinomial, first(logistic)}, OrderedProbit: {Ordered, cumulative(normalCDF)},
+		GeometricLog: {Geometric, first(math.Exp)}, BetaBinomialLogit: {BetaBinomial, first(logistic)}, OrderedProbit: {Ordered, cumulative(normalCDF)},
 	}
 	eachSample(t, func(t *testing.T, s sample, r *rand.Rand) {
 		pair, ok := pairs[s.kernel]

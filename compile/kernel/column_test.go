@@ -13,7 +13,7 @@ func TestOneBadRow(t *testing.T) {
 	bad := map[*Density][]float64{
 		LogNormalLog: {0}, GammaLog: {0}, ExponentialLog: {-1}, BetaLogit: {0, 1}, BernoulliLogit: {2, 0.5}, BinomialLogit: {0.5, -1},
 		PoissonLog: {0.5, -1}, NegativeBinomialLog: {0.5, -1}, CategoricalSoftmax: {0.5, -1}, OrderedLogit: {0.5, -1},
-		WeibullLog: {0}, GeometricLogit: {0.5, -1}, BetaBinomialLogit: {0.5, -1},
+		WeibullLog: {0}, GeometricLog: {0.5, -1}, BetaBinomialLogit: {0.5, -1},
 	}
 	eachSample(t, func(t *testing.T, s sample, r *rand.Rand) {
 		_, first := s.draw(r)

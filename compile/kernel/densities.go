@@ -9,6 +9,6 @@ func Densities() []*Density {
 		Geometric, BetaBinomial,
 		LogNormalLog, GammaLog, ExponentialLog, BetaLogit, BernoulliLogit, BinomialLogit,
 		PoissonLog, NegativeBinomialLog, CategoricalSoftmax, OrderedLogit,
-		WeibullLog, GeometricLogit, BetaBinomialLogit, OrderedProbit,
+		WeibullLog, GeometricLog, BetaBinomialLogit, OrderedProbit,
 	}
 }

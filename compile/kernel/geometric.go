@@ -2,39 +2,39 @@ package kernel
 
 import "math"
 
-// Geometric has the argument probability, of success; y is the number of
-// failures before the first success.
+// Geometric has the argument mean; y is the number of failures before the
+// first success, whose probability is 1/(1 + mean).
 var Geometric = &Density{Name: "geometric", Args: 1, Block: geometricBlock}
 
-// GeometricLogit has the logit of the probability in its place.
-var GeometricLogit = &Density{Name: "geometric logit", Args: 1, Block: geometricLogitBlock}
+// GeometricLog has the log of the mean in its place.
+var GeometricLog = &Density{Name: "geometric log", Args: 1, Block: geometricLogBlock}
 
 func geometricBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, _ []float64) float64 {
-	prob, dprob := args[0], wanted(dargs, 0)
-	iy, ip := mask(y), mask(prob)
+	mean, dmean := args[0], wanted(dargs, 0)
+	iy, im := mask(y), mask(mean)
 	sum := 0.0
 	for i := range n {
-		v, p := y[i&iy], prob[i&ip]
+		v, m := y[i&iy], mean[i&im]
 		if !isCount(v) {
 			return outside(v)
 		}
-		if p < 0 || p > 1 {
+		if m < 0 || m == 0 && v > 0 {
 			return math.Inf(-1)
 		}
-		sum += math.Log(p)
-		slope := 1 / p
+		sum -= (v + 1) * math.Log1p(m)
+		slope := -(v + 1) / (1 + m)
 		if v > 0 {
-			sum += v * math.Log1p(-p)
-			slope -= v / (1 - p)
+			sum += v * math.Log(m)
+			slope += v / m
 		}
-		if dprob != nil {
-			dprob[i&ip] += slope
+		if dmean != nil {
+			dmean[i&im] += slope
 		}
 	}
 	return sum
 }
 
-func geometricLogitBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, _ []float64) float64 {
+func geometricLogBlock(n int, y []float64, args [][]float64, _ []float64, dargs [][]float64, _, _ []float64) float64 {
 	eta, deta := args[0], wanted(dargs, 0)
 	iy, ie := mask(y), mask(eta)
 	sum := 0.0
@@ -43,15 +43,16 @@ func geometricLogitBlock(n int, y []float64, args [][]float64, _ []float64, darg
 		if !isCount(v) {
 			return outside(v)
 		}
-		// log p = -softplus(-η), log(1-p) = -softplus(η).
-		down, q := softplusSigmoid(-e)
-		up, p := softplusSigmoid(e)
-		sum -= down
+		// With p the probability of success, log p = -softplus(η) and
+		// log(1-p) = -softplus(-η).
+		up, q := softplusSigmoid(e)
+		sum -= up
 		if v > 0 {
-			sum -= v * up
+			down, _ := softplusSigmoid(-e)
+			sum -= v * down
 		}
 		if deta != nil {
-			deta[i&ie] += q - v*p
+			deta[i&ie] += v*(1-q) - q
 		}
 	}
 	return sum

@@ -118,11 +118,15 @@ func referenceCases() []referenceCase {
 		direct("pareto", Pareto, "xmin", "alpha"),
 		direct("von Mises", VonMises, "mu", "kappa"),
 		direct("triangular", Triangular, "low", "high", "mode"),
-		direct("geometric", Geometric, "p"),
-		{dist: "geometric", kernel: GeometricLogit,
-			args: func(p named, _ map[string]numbers) []float64 { return []float64{Logit(p["p"])} },
+		{dist: "geometric", kernel: Geometric, // mean = (1-p)/p
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{(1 - p["p"]) / p["p"]} },
 			grad: func(p named, d []float64) map[string][]float64 {
-				return map[string][]float64{"p": one(d[0] / p["p"] / (1 - p["p"]))}
+				return map[string][]float64{"p": one(-d[0] / p["p"] / p["p"])}
+			}},
+		{dist: "geometric", kernel: GeometricLog,
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{-Logit(p["p"])} },
+			grad: func(p named, d []float64) map[string][]float64 {
+				return map[string][]float64{"p": one(-d[0] / p["p"] / (1 - p["p"]))}
 			}},
 		{dist: "beta-binomial", kernel: BetaBinomial, // κ = a+b, mean = a/κ
 			args: func(p named, _ map[string]numbers) []float64 {

@@ -198,6 +198,13 @@ func (b *builder) support(d *draft) {
 		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
 			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
 		}
+	case catalog.Turn:
+		if row, _ := first(func(x float64) bool { return math.Abs(x) > 2*math.Pi }); row >= 0 {
+			to := *b.variable(v.ID)
+			to.Divide = 180 / math.Pi
+			report("degrees", fmt.Sprintf("row %d is %s, but %s takes angles in radians, from 0 to 6.28.", row+1, short(values[row]), article(f.Name)),
+				Repair{Label: fmt.Sprintf("Read %s in degrees", v.ID), Edit: changeVariable(to)}, law("normal"))
+		}
 	case catalog.Unit:
 		b.unitMisfits(d, values, first, report, law)
 	}

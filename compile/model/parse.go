@@ -68,7 +68,7 @@ func (b *builder) chooseFamily(d *draft) {
 		b.stop(p)
 		return
 	}
-	if v.Scale != "" && !suits(d.family, scale) {
+	if v.Scale != "" && !Suits(d.family, scale) {
 		p := Problem{Code: "family-scale", Variable: v.ID, Place: "law",
 			Message: fmt.Sprintf("%s ~ %s: %s is %s, and %s is for %s.", v.ID, d.family.Name, v.ID, a(scale), article(d.family.Name), supportWords(d.family.Support))}
 		p.Repairs = append(p.Repairs, b.defaultFamily(v, scale))
@@ -88,19 +88,21 @@ func (b *builder) defaultFamily(v *study.Variable, scale study.Scale) Repair {
 
 func article(name string) string {
 	switch name[0] {
-	case 'o', 'e', 'O', 'E':
+	case 'o', 'e', 'i', 'O', 'E', 'I':
 		return "an " + name + " law"
 	}
 	return "a " + name + " law"
 }
 
-// suits reports whether values of a scale can have a family.
-func suits(f *catalog.Family, scale study.Scale) bool {
+// Suits reports whether values of a scale can have a family.
+func Suits(f *catalog.Family, scale study.Scale) bool {
 	var scales []study.Scale
 	switch f.Support {
+	case catalog.Turn:
+		scales = []study.Scale{study.Real}
 	case catalog.Reals, catalog.Between:
 		scales = []study.Scale{study.Real, study.Positive, study.Proportion, study.Count}
-	case catalog.Positives, catalog.NonNegatives:
+	case catalog.Positives, catalog.NonNegatives, catalog.Above:
 		scales = []study.Scale{study.Real, study.Positive, study.Proportion}
 	case catalog.Unit:
 		scales = []study.Scale{study.Real, study.Proportion}
@@ -110,7 +112,7 @@ func suits(f *catalog.Family, scale study.Scale) bool {
 		scales = []study.Scale{study.Binary}
 	case catalog.Levels:
 		scales = []study.Scale{study.Ordered}
-		if f.Link != catalog.Cumulate {
+		if !f.Link.Cumulative() {
 			scales = append(scales, study.Category)
 		}
 	}
@@ -142,6 +144,10 @@ func supportWords(s catalog.Support) string {
 		return "yes or no"
 	case catalog.Levels:
 		return "levels"
+	case catalog.Above:
+		return "numbers from a minimum on"
+	case catalog.Turn:
+		return "angles in radians"
 	}
 	return "real numbers"
 }

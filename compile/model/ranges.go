@@ -25,6 +25,7 @@ func (r linkRange) middle() float64 { return (r.low + r.high) / 2 }
 // Bounds of SEMANTICS C2.
 const (
 	leastProbability = 0.02
+	probitEdge       = 2.0537489106318225 // Φ of it is mostProbability
 	mostProbability  = 0.98
 	leastCount       = 0.5
 	leastOfHigh      = 0.01 // of the high end, for positive variables
@@ -47,10 +48,15 @@ func onLink(v *Variable, f *catalog.Family, low, high float64, shares bool) link
 		}
 	}
 	switch {
-	case f.Link == catalog.Softmax || f.Link == catalog.Cumulate || v.Scale == study.Binary && f.Link == catalog.Logit:
+	case f.Link == catalog.Softmax || f.Link.Cumulative() || v.Scale == study.Binary && f.Link == catalog.Logit:
 		r.low, r.high = logit(leastProbability), logit(mostProbability)
+		scale := "log-odds"
+		if f.Link == catalog.Probit {
+			r.low, r.high = -probitEdge, probitEdge
+			scale = "probit"
+		}
 		r.fromData = false
-		r.words = fmt.Sprintf("probabilities of %s read as .02–.98 on the log-odds scale", v.ID)
+		r.words = fmt.Sprintf("probabilities of %s read as .02–.98 on the %s scale", v.ID, scale)
 	case f.Link == catalog.Logit:
 		l := math.Min(math.Max(low, leastProbability), mostProbability)
 		h := math.Max(math.Min(high, mostProbability), leastProbability)
