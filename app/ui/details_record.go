@@ -6,13 +6,13 @@ import (
 
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
-	"arrowroot/compile/table"
 )
 
 // recording is what there is to say of how a variable was recorded: with error,
 // with gaps, and only in some rows.
-func (x *details) recording(s *sheaf, v *study.Variable, t *table.Table) {
+func (x *details) recording(s *sheaf, v *study.Variable) {
 	d := x.d
+	s.section("How it was recorded")
 	if n := d.view.Rival.Diagram.Node(v.ID); n != nil {
 		s.toggles("rows", "Rows hold", []string{"all its values", "one value"}, func(w string) bool { return (w == "one value") == n.Limits }, func(w string, _ bool) {
 			d.do(study.LimitRows{Rival: d.rival(), Variable: v.ID, On: w == "one value"})

@@ -220,7 +220,7 @@ func bodies(in *Input) []*body {
 		b.lines = wrapName(b.name, nameFace(b.variable), b.text, b.w)
 		b.dots = len(in.Dots[n.Variable]) > 0 && !b.unmeasured && zoom >= dotsBelow
 		words := roles(in, n.Variable)
-		b.square = slices.Contains(words, held) || slices.Contains(words, limits) || in.Mark.boxes(n.Variable)
+		b.square = slices.Contains(words, held) || slices.Contains(words, fixed) || slices.Contains(words, limits) || in.Mark.boxes(n.Variable)
 		if len(words) > 0 {
 			b.roles = strings.Join(words, " · ")
 			size := roleSize(zoom)
@@ -235,6 +235,7 @@ func bodies(in *Input) []*body {
 // The roles that give a node square corners.
 const (
 	held   = "held"
+	fixed  = "fixed"
 	limits = "limits rows"
 )
 
@@ -253,6 +254,9 @@ func roles(in *Input, id string) []string {
 		}
 		if slices.Contains(q.Held, id) {
 			words = append(words, held)
+		}
+		if slices.ContainsFunc(q.Fixed, func(f study.Fix) bool { return f.Variable == id }) {
+			words = append(words, fixed)
 		}
 	}
 	if n := in.Rival.Diagram.Node(id); n != nil && n.Limits || slices.Contains(in.Limits, id) {
