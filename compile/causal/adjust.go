@@ -16,6 +16,7 @@ type comparison struct {
 	forbidden []bool       // causal nodes and all they act on
 	backDoor  *graph.Graph // g without the arrows from an exposure to a causal node
 	usable    []bool       // may be held: available, not forbidden, neither exposure nor outcome
+	selected  []int        // held by the rows themselves, whatever else is
 }
 
 func newComparison(g *graph.Graph, x, y []int) *comparison {
@@ -52,6 +53,9 @@ func (c *comparison) effect() bool {
 
 // valid reports whether holding z makes the effect readable.
 func (c *comparison) valid(z []int) bool {
+	if len(c.selected) > 0 {
+		z = union(z, c.selected)
+	}
 	for _, v := range z {
 		if !c.usable[v] {
 			return false

@@ -38,12 +38,7 @@ const controlPaths = 500 // paths looked at for one that shows the reason
 func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 	c := newComparison(g, []int{exposure}, []int{outcome})
 	held = tidy(held)
-	var walks []*Path
-	for p := range paths(g, exposure, outcome) {
-		if walks = append(walks, p); len(walks) == controlPaths {
-			break
-		}
-	}
+	walks := firstPaths(g, exposure, outcome)
 	reasons := map[int]Forbidden{}
 	for _, f := range c.whyForbidden() {
 		reasons[f.Node] = f
@@ -61,6 +56,17 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 		all = append(all, j.verdict())
 	}
 	return all
+}
+
+// firstPaths are the paths looked at for reasons.
+func firstPaths(g *graph.Graph, x, y int) []*Path {
+	var walks []*Path
+	for p := range paths(g, x, y) {
+		if walks = append(walks, p); len(walks) == controlPaths {
+			break
+		}
+	}
+	return walks
 }
 
 // A judgement weighs one variable that may be held beside a base.

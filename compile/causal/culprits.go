@@ -8,17 +8,21 @@ import (
 
 // findCulprits asks for them for the reading's pair.
 func (r *Reading) findCulprits() {
-	r.Culprits, r.CulpritArcs, r.CulpritsAll = Culprits(r.Graph, []int{r.Query.Exposure}, []int{r.Query.Outcome})
+	r.Culprits, r.CulpritArcs, r.CulpritsAll = culprits(r.Graph, []int{r.Query.Exposure}, []int{r.Query.Outcome}, r.Query.Selected)
 }
 
 // Culprits asks which unmeasured variables, drawn or behind an arc, would give
 // an adjustment set if only they were measured: each that does alone, or else,
 // when all is set, a smallest-by-dropping collection that does together.
 func Culprits(g *graph.Graph, exposures, outcomes []int) (nodes []int, arcs [][2]int, all bool) {
+	return culprits(g, exposures, outcomes, nil)
+}
+
+func culprits(g *graph.Graph, exposures, outcomes, selected []int) (nodes []int, arcs [][2]int, all bool) {
 	named, first := nameArcs(g)
 	var hidden []int
 	for v, measured := range named.Measured {
-		if !measured && !slices.Contains(exposures, v) && !slices.Contains(outcomes, v) {
+		if !measured && !slices.Contains(selected, v) && !slices.Contains(exposures, v) && !slices.Contains(outcomes, v) {
 			hidden = append(hidden, v)
 		}
 	}
@@ -28,7 +32,9 @@ func Culprits(g *graph.Graph, exposures, outcomes []int) (nodes []int, arcs [][2
 		for _, v := range measured {
 			h.Measured[v] = true
 		}
-		return newComparison(&h, exposures, outcomes).exists(nil)
+		c := newComparison(&h, exposures, outcomes)
+		c.keep(selected)
+		return c.exists(nil)
 	}
 	var culprits []int
 	for _, v := range hidden {

@@ -35,7 +35,7 @@ func (r *Reading) faults(c *comparison) []Fault {
 	}
 	for _, v := range r.misleading(c, minus(q.Held, wrong)) {
 		f := Fault{Node: v, Reason: "it opens a path that was closed"}
-		if fixed(g, mark(g.Len(), q.Held))[q.Exposure] {
+		if fixed(g, mark(g.Len(), r.given()))[q.Exposure] {
 			f.Reason = fmt.Sprintf("%s is computed from what is held, so nothing is left to compare", g.Names[q.Exposure])
 		} else if p := r.opener(v); p != nil {
 			f.Path = p.Nodes

@@ -160,6 +160,7 @@ func (r *Reading) findGroups(c *comparison) {
 // change within them need not be held, and is not offered.
 func (r *Reading) withinGroups(plates []int) *comparison {
 	c := newComparison(Within(r.Graph, plates), []int{r.Query.Exposure}, []int{r.Query.Outcome})
+	c.keep(r.Query.Selected)
 	for v, same := range sameNodes(r.Graph, plates) {
 		c.usable[v] = c.usable[v] && !same
 	}
@@ -262,7 +263,7 @@ func (r *Reading) closePaths() {
 	g, q := r.Graph, r.Query
 	same := sameNodes(g, q.Within)
 	plate := series(plateNames(g, q.Within), "and")
-	s := newStatus(g, union(q.Held, list(same)))
+	s := newStatus(g, union(r.given(), list(same)))
 	for i := range r.Paths {
 		p := &r.Paths[i]
 		s.judge(p)

@@ -8,7 +8,7 @@ import "slices"
 // 2020). It is reported only if there is an effect, all of it can be held, and
 // it is valid; with unmeasured variables a best set need not exist.
 func (c *comparison) optimal() ([]int, bool) {
-	if !c.effect() {
+	if !c.effect() || len(c.selected) > 0 { // the theorems are about all rows
 		return nil, false
 	}
 	var o []int
@@ -32,6 +32,7 @@ func (c *comparison) optimal() ([]int, bool) {
 // every model of the graph, both being valid (Henckel, Perković & Maathuis
 // 2022, for linear models; Rotnitzky & Smucler 2020 in general).
 func (c *comparison) asPrecise(a, b []int) bool {
+	a, b = union(a, c.selected), union(b, c.selected)
 	return Separated(c.g, c.y, minus(b, a), union(a, c.x)) &&
 		Separated(c.g, c.x, minus(a, b), b)
 }

@@ -3,6 +3,7 @@ package causal
 import (
 	"fmt"
 	"math/rand/v2"
+	"os"
 	"testing"
 
 	"arrowroot/compile/graph"
@@ -88,4 +89,12 @@ func subset(nodes []int, bits int) []int {
 		}
 	}
 	return z
+}
+
+// rounds is how often a random check is made: usual, or long if asked for.
+func rounds(usual, long int) int {
+	if os.Getenv("ARROWROOT_LONG") != "" {
+		return long
+	}
+	return usual
 }

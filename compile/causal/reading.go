@@ -16,7 +16,7 @@
 // direct.go and controls.go (adjustment in full), frontdoors.go and
 // instruments.go, implications.go, functional.go and tetrads.go (what the data
 // could contradict), pattern.go and equivalence.go (what they never could),
-// selection.go and missingness.go.
+// selection.go, kept.go and missingness.go.
 //
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.
 package causal
@@ -32,6 +32,7 @@ import (
 type Query struct {
 	Exposure, Outcome int // -1 = not said yet
 	Held              []int
+	Selected          []int // rows were kept by these: held by the rows themselves, measured or not; sets leave them out
 	MaxPaths          int   // listed; 0 = 500
 	MaxSets           int   // listed; 0 = 100
 	Within            []int // held plates of the graph: the comparison is within their groups
@@ -59,7 +60,9 @@ type Reading struct {
 	Groups      []Groups     // what holding a plate gives, of each at whose level something lives
 	PlateFaults []PlateFault // of held plates
 
-	Identifiable bool // from measured variables, by adjustment or any other way
+	Kept *Kept // what the rows show if some nodes kept them; nil = all rows are there
+
+	Identifiable bool // from measured variables, by adjustment or any other way; if rows were kept, by adjustment
 
 	// With no set: what else could give the effect.
 	FrontDoor   *FrontDoor // nil = none found
@@ -93,7 +96,8 @@ type Fault struct {
 // exposure or outcome yet (-1, or the same node twice) the verdict says so and
 // the rest is empty. A node number outside the graph panics.
 func Read(g *graph.Graph, q Query) *Reading {
-	q.Held, q.Within = tidy(q.Held), tidy(q.Within)
+	q.Selected, q.Within = tidy(q.Selected), tidy(q.Within)
+	q.Held = minus(tidy(q.Held), q.Selected)
 	maxPaths, maxSets := limit(q.MaxPaths, enoughPaths), limit(q.MaxSets, enoughSets)
 	q.MaxPaths, q.MaxSets = max(maxPaths, enoughPaths), max(maxSets, enoughSets)
 	r := &Reading{Graph: g, Query: q, Precise: -1}
@@ -103,6 +107,7 @@ func Read(g *graph.Graph, q Query) *Reading {
 		return r
 	}
 	c := newComparison(g, []int{q.Exposure}, []int{q.Outcome})
+	c.keep(q.Selected)
 	r.Effect = c.effect()
 	r.findPaths()
 	r.Forbidden = c.whyForbidden()
@@ -118,12 +123,15 @@ func Read(g *graph.Graph, q Query) *Reading {
 	// identification algorithm's positive distribution cannot be had.
 	can := available(g)
 	r.Identifiable = r.Sets != nil && can[q.Exposure] && can[q.Outcome] ||
-		!g.Computed[q.Exposure] && Identifiable(g, q.Exposure, q.Outcome)
+		len(q.Selected) == 0 && !g.Computed[q.Exposure] && Identifiable(g, q.Exposure, q.Outcome)
 	r.HeldValid = c.valid(q.Held)
+	if len(q.Selected) > 0 {
+		r.Kept = c.kept(q.Held)
+	}
 	r.HeldFaults = r.faults(c)
 	if r.Sets == nil {
 		r.findCulprits()
-		if r.Effect && can[q.Exposure] && can[q.Outcome] && !g.Computed[q.Exposure] {
+		if r.Effect && len(q.Selected) == 0 && can[q.Exposure] && can[q.Outcome] && !g.Computed[q.Exposure] {
 			r.FrontDoor = c.frontDoor()
 			r.Instruments = c.instruments()
 		}
@@ -154,8 +162,12 @@ func (r *Reading) shorten(maxPaths, maxSets int) {
 	}
 }
 
+// given is all that the comparison is made within: what is held, and what kept
+// the rows.
+func (r *Reading) given() []int { return union(r.Query.Held, r.Query.Selected) }
+
 func (r *Reading) findPaths() {
-	s := newStatus(r.Graph, r.Query.Held)
+	s := newStatus(r.Graph, r.given())
 	for p := range paths(r.Graph, r.Query.Exposure, r.Query.Outcome) {
 		if len(r.Paths) == r.Query.MaxPaths {
 			r.MorePaths = true

@@ -15,7 +15,7 @@ const (
 // are taken away and every node that may not be held is contracted into a
 // clique of its neighbours.
 func (c *comparison) minimal(forced []int, max int) (sets [][]int, more bool) {
-	forced = tidy(forced)
+	forced = union(forced, c.selected)
 	for _, v := range forced {
 		if !c.usable[v] {
 			return nil, false
@@ -36,6 +36,11 @@ func (c *comparison) minimal(forced []int, max int) (sets [][]int, more bool) {
 		tried, all := c.byTrial(forced, attempts)
 		sets = smallest(append(sets, tried...))
 		more = more || !all
+	}
+	if len(c.selected) > 0 { // they need not be named
+		for i := range sets {
+			sets[i] = minus(sets[i], c.selected)
+		}
 	}
 	sortSets(c.g, sets)
 	if len(sets) > max {
@@ -240,13 +245,14 @@ func (u *undirected) separators(yield func([]int) bool) {
 // among the ancestors of exposure, outcome and forced works if anything does
 // (van der Zander, Liśkiewicz & Textor 2019).
 func (c *comparison) exists(forced []int) bool {
+	forced = union(forced, c.selected)
 	for _, v := range forced {
 		if !c.usable[v] {
 			return false
 		}
 	}
 	above := c.g.Ancestors(slices.Concat(c.x, c.y, forced)...)
-	z := slices.Clone(forced)
+	z := forced
 	for v := range above {
 		if above[v] && c.usable[v] {
 			z = append(z, v)

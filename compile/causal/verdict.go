@@ -66,7 +66,7 @@ func (r *Reading) verdict(c *comparison) Verdict {
 		return Verdict{
 			Kind:     Readable,
 			Sentence: fmt.Sprintf("%s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", pair, names(g, q.Held)),
-			Way:      r.costly(c),
+			Way:      r.aboutRows(r.costly(c)),
 		}
 	case len(r.HeldFaults) > 0:
 		return r.overHeld(c)
@@ -85,6 +85,17 @@ func (r *Reading) verdict(c *comparison) Verdict {
 		}
 	}
 	return v
+}
+
+// aboutRows adds what the rows that were kept show.
+func (r *Reading) aboutRows(text string) string {
+	switch {
+	case r.Kept == nil:
+		return text
+	case text == "":
+		return r.Kept.Sentence
+	}
+	return text + " " + r.Kept.Sentence
 }
 
 // costly names the held variables that only cost precision: the set is valid
@@ -216,6 +227,11 @@ func (r *Reading) noEffect(c *comparison) Verdict {
 }
 
 func (r *Reading) noSet() Verdict {
+	if r.Kept != nil {
+		if whole := newComparison(r.Graph, []int{r.Query.Exposure}, []int{r.Query.Outcome}); whole.exists(nil) {
+			return Verdict{Kind: NoSet, Sentence: r.Kept.Sentence, Way: "With all rows it could be read: find out what the rows that were left out were like."}
+		}
+	}
 	g, q := r.Graph, r.Query
 	v := Verdict{Kind: NoSet}
 	v.Sentence = fmt.Sprintf("No set of measured variables closes every back-door path from %s to %s", g.Names[q.Exposure], g.Names[q.Outcome])
@@ -226,6 +242,8 @@ func (r *Reading) noSet() Verdict {
 
 	var words []string
 	switch c, _, _ := InterventionCase(g, q.Exposure, q.Outcome); {
+	case !r.Identifiable && r.Kept != nil:
+		words = append(words, fmt.Sprintf("Rows were kept by %s, and no other way to the effect was looked for: what these rows show is an association.", names(g, q.Selected)))
 	case !r.Identifiable:
 		words = append(words, "The effect is not identified: what the data show is an association.")
 	case c != NotSimulated:
