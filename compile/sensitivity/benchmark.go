@@ -32,6 +32,9 @@ type Times struct {
 var strengths = [...]float64{1, 2, 3}
 
 func benchmarksOf(in *Input) ([]Benchmark, string) {
+	if len(in.Covariates) == 0 && len(in.NotCompared) > 0 {
+		return nil, "what is held cannot be had as columns of the fitted rows"
+	}
 	if len(in.Covariates) == 0 {
 		return nil, "nothing is held, so there is no measured cause to compare with"
 	}

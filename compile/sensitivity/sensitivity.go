@@ -30,10 +30,11 @@ type Input struct {
 	// Exposure has a column, or one for each level but one of a category;
 	// Outcome is on a scale where effects add up (see OnLinkScale). Both, and all
 	// columns of Covariates, are of the same rows.
-	Exposure   [][]float64
-	Outcome    []float64
-	Covariates []Covariate // what is held
-	OutcomeSD  float64     // of the outcome in its own unit
+	Exposure    [][]float64
+	Outcome     []float64
+	Covariates  []Covariate // what is held
+	NotCompared []string    // held too, but not to be had as columns
+	OutcomeSD   float64     // of the outcome in its own unit
 }
 
 // A Covariate is a held variable as columns of a regression.

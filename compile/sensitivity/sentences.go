@@ -42,6 +42,9 @@ func (r *Result) say() []string {
 			lines = append(lines, compared)
 		}
 	}
+	if len(lines) > 0 && len(in.NotCompared) > 0 {
+		lines = append(lines, "Not compared: "+strings.Join(in.NotCompared, ", ")+".")
+	}
 	if len(lines) == 0 {
 		lines = append(lines, fmt.Sprintf("How wrong it could be is not said: %s.", or(r.NoRobustness, r.NoE)))
 	}
