@@ -72,6 +72,7 @@ func (s *Session) derive() {
 	}
 	s.deriveMistakes(late)
 	s.deriveEvidence()
+	s.deriveStandings()
 }
 
 // readMore shows that the reading has come further.

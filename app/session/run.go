@@ -58,6 +58,7 @@ func (s *Session) Fit() {
 				}
 				results[rival] = result
 				s.results = results
+				s.deriveStandings()
 			}
 			s.show()
 		})

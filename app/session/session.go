@@ -51,12 +51,13 @@ type View struct {
 	Problems   []model.Problem
 	Statement  *model.Statement
 
-	Running  bool
-	Progress infer.Progress
-	Result   *fit.Result // of this rival and question; nil = not fitted
-	Stale    bool        // Result belongs to an earlier version
-	FitError error
-	Results  map[string]*fit.Result // last result of each rival
+	Running      bool
+	Progress     infer.Progress
+	Result       *fit.Result // of this rival and question; nil = not fitted
+	Stale        bool        // Result belongs to an earlier version
+	FitError     error
+	Results      map[string]*fit.Result // last result of each rival
+	StaleResults map[string]bool        // those of Results that belong to an earlier version
 
 	Recovered *study.Study // work that an earlier session left unsaved; nil = none
 	Notice    string       // one sentence about what just happened; "" = nothing
@@ -77,14 +78,15 @@ type Session struct {
 	rival    string
 	question int
 
-	derived  derived
-	consider *considered
-	tables   map[string]*loaded
-	results  map[string]*fit.Result
-	running  context.CancelFunc
-	run      int
-	progress infer.Progress
-	fitError error
+	derived   derived
+	consider  *considered
+	tables    map[string]*loaded
+	results   map[string]*fit.Result
+	standings map[string]*standing // of fitted rivals that are not on the sheet
+	running   context.CancelFunc
+	run       int
+	progress  infer.Progress
+	fitError  error
 
 	recovered *study.Study
 	recovery  *recovery
@@ -208,7 +210,7 @@ func (s *Session) replace(doc *study.Study, path string) {
 	s.run++ // a fit still on its way belongs to the old document
 	s.running = nil
 	s.history, s.future = nil, nil
-	s.results = make(map[string]*fit.Result)
+	s.results, s.standings = make(map[string]*fit.Result), make(map[string]*standing)
 	s.fitError, s.notice = nil, ""
 	s.recovered = s.recovery.find(path, doc)
 	s.saved, s.path = doc, path
@@ -260,14 +262,8 @@ func (s *Session) show() {
 	if n := len(s.future); n > 0 {
 		v.Redo = s.future[n-1].edit.Label()
 	}
-	if r := s.results[s.rival]; r != nil && sameQuestion(r.Question, v.Question) {
-		v.Result = r
-		// Until the present model is checked nobody knows; without one, the
-		// result cannot be of it.
-		v.Stale = !s.derived.checking && s.derived.fingerprint != r.Fingerprint
-	} else if r != nil {
-		v.Result, v.Stale = r, true
-	}
+	v.StaleResults = s.staleResults()
+	v.Result, v.Stale = s.results[s.rival], v.StaleResults[s.rival]
 	s.view = v
 	for _, f := range s.listeners {
 		f(v)
