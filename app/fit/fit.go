@@ -149,7 +149,7 @@ func Run(ctx context.Context, req Request, watch func(infer.Progress)) (*Result,
 	}
 	r.Cut = full.Cut || ctx.Err() != nil
 	if !req.NoPaint {
-		if err := r.paint(ctx, &req, g); err != nil {
+		if err := r.paint(ctx, &req, causal.AsFitted(g, g.Index(q.Exposure), g.Index(q.Outcome))); err != nil {
 			return nil, fmt.Errorf("paint: %w", err)
 		}
 	}
@@ -189,6 +189,8 @@ func Read(g *graph.Graph, q *study.Question, maxPaths, maxSets int) *causal.Read
 		for _, id := range q.Held {
 			if v := g.Index(id); v >= 0 {
 				query.Held = append(query.Held, v)
+			} else if p := g.Plate(id); p >= 0 {
+				query.Within = append(query.Within, p)
 			}
 		}
 	}

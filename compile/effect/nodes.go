@@ -38,31 +38,29 @@ func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question
 	if err != nil {
 		return nil, err
 	}
-	below := g.Descendants(x)
-	together := make(map[string][]int) // by district that reads the observed exposure: places in out
-	districts := make(map[string][]int)
+	fixed := make(map[int]bool)
+	for _, f := range q.Fixed {
+		fixed[g.Index(f.Variable)] = true
+	}
+	below := g.Keep(func(_, to int) bool { return !fixed[to] }, nil).Descendants(x)
+	together := make(map[string][]int) // by districts that read what would have been: places in out
+	districts := make(map[string]map[string][]string)
 	for i, v := range m.Variables {
-		if i == exposure {
+		if i == exposure || v.MeanOf != "" { // a group mean is no node
 			continue
 		}
 		n := NodeEffect{Variable: v.ID}
 		at := g.Index(v.ID)
-		if at < 0 || !below[at] || (p.laws[i] == nil && p.computed[i] == nil) {
+		if at < 0 || !below[at] || fixed[at] || (p.laws[i] == nil && p.computed[i] == nil) {
 			n.Plain = true
 			out = append(out, n)
 			continue
 		}
-		kind, members, _ := causal.InterventionCase(g, x, at)
+		kind, reading, _ := Districts(g, &q, at)
 		if n.Refused = kind == causal.NotSimulated; !n.Refused {
-			var district []int
-			if kind == causal.ObservedForDistrict {
-				for _, v := range members {
-					district = append(district, p.indices(g.Names[v:v+1])...)
-				}
-			}
-			key := fmt.Sprint(district)
+			key := fmt.Sprint(reading)
 			together[key] = append(together[key], len(out))
-			districts[key] = district
+			districts[key] = reading
 		}
 		out = append(out, n)
 	}
@@ -71,7 +69,11 @@ func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question
 		for _, at := range together[key] {
 			nodes = append(nodes, &out[at])
 		}
-		if err := p.nodes(ctx, nodes, exposure, districts[key], [2]arm{from, to}, draws, src, opt); err != nil {
+		pins, err := p.pins(exposure, districts[key], &q)
+		if err != nil {
+			return nil, err
+		}
+		if err := p.nodes(ctx, nodes, pins, [2]arm{from, to}, &q, draws, src, opt); err != nil {
 			return nil, err
 		}
 	}
@@ -79,7 +81,7 @@ func Nodes(ctx context.Context, m *model.Model, g *graph.Graph, q study.Question
 }
 
 // nodes fills the values of variables that the same simulation serves.
-func (p *planner) nodes(ctx context.Context, nodes []*NodeEffect, exposure int, district []int, arms [2]arm, draws [][]float64, src rand.Source, opt Options) error {
+func (p *planner) nodes(ctx context.Context, nodes []*NodeEffect, pins []pin, arms [2]arm, q *study.Question, draws [][]float64, src rand.Source, opt Options) error {
 	var targets []target
 	for _, n := range nodes {
 		v := p.variables[n.Variable]
@@ -89,11 +91,14 @@ func (p *planner) nodes(ctx context.Context, nodes []*NodeEffect, exposure int, 
 		}
 		targets = append(targets, target{variable: v, scale: s})
 	}
-	plan, err := p.plan(exposure, district, false, targets...)
+	plan, err := p.plan(pins, false, targets...)
 	if err != nil {
 		return err
 	}
-	sim := &simulation{planner: p, plan: plan, arms: arms[:], draws: draws, opt: opt.share()}
+	sim := &simulation{
+		planner: p, plan: plan, arms: arms[:], draws: draws, opt: opt.share(),
+		newGroups: q.Groups == study.NewGroups, byGroups: q.Weigh == study.ByGroups,
+	}
 	if err := sim.run(ctx, src); err != nil {
 		return err
 	}

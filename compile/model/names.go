@@ -119,7 +119,11 @@ func (b *builder) symbol(m meaning) string {
 	case baselineSD:
 		return "τ_" + m.child + "," + m.plate
 	case slope:
-		return "β_" + m.parent + "→" + m.child
+		parent := m.parent
+		if g, mean := b.means[parent]; mean {
+			parent = g.brief() + "," + g.plate
+		}
+		return "β_" + parent + "→" + m.child
 	case slopeBy:
 		return "β_" + m.parent + "→" + m.child + "," + m.plate
 	case slopeSD:
@@ -178,8 +182,12 @@ func (b *builder) unit(d *draft, parents ...string) string {
 	per := ""
 	for _, id := range parents {
 		p := b.variable(id)
-		if p == nil || p.Scale == study.Binary {
+		g, mean := b.means[id]
+		if p == nil || p.Scale == study.Binary || g.level != "" {
 			continue
+		}
+		if mean {
+			id = g.of
 		}
 		u := p.Unit
 		if u == "" {

@@ -124,6 +124,14 @@ func (g groupMean) String() string {
 	return fmt.Sprintf("mean of %s within %s", g.of, g.plate)
 }
 
+// brief is the mean in symbols: "mean hedge".
+func (g groupMean) brief() string {
+	if g.level != "" {
+		return "share " + g.level + " of " + g.of
+	}
+	return "mean " + g.of
+}
+
 func (g groupMean) unit(of *study.Variable) string {
 	if g.level != "" {
 		return ""
