@@ -27,6 +27,7 @@ type comparingState struct {
 	asked   *study.Question
 	results int
 	result  any
+	stale   string
 }
 
 func newRivalsPage(d *desk) *rivalsPage { return &rivalsPage{d: d, pane: newPane(16, 8, 8)} }
@@ -36,7 +37,7 @@ func (p *rivalsPage) content() fyne.CanvasObject { return p.pane }
 
 func (p *rivalsPage) update() {
 	v := p.d.view
-	state := comparingState{v.Study, v.Rival, v.Question, len(v.Results), v.Result}
+	state := comparingState{v.Study, v.Rival, v.Question, len(v.Results), v.Result, fmt.Sprint(v.StaleResults)}
 	if p.asked && state == p.seen {
 		return
 	}
@@ -137,10 +138,9 @@ func (p *rivalsPage) verdict(r *study.Rival) []fyne.CanvasObject {
 		return append(objects, small("not fitted yet"))
 	}
 	stale := ""
-	if r == v.Rival && v.Stale {
+	if v.StaleResults[r.Name] {
 		stale = " · of an earlier version"
 	}
-	trust := result.Trust().Verdict.String()
 	n := result.Effect.Headline()
 	if n == nil {
 		text := result.Effect.Refusal
@@ -149,10 +149,12 @@ func (p *rivalsPage) verdict(r *study.Rival) []fyne.CanvasObject {
 		}
 		return append(objects, para(sentenceCase(text)+stale, tokenConfound))
 	}
+	trust := n.Trust.Verdict.String()
 	return append(objects, newProse(sizeBody,
 		span{text: words.Number(n.Centre), bold: true},
 		span{text: fmt.Sprintf("  %s: %s to %s", words.Percent(n.Level), words.Number(n.Low), words.Number(n.High))},
-		span{text: " · " + trust + stale, token: tokenMuted}))
+		span{text: " · "}, span{text: trust, bold: true, token: verdictToken(trust)},
+		span{text: stale, token: tokenConfound}))
 }
 
 // readRival reads the question on a rival's arrows; nil where there is no graph
@@ -166,6 +168,8 @@ func readRival(s *study.Study, r *study.Rival, q *study.Question) *causal.Readin
 	for _, id := range q.Held {
 		if v := g.Index(id); v >= 0 {
 			query.Held = append(query.Held, v)
+		} else if p := g.Plate(id); p >= 0 {
+			query.Within = append(query.Within, p)
 		}
 	}
 	return causal.Read(g, query)

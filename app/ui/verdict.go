@@ -97,7 +97,7 @@ func (s *strip) update() {
 			mark, token, tone = iconWarn, tokenInk, tokenConfound
 		}
 		if r.Verdict.HasProposal {
-			ids := s.d.names(r.Verdict.Propose)
+			ids := r.Proposed()
 			s.label.text = proposal(ids)
 			if r.Verdict.Kind == causal.Confounded && len(ids) > 0 && len(r.Query.Held) == 0 { // the sentence has the names
 				s.label.text = "Hold them"
