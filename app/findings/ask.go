@@ -6,6 +6,7 @@ import (
 
 	"arrowroot/app/words"
 	"arrowroot/compile/study"
+	"arrowroot/compile/table"
 )
 
 // An Ask is what is asked of a rival, by the IDs of variables.
@@ -34,6 +35,20 @@ func AskOf(q *study.Question) Ask {
 		a.Fixed = append(a.Fixed, fix.Variable)
 	}
 	return a
+}
+
+// Incomplete lists the variables of which a table lacks entries; of nil, none.
+func Incomplete(s *study.Study, t *table.Table) []string {
+	if t == nil {
+		return nil
+	}
+	ids := []string{}
+	for _, v := range s.Variables {
+		if c := t.Column(v.Column); v.Column != "" && !v.Unmeasured && c != nil && c.Missing > 0 {
+			ids = append(ids, v.ID)
+		}
+	}
+	return ids
 }
 
 // lacks says why the question cannot be asked of this sheet; "" if it can.

@@ -135,6 +135,7 @@ type Beyond struct {
 type Laws struct {
 	Section
 	List     []causal.Fitted
+	Shared   []causal.Shared // what laws carry at the level of plates
 	Case     causal.Case
 	District []int  // laws that read the observed exposure in case (b)
 	Reason   string // of the case

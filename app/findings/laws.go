@@ -2,6 +2,7 @@ package findings
 
 import (
 	"fmt"
+	"slices"
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
@@ -16,13 +17,18 @@ func (r *reader) laws(f *Findings) {
 	if f.Lacks == "" && len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
 		x, y = f.Exposures[0], f.Outcomes[0]
 	}
-	l.List = causal.CarriersFor(g, x, y)
+	fitted := causal.AsFitted(g, x, y)
+	l.List = causal.CarriersFor(fitted, x, y)
+	l.Shared = causal.SharedCarriers(g, x, y)
 	carried := 0
 	for _, law := range l.List {
 		if len(law.Carried) > 0 {
 			carried++
 		}
 		f.lawFinding(&l.Section, law)
+	}
+	for _, law := range l.Shared {
+		f.sharedFinding(&l.Section, law)
 	}
 	switch {
 	case len(l.List) == 0:
@@ -33,7 +39,7 @@ func (r *reader) laws(f *Findings) {
 		l.Summary = fmt.Sprintf("%s more than the drawn parents, for the sake of what is left out.", upper(lawsCarry(carried, len(l.List))))
 	}
 	if x >= 0 {
-		l.Case, l.District, l.Reason = causal.InterventionCase(g, x, y)
+		l.Case, l.District, l.Reason = causal.InterventionCase(fitted, x, y)
 		f.caseFinding(l)
 	}
 	f.Laws = l
@@ -63,12 +69,12 @@ func (f *Findings) lawFinding(s *Section, law causal.Fitted) {
 	if len(law.Carried) > 0 {
 		one.Kind = "law with carried terms"
 		var terms, causes []int
-		unnamed := false
+		arc := false
 		for _, c := range law.Carried {
 			terms = append(terms, c.Node)
 			for _, u := range c.For {
 				if u < 0 {
-					unnamed = true
+					arc = true
 				} else {
 					causes = append(causes, u)
 				}
@@ -76,18 +82,49 @@ func (f *Findings) lawFinding(s *Section, law causal.Fitted) {
 		}
 		causes = union(causes, nil)
 		because := f.names(causes)
-		if unnamed {
-			because = append(because, "a common cause that nobody named")
-		}
-		was := "was"
-		if len(because) > 1 {
-			was = "were"
+		if arc {
+			because = append(because, unnamed)
 		}
 		one.Nodes = union(union(one.Nodes, terms), causes)
-		text += fmt.Sprintf(", and carries %s, because %s %s left out", words.List(f.names(terms)), words.List(because), was)
+		text += fmt.Sprintf(", and carries %s, because %s %s left out", words.List(f.names(terms)), words.List(because), wasWere(len(because)))
 	}
 	one.Sentence = text + "."
 	f.add(s, one)
+}
+
+// sharedFinding says what a law carries at the level of plates.
+func (f *Findings) sharedFinding(s *Section, law causal.Shared) {
+	name := f.Graph.Names[law.Node]
+	for _, at := range law.Plates {
+		plate := f.Graph.Plates[at.Plate].Name
+		text := fmt.Sprintf("The law of %s carries a baseline that varies by %s", name, plate)
+		if len(at.Means) > 0 {
+			text += fmt.Sprintf(" and the means of %s within each", words.List(f.names(at.Means)))
+		}
+		because, causes := []string{}, []int{}
+		for _, u := range at.For {
+			if u >= 0 {
+				causes = append(causes, u)
+				because = append(because, f.Graph.Names[u])
+			} else if !slices.Contains(because, unnamed) {
+				because = append(because, unnamed)
+			}
+		}
+		f.add(s, Finding{
+			Key: "law " + name + " by " + plate, Kind: "law with carried groups", Nodes: union(union([]int{law.Node}, at.Means), causes),
+			Sentence: fmt.Sprintf("%s, because %s %s left out.", text, words.List(because), wasWere(len(because))),
+		})
+	}
+}
+
+// unnamed stands for what lies behind an arc.
+const unnamed = "a common cause that nobody named"
+
+func wasWere(n int) string {
+	if n == 1 {
+		return "was"
+	}
+	return "were"
 }
 
 // caseFinding says whether the fitted laws may be simulated under the
