@@ -38,7 +38,11 @@ flags
   -draws N        draws of each chain, 1 to 1000000; without it, until every quantity is precise enough
   -out FILE       fit, effect: draws as CSV; report: the HTML file
   -paths N        read: at most N paths, 1 to 100000 (500)
-  -sets N         read: at most N sets to hold, 1 to 100000 (100)
+  -sets N         read: at most N sets of a kind, 1 to 100000 (100)
+  -exposure LIST  read: the effect of these variables, with commas between them
+  -outcome LIST   read: on these
+  -held LIST      read: with these held
+  -given LIST     read: among those with known values of these
 `
 
 // Exit statuses.
@@ -57,6 +61,8 @@ type options struct {
 	chains, draws int
 	out           string
 	paths, sets   int
+
+	exposure, outcome, hold, given string // lists of IDs
 }
 
 // errUse is a command line that makes no sense.
@@ -139,6 +145,10 @@ func parse(args []string) (*options, error) {
 	flags.StringVar(&opt.out, "out", "", "")
 	flags.IntVar(&opt.paths, "paths", 0, "")
 	flags.IntVar(&opt.sets, "sets", 0, "")
+	flags.StringVar(&opt.exposure, "exposure", "", "")
+	flags.StringVar(&opt.outcome, "outcome", "", "")
+	flags.StringVar(&opt.hold, "held", "", "")
+	flags.StringVar(&opt.given, "given", "", "")
 	var words []string
 	for len(args) > 0 {
 		if err := flags.Parse(args); err != nil {

@@ -6,8 +6,6 @@ import (
 
 	"arrowroot/app/fit"
 	"arrowroot/app/words"
-	"arrowroot/compile/causal"
-	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 	"arrowroot/infer/summary"
@@ -26,72 +24,6 @@ type questionOut struct {
 	Over     string   `json:"over"`
 	As       string   `json:"as"`
 	Level    float64  `json:"level"`
-}
-
-type pathOut struct {
-	Path      string            `json:"path"`
-	Nodes     []string          `json:"nodes"`
-	Kind      string            `json:"kind"`
-	Open      bool              `json:"open"`
-	ClosedAt  []string          `json:"closedAt"`
-	ClosedWhy map[string]string `json:"closedWhy"`
-	OpenedAt  map[string]string `json:"openedAt"` // collider → what is held that opens it
-}
-
-type readingOut struct {
-	Rival        string            `json:"rival"`
-	Question     *questionOut      `json:"question"`
-	Verdict      string            `json:"verdict"`
-	Way          string            `json:"way"`
-	Identified   bool              `json:"identified"`
-	ByHolding    bool              `json:"heldIsEnough"`
-	Hold         [][]string        `json:"hold"`
-	MoreSets     bool              `json:"moreSets"`
-	MostPrecise  []string          `json:"mostPrecise"`
-	Forbidden    []string          `json:"forbidden"`
-	ForbiddenWhy map[string]string `json:"forbiddenWhy"`
-	HeldFaults   map[string]string `json:"heldFaults"`
-	WouldHelp    []string          `json:"wouldHelp"` // unmeasured variables that, if measured, would give a set
-	Paths        []pathOut         `json:"paths"`
-	MorePaths    bool              `json:"morePaths"`
-}
-
-var pathKinds = map[causal.PathKind]string{causal.Causal: "causal", causal.BackDoor: "back-door", causal.NonCausal: "non-causal"}
-
-func printReading(j *job, g *graph.Graph, r *causal.Reading) *readingOut {
-	out := &readingOut{
-		Rival: j.rival, Question: printQuestion(j.question), Verdict: r.Verdict.Sentence, Way: r.Verdict.Way,
-		Identified: r.Identifiable, ByHolding: r.HeldValid, Hold: [][]string{}, MoreSets: r.MoreSets,
-		Forbidden: []string{}, ForbiddenWhy: map[string]string{}, HeldFaults: map[string]string{},
-		WouldHelp: names(g, r.Culprits), Paths: []pathOut{}, MorePaths: r.MorePaths,
-	}
-	for _, set := range r.Sets {
-		out.Hold = append(out.Hold, names(g, set))
-	}
-	if r.Precise >= 0 {
-		out.MostPrecise = names(g, r.Sets[r.Precise])
-	}
-	for _, f := range r.Forbidden {
-		out.Forbidden = append(out.Forbidden, g.Names[f.Node])
-		out.ForbiddenWhy[g.Names[f.Node]] = f.Reason
-	}
-	for _, f := range r.HeldFaults {
-		out.HeldFaults[g.Names[f.Node]] = f.Reason
-	}
-	for i := range r.Paths {
-		p := &r.Paths[i]
-		po := pathOut{Path: p.Text(g), Nodes: names(g, p.Nodes), Kind: pathKinds[p.Kind], Open: p.Open, ClosedAt: []string{}, ClosedWhy: map[string]string{}, OpenedAt: map[string]string{}}
-		for _, s := range p.ClosedAt {
-			name := g.Names[s.Node]
-			po.ClosedAt = append(po.ClosedAt, name)
-			po.ClosedWhy[name] = s.Reason
-		}
-		for _, o := range p.OpenedAt {
-			po.OpenedAt[g.Names[o.Node]] = g.Names[o.By]
-		}
-		out.Paths = append(out.Paths, po)
-	}
-	return out
 }
 
 func printQuestion(q *study.Question) *questionOut {

@@ -94,23 +94,6 @@ func (j *job) spare(path string) error {
 
 var errNoQuestion = errors.New("the study asks no question: add one with an exposure and an outcome")
 
-func read(_ context.Context, j *job) (any, error) {
-	g, err := j.study.Graph(j.rival)
-	if err != nil {
-		return nil, err
-	}
-	if j.question == nil {
-		return nil, errNoQuestion
-	}
-	for _, id := range []string{j.question.Exposure, j.question.Outcome} {
-		if g.Index(id) < 0 {
-			return nil, fmt.Errorf("the question names %q, which is not on the sheet of %q", id, j.rival)
-		}
-	}
-	r := fit.Read(g, j.question, j.paths, j.sets)
-	return printReading(j, g, r), nil
-}
-
 func validate(_ context.Context, j *job) (any, error) {
 	t, err := j.table()
 	if err != nil {
