@@ -95,11 +95,14 @@ func MinimalSeparators(g *graph.Graph, x, y int, forced []int, max int) (sets []
 	if x == y {
 		return nil, false
 	}
-	c := newComparison(g, []int{x}, []int{y})
-	c.backDoor = g
-	c.usable = available(g)
+	return newSeparation(g, x, y).minimal(forced, limit(max, 100))
+}
+
+// newSeparation is a comparison for which every path counts.
+func newSeparation(g *graph.Graph, x, y int) *comparison {
+	c := &comparison{g: g, x: []int{x}, y: []int{y}, backDoor: g, usable: available(g)}
 	c.usable[x], c.usable[y] = false, false
-	return c.minimal(forced, limit(max, 100))
+	return c
 }
 
 func limit(asked, otherwise int) int {

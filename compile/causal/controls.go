@@ -29,7 +29,10 @@ type Control struct {
 	Sentence string
 }
 
-const controlPaths = 500 // paths looked at for one that shows the reason
+const (
+	controlPaths = 500 // paths looked at for one that shows the reason
+	helpfulSets  = 64  // sets looked at for one that needs a variable
+)
 
 // Controls gives a verdict for every available variable but exposure and
 // outcome, in the order of the nodes; of a held one, beside the rest of held.
@@ -39,6 +42,7 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 	c := newComparison(g, []int{exposure}, []int{outcome})
 	held = tidy(held)
 	walks := firstPaths(g, exposure, outcome)
+	left := searchBudget
 	reasons := map[int]Forbidden{}
 	for _, f := range c.whyForbidden() {
 		reasons[f.Node] = f
@@ -48,7 +52,7 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 		if !can || v == exposure || v == outcome {
 			continue
 		}
-		j := judgement{c, walks, minus(held, []int{v}), v}
+		j := judgement{c: c, walks: walks, base: minus(held, []int{v}), node: v, budget: &left}
 		if f, no := reasons[v]; no {
 			all = append(all, Control{v, BadControl, f.Path, fmt.Sprintf("Leave %s free: %s.", g.Names[v], f.Reason)})
 			continue
@@ -75,6 +79,8 @@ type judgement struct {
 	walks []*Path
 	base  []int
 	node  int
+
+	budget *budget // for all variables of one listing
 }
 
 func (j judgement) verdict() Control {
@@ -110,13 +116,21 @@ func (j judgement) verdict() Control {
 			v.Kind = BluntsControl
 			v.Sentence = fmt.Sprintf("Holding %s is not needed and can only make the answer less precise.", name)
 		}
-	case j.helps(with):
+	}
+	if v.Sentence != "" {
+		return v
+	}
+	switch helps, known := j.helps(with); {
+	case helps:
 		v.Kind = PartOfControl
 		v.Sentence = fmt.Sprintf("Hold %s, though not alone.", name)
 		if p := j.changed(j.base, with); p != nil {
 			v.Path = p.Nodes
 			v.Sentence = fmt.Sprintf("Hold %s, though not alone: it closes %s.", name, p.Text(g))
 		}
+	case !known:
+		v.Kind = NeutralControl
+		v.Sentence = fmt.Sprintf("Whether holding %s could help beside others was not settled: there are too many sets.", name)
 	default:
 		v.Kind = BadControl
 		v.Sentence = fmt.Sprintf("Leave %s free: it does not make the comparison fair, and held it can make the bias larger.", name)
@@ -128,10 +142,29 @@ func (j judgement) verdict() Control {
 	return v
 }
 
-// helps reports whether some valid set that contains the base needs the node.
-func (j judgement) helps(with []int) bool {
-	sets, _ := j.c.minimal(with, 20)
-	return slices.ContainsFunc(sets, func(z []int) bool { return !j.c.valid(minus(z, []int{j.node})) })
+// helps reports whether some valid set that contains the base needs the node,
+// as far as the first minimal ones tell; known says whether that settles it.
+func (j judgement) helps(with []int) (helps, known bool) {
+	needs := func(z []int) bool { return !j.c.valid(minus(z, []int{j.node})) }
+	if slices.Contains(j.c.g.Computed, true) {
+		sets, more := j.c.minimal(with, helpfulSets)
+		helps = slices.ContainsFunc(sets, needs)
+		return helps, helps || !more
+	}
+	if !j.c.exists(with) {
+		return false, true
+	}
+	left := helpfulSets
+	for z := range j.c.moral(with).separators {
+		if needs(union(z, with)) {
+			return true, true
+		}
+		if left--; left == 0 || j.budget.spent() {
+			return false, false
+		}
+		j.budget.spend(j.c.g, 3*(len(z)+1))
+	}
+	return false, true
 }
 
 // changed finds a path that is no part of the effect, open while one set is

@@ -7,10 +7,7 @@ import (
 	"arrowroot/compile/graph"
 )
 
-const (
-	frontDoorChecks = 4000 // sets tried in one listing
-	givenTrials     = 200  // sets of given variables tried
-)
+const givenTrials = 200 // sets of given variables tried
 
 // FrontDoors lists the minimal front doors between x and y: first all that need
 // nothing given, by (size, names), then those found for which something must be
@@ -22,7 +19,7 @@ func FrontDoors(g *graph.Graph, x, y, max int) (doors []FrontDoor, more bool) {
 	if x == y || !can[x] || !can[y] {
 		return nil, false
 	}
-	s := &doorSearch{c: newComparison(g, []int{x}, []int{y}), budget: frontDoorChecks}
+	s := &doorSearch{c: newComparison(g, []int{x}, []int{y}), budget: searchBudget}
 	below := g.Descendants(x)
 	var candidates, rest []int
 	for v := range can {
@@ -49,17 +46,17 @@ func FrontDoors(g *graph.Graph, x, y, max int) (doors []FrontDoor, more bool) {
 	sortSets(g, plain)
 	take(plain, nil)
 	if !s.c.effect() {
-		return doors, more || s.budget < 0
+		return doors, more || s.budget.spent()
 	}
 	for _, given := range givens(g, rest, x, y) {
-		if s.budget < 0 || more {
+		if s.budget.spent() || more {
 			break
 		}
 		found := s.minimal(minus(candidates, given), given)
 		sortSets(g, found)
 		take(found, given)
 	}
-	return doors, more || s.budget < 0
+	return doors, more || s.budget.spent()
 }
 
 // givens are the sets of given variables to try: one or two at a time, then
@@ -88,7 +85,7 @@ func givens(g *graph.Graph, rest []int, x, y int) [][]int {
 
 type doorSearch struct {
 	c      *comparison
-	budget int
+	budget budget
 }
 
 // widest is the largest set between inner and outer whose members meet the two
@@ -97,8 +94,8 @@ type doorSearch struct {
 // are cut (after Jeong, Tian & Bareinboim 2022; Wienöbst, van der Zander &
 // Liśkiewicz 2024).
 func (s *doorSearch) widest(inner, outer, given []int) ([]int, bool) {
-	s.budget--
 	g, x := s.c.g, s.c.x
+	s.budget.spend(g, 6)
 	exposed := mark(g.Len(), x)
 	noneFromX := g.Keep(func(from, _ int) bool { return !exposed[from] }, nil)
 	held := mark(g.Len(), given)
@@ -106,6 +103,7 @@ func (s *doorSearch) widest(inner, outer, given []int) ([]int, bool) {
 	m := slices.DeleteFunc(slices.Clone(outer), func(v int) bool { return touched[v] })
 	held = mark(g.Len(), union(given, x))
 	for {
+		s.budget.spend(g, 6)
 		in := mark(g.Len(), m)
 		noneFromM := g.Keep(func(from, _ int) bool { return !in[from] }, nil)
 		touched := reachable(noneFromM, s.c.y, held, fixed(noneFromM, held))
@@ -126,11 +124,11 @@ func (s *doorSearch) minimal(candidates, given []int) (found [][]int) {
 	}
 	var try func(chosen []int, from, left int)
 	try = func(chosen []int, from, left int) {
-		if s.budget < 0 || slices.ContainsFunc(found, func(m []int) bool { return within(m, chosen) }) {
+		if s.budget.spent() || slices.ContainsFunc(found, func(m []int) bool { return within(m, chosen) }) {
 			return
 		}
 		if left == 0 {
-			s.budget--
+			s.budget.spend(s.c.g, 12)
 			if s.c.isFrontDoor(chosen, given) {
 				found = append(found, chosen)
 			}
@@ -144,7 +142,7 @@ func (s *doorSearch) minimal(candidates, given []int) (found [][]int) {
 			try(append(slices.Clone(chosen), widest[i]), i+1, left-1)
 		}
 	}
-	for size := 1; size <= len(widest); size++ {
+	for size := 1; size <= len(widest) && !s.budget.spent(); size++ {
 		try(nil, 0, size)
 	}
 	return found

@@ -33,12 +33,19 @@ func Functionals(g *graph.Graph) (all []Functional, more bool) {
 		return nil, false
 	}
 	before := make([]bool, h.Len())
+	budget := searchBudget
 	for _, v := range h.Order {
+		if budget.spent() {
+			return all, true
+		}
 		before[v] = true
 		var apart []int // what a constraint on v can be free of
 		for u := range h.Len() {
-			if before[u] && u != v && !h.HasArrow(u, v) && !slices.Contains(h.Siblings[v], u) && !separable(h, u, v) {
-				apart = append(apart, u)
+			if before[u] && u != v && !h.HasArrow(u, v) && !slices.Contains(h.Siblings[v], u) {
+				budget.spend(h, 3)
+				if !separable(h, u, v) {
+					apart = append(apart, u)
+				}
 			}
 		}
 		if len(apart) == 0 {
@@ -53,7 +60,7 @@ func Functionals(g *graph.Graph) (all []Functional, more bool) {
 			f := queue[0]
 			if k := fmt.Sprint(f.set); seen[k] {
 				continue
-			} else if len(seen) == functionalSteps {
+			} else if len(seen) == functionalSteps || budget.spent() {
 				more = true
 				break
 			} else {
@@ -73,6 +80,7 @@ func Functionals(g *graph.Graph) (all []Functional, more bool) {
 			}
 			inside := h.Keep(func(from, to int) bool { return f.set[from] && f.set[to] }, nil)
 			for w, in := range f.set {
+				budget.spend(h, 2)
 				below := inside.Descendants(w)
 				if !in || below[v] {
 					continue

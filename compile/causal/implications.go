@@ -83,28 +83,27 @@ const basisSets = 64 // ancestral sets looked at for one variable
 func Basis(g *graph.Graph) (basis []Independence, more bool) {
 	p := Project(g)
 	h := p.Graph
-	var before []int
+	before := make([]bool, h.Len()) // ancestral: along the arrows
+	budget := 2 * searchBudget
 	for _, v := range h.Order {
-		before = append(before, v)
+		before[v] = true
 		if h.Computed[v] {
 			continue
 		}
-		start := ancestorsWithin(h, before, everything(h))
-		for v := range start {
-			start[v] = slices.Contains(before, v)
-		}
+		start := slices.Clone(before)
 		seen := map[string]bool{}
 		var found []Independence
 		for queue := [][]bool{start}; len(queue) > 0; queue = queue[1:] {
 			set := queue[0]
 			if k := fmt.Sprint(set); seen[k] {
 				continue
-			} else if len(seen) == basisSets {
+			} else if len(seen) == basisSets || len(seen) > 0 && budget.spent() {
 				more = true
 				break
 			} else {
 				seen[k] = true
 			}
+			budget.spend(h, 4)
 			given := shield(h, v, set)
 			known := fixed(h, mark(h.Len(), given))
 			var apart []int

@@ -3,6 +3,8 @@ package causal
 import (
 	"fmt"
 	"math"
+	"math/bits"
+	"math/rand/v2"
 
 	"arrowroot/compile/graph"
 )
@@ -13,20 +15,19 @@ type Tetrad struct {
 	A, B, C, D int
 }
 
-const tetradQuartets = 4000 // sets of four variables looked at
+const tetradQuartets = 5_000_000 // sets of four variables looked at
 
 // Tetrads lists the tetrads that vanish in every linear model of the graph,
 // at most max (0 = 1000): one node lies on all treks between the two pairs
 // (Sullivant, Talaska & Draisma 2010). A tetrad of which both products are zero
-// is left out, being no more than independences.
+// is left out, being no more than independences. Those that do not vanish in
+// one model are told apart by it first, which costs next to nothing.
 func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
 	max = limit(max, 1000)
 	named, _ := nameArcs(g)
 	nodes := list(available(g))
-	related := make([][]bool, g.Len())
-	for _, v := range nodes {
-		related[v] = reachable(named, []int{v}, make([]bool, named.Len()), make([]bool, named.Len()))
-	}
+	cov := residueModel(named)
+	budget := searchBudget
 	looked := 0
 	for i, a := range nodes {
 		for j, b := range nodes[i+1:] {
@@ -36,11 +37,11 @@ func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
 						return all, true
 					}
 					for _, t := range []Tetrad{{a, b, c, d}, {a, c, b, d}, {a, d, b, c}} {
-						first, second := related[t.A][t.C] && related[t.B][t.D], related[t.A][t.D] && related[t.B][t.C]
-						if !first && !second || treks(named, t) > 1 {
+						first := timesResidue(cov[t.A][t.C], cov[t.B][t.D])
+						if first == 0 || first != timesResidue(cov[t.A][t.D], cov[t.B][t.C]) || treks(named, t) > 1 {
 							continue
 						}
-						if len(all) == max {
+						if len(all) == max || !budget.spend(named, 30) {
 							return all, true
 						}
 						all = append(all, t)
@@ -50,6 +51,43 @@ func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
 		}
 	}
 	return all, false
+}
+
+// residuePrime is the modulus of a model in which what is zero is zero exactly.
+const residuePrime = 1<<61 - 1
+
+func timesResidue(a, b uint64) uint64 {
+	high, low := bits.Mul64(a, b)
+	return bits.Rem64(high, low, residuePrime)
+}
+
+// residueModel gives the covariances of one linear model of the graph, whose
+// coefficients and variances are residues modulo a prime. What is zero in
+// every model is zero in it; what is not is very rarely so (Schwartz 1980), and
+// zero in it is never taken for proof. All of its nodes have errors of their own,
+// computed ones too, as their laws need not be linear.
+func residueModel(g *graph.Graph) [][]uint64 {
+	r := rand.New(rand.NewPCG(1904, 1980)) // fixed: the answer depends on the graph alone
+	draw := func() uint64 { return 1 + r.Uint64N(residuePrime-1) }
+	cov := make([][]uint64, g.Len())
+	for v := range cov {
+		cov[v] = make([]uint64, g.Len())
+	}
+	var earlier []int
+	for _, v := range g.Order {
+		for _, p := range g.Parents[v] {
+			b := draw()
+			for _, w := range earlier {
+				cov[v][w] = (cov[v][w] + timesResidue(b, cov[p][w])) % residuePrime
+			}
+		}
+		for _, w := range earlier {
+			cov[w][v] = cov[v][w]
+		}
+		earlier = append(earlier, v)
+		cov[v][v] = draw() // its error can bring its variance to anything
+	}
+	return cov
 }
 
 // treks counts, up to two, treks from A and B to C and D no two of which share
