@@ -20,6 +20,7 @@ const layers = `
 !compile/ops      : compile/kernel
 !compile/catalog  : compile/kernel
 !infer/summary    : infer
+!infer/score      :
 !compile/model    : compile/study compile/graph compile/formula compile/table compile/catalog compile/causal compile/kernel
 !compile/density  : compile/ops compile/kernel compile/catalog compile/formula compile/model
 !compile/effect   : compile/catalog compile/formula compile/model compile/graph compile/causal compile/study
