@@ -104,7 +104,7 @@ func (b *builder) elsewhere(outcome *Variable) []Repair {
 func (b *builder) scales() {
 	for _, v := range b.model.Variables {
 		c := b.columns[v.ID]
-		if c.values == nil || c.computed != nil {
+		if c == nil || c.values == nil || c.computed != nil {
 			continue
 		}
 		low, high := extent(v.Values)
