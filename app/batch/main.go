@@ -26,6 +26,7 @@ const usage = `use: batch VERB [flags] STUDY.arrowroot
 verbs
   read       what follows from the arrows: paths, what to hold, whether the effect can be had
   validate   what is wrong with the study, its laws and its data
+  check      what the arrows promise against the data: independences, other constraints, negative controls
   fit        the posterior of every quantity, with trust
   effect     the question's contrast: crude, held, full model
   report     one HTML file with verdict, figure, statement, result and limits
@@ -85,7 +86,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 		return wrongUse
 	}
 	verbs := map[string]func(context.Context, *job) (any, error){
-		"read": read, "validate": validate, "fit": fitVerb, "effect": effectVerb, "report": reportVerb,
+		"read": read, "validate": validate, "check": check, "fit": fitVerb, "effect": effectVerb, "report": reportVerb,
 	}
 	verb := verbs[opt.verb]
 	if verb == nil {

@@ -110,9 +110,11 @@ func TestFieldsAreAlwaysThere(t *testing.T) {
 			"paths.0.path paths.0.nodes paths.0.kind paths.0.open paths.0.closedAt paths.0.closedWhy paths.0.openedAt " +
 			"question.exposure question.outcome question.effect question.from question.to question.shift question.held question.over question.as question.level",
 		"validate": "problems",
+		"check":    "rival summary method level rows contradicted independences functionalConstraints tetrads negativeControls neverTested leftOut",
 		"fit": "rival question seed rows rows.used rows.read rows.lost trust trust.verdict trust.reasons quantities run run.chains run.draws run.divergent run.gradients run.warmUpGradients given statement typed cut quantities.0.symbol " +
 			under("quantities.0.", number),
 		"effect": "rival question seed answer identified noEffectDrawn refusal heldSet heldProposed heldIsEnough lawsDisagree headline crudeRefusal heldRefusal rows trust run cut " +
+			"howWrong.sentences howWrong.robustness howWrong.noRobustness howWrong.eValue howWrong.noEValue howWrong.benchmarks howWrong.noBenchmarks " +
 			"full.association full.over " + under("crude.", number) + under("held.", number) + under("full.", number) + under("full.expectedFrom.", number) + under("full.expectedTo.", number),
 	} {
 		status, answer, messages := batch(context.Background(), t, verb, "-draws", "20", file)

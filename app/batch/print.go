@@ -225,6 +225,7 @@ type effectOut struct {
 	Rows         rowsOut      `json:"rows"`
 	Trust        trustOut     `json:"trust"`
 	Run          runOut       `json:"run"`
+	HowWrong     *howWrongOut `json:"howWrong"`
 	Cut          bool         `json:"cut"`
 }
 
@@ -236,7 +237,7 @@ func printEffect(j *job, r *fit.Result) *effectOut {
 		HeldSet: e.Held, HeldProposed: e.HeldProposed, HeldEnough: e.HeldValid, LawsDisagree: e.LawsDisagree,
 		Headline: "none", Crude: printNumber("crude", e.Crude), Held: printNumber("held", e.Adjusted), Full: printNumber("full", e.Full),
 		Rows: printRows(r.Full.Model.Rows), Trust: printTrust(r.Trust()),
-		Run: printRun(r.Full), Cut: r.Cut || e.Cut,
+		Run: printRun(r.Full), HowWrong: printHowWrong(e), Cut: r.Cut || e.Cut,
 	}
 	if out.HeldSet == nil {
 		out.HeldSet = []string{}

@@ -9,6 +9,7 @@ import (
 	"arrowroot/compile/effect"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
+	"arrowroot/compile/sensitivity"
 	"arrowroot/infer"
 	"arrowroot/infer/summary"
 )
@@ -28,6 +29,11 @@ type Effect struct {
 	// number. Adjusted is the held number; Refusal speaks of Full.
 	Crude, Adjusted, Full                  *Number
 	CrudeRefusal, AdjustedRefusal, Refusal string
+
+	// How strong an unmeasured cause would have to be to explain the answer
+	// away; nil with a reason.
+	Sensitivity   *sensitivity.Result
+	NoSensitivity string
 
 	Notes []string
 }
@@ -119,6 +125,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		gap := math.Abs(e.Full.Centre - e.Adjusted.Centre)
 		e.LawsDisagree = gap > disagreement*math.Hypot(e.Full.Spread, e.Adjusted.Spread)
 	}
+	e.howWrong(q, full.Model)
 	return e, nil
 }
 

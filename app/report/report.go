@@ -44,6 +44,7 @@ type content struct {
 	Verdict, Way           string
 	Figure                 template.HTML
 	Answer                 []string
+	HowWrong               []string
 	Plots                  template.HTML
 	Statement              []statementLine
 	Quantities             []row
@@ -104,6 +105,7 @@ func contentOf(in Input) (*content, error) {
 	if r := in.Result; r != nil {
 		c.Fitted, c.Seed = true, r.Seed
 		c.Answer = words.Effect(in.Study, r)
+		c.HowWrong = words.HowWrong(r.Effect)
 		c.Trust = r.Trust().String()
 		c.Rows = words.Rows(r.Full.Model.Rows)
 		c.Statement = statementOf(r.Full.Model)
