@@ -87,8 +87,12 @@ func (x *details) law(s *sheaf, v *study.Variable) {
 		standard = "by its scale: " + usual.Name
 	}
 	options, chosen := []string{standard}, standard
+	scale := v.Scale
+	if scale == "" {
+		scale = study.Real
+	}
 	for _, f := range catalog.Families() {
-		if f.Predicted >= 0 && suits(f, v.Scale) {
+		if f.Predicted >= 0 && model.Suits(f, scale) {
 			options = append(options, f.Name)
 		}
 	}
@@ -259,23 +263,6 @@ func caretOf(text string, at formula.Span, message string) []span {
 	}
 }
 
-// suits reports whether a family can be the law of a variable of a scale.
-func suits(f *catalog.Family, scale study.Scale) bool {
-	switch scale {
-	case study.Positive:
-		return f.Support == catalog.Positives || f.Support == catalog.NonNegatives || f.Support == catalog.Reals
-	case study.Proportion:
-		return f.Support == catalog.Unit || f.Support == catalog.Reals || f.Support == catalog.UpTo
-	case study.Count:
-		return f.Support == catalog.Counts || f.Support == catalog.UpTo || f.Support == catalog.Reals
-	case study.Binary:
-		return f.Support == catalog.ZeroOne
-	case study.Category, study.Ordered:
-		return f.Support == catalog.Levels
-	}
-	return f.Support != catalog.Levels
-}
-
 // with is a set of words with one put in or taken out.
 func with(set []string, word string, on bool) []string {
 	out := slices.DeleteFunc(slices.Clone(set), func(w string) bool { return w == word })
@@ -329,6 +316,7 @@ func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 		}
 	} else {
 		s.add(newProse(sizeSmall, span{text: shapeWords(p), token: tokenMuted}))
+		x.vector(s, d.view.Model, p)
 	}
 	if p.Shape == model.ByPlate {
 		return // its prior is the law of the levels: mean and spread stand by themselves
@@ -477,7 +465,6 @@ func (x *details) data(s *sheaf, v *study.Variable) {
 	if !v.Unmeasured {
 		x.column(s, v, t)
 	}
-	x.recording(s, v, t)
 	scales := make([]string, 0, len(study.Scales))
 	for _, sc := range study.Scales {
 		scales = append(scales, string(sc))
@@ -512,6 +499,7 @@ func (x *details) data(s *sheaf, v *study.Variable) {
 			}
 		})
 	})
+	x.recording(s, v)
 }
 
 func (x *details) column(s *sheaf, v *study.Variable, t *table.Table) {

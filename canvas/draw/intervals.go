@@ -3,12 +3,14 @@ package draw
 import "math"
 
 // An Interval is one line of Intervals: a point with an inner and an outer
-// interval; the inner one is left out if it is empty.
+// interval; the inner one is left out if it is empty. A prior interval stands
+// dashed below it; with Mid not a number it stands alone.
 type Interval struct {
 	Label               string
 	Mid                 float64
 	Low, High           float64
 	InnerLow, InnerHigh float64
+	PriorLow, PriorHigh float64
 	Words               string // printed at the right, "1.17 (1.05 to 1.31)"
 	Faint               bool   // not to be trusted, or for comparison only
 }
@@ -18,6 +20,9 @@ const IntervalRow = 24
 
 // IntervalsHeight is the height that Intervals needs for so many rows.
 func IntervalsHeight(rows int) float64 { return float64(rows)*IntervalRow + 24 }
+
+// seen reports whether there is a point to show, not only a prior.
+func (r *Interval) seen() bool { return !math.IsNaN(r.Mid) }
 
 // Intervals draws labelled intervals under one another over one axis. ref, if
 // not nil, is a value worth a line, such as 0 or 1.
@@ -31,7 +36,12 @@ func Intervals(width, height float64, rows []Interval, ref *float64, s Style) *L
 	for _, r := range rows {
 		labels = max(labels, Measure(r.Label, Regular, s.size()+1))
 		words = max(words, Measure(r.Words, Regular, s.size()+1))
-		from, to = min(from, r.Low, r.Mid), max(to, r.High, r.Mid)
+		if r.seen() {
+			from, to = min(from, r.Low, r.Mid), max(to, r.High, r.Mid)
+		}
+		if r.PriorLow < r.PriorHigh {
+			from, to = min(from, r.PriorLow), max(to, r.PriorHigh)
+		}
 	}
 	if ref != nil {
 		from, to = min(from, *ref), max(to, *ref)
@@ -59,8 +69,18 @@ func Intervals(width, height float64, rows []Interval, ref *float64, s Style) *L
 			ink, accent = s.Muted, s.Muted
 		}
 		text := y + Drop(s.size()+1)
+		l.Add(&Text{At: Point{8, text}, Text: Shorten(r.Label, Regular, s.size()+1, labels), Size: s.size() + 1, Color: ink})
+		if r.PriorLow < r.PriorHigh {
+			below := y
+			if r.seen() {
+				below += 6
+			}
+			l.Add(&Shape{Path: Polyline(Point{x.at(r.PriorLow), below}, Point{x.at(r.PriorHigh), below}), Stroke: s.Muted, Width: 1.2, Dash: []float64{4, 3}})
+		}
+		if !r.seen() {
+			continue
+		}
 		l.Add(
-			&Text{At: Point{8, text}, Text: Shorten(r.Label, Regular, s.size()+1, labels), Size: s.size() + 1, Color: ink},
 			&Shape{Path: Polyline(Point{x.at(r.Low), y}, Point{x.at(r.High), y}), Stroke: accent, Width: 1.5},
 		)
 		if r.InnerLow < r.InnerHigh {
