@@ -3,13 +3,14 @@ package fit
 import (
 	"context"
 	"errors"
+	"fmt"
 	"math"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/effect"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
-	"arrowroot/compile/sensitivity"
+	"arrowroot/compile/study"
 	"arrowroot/infer"
 	"arrowroot/infer/summary"
 )
@@ -29,11 +30,6 @@ type Effect struct {
 	// number. Adjusted is the held number; Refusal speaks of Full.
 	Crude, Adjusted, Full                  *Number
 	CrudeRefusal, AdjustedRefusal, Refusal string
-
-	// How strong an unmeasured cause would have to be to explain the answer
-	// away; nil with a reason.
-	Sensitivity   *sensitivity.Result
-	NoSensitivity string
 
 	Notes []string
 }
@@ -70,19 +66,10 @@ const stopped = "the run was stopped before it was computed"
 
 func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, watch func(infer.Progress)) (*Effect, error) {
 	q := req.question()
-	x, y := g.Index(q.Exposure), g.Index(q.Outcome)
-	reading := Read(g, &q, 1, 0)
+	claim := claimed(g, &q)
 	e := &Effect{
-		Identified: reading.Identifiable || !reading.Effect, None: !reading.Effect,
-		Held: q.Held, HeldValid: reading.HeldValid,
-	}
-	if q.Held == nil && len(reading.Sets) > 0 {
-		best := reading.Sets[max(reading.Precise, 0)]
-		e.HeldProposed, e.HeldValid = true, true
-		e.Held = []string{}
-		for _, v := range best {
-			e.Held = append(e.Held, g.Names[v])
-		}
+		Identified: claim.identified, None: claim.none,
+		Held: claim.held, HeldProposed: claim.proposed, HeldValid: claim.heldValid, Notes: claim.notes,
 	}
 	held := q
 	held.Held = e.Held
@@ -94,10 +81,12 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 	defer cancel()
 	one := &oneLaw{req: req, full: full, watch: watch}
 	var err error
-	if e.Crude, e.CrudeRefusal, err = one.number(ctx, late, q, model.Crude, "crude"); err != nil {
+	if direct(&q) {
+		e.CrudeRefusal = "not for a direct effect, since the outcome's law on the exposure alone does not read what is fixed"
+	} else if e.Crude, e.CrudeRefusal, err = one.number(ctx, late, q, model.Crude, "crude"); err != nil {
 		return nil, err
 	}
-	if len(held.Held) > 0 {
+	if len(held.Held) > 0 || direct(&q) {
 		if e.Adjusted, e.AdjustedRefusal, err = one.number(ctx, late, held, model.Held, "held"); err != nil {
 			return nil, err
 		}
@@ -109,12 +98,12 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		}
 	}
 	if e.Crude != nil {
-		e.Crude.Association = e.None || !causal.ValidAdjustment(g, x, y, nil)
+		e.Crude.Association = e.None || !claim.crudeValid
 	}
 	if e.Adjusted != nil {
 		e.Adjusted.Association = e.None || !e.HeldValid
 	}
-	if err := e.simulate(late, req, g, reading, full); err != nil {
+	if err := e.simulate(late, req, g, claim, full); err != nil {
 		return nil, err
 	}
 	e.Cut = full.Cut || ctx.Err() != nil
@@ -125,34 +114,27 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		gap := math.Abs(e.Full.Centre - e.Adjusted.Centre)
 		e.LawsDisagree = gap > disagreement*math.Hypot(e.Full.Spread, e.Adjusted.Spread)
 	}
-	e.howWrong(q, full.Model)
 	return e, nil
 }
 
 // simulate fills in the full model's number, or why there is none.
-func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, reading *causal.Reading, full *Fitted) error {
+func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, claim *claims, full *Fitted) error {
 	q := req.question()
-	kind, district, reason := causal.InterventionCase(g, g.Index(q.Exposure), g.Index(q.Outcome))
+	x, y := g.Index(q.Exposure), g.Index(q.Outcome)
+	kind, districts, reason := effect.Districts(causal.AsFitted(g, x, y), &q, y)
 	var c *effect.Contrast
 	var err error
 	switch {
 	case e.None:
 		c, err = effect.NoChange(ctx, full.Model, q, full.Pooled(), source(req, "full"), options(req))
 	case !e.Identified:
-		e.Refusal = "not identified: " + reading.Verdict.Sentence
-		if reading.Verdict.Way != "" {
-			e.Refusal += " " + reading.Verdict.Way
-		}
+		e.Refusal = "not identified: " + claim.why
 		return nil
 	case kind == causal.NotSimulated:
 		e.Refusal = "identified; not computed by this version: " + reason
 		return nil
 	default:
-		names := make([]string, len(district))
-		for i, v := range district {
-			names[i] = g.Names[v]
-		}
-		c, err = effect.Simulate(ctx, full.Model, kind, names, q, full.Pooled(), source(req, "full"), options(req))
+		c, err = effect.Simulate(ctx, full.Model, kind, districts, q, full.Pooled(), source(req, "full"), options(req))
 	}
 	var not *effect.NotSimulated
 	switch {
@@ -164,6 +146,9 @@ func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, rea
 		return err
 	default:
 		e.Full, e.Refusal = number(c, full, req, q.Exposure+" → "+q.Outcome+", full model")
+		if q.Groups == study.NewGroups && len(c.New) == 0 && !e.None {
+			e.Notes = append(e.Notes, fmt.Sprintf("nothing on the way from %s to %s varies by a plate, so new groups are like these", q.Exposure, q.Outcome))
+		}
 	}
 	return nil
 }

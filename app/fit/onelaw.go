@@ -31,13 +31,19 @@ func (o *oneLaw) number(ctx, late context.Context, q study.Question, kind model.
 		return nil, stopped, nil
 	}
 	fitted := q
+	if direct(&q) { // what is fixed stands in the law beside the exposure
+		fitted.Held = slices.Clone(q.Held)
+		for _, f := range q.Fixed {
+			fitted.Held = append(fitted.Held, f.Variable)
+		}
+	}
 	computed := computedFrom(o.full.Model, q.Outcome)
 	if computed != nil {
 		if len(computed.roots) != 1 || computed.roots[0] == q.Exposure {
 			return nil, fmt.Sprintf("%s is computed from %s, so that no single law of it can be fitted", q.Outcome, strings.Join(computed.roots, " and ")), nil
 		}
 		fitted.Outcome, fitted.OutcomeLevels = computed.roots[0], nil
-		if slices.Contains(q.Held, fitted.Outcome) {
+		if slices.Contains(fitted.Held, fitted.Outcome) {
 			return nil, fmt.Sprintf("holding %s leaves nothing of %s to change", fitted.Outcome, q.Outcome), nil
 		}
 	}

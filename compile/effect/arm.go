@@ -77,12 +77,27 @@ type target struct {
 // A plan says what changes, in which order, when the exposure is set, so far
 // as the targets read it. Variables that do not change keep their row values.
 type plan struct {
-	exposure int    // none = nothing is set
-	observed []bool // laws of these variables read the exposure as it was observed (SEMANTICS B2 b)
+	exposure int // none = nothing is set
+	pins     []pin
 	steps    []step // what targets and other steps read
 	random   int    // steps that are simulated
 	targets  []target
 	parts    int // of all targets
+}
+
+// A pin is a variable that is set: the exposure, which differs between arms,
+// or what a controlled direct effect fixes. Some laws go on reading the value
+// that it would have had: as it was observed, or as it follows from what else
+// is set (SEMANTICS B2 b).
+type pin struct {
+	variable int
+	at       float64 // not of the exposure
+	observed []bool  // by variable: its law reads the value that this one would have had
+}
+
+// pinned finds the pin of a variable; -1 if it is not set.
+func (p *plan) pinned(variable int) int {
+	return slices.IndexFunc(p.pins, func(q pin) bool { return q.variable == variable })
 }
 
 // none stands for no variable.
@@ -117,19 +132,29 @@ func newPlanner(m *model.Model) (*planner, error) {
 	return p, nil
 }
 
-// plan lists what changes between the exposure and the targets. District holds
-// the variables whose laws read the observed exposure. With alone, no law but
-// the targets' is used: variables in between keep their values.
-func (p *planner) plan(exposure int, district []int, alone bool, targets ...target) (*plan, error) {
-	out := &plan{exposure: exposure, observed: make([]bool, len(p.m.Variables))}
+// pin sets a variable; district holds those whose laws read the value that it
+// would have had.
+func (p *planner) pin(variable int, at float64, district []int) pin {
+	out := pin{variable: variable, at: at, observed: make([]bool, len(p.m.Variables))}
 	for _, v := range district {
-		out.observed[v] = v != exposure
+		out.observed[v] = v != variable
 	}
-	changed := map[int]bool{exposure: exposure != none}
+	return out
+}
+
+// plan lists what changes between what is set, the exposure first, and the
+// targets. With alone, no law but the targets' is used: variables in between
+// keep their values.
+func (p *planner) plan(pins []pin, alone bool, targets ...target) (*plan, error) {
+	out := &plan{exposure: none, pins: pins}
+	if len(pins) > 0 {
+		out.exposure = pins[0].variable
+	}
+	changed := make(map[int]bool)
 	var visit func(v int) bool
 	follow := func(v int) (moved bool) { // adds the steps that v reads
 		for _, r := range p.readsOf(v) {
-			if (r != exposure || !out.observed[v]) && visit(r) {
+			if k := out.pinned(r); k >= 0 && !pins[k].observed[v] || visit(r) {
 				moved = true
 			}
 		}
@@ -154,8 +179,8 @@ func (p *planner) plan(exposure int, district []int, alone bool, targets ...targ
 	}
 	for _, t := range targets {
 		id := p.m.Variables[t.variable].ID
-		if t.variable == exposure {
-			return nil, fmt.Errorf("%s cannot be exposure and outcome at once", id)
+		if out.pinned(t.variable) >= 0 {
+			return nil, fmt.Errorf("%s cannot be set and be the outcome at once", id)
 		}
 		t.law, t.computed = p.laws[t.variable], p.computed[t.variable]
 		if t.law == nil && t.computed == nil {
@@ -181,8 +206,9 @@ func (p *planner) readsOf(v int) []int {
 }
 
 // expectations are the names of arguments that are the expected value of one
-// unit: one trial of a binomial law.
-var expectations = []string{"mean", "rate", "probability"}
+// unit: one trial of a binomial law. A center and a direction stand in where
+// there is no expected value, or none on a line.
+var expectations = []string{"mean", "rate", "probability", "center", "direction"}
 
 // scaleOf says what is averaged of a variable: the probability of the levels
 // named, or its expectation, or (levels nil, law of levels) each level apart.

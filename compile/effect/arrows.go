@@ -44,12 +44,12 @@ func (p *planner) arrow(ctx context.Context, parent, child int, draws [][]float6
 	if err != nil {
 		return nil, err
 	}
-	plan, err := p.plan(parent, nil, true, target{variable: child, scale: s})
+	plan, err := p.plan([]pin{p.pin(parent, 0, nil)}, true, target{variable: child, scale: s})
 	if err != nil {
 		return nil, err
 	}
 	out := &ArrowEffect{From: from.ID, To: to.ID, Unsigned: s.parts() > 1}
-	sim := &simulation{planner: p, plan: plan, draws: draws, opt: opt.share()}
+	sim := &simulation{planner: p, plan: plan, draws: draws, opt: opt.share(), every: true}
 	sim.summary = func(sides [][]float64) float64 { return change(s, sides[0], sides[1]) }
 
 	levels := levelsOf(from)
@@ -59,7 +59,7 @@ func (p *planner) arrow(ctx context.Context, parent, child int, draws [][]float6
 			sim.arms = append(sim.arms, arm{set: &x})
 		}
 	} else {
-		out.Low, out.High = central(rowsOf(p.m, 0).columns[parent])
+		out.Low, out.High = central(rowsOf(p.m, nil, 0).columns[parent])
 		out.Per = niceStep(from.High - from.Low)
 		sim.arms = []arm{{set: &out.Low}, {set: &out.High}, {}, {shift: out.Per}}
 	}

@@ -14,19 +14,18 @@ import (
 
 // Simulate gives the contrast of a full model: expected outcomes with the
 // exposure set, what descends from it simulated from the fitted laws in order,
-// everything else at row values (SEMANTICS B1–B7). The case and the members of
-// the exposure's district, by variable ID, come from causal.InterventionCase;
-// in case (c) the error is a *NotSimulated. Rows are the fitted ones; for a
-// question about a population like these, each draw weighs the outermost
-// groups by a Bayesian bootstrap. The same source gives the same values.
-func Simulate(ctx context.Context, m *model.Model, c causal.Case, district []string, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
+// everything else at row values (SEMANTICS B1–B7). What a controlled direct
+// effect fixes is set together with the exposure. The case and the districts
+// come from Districts; in case (c) the error is a *NotSimulated. Rows are the
+// fitted ones, or those of them that the question asks about; for a question
+// about a population like these, each draw weighs the outermost groups by a
+// Bayesian bootstrap; for one about new groups, what varies by a plate is drawn
+// anew. The same source gives the same values.
+func Simulate(ctx context.Context, m *model.Model, c causal.Case, districts map[string][]string, q study.Question, draws [][]float64, src rand.Source, opt Options) (*Contrast, error) {
 	if c == causal.NotSimulated {
 		return nil, &NotSimulated{q.Exposure, q.Outcome}
 	}
-	if c != causal.ObservedForDistrict {
-		district = nil
-	}
-	return contrast(ctx, m, district, q, draws, src, opt, false)
+	return contrast(ctx, m, districts, q, draws, src, opt, false)
 }
 
 // FromLaw gives the contrast of a held or crude model: the outcome's law with
@@ -61,7 +60,7 @@ func NoChange(ctx context.Context, m *model.Model, q study.Question, draws [][]f
 	if !ok {
 		return nil, &unknownError{q.Outcome}
 	}
-	c, err := p.compare(ctx, none, outcome, nil, [2]arm{}, q, draws, src, opt, false)
+	c, err := p.compare(ctx, nil, outcome, [2]arm{}, q, draws, src, opt, false)
 	if err != nil {
 		return nil, err
 	}
@@ -76,7 +75,7 @@ func NoChange(ctx context.Context, m *model.Model, q study.Question, draws [][]f
 	return c, nil
 }
 
-func contrast(ctx context.Context, m *model.Model, district []string, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
+func contrast(ctx context.Context, m *model.Model, districts map[string][]string, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
 	p, err := newPlanner(m)
 	if err != nil {
 		return nil, err
@@ -89,16 +88,38 @@ func contrast(ctx context.Context, m *model.Model, district []string, q study.Qu
 	if err != nil {
 		return nil, err
 	}
-	return p.compare(ctx, exposure, outcome, p.indices(district), [2]arm{from, to}, q, draws, src, opt, alone)
+	pins, err := p.pins(exposure, districts, &q)
+	if err != nil {
+		return nil, err
+	}
+	return p.compare(ctx, pins, outcome, [2]arm{from, to}, q, draws, src, opt, alone)
+}
+
+// pins sets the exposure and what the question fixes. What no law reads need
+// not be set.
+func (p *planner) pins(exposure int, districts map[string][]string, q *study.Question) ([]pin, error) {
+	out := []pin{p.pin(exposure, 0, p.indices(districts[q.Exposure]))}
+	for _, f := range q.Fixed {
+		v, ok := p.variables[f.Variable]
+		if !ok {
+			continue
+		}
+		at, err := setting(p.m.Variables[v], &f.At)
+		if err != nil {
+			return nil, err
+		}
+		out = append(out, p.pin(v, *at, p.indices(districts[f.Variable])))
+	}
+	return out, nil
 }
 
 // compare averages the outcome under two arms.
-func (p *planner) compare(ctx context.Context, exposure, outcome int, district []int, arms [2]arm, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
+func (p *planner) compare(ctx context.Context, pins []pin, outcome int, arms [2]arm, q study.Question, draws [][]float64, src rand.Source, opt Options, alone bool) (*Contrast, error) {
 	s, err := p.scaleOf(outcome, q.OutcomeLevels)
 	if err != nil {
 		return nil, err
 	}
-	plan, err := p.plan(exposure, district, alone, target{variable: outcome, scale: s})
+	plan, err := p.plan(pins, alone, target{variable: outcome, scale: s})
 	if err != nil {
 		return nil, err
 	}
@@ -107,7 +128,7 @@ func (p *planner) compare(ctx context.Context, exposure, outcome int, district [
 	}
 	sim := &simulation{
 		planner: p, plan: plan, arms: arms[:], draws: draws, opt: opt,
-		bootstrap: q.Over == study.PopulationAlike,
+		bootstrap: q.Over == study.PopulationAlike, newGroups: q.Groups == study.NewGroups, byGroups: q.Weigh == study.ByGroups,
 		summary: func(sides [][]float64) float64 {
 			if q.As == study.Ratio {
 				return sides[1][0] / sides[0][0]
@@ -118,7 +139,7 @@ func (p *planner) compare(ctx context.Context, exposure, outcome int, district [
 	if err := sim.run(ctx, src); err != nil {
 		return nil, err
 	}
-	c := &Contrast{Values: sim.values, Draws: sim.picked, Rows: sim.rows.n, Error: sim.noise, Words: sim.words()}
+	c := &Contrast{Values: sim.values, Draws: sim.picked, Rows: sim.rows.n, Error: sim.noise, Words: sim.words(), New: sim.freshPlates()}
 	for i := range sim.values {
 		c.Expected.From = append(c.Expected.From, sim.mean(i, 0)[0])
 		c.Expected.To = append(c.Expected.To, sim.mean(i, 1)[0])

@@ -99,7 +99,7 @@ func TestLinearGaussian(t *testing.T) {
 		s.law("M", "normal", "0.6 * X", "1")
 		s.law("Y", "normal", "b * X + c * M", "1")
 		q := ask("X", "Y", 0, 1)
-		got, err := Simulate(context.Background(), s.m, causal.ObservedForDistrict, []string{"X", "Y"}, q, s.draws(1), source(), Options{})
+		got, err := Simulate(context.Background(), s.m, causal.ObservedForDistrict, map[string][]string{"X": {"X", "Y"}}, q, s.draws(1), source(), Options{})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -163,14 +163,15 @@ func TestFrontDoorTable(t *testing.T) {
 		name            string
 		carried         bool
 		kind            causal.Case
+		districts       map[string][]string
 		smoker, another float64
 	}{
-		{"rule (b)", true, causal.ObservedForDistrict, 0.4525, 0.4975},
-		{"drawn laws", false, causal.PinAndSimulate, 0.7765, 0.1735},
-		{"pinned carriers", true, causal.PinAndSimulate, 0.8525, 0.0975},
+		{"rule (b)", true, causal.ObservedForDistrict, map[string][]string{"smoke": {"smoke", "cancer"}}, 0.4525, 0.4975},
+		{"drawn laws", false, causal.PinAndSimulate, nil, 0.7765, 0.1735},
+		{"pinned carriers", true, causal.PinAndSimulate, nil, 0.8525, 0.0975},
 	} {
 		s := build(c.carried)
-		got, err := Simulate(context.Background(), s.m, c.kind, []string{"smoke", "cancer"}, ask("smoke", "cancer", 0, 1), s.draws(300), source(), Options{Budget: 2e6})
+		got, err := Simulate(context.Background(), s.m, c.kind, c.districts, ask("smoke", "cancer", 0, 1), s.draws(300), source(), Options{Budget: 2e6})
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -468,18 +469,5 @@ func TestWordsPlateMediatorsAndComputedOutcomes(t *testing.T) {
 	}
 	if _, err := FromLaw(context.Background(), s.m, ask("crop", "bees", 0, 1), s.draws(3), source(), Options{}); err == nil || err.Error() != "bees is not in this fit" {
 		t.Errorf("an outcome that is not there: %v", err)
-	}
-}
-
-func TestOutermostPlates(t *testing.T) {
-	m := &model.Model{Plates: []*model.Plate{
-		{Name: "field", Levels: make([]string, 4), Of: []int32{0, 1, 2, 3, 0, 1}},
-		{Name: "farm", Levels: make([]string, 2), Of: []int32{0, 0, 1, 1, 0, 0}},
-		{Name: "year", Levels: make([]string, 2), Of: []int32{0, 0, 0, 0, 1, 1}},
-		{Name: "holding", Levels: make([]string, 2), Of: []int32{1, 1, 0, 0, 1, 1}}, // farm by another name
-	}}
-	got := outermost(m)
-	if len(got) != 2 || got[0] != 1 || got[1] != 2 {
-		t.Errorf("outermost plates %v, want farm and year", got)
 	}
 }

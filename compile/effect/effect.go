@@ -2,9 +2,9 @@
 // (SEMANTICS B), and the change along each arrow and at each node that paints
 // the sheet (SEMANTICS G). Read the files in this order: effect.go (what comes
 // out), resolve.go, eval.go and expect.go (laws evaluated over rows, draw by
-// draw), arm.go (who moves when the exposure is set), contrast.go, simulation.go
-// and round.go (many draws, few replicates), population.go (weights), arrows.go,
-// nodes.go, words.go.
+// draw), arm.go (who moves when something is set), districts.go (what may be
+// set), contrast.go, simulation.go and round.go (many draws, few replicates),
+// population.go (weights), groups.go (new ones), arrows.go, nodes.go, words.go.
 //
 // A draw is the natural values of all parameters, in the order of
 // Model.Parameters, entries of vectors side by side (density.Quantities).
@@ -19,6 +19,7 @@ type Contrast struct {
 	Draws  []int     // which draws were used; all of them unless thinned
 	Rows   int       // rows averaged over
 	Words  string    // what was averaged over what: "over these 237 rows"
+	New    []string  // the plates whose levels were drawn anew; nil = none, or none on the way
 	Exact  bool      // no change, whatever the draws: no arrows lead from exposure to outcome
 	Error  float64   // simulation error of one draw's value (standard deviation); 0 = none was simulated
 }

@@ -27,15 +27,22 @@ func (s *rowset) units(plate int) int {
 	return n
 }
 
-// rowsOf takes every used row, or n of them evenly spaced if there are more.
-func rowsOf(m *model.Model, n int) *rowset {
+// rowsOf takes every used row, or those of a subset, or n of them evenly spaced
+// if there are more.
+func rowsOf(m *model.Model, asked *model.Subset, n int) *rowset {
 	all := m.Rows.Used
+	if asked != nil {
+		all = len(asked.Rows)
+	}
 	if n <= 0 || n > all {
 		n = all
 	}
 	pick := make([]int, n)
 	for i := range pick {
 		pick[i] = int(int64(i) * int64(all) / int64(n))
+		if asked != nil {
+			pick[i] = asked.Rows[pick[i]]
+		}
 	}
 	s := &rowset{n: n}
 	for _, p := range m.Plates {

@@ -2,15 +2,13 @@ package effect
 
 import (
 	"math/rand/v2"
-	"slices"
-
-	"arrowroot/compile/model"
 )
 
 // weigh gives every row its weight: alike, or by a Bayesian bootstrap (Rubin
-// 1981) of the outermost groups; crossed ones multiply (Owen 2007). For a
-// target at a plate's level the rows of one unit share what one unit gets:
-// it has one value, however many rows repeat it.
+// 1981) of the outermost groups; crossed ones multiply (Owen 2007). Weighed by
+// groups, the units of one group share what one group gets. For a target at a
+// plate's level the rows of one unit share what one unit gets: it has one
+// value, however many rows repeat it.
 func (b *bench) weigh(seed uint64) {
 	base := b.weights[0]
 	for i := range base {
@@ -26,9 +24,36 @@ func (b *bench) weigh(seed uint64) {
 		for i, unit := range b.rows.of[plate] {
 			weights[i] = base[i] / b.rows.counts[plate][unit]
 		}
+		if b.byGroups {
+			b.share(weights, b.rows.unitsWithin(plate, b.outer[0]))
+		}
 		normalise(weights)
 	}
+	if b.byGroups {
+		b.share(base, b.rows.counts[b.outer[0]])
+	}
 	normalise(base)
+}
+
+// share divides what each group gets among its units.
+func (b *bench) share(weights, units []float64) {
+	for i, g := range b.rows.of[b.outer[0]] {
+		weights[i] /= units[g]
+	}
+}
+
+// unitsWithin counts the levels of a plate that have a row here, by level of
+// an outer plate.
+func (s *rowset) unitsWithin(plate, outer int) []float64 {
+	out := make([]float64, len(s.counts[outer]))
+	seen := make([]bool, len(s.counts[plate]))
+	for i, unit := range s.of[plate] {
+		if !seen[unit] {
+			seen[unit] = true
+			out[s.of[outer][i]]++
+		}
+	}
+	return out
 }
 
 func (b *bench) resample(weights []float64, rng *rand.Rand) {
@@ -56,33 +81,4 @@ func normalise(weights []float64) {
 	for i := range weights {
 		weights[i] /= total
 	}
-}
-
-// outermost lists the plates that lie within no other plate.
-func outermost(m *model.Model) []int {
-	var out []int
-	for i, p := range m.Plates {
-		inside := false
-		for j, q := range m.Plates {
-			if i != j && within(p, q) && (j < i || !within(q, p)) {
-				inside = true
-			}
-		}
-		if !inside {
-			out = append(out, i)
-		}
-	}
-	return out
-}
-
-// within reports whether each level of p has all its rows in one level of q.
-func within(p, q *model.Plate) bool {
-	in := slices.Repeat([]int32{-1}, len(p.Levels))
-	for row, level := range p.Of {
-		if in[level] >= 0 && in[level] != q.Of[row] {
-			return false
-		}
-		in[level] = q.Of[row]
-	}
-	return true
 }

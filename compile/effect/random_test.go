@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"slices"
 	"testing"
 
 	"gonum.org/v1/gonum/mat"
@@ -21,10 +22,10 @@ import (
 // coefficients of the regression on their carriers (covariance algebra), and
 // wherever the case allows simulation, the contrast is the true total effect
 // (I − B)⁻¹ of the whole model, unmeasured variables included (SEMANTICS A1
-// and B2).
+// and B2); likewise the controlled direct effect with further variables fixed.
 func TestRandomDiagrams(t *testing.T) {
 	rng := rand.New(rand.NewPCG(17, 4))
-	simulated := map[causal.Case]int{}
+	simulated, direct := map[causal.Case]int{}, map[causal.Case]int{}
 	for trial := range 3000 {
 		n := 5 + rng.IntN(4)
 		door := trial%2 == 0
@@ -68,28 +69,46 @@ func TestRandomDiagrams(t *testing.T) {
 		if x == y || !g.Measured[x] || !g.Measured[y] || !g.Descendants(x)[y] {
 			continue
 		}
-		kind, district, _ := causal.InterventionCase(g, x, y)
-		simulated[kind]++
-		if kind == causal.NotSimulated {
-			continue
-		}
 		s := fittedLaws(t, g, x, &covariance)
-		var ids []string
-		for _, v := range district {
-			ids = append(ids, g.Names[v])
-		}
-		got, err := Simulate(context.Background(), s.m, kind, ids, ask(g.Names[x], g.Names[y], 0, 1), s.draws(1), source(), Options{})
-		if err != nil {
-			t.Fatal(err)
-		}
-		if want := total.At(y, x); math.Abs(got.Values[0]-want) > 1e-6 {
-			t.Errorf("trial %d, case %d, %s → %s in %v without %v: %.6f, want %.6f", trial, kind, g.Names[x], g.Names[y], spec.Arrows, spec.Unmeasured, got.Values[0], want)
+		// The total effect, and that with one or two further variables fixed:
+		// then nothing acts on them (a row of zeros in b).
+		for some := range 3 {
+			q, held := ask(g.Names[x], g.Names[y], 0, 1), mat.DenseCopyOf(b)
+			for range some {
+				if v := rng.IntN(n); v != x && v != y && g.Measured[v] && !slices.ContainsFunc(q.Fixed, func(f study.Fix) bool { return f.Variable == g.Names[v] }) {
+					q.Fixed = append(q.Fixed, study.Fix{Variable: g.Names[v], At: study.Setting{Number: 0.5}})
+					held.SetRow(v, make([]float64, n))
+				}
+			}
+			if some > 0 && q.Fixed == nil {
+				continue
+			}
+			kind, districts, _ := Districts(g, &q, y)
+			if some == 0 {
+				simulated[kind]++
+			} else {
+				direct[kind]++
+			}
+			if kind == causal.NotSimulated {
+				continue
+			}
+			got, err := Simulate(context.Background(), s.m, kind, districts, q, s.draws(1), source(), Options{})
+			if err != nil {
+				t.Fatal(err)
+			}
+			difference.Sub(eye(n), held)
+			if err := total.Inverse(&difference); err != nil {
+				t.Fatal(err)
+			}
+			if want := total.At(y, x); math.Abs(got.Values[0]-want) > 1e-6 {
+				t.Errorf("trial %d, case %d, %s → %s with %v fixed in %v without %v: %.6f, want %.6f", trial, kind, g.Names[x], g.Names[y], q.Fixed, spec.Arrows, spec.Unmeasured, got.Values[0], want)
+			}
 		}
 	}
-	t.Logf("diagrams by case: %v", simulated)
+	t.Logf("diagrams by case: %v, direct effects %v", simulated, direct)
 	for _, kind := range []causal.Case{causal.PinAndSimulate, causal.ObservedForDistrict, causal.NotSimulated} {
-		if simulated[kind] < 5 {
-			t.Errorf("only %d diagrams of case %d", simulated[kind], kind)
+		if simulated[kind] < 5 || direct[kind] < 5 {
+			t.Errorf("only %d diagrams and %d direct effects of case %d", simulated[kind], direct[kind], kind)
 		}
 	}
 }

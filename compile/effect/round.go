@@ -12,14 +12,28 @@ type bench struct {
 	weights  [][]float64 // of rows, for targets at the level of a row and then of each plate; nil where there are none
 	uniforms [][]float64 // per simulated step
 	changed  [][]float64 // per step: the column under the intervention
-	exposed  []float64
+	set      [][]float64 // per pin: the column under the intervention
+	would    [][]float64 // per pin: the column as it would have been
+	fitted   []float64   // the draw
+	drawn    []float64   // the draw with fresh groups; nil where groups are the fitted ones
+	groups   [][]float64 // uniforms, per fresh vector
 	part     []float64
 	sides    [][]float64 // a round's averages, by arm
 	plain    [][]float64 // likewise, without mirror images
 }
 
 func newBench(s *simulation) *bench {
-	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([][]float64, 1+len(s.m.Plates)), exposed: make([]float64, s.rows.n)}
+	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([][]float64, 1+len(s.m.Plates))}
+	for k, pin := range s.plan.pins {
+		b.set = append(b.set, make([]float64, s.rows.n))
+		b.would = append(b.would, nil)
+		for i := range b.set[k] {
+			b.set[k][i] = pin.at
+		}
+	}
+	for _, f := range s.fresh {
+		b.groups = append(b.groups, make([]float64, f.size))
+	}
 	for _, st := range s.plan.steps {
 		b.changed = append(b.changed, make([]float64, s.rows.n))
 		n := s.rows.n
@@ -47,18 +61,22 @@ func newBench(s *simulation) *bench {
 // asked for, with their mirror images (antithetic variates), which cancel what
 // is linear in the noise of mediators.
 func (b *bench) round(i, round int) {
-	b.w.draw = b.draws[b.picked[i]]
+	b.fitted = b.draws[b.picked[i]]
+	b.w.draw = b.fitted
 	b.weigh(b.seeds[i])
-	if b.plan.random > 0 {
+	if b.chance() {
 		rng := rand.New(rand.NewPCG(b.seeds[i], uint64(round)+1))
 		for _, u := range b.uniforms {
+			stratified(u, rng)
+		}
+		for _, u := range b.groups {
 			stratified(u, rng)
 		}
 	}
 	for a, arm := range b.arms {
 		clear(b.sides[a])
 		if b.plan.exposure != none {
-			arm.apply(b.exposed, b.rows.columns[b.plan.exposure])
+			arm.apply(b.set[0], b.rows.columns[b.plan.exposure])
 		}
 		for mirror := range b.mirrors {
 			b.expect(mirror == 1)
@@ -106,44 +124,51 @@ func stratified(u []float64, rng *rand.Rand) {
 // open is a uniform number strictly between 0 and 1.
 func open(rng *rand.Rand) float64 { return (float64(rng.Uint64()>>11) + 0.5) / (1 << 53) }
 
-// expect fills part with the targets' averages under the exposed column.
+// expect fills part with the targets' averages under the columns that are set.
 func (b *bench) expect(mirrored bool) {
 	w, p := b.w, b.plan
 	copy(w.columns, b.rows.columns)
-	if p.exposure != none {
-		w.columns[p.exposure] = b.exposed
+	for k, pin := range p.pins {
+		b.would[k] = b.rows.columns[pin.variable]
+	}
+	if len(b.fresh) > 0 {
+		b.regroup(mirrored)
 	}
 	for i, st := range p.steps {
+		b.look(st.variable)
 		if st.law == nil {
 			values := w.eval(st.computed)
 			for j := range b.changed[i] {
 				b.changed[i][j] = at(values, j)
 			}
 		} else {
-			b.look(st.variable)
 			w.simulate(b.changed[i], st.law, b.uniforms[i], mirrored)
 		}
-		w.columns[st.variable] = b.changed[i]
+		if k := p.pinned(st.variable); k >= 0 {
+			b.would[k] = b.changed[i]
+		} else {
+			w.columns[st.variable] = b.changed[i]
+		}
 	}
 	for _, t := range p.targets {
 		weights := b.weights[1+b.m.Variables[t.variable].Plate]
 		part := b.part[t.at : t.at+t.scale.parts()]
+		b.look(t.variable)
 		if t.computed != nil {
 			averageOf(part, w.eval(t.computed), weights)
 			continue
 		}
-		b.look(t.variable)
 		w.expected(part, t.law, t.scale, weights)
 	}
 }
 
-// look shows a law the exposure that it reads: as set, or as it was observed.
+// look shows a law what it reads of the variables that are set: the value they
+// are set to, or the one they would have had.
 func (b *bench) look(variable int) {
-	if b.plan.exposure == none {
-		return
-	}
-	b.w.columns[b.plan.exposure] = b.exposed
-	if b.plan.observed[variable] {
-		b.w.columns[b.plan.exposure] = b.rows.columns[b.plan.exposure]
+	for k, pin := range b.plan.pins {
+		b.w.columns[pin.variable] = b.set[k]
+		if pin.observed[variable] {
+			b.w.columns[pin.variable] = b.would[k]
+		}
 	}
 }

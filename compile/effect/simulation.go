@@ -7,6 +7,8 @@ import (
 	"math/rand/v2"
 	"runtime"
 	"sync"
+
+	"arrowroot/compile/model"
 )
 
 // Limits of simulation. A unit of work is one evaluation of a law at one row,
@@ -28,6 +30,7 @@ const (
 // is far from one (measured).
 var quantileWork = map[string]float64{
 	"Student t": 160, "gamma": 80, "beta": 80, "negative binomial": 50, "half-t": 160, "Poisson": 12, "binomial": 20,
+	"skew normal": 1500, "von Mises": 1500, "beta-binomial": 400, "inverse gamma": 80, "geometric": 12, "ordered probit": 12,
 }
 
 // A simulation evaluates one plan under several arms for many draws.
@@ -38,11 +41,15 @@ type simulation struct {
 	draws     [][]float64
 	opt       Options
 	bootstrap bool
+	newGroups bool // levels of plates are fresh ones (SEMANTICS B5)
+	every     bool // average over every used row, whatever the question asks about
+	byGroups  bool // each level of the outermost plate counts the same
 	// summary is the number whose simulation error is kept small, of the arms'
 	// parts. Nil: there is none, and rounds are chosen by the number of rows.
 	summary func(sides [][]float64) float64
 
-	outer   []int // outermost plates, for the bootstrap
+	outer   []int // outermost plates, for weights
+	fresh   []freshVector
 	rows    *rowset
 	picked  []int // draws used
 	seeds   []uint64
@@ -59,12 +66,19 @@ type simulation struct {
 // tells how many rounds of replicates keep the simulation error small beside
 // the posterior sd.
 func (s *simulation) run(ctx context.Context, src rand.Source) error {
+	if s.newGroups {
+		var err error
+		if s.fresh, err = s.freshOf(s.plan); err != nil {
+			return err
+		}
+	}
 	most := s.thin()
 	if s.rows.n == 0 || len(s.picked) == 0 {
 		return fmt.Errorf("there are no rows or no draws to average over")
 	}
-	if s.bootstrap {
-		s.outer = outermost(s.m)
+	s.outer = s.m.Outermost()
+	if s.byGroups && len(s.outer) != 1 {
+		return fmt.Errorf("groups can count the same only where one plate holds all others")
 	}
 	s.seeds = make([]uint64, len(s.picked))
 	for i := range s.seeds {
@@ -73,7 +87,7 @@ func (s *simulation) run(ctx context.Context, src rand.Source) error {
 	rounds := 1
 	s.mirrors = 2
 	switch {
-	case s.plan.random == 0:
+	case !s.chance():
 		s.mirrors = 1
 	case s.summary == nil:
 		rounds = min(most, max(1, enoughRows/s.rows.n))
@@ -109,6 +123,18 @@ func (n *noisiness) rounds() int {
 		return 1
 	}
 	return int(math.Min(math.MaxInt32, math.Ceil(ratio*ratio)))
+}
+
+// chance reports whether rounds differ: something is simulated, or groups are
+// drawn.
+func (s *simulation) chance() bool { return s.plan.random > 0 || len(s.fresh) > 0 }
+
+// asked is the subset that is averaged over; nil = every used row.
+func (s *simulation) asked() *model.Subset {
+	if s.every {
+		return nil
+	}
+	return s.m.Asked
 }
 
 // pilot runs two rounds of a few draws.
@@ -170,7 +196,7 @@ func (s *simulation) thin() (most int) {
 	}
 	work := float64(len(s.plan.targets))
 	perRow := float64(len(s.arms)) * work
-	if s.plan.random > 0 {
+	if s.chance() {
 		for _, st := range s.plan.steps {
 			work++
 			if st.law != nil {
@@ -180,6 +206,9 @@ func (s *simulation) thin() (most int) {
 		perRow = float64(len(s.arms)) * 2 * work // mirrored
 	}
 	rows := s.m.Rows.Used
+	if s.asked() != nil {
+		rows = len(s.asked().Rows)
+	}
 	afford := int(budget / (perRow * float64(max(rows, 1))))
 	stride := max(1, len(s.draws)/max(afford, fewestDraws))
 	for i := 0; i < len(s.draws); i += stride {
@@ -188,7 +217,7 @@ func (s *simulation) thin() (most int) {
 	if cost := perRow * float64(rows) * float64(len(s.picked)); cost > budget {
 		rows = min(rows, max(fewestRows, int(float64(rows)*budget/cost)))
 	}
-	s.rows = rowsOf(s.m, rows)
+	s.rows = rowsOf(s.m, s.asked(), rows)
 	return max(1, int(moreWork*budget/(perRow*float64(s.rows.n)*float64(len(s.picked)))))
 }
 

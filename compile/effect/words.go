@@ -10,29 +10,50 @@ import (
 
 // words says over what a simulation averaged.
 func (s *simulation) words() string {
-	rows := fmt.Sprintf("these %s rows", grouped(s.rows.n))
-	if s.rows.n == 1 {
-		rows = "this row"
-	}
-	if s.rows.n < s.m.Rows.Used {
-		rows = fmt.Sprintf("%s of these %s rows, evenly spaced", grouped(s.rows.n), grouped(s.m.Rows.Used))
-	}
+	out := s.rowWords()
 	each := "row"
 	if plate := s.m.Variables[s.plan.targets[0].variable].Plate; plate >= 0 {
 		each = s.m.Plates[plate].Name
-		rows = fmt.Sprintf("the %s levels of %s in %s", grouped(s.rows.units(plate)), each, rows)
+		out = fmt.Sprintf("the %s levels of %s in %s", grouped(s.rows.units(plate)), each, out)
 	}
-	if !s.bootstrap {
-		return "over " + rows + ", each " + each + " alike"
+	switch {
+	case s.bootstrap && len(s.outer) == 0:
+		out = "over a population like " + out + ", weighed by " + each
+	case s.bootstrap:
+		var groups []string
+		for _, p := range s.outer {
+			groups = append(groups, fmt.Sprintf("%s (%s)", s.m.Plates[p].Name, grouped(s.rows.units(p))))
+		}
+		out = "over a population like " + out + ", weighed by group: " + strings.Join(groups, ", ")
+		if s.byGroups {
+			out += ", each drawn alike however many rows it has"
+		}
+	case s.byGroups:
+		outer := s.outer[0]
+		out = fmt.Sprintf("over %s, each %s counts once (%s)", out, s.m.Plates[outer].Name, grouped(s.rows.units(outer)))
+	default:
+		out = "over " + out + ", each " + each + " alike"
 	}
-	var groups []string
-	for _, p := range s.outer {
-		groups = append(groups, fmt.Sprintf("%s (%s)", s.m.Plates[p].Name, grouped(len(s.m.Plates[p].Levels))))
+	if plates := s.freshPlates(); len(plates) > 0 {
+		out += ", averaged over new levels of " + strings.Join(plates, " and ")
 	}
-	if len(groups) == 0 {
-		return "over a population like " + rows + ", weighed by " + each
+	return out
+}
+
+// rowWords names the rows that are averaged over.
+func (s *simulation) rowWords() string {
+	all, rows := s.m.Rows.Used, fmt.Sprintf("these %s rows", grouped(s.m.Rows.Used))
+	if s.m.Rows.Used == 1 {
+		rows = "this row"
 	}
-	return "over a population like " + rows + ", weighed by group: " + strings.Join(groups, ", ")
+	if asked := s.asked(); asked != nil {
+		all = len(asked.Rows)
+		rows = fmt.Sprintf("the %s of %s rows with %s", grouped(all), grouped(s.m.Rows.Used), asked.Words)
+	}
+	if s.rows.n < all {
+		return fmt.Sprintf("%s of %s, evenly spaced", grouped(s.rows.n), rows)
+	}
+	return rows
 }
 
 // grouped writes a whole number with thin groups of three digits: 12,000.

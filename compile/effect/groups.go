@@ -1,0 +1,105 @@
+package effect
+
+import (
+	"fmt"
+	"math"
+
+	"arrowroot/compile/model"
+)
+
+// A freshVector holds one entry per level of a plate: baselines or slopes that
+// are drawn anew where a question is about new groups (SEMANTICS B5). In the
+// draw, entries lie around the mean with the sd.
+type freshVector struct {
+	plate    int
+	at, size int
+	mean, sd int // places in the draw; mean -1 = zero
+}
+
+// freshOf lists the vectors that a plan reads and that vary by a plate.
+func (p *planner) freshOf(plan *plan) ([]freshVector, error) {
+	read := make(map[int]bool) // places in the draw
+	look := func(l *law) {
+		if l != nil {
+			for _, n := range l.predictors {
+				n.vectors(read)
+			}
+			for _, n := range l.arguments {
+				n.vectors(read)
+			}
+		}
+	}
+	for _, st := range plan.steps {
+		look(st.law)
+	}
+	for _, t := range plan.targets {
+		look(t.law)
+	}
+	var out []freshVector
+	for i, q := range p.m.Parameters {
+		if q.Shape != model.ByPlate || !read[p.offset[i]] {
+			continue
+		}
+		f := freshVector{plate: q.Plate, at: p.offset[i], size: len(p.m.Plates[q.Plate].Levels), mean: -1}
+		sd, ok := p.params[q.SD]
+		if !ok {
+			return nil, fmt.Errorf("nothing says how far the levels of %s lie apart in %s", p.m.Plates[q.Plate].Name, q.Name)
+		}
+		f.sd = p.offset[sd]
+		if mean, ok := p.params[q.Mean]; ok {
+			f.mean = p.offset[mean]
+		}
+		out = append(out, f)
+	}
+	return out, nil
+}
+
+// vectors marks the places of the by-plate vectors that an expression reads.
+func (n *node) vectors(read map[int]bool) {
+	if n == nil {
+		return
+	}
+	if n.code == byRow {
+		read[n.at] = true
+	}
+	for _, a := range n.args {
+		a.vectors(read)
+	}
+}
+
+// regroup puts fresh groups into the draw: normal quantiles of the round's
+// uniforms, the same under every arm. There are as many as in the data, so
+// that rows of one group go on sharing its effects.
+func (b *bench) regroup(mirrored bool) {
+	if b.drawn == nil {
+		b.drawn = make([]float64, len(b.fitted))
+	}
+	b.w.draw = b.drawn
+	copy(b.drawn, b.fitted)
+	for k, f := range b.fresh {
+		mean := 0.0
+		if f.mean >= 0 {
+			mean = b.fitted[f.mean]
+		}
+		for j, u := range b.groups[k] {
+			z := math.Sqrt2 * math.Erfinv(2*u-1)
+			if mirrored {
+				z = -z
+			}
+			b.drawn[f.at+j] = mean + b.fitted[f.sd]*z
+		}
+	}
+}
+
+// freshPlates names the plates whose levels are new ones, in order.
+func (s *simulation) freshPlates() []string {
+	var out []string
+	seen := make(map[int]bool)
+	for _, f := range s.fresh {
+		if !seen[f.plate] {
+			seen[f.plate] = true
+			out = append(out, s.m.Plates[f.plate].Name)
+		}
+	}
+	return out
+}
