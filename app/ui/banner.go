@@ -2,6 +2,7 @@ package ui
 
 import (
 	"fmt"
+	"slices"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
@@ -43,6 +44,7 @@ type message struct {
 	token   fyne.ThemeColorName
 	actions []action
 	mark    *scene.Mark
+	aside   func() // sets it aside with a reason; nil = it cannot be
 	hide    func() // puts it away; nil = it cannot be
 }
 
@@ -203,18 +205,23 @@ func (d *desk) goTo(p *model.Problem) {
 // put shows a message. The same words keep their buttons, so that the keyboard
 // stays where it is; what a button does is always that of the newest message.
 func (b *banner) put(m *message) {
-	var acts []action
+	acts, show := slices.Clone(m.actions), -1
 	if m.mark != nil {
+		show = len(acts)
 		acts = append(acts, action{"Show", false, func() { b.pin(!b.pinned) }})
 	}
-	acts = append(m.actions, acts...)
+	if m.aside != nil {
+		acts = append(acts, action{"Set aside …", false, m.aside})
+	}
 	key := m.why
 	for _, a := range acts {
 		key += "\x00" + a.words
 	}
 	same := m.text == b.text && key == b.acts && b.object.Visible()
 	b.onHide, b.mark = m.hide, m.mark
-	show(m.hide != nil, b.close)
+	if b.close.Hide(); m.hide != nil {
+		b.close.Show()
+	}
 	spans := []span{{text: m.text, token: tokenInk}}
 	if m.why != "" {
 		spans = append(spans, span{text: " " + m.why, token: tokenMuted})
@@ -228,7 +235,7 @@ func (b *banner) put(m *message) {
 			continue
 		}
 		chip := b.d.chip(a.words, a.amber, a.run)
-		if m.mark != nil && i == len(acts)-1 || a.words == "Show" {
+		if i == show {
 			chip.onHover = b.area.over
 		}
 		spans = append(spans, span{object: chip})
@@ -259,11 +266,36 @@ func (b *banner) pin(on bool) {
 	}
 	b.pinned = on
 	b.point(on)
-	if on && b.mark != nil {
-		for _, id := range b.mark.Ring {
-			b.d.editor.Reveal(id)
-			break
+	if on {
+		b.uncover()
+	}
+}
+
+// uncover moves the sheet down if the banner lies over what it is about.
+func (b *banner) uncover() {
+	if b.mark == nil {
+		return
+	}
+	const margin = 34 // of a node's middle from the banner
+	d := b.d
+	driver := fyne.CurrentApp().Driver()
+	low := driver.AbsolutePositionForObject(b.object).Y + b.object.Size().Height - driver.AbsolutePositionForObject(d.editor).Y + margin
+	ids := slices.Clone(b.mark.Ring)
+	for _, t := range b.mark.Trails {
+		for _, l := range t.Legs {
+			ids = append(ids, l.From, l.To)
 		}
+	}
+	move := 0.0
+	for _, id := range ids {
+		if at, ok := d.editor.Input().At[id]; ok {
+			move = max(move, float64(low)-d.editor.View().Out(at).Y)
+		}
+	}
+	if move > 0 {
+		v := d.editor.View()
+		v.Pan.Y += move
+		d.editor.SetView(v)
 	}
 }
 

@@ -59,7 +59,7 @@ func (d *desk) mistakeMessage(m *mistake.Mistake) *message {
 		}})
 	}
 	aside := func() { d.askAside(m) }
-	b.actions = append(b.actions, action{"Set aside …", false, aside})
+	b.aside = aside
 	b.hide = func() {
 		d.dismissed[d.mistakeKey(m)] = true
 		d.refresh()

@@ -73,7 +73,7 @@ func TestSeededFaults(t *testing.T) {
 		},
 		{
 			name: "M3 responders", sheet: scholarship, ask: "award mark income entry", seed: func(s *study.Study) *study.Study { return apply(t, s, limits("answered")) },
-			code: ChosenRows, path: "mark answered", says: "Only rows with one value of answered are in the data, an effect of mark by mark → answered", repairs: "answered limits no rows",
+			code: ChosenRows, path: "mark answered", says: "Only rows with one value of answered, an effect of mark by mark → answered, are in the data: what they show is not the effect of award in all rows.", repairs: "answered limits no rows",
 		},
 		{
 			name: "M3 filter on an effect of the outcome", sheet: scholarship, ask: "award mark income entry", seed: func(s *study.Study) *study.Study {

@@ -78,16 +78,26 @@ func (l *look) limits() ([]limit, *graph.Graph) {
 	return limits, g
 }
 
+// rows says which rows are in the data, and what the variable is.
+func (m limit) rows(what string) string {
+	if what != "" {
+		what = ", " + what
+	}
+	if m.filter {
+		return fmt.Sprintf("Rows are kept by %s%s", m.id, what)
+	}
+	if what != "" {
+		what += ","
+	}
+	return fmt.Sprintf("Only rows with one value of %s%s are in the data", m.id, what)
+}
+
 // chosenBy judges one limit beside what is held.
 func (l *look) chosenBy(m limit, g *graph.Graph) (Mistake, bool) {
 	if m.node == l.x {
 		return Mistake{}, false // rows of some values of the exposure still compare those
 	}
 	x, y := l.g.Names[l.x], l.g.Names[l.y]
-	rows := fmt.Sprintf("Only rows with one value of %s are in the data", m.id)
-	if m.filter {
-		rows = fmt.Sprintf("Rows are kept by %s", m.id)
-	}
 	found := Mistake{Code: ChosenRows, Key: key(ChosenRows, x, y, m.id), Nodes: []string{m.id}, Repairs: l.allRows(m)}
 	fromX, fromY := l.g.Descendants(l.x)[m.node], l.g.Descendants(l.y)[m.node]
 	before, _ := causal.Minimal(g, l.x, l.y, nil, 1)
@@ -96,22 +106,22 @@ func (l *look) chosenBy(m limit, g *graph.Graph) (Mistake, bool) {
 	switch {
 	case m.node == l.y:
 		found.Path = nil
-		found.Sentence = fmt.Sprintf("%s, the outcome itself: among the rows that are left it varies less, and so does what %s seems to do.", rows, x)
+		found.Sentence = fmt.Sprintf("%s: what they show is not the effect of %s in all rows.", m.rows("the outcome itself"), x)
 		found.Why = fmt.Sprintf("What raises %s anyway and what %s does make up for each other in the rows that were kept.", y, x)
 	case fromY:
 		way := walk(l.g, l.y, m.node)
 		found.Path = l.ids(way)
-		found.Sentence = fmt.Sprintf("%s, an effect of %s by %s: what these rows show is not the effect of %s in all rows.", rows, y, l.arrows(way), x)
+		found.Sentence = fmt.Sprintf("%s: what they show is not the effect of %s in all rows.", m.rows(fmt.Sprintf("an effect of %s by %s", y, l.arrows(way))), x)
 		found.Why = fmt.Sprintf("Among rows chosen so, whatever else moves %s goes together with %s.", y, x)
 	case fromX && l.g.Ancestors(l.y)[m.node]:
 		way := append(walk(l.g, l.x, m.node), walk(l.g, m.node, l.y)[1:]...)
 		found.Path = l.ids(way)
-		found.Sentence = fmt.Sprintf("%s, which lies on %s: among them part of the effect cannot be seen.", rows, l.arrows(way))
+		found.Sentence = fmt.Sprintf("%s: among them part of the effect cannot be seen.", m.rows("which lies on "+l.arrows(way)))
 		found.Why = fmt.Sprintf("Rows chosen by %s differ less by what %s does through it.", m.id, x)
 	case len(after) == 0 && len(before) > 0:
-		found = l.opened(found, rows, m, g)
+		found = l.opened(found, m, g)
 	case len(after) > 0 && l.read.HeldValid && !causal.ValidAdjustment(g, l.x, l.y, plus(l.held, m.held)):
-		found = l.opened(found, rows, m, g)
+		found = l.opened(found, m, g)
 		var set []int
 		if sets, _ := causal.Minimal(g, l.x, l.y, plus(l.held, m.held), 1); len(sets) > 0 {
 			set = minus(sets[0], m.held)
@@ -119,7 +129,7 @@ func (l *look) chosenBy(m limit, g *graph.Graph) (Mistake, bool) {
 		found.Repairs = append(l.holdToo(set), found.Repairs...)
 	case fromX:
 		found.Severity = Warn
-		found.Sentence = fmt.Sprintf("%s, an effect of %s by %s: by these arrows that does no harm, if nothing else joins it to %s.", rows, x, l.arrows(walk(l.g, l.x, m.node)), y)
+		found.Sentence = fmt.Sprintf("%s: by these arrows that does no harm, if nothing else joins it to %s.", m.rows(fmt.Sprintf("an effect of %s by %s", x, l.arrows(walk(l.g, l.x, m.node)))), y)
 		found.Why = fmt.Sprintf("A cause of both %s and %s, drawn or not, would tie %s to %s in the rows that were kept.", m.id, y, x, y)
 	default:
 		return Mistake{}, false
@@ -128,7 +138,8 @@ func (l *look) chosenBy(m limit, g *graph.Graph) (Mistake, bool) {
 }
 
 // opened says which path is open among the rows that were kept.
-func (l *look) opened(found Mistake, rows string, m limit, g *graph.Graph) Mistake {
+func (l *look) opened(found Mistake, m limit, g *graph.Graph) Mistake {
+	rows := m.rows("")
 	x, y := l.g.Names[l.x], l.g.Names[l.y]
 	found.Sentence = fmt.Sprintf("%s, and among them a path between %s and %s is open that is closed in all rows.", rows, x, y)
 	found.Why = fmt.Sprintf("What acts on %s goes together in rows chosen by it.", m.id)
