@@ -100,11 +100,6 @@ func (a *asker) fill() {
 			free = append(free, id)
 		}
 	}
-	for _, p := range d.view.Study.Plates { // comparing within its groups (SEMANTICS A6)
-		if d.view.Study.HoldsPlate(p.Name) {
-			free = append(free, p.Name)
-		}
-	}
 	fixing := func(id string) bool {
 		return slices.ContainsFunc(q.Fixed, func(f study.Fix) bool { return f.Variable == id })
 	}
