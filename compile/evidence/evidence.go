@@ -129,7 +129,7 @@ type Tetrad struct {
 // it names has few levels.
 type Functional struct {
 	causal.Functional
-	Effect      // largest difference of a probability, 0 to 1
+	Effect      // typical (root mean square) difference of a probability, 0 to 1
 	P, Adjusted float64
 	Rows        int
 	Verdict     Verdict

@@ -85,9 +85,11 @@ func test(ctx context.Context, req Request, watch func(done, total int)) (*Evide
 	if e.Tetrads, err = b.tetrads(ctx); err != nil {
 		return nil, err
 	}
-	if e.Functionals, err = b.functionals(ctx); err != nil {
+	var not []Untested
+	if e.Functionals, not, err = b.functionals(ctx); err != nil {
 		return nil, err
 	}
+	e.Untested = append(e.Untested, not...)
 	for i := range e.Findings {
 		b.say(&e.Findings[i])
 		if e.Findings[i].Verdict == Contradicted {

@@ -62,7 +62,9 @@ func (r *Result) compareShares() string {
 			parts = append(parts, what+" it cannot be, since that would explain all of "+r.Input.ExposureName)
 		case !math.IsNaN(once.Adjusted):
 			text := fmt.Sprintf("%s it would leave %s of %s", what, number(once.Adjusted), number(r.Input.Estimate))
-			if k := r.enough(b); k > 0 {
+			if r.Input.onAddingScale(once.Adjusted)*r.Input.onAddingScale(r.Input.Estimate) <= 0 {
+				text += ", nothing or the reverse"
+			} else if k := r.enough(b); k > 0 {
 				text += fmt.Sprintf(", %s times as strong nothing or the reverse", strconv.FormatFloat(k, 'g', 3, 64))
 			}
 			parts = append(parts, text)
