@@ -35,7 +35,10 @@ func (r *reader) adjustment(f *Findings) {
 		a.Adjustment = f.freed(found)
 		a.Summary = f.selectedSummary(a.Adjustment)
 	}
-	if found.Sets == nil && r.ctx.Err() == nil {
+	if id := f.unmeasured(); id != "" {
+		a.Adjustment = &causal.Adjustment{Graph: found.Graph, Aim: found.Aim, Effect: found.Effect, Forbidden: found.Forbidden}
+		a.Summary = fmt.Sprintf("The effect of %s on %s cannot be read: %s was not measured.", words.List(f.Ask.Exposures), words.List(f.Ask.Outcomes), id)
+	} else if found.Sets == nil && r.ctx.Err() == nil {
 		a.Culprits, a.CulpritArcs, a.CulpritsAll = causal.Culprits(g, exposures, f.Outcomes)
 	}
 	f.setFindings(a, r.sheet.costs != nil)

@@ -109,3 +109,31 @@ func (f *Findings) elsewhere() []string {
 	}
 	return out
 }
+
+// unmeasured is the first variable in the question that cannot be had as data;
+// "" if all can.
+func (f *Findings) unmeasured() string {
+	g := f.Graph
+	can := make([]bool, g.Len())
+	for _, v := range g.Order {
+		can[v] = g.Measured[v]
+		if g.Computed[v] {
+			for _, p := range g.Parents[v] {
+				can[v] = can[v] && can[p]
+			}
+		}
+	}
+	for _, v := range slices.Concat(f.Exposures, f.Outcomes) {
+		if !can[v] {
+			return g.Names[v]
+		}
+	}
+	if f.direct() {
+		for _, id := range f.Ask.Fixed {
+			if !can[g.Index(id)] {
+				return id
+			}
+		}
+	}
+	return ""
+}

@@ -9,7 +9,7 @@ import (
 
 const (
 	doorNodes       = 120 // variables on a sheet up to which all front doors are looked for
-	instrumentNodes = 60  // likewise for instruments
+	instrumentNodes = 120 // likewise for instruments
 )
 
 // identification asks whether anything gives the effect, and by what formula.

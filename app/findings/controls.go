@@ -21,6 +21,10 @@ func (r *reader) controls(f *Findings) {
 		return
 	}
 	counts := map[causal.ControlKind]int{}
+	if id := f.unmeasured(); id != "" {
+		c.Summary = fmt.Sprintf("No control makes the comparison fair while %s is not measured.", id)
+		return
+	}
 	c.Beside = f.Held
 	if f.Verdict.HasProposal { // beside what is not enough, everything that is idle would look bad
 		c.Beside = f.Verdict.Propose
@@ -55,6 +59,11 @@ func (r *reader) direct(f *Findings) {
 		fixed = minus(f.Adjustment.Aim.Exposures, f.Exposures)
 	}
 	d.Direct = causal.ReadDirect(f.Graph, f.Exposures[0], f.Outcomes[0], fixed)
+	if id := f.unmeasured(); id != "" && d.Effect {
+		d.Summary = fmt.Sprintf("The direct effect of %s on %s cannot be read: %s was not measured.", f.Ask.Exposures[0], f.Ask.Outcomes[0], id)
+		f.Direct = d
+		return
+	}
 	d.Summary = d.Sentence
 	kind := "not identified"
 	switch {

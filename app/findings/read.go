@@ -70,17 +70,17 @@ func (r *reader) ask(f *Findings) []step {
 	f.Lacks = f.lacks()
 	if f.Lacks != "" {
 		f.Verdict = causal.Verdict{Kind: causal.Incomplete, Sentence: f.Lacks}
-		return []step{r.laws, r.rows, r.basis, r.class, r.functionals, r.independences, r.tetrads, r.rivals}
+		return []step{r.laws, r.rows, r.basis, r.functionals, r.independences, r.tetrads, r.class, r.rivals}
 	}
 	steps := []step{r.paths, r.adjustment}
 	if len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
 		steps = append(steps, r.controls, r.direct)
 	}
-	steps = append(steps, r.identification, r.laws, r.rows, r.basis, r.class)
+	steps = append(steps, r.identification, r.laws, r.rows, r.basis)
 	if len(f.Exposures) == 1 && len(f.Outcomes) == 1 {
 		steps = append(steps, r.doors, r.instruments)
 	}
-	return append(steps, r.functionals, r.independences, r.tetrads, r.rivals)
+	return append(steps, r.functionals, r.independences, r.tetrads, r.class, r.rivals)
 }
 
 // total is the reading of one exposure and one outcome with what limits the

@@ -12,9 +12,13 @@ import (
 // several exposures or outcomes, on a direct effect, on rows chosen by
 // something. It reads off the adjustment, of what counts as the exposures.
 func (f *Findings) judge(exposures []int) {
-	g, a := f.Graph, f.Adjustment
 	valid := f.heldIsEnough(exposures)
 	switch {
+	case f.unmeasured() != "" && f.Adjustment.Effect:
+		f.Verdict = causal.Verdict{Kind: causal.NoSet, Sentence: f.Adjustment.Summary, Way: f.Verdict.Way}
+		if f.Reading != nil && !f.direct() {
+			f.Verdict.Sentence = f.Reading.Verdict.Sentence
+		}
 	case f.direct():
 		f.judgeDirect(valid)
 	case f.Reading == nil:
@@ -24,14 +28,6 @@ func (f *Findings) judge(exposures []int) {
 	}
 	if f.Verdict.HasProposal {
 		f.Verdict.Propose = minus(f.Verdict.Propose, f.Selected)
-	}
-	if a.Sets == nil && f.Reading == nil {
-		for _, v := range slices.Concat(f.Exposures, f.Outcomes) {
-			if !g.Measured[v] {
-				f.Verdict.Sentence = fmt.Sprintf("The effect of %s on %s cannot be read: %s was not measured.", words.List(f.Ask.Exposures), words.List(f.Ask.Outcomes), g.Names[v])
-				break
-			}
-		}
 	}
 }
 
