@@ -6,8 +6,8 @@ import "arrowroot/compile/graph"
 // the clock, so that the same diagram gets the same answer anywhere.
 type budget int
 
-// searchBudget lasts for some tenths of a second.
-const searchBudget budget = 20_000_000
+// searchBudget lasts for about a tenth of a second.
+const searchBudget budget = 6_000_000
 
 // spend takes off as many searches through a graph; false when nothing is left.
 func (b *budget) spend(g *graph.Graph, searches int) bool {

@@ -229,3 +229,27 @@ func TestImplicationSentences(t *testing.T) {
 		t.Errorf("got %q", got)
 	}
 }
+
+// One set of each pair is among all of them, and more says whether there are.
+func TestNearestSeparators(t *testing.T) {
+	r := rand.New(rand.NewPCG(62, 2026))
+	several := 0
+	for range rounds(500, 5000) {
+		s := sketch{nodes: 4 + r.IntN(6), arrows: 0.2 + 0.3*r.Float64(), unmeasured: 0.2, arcs: 0.1}
+		g := s.draw(t, r)
+		ones, all := Separations(g, 1), Separations(g, 1e4)
+		for i, o := range ones {
+			a := all[i]
+			if o.A != a.A || o.B != a.B || len(o.Given) != min(1, len(a.Given)) || o.More != (len(a.Given) > 1) ||
+				len(o.Given) == 1 && !slices.Contains(spelled(g, a.Given), spelled(g, o.Given)[0]) {
+				t.Fatalf("%s: %+v of %+v", describe(g), o, a)
+			}
+			if o.More {
+				several++
+			}
+		}
+	}
+	if several < 100 {
+		t.Errorf("only %d pairs with several sets", several)
+	}
+}

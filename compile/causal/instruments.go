@@ -15,8 +15,6 @@ type InstrumentSets struct {
 	More  bool    // the search stopped early: there may be more
 }
 
-const instrumentChecks = 3000 // steps of the search for one instrument
-
 // ArrowInstruments lists the instruments for the arrow from x to y, by node:
 // given a set that holds no descendant of y, they are related to x, and
 // unrelated to y once the arrow is cut (Brito & Pearl 2002). They give the
@@ -44,6 +42,8 @@ func TotalInstruments(g *graph.Graph, x, y int) []InstrumentSets {
 	return instrumentSets(g, c.backDoor, x, y, c.forbidden)
 }
 
+const minInstrumentBudget budget = 20_000
+
 func instrumentSets(g, cut *graph.Graph, x, y int, barred []bool) []InstrumentSets {
 	can := available(g)
 	if !can[x] || !can[y] {
@@ -56,18 +56,19 @@ func instrumentSets(g, cut *graph.Graph, x, y int, barred []bool) []InstrumentSe
 		}
 	}
 	var all []InstrumentSets
+	each := max(searchBudget/budget(len(usable)+1), minInstrumentBudget) // so that every variable has its turn
 	for _, z := range usable {
-		s := &instrumentSearch{g: g, cut: cut, z: z, x: x, y: y, usable: minus(usable, []int{z}), budget: instrumentChecks}
+		s := &instrumentSearch{g: g, cut: cut, z: z, x: x, y: y, usable: minus(usable, []int{z}), budget: each}
 		if !s.separable() {
 			continue
 		}
 		s.bySeparators()
-		for size := 0; size <= len(s.usable) && s.budget > 0; size++ {
+		for size := 0; size <= len(s.usable) && !s.budget.spent(); size++ {
 			s.try(nil, 0, size)
 		}
 		if len(s.found) > 0 {
 			sortSets(g, s.found)
-			all = append(all, InstrumentSets{Node: z, Given: s.found, More: s.budget <= 0})
+			all = append(all, InstrumentSets{Node: z, Given: s.found, More: s.budget.spent()})
 		}
 	}
 	return all
@@ -78,7 +79,7 @@ type instrumentSearch struct {
 	z, x, y int
 	usable  []int
 	found   [][]int
-	budget  int
+	budget  budget
 }
 
 func (s *instrumentSearch) works(given []int) bool {
@@ -102,13 +103,16 @@ func (s *instrumentSearch) separable() bool {
 // bySeparators takes the minimal separators that leave instrument and exposure
 // related: as no smaller set separates, they are minimal.
 func (s *instrumentSearch) bySeparators() {
-	apart := newComparison(s.cut, []int{s.z}, []int{s.y})
-	apart.g, apart.backDoor = s.cut, s.cut
+	apart := newSeparation(s.cut, s.z, s.y)
 	apart.usable = mark(s.g.Len(), s.usable)
-	sets, _ := apart.minimal(nil, instrumentTrials)
-	for _, given := range sets {
+	left := instrumentTrials
+	for given := range apart.moral(nil).separators {
 		if s.works(given) {
 			s.found = append(s.found, given)
+		}
+		s.budget.spend(s.g, 2*(len(given)+1))
+		if left--; left == 0 {
+			return
 		}
 	}
 }
@@ -116,10 +120,12 @@ func (s *instrumentSearch) bySeparators() {
 // try goes through the sets of one size: a set that separates without being
 // minimal may do, where holding a collider is what relates the instrument.
 func (s *instrumentSearch) try(chosen []int, from, left int) {
-	if s.budget--; s.budget <= 0 || s.known(chosen) {
+	s.budget -= budget(1 + len(chosen)*len(s.found))
+	if s.budget.spent() || s.known(chosen) {
 		return
 	}
 	if left == 0 {
+		s.budget.spend(s.g, 2)
 		if s.works(chosen) {
 			s.found = append(s.found, chosen)
 		}

@@ -267,3 +267,28 @@ func (c *comparison) exists(forced []int) bool {
 	sets, _ := c.minimal(forced, 1)
 	return len(sets) > 0
 }
+
+// nearest is the minimal separator nearest to the exposures, in two searches
+// (van der Zander & Liśkiewicz 2020); ok says whether there is one. It needs that
+// nothing is computed.
+func (c *comparison) nearest() (z []int, ok bool) {
+	n := c.g.Len()
+	above := c.backDoor.Ancestors(slices.Concat(c.x, c.y, c.selected)...)
+	held := mark(n, c.selected)
+	for v := range held {
+		held[v] = held[v] || above[v] && c.usable[v]
+	}
+	touched := reachable(c.backDoor, c.x, held, held)
+	for _, v := range c.y {
+		if touched[v] {
+			return nil, false
+		}
+	}
+	for range 2 { // what is not touched from one side, then from the other, does nothing
+		for v := range held {
+			held[v] = held[v] && (touched[v] || slices.Contains(c.selected, v))
+		}
+		touched = reachable(c.backDoor, c.y, held, held)
+	}
+	return minus(list(held), c.selected), true
+}

@@ -5,6 +5,7 @@ import (
 	"math"
 	"math/bits"
 	"math/rand/v2"
+	"slices"
 
 	"arrowroot/compile/graph"
 )
@@ -26,7 +27,7 @@ func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
 	max = limit(max, 1000)
 	named, _ := nameArcs(g)
 	nodes := list(available(g))
-	cov := residueModel(named)
+	cov, treks := residueModel(named), newTrekNetwork(named)
 	budget := searchBudget
 	looked := 0
 	for i, a := range nodes {
@@ -38,7 +39,7 @@ func Tetrads(g *graph.Graph, max int) (all []Tetrad, more bool) {
 					}
 					for _, t := range []Tetrad{{a, b, c, d}, {a, c, b, d}, {a, d, b, c}} {
 						first := timesResidue(cov[t.A][t.C], cov[t.B][t.D])
-						if first == 0 || first != timesResidue(cov[t.A][t.D], cov[t.B][t.C]) || treks(named, t) > 1 {
+						if first == 0 || first != timesResidue(cov[t.A][t.D], cov[t.B][t.C]) || treks.count(t) > 1 {
 							continue
 						}
 						if len(all) == max || !budget.spend(named, 30) {
@@ -90,32 +91,51 @@ func residueModel(g *graph.Graph) [][]uint64 {
 	return cov
 }
 
-// treks counts, up to two, treks from A and B to C and D no two of which share
-// a node on the same side: a smallest set that t-separates the pairs has as
-// many members.
-func treks(g *graph.Graph, t Tetrad) int {
+// A trekNetwork counts treks: a node is entered and left on the way up, then on
+// the way down, once on each.
+type trekNetwork struct {
+	*network
+	empty         []float64 // capacities with no pair chosen
+	starts, stops []int     // by node: the edges from the source and to the sink
+	source, sink  int
+}
+
+func newTrekNetwork(g *graph.Graph) *trekNetwork {
 	n := g.Len()
-	// A node is entered and left on the way up, then on the way down.
 	const up, upOut, down, downOut = 0, 1, 2, 3
 	at := func(v, side int) int { return 4*v + side }
-	net := newNetwork(4*n + 2)
-	source, sink := 4*n, 4*n+1
+	t := &trekNetwork{network: newNetwork(4*n + 2), source: 4 * n, sink: 4*n + 1}
 	for v := range n {
-		net.edge(at(v, up), at(v, upOut), 1)
-		net.edge(at(v, down), at(v, downOut), 1)
-		net.edge(at(v, upOut), at(v, down), math.Inf(1))
+		t.starts = append(t.starts, len(t.to))
+		t.edge(t.source, at(v, up), 0)
+		t.stops = append(t.stops, len(t.to))
+		t.edge(at(v, downOut), t.sink, 0)
+	}
+	for v := range n {
+		t.edge(at(v, up), at(v, upOut), 1)
+		t.edge(at(v, down), at(v, downOut), 1)
+		t.edge(at(v, upOut), at(v, down), math.Inf(1))
 		for _, c := range g.Children[v] {
-			net.edge(at(c, upOut), at(v, up), math.Inf(1))
-			net.edge(at(v, downOut), at(c, down), math.Inf(1))
+			t.edge(at(c, upOut), at(v, up), math.Inf(1))
+			t.edge(at(v, downOut), at(c, down), math.Inf(1))
 		}
 	}
-	for _, v := range []int{t.A, t.B} {
-		net.edge(source, at(v, up), 1)
+	t.empty = slices.Clone(t.room)
+	return t
+}
+
+// count gives the number of treks, up to two, from A and B to C and D no two of
+// which share a node on the same side: a smallest set that t-separates the pairs
+// has as many members.
+func (t *trekNetwork) count(q Tetrad) int {
+	copy(t.room, t.empty)
+	for _, v := range []int{q.A, q.B} {
+		t.room[t.starts[v]] = 1
 	}
-	for _, v := range []int{t.C, t.D} {
-		net.edge(at(v, downOut), sink, 1)
+	for _, v := range []int{q.C, q.D} {
+		t.room[t.stops[v]] = 1
 	}
-	total, _ := net.most(source, sink)
+	total, _ := t.most(t.source, t.sink)
 	return int(total)
 }
 
