@@ -69,6 +69,8 @@ func (c *command) shortcut() fyne.Shortcut {
 		s.KeyName = fyne.KeyEqual // the plus stands on it
 	case "−":
 		s.KeyName = fyne.KeyMinus
+	case "PageDown":
+		s.KeyName = fyne.KeyPageDown
 	default:
 		s.KeyName = fyne.KeyName(last)
 	}

@@ -44,9 +44,10 @@ func TestCommandTable(t *testing.T) {
 
 func TestShortcuts(t *testing.T) {
 	for keys, want := range map[string]*desktop.CustomShortcut{
-		"Ctrl+Shift+Z": {KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift},
-		"Ctrl++":       {KeyName: fyne.KeyEqual, Modifier: fyne.KeyModifierShortcutDefault},
-		"Alt+1":        {KeyName: fyne.Key1, Modifier: fyne.KeyModifierAlt},
+		"Ctrl+Shift+Z":  {KeyName: fyne.KeyZ, Modifier: fyne.KeyModifierShortcutDefault | fyne.KeyModifierShift},
+		"Ctrl++":        {KeyName: fyne.KeyEqual, Modifier: fyne.KeyModifierShortcutDefault},
+		"Alt+1":         {KeyName: fyne.Key1, Modifier: fyne.KeyModifierAlt},
+		"Ctrl+PageDown": {KeyName: fyne.KeyPageDown, Modifier: fyne.KeyModifierShortcutDefault},
 	} {
 		got, ok := (&command{keys: keys}).shortcut().(*desktop.CustomShortcut)
 		if !ok || *got != *want {

@@ -80,6 +80,9 @@ func drawAxis(l *List, a axis, y float64, format func(float64) string, s Style) 
 	}
 	l.Add(&Shape{Path: Polyline(Point{a.start, y}, Point{a.end, y}), Stroke: s.Muted, Width: 1, Crisp: true})
 	n := max(2, int((a.end-a.start)/55))
+	for n < 6 && len(a.ticks(n)) < 3 {
+		n++ // one number is no scale
+	}
 	free := math.Inf(-1)
 	for _, v := range a.ticks(n) {
 		x := a.at(v)
