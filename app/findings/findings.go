@@ -71,8 +71,8 @@ type Findings struct {
 	Selected                         []int // held by the rows themselves: nodes that limit the rows, and row filters
 
 	Lacks   string          // what the question lacks, in a sentence; "" = nothing
-	Reading *causal.Reading // of one exposure and one outcome, with what limits the rows held too; else nil
-	Verdict causal.Verdict  // what it comes to; Propose leaves out what limits the rows
+	Reading *causal.Reading // of one exposure and one outcome, else nil
+	Verdict causal.Verdict  // what it comes to
 
 	Paths          *Paths
 	Adjustment     *Adjustment
@@ -144,10 +144,12 @@ type Laws struct {
 // Rows says what row filters, missing entries and errors of measurement do.
 type Rows struct {
 	Section
-	Selection    *causal.Selection    // nil = nothing limits the rows
+	Kept         *causal.Kept         // what the rows show of the effect; nil = nothing limits them
+	Selection    *causal.Selection    // with what is measured known of all rows too; nil likewise
 	Indicators   []causal.Indicator   // as drawn
 	Missing      *causal.Missing      // nil = no indicator is drawn
-	CompleteCase *causal.CompleteCase // of the outcome's law on exposure and held set; nil = nothing known to be missing
+	Complete     *causal.Kept         // what complete rows show of the effect; nil = nothing known to be missing
+	CompleteCase *causal.CompleteCase // of the outcome's law on exposure and held set, likewise
 	Undecided    bool                 // entries are missing of which no indicator is drawn
 	Records      []Record
 }

@@ -2,6 +2,7 @@ package findings
 
 import (
 	"fmt"
+	"slices"
 	"strings"
 
 	"arrowroot/app/words"
@@ -71,13 +72,14 @@ func (f *Findings) pathSentence(p *causal.Path) string {
 	for _, o := range p.OpenedAt {
 		by := f.Graph.Names[o.By]
 		how := by + " is held"
-		if o.By >= f.Sheet {
-			how = "the rows were chosen by it"
-		}
-		if o.By != o.Node && o.By < f.Sheet {
+		selected := slices.Contains(f.Selected, o.By)
+		switch {
+		case selected && o.By == o.Node:
+			how = "rows were kept by it"
+		case selected:
+			how = fmt.Sprintf("rows were kept by %s, on which it acts", by)
+		case o.By != o.Node:
 			how = fmt.Sprintf("%s, on which it acts, is held", by)
-		} else if o.By != o.Node {
-			how = "the rows were chosen by what it acts on"
 		}
 		opened = append(opened, fmt.Sprintf("%s lets it through, because %s", f.Graph.Names[o.Node], how))
 	}

@@ -4,7 +4,6 @@ import (
 	"context"
 	"slices"
 
-	"arrowroot/app/fit"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/study"
 )
@@ -83,15 +82,22 @@ func (r *reader) ask(f *Findings) []step {
 	return append(steps, r.functionals, r.independences, r.tetrads, r.class, r.rivals)
 }
 
-// total is the reading of one exposure and one outcome with what limits the
-// rows held too.
+// total is the reading of one exposure and one outcome in the rows that there
+// are.
 func (r *reader) total(f *Findings) *causal.Reading {
 	if len(f.Exposures) != 1 || len(f.Outcomes) != 1 {
 		return nil
 	}
-	q := &study.Question{Exposure: f.Graph.Names[f.Exposures[0]], Outcome: f.Graph.Names[f.Outcomes[0]], Held: f.Ask.Held}
-	q.Held = slices.Concat(q.Held, f.names(f.Selected))
-	return fit.Read(f.Graph, q, r.limits.Paths, r.limits.Sets)
+	q := causal.Query{
+		Exposure: f.Exposures[0], Outcome: f.Outcomes[0], Held: f.Held, Selected: f.Selected,
+		MaxPaths: r.limits.Paths, MaxSets: r.limits.Sets,
+	}
+	for _, id := range f.Ask.Held {
+		if plate := f.Graph.Plate(id); plate >= 0 && f.Graph.Index(id) < 0 {
+			q.Within = append(q.Within, plate)
+		}
+	}
+	return causal.Read(f.Graph, q)
 }
 
 func (l Limits) orDefault() Limits {

@@ -38,31 +38,25 @@ func (r *reader) selection(f *Findings) {
 		}
 		return
 	}
-	// First what these rows show by themselves, then with how the measured
-	// variables spread in all rows known from elsewhere.
-	s.Selection = causal.ReadSelection(f.Graph, f.Exposures[0], f.Outcomes[0], f.Selected, nil)
-	text := s.Selection.Sentence
-	kind := "selection, harmless"
-	if !s.Selection.Recoverable {
-		kind = "selection"
-	}
-	f.add(&s.Section, Finding{Key: "selection " + joined(f.names(f.Selected)), Kind: kind, Nodes: union(f.Selected, union(f.Exposures, f.Outcomes)), Sentence: text})
-	if len(s.Selection.Sets) > 0 {
-		return
-	}
+	s.Kept = f.Reading.Kept
+	f.add(&s.Section, Finding{
+		Key: "selection " + joined(f.names(f.Selected)), Kind: "selection, " + s.Kept.All.String(), Sentence: s.Kept.Sentence,
+		Nodes: union(f.Selected, union(union(f.Exposures, f.Outcomes), s.Kept.Reason)), Edges: along(f.Graph, s.Kept.Reason),
+	})
 	var external []int
 	for v := range f.Sheet {
 		if f.Graph.Measured[v] {
 			external = append(external, v)
 		}
 	}
-	if wide := causal.ReadSelection(f.Graph, f.Exposures[0], f.Outcomes[0], f.Selected, external); len(wide.Sets) > 0 {
-		set := wide.Sets[0]
-		s.Selection = wide
-		f.add(&s.Section, Finding{
-			Key: "selection weighed by " + joined(f.names(set)), Kind: "selection adjustment", Nodes: set,
-			Sentence: fmt.Sprintf("The effect in all rows follows from these with %s held, if how %s spread in all rows is known from elsewhere.", words.List(f.names(set)), theyOr(f.names(set))),
-		})
+	s.Selection = causal.ReadSelection(f.Graph, f.Exposures[0], f.Outcomes[0], f.Selected, external)
+	if len(s.Selection.Sets) > 0 && s.Kept.All != causal.Valid {
+		set := s.Selection.Sets[0]
+		text := "The effect in all rows follows from these with nothing held."
+		if len(set) > 0 {
+			text = fmt.Sprintf("The effect in all rows follows from these with %s held, if how %s spread in all rows is known from elsewhere.", words.List(f.names(set)), theyOr(f.names(set)))
+		}
+		f.add(&s.Section, Finding{Key: "selection weighed by " + joined(f.names(set)), Kind: "selection adjustment", Nodes: set, Sentence: text})
 	}
 }
 
@@ -120,11 +114,25 @@ func (r *reader) missing(f *Findings) {
 		return
 	}
 	s.CompleteCase = causal.ReadCompleteCase(r.sheet.drawn, s.Indicators, y, on)
-	kind := "complete rows, valid"
-	if !s.CompleteCase.Valid {
-		kind = "complete rows, not valid"
+	if f.Reading == nil {
+		kind := "complete rows, valid"
+		if !s.CompleteCase.Valid {
+			kind = "complete rows, not valid"
+		}
+		f.add(&s.Section, Finding{Key: "complete rows", Kind: kind, Sentence: s.CompleteCase.Sentence, Nodes: union(on, f.Outcomes)})
+		return
 	}
-	f.add(&s.Section, Finding{Key: "complete rows", Kind: kind, Sentence: s.CompleteCase.Sentence, Nodes: union(on, f.Outcomes)})
+	marks := slices.Clone(f.Selected)
+	for _, i := range s.Indicators {
+		if i.Of == y || slices.Contains(on, i.Of) {
+			marks = union(marks, []int{i.Node})
+		}
+	}
+	s.Complete = causal.ReadKept(f.Graph, f.Exposures[0], y, minus(on, f.Exposures), marks)
+	f.add(&s.Section, Finding{
+		Key: "complete rows", Kind: "complete rows, " + s.Complete.All.String(), Sentence: "With incomplete rows left out: " + lower(s.Complete.Sentence),
+		Why: s.CompleteCase.Sentence, Nodes: union(union(on, f.Outcomes), union(marks, s.Complete.Reason)), Edges: along(f.Graph, s.Complete.Reason),
+	})
 }
 
 func hasHave(n int) string {

@@ -13,6 +13,12 @@ func upper(s string) string {
 	return string(unicode.ToUpper(first)) + s[size:]
 }
 
+// lower goes on with a sentence.
+func lower(s string) string {
+	first, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToLower(first)) + s[size:]
+}
+
 // joined makes a key of names, whatever their order.
 func joined(names []string) string {
 	sorted := slices.Clone(names)

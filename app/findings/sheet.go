@@ -3,6 +3,7 @@ package findings
 import (
 	"slices"
 
+	"arrowroot/app/words"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/study"
@@ -10,7 +11,7 @@ import (
 
 // filterName names the node that stands for the row filter of a table. It is no
 // ID, so no variable has it.
-const filterName = "kept rows"
+func filterName(by []string) string { return "the filter on " + words.List(by) }
 
 // A sheet is a rival's graph made ready for reading.
 type sheet struct {
@@ -90,7 +91,11 @@ func withFilter(g *graph.Graph, limits, by []int) *graph.Graph {
 		}
 	}
 	if len(by) > 0 {
-		spec.Names = append(spec.Names, filterName)
+		var ids []string
+		for _, v := range by {
+			ids = append(ids, g.Names[v])
+		}
+		spec.Names = append(spec.Names, filterName(ids))
 		spec.Levels = append(spec.Levels, nil)
 		for _, v := range by {
 			spec.Arrows = append(spec.Arrows, [2]int{v, g.Len()})

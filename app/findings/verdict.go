@@ -9,8 +9,8 @@ import (
 )
 
 // judge gives the verdict where that of the reading alone will not do: on
-// several exposures or outcomes, on a direct effect, on rows chosen by
-// something. It reads off the adjustment, of what counts as the exposures.
+// several exposures or outcomes, and on a direct effect. It reads off the
+// adjustment, of what counts as the exposures.
 func (f *Findings) judge(exposures []int) {
 	valid := f.heldIsEnough(exposures)
 	switch {
@@ -23,11 +23,6 @@ func (f *Findings) judge(exposures []int) {
 		f.judgeDirect(valid)
 	case f.Reading == nil:
 		f.judgeSeveral(valid)
-	case len(f.Selected) > 0:
-		f.judgeSelected(valid)
-	}
-	if f.Verdict.HasProposal {
-		f.Verdict.Propose = minus(f.Verdict.Propose, f.Selected)
 	}
 }
 
@@ -96,29 +91,6 @@ func (f *Findings) judgeSeveral(valid bool) {
 	}
 }
 
-// judgeSelected says what the choice of rows does to one exposure and outcome.
-// Where it changes nothing the verdict of the reading stands.
-func (f *Findings) judgeSelected(valid bool) {
-	a, r := f.Adjustment, f.Reading
-	pair := f.Ask.Exposures[0] + " → " + f.Ask.Outcomes[0]
-	switch set := proposalOf(a.Adjustment); {
-	case !a.Effect || r.Verdict.Kind == causal.NoSet && r.Sets == nil:
-	case a.Sets == nil:
-		v := causal.Verdict{Kind: causal.NoSet, Sentence: fmt.Sprintf("%s cannot be read from these rows by holding anything: they were chosen by %s", pair, f.rowsBy())}
-		if why := f.whySelected(); why != "" {
-			v.Sentence += ", " + why
-		}
-		v.Sentence += "."
-		v.Way = "The rows that were left out, or what is known of them from elsewhere, would help."
-		f.Verdict = v
-	case valid:
-		f.Verdict.Kind, f.Verdict.HasProposal = causal.Readable, false
-		f.Verdict.Sentence = fmt.Sprintf("%s can be read from these rows, holding %s, if the arrows drawn and not drawn are right.", pair, words.List(f.names(f.Held)))
-	case r.Verdict.Kind == causal.Confounded:
-		f.Verdict = causal.Verdict{Kind: causal.Confounded, HasProposal: true, Propose: set, Sentence: fmt.Sprintf("%s is confounded in these rows. Hold %s.", pair, words.List(f.names(set)))}
-	}
-}
-
 // rowsBy names what the rows were chosen by.
 func (f *Findings) rowsBy() string {
 	var by []int
@@ -131,39 +103,4 @@ func (f *Findings) rowsBy() string {
 	}
 	slices.Sort(by)
 	return words.List(f.names(slices.Compact(by)))
-}
-
-// whySelected says what the choice of rows spoils: it is an effect of what
-// carries the effect, or opens a path.
-func (f *Findings) whySelected() string {
-	for _, one := range f.Reading.Forbidden {
-		if slices.Contains(f.Selected, one.Node) {
-			shown := one.Path
-			if one.Node >= f.Sheet {
-				shown = one.Path[:len(one.Path)-1]
-			}
-			if len(shown) < 2 {
-				return "which is the outcome or an effect of it"
-			}
-			return "an effect of what is asked about, by " + f.arrows(shown)
-		}
-	}
-	for i := range f.Reading.Paths {
-		p := &f.Reading.Paths[i]
-		for _, o := range p.OpenedAt {
-			if p.Open && slices.Contains(f.Selected, o.By) {
-				return "and that opens " + p.Text(f.Graph)
-			}
-		}
-	}
-	return ""
-}
-
-// arrows writes nodes as a way along arrows.
-func (f *Findings) arrows(nodes []int) string {
-	text := f.Graph.Names[nodes[0]]
-	for _, v := range nodes[1:] {
-		text += " → " + f.Graph.Names[v]
-	}
-	return text
 }
