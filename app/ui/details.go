@@ -194,9 +194,6 @@ func (x *details) several(s *sheaf) {
 	if len(p.Nodes) == 2 && len(p.Arrows)+len(p.Arcs)+len(p.Notes) == 0 {
 		x.absent(s, p.Nodes[0], p.Nodes[1])
 	}
-	if len(p.Nodes) == 2 && len(p.Arrows)+len(p.Arcs)+len(p.Notes) == 0 {
-		x.absent(s, p.Nodes[0], p.Nodes[1])
-	}
 	b := x.d.plain("Take off the sheet", func() { x.d.commands.find("delete").run() })
 	s.keys["delete"] = b
 	s.add(row(8, b))
