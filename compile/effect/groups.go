@@ -67,10 +67,23 @@ func (n *node) vectors(read map[int]bool) {
 	}
 }
 
-// regroup puts fresh groups into the draw: normal quantiles of the round's
+// replicatesOfGroups is how many values of each group's effects a round with
+// new groups averages over: stratified, their error falls much faster with their
+// number than that of independent ones, and eight are cheap.
+const replicatesOfGroups = 8
+
+// replicates is how many sets of uniforms a round has.
+func (s *simulation) replicates() int {
+	if len(s.fresh) > 0 {
+		return replicatesOfGroups
+	}
+	return 1
+}
+
+// regroup puts fresh groups into the draw: normal quantiles of one replicate's
 // uniforms, the same under every arm. There are as many as in the data, so
 // that rows of one group go on sharing its effects.
-func (b *bench) regroup(mirrored bool) {
+func (b *bench) regroup(replicate int, mirrored bool) {
 	if b.drawn == nil {
 		b.drawn = make([]float64, len(b.fitted))
 	}
@@ -81,8 +94,8 @@ func (b *bench) regroup(mirrored bool) {
 		if f.mean >= 0 {
 			mean = b.fitted[f.mean]
 		}
-		for j, u := range b.groups[k] {
-			z := math.Sqrt2 * math.Erfinv(2*u-1)
+		for j := range f.size {
+			z := math.Sqrt2 * math.Erfinv(2*b.groups[k][j*replicatesOfGroups+replicate]-1)
 			if mirrored {
 				z = -z
 			}

@@ -16,7 +16,7 @@ type bench struct {
 	would    [][]float64 // per pin: the column as it would have been
 	fitted   []float64   // the draw
 	drawn    []float64   // the draw with fresh groups; nil where groups are the fitted ones
-	groups   [][]float64 // uniforms, per fresh vector
+	groups   [][]float64 // uniforms, per fresh vector: of each level one for each replicate
 	part     []float64
 	sides    [][]float64 // a round's averages, by arm
 	plain    [][]float64 // likewise, without mirror images
@@ -32,7 +32,7 @@ func newBench(s *simulation) *bench {
 		}
 	}
 	for _, f := range s.fresh {
-		b.groups = append(b.groups, make([]float64, f.size))
+		b.groups = append(b.groups, make([]float64, f.size*s.replicates()))
 	}
 	for _, st := range s.plan.steps {
 		b.changed = append(b.changed, make([]float64, s.rows.n))
@@ -57,36 +57,33 @@ func newBench(s *simulation) *bench {
 	return b
 }
 
-// round adds one replicate of draw i: all arms, with the same uniforms and, if
-// asked for, with their mirror images (antithetic variates), which cancel what
-// is linear in the noise of mediators.
+// round adds one round of draw i: all arms, with the same uniforms and, if asked
+// for, with their mirror images (antithetic variates), which cancel what is
+// linear in the noise of mediators. Where groups are drawn anew a round has
+// several replicates, over which the effects of each group are stratified.
 func (b *bench) round(i, round int) {
 	b.fitted = b.draws[b.picked[i]]
 	b.w.draw = b.fitted
 	b.weigh(b.seeds[i])
+	for a := range b.sides {
+		clear(b.sides[a])
+		clear(b.plain[a])
+	}
+	var rng *rand.Rand
 	if b.chance() {
-		rng := rand.New(rand.NewPCG(b.seeds[i], uint64(round)+1))
+		rng = rand.New(rand.NewPCG(b.seeds[i], uint64(round)+1))
+	}
+	n := b.replicates()
+	for _, u := range b.groups {
+		for level := range len(u) / n {
+			stratified(u[level*n:(level+1)*n], rng)
+		}
+	}
+	for replicate := range n {
 		for _, u := range b.uniforms {
 			stratified(u, rng)
 		}
-		for _, u := range b.groups {
-			stratified(u, rng)
-		}
-	}
-	for a, arm := range b.arms {
-		clear(b.sides[a])
-		if b.plan.exposure != none {
-			arm.apply(b.set[0], b.rows.columns[b.plan.exposure])
-		}
-		for mirror := range b.mirrors {
-			b.expect(mirror == 1)
-			for k, x := range b.part {
-				b.sides[a][k] += x / float64(b.mirrors)
-			}
-			if mirror == 0 {
-				copy(b.plain[a], b.part)
-			}
-		}
+		b.replicate(replicate)
 	}
 	k := len(b.part)
 	for a := range b.sides {
@@ -102,6 +99,28 @@ func (b *bench) round(i, round int) {
 		at[0] = b.summary(b.plain)
 		for a := range b.plain {
 			at[1+a] = b.plain[a][0]
+		}
+	}
+}
+
+// replicate adds one set of uniforms to the round.
+func (b *bench) replicate(which int) {
+	share := 1 / float64(b.replicates())
+	for a, arm := range b.arms {
+		if b.plan.exposure != none {
+			arm.apply(b.set[0], b.rows.columns[b.plan.exposure])
+		}
+		for mirror := range b.mirrors {
+			if len(b.fresh) > 0 {
+				b.regroup(which, mirror == 1)
+			}
+			b.expect(mirror == 1)
+			for k, x := range b.part {
+				b.sides[a][k] += x * share / float64(b.mirrors)
+				if mirror == 0 {
+					b.plain[a][k] += x * share
+				}
+			}
 		}
 	}
 }
@@ -130,9 +149,6 @@ func (b *bench) expect(mirrored bool) {
 	copy(w.columns, b.rows.columns)
 	for k, pin := range p.pins {
 		b.would[k] = b.rows.columns[pin.variable]
-	}
-	if len(b.fresh) > 0 {
-		b.regroup(mirrored)
 	}
 	for i, st := range p.steps {
 		b.look(st.variable)

@@ -203,7 +203,7 @@ func (s *simulation) thin() (most int) {
 				work += quantileWork[st.law.Family.Name]
 			}
 		}
-		perRow = float64(len(s.arms)) * 2 * work // mirrored
+		perRow = float64(len(s.arms)*s.replicates()) * 2 * work // mirrored
 	}
 	rows := s.m.Rows.Used
 	if s.asked() != nil {

@@ -48,7 +48,7 @@ func (s *simulation) rowWords() string {
 	}
 	if asked := s.asked(); asked != nil {
 		all = len(asked.Rows)
-		rows = fmt.Sprintf("the %s of %s rows with %s", grouped(all), grouped(s.m.Rows.Used), asked.Words)
+		rows = fmt.Sprintf("the %s of %s rows where %s", grouped(all), grouped(s.m.Rows.Used), asked.Words)
 	}
 	if s.rows.n < all {
 		return fmt.Sprintf("%s of %s, evenly spaced", grouped(s.rows.n), rows)
