@@ -44,6 +44,8 @@ flags
   -outcome LIST   read: on these
   -held LIST      read: with these held
   -given LIST     read: among those with known values of these
+  -with LIST      read: sets to hold that contain these
+  -without LIST   read: sets to hold without these
 `
 
 // Exit statuses.
@@ -63,7 +65,7 @@ type options struct {
 	out           string
 	paths, sets   int
 
-	exposure, outcome, hold, given string // lists of IDs
+	exposure, outcome, hold, given, with, without string // lists of IDs
 }
 
 // errUse is a command line that makes no sense.
@@ -150,6 +152,8 @@ func parse(args []string) (*options, error) {
 	flags.StringVar(&opt.outcome, "outcome", "", "")
 	flags.StringVar(&opt.hold, "held", "", "")
 	flags.StringVar(&opt.given, "given", "", "")
+	flags.StringVar(&opt.with, "with", "", "")
+	flags.StringVar(&opt.without, "without", "", "")
 	var words []string
 	for len(args) > 0 {
 		if err := flags.Parse(args); err != nil {

@@ -39,7 +39,7 @@ func (j *job) ask() (findings.Ask, error) {
 	for _, flag := range []struct {
 		name, list string
 		ids        *[]string
-	}{{"exposure", j.exposure, &ask.Exposures}, {"outcome", j.outcome, &ask.Outcomes}, {"given", j.given, &ask.Given}, {"held", j.hold, &ask.Held}} {
+	}{{"exposure", j.exposure, &ask.Exposures}, {"outcome", j.outcome, &ask.Outcomes}, {"given", j.given, &ask.Given}, {"held", j.hold, &ask.Held}, {"with", j.with, &ask.Forced}, {"without", j.without, &ask.Unavailable}} {
 		if flag.list == "" {
 			continue
 		}

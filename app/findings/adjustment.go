@@ -28,7 +28,10 @@ func (r *reader) adjustment(f *Findings) {
 	exposures := union(f.Exposures, r.fixed(f))
 	a := &Adjustment{Section: Section{Name: AdjustmentSection}}
 	g := f.within()
-	found := causal.Adjust(g, causal.Aim{Exposures: exposures, Outcomes: f.Outcomes, Forced: f.Selected, Costs: r.sheet.costs, MaxSets: r.limits.Sets})
+	found := causal.Adjust(g, causal.Aim{
+		Exposures: exposures, Outcomes: f.Outcomes, Forced: union(f.Selected, f.nodes(f.Ask.Forced)), Unavailable: f.nodes(f.Ask.Unavailable),
+		Costs: r.sheet.costs, MaxSets: r.limits.Sets,
+	})
 	a.Adjustment = found
 	a.Summary = found.Sentence
 	if len(f.Selected) > 0 {

@@ -16,6 +16,7 @@ type Ask struct {
 	Held                []string // variables; plates too where there is one exposure and one outcome
 	Fixed               []string // of a direct effect: what is kept at set values; nil = all that carries the effect
 	Effect              string   // "" = study.TotalEffect
+	Forced, Unavailable []string // in every set that is listed; in none
 	Incomplete          []string // variables that the data are known to have missing entries of; nil = nothing known
 }
 
@@ -57,7 +58,7 @@ func (f *Findings) lacks() string {
 	for _, part := range []struct {
 		ids []string
 		as  string
-	}{{a.Exposures, "the exposure"}, {a.Outcomes, "the outcome"}, {a.Given, "given"}, {a.Fixed, "fixed"}} {
+	}{{a.Exposures, "the exposure"}, {a.Outcomes, "the outcome"}, {a.Given, "given"}, {a.Fixed, "fixed"}, {a.Forced, "in every set"}, {a.Unavailable, "in no set"}} {
 		for _, id := range part.ids {
 			switch at := f.Graph.Index(id); {
 			case at >= 0 && at < f.Sheet:

@@ -54,18 +54,7 @@ type step func(*Findings)
 // ask finds the nodes that a question names and gives the steps that answer it:
 // what follows the hand first, then lists that can grow long.
 func (r *reader) ask(f *Findings) []step {
-	g := f.Graph
-	nodes := func(ids []string) []int {
-		out := []int{}
-		for _, id := range ids {
-			if v := g.Index(id); v >= 0 && v < f.Sheet {
-				out = append(out, v)
-			}
-		}
-		slices.Sort(out)
-		return slices.Compact(out)
-	}
-	f.Exposures, f.Outcomes, f.Given, f.Held = nodes(f.Ask.Exposures), nodes(f.Ask.Outcomes), nodes(f.Ask.Given), nodes(f.Ask.Held)
+	f.Exposures, f.Outcomes, f.Given, f.Held = f.nodes(f.Ask.Exposures), f.nodes(f.Ask.Outcomes), f.nodes(f.Ask.Given), f.nodes(f.Ask.Held)
 	f.Lacks = f.lacks()
 	if f.Lacks != "" {
 		f.Verdict = causal.Verdict{Kind: causal.Incomplete, Sentence: f.Lacks}
@@ -80,6 +69,18 @@ func (r *reader) ask(f *Findings) []step {
 		steps = append(steps, r.doors, r.instruments)
 	}
 	return append(steps, r.functionals, r.independences, r.tetrads, r.class, r.rivals)
+}
+
+// nodes finds variables on the sheet; others are left out.
+func (f *Findings) nodes(ids []string) []int {
+	out := []int{}
+	for _, id := range ids {
+		if v := f.Graph.Index(id); v >= 0 && v < f.Sheet {
+			out = append(out, v)
+		}
+	}
+	slices.Sort(out)
+	return slices.Compact(out)
 }
 
 // total is the reading of one exposure and one outcome in the rows that there
