@@ -11,6 +11,7 @@ import (
 // that every law can be evaluated row by row.
 type rowset struct {
 	n       int
+	picked  []int       // the used row of each
 	columns [][]float64 // per variable
 	of      [][]int32   // per plate: level of each row
 	counts  [][]float64 // per plate: rows of each level
@@ -44,7 +45,7 @@ func rowsOf(m *model.Model, asked *model.Subset, n int) *rowset {
 			pick[i] = asked.Rows[pick[i]]
 		}
 	}
-	s := &rowset{n: n}
+	s := &rowset{n: n, picked: pick}
 	for _, p := range m.Plates {
 		of := make([]int32, n)
 		for i, row := range pick {

@@ -8,6 +8,8 @@ import (
 // A bench is one goroutine's work space.
 type bench struct {
 	*simulation
+	rows     *rowset   // the simulation's, filled in by each draw where entries are missing
+	unknowns []unknown // these entries
 	w        *worker
 	weights  [][]float64 // of rows, for targets at the level of a row and then of each plate; nil where there are none
 	uniforms [][]float64 // per simulated step
@@ -23,7 +25,9 @@ type bench struct {
 }
 
 func newBench(s *simulation) *bench {
-	b := &bench{simulation: s, w: newWorker(s.rows, s.slots), weights: make([][]float64, 1+len(s.m.Plates))}
+	b := &bench{simulation: s, unknowns: s.rows.unknowns(s.resolver), weights: make([][]float64, 1+len(s.m.Plates))}
+	b.rows = s.rows.own(b.unknowns)
+	b.w = newWorker(b.rows, s.slots)
 	for k, pin := range s.plan.pins {
 		b.set = append(b.set, make([]float64, s.rows.n))
 		b.would = append(b.would, nil)
@@ -64,6 +68,7 @@ func newBench(s *simulation) *bench {
 func (b *bench) round(i, round int) {
 	b.fitted = b.draws[b.picked[i]]
 	b.w.draw = b.fitted
+	b.rows.fill(b.unknowns, b.fitted)
 	b.weigh(b.seeds[i])
 	for a := range b.sides {
 		clear(b.sides[a])
@@ -80,8 +85,10 @@ func (b *bench) round(i, round int) {
 		}
 	}
 	for replicate := range n {
-		for _, u := range b.uniforms {
-			stratified(u, rng)
+		if rng != nil {
+			for _, u := range b.uniforms {
+				stratified(u, rng)
+			}
 		}
 		b.replicate(replicate)
 	}
