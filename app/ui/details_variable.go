@@ -151,8 +151,8 @@ func (x *details) law(s *sheaf, v *study.Variable) {
 			d.changeLaw(v.ID, func(l *study.Law) { l.VariesBy = with(l.VariesBy, w, on) })
 		})
 	}
-	treat := map[string]string{"": "by the rules", "given": "given", "modelled": "modelled"}
-	s.choice("treat", "Treated as", []string{"by the rules", "given", "modelled"}, treat[law.Treat], func(word string) {
+	treat := map[string]string{"": "by the rules", "given": "given", "modelled": "modelled", "imputed": "imputed"}
+	s.choice("treat", "Treated as", []string{"by the rules", "given", "modelled", "imputed"}, treat[law.Treat], func(word string) {
 		if word == "by the rules" {
 			word = ""
 		}

@@ -81,13 +81,21 @@ func (s *suspect) firstRow(f *factor, q []float64) string {
 		columns[i], all = all[:n], all[n:]
 	}
 	scratch := make([]float64, 4*kernel.BlockRows)
-	for row, y := range v.Values {
+	for row := range v.Values {
+		at := row
+		if f.units != nil { // the arguments are those of the units that the law explains
+			if row == len(f.units) {
+				break
+			}
+			at = int(f.units[row])
+		}
+		y := v.Values[at]
 		for i, c := range columns {
 			args[i] = c[min(row, len(c)-1) : min(row, len(c)-1)+1]
 		}
 		term := f.form.Block(1, []float64{y}, args, nil, make([][]float64, len(args)), nil, scratch)
 		if math.IsNaN(term) || math.IsInf(term, 0) {
-			return " at " + s.unit(v, row) + ", where " + v.ID + " is " + strconv.FormatFloat(y, 'g', 6, 64)
+			return " at " + s.unit(v, at) + ", where " + v.ID + " is " + strconv.FormatFloat(y, 'g', 6, 64)
 		}
 	}
 	return ""

@@ -89,6 +89,7 @@ func lower(r *resolver, g group) (*Block, error) {
 		resolver: r,
 		b:        ops.NewBuilder(),
 		plates:   make(map[level]ops.Plate),
+		columns:  make(map[int]ops.Value),
 		natural:  make(map[int]ops.Value),
 	}
 	b := &Block{suspect: suspect{m: r.m, builder: l.b}}

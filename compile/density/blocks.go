@@ -94,6 +94,7 @@ func (r *resolver) priorReads(p *model.Parameter) ([]int, error) {
 // lawReads gives the parameters that a law reads.
 func (r *resolver) lawReads(l *model.Law) ([]int, error) {
 	exprs := slices.Concat(l.Predictors, l.Arguments)
+	exprs = append(exprs, &formula.Name{ID: r.m.Variables[l.Variable].ID})
 	reads, err := r.reads(nil, exprs...)
 	if err == nil && l.Cutpoints != "" {
 		reads, err = r.reads(reads, &formula.Name{ID: l.Cutpoints})
@@ -134,6 +135,9 @@ func (r *resolver) reads(to []int, exprs ...formula.Expr) ([]int, error) {
 
 func (r *resolver) readsName(to []int, id string) ([]int, error) {
 	kind, i, err := r.name(id)
+	if p, missing := r.unknowns[i]; missing && kind == isVariable { // a column with unknowns in it
+		kind, i = isParameter, p
+	}
 	if kind == isParameter {
 		to = append(to, i)
 	}

@@ -22,6 +22,7 @@ type lowering struct {
 	*resolver
 	b       *ops.Builder
 	plates  map[level]ops.Plate
+	columns map[int]ops.Value // variables with unknowns among their entries
 	natural map[int]ops.Value // parameters of the block on their natural scales
 }
 
@@ -121,9 +122,7 @@ func (l *lowering) value(kind what, i int, err error) (amount, error) {
 	case err != nil:
 		return amount{}, err
 	case kind == isVariable:
-		v := l.m.Variables[i]
-		at := level(v.Plate)
-		return amount{l.b.Data(l.plate(at), v.Values), at}, nil
+		return l.column(i), nil
 	}
 	p := l.m.Parameters[i]
 	switch p.Shape {

@@ -26,6 +26,7 @@ func (l *lowering) law(law *model.Law) (factor, error) {
 		return fail(err)
 	}
 	at := level(law.Plate)
+	y, on, observed := l.explained(law.Variable)
 	args := make([]ops.Value, len(exprs))
 	for i, e := range exprs {
 		x, err := l.express(e)
@@ -34,6 +35,9 @@ func (l *lowering) law(law *model.Law) (factor, error) {
 		}
 		if args[i], err = l.spread(x, at); err != nil {
 			return fail(err)
+		}
+		if observed != nil && x.at != everywhere {
+			args[i] = l.b.Gather(args[i], on, observed)
 		}
 	}
 	if law.Family.Link.Cumulative() {
@@ -48,8 +52,8 @@ func (l *lowering) law(law *model.Law) (factor, error) {
 			args = append(args, l.b.Element(l.natural[p], j))
 		}
 	}
-	value := l.b.Density(form, l.b.Data(l.plate(at), v.Values), args...)
-	return factor{what: "the law of " + v.ID, value: value, law: law, form: form, args: args}, nil
+	value := l.b.Density(form, y, args...)
+	return factor{what: "the law of " + v.ID, value: value, law: law, form: form, args: args, units: observed}, nil
 }
 
 // arguments lists a law's arguments in the order of the form that takes them:

@@ -20,6 +20,7 @@ type factor struct {
 	law   *model.Law      // nil for a prior
 	form  *kernel.Density // of the law, with the arguments it takes
 	args  []ops.Value
+	units []int32 // of the law, where some are left out; nil = all
 }
 
 // place lowers parameter i, whose coordinates start at offset: its natural
@@ -37,8 +38,11 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 		l.natural[i] = l.b.Const(only)
 		return l.b.Const(0), nil
 	}
-	if p.Shape == model.ByPlate {
+	switch p.Shape {
+	case model.ByPlate:
 		return l.placeByPlate(i, offset)
+	case model.Unrecorded:
+		return l.placeUnrecorded(i, offset)
 	}
 	u := l.b.Parameter(offset, l.vectorPlate(p.Name, n))
 	switch p.Shape {

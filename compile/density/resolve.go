@@ -19,6 +19,7 @@ type resolver struct {
 	variables map[string]int
 	params    map[string]int
 	codes     map[int][]int32    // of a category or ordered variable, at its own level
+	unknowns  map[int]int        // parameter that a variable's missing entries are
 	nests     map[[2]int][]int32 // level of the coarse plate for each level of the fine one
 }
 
@@ -29,6 +30,7 @@ func newResolver(m *model.Model) *resolver {
 		variables: make(map[string]int),
 		params:    make(map[string]int),
 		codes:     make(map[int][]int32),
+		unknowns:  make(map[int]int),
 		nests:     make(map[[2]int][]int32),
 	}
 	for i, v := range m.Variables {
@@ -36,6 +38,9 @@ func newResolver(m *model.Model) *resolver {
 	}
 	for i, p := range m.Parameters {
 		r.params[p.Name] = i
+		if p.Shape == model.Unrecorded {
+			r.unknowns[p.Of] = i
+		}
 	}
 	return r
 }

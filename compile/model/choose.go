@@ -51,7 +51,7 @@ func (b *builder) chooseFull() {
 				Message: fmt.Sprintf("%s is the outcome of the question, but set to be given: no law of it would be fitted.", v.ID),
 				Repairs: []Repair{{Label: "Model it", Edit: b.changeLaw(v.ID, func(l *study.Law) { l.Treat = "" })}}})
 		}
-		if d.user.Treat == "modelled" || d.user.Treat != "given" && explained {
+		if d.user.Treat == study.Modelled || d.user.Treat == study.Imputed || d.user.Treat != "given" && explained {
 			b.drafts = append(b.drafts, d)
 		}
 	}

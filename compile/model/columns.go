@@ -20,6 +20,7 @@ type column struct {
 	plate    int // in builder.plates, −1 = row
 	computed formula.Expr
 	done     bool
+	imputed  bool   // missing entries stay: they are unknowns, or nothing reads them
 	nudged   []bool // rows whose exact end was moved inwards; nil if none
 }
 

@@ -20,6 +20,7 @@ func (b *builder) explain(string) {
 	if b.broken {
 		return
 	}
+	b.unrecorded()
 	if len(b.model.Laws) == 0 {
 		b.stop(Problem{Code: "nothing", Place: "sheet", Message: "There is nothing to fit on this sheet yet: draw an arrow into a measured variable."})
 	}

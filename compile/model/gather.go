@@ -245,8 +245,11 @@ func (b *builder) selectRows(order []string) {
 		}
 	}
 	for _, id := range order {
-		if c := b.columns[id]; c.computed == nil {
-			lost(id, drop(keep, c.values, b.outside))
+		c := b.columns[id]
+		if c.computed == nil {
+			if c.imputed = b.imputes(c); !c.imputed {
+				lost(id, drop(keep, c.values, b.outside))
+			}
 		}
 	}
 	for _, p := range b.plates {
@@ -377,6 +380,9 @@ func (b *builder) keepVariable(c *column) {
 				out.Values[p.Of[i]] = c.values[row]
 			}
 		}
+	}
+	if c.imputed {
+		out.standIn()
 	}
 	if c.nudged != nil {
 		out.Nudge = v.Nudge

@@ -76,6 +76,7 @@ type Variable struct {
 	RangeGiven      bool      // false: seen in the data, and every prior made from it says so
 	Computed        formula.Expr
 	MeanOf          string  // the variable whose mean within the groups of Plate this is, as observed (SEMANTICS A6); "" = none
+	Missing         []int32 // units whose entries are missing and not lost: Values holds a stand-in there (SEMANTICS A2)
 	ShareOf         string  // with MeanOf: the level whose share it is instead; "" = the mean
 	Nudge           float64 // exact ends of the scale were moved inwards by this …
 	Nudged          int     // … in so many used rows
@@ -165,12 +166,13 @@ type Shape int
 
 // The shapes.
 const (
-	Scalar  Shape = iota
-	Vector        // entries free
-	ZeroSum       // entries sum to zero; Prior, a normal with mean 0, is of the DIFFERENCE of any two entries: entries = B z with B orthonormal and z ~ normal(0, sd/√2)
-	Simplex       // entries positive with sum 1
-	ByPlate       // one entry per level of a plate, normal around Mean with sd SD; Prior is empty
-	Cuts          // K-1 ordered cut points; the K shares of the levels at predictor 0 are Dirichlet(1); Prior is empty
+	Scalar     Shape = iota
+	Vector           // entries free
+	ZeroSum          // entries sum to zero; Prior, a normal with mean 0, is of the DIFFERENCE of any two entries: entries = B z with B orthonormal and z ~ normal(0, sd/√2)
+	Simplex          // entries positive with sum 1
+	ByPlate          // one entry per level of a plate, normal around Mean with sd SD; Prior is empty
+	Unrecorded       // missing entries of the variable Of, in the order of Variable.Missing; its law is their prior, and Prior is empty
+	Cuts             // K-1 ordered cut points; the K shares of the levels at predictor 0 are Dirichlet(1); Prior is empty
 )
 
 // A Parameter is an unknown of the model. Its typed name is canonical.

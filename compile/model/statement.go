@@ -352,7 +352,7 @@ func (w *writer) owner(p *Parameter) string {
 func (w *writer) priors() {
 	first := true
 	for _, p := range w.m.Parameters {
-		if p.Shape == ByPlate {
+		if p.Shape == ByPlate || p.Shape == Unrecorded {
 			continue
 		}
 		if first {
@@ -440,6 +440,11 @@ func (w *writer) notes() {
 	for _, l := range slices.Backward(w.m.Laws) {
 		for _, p := range l.Within {
 			w.within(l, p)
+		}
+	}
+	for i, v := range w.m.Variables {
+		if n := len(v.Missing); n > 0 {
+			w.line(Line{Kind: NoteLine, Variable: v.ID, Right: w.m.missing(i, n)})
 		}
 	}
 	for _, v := range w.m.Variables {

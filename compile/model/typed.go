@@ -94,6 +94,8 @@ func (w *writer) typedPrior(p *Parameter) string {
 			mean = p.Mean
 		}
 		return fmt.Sprintf("%s by %s ~ normal with mean %s, sd %s", p.Stem, w.m.Plates[p.Plate].Name, mean, p.SD)
+	case Unrecorded:
+		return fmt.Sprintf("# %s: %s of %s, unknowns of its law", p.Name, entriesOf(p.Size), w.m.Variables[p.Of].ID)
 	case Cuts:
 		return "# " + p.Name + ": log odds of the running sums of shares, which are Dirichlet with all 1"
 	}

@@ -205,7 +205,7 @@ func readLaw(o *object) *Law {
 	o.named("priors", func(name, text string) {
 		l.Priors = append(l.Priors, Prior{name, text})
 	})
-	l.Treat = o.oneOf("treat", "a treatment", Given, Modelled)
+	l.Treat = o.oneOf("treat", "a treatment", Given, Modelled, Imputed)
 	l.Note = o.text("note")
 	return copyLaw(l)
 }

@@ -154,7 +154,7 @@ type Law struct {
 	Formula   string     // the predictor as text, "log rate = alpha_bees by farm + …"; "" = from the arrows
 	VariesBy  []string   // plates over which the baseline varies
 	Priors    []Prior    // priors that differ from the defaults, by typed parameter name; also declares free parameters of Formula
-	Treat     string     // "" = by the rules, "given" or "modelled"
+	Treat     string     // "" = by the rules, "given", "modelled", or "imputed": modelled, its missing entries drawn with the rest
 	Note      string
 }
 
@@ -227,6 +227,7 @@ const (
 
 	Given    = "given"
 	Modelled = "modelled"
+	Imputed  = "imputed"
 )
 
 // A Question asks for one contrast. Held marks belong to it, never to a rival.

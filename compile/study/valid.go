@@ -262,7 +262,7 @@ var forms = [...]string{Slope, Steps, Offset}
 
 func (c *checker) checkLaw(n *Node) {
 	l := n.Law
-	c.insist(l.Treat == "" || l.Treat == Given || l.Treat == Modelled, n, "%s is to be treated as “%s”; what can be is given or modelled", n.Variable, l.Treat)
+	c.insist(l.Treat == "" || l.Treat == Given || l.Treat == Modelled || l.Treat == Imputed, n, "%s is to be treated as “%s”; what can be is given, modelled or imputed", n.Variable, l.Treat)
 	c.plateNames(n, "the law of "+n.Variable, l.VariesBy)
 	for _, a := range l.Arguments {
 		c.insist(a.Name != "", n, "an argument in the law of %s has no name", n.Variable)
