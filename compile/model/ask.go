@@ -18,18 +18,18 @@ func (b *builder) asked(c study.Condition) {
 	v, drop := b.variable(id), b.unasked(c)
 	switch {
 	case v == nil:
-		b.asks("subset", id, fmt.Sprintf("The question asks about rows with %s, but the study has no such variable.", ConditionWords(c)), drop...)
+		b.asks("subset", id, fmt.Sprintf("The question asks about rows where %s, but the study has no such variable.", b.words(c)), drop...)
 		return
 	case v.Unmeasured:
-		b.asks("subset", id, fmt.Sprintf("%s was not measured, so nobody can tell which rows have %s: choose rows by what was measured.", id, ConditionWords(c)), drop...)
+		b.asks("subset", id, fmt.Sprintf("%s was not measured, so nobody can tell in which rows %s: choose rows by what was measured.", id, b.words(c)), drop...)
 		return
 	case id == q.Outcome:
 		b.asks("subset", id, fmt.Sprintf("%s is the outcome: rows cannot be chosen by what the question is about.", id), drop...)
 		return
 	case !b.onSheet(id):
 		put := Repair{Label: "Put " + id + " on the sheet", Edit: study.AddNode{Rival: b.rival.Name, Variable: id}}
-		b.asks("subset", id, fmt.Sprintf("The question asks about rows with %s, but %s is not on the sheet of %s, so nothing says whether %s acts on it.",
-			ConditionWords(c), id, b.rival.Name, q.Exposure), append([]Repair{put}, drop...)...)
+		b.asks("subset", id, fmt.Sprintf("The question asks about rows where %s, but %s is not on the sheet of %s, so nothing says whether %s acts on it.",
+			b.words(c), id, b.rival.Name, q.Exposure), append([]Repair{put}, drop...)...)
 		return
 	}
 	set := []string{q.Exposure}
@@ -42,9 +42,9 @@ func (b *builder) asked(c study.Condition) {
 		if x < 0 || x == at || !b.graph.Descendants(x)[at] {
 			continue
 		}
-		message := fmt.Sprintf("%s comes after %s, so setting %s would change which rows have %s: ask about rows by something %s does not act on, or drop the condition.", id, s, s, ConditionWords(c), s)
+		message := fmt.Sprintf("%s comes after %s, so setting %s would change in which rows %s: choose rows by something %s does not act on, or drop the condition.", id, s, s, b.words(c), s)
 		if y := b.graph.Index(q.Outcome); y >= 0 && s == q.Exposure && causal.IdentifiableGiven(b.graph, x, y, []int{at}) {
-			message += fmt.Sprintf(" Among those who have it once %s is set, the effect is identified; it is not computed by this version.", s)
+			message += fmt.Sprintf(" Among the rows in which that is so once %s is set, the effect is identified; it is not computed by this version.", s)
 		}
 		b.asks("subset", id, message, drop...)
 		return

@@ -14,32 +14,33 @@ import (
 type Subset struct {
 	Rows    []int  // places among the used rows, ascending
 	Lacking []Loss // used rows outside it because an entry of a condition's variable is missing
-	Words   string // "soil “clay” or “sand”, temp from 10 to 30"
+	Words   string // "soil is clay or sand and temp is from 10 to 30 °C"
 }
 
-// ConditionWords says what a condition asks of a row: "temp at least 10".
-func ConditionWords(c study.Condition) string {
-	switch {
-	case len(c.Words) > 0:
-		return c.Variable + " " + strings.Join(quoted(c.Words), " or ")
-	case c.Low != nil && c.High != nil && *c.Low == *c.High:
-		return c.Variable + " " + short(*c.Low)
-	case c.Low != nil && c.High != nil:
-		return fmt.Sprintf("%s from %s to %s", c.Variable, short(*c.Low), short(*c.High))
-	case c.Low != nil:
-		return c.Variable + " at least " + short(*c.Low)
-	case c.High != nil:
-		return c.Variable + " at most " + short(*c.High)
-	}
-	return c.Variable
-}
-
-func conditionsWords(conditions []study.Condition) string {
-	words := make([]string, len(conditions))
+// words says what conditions ask of a row: "temp is at least 10 °C".
+func (b *builder) words(conditions ...study.Condition) string {
+	out := make([]string, len(conditions))
 	for i, c := range conditions {
-		words[i] = ConditionWords(c)
+		unit := ""
+		if v := b.variable(c.Variable); v != nil && v.Unit != "" {
+			unit = " " + v.Unit
+		}
+		text := "anything"
+		switch {
+		case len(c.Words) > 0:
+			text = strings.Join(c.Words, " or ")
+		case c.Low != nil && c.High != nil && *c.Low == *c.High:
+			text = short(*c.Low) + unit
+		case c.Low != nil && c.High != nil:
+			text = fmt.Sprintf("from %s to %s%s", short(*c.Low), short(*c.High), unit)
+		case c.Low != nil:
+			text = "at least " + short(*c.Low) + unit
+		case c.High != nil:
+			text = "at most " + short(*c.High) + unit
+		}
+		out[i] = c.Variable + " is " + text
 	}
-	return strings.Join(words, ", ")
+	return list(out)
 }
 
 // A test is a condition read against its variable's column.
@@ -183,7 +184,7 @@ func (b *builder) filter(order []string) {
 		left--
 	}
 	if left == 0 {
-		p := Problem{Code: "row-filter", Variable: data.Keep[0].Variable, Place: "row filter", Message: fmt.Sprintf("The row filter leaves none of the %d rows of %s: no row has %s.", b.table.Rows, data.Name, conditionsWords(data.Keep))}
+		p := Problem{Code: "row-filter", Variable: data.Keep[0].Variable, Place: "row filter", Message: fmt.Sprintf("The row filter leaves none of the %d rows of %s: in no row %s.", b.table.Rows, data.Name, b.words(data.Keep...))}
 		for _, c := range data.Keep {
 			p.Repairs = append(p.Repairs, drop(c))
 		}
@@ -211,7 +212,7 @@ func (b *builder) filter(order []string) {
 
 // filterSays warns of a row filter on a variable of the sheet (SEMANTICS A7).
 func (b *builder) filterSays(c study.Condition) string {
-	text := fmt.Sprintf("Only rows with %s are used, and %s is on the sheet: every number is of such rows", ConditionWords(c), c.Variable)
+	text := fmt.Sprintf("Only rows where %s are used, and %s is on the sheet: every number is of such rows", b.words(c), c.Variable)
 	at, q := b.graph.Index(c.Variable), b.question
 	for _, end := range []string{q.Outcome, q.Exposure} {
 		if i := b.graph.Index(end); i >= 0 && b.graph.Descendants(i)[at] {
@@ -241,7 +242,7 @@ func (b *builder) subset() {
 	if failed {
 		return
 	}
-	out := &Subset{Words: conditionsWords(q.Where)}
+	out := &Subset{Words: b.words(q.Where...)}
 	lacking := make([]int, len(tests))
 	for i, row := range b.model.Rows.Index {
 		in := true
@@ -266,7 +267,7 @@ func (b *builder) subset() {
 			repairs = append(repairs, b.unasked(c)...)
 		}
 		if b.kind == Full {
-			b.asks("subset", q.Where[0].Variable, fmt.Sprintf("None of the %d used rows has %s: there is nobody to ask about.", b.model.Rows.Used, out.Words), repairs...)
+			b.asks("subset", q.Where[0].Variable, fmt.Sprintf("In none of the %d used rows %s: there is nothing to average over.", b.model.Rows.Used, out.Words), repairs...)
 		}
 		return
 	}

@@ -10,6 +10,8 @@ import (
 
 func at(x float64) *study.Setting { return &study.Setting{Number: x} }
 
+func bound(x float64) *float64 { return &x }
+
 func word(w string) *study.Setting { return &study.Setting{Word: w} }
 
 // Mistakes of a question are found without a fit, and leave the fit alone.
@@ -168,6 +170,103 @@ func TestQuestions(t *testing.T) {
 			asks:    func(q *study.Question) { q.Outcome, q.As, q.Held = "pesticide", study.Ratio, nil },
 			message: "pesticide is a real number that can be 0 or below: a ratio of its averages depends on where 0 lies, and says nothing near it. Ask for a difference.",
 			labels:  "Ask for the difference",
+		},
+		{
+			name: "rows by what comes after the exposure", code: "question-subset",
+			asks: func(q *study.Question) {
+				q.Where = []study.Condition{{Variable: "flowers", Low: bound(0.1), High: bound(0.3)}}
+			},
+			message: "flowers comes after hedge, so setting hedge would change in which rows flowers is from 0.1 to 0.3: choose rows by something hedge does not act on, or drop the condition. Among the rows in which that is so once hedge is set, the effect is identified; it is not computed by this version.",
+			labels:  "Drop the condition on flowers",
+		},
+		{
+			name: "rows by the outcome", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "bees", Low: bound(3)}} },
+			message: "bees is the outcome: rows cannot be chosen by what the question is about.",
+			labels:  "Drop the condition on bees",
+		},
+		{
+			name: "rows by what was not measured", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "attitude", High: bound(0)}} },
+			message: "attitude was not measured, so nobody can tell in which rows attitude is at most 0: choose rows by what was measured.",
+			labels:  "Drop the condition on attitude",
+		},
+		{
+			name: "rows by an unknown level", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "soil", Words: []string{"peat"}}} },
+			message: "The rows asked about cannot be told: soil has no level “peat”; it has “chalk”, “clay” and “sand”.",
+			labels:  "Drop the condition on soil",
+		},
+		{
+			name: "rows by a word of a number", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "temp", Words: []string{"warm"}}} },
+			message: "The rows asked about cannot be told: “warm” is no value of temp, which is a real number: give bounds.",
+			labels:  "Drop the condition on temp",
+		},
+		{
+			name: "rows by bounds of levels", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "soil", Low: bound(1)}} },
+			message: "The rows asked about cannot be told: soil has levels and no bounds: say which of “chalk”, “clay” and “sand” are meant.",
+			labels:  "Drop the condition on soil",
+		},
+		{
+			name: "no such rows", code: "question-subset",
+			asks:    func(q *study.Question) { q.Where = []study.Condition{{Variable: "temp", Low: bound(40)}} },
+			message: "In none of the 58 used rows temp is at least 40 °C: there is nothing to average over.",
+			labels:  "Drop the condition on temp",
+		},
+		{
+			name: "a direct effect with nothing fixed", code: "question-fixed",
+			asks:    func(q *study.Question) { q.Effect = study.DirectEffect },
+			message: "A controlled direct effect of hedge needs at least one variable on the way that is kept at a value: say which, and at which value.",
+			labels:  "Keep flowers at 0.2444|Ask for the total effect",
+		},
+		{
+			name: "an impossible value fixed", code: "question-value",
+			asks: func(q *study.Question) {
+				q.Effect, q.Fixed = study.DirectEffect, []study.Fix{{Variable: "flowers", At: study.Setting{Number: 7}}}
+			},
+			message: "flowers cannot be 7: it is a proportion, between 0 and 1.",
+			labels:  "Keep flowers at 0.2444",
+		},
+		{
+			name: "a fixed variable that was not measured", code: "question-unmeasured",
+			asks: func(q *study.Question) {
+				q.Effect, q.Fixed = study.DirectEffect, []study.Fix{{Variable: "attitude"}, {Variable: "flowers", At: study.Setting{Number: 0.2}}}
+			},
+			message: "attitude is fixed, but was not measured.",
+			labels:  "Do not fix attitude",
+		},
+		{
+			name: "new groups without a plate", code: "question-groups",
+			study:   func(s *study.Study) { s.Plates, s.Rivals[0].Diagram.Node("bees").Law = nil, nil },
+			asks:    func(q *study.Question) { q.Groups = study.NewGroups },
+			message: "The question asks about new groups, but there is no plate over which groups could be new.",
+			labels:  "Ask about these groups",
+		},
+		{
+			name: "new groups of which nothing varies", code: "question-groups",
+			study:   func(s *study.Study) { s.Rivals[0].Diagram.Node("bees").Law = nil },
+			asks:    func(q *study.Question) { q.Groups = study.NewGroups },
+			message: "The question asks about new groups, but nothing in this rival varies by farm: let the baseline of bees vary by it, or ask about these groups.",
+			labels:  "Ask about these groups",
+		},
+		{
+			name: "new groups from one", code: "question-groups",
+			table: func(t *table.Table) {
+				c := t.Column("farm")
+				c.Levels, c.Codes = []string{"home"}, make([]int32, t.Rows)
+			},
+			asks:    func(q *study.Question) { q.Groups = study.NewGroups },
+			message: "farm has one level in the used rows, home: how far levels lie apart cannot be learned from one, so nothing can be said of new ones.",
+			labels:  "Ask about these groups",
+		},
+		{
+			name: "weights by groups without a plate", code: "question-weigh",
+			study:   func(s *study.Study) { s.Plates, s.Rivals[0].Diagram.Node("bees").Law = nil, nil },
+			asks:    func(q *study.Question) { q.Weigh = study.ByGroups },
+			message: "Groups are to count the same, but there is no plate that would make groups of the rows.",
+			labels:  "Weigh by rows",
 		},
 	} {
 		t.Run(c.name, func(t *testing.T) {
