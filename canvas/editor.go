@@ -83,6 +83,9 @@ func (e *Editor) SetInput(in scene.Input) {
 	if in.Palette == (scene.Palette{}) {
 		in.Palette = was.Palette
 	}
+	if in.At == nil && in.Study == was.Study && in.Rival == was.Rival && in.Question == was.Question {
+		in.At = was.At // a layout of a thousand variables takes longer than a frame
+	}
 	if in.At == nil {
 		in.At = scene.Places(in.Study, in.Rival, in.Question)
 	}

@@ -53,9 +53,9 @@ func (l *ledger) update() {
 	missing := 0
 	for _, x := range v.Study.Variables {
 		rows = append(rows, rollRow{
-			key:    "variable " + x.ID,
-			height: func(float32) float32 { return height },
-			build:  func() fyne.CanvasObject { return l.row(x) },
+			key:   "variable " + x.ID,
+			guess: func(float32) float32 { return height },
+			build: func() fyne.CanvasObject { return l.row(x) },
 		})
 		if !l.on[x.ID] {
 			missing++

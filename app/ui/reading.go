@@ -23,6 +23,7 @@ type readingPage struct {
 	open    bool   // list open paths only
 	through bool   // list paths through what is picked only
 	lines   []readingLine
+	line    float32 // height of a line of prose
 	seen    readingState
 	asked   bool
 }
@@ -67,7 +68,7 @@ func (p *readingPage) update() {
 
 func (p *readingPage) fill() {
 	v := p.d.view
-	p.lines = nil
+	p.lines, p.line = nil, fyne.MeasureText("Mg", sizeBody, fyne.TextStyle{}).Height+2
 	var rows []rollRow
 	switch {
 	case v.GraphError != nil:
@@ -126,16 +127,13 @@ func (p *readingPage) fillNav() {
 	var rows []rollRow
 	for _, s := range subjects(p.d) {
 		rows = append(rows, rollRow{
-			key:    s.name,
-			height: func(float32) float32 { return navHeight() },
-			build:  func() fyne.CanvasObject { return p.subject(s) },
+			key:   s.name,
+			guess: func(float32) float32 { return p.line + 3 },
+			build: func() fyne.CanvasObject { return p.subject(s) },
 		})
 	}
 	p.nav.fill(rows...)
 }
-
-// navHeight follows the size of the type, not a number of pixels.
-func navHeight() float32 { return fyne.MeasureText("Mg", sizeBody, fyne.TextStyle{}).Height + 5 }
 
 func (p *readingPage) subject(s *subject) *press {
 	token := tokenInk
@@ -231,7 +229,7 @@ func (p *readingPage) pin(l *readingLine) {
 type navLayout struct{}
 
 func (navLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
-	w := min(228, 0.36*s.Width)
+	w := min(246, 0.36*s.Width)
 	place(o[0], 0, 0, w, s.Height)
 	place(o[1], w, 8, 1, s.Height-16)
 	place(o[2], w+1, 0, s.Width-w-1, s.Height)

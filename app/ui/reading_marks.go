@@ -30,6 +30,10 @@ func markOf(f *findings.Findings, section string, i int, x *findings.Finding) *s
 		if m := beyondMark(f, x); m != nil {
 			return m
 		}
+	case findings.ContradictionSection:
+		if m := promiseMark(x); m != nil {
+			return m
+		}
 	case findings.EquivalenceSection:
 		if len(x.Edges) > 0 {
 			m := &scene.Mark{}
@@ -74,6 +78,20 @@ func beyondMark(f *findings.Findings, x *findings.Finding) *scene.Mark {
 		}
 	}
 	return nil
+}
+
+// promiseMark shows an independence as the pair that no arrow joins, what is
+// known as held; nil for what is no independence. The key has the names.
+func promiseMark(x *findings.Finding) *scene.Mark {
+	parts := strings.Split(x.Key, " | ")
+	if len(parts) != 3 {
+		return nil
+	}
+	m := &scene.Mark{Ring: parts[:2], Apart: [][2]string{{parts[0], parts[1]}}}
+	if parts[2] != "" {
+		m.Box = strings.Split(parts[2], ", ")
+	}
+	return m
 }
 
 // lookOf marks a path that begins at the exposure and follows the arrows as

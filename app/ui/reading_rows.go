@@ -71,7 +71,7 @@ func (l *readingLine) action(d *desk) (string, func()) {
 	return l.does, l.act
 }
 
-const kindColumn = 108 // width of the column of kinds
+const kindColumn = 122 // width of the column of kinds
 
 // columns is the room for the kind, the sentence and the action at a width.
 func (l *readingLine) columns(width float32, action string) (kind, text, button float32) {
@@ -89,6 +89,10 @@ func (l *readingLine) columns(width float32, action string) (kind, text, button 
 
 const rowPad = 6
 
+// longSentence is how many letters a sentence has when its reason begins a
+// line of its own.
+const longSentence = 180
+
 func (l *readingLine) spans() []span {
 	token := tokenInk
 	if l.tone == quietTone || l.aside != "" {
@@ -96,7 +100,11 @@ func (l *readingLine) spans() []span {
 	}
 	out := []span{{text: l.text, token: token, bold: l.strong}}
 	if l.why != "" {
-		out = append(out, span{text: " " + l.why, token: tokenMuted})
+		gap := " "
+		if len(l.text) > longSentence {
+			gap = "\n"
+		}
+		out = append(out, span{text: gap + l.why, token: tokenMuted})
 	}
 	if l.aside != "" {
 		out = append(out, span{text: " Set aside: " + l.aside, token: tokenMuted, italic: true})
@@ -110,13 +118,11 @@ func (p *readingPage) row(i int) rollRow {
 	action, act := l.action(p.d)
 	return rollRow{
 		key: l.key,
-		height: func(width float32) float32 {
+		guess: func(width float32) float32 {
 			_, text, _ := l.columns(width, action)
-			h := (&prose{spans: l.spans(), size: sizeBody}).HeightFor(text)
-			if action != "" {
-				h = max(h, fyne.MeasureText("Mg", sizeBody, fyne.TextStyle{}).Height+6)
-			}
-			return h + 6
+			letters := float32(len(l.text) + len(l.why) + len(l.aside))
+			lines := 1 + int(letters*0.52*sizeBody/max(text, 1))
+			return float32(lines)*p.line + 6
 		},
 		build: func() fyne.CanvasObject { return p.press(l, action, act) },
 	}
@@ -182,6 +188,15 @@ func (l *lineLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
 	if len(o) > 3 {
 		place(o[3], s.Width-button, 0, button, first+2)
 	}
+}
+
+func (l *lineLayout) heightFor(o []fyne.CanvasObject, width float32) float32 {
+	_, text, button := l.line.columns(width+2*rowPad, l.action)
+	h := heightFor(o[2], text)
+	if button > 0 {
+		h = max(h, heightFor(o[3], button))
+	}
+	return h
 }
 
 func (l *lineLayout) MinSize([]fyne.CanvasObject) fyne.Size { return fyne.NewSize(40, 20) }

@@ -61,8 +61,8 @@ func subjectOf(d *desk, name string) *subject {
 		return s
 	}
 	s.count = len(s.section.Findings)
-	if s.section.Summary != "" {
-		s.says = append(s.says, s.section.Summary)
+	if text := s.summary(); text != "" {
+		s.says = append(s.says, text)
 	}
 	if s.section.LeftOut != "" {
 		s.left = append(s.left, s.section.LeftOut)
@@ -82,6 +82,15 @@ func subjectOf(d *desk, name string) *subject {
 		s.tested(d)
 	}
 	return s
+}
+
+// summary is the section's, without a sentence that stands in the first row.
+func (s *subject) summary() string {
+	text := s.section.Summary
+	if len(s.section.Findings) > 0 {
+		text = strings.TrimPrefix(text, s.section.Findings[0].Sentence)
+	}
+	return strings.TrimSpace(text)
 }
 
 // tested puts what the data say beside what they could contradict.

@@ -12,6 +12,9 @@ import (
 // so that a thousand cost no more than a screenful. Up, Down, Home, End and the
 // page keys walk from row to row. Rebuilt, it keeps its scroll position, and
 // the keyboard stays with the row of the same key.
+//
+// To measure a thousand sentences takes longer than a hand waits, so rows are
+// as high as they are guessed to be until they are made.
 type roll struct {
 	widget.BaseWidget
 	padX, padY, gap float32
@@ -24,11 +27,11 @@ type roll struct {
 	width           float32                   // that tops are for
 }
 
-// A rollRow is a row before it is made. Its height must be known without it.
+// A rollRow is a row before it is made.
 type rollRow struct {
-	key    string // of a row that takes the keyboard; "" = it does not
-	height func(width float32) float32
-	build  func() fyne.CanvasObject
+	key   string                      // of a row that takes the keyboard; "" = it does not
+	guess func(width float32) float32 // of its height
+	build func() fyne.CanvasObject
 }
 
 func newRoll(padX, padY, gap float32) *roll {
@@ -42,7 +45,7 @@ func newRoll(padX, padY, gap float32) *roll {
 
 // still is a row of something that is made already and takes no keyboard.
 func still(o fyne.CanvasObject) rollRow {
-	return rollRow{height: func(w float32) float32 { return heightFor(o, w) }, build: func() fyne.CanvasObject { return o }}
+	return rollRow{guess: func(w float32) float32 { return heightFor(o, w) }, build: func() fyne.CanvasObject { return o }}
 }
 
 // fill replaces the rows.
@@ -218,19 +221,44 @@ func (r *roll) arrange() {
 		y := r.padY
 		for i := range r.rows {
 			r.tops = append(r.tops, y)
-			y += r.rows[i].height(s.Width-2*r.padX) + r.gap
+			y += r.rows[i].guess(s.Width-2*r.padX) + r.gap
 		}
 		r.tops = append(r.tops, y)
+		for i, o := range r.live {
+			r.fit(i, o)
+		}
 		for i, o := range r.live {
 			r.put(i, o)
 		}
 	}
+	r.grow()
+	r.show()
+}
+
+// fit gives a row that is made the height that it needs; it reports whether
+// those below had to move.
+func (r *roll) fit(i int, o fyne.CanvasObject) bool {
+	more := heightFor(o, r.width-2*r.padX) + r.gap - (r.tops[i+1] - r.tops[i])
+	if more > -0.5 && more < 0.5 {
+		return false
+	}
+	for j := i + 1; j < len(r.tops); j++ {
+		r.tops[j] += more
+	}
+	if r.tops[i] < r.scroll.Offset.Y { // what is seen stays where it is
+		r.scroll.Offset.Y = max(0, r.scroll.Offset.Y+more)
+	}
+	return true
+}
+
+// grow makes the content as high as its rows.
+func (r *roll) grow() {
+	s := r.Size()
 	h := max(r.tops[len(r.rows)]-r.gap+r.padY, s.Height)
 	r.content.Resize(fyne.NewSize(s.Width, h))
 	if limit := h - s.Height; r.scroll.Offset.Y > limit {
 		r.scroll.ScrollToOffset(fyne.NewPos(0, limit))
 	}
-	r.show()
 }
 
 // show makes the rows in view, and forgets those far from it but the one with
@@ -240,9 +268,23 @@ func (r *roll) show() {
 	if len(r.tops) != len(r.rows)+1 || r.width <= 0 {
 		return
 	}
-	top, bottom := r.scroll.Offset.Y-h/2, r.scroll.Offset.Y+1.5*h
-	first := sort.Search(len(r.rows), func(i int) bool { return r.tops[i+1] > top })
-	last := sort.Search(len(r.rows), func(i int) bool { return r.tops[i] > bottom })
+	first, last := r.near(h)
+	for range 3 { // rows that turn out lower let others come into view
+		moved := false
+		for i := first; i < last; i++ {
+			made := r.live[i] == nil
+			moved = made && r.fit(i, r.make(i)) || moved
+		}
+		if !moved {
+			break
+		}
+		for i, o := range r.live {
+			r.put(i, o)
+		}
+		r.grow()
+		r.scroll.Refresh()
+		first, last = r.near(h)
+	}
 	c := fyne.CurrentApp().Driver().CanvasForObject(r)
 	kept := r.content.Objects[:0:0]
 	for i, o := range r.live {
@@ -254,11 +296,15 @@ func (r *roll) show() {
 		kept = append(kept, o)
 	}
 	r.content.Objects = kept
-	for i := first; i < last; i++ {
-		r.make(i)
-	}
 	r.sort()
 	r.content.Refresh()
+}
+
+// near gives the rows in view and half a screen around.
+func (r *roll) near(h float32) (first, last int) {
+	top, bottom := r.scroll.Offset.Y-h/2, r.scroll.Offset.Y+1.5*h
+	first = sort.Search(len(r.rows), func(i int) bool { return r.tops[i+1] > top })
+	return first, sort.Search(len(r.rows), func(i int) bool { return r.tops[i] > bottom })
 }
 
 func (r *roll) Resize(s fyne.Size) {

@@ -85,8 +85,11 @@ func (b *builder) others(d *draft) []string {
 	for _, a := range d.arrows {
 		all = append(all, a.From)
 	}
+	// Where nothing is typed only carried ones can be met: on a large sheet the
+	// rest would be a million names.
+	typed := d.user.Formula != "" || len(d.user.Priors) > 0
 	for _, n := range b.graph.Names {
-		if n != d.variable.ID && !hasArrow(d.arrows, n) {
+		if n != d.variable.ID && !hasArrow(d.arrows, n) && (typed || carries(d, n)) {
 			all = append(all, n)
 		}
 	}
