@@ -45,6 +45,7 @@ type content struct {
 	Figure                 template.HTML
 	Answer                 []string
 	HowWrong               []string
+	Strength               template.HTML
 	Plots                  template.HTML
 	Statement              []statementLine
 	Quantities             []row
@@ -106,6 +107,11 @@ func contentOf(in Input) (*content, error) {
 		c.Fitted, c.Seed = true, r.Seed
 		c.Answer = words.Effect(in.Study, r)
 		c.HowWrong = words.HowWrong(r.Effect)
+		if e := r.Effect; e != nil && e.Sensitivity != nil && e.Sensitivity.Robustness != nil {
+			if c.Strength, err = svg(draw.StrengthPlot(420, 260, paint.Strength(e.Sensitivity), PlotStyle(scene.Light()))); err != nil {
+				return nil, err
+			}
+		}
 		c.Trust = r.Trust().String()
 		c.Rows = words.Rows(r.Full.Model.Rows)
 		c.Statement = statementOf(r.Full.Model)

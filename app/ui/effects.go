@@ -110,6 +110,7 @@ func (p *effectPage) update() {
 		grid.Add(p.card(c, zero, low, high))
 	}
 	objects = append(objects, grid)
+	objects = append(objects, p.howWrong()...)
 	p.pane.fill(nil, objects...)
 }
 

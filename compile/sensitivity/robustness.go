@@ -30,11 +30,17 @@ func RobustnessValue(t, freedom, q float64) float64 {
 // RobustnessLimit is the share that would bring the interval of a level to the
 // estimate with part q taken away; 0 if it is there already.
 func RobustnessLimit(t, freedom, q, level float64) float64 {
-	f := q*math.Abs(t)/math.Sqrt(freedom) - quantileT((1+level)/2, freedom-1)/math.Sqrt(freedom-1)
-	return equalShares(math.Max(0, f))
+	return equalShares(limitOf(t, freedom, q, level))
 }
 
-// equalShares solves R²/√(1−R²)… for both shares alike: (√(f⁴+4f²) − f²)/2.
+// limitOf is f of the estimate less that of the interval's half width; 0 if the
+// interval is there already.
+func limitOf(t, freedom, q, level float64) float64 {
+	return math.Max(0, q*math.Abs(t)/math.Sqrt(freedom)-quantileT((1+level)/2, freedom-1)/math.Sqrt(freedom-1))
+}
+
+// equalShares solves R⁴/(1 − R²) = f² for a share R² of both ends alike:
+// (√(f⁴ + 4f²) − f²)/2.
 func equalShares(f float64) float64 {
 	f2 := f * f
 	return (math.Sqrt(f2*f2+4*f2) - f2) / 2
@@ -85,4 +91,24 @@ func robustnessOf(in *Input) (*Robustness, string) {
 func quantileT(p, freedom float64) float64 {
 	x := mathext.InvRegIncBeta(freedom/2, 0.5, 2*(1-p))
 	return math.Sqrt(freedom * (1 - x) / x)
+}
+
+// Edge gives, for a share of the exposure that an unmeasured cause explains, the
+// share of the outcome that it would have to explain for no effect to be left;
+// more than 1 is out of its reach. EdgeOfLimit is the same for the interval.
+// Both are +Inf without a robustness value.
+func (r *Result) Edge(ofExposure float64) float64 {
+	if r.Robustness == nil {
+		return math.Inf(1)
+	}
+	return r.Robustness.T * r.Robustness.T / r.Robustness.Freedom * (1 - ofExposure) / ofExposure
+}
+
+// EdgeOfLimit: see Edge.
+func (r *Result) EdgeOfLimit(ofExposure float64) float64 {
+	if r.Robustness == nil {
+		return math.Inf(1)
+	}
+	f := limitOf(r.Robustness.T, r.Robustness.Freedom, 1, r.Input.Level)
+	return f * f * (1 - ofExposure) / ofExposure
 }

@@ -1,0 +1,133 @@
+package draw
+
+import "math"
+
+// A Strength is what StrengthPlot shows: how strong an unmeasured cause would
+// have to be, as shares from 0 to 1 of what it explains of two things.
+type Strength struct {
+	Across, Up string // what the shares are of
+	Edges      []Edge
+	Trails     []Trail
+}
+
+// An Edge is where something ends: beyond it, to the upper right, nothing is
+// left. The first one is filled.
+type Edge struct {
+	Label string
+	At    func(across float64) (up float64)
+}
+
+// A Trail is one known cause and what is 1, 2, 3 … times as strong as it.
+type Trail struct {
+	Label  string
+	Points []Point // shares: across, up
+}
+
+// reach is the part of the axes worth showing: all trails from their first
+// point on, and the corner of the edges.
+func (d *Strength) reach() float64 {
+	most := 0.1
+	for _, e := range d.Edges {
+		for x := 0.01; x < 1; x += 0.01 {
+			if e.At(x) <= x {
+				most = math.Max(most, 1.6*x)
+				break
+			}
+		}
+	}
+	for _, t := range d.Trails {
+		if len(t.Points) > 0 {
+			most = math.Max(most, 1.15*math.Max(t.Points[0].X, t.Points[0].Y))
+		}
+	}
+	return math.Min(1, most)
+}
+
+// StrengthPlot draws edges as lines with the ground beyond the first one
+// filled, and trails as discs that grow with the strength.
+func StrengthPlot(width, height float64, d Strength, s Style) *List {
+	l := &List{Width: width, Height: height, Background: s.Ground}
+	if width < 60 || height < 60 {
+		return l
+	}
+	size := s.size()
+	percent := func(v float64) string { return Number(100*v) + " %" }
+	left := Measure("100 %", Regular, size) + 10
+	base := math.Floor(height - 2*size - 14)
+	top := 1.6*size + 4
+	most := d.reach()
+	x, y := axis{0, most, left, width - 10}, axis{0, most, base, top}
+	for _, v := range y.ticks(3) {
+		at := y.at(v)
+		l.Add(&Shape{Path: Polyline(Point{x.start, at}, Point{x.end, at}), Stroke: s.Hairline, Width: 1, Crisp: true})
+		l.Add(&Text{At: Point{left - 6, at + Drop(size)}, Text: percent(v), Size: size, Color: s.Muted, Anchor: End})
+	}
+	for i, e := range d.Edges {
+		var points []Point
+		const steps = 240
+		for k := 1; k <= steps; k++ {
+			across := most * float64(k) / steps
+			if up := e.At(across); up <= most {
+				if len(points) == 0 { // where it comes in at the top
+					points = append(points, Point{x.at(across), y.at(math.Min(up, most))})
+				}
+				points = append(points, Point{x.at(across), y.at(math.Max(0, up))})
+			}
+		}
+		if len(points) < 2 {
+			continue
+		}
+		if i == 0 {
+			beyond := Polyline(points...)
+			beyond.Line(Point{x.end, y.end})
+			beyond.Line(Point{points[0].X, y.end})
+			beyond.Close()
+			l.Add(&Shape{Path: beyond, Fill: Alpha(s.Soft, 0.35)})
+		}
+		shape := &Shape{Path: Polyline(points...), Stroke: s.Accent, Width: 1.6}
+		if i > 0 {
+			shape.Width, shape.Dash = 1.2, []float64{5, 3}
+		}
+		l.Add(shape)
+	}
+	for i, e := range d.Edges { // what the lines are stands where nothing is left, beside a piece of each
+		at := top + size + 4 + float64(i)*(size+4)
+		w := Measure(e.Label, Regular, size)
+		l.Add(&Text{At: Point{x.end - 6, at}, Text: e.Label, Size: size, Color: s.Ink, Anchor: End})
+		sample := &Shape{Path: Polyline(Point{x.end - w - 32, at - size/3}, Point{x.end - w - 11, at - size/3}), Stroke: s.Accent, Width: 1.6}
+		if i > 0 {
+			sample.Width, sample.Dash = 1.2, []float64{5, 3}
+		}
+		l.Add(sample)
+	}
+	for _, t := range d.Trails {
+		var seen []Point
+		for _, p := range t.Points {
+			if p.X <= most && p.Y <= most {
+				seen = append(seen, Point{x.at(p.X), y.at(p.Y)})
+			}
+		}
+		if len(seen) > 1 {
+			l.Add(&Shape{Path: Polyline(seen...), Stroke: s.Ink, Width: 1, Dash: []float64{1.5, 2.5}})
+		}
+		for k, p := range seen {
+			l.Add(&Shape{Path: Circle(p, 2.5+float64(k)), Fill: s.Ground, Stroke: s.Ink, Width: 1.3})
+		}
+		if len(seen) > 0 {
+			w := Measure(t.Label, Bold, size)
+			last := seen[len(seen)-1]
+			apart := 6.5 + float64(len(seen)-1)
+			at := Point{last.X + apart, last.Y + Drop(size)}
+			if at.X+w > x.end {
+				at.X = math.Max(x.start, last.X-apart-w)
+			}
+			l.Add(&Text{At: at, Text: t.Label, Face: Bold, Size: size, Color: s.Ink})
+		}
+	}
+	drawAxis(l, x, base, percent, s)
+	l.Add(
+		&Text{At: Point{4, size + 1}, Text: Shorten(d.Up+" ↑", Regular, size, width-8), Size: size, Color: s.Muted},
+		&Text{At: Point{x.end, height - 3}, Text: Shorten(d.Across+" →", Regular, size, width-8), Size: size, Color: s.Muted, Anchor: End},
+	)
+	return l
+}
