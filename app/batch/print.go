@@ -70,10 +70,11 @@ type problemOut struct {
 	Stops    bool     `json:"stops"`
 }
 
-func printProblems(all []model.Problem) any {
+func printProblems(all []model.Problem, m mistakesOut) any {
 	out := struct {
 		Problems []problemOut `json:"problems"`
-	}{[]problemOut{}}
+		mistakesOut
+	}{[]problemOut{}, m}
 	for _, p := range all {
 		po := problemOut{Code: p.Code, Variable: p.Variable, Place: p.Place, Message: p.Message, Repairs: []string{}, Stops: p.Stops}
 		for _, r := range p.Repairs {
@@ -159,18 +160,25 @@ type runOut struct {
 	Warmup    int `json:"warmUpGradients"`
 }
 
+// A fittedOut is a quantity of a fit with what it may be read as.
+type fittedOut struct {
+	quantityOut
+	ReadAs  string `json:"readAs"`
+	Control bool   `json:"control"`
+}
+
 type fitOut struct {
-	Rival      string        `json:"rival"`
-	Question   *questionOut  `json:"question"`
-	Seed       uint64        `json:"seed"`
-	Rows       rowsOut       `json:"rows"`
-	Trust      trustOut      `json:"trust"`
-	Quantities []quantityOut `json:"quantities"`
-	Run        runOut        `json:"run"`
-	Given      []string      `json:"given"`
-	Statement  []string      `json:"statement"`
-	Typed      []string      `json:"typed"`
-	Cut        bool          `json:"cut"`
+	Rival      string       `json:"rival"`
+	Question   *questionOut `json:"question"`
+	Seed       uint64       `json:"seed"`
+	Rows       rowsOut      `json:"rows"`
+	Trust      trustOut     `json:"trust"`
+	Quantities []fittedOut  `json:"quantities"`
+	Run        runOut       `json:"run"`
+	Given      []string     `json:"given"`
+	Statement  []string     `json:"statement"`
+	Typed      []string     `json:"typed"`
+	Cut        bool         `json:"cut"`
 }
 
 func printRun(f *fit.Fitted) runOut {
@@ -181,14 +189,16 @@ func printFit(j *job, r *fit.Result) *fitOut {
 	f := r.Full
 	out := &fitOut{
 		Rival: j.rival, Question: printQuestion(j.question), Seed: j.seed, Rows: printRows(f.Model.Rows),
-		Trust: printTrust(f.Trust), Quantities: []quantityOut{}, Given: f.Model.Given, Cut: r.Cut,
+		Trust: printTrust(f.Trust), Quantities: []fittedOut{}, Given: f.Model.Given, Cut: r.Cut,
 		Run: printRun(f),
 	}
 	if out.Given == nil {
 		out.Given = []string{}
 	}
+	labels := words.Coefficients(j.study, f.Model)
 	for _, q := range f.Quantities {
-		out.Quantities = append(out.Quantities, printSummary(q.Name, q.Symbol, q.Summary, q.Trust))
+		c := labels[q.Parameter]
+		out.Quantities = append(out.Quantities, fittedOut{printSummary(q.Name, q.Symbol, q.Summary, q.Trust), c.Words, c.Control})
 	}
 	out.Typed = []string{}
 	out.Typed = append(out.Typed, f.Model.Statement().Typed...)

@@ -24,6 +24,7 @@ func read(ctx context.Context, j *job) (any, error) {
 		return nil, err
 	}
 	out := printFindings(j, f)
+	out.mistakesOut = j.mistakesOf(ask)
 	if err == nil && f.Lacks != "" {
 		err = errors.New(strings.TrimSuffix(f.Lacks, "."))
 	}
@@ -120,6 +121,8 @@ type readingOut struct {
 
 	Sections []sectionOut `json:"sections"`
 	Done     bool         `json:"done"`
+
+	mistakesOut
 }
 
 type askedOut struct {

@@ -97,14 +97,14 @@ var errNoQuestion = errors.New("the study asks no question: add one with an expo
 func validate(_ context.Context, j *job) (any, error) {
 	t, err := j.table()
 	if err != nil {
-		return printProblems([]model.Problem{{Code: "data", Place: "data", Message: err.Error(), Stops: true}}), err
+		return printProblems([]model.Problem{{Code: "data", Place: "data", Message: err.Error(), Stops: true}}, j.mistakes(j.question, nil)), err
 	}
 	var q study.Question
 	if j.question != nil {
 		q = *j.question
 	}
 	found := model.Problems(j.study, j.rival, q, t)
-	answer := printProblems(found)
+	answer := printProblems(found, j.mistakes(j.question, t))
 	if model.Stops(found) {
 		return answer, &fit.Blocked{Problems: found}
 	}

@@ -118,3 +118,6 @@ func All(s *study.Study, rival string, q *study.Question, reading *causal.Readin
 var finders = [...]func(*look) []Mistake{
 	againstTime, heldMistakes, chosenRows, afterExposure, heldInstruments, noContrast, recordsTakenExact, heldForNoReason, nothingHidden,
 }
+
+// String is a word or three for the severity.
+func (s Severity) String() string { return [...]string{"stop and ask", "warning", "note"}[s] }
