@@ -10,6 +10,7 @@ import (
 	"arrowroot/compile/effect"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
+	"arrowroot/compile/sensitivity"
 	"arrowroot/compile/study"
 	"arrowroot/infer"
 	"arrowroot/infer/summary"
@@ -30,6 +31,11 @@ type Effect struct {
 	// number. Adjusted is the held number; Refusal speaks of Full.
 	Crude, Adjusted, Full                  *Number
 	CrudeRefusal, AdjustedRefusal, Refusal string
+
+	// How strong an unmeasured cause would have to be to explain the answer
+	// away; nil with a reason.
+	Sensitivity   *sensitivity.Result
+	NoSensitivity string
 
 	Notes []string
 }
@@ -106,6 +112,11 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 	if err := e.simulate(late, req, g, claim, full); err != nil {
 		return nil, err
 	}
+	if asked := full.Model.Asked; asked != nil {
+		for _, l := range asked.Lacking {
+			e.Notes = append(e.Notes, fmt.Sprintf("%d of the used rows lack %s and are not among those asked about", l.Rows, l.Variable))
+		}
+	}
 	e.Cut = full.Cut || ctx.Err() != nil
 	if e.Cut {
 		e.Notes = append(e.Notes, "The run was stopped before the numbers could be set beside each other: none of them is the answer yet.")
@@ -114,6 +125,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		gap := math.Abs(e.Full.Centre - e.Adjusted.Centre)
 		e.LawsDisagree = gap > disagreement*math.Hypot(e.Full.Spread, e.Adjusted.Spread)
 	}
+	e.howWrong(q, full.Model)
 	return e, nil
 }
 

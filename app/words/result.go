@@ -68,13 +68,16 @@ func or(s, other string) string {
 	return s
 }
 
-// Rows says how many rows a model used and which variables lost the others.
+// Rows says how many rows a model used and what lost the others.
 func Rows(r model.Rows) string {
 	if r.Used == r.Read {
 		return "all " + Plural(r.Read, "row")
 	}
 	text := fmt.Sprintf("%s of %s", Whole(float64(r.Used)), Plural(r.Read, "row"))
 	var lost []string
+	if r.Filtered > 0 {
+		lost = append(lost, Whole(float64(r.Filtered))+" outside the row filter")
+	}
 	for _, l := range r.Lost {
 		lost = append(lost, fmt.Sprintf("%s lack %s", Whole(float64(l.Rows)), l.Variable))
 	}
@@ -120,10 +123,10 @@ func Effect(s *study.Study, r *fit.Result) []string {
 	case e.Cut:
 		lines = append(lines, "The run was stopped before the numbers could be set beside each other: none of them is the answer yet.")
 	case e.None && e.LawsDisagree:
-		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s, yet holding %s they go together (%s): an arrow or an unmeasured cause of both is missing, or a law is wrong.",
-			q.Exposure, q.Outcome, List(e.Held), Value(q, e.Adjusted)))
+		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s%s, yet holding %s they go together (%s): an arrow or an unmeasured cause of both is missing, or a law is wrong.",
+			q.Exposure, q.Outcome, around(q), List(e.Held), Value(q, e.Adjusted)))
 	case e.None && head != nil:
-		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s: this diagram says that %s changes nothing in it, whatever the data.", q.Exposure, q.Outcome, act(s, q)))
+		lines = append(lines, fmt.Sprintf("No arrows lead from %s to %s%s: this diagram says that %s changes nothing in it, whatever the data.", q.Exposure, q.Outcome, around(q), act(s, q)))
 	case head != nil:
 		lines = append(lines, headline(s, q, head))
 	case e.LawsDisagree:
@@ -178,12 +181,37 @@ func sentence(s string) string {
 	return s
 }
 
-// act names the intervention: "setting hedge 40 → 90 m/ha".
+// act names the intervention: "setting hedge 40 → 90 m/ha with flowers kept at
+// 0.3".
 func act(s *study.Study, q *study.Question) string {
-	if q.From == nil && q.To == nil {
-		return "shifting " + q.Exposure + " by " + Change(s, q)
+	kept := ""
+	if q.Effect == study.DirectEffect {
+		var at []string
+		for _, f := range q.Fixed {
+			text := f.Variable + " kept at " + setting(&f.At)
+			if v := s.Variable(f.Variable); v != nil && v.Unit != "" {
+				text += " " + v.Unit
+			}
+			at = append(at, text)
+		}
+		kept = " with " + List(at)
 	}
-	return "setting " + q.Exposure + " " + Change(s, q)
+	if q.From == nil && q.To == nil {
+		return "shifting " + q.Exposure + " by " + Change(s, q) + kept
+	}
+	return "setting " + q.Exposure + " " + Change(s, q) + kept
+}
+
+// around names what a direct effect's arrows must not pass.
+func around(q *study.Question) string {
+	if q.Effect != study.DirectEffect {
+		return ""
+	}
+	var fixed []string
+	for _, f := range q.Fixed {
+		fixed = append(fixed, f.Variable)
+	}
+	return " around " + List(fixed)
 }
 
 func headline(s *study.Study, q *study.Question, n *fit.Number) string {

@@ -22,9 +22,27 @@ func TestNumbersForPeople(t *testing.T) {
 		{List(nil), "nothing"}, {List([]string{"a"}), "a"}, {List([]string{"a", "b", "c"}), "a, b and c"},
 		{Rows(model.Rows{Read: 252, Used: 252}), "all 252 rows"},
 		{Rows(model.Rows{Read: 252, Used: 237, Lost: []model.Loss{{Variable: "bees", Rows: 15}}}), "237 of 252 rows (15 lack bees)"},
+		{Rows(model.Rows{Read: 252, Used: 190, Filtered: 47, Lost: []model.Loss{{Variable: "bees", Rows: 15}}}), "190 of 252 rows (47 outside the row filter, 15 lack bees)"},
 	} {
 		if c.got != c.want {
 			t.Errorf("%q, want %q", c.got, c.want)
+		}
+	}
+}
+
+// A controlled direct effect says what is kept, and around what its arrows lead.
+func TestDirectEffectsInWords(t *testing.T) {
+	s := study.New()
+	s.Variables = []*study.Variable{{ID: "hedge", Unit: "m/ha"}, {ID: "bees"}, {ID: "temp", Unit: "°C"}, {ID: "soil"}}
+	q := &study.Question{Exposure: "hedge", Outcome: "bees", From: &study.Setting{Number: 40}, To: &study.Setting{Number: 90}, Effect: study.DirectEffect,
+		Fixed: []study.Fix{{Variable: "temp", At: study.Setting{Number: 18}}, {Variable: "soil", At: study.Setting{Word: "clay"}}}}
+	number := &fit.Number{Summary: summary.Summary{Centre: 1.42, Low: 1.2, High: 1.7, Level: 0.9, RHat: 1, BulkESS: 900, TailESS: 800}}
+	for want, e := range map[string]*fit.Effect{
+		"Setting hedge 40 → 90 m/ha with temp kept at 18 °C and soil kept at clay changes expected bees by 1.42 (90 % 1.20 to 1.70).":                {Identified: true, Full: number},
+		"No arrows lead from hedge to bees around temp and soil: this diagram says that setting hedge 40 → 90 m/ha with temp kept at 18 °C and soil": {Identified: true, None: true, Full: number},
+	} {
+		if got := Effect(s, &fit.Result{Question: q, Full: &fit.Fitted{}, Effect: e})[0]; !strings.HasPrefix(got, want) {
+			t.Errorf("%s\nwant %s", got, want)
 		}
 	}
 }
