@@ -13,6 +13,7 @@ import (
 	"arrowroot/compile/causal"
 	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
+	"arrowroot/compile/study"
 )
 
 // banner is the one message at a time above the sheet: what, why, what to do.
@@ -96,9 +97,13 @@ func (d *desk) message() *message {
 		return m
 	case d.loss != "" && v.Model != nil:
 		r := v.Model.Rows
-		return &message{text: fmt.Sprintf("A fit would use %s.", words.Rows(r)), icon: iconWarn, token: tokenConfound,
+		m := &message{text: fmt.Sprintf("A fit would use %s.", words.Rows(r)), icon: iconWarn, token: tokenConfound,
 			actions: []action{{"Fit on " + times(r.Used, "row", "rows"), false, func() { d.fit(true) }}},
 			hide:    func() { d.loss = ""; d.refresh() }}
+		if ids := d.imputable(); len(ids) > 0 {
+			m.actions = append(m.actions, action{"Impute " + words.List(ids), false, func() { d.impute(ids) }})
+		}
+		return m
 	case v.Recovered != nil:
 		return &message{text: "There is unsaved work from before, newer than this file.", icon: iconWarn, token: tokenConfound,
 			actions: []action{{"Take it up", false, d.session.Recover}, {"Drop it", false, d.session.Forget}},
@@ -115,6 +120,23 @@ func (d *desk) message() *message {
 		return d.mistakeMessage(m)
 	}
 	return nil
+}
+
+// imputable lists what lost rows and nobody has said yet is to be imputed.
+func (d *desk) imputable() []string {
+	return slices.DeleteFunc(d.view.Model.Imputable(), func(id string) bool {
+		n := d.view.Rival.Diagram.Node(id)
+		return n == nil || n.Law != nil && n.Law.Treat == study.Imputed
+	})
+}
+
+// impute has missing entries drawn with the rest instead of losing their rows.
+func (d *desk) impute(ids []string) {
+	d.loss = ""
+	for _, id := range ids {
+		d.changeLaw(id, func(l *study.Law) { l.Treat = study.Imputed })
+	}
+	d.refresh()
 }
 
 func (d *desk) problemMessage(p *model.Problem) *message {

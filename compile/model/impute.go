@@ -167,3 +167,39 @@ func entriesOf(n int) string {
 	}
 	return fmt.Sprintf("%d missing entries", n)
 }
+
+// Imputable lists the variables that lost rows and need not: by their scale
+// they can have a law that says what the missing entries may have been, or
+// nothing reads them.
+func (m *Model) Imputable() []string {
+	read := make(map[string]bool)
+	for _, l := range m.Laws {
+		for _, e := range slices.Concat(l.Predictors, l.Arguments) {
+			if e != nil {
+				for _, id := range formula.Names(e) {
+					read[id] = true
+				}
+			}
+		}
+	}
+	for _, v := range m.Variables {
+		read[v.MeanOf] = true
+		if v.Computed != nil {
+			for _, id := range formula.Names(v.Computed) {
+				read[id] = true
+			}
+		}
+	}
+	var out []string
+	for _, loss := range m.Rows.Lost {
+		i, _ := m.Name(loss.Variable)
+		if i < 0 || m.Variables[i].Computed != nil {
+			continue
+		}
+		switch v := m.Variables[i]; {
+		case v.Scale == study.Real, v.Scale == study.Positive, v.Scale == study.Proportion, !read[v.ID]:
+			out = append(out, v.ID)
+		}
+	}
+	return out
+}
