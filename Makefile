@@ -1,5 +1,5 @@
 # Two commands do: make run, make test. The rest is for contributors.
-.PHONY: run build batch report test check bench cover golden need need-test
+.PHONY: run build batch report test check bench bench-reference oracle cover golden need need-test
 
 STUDY ?=
 BIN := .build/bin
@@ -42,6 +42,15 @@ bench:
 	go test -run '^$$' -bench Reading ./compile/causal
 	go test -run '^$$' -bench Frame ./canvas/scene
 	go test -run '^$$' -bench Hand ./app/ui
+
+# Our d-separation beside that of networkx, on the same graphs in one run.
+bench-reference:
+	@sh .build/need-reference.sh
+	ARROWROOT_REFERENCE=1 go test -count=1 -v -run TestBesideNetworkx ./compile/causal
+
+# What arrows say, against brute force on tens of thousands of random diagrams.
+oracle:
+	ARROWROOT_LONG=1 go test -count=1 -timeout 60m ./compile/causal
 
 golden:
 	go test ./canvas/... ./compile/model/... -update

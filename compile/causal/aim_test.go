@@ -30,7 +30,7 @@ func brute(g *graph.Graph, aim Aim) [][]int {
 func TestAimsAgainstSubsets(t *testing.T) {
 	r := rand.New(rand.NewPCG(41, 2026))
 	withSets, several := 0, 0
-	for range 600 {
+	for range rounds(600, 6000) {
 		s := sketch{nodes: 4 + r.IntN(5), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.15, arcs: 0.1 * r.Float64(), computed: float64(r.IntN(2)) * 0.15}
 		g := s.draw(t, r)
 		aim := Aim{Exposures: []int{0}, Outcomes: []int{1}, Costs: make([]float64, g.Len()), MaxSets: 1000}
@@ -85,7 +85,7 @@ func TestAimsAgainstSubsets(t *testing.T) {
 func TestPrecisionClaimsInLinearModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(42, 2026))
 	claims := 0
-	for range 500 {
+	for range rounds(500, 5000) {
 		s := sketch{nodes: 4 + r.IntN(4), arrows: 0.3 + 0.3*r.Float64(), unmeasured: 0.2, arcs: 0.1}
 		g := s.draw(t, r)
 		a := Adjust(g, Aim{Exposures: []int{0}, Outcomes: []int{1}})

@@ -78,7 +78,7 @@ func TestInstrumentsOfReference(t *testing.T) {
 func TestInstrumentRatios(t *testing.T) {
 	r := rand.New(rand.NewPCG(51, 2026))
 	ratios := 0
-	for range 3000 {
+	for range rounds(3000, 30000) {
 		s := sketch{nodes: 4 + r.IntN(4), arrows: 0.3 + 0.2*r.Float64(), unmeasured: 0.15, arcs: 0.2}
 		g := s.draw(t, r)
 		m := drawLinear(g, r)
@@ -131,7 +131,7 @@ func TestFrontDoorsOfReference(t *testing.T) {
 func TestFrontDoorFormula(t *testing.T) {
 	r := rand.New(rand.NewPCG(52, 2026))
 	plain, given := 0, 0
-	for range 6000 {
+	for range rounds(6000, 60000) {
 		s := sketch{nodes: 4 + r.IntN(3), arrows: 0.3 + 0.2*r.Float64(), unmeasured: 0.15, arcs: 0.2}
 		g := s.draw(t, r)
 		if !newComparison(g, []int{0}, []int{1}).effect() || g.Len()+len(g.Arcs) > 11 {

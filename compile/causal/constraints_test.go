@@ -49,7 +49,7 @@ func TestFunctionalsOfReference(t *testing.T) {
 func TestFunctionalsInBinaryModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(71, 2026))
 	found := 0
-	for range 5000 {
+	for range rounds(5000, 50000) {
 		s := sketch{nodes: 4 + r.IntN(2), arrows: 0.4, unmeasured: 0.1, arcs: 0.3}
 		g := s.draw(t, r)
 		all, _ := Functionals(g)
@@ -122,7 +122,7 @@ func TestTetradsOfReference(t *testing.T) {
 func TestTetradsInLinearModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(72, 2026))
 	listed := 0
-	for range 300 {
+	for range rounds(300, 3000) {
 		s := sketch{nodes: 5 + r.IntN(2), arrows: 0.3 + 0.2*r.Float64(), unmeasured: 0.25, arcs: 0.1}
 		g := s.draw(t, r)
 		m := drawLinear(g, r)

@@ -168,7 +168,7 @@ func TestClassCounts(t *testing.T) {
 func TestSamenessByTrial(t *testing.T) {
 	r := rand.New(rand.NewPCG(81, 2026))
 	same := 0
-	for range 3000 {
+	for range rounds(3000, 30000) {
 		s := sketch{nodes: 3 + r.IntN(3), arrows: 0.5}
 		if r.IntN(2) == 0 {
 			s.arcs, s.computed = 0.3, 0.2*float64(r.IntN(2))

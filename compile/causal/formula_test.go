@@ -4,7 +4,6 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
-	"os"
 	"slices"
 	"strings"
 	"testing"
@@ -206,10 +205,7 @@ func TestFormulasOfReference(t *testing.T) {
 // Formulas by value on random graphs, several exposures, outcomes and given
 // variables among them.
 func TestFormulasInBinaryModels(t *testing.T) {
-	rounds := 400
-	if os.Getenv("ARROWROOT_LONG") != "" {
-		rounds = 4000
-	}
+	rounds := rounds(400, 4000)
 	r := rand.New(rand.NewPCG(32, 2026))
 	identified := 0
 	for i := range rounds {
@@ -249,7 +245,7 @@ func TestFormulasInBinaryModels(t *testing.T) {
 func TestFormulasWithComputedVariables(t *testing.T) {
 	r := rand.New(rand.NewPCG(33, 2026))
 	identified := 0
-	for range 600 {
+	for range rounds(600, 6000) {
 		s := sketch{nodes: 3 + r.IntN(4), arrows: 0.2 + 0.5*r.Float64(), unmeasured: 0.15, arcs: 0.3 * r.Float64(), computed: 0.4}
 		g := s.draw(t, r)
 		if f := Identify(g, []int{0}, []int{1}, nil); f.Identified {

@@ -171,7 +171,7 @@ func closure(basis []Independence, nodes int) map[[3]int]bool {
 func TestBasisImpliesAll(t *testing.T) {
 	r := rand.New(rand.NewPCG(61, 2026))
 	statements := 0
-	for range 150 {
+	for range rounds(150, 1500) {
 		s := sketch{nodes: 5, arrows: 0.2 + 0.4*r.Float64(), arcs: 0.3 * r.Float64()}
 		if r.IntN(2) == 0 {
 			s.nodes, s.unmeasured = 6, 0.3

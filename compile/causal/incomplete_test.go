@@ -37,7 +37,7 @@ func TestSelectionOfReference(t *testing.T) {
 func TestSelectionInBinaryModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(91, 2026))
 	sets, recoverable := 0, 0
-	for range 400 {
+	for range rounds(400, 4000) {
 		s := sketch{nodes: 5, arrows: 0.2 + 0.3*r.Float64(), arcs: 0.1}
 		g := s.draw(t, r)
 		const x, y, kept = 0, 1, 2
@@ -101,7 +101,7 @@ func TestMissingOfReference(t *testing.T) {
 func TestMissingInBinaryModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(92, 2026))
 	ordered, weighed, valid := 0, 0, 0
-	for range 400 {
+	for range rounds(400, 4000) {
 		spec := graph.Spec{Names: []string{"a", "b", "c", "r_a", "r_b"}}
 		for v := range 3 {
 			for w := range v {

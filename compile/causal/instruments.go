@@ -66,6 +66,9 @@ func instrumentSets(g, cut *graph.Graph, x, y int, barred []bool) []InstrumentSe
 		for size := 0; size <= len(s.usable) && !s.budget.spent(); size++ {
 			s.try(nil, 0, size)
 		}
+		if slices.Contains(g.Computed, true) { // separators of the moral graph need not be minimal
+			s.found = smallest(s.found)
+		}
 		if len(s.found) > 0 {
 			sortSets(g, s.found)
 			all = append(all, InstrumentSets{Node: z, Given: s.found, More: s.budget.spent()})

@@ -206,7 +206,7 @@ func TestCarriersInLinearModels(t *testing.T) {
 func TestAdjustmentInLinearModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(6, 2026))
 	var sets int
-	for range 1000 {
+	for range rounds(1000, 10000) {
 		s := sketch{nodes: 3 + r.IntN(5), arrows: 0.2 + 0.5*r.Float64(), unmeasured: 0.3 * r.Float64(), arcs: 0.2 * r.Float64()}
 		g := s.draw(t, r)
 		x, y := 0, 1
@@ -234,7 +234,7 @@ func TestAdjustmentInLinearModels(t *testing.T) {
 func TestComputedInLinearModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(7, 2026))
 	var byTrial, separations int
-	for range 2000 {
+	for range rounds(2000, 20000) {
 		s := sketch{nodes: 3 + r.IntN(5), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3 * r.Float64(), arcs: 0.1 * r.Float64(), computed: 0.4}
 		g := s.draw(t, r)
 		x, y := 0, 1
@@ -270,7 +270,7 @@ func TestComputedInLinearModels(t *testing.T) {
 func TestWaysInLinearModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(9, 2026))
 	var doors, conditional, ratios int
-	for range 20000 {
+	for range rounds(20000, 200000) {
 		s := sketch{nodes: 4 + r.IntN(4), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3 * r.Float64(), arcs: 0.15 * r.Float64()}
 		g := s.draw(t, r)
 		const x, y = 0, 1

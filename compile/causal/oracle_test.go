@@ -160,7 +160,7 @@ func oracleMinimal(candidates, forced []int, valid func([]int) bool) [][]int {
 }
 
 // oracleIdentifiable is the decision of algorithm ID: sets of nodes are bits.
-func oracleIdentifiable(g *graph.Graph, x, y int) bool {
+func oracleIdentifiable(g *graph.Graph, x, y []int) bool {
 	named, first := nameArcs(g)
 	hidden := func(v int) bool { return v >= first || !named.Measured[v] }
 	n := named.Len()
@@ -272,12 +272,12 @@ func oracleIdentifiable(g *graph.Graph, x, y int) bool {
 		}
 		panic("no component holds the part")
 	}
-	return id(1<<y, 1<<x, all)
+	return id(bitsOf(y), bitsOf(x), all)
 }
 
 func TestAgainstOracle(t *testing.T) {
 	r := rand.New(rand.NewPCG(11, 2026))
-	const graphs = 2000
+	graphs := rounds(2000, 22000)
 	var separations, setsFound, pathsFound, identified int
 	for i := range graphs {
 		s := sketch{nodes: 3 + r.IntN(5), arrows: 0.2 + 0.5*r.Float64()}
@@ -372,7 +372,7 @@ func TestAgainstOracle(t *testing.T) {
 			fail("held %v valid: got %v", held, read.HeldValid)
 		}
 
-		if got, want := read.Identifiable, oracleIdentifiable(g, x, y); got != want {
+		if got, want := read.Identifiable, oracleIdentifiable(g, []int{x}, []int{y}); got != want {
 			fail("identifiable: got %v, want %v", got, want)
 		}
 		if read.Identifiable {

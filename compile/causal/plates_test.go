@@ -132,7 +132,7 @@ func TestLevelsOfPlates(t *testing.T) {
 // refused.
 func TestWithinAgainstRowsWrittenOut(t *testing.T) {
 	r := rand.New(rand.NewPCG(5, 6))
-	for range 300 {
+	for range rounds(300, 3000) {
 		n := 4 + r.IntN(3)
 		spec := graph.Spec{}
 		var shared []int

@@ -145,7 +145,7 @@ func TestIncomplete(t *testing.T) {
 func TestReadingsAreConsistent(t *testing.T) {
 	r := rand.New(rand.NewPCG(12, 2026))
 	var kinds [6]int
-	for range 4000 {
+	for range rounds(4000, 40000) {
 		s := sketch{nodes: 3 + r.IntN(6), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.25 * r.Float64(), arcs: 0.1 * r.Float64()}
 		if r.IntN(4) == 0 {
 			s.computed = 0.3
