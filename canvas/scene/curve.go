@@ -116,8 +116,9 @@ func bends(all []*body, arrows [][2]int, z float64) []bend {
 	r := router{obstacles: make([]obstacle, len(all)), z: z}
 	for k, b := range all {
 		solid, soft := b.rect().Grow(clearance*z), b.skirt(z)
-		r.obstacles[k] = obstacle{solid, soft, solid.Union(soft)}
+		r.obstacles[k] = obstacle{solid: solid, soft: soft}
 	}
+	r.survey()
 	result := make([]bend, len(arrows))
 	for i, a := range arrows {
 		r.from, r.to = a[0], a[1]
@@ -139,14 +140,43 @@ var bowSteps = [...]float64{0, 20, -20, 34, -34, 50, -50, 68, -68, 90, -90, 116,
 
 // An obstacle is a node that arrows should not meet: its outline, and its
 // dots below.
-type obstacle struct{ solid, soft, both draw.Rect }
+type obstacle struct {
+	solid, soft draw.Rect
+	hits        int // points of a curve in solid
+	brushed     bool
+	met         bool
+}
 
+// A router looks for obstacles in the cells of a grid, because a sheet can have
+// a thousand of them and an arrow is tried with seventy bends.
 type router struct {
 	obstacles []obstacle
+	cells     map[[2]int][]int // obstacles that reach into each cell
 	z         float64
 	from, to  int
 	a, b      draw.Point
 	pts       []draw.Point // scratch
+	met       []int        // scratch
+}
+
+const cellSize = 96.0 // dips at zoom 1
+
+func (r *router) cell(x, y float64) [2]int {
+	return [2]int{int(math.Floor(x / (cellSize * r.z))), int(math.Floor(y / (cellSize * r.z)))}
+}
+
+// survey enters every obstacle in the cells that it reaches into.
+func (r *router) survey() {
+	r.cells = make(map[[2]int][]int)
+	for k := range r.obstacles {
+		box := r.obstacles[k].solid.Union(r.obstacles[k].soft)
+		lo, hi := r.cell(box.X, box.Y), r.cell(box.X+box.W, box.Y+box.H)
+		for x := lo[0]; x <= hi[0]; x++ {
+			for y := lo[1]; y <= hi[1]; y++ {
+				r.cells[[2]int{x, y}] = append(r.cells[[2]int{x, y}], k)
+			}
+		}
+	}
 }
 
 func (r *router) route() bend {
@@ -156,7 +186,7 @@ func (r *router) route() bend {
 		if cost >= least {
 			return
 		}
-		if cost = r.cost(d, cost, least); cost < least {
+		if cost = r.cost(d, cost); cost < least {
 			best, least = d, cost
 		}
 	}
@@ -180,44 +210,41 @@ func (r *router) route() bend {
 	return best
 }
 
-// cost adds to a cost what the curve meets; it stops where that exceeds limit.
-func (r *router) cost(d bend, cost, limit float64) float64 {
-	c := joining(r.a, r.b, d)
-	box := c.box()
-	r.pts = r.pts[:0]
-	for k := range r.obstacles {
-		o := &r.obstacles[k]
-		if k == r.from || k == r.to || !o.both.Meets(box) {
-			continue
-		}
-		if len(r.pts) == 0 {
-			r.pts = appendSample(r.pts, c, 14*r.z)
-		}
-		hit, brush := 0, false
-		for _, p := range r.pts {
-			if o.solid.Contains(p) {
-				hit++
-			} else if o.soft.Contains(p) {
-				brush = true
+// cost adds to a cost what the curve meets.
+func (r *router) cost(d bend, cost float64) float64 {
+	r.pts = appendSample(r.pts[:0], joining(r.a, r.b, d), 14*r.z)
+	r.met = r.met[:0]
+	for _, p := range r.pts {
+		for _, k := range r.cells[r.cell(p.X, p.Y)] {
+			if k == r.from || k == r.to {
+				continue
+			}
+			o := &r.obstacles[k]
+			solid := o.solid.Contains(p)
+			if !solid && !o.soft.Contains(p) {
+				continue
+			}
+			if !o.met {
+				o.met, o.hits, o.brushed = true, 0, false
+				r.met = append(r.met, k)
+			}
+			if solid {
+				o.hits++
+			} else {
+				o.brushed = true
 			}
 		}
-		if hit > 0 {
-			cost += behindNode + 20*float64(hit)
-		} else if brush {
+	}
+	for _, k := range r.met {
+		o := &r.obstacles[k]
+		o.met = false
+		if o.hits > 0 {
+			cost += behindNode + 20*float64(o.hits)
+		} else if o.brushed {
 			cost += acrossStrip
-		}
-		if cost >= limit {
-			break
 		}
 	}
 	return cost
-}
-
-// box holds the curve.
-func (c curve) box() draw.Rect {
-	lo := draw.Point{X: min(c[0].X, c[1].X, c[2].X, c[3].X), Y: min(c[0].Y, c[1].Y, c[2].Y, c[3].Y)}
-	hi := draw.Point{X: max(c[0].X, c[1].X, c[2].X, c[3].X), Y: max(c[0].Y, c[1].Y, c[2].Y, c[3].Y)}
-	return draw.Rect{X: lo.X, Y: lo.Y, W: hi.X - lo.X, H: hi.Y - lo.Y}
 }
 
 // sample gives points on a curve about step apart.
