@@ -54,7 +54,7 @@ func StrengthPlot(width, height float64, d Strength, s Style) *List {
 	percent := func(v float64) string { return Number(100*v) + " %" }
 	left := Measure("100 %", Regular, size) + 10
 	base := math.Floor(height - 2*size - 14)
-	top := 1.6*size + 4
+	top := 3.2*size + 6
 	most := d.reach()
 	x, y := axis{0, most, left, width - 10}, axis{0, most, base, top}
 	for _, v := range y.ticks(3) {
@@ -90,15 +90,15 @@ func StrengthPlot(width, height float64, d Strength, s Style) *List {
 		}
 		l.Add(shape)
 	}
-	for i, e := range d.Edges { // what the lines are stands where nothing is left, beside a piece of each
-		at := top + size + 4 + float64(i)*(size+4)
-		w := Measure(e.Label, Regular, size)
-		l.Add(&Text{At: Point{x.end - 6, at}, Text: e.Label, Size: size, Color: s.Ink, Anchor: End})
-		sample := &Shape{Path: Polyline(Point{x.end - w - 32, at - size/3}, Point{x.end - w - 11, at - size/3}), Stroke: s.Accent, Width: 1.6}
+	from := x.start
+	for i, e := range d.Edges { // what the lines are stands above, beside a piece of each
+		at := 2.6*size + 2
+		sample := &Shape{Path: Polyline(Point{from, at - size/3}, Point{from + 21, at - size/3}), Stroke: s.Accent, Width: 1.6}
 		if i > 0 {
 			sample.Width, sample.Dash = 1.2, []float64{5, 3}
 		}
-		l.Add(sample)
+		l.Add(sample, &Text{At: Point{from + 26, at}, Text: Shorten(e.Label, Regular, size, x.end-from-26), Size: size, Color: s.Ink})
+		from += 26 + Measure(e.Label, Regular, size) + 14
 	}
 	for _, t := range d.Trails {
 		var seen []Point
