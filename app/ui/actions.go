@@ -160,7 +160,9 @@ func (d *desk) pasteArrows() {
 		d.complain("What is on the clipboard are no arrows: " + err.Error())
 		return
 	}
-	d.do(study.TypeArrows{Rival: d.rival(), Text: text})
+	if d.do(study.TypeArrows{Rival: d.rival(), Text: text}) {
+		d.showAll()
+	}
 }
 
 // Rivals.
@@ -226,7 +228,7 @@ func (d *desk) fit(sure bool) {
 	}
 	rows := d.view.Model.Rows
 	key := fmt.Sprint(rows.Read, rows.Used, rows.Lost)
-	if rows.Used < rows.Read && !sure && d.agreed != key {
+	if rows.Used < rows.Read-rows.Filtered && !sure && d.agreed != key {
 		d.loss = key
 		d.refresh()
 		return

@@ -58,6 +58,8 @@ func commandsOf(d *desk) commandTable {
 		}},
 		{id: "finder", menu: "Edit", label: "Type a command …", keys: "Ctrl+K", parted: true, run: d.find},
 
+		{id: "find", menu: "Edit", label: "Find a variable …", keys: "Ctrl+F", run: d.find},
+
 		{id: "variable", menu: "Sheet", label: "New variable", keys: "Ctrl+Shift+V", run: d.newVariable},
 		{id: "place-all", menu: "Sheet", label: "Place all variables", on: func() bool { return len(d.offSheet()) > 0 }, run: d.placeAll},
 		{id: "arrange", menu: "Sheet", label: "Arrange anew", keys: "Ctrl+L", run: d.arrange},

@@ -4,6 +4,7 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/theme"
 	"fyne.io/fyne/v2/widget"
 )
 
@@ -30,12 +31,35 @@ func (k *kit) field(text, hint string, commit func(string)) *field {
 	f.Scroll = fyne.ScrollNone
 	f.minWidth = 48
 	f.OnChanged = func(s string) {
+		f.fit()
 		if f.typing != nil {
 			f.typing(s)
 		}
 	}
 	f.OnSubmitted = func(string) { f.done() }
 	return f
+}
+
+// Resize implements fyne.CanvasObject.
+func (f *field) Resize(size fyne.Size) {
+	f.Entry.Resize(size)
+	f.fit()
+}
+
+// fit lets a text scroll that is longer than its line, which else would be
+// drawn beyond it. Every other field leaves the wheel to the pane it stands in.
+func (f *field) fit() {
+	if f.MultiLine || f.Size().Width <= 0 {
+		return
+	}
+	scroll := fyne.ScrollNone
+	if fyne.MeasureText(f.Text, theme.TextSize(), f.TextStyle).Width+2*theme.InnerPadding() > f.Size().Width {
+		scroll = fyne.ScrollHorizontalOnly
+	}
+	if f.Scroll != scroll {
+		f.Scroll = scroll
+		f.Refresh()
+	}
 }
 
 // note is a field of several lines; Return makes a new line.

@@ -14,6 +14,7 @@ type finder struct {
 	kit      *kit
 	commands commandTable
 	sentence func(string) sentence
+	places   func(string) []finding // variables and notes to go to
 	entry    *field
 	list     *pane
 	pop      *popover
@@ -35,9 +36,9 @@ type sentence struct {
 	run         func()
 }
 
-func (k *kit) finder(c fyne.Canvas, commands commandTable, sentence func(string) sentence) *finder {
-	f := &finder{kit: k, commands: commands, sentence: sentence, list: newPane(0, 0, 0)}
-	f.entry = k.field("", "a command, or: hedge -> flowers -> bees", nil)
+func (k *kit) finder(c fyne.Canvas, commands commandTable, sentence func(string) sentence, places func(string) []finding) *finder {
+	f := &finder{kit: k, commands: commands, sentence: sentence, places: places, list: newPane(0, 0, 0)}
+	f.entry = k.field("", "a command, a variable, or: hedge -> flowers -> bees", nil)
 	f.entry.typing = func(string) { f.search() }
 	f.entry.OnSubmitted = func(string) { f.run(f.at) }
 	f.entry.pasting = func(text string) string { // several lines of arrows at once
@@ -71,9 +72,14 @@ func (f *finder) search() {
 	if say.run != nil {
 		f.found = append(f.found, finding{label: say.does, run: say.run})
 	}
+	places := f.places(typed)
 	for _, c := range f.commands.match(typed) {
+		if !strings.HasPrefix(strings.ToLower(c.text()), strings.ToLower(typed)) { // places come after what is called as typed
+			f.found, places = append(f.found, places...), nil
+		}
 		f.found = append(f.found, finding{label: c.text(), keys: c.keys, off: !c.ready(), run: c.run})
 	}
+	f.found = append(f.found, places...)
 	f.at = 0
 	f.wrong = say.wrong
 	f.show()

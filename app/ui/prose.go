@@ -106,7 +106,7 @@ func (p *prose) wrap(width float32) ([]piece, float32) {
 				newLine()
 				x = 0
 			}
-			for _, w := range splitWords(paragraph) {
+			for _, w := range p.fitting(splitWords(paragraph), width-p.hang, style) {
 				m := fyne.MeasureText(w, p.size, style).Width
 				if x > p.hang && x+fyne.MeasureText(strings.TrimRight(w, " "), p.size, style).Width > width {
 					newLine()
@@ -132,6 +132,36 @@ func (p *prose) wrap(width float32) ([]piece, float32) {
 	}
 	newLine()
 	return p.limit(pieces, y, width)
+}
+
+// fitting breaks words that are wider than a line, after an underscore where
+// there is one.
+func (p *prose) fitting(words []string, width float32, style fyne.TextStyle) []string {
+	var out []string
+	for _, w := range words {
+		for len(w) > 1 && width > 40 && fyne.MeasureText(strings.TrimRight(w, " "), p.size, style).Width > width {
+			end, soft, used := len(w), 0, float32(0)
+			for i, r := range w {
+				used += fyne.MeasureText(string(r), p.size, style).Width
+				if used > width && i > 0 {
+					end = i
+					break
+				}
+				if r == '_' {
+					soft = i + 1
+				}
+			}
+			if soft > 0 {
+				end = soft
+			}
+			if end == len(w) {
+				break
+			}
+			out, w = append(out, w[:end]), w[end:]
+		}
+		out = append(out, w)
+	}
+	return out
 }
 
 // limit drops what lies below the last line that may be shown, and ends that

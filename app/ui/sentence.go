@@ -168,4 +168,41 @@ func (d *desk) variableSentence(verb, rest string) sentence {
 }
 
 // find opens the finder.
-func (d *desk) find() { d.kit.finder(d.win.Canvas(), d.commands, d.sentenceOf) }
+func (d *desk) find() { d.kit.finder(d.win.Canvas(), d.commands, d.sentenceOf, d.places) }
+
+// mostPlaces is how many variables the finder offers at once.
+const mostPlaces = 6
+
+// places are the variables whose name or label has a word that begins as typed;
+// running one picks it and brings it into view.
+func (d *desk) places(typed string) []finding {
+	want := strings.ToLower(strings.TrimSpace(typed))
+	if want == "" {
+		return nil
+	}
+	var out []finding
+	for _, v := range d.view.Study.Variables {
+		words := strings.FieldsFunc(strings.ToLower(v.ID+" "+v.Label), func(r rune) bool { return r == ' ' || r == '_' })
+		begins := strings.HasPrefix(strings.ToLower(v.ID), want) || strings.HasPrefix(strings.ToLower(v.Label), want)
+		for _, w := range words {
+			begins = begins || strings.HasPrefix(w, want)
+		}
+		if !begins {
+			continue
+		}
+		label := "Go to " + v.ID
+		if v.Label != "" && v.Label != v.ID {
+			label += ", " + v.Label
+		}
+		out = append(out, finding{label: label, run: func() {
+			d.frame.unfold("right")
+			d.choose(pickNode(v.ID))
+			d.editor.Reveal(v.ID)
+			d.win.Canvas().Focus(d.editor)
+		}})
+		if len(out) == mostPlaces {
+			break
+		}
+	}
+	return out
+}

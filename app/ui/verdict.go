@@ -175,7 +175,12 @@ func (l stripLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
 	s := l.s
 	const gap, edge = 10, 12
 	narrow := size.Width < roomyWidth
-	s.question.spans = s.ask(s.d.view.Question, size.Width > 760)
+	for _, most := range []int{1000, 32, 20, 12} { // names give way to the verdict
+		s.question.spans = s.ask(s.d.view.Question, size.Width > 760, most)
+		if s.width(s.question.spans) < 0.45*size.Width {
+			break
+		}
+	}
 	s.question.Refresh()
 
 	// The right end, from the edge inwards.
@@ -226,7 +231,7 @@ func (s *strip) width(spans []span) float32 {
 }
 
 // ask is the question in words; empty places show as boxes.
-func (s *strip) ask(q *study.Question, all bool) []span {
+func (s *strip) ask(q *study.Question, all bool, most int) []span {
 	if q == nil {
 		q = &study.Question{}
 	}
@@ -234,7 +239,7 @@ func (s *strip) ask(q *study.Question, all bool) []span {
 		if id == "" {
 			return span{text: "▢", token: tokenMuted}
 		}
-		return span{text: id, bold: true}
+		return span{text: shortened(id, most), bold: true}
 	}
 	spans := []span{{text: "Effect of ", token: tokenMuted}, box(q.Exposure), {text: " on ", token: tokenMuted}, box(q.Outcome)}
 	tail := words.Change(s.d.view.Study, q)
