@@ -6,7 +6,6 @@ import (
 	"fmt"
 	"slices"
 
-	"arrowroot/compile/causal"
 	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
 )
@@ -88,10 +87,6 @@ func check(ctx context.Context, j *job) (any, error) {
 	req := evidence.Request{Study: j.study, Rival: j.rival, Table: t, Question: j.question}
 	if q := j.question; q != nil {
 		req.Level = q.Level
-		req.Held, err = j.held()
-		if err != nil {
-			return nil, err
-		}
 	}
 	last := -1
 	e, err := evidence.Test(ctx, req, func(done, total int) {
@@ -104,20 +99,6 @@ func check(ctx context.Context, j *job) (any, error) {
 		return nil, err
 	}
 	return printCheck(e), nil
-}
-
-// held is the question's held set, or the one that a fit would propose.
-func (j *job) held() ([]string, error) {
-	g, err := j.study.Graph(j.rival)
-	if err != nil || j.question.Held != nil {
-		return j.question.Held, err
-	}
-	x, y := g.Index(j.question.Exposure), g.Index(j.question.Outcome)
-	r := causal.Read(g, causal.Query{Exposure: x, Outcome: y, MaxPaths: 1})
-	if len(r.Sets) == 0 {
-		return []string{}, nil
-	}
-	return names(g, r.Sets[max(r.Precise, 0)]), nil
 }
 
 func printCheck(e *evidence.Evidence) *checkOut {

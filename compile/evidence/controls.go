@@ -24,17 +24,7 @@ func (b *bench) controls() []Control {
 	if x < 0 || y < 0 || x == y {
 		return nil
 	}
-	names := b.req.Held
-	if names == nil {
-		names = q.Held
-	}
-	var held []int
-	for _, id := range names {
-		if v := b.g.Index(id); v >= 0 && v != x && v != y && b.data.of[v] != nil {
-			held = append(held, v)
-		}
-	}
-	held = union(held, nil)
+	held := b.held(x, y)
 	below := b.g.Descendants(x)
 	acts := b.g.Ancestors(y)
 	var all []Control
@@ -62,6 +52,28 @@ func (b *bench) controls() []Control {
 	}
 	slices.SortStableFunc(all, func(a, c Control) int { return int(a.Kind) - int(c.Kind) })
 	return all
+}
+
+// held is the set that controls check: the request's, the question's, or where
+// nobody has said, the one that the reading would propose.
+func (b *bench) held(x, y int) []int {
+	names := b.req.Held
+	if names == nil {
+		names = b.req.Question.Held
+	}
+	var held []int
+	for _, id := range names {
+		if v := b.g.Index(id); v >= 0 && v != x && v != y && b.data.of[v] != nil {
+			held = append(held, v)
+		}
+	}
+	if names == nil {
+		r := causal.Read(b.g, causal.Query{Exposure: x, Outcome: y, MaxPaths: 1, MaxSets: 20})
+		if len(r.Sets) > 0 {
+			held = r.Sets[max(r.Precise, 0)]
+		}
+	}
+	return union(held, nil)
 }
 
 func (b *bench) apart(v, w int, given []int) bool {

@@ -36,7 +36,7 @@ type Request struct {
 	Statements []causal.Independence
 
 	Question *study.Question // for negative controls; nil = none are looked for
-	Held     []string        // the held set that negative controls check; nil = the question's
+	Held     []string        // the held set that negative controls check; nil = the question's, or what the reading proposes
 
 	Level float64 // of intervals; 0 = 0.9
 	Most  int     // statements tested; 0 = 2000

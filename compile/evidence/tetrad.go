@@ -73,7 +73,7 @@ func (b *bench) constraintShown(v Verdict, e Effect, short, what, otherwise stri
 		}
 		return text
 	case Doubtful:
-		return fmt.Sprintf("These data speak against it (%s), but among so many tests chance can do that.", size)
+		return fmt.Sprintf("These data speak against it (%s), but chance could do that, all tests counted.", size)
 	case Trifling:
 		return fmt.Sprintf("In these data it is not quite so (%s), by too little to matter for most purposes.", size)
 	case Holds:

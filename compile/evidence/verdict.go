@@ -137,7 +137,7 @@ func (b *bench) shown(f *Finding) string {
 		}
 		return fmt.Sprintf("In these data %s (%s).", are, size)
 	case Doubtful:
-		return fmt.Sprintf("These data speak against it (%s), but among so many tests chance can do that.", size)
+		return fmt.Sprintf("These data speak against it (%s), but chance could do that, all tests counted.", size)
 	case Trifling:
 		return fmt.Sprintf("In these data a trace of association is left (%s), too weak to matter for most purposes.", size)
 	case Holds:
