@@ -108,11 +108,11 @@ func TestFieldsAreAlwaysThere(t *testing.T) {
 	for verb, fields := range map[string]string{
 		"read": "rival question verdict way identified heldIsEnough hold moreSets mostPrecise forbidden forbiddenWhy heldFaults wouldHelp paths morePaths " +
 			"paths.0.path paths.0.nodes paths.0.kind paths.0.open paths.0.closedAt paths.0.closedWhy paths.0.openedAt " +
-			"question.exposure question.outcome question.effect question.from question.to question.shift question.held question.over question.as question.level mistakes setAside",
+			"question.exposure question.outcome question.effect question.from question.to question.shift question.fixed question.held question.where question.over question.groups question.weigh question.as question.level mistakes setAside",
 		"validate": "problems mistakes setAside",
 		"arrows":   "rival arrows arrows.0.from arrows.0.to arrows.0.kind arrows.0.form arrows.0.variesBy arrows.0.why arrows.0.references arrows.0.tierFrom arrows.0.tierTo file",
 		"check":    "rival summary method level rows contradicted independences functionalConstraints tetrads negativeControls neverTested leftOut",
-		"fit": "rival question seed rows rows.used rows.read rows.lost trust trust.verdict trust.reasons quantities run run.chains run.draws run.divergent run.gradients run.warmUpGradients given statement typed cut quantities.0.symbol quantities.0.readAs quantities.0.control " +
+		"fit": "rival question seed rows rows.used rows.read rows.outsideFilter rows.lost trust trust.verdict trust.reasons quantities run run.chains run.draws run.divergent run.gradients run.warmUpGradients given statement typed cut quantities.0.symbol quantities.0.readAs quantities.0.control " +
 			under("quantities.0.", number),
 		"effect": "rival question seed answer identified noEffectDrawn refusal heldSet heldProposed heldIsEnough lawsDisagree headline crudeRefusal heldRefusal rows trust run cut " +
 			"howWrong.sentences howWrong.robustness howWrong.noRobustness howWrong.eValue howWrong.noEValue howWrong.benchmarks howWrong.noBenchmarks " +

@@ -7,52 +7,10 @@ import (
 	"arrowroot/app/fit"
 	"arrowroot/app/words"
 	"arrowroot/compile/model"
-	"arrowroot/compile/study"
 	"arrowroot/infer/summary"
 )
 
 // What the verbs print. The README documents every field.
-
-type questionOut struct {
-	Exposure string   `json:"exposure"`
-	Outcome  string   `json:"outcome"`
-	Effect   string   `json:"effect"`
-	From     any      `json:"from"`
-	To       any      `json:"to"`
-	Shift    float64  `json:"shift"`
-	Held     []string `json:"held"`
-	Over     string   `json:"over"`
-	As       string   `json:"as"`
-	Level    float64  `json:"level"`
-}
-
-func printQuestion(q *study.Question) *questionOut {
-	if q == nil {
-		return nil
-	}
-	out := &questionOut{
-		Exposure: q.Exposure, Outcome: q.Outcome, Effect: or(q.Effect, study.TotalEffect), Shift: q.Shift,
-		Held: q.Held, Over: or(q.Over, study.TheseRows), As: or(q.As, study.Difference), Level: q.Level,
-		From: setting(q.From), To: setting(q.To),
-	}
-	if out.Held == nil {
-		out.Held = []string{}
-	}
-	if out.Level == 0 {
-		out.Level = 0.9
-	}
-	return out
-}
-
-func setting(s *study.Setting) any {
-	switch {
-	case s == nil:
-		return nil
-	case s.Word != "":
-		return s.Word
-	}
-	return s.Number
-}
 
 func or(s, other string) string {
 	if s == "" {
@@ -139,13 +97,14 @@ func finite(x float64) *float64 {
 }
 
 type rowsOut struct {
-	Used int            `json:"used"`
-	Read int            `json:"read"`
-	Lost map[string]int `json:"lost"`
+	Used    int            `json:"used"`
+	Read    int            `json:"read"`
+	Outside int            `json:"outsideFilter"`
+	Lost    map[string]int `json:"lost"`
 }
 
 func printRows(r model.Rows) rowsOut {
-	out := rowsOut{Used: r.Used, Read: r.Read, Lost: map[string]int{}}
+	out := rowsOut{Used: r.Used, Read: r.Read, Outside: r.Filtered, Lost: map[string]int{}}
 	for _, l := range r.Lost {
 		out.Lost[l.Variable] = l.Rows
 	}
