@@ -50,6 +50,14 @@ func TestKeep(t *testing.T) {
 	if got := fmt.Sprint(kept.Arrows, kept.Arcs, kept.Parents, kept.Children, kept.Siblings); got != "[[1 2] [0 2]] [[0 1]] [[] [] [0 1]] [[2] [2] []] [[1] [0] []]" {
 		t.Errorf("got %s", got)
 	}
+	sum, err := New(Spec{Names: []string{"a", "b", "sum"}, Arrows: [][2]int{{0, 2}, {1, 2}}, Computed: []int{2}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	part := sum.Keep(func(from, _ int) bool { return from != 0 }, nil)
+	if part.Computed[2] || !sum.Computed[2] || !sum.Keep(nil, nil).Computed[2] {
+		t.Errorf("a computed node that lost an arrow: computed %v, before %v", part.Computed[2], sum.Computed[2])
+	}
 	if got := fmt.Sprint(g.Keep(nil, nil).Arrows, g.Keep(nil, nil).Arcs); got != fmt.Sprint(g.Arrows, g.Arcs) {
 		t.Errorf("keeping all: %s", got)
 	}

@@ -1,7 +1,10 @@
 package graph
 
+import "slices"
+
 // Keep is g with the same nodes and only those arrows and arcs for which the
-// functions say yes. A nil function keeps all.
+// functions say yes. A nil function keeps all. A computed node that loses an
+// arrow counts as computed no more: the rest does not tell its value.
 func (g *Graph) Keep(arrow func(from, to int) bool, arc func(a, b int) bool) *Graph {
 	n := g.Len()
 	kept := &Graph{
@@ -20,6 +23,9 @@ func (g *Graph) Keep(arrow func(from, to int) bool, arc func(a, b int) bool) *Gr
 			insert(&kept.Parents[a[1]], a[0])
 			insert(&kept.Children[a[0]], a[1])
 			kept.Arrows = append(kept.Arrows, a)
+		} else if kept.Computed[a[1]] {
+			kept.Computed = slices.Clone(kept.Computed)
+			kept.Computed[a[1]] = false
 		}
 	}
 	for i, a := range g.Arcs {
