@@ -21,14 +21,7 @@ func (r *reader) paths(f *Findings) {
 		p.List, p.AtMost = f.Reading.Paths, !f.Reading.MorePaths
 	} else {
 		held := union(union(f.Held, f.Selected), r.fixed(f))
-		p.AtMost = true
-		for one := range causal.Between(f.Graph, f.Exposures, f.Outcomes, held) {
-			if len(p.List) == r.limits.Paths || r.ctx.Err() != nil {
-				p.AtMost = false
-				break
-			}
-			p.List = append(p.List, one)
-		}
+		p.List, p.AtMost = causal.Between(f.Graph, f.Exposures, f.Outcomes, held, r.limits.Paths)
 	}
 	p.Count, p.Exact = len(p.List), p.AtMost
 	if !p.AtMost {

@@ -84,11 +84,11 @@ func (r *reader) missing(f *Findings) {
 	if f.Lacks != "" || len(f.Outcomes) != 1 {
 		return
 	}
+	// Of the held set, or of the proposed one where that is not enough: else the
+	// rows would be blamed for what the set leaves open.
 	on := union(f.Exposures, f.Held)
-	if f.Ask.Held == nil {
-		if set := proposalOf(f.Adjustment.Adjustment); set != nil {
-			on = union(f.Exposures, set)
-		}
+	if set := proposalOf(f.Adjustment.Adjustment); set != nil && f.Verdict.Kind != causal.Readable {
+		on = union(f.Exposures, set)
 	}
 	y := f.Outcomes[0]
 	on = slices.DeleteFunc(on, func(v int) bool { return v == y || !g.Measured[v] || v >= f.Sheet })
@@ -114,7 +114,7 @@ func (r *reader) missing(f *Findings) {
 		return
 	}
 	s.CompleteCase = causal.ReadCompleteCase(r.sheet.drawn, s.Indicators, y, on)
-	if f.Reading == nil {
+	if f.Reading == nil || f.Adjustment.Sets == nil || f.direct() {
 		kind := "complete rows, valid"
 		if !s.CompleteCase.Valid {
 			kind = "complete rows, not valid"

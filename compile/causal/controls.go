@@ -65,8 +65,9 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 // firstPaths are the paths looked at for reasons.
 func firstPaths(g *graph.Graph, x, y int) []*Path {
 	var walks []*Path
+	left := searchBudget
 	for p := range paths(g, x, y) {
-		if walks = append(walks, p); len(walks) == controlPaths {
+		if walks = append(walks, p); len(walks) == controlPaths || !left.spend(g, len(p.Edges)) {
 			break
 		}
 	}

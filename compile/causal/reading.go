@@ -168,11 +168,13 @@ func (r *Reading) given() []int { return union(r.Query.Held, r.Query.Selected) }
 
 func (r *Reading) findPaths() {
 	s := newStatus(r.Graph, r.given())
+	left := pathBudget
 	for p := range paths(r.Graph, r.Query.Exposure, r.Query.Outcome) {
-		if len(r.Paths) == r.Query.MaxPaths {
+		if len(r.Paths) == r.Query.MaxPaths || left.spent() {
 			r.MorePaths = true
 			return
 		}
+		left.spend(r.Graph, len(p.Edges))
 		s.judge(p)
 		r.Paths = append(r.Paths, *p)
 	}

@@ -7,11 +7,25 @@ import (
 	"arrowroot/compile/graph"
 )
 
-// Between gives every proper path from one of the exposures to one of the
-// outcomes while some nodes are held: shortest first, and among equals by place
-// of exposure, outcome and nodes. A proper path meets no other exposure. It is
-// as lazy as the list for one pair, so that asking for few is cheap.
-func Between(g *graph.Graph, exposures, outcomes, held []int) iter.Seq[Path] {
+// Between gives the first proper paths from one of the exposures to one of the
+// outcomes while some nodes are held, at most max (0 = 500): shortest first, and
+// among equals by place of exposure, outcome and nodes. A proper path meets no
+// other exposure. All says whether these are all.
+func Between(g *graph.Graph, exposures, outcomes, held []int, max int) (list []Path, all bool) {
+	max = limit(max, enoughPaths)
+	left := pathBudget
+	for p := range between(g, exposures, outcomes, held) {
+		if len(list) == max || left.spent() {
+			return list, false
+		}
+		left.spend(g, len(p.Edges))
+		list = append(list, p)
+	}
+	return list, true
+}
+
+// between is as lazy as the list for one pair.
+func between(g *graph.Graph, exposures, outcomes, held []int) iter.Seq[Path] {
 	return func(yield func(Path) bool) {
 		type source struct {
 			next func() (*Path, bool)

@@ -10,7 +10,11 @@ import (
 func TestBetween(t *testing.T) {
 	g := sheet(t, "A -> B -> Y, A -> Y, C -> A, C -> Y, B <-> Y")
 	var got []string
-	for p := range Between(g, numbers(g, []string{"A", "B"}), numbers(g, []string{"Y"}), numbers(g, []string{"C"})) {
+	list, all := Between(g, numbers(g, []string{"A", "B"}), numbers(g, []string{"Y"}), numbers(g, []string{"C"}), 0)
+	if !all {
+		t.Error("there are more")
+	}
+	for _, p := range list {
 		got = append(got, p.Text(g))
 		if p.Open == slices.Contains(p.Nodes, g.Index("C")) {
 			t.Errorf("%s: open %v with C held", p.Text(g), p.Open)

@@ -41,6 +41,10 @@ func paths(g *graph.Graph, x, y int) iter.Seq[*Path] {
 	}
 }
 
+// pathBudget lasts for about a second: one more path takes a search for each of
+// its edges, so that of long paths through a large diagram few are listed.
+const pathBudget = 5 * searchBudget
+
 // A step leaves a node along an edge.
 type step struct {
 	to   int
