@@ -17,6 +17,7 @@ import (
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/graph"
+	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
@@ -49,6 +50,7 @@ type content struct {
 	Plots                  template.HTML
 	Statement              []statementLine
 	Quantities             []row
+	Controls               []row // coefficients that the question does not ask about
 	Groups                 []row // entries of vectors that vary by a plate
 	Trust                  string
 	Rows                   string
@@ -56,6 +58,8 @@ type content struct {
 	MorePaths              bool
 	Sets                   []string
 	Forbidden              []string
+	Mistakes               []mistake.Mistake // that stand
+	Aside                  []mistake.Mistake // that were set aside, with the reason
 	Caution                string
 	Seed                   uint64
 	Fitted                 bool
@@ -98,6 +102,8 @@ func contentOf(in Input) (*content, error) {
 			c.Forbidden = append(c.Forbidden, in.Graph.Names[f.Node]+": "+f.Reason)
 		}
 	}
+	c.Mistakes = mistake.Find(in.Study, in.Rival, in.Question, in.Reading, nil)
+	c.Aside = mistake.SetAside(in.Study, in.Rival, in.Question, in.Reading, nil)
 	figure, err := figureOf(in)
 	if err != nil {
 		return nil, err
@@ -115,14 +121,19 @@ func contentOf(in Input) (*content, error) {
 		c.Trust = r.Trust().String()
 		c.Rows = words.Rows(r.Full.Model.Rows)
 		c.Statement = statementOf(r.Full.Model)
+		labels := words.Coefficients(in.Study, r.Full.Model)
 		for _, q := range r.Full.Quantities {
+			label := labels[q.Parameter]
 			line := row{[]string{
 				q.Symbol, words.Number(q.Centre), words.Number(q.Spread), words.Number(q.Low) + " to " + words.Number(q.High), words.Percent(q.Level),
-				ratio(q.RHat), words.Whole(math.Min(q.BulkESS, q.TailESS)), q.Trust.Verdict.String(),
+				ratio(q.RHat), words.Whole(math.Min(q.BulkESS, q.TailESS)), q.Trust.Verdict.String(), label.Words,
 			}}
-			if r.Full.Model.Parameters[q.Parameter].Shape == model.ByPlate {
+			switch {
+			case r.Full.Model.Parameters[q.Parameter].Shape == model.ByPlate:
 				c.Groups = append(c.Groups, line)
-			} else {
+			case label.Control:
+				c.Controls = append(c.Controls, line)
+			default:
 				c.Quantities = append(c.Quantities, line)
 			}
 		}

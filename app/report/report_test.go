@@ -45,6 +45,15 @@ func TestReportSaysEverything(t *testing.T) {
 			t.Errorf("the report does not say %q", want)
 		}
 	}
+	// Controls are folded away, and no row stands without what it may be read as.
+	shown, folded, ok := strings.Cut(text, "<details><summary>")
+	if !ok || !strings.Contains(shown, "<td>not a total effect: what hedge does to bees directly, with") ||
+		strings.Contains(shown, "β_temp→bees</td>") || !strings.Contains(folded, "β_temp→bees</td>") || !strings.Contains(folded, "<td>total effect of temp on bees</td>") {
+		t.Error("the table of quantities can be misread")
+	}
+	if strings.Contains(text, "Mistakes to look at") {
+		t.Error("a sound study is accused")
+	}
 	if strings.Contains(text, "ZgotmplZ") || strings.Contains(text, "%!") {
 		t.Error("the report has a formatting fault")
 	}
@@ -58,5 +67,33 @@ func TestReportWithoutAFit(t *testing.T) {
 	}
 	if !strings.Contains(out.String(), "Untitled study") || strings.Contains(out.String(), "Result</h2>") {
 		t.Error("a report on an empty study is wrong")
+	}
+}
+
+// What was set aside stands in the report with its reason, and what was not
+// stands there too.
+func TestReportTellsMistakes(t *testing.T) {
+	doc, err := study.Load("../../assets/examples/hedgerows.arrowroot")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rival, q := doc.Rivals[0].Name, *doc.Questions[0]
+	q.Held = []string{"pesticide", "soil", "flowers"}
+	for _, aside := range []bool{false, true} {
+		var e study.Edit = study.ChangeQuestion{To: q}
+		if aside {
+			e = study.Dismiss{Dismissal: study.Dismissal{Rival: rival, Key: "M1 hedge bees flowers", Why: "the landowners asked"}}
+		}
+		if doc, err = e.Apply(doc); err != nil {
+			t.Fatal(err)
+		}
+		var out bytes.Buffer
+		if err := WriteHTML(&out, Input{Study: doc, Rival: rival, Question: doc.Questions[0]}); err != nil {
+			t.Fatal(err)
+		}
+		text := out.String()
+		if !strings.Contains(text, "Holding flowers would hide part of the effect") || strings.Contains(text, "Because: the landowners asked") != aside {
+			t.Errorf("set aside %v, the report does not say so", aside)
+		}
 	}
 }
