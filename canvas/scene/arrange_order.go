@@ -8,7 +8,7 @@ import (
 // uncross orders the layers so that few arrows cross; the best order met wins.
 func (a *arranger) uncross() {
 	best, least := a.snapshot(), a.crossings()
-	for sweep := range 24 {
+	for sweep := range min(24, 2+30000/max(len(a.spots), 1)) { // a large sheet is laid out while a hand waits
 		if least == 0 {
 			break
 		}

@@ -113,7 +113,7 @@ func (c curve) between(a, b *body, gapA, gapB float64) (curve, bool) {
 // bow meets a node, bends that swing out at one end are tried too. Positions
 // are those of the bodies; z is the zoom.
 func bends(all []*body, arrows [][2]int, z float64) []bend {
-	r := router{obstacles: make([]obstacle, len(all)), z: z}
+	r := router{obstacles: make([]obstacle, len(all)), z: z, many: len(arrows) > manyArrows}
 	for k, b := range all {
 		solid, soft := b.rect().Grow(clearance*z), b.skirt(z)
 		r.obstacles[k] = obstacle{solid: solid, soft: soft}
@@ -133,6 +133,7 @@ const (
 	behindNode  = 1000.0
 	acrossStrip = 60.0
 	clearance   = 7.0 // kept from nodes
+	manyArrows  = 400 // on a sheet where no bend keeps arrows readable
 )
 
 // bowSteps are the bows that are tried, the smallest first.
@@ -151,7 +152,11 @@ type obstacle struct {
 // a thousand of them and an arrow is tried with seventy bends.
 type router struct {
 	obstacles []obstacle
-	cells     map[[2]int][]int // obstacles that reach into each cell
+	cells     [][]int    // obstacles that reach into each cell, row by row
+	corner    draw.Point // of the grid
+	across    int        // cells in a row
+	down      int        // rows
+	many      bool       // so many arrows that few bends are tried for each
 	z         float64
 	from, to  int
 	a, b      draw.Point
@@ -161,19 +166,44 @@ type router struct {
 
 const cellSize = 96.0 // dips at zoom 1
 
-func (r *router) cell(x, y float64) [2]int {
-	return [2]int{int(math.Floor(x / (cellSize * r.z))), int(math.Floor(y / (cellSize * r.z)))}
+// cell gives the column and row of a point, which may lie off the grid.
+func (r *router) cell(x, y float64) (column, row int) {
+	return int(math.Floor((x - r.corner.X) / (cellSize * r.z))), int(math.Floor((y - r.corner.Y) / (cellSize * r.z)))
+}
+
+// at lists the obstacles that may hold a point.
+func (r *router) at(p draw.Point) []int {
+	x, y := r.cell(p.X, p.Y)
+	if x < 0 || y < 0 || x >= r.across || y >= r.down {
+		return nil
+	}
+	return r.cells[y*r.across+x]
 }
 
 // survey enters every obstacle in the cells that it reaches into.
 func (r *router) survey() {
-	r.cells = make(map[[2]int][]int)
+	var all draw.Rect
 	for k := range r.obstacles {
 		box := r.obstacles[k].solid.Union(r.obstacles[k].soft)
-		lo, hi := r.cell(box.X, box.Y), r.cell(box.X+box.W, box.Y+box.H)
-		for x := lo[0]; x <= hi[0]; x++ {
-			for y := lo[1]; y <= hi[1]; y++ {
-				r.cells[[2]int{x, y}] = append(r.cells[[2]int{x, y}], k)
+		if k > 0 {
+			box = box.Union(all)
+		}
+		all = box
+	}
+	r.corner = draw.Point{X: all.X, Y: all.Y}
+	x, y := r.cell(all.X+all.W, all.Y+all.H)
+	if x, y = x+1, y+1; x*y > 1<<20 {
+		return // nodes so far apart that looking them up saves nothing: no arrow bends
+	}
+	r.across, r.down = x, y
+	r.cells = make([][]int, x*y)
+	for k := range r.obstacles {
+		box := r.obstacles[k].solid.Union(r.obstacles[k].soft)
+		left, top := r.cell(box.X, box.Y)
+		right, bottom := r.cell(box.X+box.W, box.Y+box.H)
+		for y := top; y <= bottom; y++ {
+			for x := left; x <= right; x++ {
+				r.cells[y*r.across+x] = append(r.cells[y*r.across+x], k)
 			}
 		}
 	}
@@ -191,12 +221,12 @@ func (r *router) route() bend {
 		}
 	}
 	for _, d := range bowSteps {
-		if math.Abs(d) > 0.5*length+20 {
+		if math.Abs(d) > 0.5*length+20 || r.many && math.Abs(d) > 34 {
 			break
 		}
 		try(bow(d*r.z), math.Abs(d))
 	}
-	if least < behindNode {
+	if least < behindNode || r.many {
 		return best
 	}
 	for _, d := range bowSteps[1:] {
@@ -215,7 +245,7 @@ func (r *router) cost(d bend, cost float64) float64 {
 	r.pts = appendSample(r.pts[:0], joining(r.a, r.b, d), 14*r.z)
 	r.met = r.met[:0]
 	for _, p := range r.pts {
-		for _, k := range r.cells[r.cell(p.X, p.Y)] {
+		for _, k := range r.at(p) {
 			if k == r.from || k == r.to {
 				continue
 			}
