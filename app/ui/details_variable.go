@@ -300,6 +300,9 @@ func (x *details) priors(s *sheaf, v *study.Variable) {
 func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 	d := x.d
 	s.add(newProse(sizeBody, span{text: p.Symbol, bold: true}, span{text: "  " + p.Unit, token: tokenMuted}))
+	if label := d.coefficient(p); label != "" {
+		s.add(newProse(sizeSmall, span{text: "may be read as: " + label, token: tokenMuted}))
+	}
 	if p.Shape == model.Scalar {
 		draws := d.posterior(p.Name)
 		low, high, level := d.interval(p.Name)
@@ -318,8 +321,8 @@ func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 		s.add(newProse(sizeSmall, span{text: shapeWords(p), token: tokenMuted}))
 		x.vector(s, d.view.Model, p)
 	}
-	if p.Shape == model.ByPlate {
-		return // its prior is the law of the levels: mean and spread stand by themselves
+	if p.Shape == model.ByPlate || p.Shape == model.Unrecorded {
+		return // its prior is the law of the levels, or of the variable: that stands by itself
 	}
 	text, own := d.priorText(of, p.Name)
 	f := d.field(text, priorPhrase(p), func(text string) { d.setPrior(of, p.Name, text) })
@@ -375,6 +378,8 @@ func shapeWords(p *model.Parameter) string {
 		return times(p.Size, "entry", "entries") + " that sum to zero: " + words.List(p.Entries)
 	case model.Simplex:
 		return times(p.Size, "share", "shares") + " that sum to one"
+	case model.Unrecorded:
+		return times(p.Size, "missing entry", "missing entries") + ", drawn with the rest"
 	case model.Cuts:
 		return times(p.Size, "cut point", "cut points") + " in rising order"
 	}

@@ -36,6 +36,9 @@ func (m *Model) Fingerprint() string {
 		for _, x := range v.Values {
 			buffer = binary.LittleEndian.AppendUint64(buffer, math.Float64bits(x))
 		}
+		for _, i := range v.Missing {
+			buffer = binary.LittleEndian.AppendUint32(buffer, uint32(i))
+		}
 		h.Write(buffer)
 	}
 	for _, p := range m.Plates {

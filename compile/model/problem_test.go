@@ -37,6 +37,26 @@ func set(t *table.Table, name string, row int, v float64) { t.Column(name).Numbe
 
 var troubles = []trouble{
 	{
+		name: "imputed category", code: "not-imputed",
+		study:   func(s *study.Study) { law(s, "soil").Treat = study.Imputed },
+		table:   func(t *table.Table) { t.Column("soil").Codes[3] = -1 },
+		message: "The missing entries of soil are not imputed, and their rows are lost: hedge reads them, and soil has a law of separate values, over which this version does not add up.",
+		labels:  "Leave those rows out", mends: true,
+	},
+	{
+		name: "imputed and computed from", code: "not-imputed",
+		study: func(s *study.Study) {
+			law(s, "temp").Treat = study.Imputed
+			s.Variables = append(s.Variables, &study.Variable{ID: "heat", Scale: study.Real, Computed: "temp * 2"})
+			d := s.Rivals[0].Diagram
+			d.Nodes = append(d.Nodes, &study.Node{Variable: "heat"})
+			d.Arrows = append(d.Arrows, &study.Arrow{From: "temp", To: "heat"}, &study.Arrow{From: "heat", To: "bees"})
+		},
+		table:   func(t *table.Table) { set(t, "temp", 3, math.NaN()) },
+		message: "The missing entries of temp are not imputed, and their rows are lost: heat is computed from it.",
+		labels:  "Leave those rows out", mends: true,
+	},
+	{
 		name: "formula does not parse", code: "formula",
 		study:   func(s *study.Study) { law(s, "bees").Formula = "log rate = alpha_bees + (beta_hedge_bees * hedge" },
 		message: "log rate = alpha_bees + (beta_hedge_bees * hedge\n                        ^ this bracket is not closed",

@@ -2,6 +2,7 @@ package model
 
 import (
 	"flag"
+	"math"
 	"os"
 	"path/filepath"
 	"strings"
@@ -33,7 +34,48 @@ func specimens() []specimen {
 		{"schools", schools(), coached(), study.Question{}, Full},
 		{"trials", sown(), trays(), study.Question{Exposure: "warmth", Outcome: "sprouted", Shift: 1}, Full},
 		{"typed", typedBees(), traps(), beesQuestion(), Full},
+		{"farms", inFarms(), traps(), beesQuestion(), Full},
+		{"farms-held", inFarms(), traps(), withinFarms(), Held},
+		{"imputed", imputed(), holed(), beesQuestion(), Full},
 	}
+}
+
+// inFarms has its unmeasured cause at the level of farms, where it joins hedge
+// and bees besides (SEMANTICS A6).
+func inFarms() *study.Study {
+	s := hedgerows()
+	for _, v := range s.Variables {
+		if v.ID == "attitude" {
+			v.Plates = []string{"farm"}
+		}
+	}
+	d := s.Rivals[0].Diagram
+	d.Arrows = append(d.Arrows, &study.Arrow{From: "attitude", To: "bees"})
+	return s
+}
+
+// withinFarms holds farm, and soil, which is a category.
+func withinFarms() study.Question {
+	q := beesQuestion()
+	q.Held = []string{"farm", "soil"}
+	return q
+}
+
+// imputed has flowers, which bees read, and bees, which nothing reads, imputed.
+func imputed() *study.Study {
+	s := hedgerows()
+	law(s, "flowers").Treat = study.Imputed
+	law(s, "bees").Treat = study.Imputed
+	return s
+}
+
+// holed is traps with entries missing.
+func holed() *table.Table {
+	t := traps()
+	set(t, "flowers", 1, math.NaN())
+	set(t, "flowers", 4, math.NaN())
+	set(t, "bees", 2, math.NaN())
+	return t
 }
 
 // ofLevels has children of every kind of level, and products.

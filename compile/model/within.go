@@ -40,7 +40,9 @@ func (b *builder) share() {
 		for _, p := range s.Plates {
 			w := grouped{plate: b.graph.Plates[p.Plate].Name, sake: b.carrier(causal.Carried{For: p.For, Node: s.Node}).sake}
 			for _, v := range p.Means {
-				w.ids = append(w.ids, b.graph.Names[v])
+				if id := b.graph.Names[v]; !d.offset(id) {
+					w.ids = append(w.ids, id)
+				}
 			}
 			d.within = append(d.within, w)
 		}
@@ -50,13 +52,20 @@ func (b *builder) share() {
 // hold puts a held plate into the draft of the outcome's law.
 func (b *builder) hold(d *draft, plate string) {
 	w := grouped{plate: plate}
-	offsets, _ := typedParts(d.user.Formula, d.variable.ID)
 	for _, a := range d.arrows {
-		if a.Form != study.Offset && !slices.Contains(offsets, a.From) {
+		if !d.offset(a.From) {
 			w.ids = append(w.ids, a.From)
 		}
 	}
 	d.within = append(d.within, w)
+}
+
+// offset reports whether a variable enters a draft with no coefficient: its
+// mean within a group then explains nothing of the coefficients.
+func (d *draft) offset(id string) bool {
+	offsets, _ := typedParts(d.user.Formula, d.variable.ID)
+	return slices.Contains(offsets, id) ||
+		slices.ContainsFunc(d.arrows, func(a *study.Arrow) bool { return a.From == id && a.Form == study.Offset })
 }
 
 // varies adds the baselines that a draft's plates call for, so far as it has
@@ -239,11 +248,16 @@ func (b *builder) unmoved(v *Variable, plate string) {
 	if v.ID != b.question.Exposure {
 		return
 	}
-	b.stop(Problem{Code: "within", Variable: v.ID, Place: "question",
-		Message: fmt.Sprintf("%s has one value throughout each %s in these data, so that nothing is left to compare within it.", v.ID, plate),
-		Repairs: b.reask("Do not hold "+plate, func(q *study.Question) {
+	to := *b.variable(v.ID)
+	to.Plates = []string{plate}
+	repairs := []Repair{{Label: "Say that " + v.ID + " has one value per " + plate, Edit: changeVariable(to)}}
+	if slices.Contains(b.question.Held, plate) {
+		repairs = append(repairs, b.reask("Do not hold "+plate, func(q *study.Question) {
 			q.Held = slices.DeleteFunc(append([]string{}, q.Held...), func(h string) bool { return h == plate })
-		})})
+		})...)
+	}
+	b.stop(Problem{Code: "within", Variable: v.ID, Place: "question", Repairs: repairs,
+		Message: fmt.Sprintf("%s has one value throughout each %s in these data, so that nothing is left to compare within it.", v.ID, plate)})
 }
 
 // meanTerms are the means' part of a predictor, those left aside that a typed
