@@ -153,7 +153,7 @@ func (d *desk) bindDialog() {
 		h := min(float32(len(lines))*34+8, 340)
 		objects = append(objects, fixed(0, h, list))
 		if n := len(d.freeColumns()); n > 0 {
-			objects = append(objects, row(0, d.quiet("Make variables of the other "+times(n, "column", "columns"), func() { p.close(); d.adoptColumns() })))
+			objects = append(objects, row(0, d.quiet("Make variables of the other "+strings.TrimPrefix(times(n, "column", "columns"), "1 "), func() { p.close(); d.adoptColumns() })))
 		}
 		rows := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
 		rows.add(hairline(), muted("Rows that are used"))

@@ -85,6 +85,35 @@ func (d *desk) doubts() bool {
 	return false
 }
 
+// markMistakes puts a small mark on what each mistake is about: on the arrow or
+// arc where it is about the two ends of one, else on its first variable.
+func (d *desk) markMistakes(in *scene.Input) {
+	diagram := d.view.Rival.Diagram
+	for i := range d.view.Mistakes {
+		m := &d.view.Mistakes[i]
+		if d.tooEarly(m) {
+			continue
+		}
+		ids := slices.DeleteFunc(slices.Clone(m.Nodes), func(id string) bool { return !d.onSheet(id) })
+		var pair [2]string
+		if len(ids) == 2 {
+			for _, a := range [][2]string{{ids[0], ids[1]}, {ids[1], ids[0]}} {
+				if arc := diagram.Arc(a[0], a[1]); diagram.Arrow(a[0], a[1]) != nil {
+					pair = a
+				} else if arc != nil && pair[0] == "" {
+					pair = [2]string{arc.A, arc.B}
+				}
+			}
+		}
+		switch {
+		case pair[0] != "" && in.ArrowFindings[pair] == "":
+			in.ArrowFindings[pair] = m.Sentence
+		case pair[0] == "" && len(ids) > 0 && in.Findings[ids[0]] == "":
+			in.Findings[ids[0]] = m.Sentence
+		}
+	}
+}
+
 // mistakeMark is what a mistake is about, on the sheet; nil = nothing.
 func (d *desk) mistakeMark(m *mistake.Mistake) *scene.Mark {
 	k := &scene.Mark{}

@@ -210,7 +210,7 @@ func (p sheetPanel) update() {
 	in := scene.Input{
 		Study: v.Study, Rival: v.Rival, Question: v.Question, Reading: v.Reading,
 		Palette: d.palette(), LitPath: scene.NoPath,
-		Dots: d.dots(), PlateCounts: d.plateCounts(), Missing: make(map[string]float64), Findings: make(map[string]string),
+		Dots: d.dots(), PlateCounts: d.plateCounts(), Missing: make(map[string]float64), Findings: make(map[string]string), ArrowFindings: make(map[[2]string]string),
 	}
 	if v.Table != nil && v.Table.Rows > 0 {
 		for _, x := range v.Study.Variables {
@@ -224,6 +224,7 @@ func (p sheetPanel) update() {
 			in.Findings[x.Variable] = x.Message
 		}
 	}
+	d.markMistakes(&in)
 	if v.Result != nil && d.paint != "" {
 		in.Paint = paint.Of(v.Result, d.paint, v.Stale)
 	}

@@ -239,18 +239,39 @@ func (b *builder) drawArc(l *line) {
 	)
 }
 
+// drawArrowFindings puts small marks on arrows and arcs that have something to
+// say, off the middle, where marks of the form stand.
+func (b *builder) drawArrowFindings() {
+	if len(b.in.ArrowFindings) == 0 {
+		return
+	}
+	for _, l := range append(b.arrows[:len(b.arrows):len(b.arrows)], b.arcs...) {
+		if b.in.ArrowFindings[l.pair] != "" {
+			b.findingMark(l.run.at(0.34), findingRadius(b.zoom))
+		}
+	}
+}
+
 // drawWords prints what the arrow and the node under the pointer, or picked
 // alone, have to say.
 func (b *builder) drawWords() {
 	p := &b.in.Palette
 	said := false
 	say := func(l *line) {
+		if said {
+			return
+		}
+		m := l.run.at(0.5)
+		if found := b.in.ArrowFindings[l.pair]; found != "" && b.hovered(l) {
+			said = true
+			b.note(draw.Rect{X: m.X, Y: m.Y - 6, H: 12}, found, p.Confounding)
+			return
+		}
 		words := b.arrowWords(l)
-		if words == "" || said {
+		if words == "" {
 			return
 		}
 		said = true
-		m := l.run.at(0.5)
 		n := l.run.at(0.52).Sub(l.run.at(0.48)).Unit().Left()
 		if n.Y > 0 {
 			n = n.Times(-1)

@@ -25,6 +25,7 @@ func Build(in Input) (*draw.List, *Map) {
 	b.drawArrows()
 	b.drawNotes()
 	b.drawNodes()
+	b.drawArrowFindings()
 	b.drawWords()
 	b.drawPreview()
 	return b.list, &b.Map

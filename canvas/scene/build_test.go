@@ -226,3 +226,35 @@ func TestFit(t *testing.T) {
 		}
 	}
 }
+
+// A finding about an arrow is a small mark on it; its words come with the
+// pointer.
+func TestFindingOnAnArrow(t *testing.T) {
+	s := hedgerows()
+	in := Input{Study: s, Rival: s.Rivals[0], Palette: Light(), Width: 900, Height: 500, LitPath: NoPath}
+	count := func() (marks, words int) {
+		list, _ := Build(in)
+		for _, item := range list.Items {
+			if text, ok := item.(*draw.Text); ok {
+				if text.Text == "!" {
+					marks++
+				}
+				if text.Text == "bees come first" {
+					words++
+				}
+			}
+		}
+		return marks, words
+	}
+	if m, _ := count(); m != 0 {
+		t.Fatal("a mark without a finding")
+	}
+	in.ArrowFindings = map[[2]string]string{{"hedge", "bees"}: "bees come first"}
+	if m, w := count(); m != 1 || w != 0 {
+		t.Errorf("%d marks, %d words", m, w)
+	}
+	in.Hover = Target{Kind: OnArrow, Pair: [2]string{"hedge", "bees"}}
+	if m, w := count(); m != 1 || w != 1 {
+		t.Errorf("under the pointer %d marks, %d words", m, w)
+	}
+}

@@ -216,12 +216,19 @@ func (b *builder) drawFinding(n *body) {
 	if words == "" {
 		return
 	}
-	p := &b.in.Palette
-	r := 6.5 * min(max(b.zoom, 0.8), 1.4)
+	r := findingRadius(b.zoom)
 	at := draw.Point{X: n.at.X + n.w/2 - r*0.4, Y: n.at.Y - n.h/2 + r*0.2}
 	if n.square {
 		at = at.Add(draw.Point{X: r * 0.4, Y: -r * 0.2})
 	}
+	b.findingMark(at, r)
+}
+
+func findingRadius(zoom float64) float64 { return 6.5 * min(max(zoom, 0.8), 1.4) }
+
+// findingMark is the small mark of something to say.
+func (b *builder) findingMark(at draw.Point, r float64) {
+	p := &b.in.Palette
 	b.list.Add(
 		&draw.Shape{Path: draw.Circle(at, r), Fill: p.Sheet, Stroke: p.Confounding, Width: 1.4},
 		&draw.Text{At: draw.Point{X: at.X, Y: at.Y + draw.Drop(1.6*r) + 0.3}, Text: "!", Face: draw.Bold, Size: 1.6 * r, Color: p.Confounding, Anchor: draw.Middle},

@@ -31,12 +31,13 @@ type Input struct {
 	Question *study.Question
 	Reading  *causal.Reading // its graph names nodes by variable ID
 
-	Paint       *Paint
-	Dots        map[string][]float64 // sorted quantiles by variable, for the dot strips
-	PlateCounts map[string]int       // levels by plate name
-	Missing     map[string]float64   // share of entries missing, by variable
-	Findings    map[string]string    // variables with something to say: a small mark, the text on hover
-	Limits      []string             // variables that limit the rows (a filter or a selection)
+	Paint         *Paint
+	Dots          map[string][]float64 // sorted quantiles by variable, for the dot strips
+	PlateCounts   map[string]int       // levels by plate name
+	Missing       map[string]float64   // share of entries missing, by variable
+	Findings      map[string]string    // variables with something to say: a small mark, the text on hover
+	ArrowFindings map[[2]string]string // the same for arrows and arcs
+	Limits        []string             // variables that limit the rows (a filter or a selection)
 
 	Selected  Selection
 	Hover     Target
