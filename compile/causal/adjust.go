@@ -89,6 +89,22 @@ func Minimal(g *graph.Graph, x, y int, forced []int, max int) (sets [][]int, mor
 	return newComparison(g, []int{x}, []int{y}).minimal(forced, limit(max, 100))
 }
 
+// BackDoorSets lists the minimal sets of Pearl's stricter back-door criterion (1993):
+// none of their members descends from x, and they close every path with an
+// arrowhead at x. There may be none where Minimal finds sets; otherwise as
+// Minimal.
+func BackDoorSets(g *graph.Graph, x, y int, forced []int, max int) (sets [][]int, more bool) {
+	if x == y {
+		return nil, false
+	}
+	c := newSeparation(g, x, y)
+	c.backDoor = g.Keep(func(from, _ int) bool { return from != x }, nil)
+	for v, below := range g.Descendants(x) {
+		c.usable[v] = c.usable[v] && !below
+	}
+	return c.minimal(forced, limit(max, 100))
+}
+
 // MinimalSeparators lists the minimal sets of measured nodes that contain
 // forced and separate x and y in the graph as drawn; otherwise as Minimal.
 func MinimalSeparators(g *graph.Graph, x, y int, forced []int, max int) (sets [][]int, more bool) {

@@ -35,6 +35,9 @@ type reference struct {
 		}
 		Directed, Undirected [][2]string
 		S                    string
+		Equations            map[string]map[string]string
+		Spreads              json.RawMessage `json:"error_variances"`
+		Table                map[string]json.RawMessage
 		External             []string
 		Partial              []string
 	}
@@ -43,22 +46,31 @@ type reference struct {
 		Dsep  [][]any
 		Paths *struct {
 			Total, Open, Causal, Backdoor int
+			OpenNonCausal                 int `json:"open_noncausal"`
 			List                          []referencePath
 		} `json:"paths_given_conditioned"`
 		Forbidden  []string
 		Adjustment struct {
 			Exists               bool
 			Minimal              [][]string
+			Minimum              [][]string
+			BackDoor             [][]string `json:"minimal_backdoor"`
+			Valid                *int       `json:"n_valid"`
 			MinimalWithCondition [][]string `json:"minimal_containing_conditioned"`
 		}
 		Separators  [][]string `json:"separators_minimal"`
 		FrontDoor   [][]string `json:"frontdoor_minimal"`
 		Instruments struct {
-			Total [][2]any
-			Edge  []json.RawMessage
+			Total     [][2]any
+			Edge      []json.RawMessage
+			Ancestral []json.RawMessage `json:"ancestral_edge"`
 		}
 		Identifiable      bool
-		IdentifiableGiven *bool `json:"identifiable_given_conditioned"`
+		Estimand          string
+		EstimandGiven     string `json:"estimand_given_conditioned"`
+		Hedge             map[string][]string
+		Local             [][]json.RawMessage `json:"local_markov"`
+		IdentifiableGiven *bool               `json:"identifiable_given_conditioned"`
 		Cpdag             *classAnswer
 		Implied           [][]json.RawMessage `json:"implied_independences"`
 		OSet              *[]string           `json:"o_set"`
