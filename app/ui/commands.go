@@ -135,6 +135,7 @@ func commandsOf(d *desk) commandTable {
 		{id: "page-rivals", menu: "Rivals", label: "Rivals side by side", keys: "Alt+5", run: page("Rivals"), parted: true},
 
 		{id: "svg", menu: "Share", label: "Save the sheet as SVG …", run: d.svgDialog},
+		{id: "arrow-table", menu: "Share", label: "Save the arrow table …", run: d.arrowsDialog},
 		{id: "report", menu: "Share", label: "Save a report …", run: d.reportDialog},
 		{id: "copy-statement", menu: "Share", label: "Copy the statement", on: func() bool { return d.view.Statement != nil }, run: d.copyStatement},
 

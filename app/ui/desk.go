@@ -44,7 +44,8 @@ type desk struct {
 	painter fyne.CanvasObject // what the paint menu hangs from
 	panels  []panel
 	strips  stripCache
-	showing bool // the editor is being given something else to show
+	labels  []coefficientReading // the newest last
+	showing bool                 // the editor is being given something else to show
 	trace   *trace
 }
 

@@ -2,6 +2,7 @@ package ui
 
 import (
 	"bytes"
+	"encoding/csv"
 	"os"
 	"path/filepath"
 	"strings"
@@ -160,6 +161,23 @@ func (d *desk) saveSVG(path string) {
 		err = os.WriteFile(path, b.Bytes(), 0o644)
 	}
 	d.saved(path, err)
+}
+
+// saveArrows writes what the rival supposes, arrow by arrow.
+func (d *desk) saveArrows(path string) {
+	if filepath.Ext(path) == "" {
+		path += ".csv"
+	}
+	var b bytes.Buffer
+	err := csv.NewWriter(&b).WriteAll(d.view.Study.ArrowTable(d.rival()))
+	if err == nil {
+		err = os.WriteFile(path, b.Bytes(), 0o644)
+	}
+	d.saved(path, err)
+}
+
+func (d *desk) arrowsDialog() {
+	d.askFile("Save the arrow table", "Save", false, suggested(d.view.Study)+"-arrows.csv", []string{".csv"}, d.saveArrows)
 }
 
 // saveReport writes the whole study as one page.

@@ -14,12 +14,13 @@ import (
 // fitPage shows a fit as it goes on, and what it gave: a line for each
 // quantity, the trust verdict with its reasons, the rows used.
 type fitPage struct {
-	d      *desk
-	pane   *pane
-	notes  *pane
-	split  fyne.CanvasObject
-	seen   fitState
-	opened bool
+	d        *desk
+	pane     *pane
+	notes    *pane
+	split    fyne.CanvasObject
+	seen     fitState
+	opened   bool
+	controls bool // the coefficients that the question does not ask about are unfolded
 }
 
 type fitState struct {
@@ -76,14 +77,15 @@ func (p *fitPage) table() {
 		return
 	}
 	level := 0.9
-	var rows []fyne.CanvasObject
+	var rows, controls []fyne.CanvasObject
 	hidden := 0
+	labels := p.d.coefficients(v.Result.Full.Model)
 	for _, q := range v.Result.Full.Quantities {
 		level = q.Level
 		if q.Constant {
 			continue
 		}
-		if len(rows) >= 300 {
+		if len(rows)+len(controls) >= 300 {
 			hidden++
 			continue
 		}
@@ -91,18 +93,40 @@ func (p *fitPage) table() {
 		if trust := q.Trust.Verdict.String(); trust != "sound" {
 			token = verdictToken(trust)
 		}
+		label := labels[q.Parameter]
 		name := newLabel(q.Symbol, sizeBody, token, fyne.TextStyle{}).shrinkTo(40)
-		rows = append(rows, quantityRow(name, [5]string{
+		line := quantityRow(name, [5]string{
 			words.Number(q.Centre), words.Number(q.Spread), words.Number(q.Low) + " to " + words.Number(q.High),
 			rhat(q.RHat), words.Number(math.Round(q.BulkESS)) + " · " + words.Number(math.Round(q.TailESS)),
-		}, token))
+		}, token)
+		if label.Words != "" {
+			line = column(0, line, newProse(sizeSmall, span{text: label.Words, token: tokenMuted}))
+		}
+		if label.Control {
+			controls = append(controls, line)
+		} else {
+			rows = append(rows, line)
+		}
 	}
 	head := quantityRow(small("quantity"), [5]string{"centre", "spread", words.Percent(level) + " interval", "R-hat", "ESS bulk · tail"}, tokenMuted)
 	objects := append([]fyne.CanvasObject{head, hairline(), gapOf(1, 2)}, rows...)
+	keys := make(map[string]fyne.Focusable)
+	if len(controls) > 0 {
+		says := "Show " + times(len(controls), "coefficient", "coefficients") + " that the question does not ask about"
+		if p.controls {
+			says = "Fold away what the question does not ask about"
+		}
+		fold := p.d.quiet(says, func() { p.controls = !p.controls; p.table() })
+		keys["controls"] = fold
+		objects = append(objects, gapOf(1, 4), row(0, fold))
+		if p.controls {
+			objects = append(objects, controls...)
+		}
+	}
 	if hidden > 0 {
 		objects = append(objects, small(fmt.Sprintf("and %d more", hidden)))
 	}
-	p.pane.fill(nil, objects...)
+	p.pane.fill(keys, objects...)
 }
 
 func rhat(x float64) string {

@@ -59,12 +59,14 @@ func (d *desk) fileSentence(verb, rest string) (sentence, bool) {
 	case "open":
 		return sentence{does: "Open " + rest, run: func() { d.orSaved(func() { d.open(path) }) }}, true
 	case "save":
-		if strings.HasPrefix("as", rest) || strings.HasPrefix("the sheet as svg a report", rest) {
+		if strings.HasPrefix("as", rest) || strings.HasPrefix("the sheet as svg a report", rest) || strings.HasPrefix("the arrow table", rest) {
 			return sentence{}, false
 		}
 		return sentence{does: "Save as " + rest, run: func() { d.saveTo(path, func() {}) }}, true
 	case "svg":
 		return sentence{does: "Save the sheet as " + rest, run: func() { d.saveSVG(path) }}, true
+	case "arrows":
+		return sentence{does: "Save the arrow table as " + rest, run: func() { d.saveArrows(path) }}, true
 	case "report":
 		return sentence{does: "Save a report as " + rest, run: func() { d.saveReport(path) }}, true
 	}
