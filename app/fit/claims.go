@@ -24,9 +24,10 @@ type claims struct {
 
 func direct(q *study.Question) bool { return q.Effect == study.DirectEffect }
 
-// claimed reads the question's own kind of effect, for the rows it asks about.
-func claimed(g *graph.Graph, q *study.Question) *claims {
-	h := newHolding(g, q)
+// claimed reads the question's own kind of effect, for the rows it asks about
+// among those that limits let into the data.
+func claimed(g *graph.Graph, q *study.Question, limits []int) *claims {
+	h := newHolding(g, q, limits)
 	c := &claims{held: q.Held}
 	var sets [][]int // valid for all rows, the best first
 	if direct(q) {
@@ -54,9 +55,13 @@ func claimed(g *graph.Graph, q *study.Question) *claims {
 			c.held = append(c.held, g.Names[v])
 		}
 	}
+	if why := h.bent(g); why != "" && !c.none {
+		c.identified, c.heldValid, c.crudeValid, c.why = false, false, false, why
+		return c
+	}
 	if unlike := h.unlike(indices(g, c.held)); c.heldValid && unlike != nil {
 		c.heldValid = false
-		names := namesOf(g, unlike)
+		names := strings.Join(namesIn(g, unlike), " and ")
 		c.notes = append(c.notes, fmt.Sprintf("the law that holds %s does not tell rows apart by %s, on which %s depends: hold %s as well for a held number of these rows",
 			orNothing(c.held), names, q.Outcome, names))
 	}
@@ -69,11 +74,12 @@ type holding struct {
 	graph   *graph.Graph // within the groups of the held plates
 	outcome int
 	set     []int // the exposure, and what is fixed
-	where   []int // what the rows are chosen by, the exposure left out
+	where   []int // what the rows asked about are told by, the exposure left out
+	limits  []int // what the rows in the data were chosen by
 }
 
-func newHolding(g *graph.Graph, q *study.Question) *holding {
-	h := &holding{graph: g, outcome: g.Index(q.Outcome), set: []int{g.Index(q.Exposure)}}
+func newHolding(g *graph.Graph, q *study.Question, limits []int) *holding {
+	h := &holding{graph: g, outcome: g.Index(q.Outcome), set: []int{g.Index(q.Exposure)}, limits: limits}
 	var plates []int
 	for _, id := range q.Held {
 		if p := g.Plate(id); p >= 0 && g.Index(id) < 0 {
@@ -115,7 +121,12 @@ func (h *holding) unlike(held []int) []int {
 	given := slices.Concat(held, h.set)
 	var out []int
 	for _, w := range h.where {
-		if !slices.Contains(given, w) && !causal.Separated(cut, []int{w}, []int{h.outcome}, given) {
+		if h.tells(cut, w, h.outcome, given) {
+			out = append(out, w)
+		}
+	}
+	for _, w := range h.limits { // these have bent the held law as well, if it does not know them
+		if !slices.Contains(out, w) && (h.tells(cut, w, h.outcome, given) || h.tells(h.graph, w, h.outcome, given)) {
 			out = append(out, w)
 		}
 	}
@@ -145,14 +156,6 @@ func indices(g *graph.Graph, ids []string) []int {
 		}
 	}
 	return out
-}
-
-func namesOf(g *graph.Graph, nodes []int) string {
-	names := make([]string, len(nodes))
-	for i, v := range nodes {
-		names[i] = g.Names[v]
-	}
-	return strings.Join(names, " and ")
 }
 
 func orNothing(held []string) string {

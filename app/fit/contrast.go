@@ -72,7 +72,7 @@ const stopped = "the run was stopped before it was computed"
 
 func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, watch func(infer.Progress)) (*Effect, error) {
 	q := req.question()
-	claim := claimed(g, &q)
+	claim := claimed(g, &q, limitsOf(req.Study, req.Rival, g))
 	e := &Effect{
 		Identified: claim.identified, None: claim.none,
 		Held: claim.held, HeldProposed: claim.proposed, HeldValid: claim.heldValid, Notes: claim.notes,
