@@ -242,3 +242,110 @@ func writtenOut(t testing.TB, g *graph.Graph, groups, rows int) (out *graph.Grap
 	}
 	return out, place, held
 }
+
+// The law of a variable with what it carries, at its own row and at the level
+// of the plate, is independent of everything earlier in the fit. Checked in the
+// diagram written out: what enters as a mean is known of all rows of the group,
+// and a baseline that varies by the plate is what the other rows' values of the
+// variable itself tell, with what their laws read. This is for A6 what
+// conditioning on carriers is for A1.
+func TestSharedCarriersAgainstRowsWrittenOut(t *testing.T) {
+	r := rand.New(rand.NewPCG(15, 16))
+	compared := 0
+	for range 1500 {
+		n := 4 + r.IntN(3)
+		spec := graph.Spec{}
+		var shared []int
+		for v := range n {
+			spec.Names = append(spec.Names, fmt.Sprint("v", v))
+			if v > 1 && r.Float64() < 0.35 {
+				shared = append(shared, v)
+			}
+			if v > 1 && r.Float64() < 0.4 {
+				spec.Unmeasured = append(spec.Unmeasured, v)
+			}
+		}
+		order := r.Perm(n)
+		for i, b := range order {
+			for _, a := range order[:i] {
+				if r.Float64() < 0.4 && (slices.Contains(shared, a) || !slices.Contains(shared, b)) {
+					spec.Arrows = append(spec.Arrows, [2]int{a, b})
+				}
+			}
+		}
+		var at []int
+		for a := range n {
+			for b := range a {
+				if slices.Contains(shared, a) == slices.Contains(shared, b) && r.Float64() < 0.12 {
+					if slices.Contains(shared, a) || r.Float64() < 0.6 {
+						at = append(at, len(spec.Arcs))
+					}
+					spec.Arcs = append(spec.Arcs, [2]int{a, b})
+				}
+			}
+		}
+		g := inFarms(t, spec, shared, at...)
+		if len(closing(g, 0, 1)) == 0 {
+			continue
+		}
+		compared++
+		checkShared(t, g)
+	}
+	if compared < 100 {
+		t.Errorf("only %d diagrams had a cause to carry", compared)
+	}
+}
+
+func checkShared(t *testing.T, g *graph.Graph) {
+	t.Helper()
+	const rows = 2
+	out, place, _ := writtenOut(t, g, 1, rows)
+	same := sameNodes(g, []int{0})
+	carried := make(map[int]Shared)
+	for _, s := range SharedCarriers(g, 0, 1) {
+		carried[s.Node] = s
+	}
+	var earlier []int
+	for _, law := range CarriersFor(AsFitted(g, 0, 1), 0, 1) {
+		v := law.Node
+		if !g.Measured[v] || same[v] {
+			if g.Measured[v] {
+				earlier = append(earlier, v)
+			}
+			continue
+		}
+		reads := slices.Clone(law.Parents)
+		for _, c := range slices.Concat(law.Carried, carried[v].Carried) {
+			reads = append(reads, c.Node)
+		}
+		reads = slices.DeleteFunc(reads, func(q int) bool { return !g.Measured[q] })
+		var given []int
+		for _, q := range reads {
+			given = append(given, place(q, 0, 0))
+		}
+		for _, p := range carried[v].Plates {
+			for i := range rows {
+				for _, m := range slices.Concat(p.Means, reads) {
+					given = append(given, place(m, 0, i))
+				}
+				if i > 0 {
+					given = append(given, place(v, 0, i))
+				}
+			}
+		}
+		given = tidy(given)
+		for _, w := range earlier {
+			among := rows // of the group; a law that carries nothing there is about its own row
+			if len(carried[v].Plates) == 0 {
+				among = 1
+			}
+			for i := range among {
+				if at := place(w, 0, i); !slices.Contains(given, at) && !oracleSeparated(out, place(v, 0, 0), at, given) {
+					t.Fatalf("%s arcs %v levels %v: the law of %s, reading %v with %+v, still depends on %s of row %d",
+						describe(g), g.Arcs, g.ArcLevels, g.Names[v], reads, carried[v], g.Names[w], i)
+				}
+			}
+		}
+		earlier = append(earlier, v)
+	}
+}
