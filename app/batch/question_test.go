@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"os"
 	"path/filepath"
 	"strings"
 	"testing"
@@ -135,6 +136,35 @@ func TestNewGroupsAreLessSure(t *testing.T) {
 	sd := func(n map[string]any) float64 { return n["expectedFrom"].(map[string]any)["spread"].(float64) }
 	if !(sd(fresh) > 3*sd(these)) {
 		t.Errorf("expected fruit has sd %.3f in new orchards, %.3f in these", sd(fresh), sd(these))
+	}
+}
+
+// A row filter takes rows away, and the rows say so; chosen by the outcome they
+// give no effect.
+func TestRowFilters(t *testing.T) {
+	file := orchards(t, ask(""))
+	text, err := os.ReadFile(file)
+	if err != nil {
+		t.Fatal(err)
+	}
+	filtered := func(keep string) map[string]any {
+		t.Helper()
+		write(t, filepath.Dir(file), "filtered.arrowroot", strings.Replace(string(text), `"file": "orchards.csv"`, `"file": "orchards.csv", "keep": [`+keep+`]`, 1))
+		status, answer, messages := batch(context.Background(), t, "effect", "-draws", "100", filepath.Join(filepath.Dir(file), "filtered.arrowroot"))
+		if status != done {
+			t.Fatal(messages)
+		}
+		return answer
+	}
+	answer := filtered(`{"variable": "soil", "words": ["sand"]}, {"variable": "water", "high": 1}`)
+	rows := answer["rows"].(map[string]any)
+	used, outside := rows["used"].(float64), rows["outsideFilter"].(float64)
+	if full, _ := answer["full"].(map[string]any); full == nil || math.Abs(full["centre"].(float64)-2.4) > 0.2 || used+outside != 400 || used > 200 || len(rows["lost"].(map[string]any)) > 0 {
+		t.Errorf("full %v, rows %v: %v", full, rows, answer["answer"])
+	}
+	answer = filtered(`{"variable": "fruit", "low": 9}`)
+	if text := fmt.Sprint(answer["answer"]); answer["full"] != nil || answer["headline"] != "none" || answer["identified"] != false || !strings.Contains(text, "the rows were chosen by fruit, which goes together with aphids") {
+		t.Errorf("%v", text)
 	}
 }
 

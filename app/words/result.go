@@ -253,7 +253,7 @@ func beside(q *study.Question, e *fit.Effect) string {
 		held += " (proposed)"
 	}
 	if !e.HeldValid {
-		held += " (does not close every path)"
+		held += " (not to be read as an effect)"
 	}
 	parts = append(parts, held+" "+Value(q, e.Adjusted))
 	if e.Full != nil {
