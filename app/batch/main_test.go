@@ -106,7 +106,12 @@ func TestFieldsAreAlwaysThere(t *testing.T) {
 	file := filepath.Join(folder(t), "plots.arrowroot")
 	number := "name centre spread low high level monteCarloError rHat ess trust reasons"
 	for verb, fields := range map[string]string{
-		"read": "rival question verdict way identified heldIsEnough hold moreSets mostPrecise forbidden forbiddenWhy heldFaults wouldHelp paths morePaths " +
+		"read": "rival question verdict way lacks identified heldIsEnough hold moreSets mostPrecise mostPreciseOfAll mostPreciseSmallest cheapest cost forbidden forbiddenWhy heldFaults wouldHelp wouldHelpTogether paths morePaths pathCount pathCountIsExact " +
+			"asked.exposures asked.outcomes asked.given asked.held asked.fixed asked.effect asked.rowsChosenBy controls.soil.verdict controls.soil.sentence direct.fixed direct.effectDrawn direct.hold direct.identified direct.sentence " +
+			"estimand.asks estimand.identified estimand.symbols estimand.words estimand.wholeThatFails estimand.partThatFails estimandByHolding.symbols frontDoors instruments instrumentsOfTheArrow laws.0.variable laws.0.parents laws.0.carried " +
+			"simulation.case simulation.reason simulation.readObserved basis pairs.0.between pairs.0.separatedBy pairs.0.more functionalConstraints tetrads class.listed class.size class.reversible class.undecided " +
+			"rivals.0.rival rivals.0.sameIndependences rivals.0.undecided rivals.0.sentence sections.0.name sections.0.summary sections.0.leftOut sections.0.findings.0.key sections.0.findings.0.kind sections.0.findings.0.sentence " +
+			"sections.0.findings.0.why sections.0.findings.0.nodes sections.0.findings.0.path sections.0.findings.0.setAside done paths.0.roles " +
 			"paths.0.path paths.0.nodes paths.0.kind paths.0.open paths.0.closedAt paths.0.closedWhy paths.0.openedAt " +
 			"question.exposure question.outcome question.effect question.from question.to question.shift question.fixed question.held question.where question.over question.groups question.weigh question.as question.level mistakes setAside",
 		"validate": "problems mistakes setAside",

@@ -13,9 +13,11 @@ import (
 	"strconv"
 	"strings"
 
+	"arrowroot/app/findings"
 	"arrowroot/app/fit"
 	"arrowroot/app/report"
 	"arrowroot/app/session"
+	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
@@ -175,6 +177,19 @@ func reportVerb(ctx context.Context, j *job) (any, error) {
 	if err != nil {
 		return nil, err
 	}
+	// The arrows are read first: a fit that is stopped is reported all the same.
+	ask, err := j.ask()
+	if err != nil {
+		return nil, err
+	}
+	read, err := findings.Read(ctx, j.study, j.rival, ask, findings.Limits{Paths: j.paths, Sets: j.sets})
+	if err != nil {
+		return nil, err
+	}
+	held, err := j.evidence(ctx, read)
+	if err != nil {
+		return nil, err
+	}
 	r, err := j.fitted(ctx, fit.Request{})
 	if err != nil {
 		return nil, err
@@ -185,12 +200,31 @@ func reportVerb(ctx context.Context, j *job) (any, error) {
 	}
 	reading := fit.Read(g, j.question, 0, 0)
 	err = writeFile(out, func(w io.Writer) error {
-		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Result: r})
+		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Findings: read, Evidence: held, Result: r})
 	})
 	if err != nil {
 		return nil, err
 	}
-	return map[string]string{"report": out, "trust": r.Trust().Verdict.String()}, nil
+	return reportOut{out, r.Trust().Verdict.String(), r.Cut || r.Effect != nil && r.Effect.Cut}, nil
+}
+
+type reportOut struct {
+	Report string `json:"report"`
+	Trust  string `json:"trust"`
+	Cut    bool   `json:"cut"`
+}
+
+// evidence is what the data say of the arrows; nil without data.
+func (j *job) evidence(ctx context.Context, f *findings.Findings) (*evidence.Evidence, error) {
+	t, err := j.table()
+	if t == nil || err != nil {
+		return nil, err
+	}
+	req := evidence.Request{Study: j.study, Rival: j.rival, Table: t, Graph: f.Graph, Selected: f.Selected, Question: j.question}
+	if j.question != nil {
+		req.Level = j.question.Level
+	}
+	return evidence.Test(ctx, req, nil)
 }
 
 // writeDraws writes the draws as CSV if -out asks for it.

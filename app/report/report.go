@@ -10,12 +10,14 @@ import (
 	"io"
 	"math"
 
+	"arrowroot/app/findings"
 	"arrowroot/app/fit"
 	"arrowroot/app/paint"
 	"arrowroot/app/words"
 	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/causal"
+	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
@@ -31,6 +33,8 @@ type Input struct {
 	Question *study.Question
 	Graph    *graph.Graph
 	Reading  *causal.Reading
+	Findings *findings.Findings // nil = the reading alone
+	Evidence *evidence.Evidence // nil = the arrows were not held against data
 	Result   *fit.Result
 }
 
@@ -58,6 +62,10 @@ type content struct {
 	MorePaths              bool
 	Sets                   []string
 	Forbidden              []string
+	Counted                string // how many paths there are
+	Sections               []section
+	Evidence               *section
+	Assumed                [][]string        // the arrow table, headings first
 	Mistakes               []mistake.Mistake // that stand
 	Aside                  []mistake.Mistake // that were set aside, with the reason
 	Caution                string
@@ -102,6 +110,19 @@ func contentOf(in Input) (*content, error) {
 			c.Forbidden = append(c.Forbidden, in.Graph.Names[f.Node]+": "+f.Reason)
 		}
 	}
+	if f := in.Findings; f != nil {
+		c.Verdict, c.Way = f.Verdict.Sentence, f.Verdict.Way
+		c.Sections = sectionsOf(f)
+		if f.Paths != nil {
+			c.Counted = f.Paths.Summary
+		}
+	}
+	c.Evidence = evidenceOf(in.Evidence)
+	if in.Study.Rival(in.Rival) != nil {
+		if c.Assumed = in.Study.ArrowTable(in.Rival); len(c.Assumed) < 2 {
+			c.Assumed = nil
+		}
+	}
 	c.Mistakes = mistake.Find(in.Study, in.Rival, in.Question, in.Reading, nil)
 	c.Aside = mistake.SetAside(in.Study, in.Rival, in.Question, in.Reading, nil)
 	figure, err := figureOf(in)
@@ -129,7 +150,7 @@ func contentOf(in Input) (*content, error) {
 				ratio(q.RHat), words.Whole(math.Min(q.BulkESS, q.TailESS)), q.Trust.Verdict.String(), label.Words,
 			}}
 			switch {
-			case r.Full.Model.Parameters[q.Parameter].Shape == model.ByPlate:
+			case r.Full.Model.Parameters[q.Parameter].Shape == model.ByPlate, r.Full.Model.Parameters[q.Parameter].Shape == model.Unrecorded:
 				c.Groups = append(c.Groups, line)
 			case label.Control:
 				c.Controls = append(c.Controls, line)

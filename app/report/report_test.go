@@ -3,10 +3,13 @@ package report
 import (
 	"bytes"
 	"context"
+	"html"
 	"strings"
 	"testing"
 
+	"arrowroot/app/findings"
 	"arrowroot/app/fit"
+	"arrowroot/compile/evidence"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -94,6 +97,41 @@ func TestReportTellsMistakes(t *testing.T) {
 		text := out.String()
 		if !strings.Contains(text, "Holding flowers would hide part of the effect") || strings.Contains(text, "Because: the landowners asked") != aside {
 			t.Errorf("set aside %v, the report does not say so", aside)
+		}
+	}
+}
+
+// The reading stands in the report with its estimand, the independences that
+// the data could contradict, what was set aside with the reason, and what is
+// assumed with notes and references.
+func TestReportOnTheReading(t *testing.T) {
+	doc, err := study.Load("../../assets/examples/hedgerows.arrowroot")
+	if err != nil {
+		t.Fatal(err)
+	}
+	rival, q := doc.Rivals[0].Name, doc.Questions[0]
+	doc, err = study.Dismiss{Dismissal: study.Dismissal{Rival: rival, Key: "instrument arable", Why: "no law here is linear"}}.Apply(doc)
+	if err != nil {
+		t.Fatal(err)
+	}
+	read, err := findings.Read(context.Background(), doc, rival, findings.AskOf(q), findings.Limits{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	data := &evidence.Evidence{Summary: "Of 17 independences 1 is contradicted.", Findings: []evidence.Finding{{Verdict: evidence.Contradicted, Sentence: "In these data they are not."}}}
+	var out bytes.Buffer
+	if err := WriteHTML(&out, Input{Study: doc, Rival: rival, Question: q, Graph: read.Graph, Reading: read.Reading, Findings: read, Evidence: data}); err != nil {
+		t.Fatal(err)
+	}
+	text := out.String()
+	for _, want := range []string{
+		"confounded along 3 open back-door paths. Hold pesticide and soil.", "5 paths lead from hedge to bees",
+		"∑{pesticide, soil} [P(bees | pesticide, hedge, soil) P(pesticide, soil)]", "Leave flowers free: it lies on hedge → flowers → bees.",
+		"carries pesticide, because attitude was left out", "Your arrows say that flowers and arable are unrelated once hedge and soil are known.",
+		"Set aside: arable, given pesticide,", "Because: no law here is linear", "In these data they are not.", "one season only", "large fields lost their hedges", "no arrow",
+	} {
+		if !strings.Contains(html.UnescapeString(text), want) {
+			t.Errorf("the report does not say %q", want)
 		}
 	}
 }
