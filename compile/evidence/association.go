@@ -116,21 +116,32 @@ func clip(r float64) float64 { return math.Max(-1+1e-12, math.Min(1-1e-12, r)) }
 
 // shared compares two sets of orthonormal residuals.
 func shared(a, b [][]float64, s *scheme, level float64) (association, bool) {
-	n := float64(len(a[0]))
-	k := len(a) * len(b)
+	var pairs [][2][]float64
+	for _, x := range a {
+		for _, y := range b {
+			pairs = append(pairs, [2][]float64{x, y})
+		}
+	}
+	return together(pairs, min(len(a), len(b)), s, level)
+}
+
+// together holds the correlations of several pairs of standardised residuals
+// against 0 at once; the size is the root of the sum of their squares over most.
+func together(pairs [][2][]float64, most int, s *scheme, level float64) (association, bool) {
+	n := float64(len(pairs[0][0]))
+	k := len(pairs)
 	covariances := make([]float64, 0, k)
 	products := make([][]float64, 0, k)
 	trace := 0.0
-	for _, x := range a {
-		for _, y := range b {
-			c := dot(x, y) / n
-			trace += c * c
-			p := make([]float64, len(x))
-			for i := range p {
-				p[i] = x[i]*y[i] - c
-			}
-			covariances, products = append(covariances, c), append(products, p)
+	for _, pair := range pairs {
+		x, y := pair[0], pair[1]
+		c := dot(x, y) / n
+		trace += c * c
+		p := make([]float64, len(x))
+		for i := range p {
+			p[i] = x[i]*y[i] - c
 		}
+		covariances, products = append(covariances, c), append(products, p)
 	}
 	if s.of != nil {
 		for j, p := range products {
@@ -153,13 +164,47 @@ func shared(a, b [][]float64, s *scheme, level float64) (association, bool) {
 	wald *= (df - kf + 1) / df // Hotelling's T² as kF
 	out := association{p: tailF(wald/kf, kf, df-kf+1)}
 	if wald > 0 {
-		size := math.Sqrt(trace / float64(min(len(a), len(b))) / wald)
+		size := math.Sqrt(trace / float64(most) / wald)
 		tail := (1 - level) / 2
 		out.Value = math.Min(1, size*math.Sqrt(math.Max(0, wald-kf)))
 		out.Low = math.Min(1, size*math.Sqrt(noncentrality(wald, kf, 1-tail)))
 		out.High = math.Min(1, size*math.Sqrt(noncentrality(wald, kf, tail)))
 	}
 	return out, true
+}
+
+// associateBent compares each side with the squared scores of the other, where
+// they are given: what rises and falls again has no correlation, but these. A
+// nil square is left out. The size is the root of the sum of squares of the
+// correlations.
+func associateBent(a, b, squareA, squareB []float64, schemes []scheme, level float64) (found association, ok bool) {
+	var pairs [][2][]float64
+	for _, pair := range [][2][]float64{{squareA, b}, {a, squareB}} {
+		if pair[0] == nil || pair[1] == nil {
+			continue
+		}
+		x, y := orthonormal([][]float64{pair[0]}), orthonormal([][]float64{pair[1]})
+		if len(x) == 1 && len(y) == 1 {
+			pairs = append(pairs, [2][]float64{x[0], y[0]})
+		}
+	}
+	if len(pairs) == 0 {
+		return found, false
+	}
+	found.p = -1
+	for i := range schemes {
+		if schemes[i].freedom() < float64(len(pairs))+leastFreedom {
+			return found, false
+		}
+		next, ok := together(pairs, 1, &schemes[i], level)
+		if !ok {
+			return found, false
+		}
+		if next.p > found.p {
+			found = next
+		}
+	}
+	return found, true
 }
 
 // orthonormal makes columns uncorrelated with variance 1; those that follow

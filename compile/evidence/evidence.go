@@ -86,6 +86,7 @@ type Finding struct {
 	Short    string // the verdict alone: "holds within ±0.08"
 
 	Effect
+	Bent     bool    // what was found bends back: neither rises nor falls over all, so that it has no sign
 	P        float64 // of no association, this one alone
 	Adjusted float64 // p after Holm (1979) over all that were tested
 

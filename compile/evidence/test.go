@@ -153,6 +153,8 @@ type keptScores struct {
 	once   sync.Once
 	values []float64
 	scores [][]float64
+	square []float64 // of the scores, where they take many values
+	others int       // rows that do not have the most frequent value
 }
 
 type sharedDesign struct {
@@ -240,7 +242,7 @@ func (b *bench) one(s causal.Independence) Finding {
 		case len(side.kept.scores) == 0:
 			f.Short = fmt.Sprintf("%s is the same in all these rows", b.g.Names[side.node])
 			return f
-		case minority(side.kept.values) < fewestOfLevel:
+		case side.kept.others < fewestOfLevel:
 			f.Short = fmt.Sprintf("%s is the same in nearly all these rows", b.g.Names[side.node])
 			return f
 		}
@@ -253,7 +255,8 @@ func (b *bench) one(s causal.Independence) Finding {
 		}
 		return out
 	}
-	a, why := associate(residuals(left.scores), residuals(right.scores), d.schemes, b.req.Level)
+	x, y := residuals(left.scores), residuals(right.scores)
+	a, why := associate(x, y, d.schemes, b.req.Level)
 	switch why {
 	case "left", "right":
 		node := s.A[0]
@@ -266,6 +269,22 @@ func (b *bench) one(s causal.Independence) Finding {
 		return f
 	}
 	f.Effect, f.P, f.Groups, f.Plate = a.Effect, a.p, a.groups, a.plate
+	if a.Signed {
+		square := func(kept *keptScores) []float64 {
+			if kept.square == nil {
+				return nil
+			}
+			return d.design.residual(kept.square)
+		}
+		bent, ok := associateBent(x[0], y[0], square(left), square(right), d.schemes, b.req.Level)
+		if ok {
+			// Two looks at one promise (Bonferroni); the one that sees more speaks.
+			if f.Bent = bent.p < min(f.P, bentAt); f.Bent {
+				f.Effect, f.P = bent.Effect, bent.p
+			}
+			f.P = math.Min(1, 2*f.P)
+		}
+	}
 	f.Verdict = Undecided
 	return f
 }
@@ -318,7 +337,14 @@ func (b *bench) scored(node int, gaps string) *keptScores {
 	b.lock.Unlock()
 	kept.once.Do(func() {
 		kept.values = pick(b.data.of[node].values, rows)
-		kept.scores = scoresOf(b.data.of[node], kept.values)
+		kept.scores, kept.others = scoresOf(b.data.of[node], kept.values), minority(kept.values)
+		if len(kept.scores) == 1 && distinct(kept.values, fewValues) > fewValues {
+			kept.square = make([]float64, len(rows))
+			for i, x := range kept.scores[0] {
+				kept.square[i] = x * x
+			}
+			standardise(kept.square)
+		}
 	})
 	return kept
 }
@@ -330,6 +356,10 @@ func pick(values []float64, rows []int) []float64 {
 	}
 	return out
 }
+
+// bentAt is the p under which an association that bends back is what is shown
+// instead of one that rises or falls.
+const bentAt = 0.01
 
 // fewGroups is under how many groups a plate is adjusted for, being too few to
 // take as independent pieces.

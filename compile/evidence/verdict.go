@@ -128,7 +128,11 @@ func more(n int) string {
 
 // shown says what the data show of a promise.
 func (b *bench) shown(f *Finding) string {
-	size := fmt.Sprintf("%s %s, %s %s to %s", kindOf(f.Effect), number(f.Value), percent(b.req.Level), number(f.Low), number(f.High))
+	kind := kindOf(f.Effect)
+	if f.Bent {
+		kind = "an association that bends back, between 0 and 1:"
+	}
+	size := fmt.Sprintf("%s %s, %s %s to %s", kind, number(f.Value), percent(b.req.Level), number(f.Low), number(f.High))
 	switch f.Verdict {
 	case Contradicted:
 		are := "they are not"
@@ -211,7 +215,7 @@ func stay(n int) string {
 // method says how it was tested, for a methods section.
 func (b *bench) method(e *Evidence) string {
 	text := "Both variables are compared by normal scores (a category by its levels) after the given ones are taken out by regression on splines of their scores, or cell by cell where they have few values " +
-		"(generalised covariance measure, Shah & Peters 2020); this sees associations that rise or fall, not ones that only bend back. " +
+		"(generalised covariance measure, Shah & Peters 2020); numbers are also compared with each other's squared scores, which sees what rises and falls again. " +
 		fmt.Sprintf("P values are adjusted for all tests together (Holm 1979): of diagrams that are right, at most %s show a contradicted independence.", percent(falseAlarm))
 	var plates []string
 	for i := range e.Findings {
