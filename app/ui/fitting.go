@@ -77,7 +77,7 @@ func (p *fitPage) table() {
 		return
 	}
 	level := 0.9
-	var rows, controls []fyne.CanvasObject
+	var asked, controls, rows []fyne.CanvasObject // what the question is about comes first
 	hidden := 0
 	labels := p.d.coefficients(v.Result.Full.Model)
 	for _, q := range v.Result.Full.Quantities {
@@ -85,7 +85,7 @@ func (p *fitPage) table() {
 		if q.Constant {
 			continue
 		}
-		if len(rows)+len(controls) >= 300 {
+		if len(asked)+len(controls)+len(rows) >= 300 {
 			hidden++
 			continue
 		}
@@ -102,14 +102,17 @@ func (p *fitPage) table() {
 		if label.Words != "" {
 			line = column(0, line, newProse(sizeSmall, span{text: label.Words, token: tokenMuted}))
 		}
-		if label.Control {
+		switch {
+		case label.Control:
 			controls = append(controls, line)
-		} else {
+		case label.Words != "":
+			asked = append(asked, line)
+		default:
 			rows = append(rows, line)
 		}
 	}
 	head := quantityRow(small("quantity"), [5]string{"centre", "spread", words.Percent(level) + " interval", "R-hat", "ESS bulk · tail"}, tokenMuted)
-	objects := append([]fyne.CanvasObject{head, hairline(), gapOf(1, 2)}, rows...)
+	objects := append([]fyne.CanvasObject{head, hairline(), gapOf(1, 2)}, asked...)
 	keys := make(map[string]fyne.Focusable)
 	if len(controls) > 0 {
 		says := "Show " + times(len(controls), "coefficient", "coefficients") + " that the question does not ask about"
@@ -118,11 +121,13 @@ func (p *fitPage) table() {
 		}
 		fold := p.d.quiet(says, func() { p.controls = !p.controls; p.table() })
 		keys["controls"] = fold
-		objects = append(objects, gapOf(1, 4), row(0, fold))
+		objects = append(objects, row(0, fold))
 		if p.controls {
 			objects = append(objects, controls...)
 		}
+		objects = append(objects, gapOf(1, 4))
 	}
+	objects = append(objects, rows...)
 	if hidden > 0 {
 		objects = append(objects, small(fmt.Sprintf("and %d more", hidden)))
 	}
