@@ -19,6 +19,8 @@ var simulated = map[string][]float64{
 	"normal": {0.7}, "Student t": {0.6, 4}, "Laplace": {0.5}, "logistic": {0.4}, "skew normal": {1, 3}, "Gumbel": {0.5}, "Cauchy": {0.3}, "von Mises": {6},
 	"gamma": {3}, "log-normal": {0.5}, "Weibull": {2}, "exponential": {}, "beta": {12},
 	"negative binomial": {3}, "Poisson": {}, "geometric": {}, "binomial": {10}, "beta-binomial": {8, 10}, "Bernoulli": {},
+	"zero-inflated Poisson": {0.3}, "zero-inflated negative binomial": {3, 0.3}, "zero-inflated binomial": {10, 0.3},
+	"hurdle Poisson": {0.3}, "hurdle negative binomial": {3, 0.3}, "hurdle gamma": {3, 0.3}, "hurdle log-normal": {0.5, 0.3},
 	"categorical": nil, "ordered": nil, "ordered probit": nil,
 }
 

@@ -82,6 +82,11 @@ type Family struct {
 	Predicted int        // -1 if no argument can be predicted
 	Link      Link       // of the predicted argument
 
+	// Centred says that the predicted argument is the expected value of one
+	// unit: of one trial where there are trials. A center and a direction
+	// stand in where there is no expected value, or none on a line.
+	Centred bool
+
 	// Natural takes the arguments as named above; a Levels family takes the
 	// K probabilities instead. Linked takes the predicted argument on the
 	// link scale first (K of them for a softmax), then the others in order

@@ -10,14 +10,14 @@ import (
 // by scale of the variable, the default of the scale first.
 func Families() []*Family { return families }
 
-var families = []*Family{
+var families = withZeros([]*Family{
 	{
 		Name: "normal", Support: Reals,
 		Arguments: []Argument{
 			{Name: "mean", Greek: "mu", Support: Reals, Doc: "expected value"},
 			{Name: "sd", Also: []string{"standard deviation"}, Greek: "sigma", Support: Positives, Doc: "spread around the mean"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.Normal, Linked: kernel.Normal,
 		Quantile: normalQuantile, CDF: normalCDF,
 		Mean: func(a []float64) float64 { return a[0] },
@@ -33,7 +33,7 @@ var families = []*Family{
 			{Name: "scale", Also: []string{"sd"}, Greek: "sigma", Support: Positives, Doc: "spread; the sd is larger than this, and infinite up to 2 degrees of freedom"},
 			{Name: "degrees of freedom", Also: []string{"df"}, Greek: "nu", Support: Positives, Doc: "the fewer, the heavier the tails"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.StudentT, Linked: kernel.StudentT,
 		Quantile: studentQuantile, CDF: studentCDF, Mean: studentMean, SD: studentSD,
 		Doc: "a measurement that can take any value, with outliers now and then",
@@ -46,7 +46,7 @@ var families = []*Family{
 			{Name: "mean", Also: []string{"location"}, Greek: "mu", Support: Reals, Doc: "expected value, and the peak"},
 			{Name: "scale", Greek: "sigma", Support: Positives, Doc: "mean distance from the mean; the sd is √2 of it"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.Laplace, Linked: kernel.Laplace,
 		Quantile: laplaceQuantile, CDF: laplaceCDF,
 		Mean: func(a []float64) float64 { return a[0] },
@@ -61,7 +61,7 @@ var families = []*Family{
 			{Name: "mean", Also: []string{"location"}, Greek: "mu", Support: Reals, Doc: "expected value"},
 			{Name: "scale", Greek: "sigma", Support: Positives, Doc: "spread; the sd is 1.81 of it"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.Logistic, Linked: kernel.Logistic,
 		Quantile: logisticQuantile, CDF: logisticCDF,
 		Mean: func(a []float64) float64 { return a[0] },
@@ -104,7 +104,7 @@ var families = []*Family{
 			{Name: "center", Also: []string{"location", "median"}, Greek: "mu", Support: Reals, Doc: "the median; there is no expected value"},
 			{Name: "scale", Greek: "sigma", Support: Positives, Doc: "half of the values lie within this of the center"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.Cauchy, Linked: kernel.Cauchy,
 		Quantile: cauchyQuantile, CDF: cauchyCDF, Mean: none, SD: none,
 		Doc: "a quantity whose outliers know no bounds; as a prior, one that hardly rules anything out",
@@ -117,7 +117,7 @@ var families = []*Family{
 			{Name: "direction", Greek: "mu", Support: Reals, Doc: "mean direction, in radians"},
 			{Name: "concentration", Greek: "kappa", Support: Positives, Doc: "0 for all directions alike; when large, 1 / sd²"},
 		},
-		Predicted: 0, Link: Identity,
+		Predicted: 0, Link: Identity, Centred: true,
 		Natural: kernel.VonMises, Linked: kernel.VonMises,
 		Quantile: vonMisesQuantile, CDF: vonMisesCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: vonMisesSD,
@@ -130,7 +130,7 @@ var families = []*Family{
 			{Name: "mean", Greek: "mu", Support: Positives, Doc: "expected value"},
 			{Name: "shape", Greek: "shape", Support: Positives, Doc: "the variance is mean² / shape"},
 		},
-		Predicted: 0, Link: Log,
+		Predicted: 0, Link: Log, Centred: true,
 		Natural: kernel.Gamma, Linked: kernel.GammaLog,
 		Quantile: gammaQuantile, CDF: gammaCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: gammaSD,
@@ -194,7 +194,7 @@ var families = []*Family{
 		Arguments: []Argument{
 			{Name: "mean", Greek: "mu", Support: Positives, Doc: "expected value; 1 / rate"},
 		},
-		Predicted: 0, Link: Log,
+		Predicted: 0, Link: Log, Centred: true,
 		Natural: kernel.Exponential, Linked: kernel.ExponentialLog,
 		Quantile: exponentialQuantile, CDF: exponentialCDF,
 		Mean: func(a []float64) float64 { return a[0] },
@@ -243,7 +243,7 @@ var families = []*Family{
 			{Name: "mean", Greek: "mu", Support: Unit, Doc: "expected value"},
 			{Name: "precision", Greek: "kappa", Support: Positives, Doc: "the variance is mean (1 - mean) / (1 + precision)"},
 		},
-		Predicted: 0, Link: Logit,
+		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.Beta, Linked: kernel.BetaLogit,
 		Quantile: betaQuantile, CDF: betaCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: betaSD,
@@ -282,7 +282,7 @@ var families = []*Family{
 			{Name: "mean", Also: []string{"rate"}, Greek: "lambda", Support: Positives, Doc: "expected count"},
 			{Name: "overdispersion", Greek: "k", Support: Positives, Doc: "the variance is mean + mean² / k: the smaller k, the more clumped"},
 		},
-		Predicted: 0, Link: Log,
+		Predicted: 0, Link: Log, Centred: true,
 		Natural: kernel.NegativeBinomial, Linked: kernel.NegativeBinomialLog,
 		Quantile: negBinomialQuantile, CDF: negBinomialCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: negBinomialSD,
@@ -294,7 +294,7 @@ var families = []*Family{
 		Arguments: []Argument{
 			{Name: "rate", Also: []string{"mean"}, Greek: "lambda", Support: Positives, Doc: "expected count"},
 		},
-		Predicted: 0, Link: Log,
+		Predicted: 0, Link: Log, Centred: true,
 		Natural: kernel.Poisson, Linked: kernel.PoissonLog,
 		Quantile: poissonQuantile, CDF: poissonCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: poissonSD,
@@ -307,7 +307,7 @@ var families = []*Family{
 		Arguments: []Argument{
 			{Name: "mean", Greek: "lambda", Support: Positives, Doc: "expected number of failures; the chance of success is 1 / (1 + mean)"},
 		},
-		Predicted: 0, Link: Log,
+		Predicted: 0, Link: Log, Centred: true,
 		Natural: kernel.Geometric, Linked: kernel.GeometricLog,
 		Quantile: geometricQuantile, CDF: geometricCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: geometricSD,
@@ -320,7 +320,7 @@ var families = []*Family{
 			{Name: "probability", Greek: "p", Support: Unit, Doc: "chance of success in one trial"},
 			{Name: "trials", Greek: "n", Support: Counts, Doc: "number of trials, known"},
 		},
-		Predicted: 0, Link: Logit,
+		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.Binomial, Linked: kernel.BinomialLogit,
 		Quantile: binomialQuantile, CDF: binomialCDF, Mean: binomialMean, SD: binomialSD,
 		Doc: "a number of successes out of a known number of trials",
@@ -334,7 +334,7 @@ var families = []*Family{
 			{Name: "precision", Greek: "kappa", Support: Positives, Doc: "how alike the chances of different rows are: at infinity a binomial"},
 			{Name: "trials", Greek: "n", Support: Counts, Doc: "number of trials, known"},
 		},
-		Predicted: 0, Link: Logit,
+		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.BetaBinomial, Linked: kernel.BetaBinomialLogit,
 		Quantile: betaBinomialQuantile, CDF: betaBinomialCDF, Mean: betaBinomialMean, SD: betaBinomialSD,
 		Doc:    "a number of successes out of a known number of trials, when rows differ more than chance alone would make them",
@@ -345,7 +345,7 @@ var families = []*Family{
 		Arguments: []Argument{
 			{Name: "probability", Greek: "p", Support: Unit, Doc: "chance of a 1"},
 		},
-		Predicted: 0, Link: Logit,
+		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.Bernoulli, Linked: kernel.BernoulliLogit,
 		Quantile: bernoulliQuantile, CDF: bernoulliCDF,
 		Mean: func(a []float64) float64 { return a[0] }, SD: bernoulliSD,
@@ -387,4 +387,4 @@ var families = []*Family{
 		Doc:    "one of several levels in order, read as steps of a normal quantity that was not seen",
 		Source: "J. Aitchison & S. D. Silvey, The generalization of probit analysis to the case of multiple responses, Biometrika 44 (1957)",
 	},
-}
+})

@@ -205,11 +205,6 @@ func (p *planner) readsOf(v int) []int {
 	return nil
 }
 
-// expectations are the names of arguments that are the expected value of one
-// unit: one trial of a binomial law. A center and a direction stand in where
-// there is no expected value, or none on a line.
-var expectations = []string{"mean", "rate", "probability", "center", "direction"}
-
 // scaleOf says what is averaged of a variable: the probability of the levels
 // named, or its expectation, or (levels nil, law of levels) each level apart.
 func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
@@ -221,7 +216,7 @@ func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
 	}
 	s.levels = l.levels
 	if len(l.Predictors) == 1 && l.levels == 0 {
-		s.predicted = slices.Contains(expectations, l.Family.Arguments[l.Family.Predicted].Name)
+		s.predicted = l.Family.Centred
 	}
 	if len(levels) == 0 {
 		return s, nil

@@ -138,6 +138,7 @@ func referenceCases() []referenceCase {
 				return []float64{math.Log(p["a"] / p["b"]), p["a"] + p["b"], p["n"]}
 			},
 			grad: byShapes(func(m float64, d []float64) float64 { return d[0] / m / (1 - m) })},
+		direct("zero-inflated Poisson", ZeroInflated(Poisson), "lambda", "pi"),
 		vector("ordered probit", OrderedProbit, "eta", "c", 0),
 		{dist: "cauchy", kernel: StudentT, // ν = 1
 			args: func(p named, _ map[string]numbers) []float64 { return []float64{p["mu"], p["scale"], 1} },
@@ -233,7 +234,7 @@ func byShapes(toMean func(m float64, d []float64) float64) func(p named, d []flo
 // unread are distributions of the reference that no kernel expresses.
 var unread = map[string]bool{
 	"truncated normal": true, "normal truncated below at zero": true,
-	"censored normal": true, "zero-inflated Poisson": true,
+	"censored normal":  true,
 	"discrete uniform": true, "multinomial": true, "dirichlet": true, "multivariate normal": true,
 	"LKJ correlation": true, "LKJ correlation, Cholesky factor": true,
 }

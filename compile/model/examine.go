@@ -192,7 +192,11 @@ func (b *builder) support(d *draft) {
 		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {
 			report("negative", fmt.Sprintf("%s below 0 (first in row %d: %s), which %s cannot be.", rows(n), row+1, short(values[row]), article(f.Name)), rescale(study.Real))
 		} else if row, n := first(func(x float64) bool { return x == 0 }); row >= 0 {
-			report("zero", fmt.Sprintf("%s exactly 0 (first in row %d), which %s cannot be.", rows(n), row+1, article(f.Name)), b.nudgeTo(d.variable, values), law("normal"))
+			repairs := []Repair{b.nudgeTo(d.variable, values)}
+			if apart := catalog.FamilyByName("hurdle " + f.Name); apart != nil {
+				repairs = append(repairs, law(apart.Name))
+			}
+			report("zero", fmt.Sprintf("%s exactly 0 (first in row %d), which %s cannot be.", rows(n), row+1, article(f.Name)), append(repairs, law("normal"))...)
 		}
 	case catalog.NonNegatives:
 		if row, n := first(func(x float64) bool { return x < 0 }); row >= 0 {

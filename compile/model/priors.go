@@ -177,7 +177,7 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		}
 		p.Why = "any shares of the levels equally plausible, parents at mid-range"
 	case argument: // C5
-		p.Support = catalog.Positives
+		p.Support = d.family.Arguments[m.at].Support
 		b.argumentPrior(d, d.family.Arguments[m.at].Greek, p)
 	}
 }
@@ -194,13 +194,22 @@ func (b *builder) argumentPrior(d *draft, stem string, p *Parameter) {
 		p.Prior = b.halfNormal(1)
 		p.Prior.On = InverseRoot
 		p.Why = "1/√shape is the spread relative to the mean"
+		if d.family.Name == "Weibull" {
+			p.Why = "below 1 the risk falls with age, above 1 it rises"
+		}
 	case "kappa":
 		p.Prior = b.prior("uniform", 0, 1)
 		p.Prior.On = InverseRootPlus
 		p.Why = "the spread relative to the largest that a proportion can have"
+		if d.family.Support == catalog.Turn {
+			p.Why = "from all directions alike to nearly one"
+		}
 	case "nu":
 		p.Prior = b.prior("gamma", 20, 2) // shape 2, rate 0.1
 		p.Why = "from heavy tails to nearly normal ones"
+	case "zeros":
+		p.Prior = b.prior("uniform", 0, 1)
+		p.Why = "any share of zeros equally plausible"
 	case "skew":
 		p.Prior = b.prior("normal", 0, 2)
 		p.Why = "no more likely skewed to one side than to the other"
