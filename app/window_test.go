@@ -35,6 +35,7 @@ type said struct {
 	Selected       []string
 	Path, Undo     string
 	Table          int
+	Notes          []string
 	Nodes, Buttons map[string][2]int
 }
 
@@ -84,6 +85,15 @@ func TestWindow(t *testing.T) {
 		h.drag(nodes[a[0]], nodes[a[1]])
 		h.until("arrow "+a[0]+" → "+a[1], func(s said) bool { return strings.Contains(s.Undo, a[0]+" → "+a[1]) })
 	}
+	h.key("Escape")
+
+	// A note beside them, with its tool.
+	h.key("n")
+	h.click([2]int{middle[0] - 60, middle[1] + 130})
+	h.until("the entry of a note", func(s said) bool { return s.Focus == "entry" })
+	h.typed("plots were chosen by lot")
+	h.key("Return")
+	h.until("a note", func(s said) bool { return slices.Equal(s.Notes, []string{"plots were chosen by lot"}) })
 	h.key("Escape")
 	h.key("s")
 	h.shot("2-arrows")
@@ -186,6 +196,7 @@ func checkFile(t *testing.T, text []byte, arrows [][2]string) {
 		Variables []struct{ ID, Column string }
 		Rivals    []struct {
 			Arrows []struct{ From, To string }
+			Notes  []struct{ Text string }
 		}
 		Questions []struct {
 			Exposure, Outcome string
@@ -211,6 +222,9 @@ func checkFile(t *testing.T, text []byte, arrows [][2]string) {
 	}
 	if !slices.Equal(drawn, arrows) {
 		t.Errorf("saved arrows %v, drawn %v", drawn, arrows)
+	}
+	if n := doc.Rivals[0].Notes; len(n) != 1 || n[0].Text != "plots were chosen by lot" {
+		t.Errorf("saved notes %v", n)
 	}
 	if len(doc.Questions) != 1 {
 		t.Fatalf("%d questions", len(doc.Questions))

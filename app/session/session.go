@@ -10,6 +10,7 @@ package session
 
 import (
 	"context"
+	"maps"
 	"path/filepath"
 
 	"arrowroot/app/findings"
@@ -138,6 +139,10 @@ func (s *Session) Do(e study.Edit) error {
 	if next == s.study {
 		return nil
 	}
+	if e, ok := e.(study.RenameRival); ok && s.results[e.Old] != nil {
+		s.results = maps.Clone(s.results) // views keep theirs; the old name stays for undo
+		s.results[e.New] = s.results[e.Old]
+	}
 	if n := len(s.history); n > 0 && len(s.future) == 0 {
 		if m, ok := s.history[n-1].edit.(interface {
 			Merge(study.Edit) (study.Edit, bool)
@@ -151,6 +156,9 @@ func (s *Session) Do(e study.Edit) error {
 	}
 	s.history = append(s.history, moment{s.study, e, s.rival, s.question})
 	s.future = nil
+	if e, ok := e.(study.RenameRival); ok && s.rival == e.Old {
+		s.rival = e.New
+	}
 	s.become(next)
 	return nil
 }

@@ -5,6 +5,7 @@ import (
 	"path/filepath"
 	"testing"
 
+	"arrowroot/app/fit"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -43,5 +44,24 @@ func TestResultsOfOtherRivalsBecomeStale(t *testing.T) {
 	must(t, s.SetQuestion(study.Question{Exposure: "x", Outcome: "y", From: &study.Setting{Number: 1}, To: &study.Setting{Number: 3}}))
 	if !s.View().StaleResults[first] {
 		t.Error("an answer to another question is not stale")
+	}
+}
+
+// A rival keeps its result under another name, and undo finds it under the old.
+func TestAResultGoesWithTheNameOfItsRival(t *testing.T) {
+	_, s := newWindow(t)
+	first := draw(t, s)
+	must(t, s.Do(study.CopyRival{From: first, Name: "other"}))
+	s.ShowRival("other")
+	name := "other"
+	r := &fit.Result{}
+	s.results = map[string]*fit.Result{name: r}
+	must(t, s.Do(study.RenameRival{Old: name, New: "second thought"}))
+	if s.View().Rival.Name != "second thought" || s.View().Result != r {
+		t.Errorf("on %q the result is %v", s.View().Rival.Name, s.View().Result)
+	}
+	s.Undo()
+	if s.View().Rival.Name != name || s.View().Result != r {
+		t.Errorf("after undo, on %q the result is %v", s.View().Rival.Name, s.View().Result)
 	}
 }

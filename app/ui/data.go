@@ -150,7 +150,7 @@ func (d *desk) bindDialog() {
 			lines = append(lines, line)
 		}
 		list.fill(nil, lines...)
-		h := min(float32(len(lines))*34+8, 340)
+		h := min(float32(len(lines))*30+8, 340)
 		objects = append(objects, fixed(0, h, list))
 		if n := len(d.freeColumns()); n > 0 {
 			objects = append(objects, row(0, d.quiet("Make variables of the other "+strings.TrimPrefix(times(n, "column", "columns"), "1 "), func() { p.close(); d.adoptColumns() })))

@@ -68,6 +68,7 @@ type said struct {
 	Dirty    bool              `json:"dirty,omitempty"`
 	Undo     string            `json:"undo,omitempty"`
 	Table    int               `json:"table,omitempty"` // rows of the open table
+	Notes    []string          `json:"notes,omitempty"` // what is written on the sheet
 	Nodes    map[string][2]int `json:"nodes"`           // centres in pixels of the window
 	Buttons  map[string][2]int `json:"buttons"`         // centres of a few controls, same
 }
@@ -146,6 +147,9 @@ func (d *desk) said() said {
 		if b, ok := p.(*banner); ok {
 			s.Banner = b.text
 		}
+	}
+	for _, n := range v.Rival.Layout.Notes {
+		s.Notes = append(s.Notes, n.Text)
 	}
 	scale := d.win.Canvas().Scale()
 	driver := fyne.CurrentApp().Driver()
