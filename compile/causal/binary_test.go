@@ -116,6 +116,7 @@ func TestFrontDoorTable(t *testing.T) {
 func TestCasesInBinaryModels(t *testing.T) {
 	r := rand.New(rand.NewPCG(8, 2026))
 	var byCase [3]int
+	carriers := 0
 	for byCase[PinAndSimulate] < 300 || byCase[ObservedForDistrict] < 30 {
 		s := sketch{nodes: 3 + r.IntN(3), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.3, arcs: 0.25 * r.Float64()}
 		g := s.draw(t, r)
@@ -170,6 +171,16 @@ func TestCasesInBinaryModels(t *testing.T) {
 				truth[state>>x&1] += weight(state, x)
 			}
 		}
+		earlier := 0
+		for _, f := range CarriersFor(g, x, y) { // given its carriers, a variable is unrelated to all that is earlier
+			for at := range 1 << g.Len() {
+				if got, want := p.among(f.Node, at, bitsOf(f.conditions())), p.among(f.Node, at, earlier); math.Abs(got-want) > 1e-9 && at&hidden == 0 {
+					t.Fatalf("%s: the law of %d given %v: %g, given all that is earlier: %g", describe(g), f.Node, f.conditions(), got, want)
+				}
+			}
+			earlier |= 1 << f.Node
+			carriers++
+		}
 		laws := onlyBelow(g, CarriersFor(g, x, y), x)
 		for value := range 2 {
 			if got := p.pin(g, laws, x, value, y, c, district); math.Abs(got-truth[value]) > 1e-9 {
@@ -177,5 +188,8 @@ func TestCasesInBinaryModels(t *testing.T) {
 			}
 		}
 	}
-	t.Logf("cases a %d, b %d, c %d", byCase[0], byCase[1], byCase[2])
+	if byCase[0]+byCase[1] < 1000 {
+		t.Errorf("only %v diagrams", byCase)
+	}
+	t.Logf("cases a %d, b %d, c %d; %d laws with carriers", byCase[0], byCase[1], byCase[2], carriers)
 }

@@ -53,20 +53,23 @@ func listed(g *graph.Graph) bool {
 func (c *Class) turn(g *graph.Graph) {
 	can, computed := available(g), slices.Contains(g.Computed, true)
 	basis, more := Basis(g)
-	budget := 4 * searchBudget
+	budget := 2 * searchBudget
 	for _, a := range g.Arrows {
 		if !can[a[0]] || !can[a[1]] || g.Computed[a[0]] || g.Computed[a[1]] {
 			continue
 		}
-		turned := turnedRound(g, a)
-		if turned == nil || slices.ContainsFunc(basis, func(s Independence) bool { return s.brokenBy(turned, a) }) {
+		if slices.ContainsFunc(basis, func(s Independence) bool { return s.brokenBy(g, a) }) {
 			continue
 		}
 		if budget.spent() {
 			c.Undecided = append(c.Undecided, a)
 			continue
 		}
-		budget.spend(g, 4*len(basis)+g.Len())
+		budget.spend(g, 8*len(basis)+4*g.Len())
+		turned := turnedRound(g, a)
+		if turned == nil {
+			continue
+		}
 		if notIn(g, basis, turned) != nil {
 			continue
 		}
@@ -87,22 +90,22 @@ func (c *Class) turn(g *graph.Graph) {
 	}
 }
 
-// brokenBy reports whether an open path of two lines, one of them the arrow
-// that was turned round, joins what the statement says is unrelated. It is a
-// quick look that misses what longer paths do.
-func (i *Independence) brokenBy(turned *graph.Graph, arrow [2]int) bool {
+// brokenBy reports whether, with an arrow turned round, an open path of two
+// lines joins what the statement says is unrelated. It is a quick look that
+// misses what longer paths do.
+func (i *Independence) brokenBy(g *graph.Graph, arrow [2]int) bool {
 	to, from := arrow[0], arrow[1]
 	open := func(ends, others []int) bool {
-		if slices.Contains(ends, from) && slices.Contains(i.Given, to) { // it now meets others at its head
+		if slices.Contains(ends, from) && slices.Contains(i.Given, to) { // it would meet others at its head
 			for _, p := range others {
-				if slices.Contains(turned.Parents[to], p) || slices.Contains(turned.Siblings[to], p) {
+				if slices.Contains(g.Parents[to], p) || slices.Contains(g.Siblings[to], p) {
 					return true
 				}
 			}
 		}
-		if slices.Contains(ends, to) && !slices.Contains(i.Given, from) { // it now leads on from its tail
+		if slices.Contains(ends, to) && !slices.Contains(i.Given, from) { // it would lead on from its tail
 			for _, p := range others {
-				if slices.Contains(turned.Parents[from], p) || slices.Contains(turned.Siblings[from], p) || slices.Contains(turned.Children[from], p) {
+				if slices.Contains(g.Parents[from], p) || slices.Contains(g.Siblings[from], p) || slices.Contains(g.Children[from], p) {
 					return true
 				}
 			}

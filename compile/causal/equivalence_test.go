@@ -236,3 +236,51 @@ func TestClassSentences(t *testing.T) {
 		t.Errorf("%+v", c)
 	}
 }
+
+// With unmeasured causes an arrow is said to be reversible if and only if the
+// same pairs are separated by the same sets once it is turned round.
+func TestReversibleArrowsByTrial(t *testing.T) {
+	r := rand.New(rand.NewPCG(82, 2026))
+	reversible, not := 0, 0
+	for range rounds(500, 5000) {
+		s := sketch{nodes: 4 + r.IntN(3), arrows: 0.3 + 0.3*r.Float64(), unmeasured: 0.2, arcs: 0.2 * r.Float64()}
+		g := s.draw(t, r)
+		if listed(g) {
+			continue
+		}
+		c := ClassOf(g)
+		if len(c.Undecided) > 0 || c.Listed || c.Size != nil {
+			t.Fatalf("%s: %+v", describe(g), c)
+		}
+		can := available(g)
+		nodes := list(can)
+		for _, a := range g.Arrows {
+			want := can[a[0]] && can[a[1]]
+			turned := turnedRound(g, a)
+			want = want && turned != nil
+			for i, v := range nodes {
+				for _, w := range nodes[i+1:] {
+					rest := minus(nodes, []int{v, w})
+					for at := range 1 << len(rest) {
+						if !want {
+							break
+						}
+						given := subset(rest, at)
+						want = oracleSeparated(g, v, w, given) == oracleSeparated(turned, v, w, given)
+					}
+				}
+			}
+			if want {
+				reversible++
+			} else {
+				not++
+			}
+			if slices.Contains(c.Reversible, a) != want {
+				t.Fatalf("%s: %v can be turned round: %v", describe(g), a, want)
+			}
+		}
+	}
+	if reversible < 100 || not < 100 {
+		t.Errorf("%d reversible, %d not", reversible, not)
+	}
+}

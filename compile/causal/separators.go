@@ -22,11 +22,13 @@ func (c *comparison) minimal(forced []int, max int) (sets [][]int, more bool) {
 		}
 	}
 	computed := slices.Contains(c.g.Computed, true)
+	left := searchBudget
 	for z := range c.moral(forced).separators {
-		if len(sets) == surplus*max {
+		if len(sets) == surplus*max || left.spent() {
 			more = true
 			break
 		}
+		left.spend(c.g, 2*(len(z)+1))
 		z = union(z, forced)
 		if !computed || c.valid(z) { // holding it may leave a computed exposure without variation
 			sets = append(sets, z)

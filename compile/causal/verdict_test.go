@@ -247,6 +247,39 @@ func TestNothingHangs(t *testing.T) {
 	}
 }
 
+// Neither must a diagram of a thousand nodes, whatever is asked of it.
+func TestThousandNodes(t *testing.T) {
+	g := scattered(t, 1000, 3000, 7, []int{4, 40, 400, 444, 777})
+	const x, y = 334, 997
+	r := Read(g, Query{Exposure: x, Outcome: y})
+	if len(r.Sets) == 0 || len(r.Paths) == 0 || r.Verdict.Sentence == "" {
+		t.Errorf("%d sets, %d paths: %s", len(r.Sets), len(r.Paths), r.Verdict.Sentence)
+	}
+	if _, more := FrontDoors(g, x, y, 0); !more {
+		t.Error("front doors: nothing said of what was left out")
+	}
+	if _, more := Tetrads(g, 0); !more {
+		t.Error("tetrads: nothing said of what was left out")
+	}
+	if _, more := Basis(g); !more {
+		t.Error("basis: nothing said of what was left out")
+	}
+	for s := range EachSeparation(g, 1) { // as many as one has patience for
+		if len(s.Given) > 1 {
+			t.Errorf("%+v", s)
+		}
+		break
+	}
+	if rounds(0, 1) == 0 {
+		return
+	}
+	Functionals(g)
+	ClassOf(g)
+	Controls(g, x, y, nil)
+	Identify(g, []int{x}, []int{y}, nil)
+	ReadDirect(g, x, y, nil)
+}
+
 func TestCompare(t *testing.T) {
 	a := sheet(t, "hedge -> flowers -> bees, hedge -> bees, soil <-> bees, rain -> bees")
 	b := sheet(t, "bees -> flowers, hedge -> flowers, hedge -> bees, bees <-> soil, soil <-> hedge, wind -> bees")

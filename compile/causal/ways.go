@@ -22,9 +22,8 @@ type Instrument struct {
 }
 
 const (
-	frontDoorSize    = 3   // so many variables at most stand in a front door that is looked for
-	frontDoorTrials  = 500 // sets tried
-	instrumentTrials = 20  // sets tried for one instrument
+	frontDoorSize    = 3  // so many variables at most stand in a front door that is looked for
+	instrumentTrials = 20 // sets tried for one instrument
 )
 
 // isFrontDoor checks the criterion for through, given what does not descend
@@ -59,18 +58,18 @@ func (c *comparison) frontDoor() *FrontDoor {
 			rest = append(rest, v)
 		}
 	}
-	budget := frontDoorTrials
+	budget := searchBudget / 4
 	var found *FrontDoor
 	var try func(chosen []int, from, left int) bool // reports whether to go on
 	try = func(chosen []int, from, left int) bool {
 		if left == 0 {
-			budget--
+			budget.spend(c.g, 12)
 			given := minus(rest, chosen)
 			switch {
 			case c.isFrontDoor(chosen, nil):
 				given = []int{}
 			case !c.isFrontDoor(chosen, given):
-				return budget > 0
+				return !budget.spent()
 			}
 			for _, v := range given {
 				if fewer := minus(given, []int{v}); c.isFrontDoor(chosen, fewer) {
@@ -99,20 +98,23 @@ func (c *comparison) frontDoor() *FrontDoor {
 
 // instruments lists an instrument for the total effect with something to hold
 // for each node that can be one, by node. It need not find every node: it
-// tries minimal sets only.
+// tries some minimal sets only.
 func (c *comparison) instruments() []Instrument {
 	var all []Instrument
+	budget := searchBudget / 2
 	for z, ok := range c.usable {
-		if !ok {
+		if !ok || budget.spent() {
 			continue
 		}
-		apart := *c
-		apart.g = c.backDoor
-		apart.x = []int{z}
-		apart.usable = slices.Clone(c.usable)
-		apart.usable[z] = false
-		sets, _ := apart.minimal(nil, instrumentTrials)
-		for _, given := range sets {
+		apart := newSeparation(c.backDoor, z, c.y[0])
+		for v, no := range c.forbidden {
+			apart.usable[v] = apart.usable[v] && !no && !slices.Contains(c.x, v)
+		}
+		budget.spend(c.g, 8)
+		if !apart.exists(nil) {
+			continue
+		}
+		for _, given := range apart.some(instrumentTrials, &budget) {
 			if !Separated(c.g, []int{z}, c.x, given) {
 				all = append(all, Instrument{Node: z, Given: given})
 				break
@@ -120,6 +122,21 @@ func (c *comparison) instruments() []Instrument {
 		}
 	}
 	return all
+}
+
+// some gives a few minimal sets, the smaller ones first.
+func (c *comparison) some(max int, budget *budget) (sets [][]int) {
+	if slices.Contains(c.g.Computed, true) {
+		sets, _ = c.minimal(nil, max)
+		return sets
+	}
+	for z := range c.moral(nil).separators {
+		if sets = append(sets, z); len(sets) == max || !budget.spend(c.g, 2*(len(z)+1)) {
+			break
+		}
+	}
+	sortSets(c.g, sets)
+	return sets
 }
 
 // otherWays says how the effect can be had without an adjustment set.
