@@ -133,7 +133,8 @@ func TestWindow(t *testing.T) {
 
 	// Fit; five rows lack a crop, so it asks first.
 	h.click(h.last().Buttons["fit"])
-	s = h.until("a question about rows, or a run", func(s said) bool { return s.Popover || s.Running || s.Banner != "" })
+	asks := func(s said) bool { _, ok := s.Buttons["banner Fit on 295 rows"]; return ok }
+	s = h.until("a question about rows, or a run", func(s said) bool { return s.Running || asks(s) })
 	if !s.Running {
 		if !strings.Contains(s.Rows, "295 of 300") {
 			t.Errorf("rows: %q", s.Rows)
