@@ -10,6 +10,7 @@ import (
 	"gonum.org/v1/gonum/integrate/quad"
 
 	"arrowroot/compile/causal"
+	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 )
@@ -213,4 +214,31 @@ func TestDirectEffectWithAConfounderOnTheWay(t *testing.T) {
 	if _, err := Simulate(context.Background(), s.m, causal.PinAndSimulate, nil, q, s.draws(3), source(), Options{}); err == nil || err.Error() != `m has no level "high"` {
 		t.Errorf("an unknown level: %v", err)
 	}
+}
+
+// Under a controlled direct effect the sheet shows nothing at what is fixed or
+// moves through it alone, and the direct change elsewhere.
+func TestNodesUnderADirectEffect(t *testing.T) {
+	s := newSketch(t, 30)
+	for _, id := range []string{"x", "m", "k", "y"} {
+		v := s.variable(id, study.Real, spreadOut(30, -1, 1))
+		v.Low, v.High = 0, 1
+	}
+	s.law("m", "normal", "0.8 * x", "1")
+	s.law("k", "normal", "0.5 * m", "1")
+	s.law("y", "normal", "0.3 * x + 0.4 * m + 0.7 * k", "1")
+	g, err := graph.New(graph.Spec{Names: []string{"x", "m", "k", "y"}, Arrows: [][2]int{{0, 1}, {1, 2}, {0, 3}, {1, 3}, {2, 3}}})
+	if err != nil {
+		t.Fatal(err)
+	}
+	q := ask("x", "y", 0, 1)
+	q.Effect, q.Fixed = study.DirectEffect, []study.Fix{{Variable: "m", At: study.Setting{Number: 2}}}
+	nodes, err := Nodes(context.Background(), s.m, g, q, s.draws(2), source(), Options{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	if !nodes[0].Plain || !nodes[1].Plain || nodes[2].Plain {
+		t.Fatalf("%+v", nodes)
+	}
+	near(t, "y", nodes[2].Values[0], 0.3, 1e-9)
 }
