@@ -3,6 +3,7 @@ package session
 import (
 	"context"
 
+	"arrowroot/compile/causal"
 	"arrowroot/compile/evidence"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
@@ -48,7 +49,15 @@ func (s *Session) deriveEvidence() {
 	}
 	d.tester = t
 	f := r.now.findings
-	request := evidence.Request{Study: s.study, Rival: s.rival, Table: data, Graph: f.Graph, Selected: f.Selected, Question: s.asked()}
+	promised := f.Contradictions
+	if promised == nil || promised.Basis == nil && promised.LeftOut != "" {
+		cancel()
+		return // too many variables to say what is promised
+	}
+	request := evidence.Request{
+		Study: s.study, Rival: s.rival, Table: data, Graph: f.Graph, Selected: f.Selected,
+		Statements: append([]causal.Independence{}, causal.Pairwise(promised.Basis)...), Question: s.asked(),
+	}
 	go func() {
 		defer cancel()
 		found, err := evidence.Test(ctx, request, nil)
