@@ -32,7 +32,9 @@ type Identification struct {
 // exposures, among those with the given values of measured variables. It is
 // complete: without computed variables, no formula exists where it finds none
 // (Tian & Pearl 2003, "On the identification of causal effects"; Shpitser &
-// Pearl 2006, algorithms ID and IDC; Huang & Valtorta 2006).
+// Pearl 2006, algorithms ID and IDC; Huang & Valtorta 2006). Computed ones are
+// taken for any function of their parents; of exposures that are computed only
+// adjustment is looked at.
 func Identify(g *graph.Graph, exposures, outcomes, given []int) *Identification {
 	id := &Identification{Graph: g, Exposures: tidy(exposures), Outcomes: tidy(outcomes), Given: tidy(given)}
 	if why := id.unanswerable(); why != "" {
@@ -43,7 +45,7 @@ func Identify(g *graph.Graph, exposures, outcomes, given []int) *Identification 
 	id.Estimand, failed = id.formula()
 	if failed != nil {
 		id.Whole, id.Part = failed.whole, failed.part
-		id.Sentence = id.failure()
+		id.Sentence = id.failure() + id.anyFunction()
 		return id
 	}
 	id.Identified = true
@@ -354,6 +356,20 @@ func (id *Identification) failure() string {
 	}
 	return fmt.Sprintf("%s is not identified: %s %s together, and no data show how %s would behave if %s were set rather than seen.",
 		id.Query(), by, names(g, id.Whole), names(g, id.Part), names(g, exposed))
+}
+
+// anyFunction says what the failure supposes of computed variables; "" = nothing.
+func (id *Identification) anyFunction() string {
+	var computed []int
+	for v, above := range id.Graph.Ancestors(id.Outcomes...) {
+		if above && id.Graph.Computed[v] {
+			computed = append(computed, v)
+		}
+	}
+	if len(computed) == 0 {
+		return ""
+	}
+	return fmt.Sprintf(" That takes %s for any function of what acts there; whether the one that was typed shows more was not looked at.", names(id.Graph, computed))
 }
 
 func ties(n int) string {

@@ -257,8 +257,12 @@ func TestFormulasWithComputedVariables(t *testing.T) {
 		t.Errorf("only %d identified", identified)
 	}
 	g := sheet(t, "hedge -> =log -> bees, hedge <-> bees")
-	if f := Identify(g, []int{0}, []int{2}, nil); f.Identified {
+	f := Identify(g, []int{0}, []int{2}, nil)
+	if f.Identified {
 		t.Errorf("a front door through what is computed from the exposure alone: %s", f.Symbols())
+	}
+	if want := " That takes log for any function of what acts there; whether the one that was typed shows more was not looked at."; !strings.HasSuffix(f.Sentence, want) {
+		t.Errorf("got %s", f.Sentence)
 	}
 }
 

@@ -29,8 +29,8 @@ const (
 func Functionals(g *graph.Graph) (all []Functional, more bool) {
 	p := Project(g)
 	h := p.Graph
-	if slices.Contains(h.Computed, true) { // no positive distribution
-		return nil, false
+	if slices.Contains(h.Computed, true) { // no positive distribution: not looked for
+		return nil, true
 	}
 	before := make([]bool, h.Len())
 	budget := searchBudget
