@@ -60,11 +60,11 @@ func (b *bench) mend(all []Finding) {
 }
 
 // join draws the arrow between two variables that breaks no tier and closes no
-// cycle: along the tiers, else along the arrows, else in the order of the sheet.
-// Where neither direction will do it draws an unnamed common cause. The graph
-// is that with it.
+// cycle, in the likelier direction if that will do. Where neither will it draws
+// an unnamed common cause. The graph is that with it.
 func (b *bench) join(x, y int) (*Repair, *graph.Graph) {
-	for _, ends := range [][2]int{b.direction(x, y), b.direction(y, x)} {
+	likelier := b.direction(x, y)
+	for _, ends := range [][2]int{likelier, {likelier[1], likelier[0]}} {
 		from, to := ends[0], ends[1]
 		if b.backInTime(from, to) || b.g.Descendants(to)[from] {
 			continue
@@ -92,18 +92,32 @@ func (b *bench) diagram() *study.Diagram {
 	return nil
 }
 
-// direction puts the end first that the arrow should leave.
+// direction puts the end first that the arrow should leave: the earlier tier,
+// else as another rival draws it, else away from the outcome that is asked
+// about, else along the order of the sheet.
 func (b *bench) direction(x, y int) [2]int {
 	tierX, tierY := b.tier(x), b.tier(y)
-	switch {
+	forth, back := b.drawnElsewhere(x, y), b.drawnElsewhere(y, x)
+	turn := slices.Index(b.g.Order, x) > slices.Index(b.g.Order, y)
+	switch q := b.req.Question; {
 	case tierX > 0 && tierY > 0 && tierX != tierY:
-		if tierX > tierY {
-			x, y = y, x
-		}
-	case slices.Index(b.g.Order, x) > slices.Index(b.g.Order, y):
+		turn = tierX > tierY
+	case forth != back:
+		turn = back
+	case q != nil && (b.g.Names[x] == q.Outcome || b.g.Names[y] == q.Outcome):
+		turn = b.g.Names[x] == q.Outcome
+	}
+	if turn {
 		x, y = y, x
 	}
 	return [2]int{x, y}
+}
+
+// drawnElsewhere reports whether another rival has this arrow.
+func (b *bench) drawnElsewhere(from, to int) bool {
+	return slices.ContainsFunc(b.req.Study.Rivals, func(r *study.Rival) bool {
+		return r.Diagram != nil && r.Diagram.Arrow(b.g.Names[from], b.g.Names[to]) != nil
+	})
 }
 
 func (b *bench) tier(v int) int {
