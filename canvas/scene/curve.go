@@ -201,6 +201,7 @@ func (r *router) survey() {
 		box := r.obstacles[k].solid.Union(r.obstacles[k].soft)
 		left, top := r.cell(box.X, box.Y)
 		right, bottom := r.cell(box.X+box.W, box.Y+box.H)
+		right, bottom = min(right, r.across-1), min(bottom, r.down-1) // sums of rounded numbers can end a hair beyond the grid
 		for y := top; y <= bottom; y++ {
 			for x := left; x <= right; x++ {
 				r.cells[y*r.across+x] = append(r.cells[y*r.across+x], k)

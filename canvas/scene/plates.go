@@ -71,6 +71,9 @@ func (b *builder) frames() {
 		if n := b.in.PlateCounts[plate.Name]; n > 0 {
 			words += " · " + strconv.Itoa(n)
 		}
+		if q := b.in.Question; q != nil && s.HoldsPlate(plate.Name) && slices.Contains(q.Held, plate.Name) {
+			words += " · held"
+		}
 		size := max(tabSize*b.zoom, 10)
 		box.Y, box.H = box.Y-10*b.zoom, box.H+4*b.zoom // room for the tab; the dots gave some below
 		tab := draw.Rect{X: box.X, Y: box.Y, W: draw.Measure(words, draw.Regular, size) + 20, H: size + 8}
