@@ -56,6 +56,9 @@ func joinedAt(g *graph.Graph, plate int) map[[2]int][]int {
 func closing(g *graph.Graph, exposure, outcome int) []int {
 	var plates []int
 	for p := range g.Plates {
+		if !causes(g, p) {
+			continue
+		}
 		same := sameNodes(g, []int{p})
 		if exposure >= 0 && same[exposure] || outcome >= 0 && same[outcome] ||
 			slices.ContainsFunc(g.Arrows, func(a [2]int) bool { return same[a[1]] && !same[a[0]] }) {
@@ -69,6 +72,20 @@ func closing(g *graph.Graph, exposure, outcome int) []int {
 		}
 	}
 	return plates
+}
+
+// causes reports whether anything unmeasured lives at a plate's own level.
+func causes(g *graph.Graph, plate int) bool {
+	at := func(level []int) bool { return levelOf(g, level) == plate }
+	if slices.ContainsFunc(g.ArcLevels, at) {
+		return true
+	}
+	for v, measured := range g.Measured {
+		if !measured && at(g.Levels[v]) {
+			return true
+		}
+	}
+	return false
 }
 
 // AsFitted is the graph of which the full model is a fit: where the model
