@@ -3,6 +3,7 @@ package kernel
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"testing"
 )
 
@@ -112,6 +113,34 @@ func samples() []sample {
 	}
 }
 
+// boundedSamples are densities made of others and their tails.
+func boundedSamples() []sample {
+	tails := map[*Density]Tails{Normal: NormalTails, Logistic: LogisticTails, LogNormal: LogNormalTails, LogNormalLog: LogNormalLogTails,
+		Weibull: WeibullTails, WeibullLog: WeibullLogTails, Exponential: ExponentialTails, ExponentialLog: ExponentialLogTails}
+	var out []sample
+	for _, s := range samples() {
+		of, ok := tails[s.kernel]
+		if !ok {
+			continue
+		}
+		with := func(k *Density, smooth bool, fixed int, bounds func(r *rand.Rand, y float64) []float64) {
+			out = append(out, sample{k, smooth, fixed, func(r *rand.Rand) (float64, []float64) {
+				y, args := s.draw(r)
+				return y, append(args, bounds(r, y)...)
+			}})
+		}
+		near := func(r *rand.Rand, y float64) []float64 { return []float64{y * (0.5 + r.Float64())} }
+		with(LeftCensored(s.kernel, of), true, 1, near)
+		with(RightCensored(s.kernel, of), true, 1, near)
+		with(Censored(s.kernel, of), true, 1, func(r *rand.Rand, _ float64) []float64 { return []float64{float64(r.IntN(2))} })
+		with(IntervalCensored(s.kernel, of), true, 1, func(r *rand.Rand, y float64) []float64 { return []float64{y + 0.1 + r.Float64()} })
+		with(Truncated(s.kernel, of), true, 2, func(r *rand.Rand, y float64) []float64 {
+			return []float64{y - (0.1+0.8*r.Float64())*math.Abs(y), y + 0.1 + r.Float64()}
+		})
+	}
+	return out
+}
+
 // withZeroSamples are densities made of others, which no list holds.
 func withZeroSamples() []sample {
 	var out []sample
@@ -138,7 +167,7 @@ func withZeroSamples() []sample {
 // eachSample runs f once per kernel, and fails for a kernel without a sample.
 func eachSample(t *testing.T, f func(t *testing.T, s sample, r *rand.Rand)) {
 	seen := map[*Density]bool{}
-	for _, s := range append(samples(), withZeroSamples()...) {
+	for _, s := range slices.Concat(samples(), withZeroSamples(), boundedSamples()) {
 		seen[s.kernel] = true
 		t.Run(s.kernel.Name, func(t *testing.T) { f(t, s, rand.New(rand.NewPCG(1, 2))) })
 	}

@@ -4,6 +4,7 @@ import (
 	"encoding/json"
 	"math"
 	"os"
+	"slices"
 	"testing"
 )
 
@@ -54,7 +55,9 @@ type referenceCase struct {
 	args   func(p map[string]float64, lists map[string]numbers) []float64
 	// grad takes derivatives in our arguments to derivatives in theirs.
 	grad  func(p map[string]float64, d []float64) map[string][]float64
-	shift float64 // taken from x: categories counted from 1
+	shift float64                       // taken from x: categories counted from 1
+	fixed []string                      // parameters that our kernel takes as data
+	only  func(p named, x float64) bool // points that the kernel can say; nil = all
 }
 
 type named = map[string]float64
@@ -138,6 +141,30 @@ func referenceCases() []referenceCase {
 				return []float64{math.Log(p["a"] / p["b"]), p["a"] + p["b"], p["n"]}
 			},
 			grad: byShapes(func(m float64, d []float64) float64 { return d[0] / m / (1 - m) })},
+		{dist: "truncated normal", kernel: Truncated(Normal, NormalTails), fixed: []string{"lower", "upper"},
+			args: func(p named, _ map[string]numbers) []float64 {
+				return []float64{p["mu"], p["sigma"], p["lower"], p["upper"]}
+			},
+			grad: func(_ named, d []float64) map[string][]float64 {
+				return map[string][]float64{"mu": d[:1], "sigma": d[1:2]}
+			}},
+		{dist: "normal truncated below at zero", kernel: Truncated(Normal, NormalTails),
+			args: func(p named, _ map[string]numbers) []float64 {
+				return []float64{p["mu"], p["sigma"], 0, math.Inf(1)}
+			},
+			grad: func(_ named, d []float64) map[string][]float64 {
+				return map[string][]float64{"mu": d[:1], "sigma": d[1:2]}
+			}},
+		{dist: "censored normal", kernel: RightCensored(Normal, NormalTails), fixed: []string{"lower", "upper"}, only: func(p named, x float64) bool { return x > p["lower"] },
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{p["mu"], p["sigma"], p["upper"]} },
+			grad: func(_ named, d []float64) map[string][]float64 {
+				return map[string][]float64{"mu": d[:1], "sigma": d[1:2]}
+			}},
+		{dist: "censored normal", kernel: LeftCensored(Normal, NormalTails), fixed: []string{"lower", "upper"}, only: func(p named, x float64) bool { return x < p["upper"] },
+			args: func(p named, _ map[string]numbers) []float64 { return []float64{p["mu"], p["sigma"], p["lower"]} },
+			grad: func(_ named, d []float64) map[string][]float64 {
+				return map[string][]float64{"mu": d[:1], "sigma": d[1:2]}
+			}},
 		direct("zero-inflated Poisson", ZeroInflated(Poisson), "lambda", "pi"),
 		vector("ordered probit", OrderedProbit, "eta", "c", 0),
 		{dist: "cauchy", kernel: StudentT, // ν = 1
@@ -290,6 +317,9 @@ func TestPublishedPoints(t *testing.T) {
 					p[name] = v[0]
 				}
 			}
+			if c.only != nil && !c.only(p, pt.X[0]) {
+				continue
+			}
 			flat := c.args(p, pt.Params)
 			var args, dargs [][]float64
 			d := make([]float64, len(flat))
@@ -312,6 +342,9 @@ func TestPublishedPoints(t *testing.T) {
 			}
 			grad := c.grad(p, d)
 			for name, want := range pt.DP {
+				if slices.Contains(c.fixed, name) {
+					continue
+				}
 				for i, w := range want {
 					if g := grad[name][i]; !near(g, w) && math.Abs(g-w) > slack(pt, name) {
 						t.Errorf("%s: %s %v at %v: slope in %s[%d] %.17g, want %.17g (relative %.2g)", c.kernel.Name, pt.Dist, pt.Params, pt.X, name, i, g, w, g/w-1)
@@ -368,5 +401,51 @@ func TestSpecialFunctions(t *testing.T) {
 		if g := log1mExp(r.X); !near(g, r.V) {
 			t.Errorf("log(1-exp(%v)) = %.17g, want %.17g", r.X, g, r.V)
 		}
+	}
+}
+
+// Source: testdata/numeric/logpdf/logcdf.json.
+func TestTailsAgainstPublishedPoints(t *testing.T) {
+	var points []struct {
+		Dist   string
+		Params map[string]float64
+		X      float64
+		Below  float64 `json:"log_cdf"`
+		Above  float64 `json:"log_ccdf"`
+	}
+	readReference(t, "logcdf.json", &points)
+	cases := map[string]struct {
+		tails []Tails
+		args  func(p named) [][]float64
+	}{
+		"normal":   {[]Tails{NormalTails}, func(p named) [][]float64 { return [][]float64{{p["mu"], p["sigma"]}} }},
+		"logistic": {[]Tails{LogisticTails}, func(p named) [][]float64 { return [][]float64{{p["mu"], p["s"]}} }},
+		"log-normal": {[]Tails{LogNormalTails, LogNormalLogTails}, func(p named) [][]float64 {
+			return [][]float64{{math.Exp(p["mu"]), p["sigma"]}, {p["mu"], p["sigma"]}}
+		}},
+		"weibull": {[]Tails{WeibullTails, WeibullLogTails}, func(p named) [][]float64 {
+			return [][]float64{{p["scale"], p["shape"]}, {math.Log(p["scale"]), p["shape"]}}
+		}},
+	}
+	used := map[string]bool{}
+	for _, p := range points {
+		c, ok := cases[p.Dist]
+		if !ok {
+			continue
+		}
+		used[p.Dist] = true
+		for i, args := range c.args(p.Params) {
+			d := make([]float64, 3)
+			// A log of 0 in the reference is a probability that rounds to 1.
+			if got := c.tails[i].Below(p.X, args, d); !near(got, p.Below) && math.Abs(got-p.Below) > 1e-300 {
+				t.Errorf("%s %v: below %v %.17g, want %.17g", p.Dist, p.Params, p.X, got, p.Below)
+			}
+			if got := c.tails[i].Above(p.X, args, d); !near(got, p.Above) && math.Abs(got-p.Above) > 1e-300 {
+				t.Errorf("%s %v: above %v %.17g, want %.17g", p.Dist, p.Params, p.X, got, p.Above)
+			}
+		}
+	}
+	if len(used) != len(cases) {
+		t.Errorf("only %v were used", used)
 	}
 }
