@@ -53,10 +53,11 @@ func BenchmarkReading(b *testing.B) {
 	} {
 		g, q := size.g, size.q
 		x, y := q.Exposure, q.Outcome
-		for _, part := range []struct {
+		type reading struct {
 			name string
 			read func()
-		}{
+		}
+		parts := []reading{
 			{"paths, sets, verdict", func() { Read(g, q) }},
 			{"adjustment", func() { Adjust(g, Aim{Exposures: []int{x}, Outcomes: []int{y}}) }},
 			{"controls", func() { Controls(g, x, y, q.Held) }},
@@ -69,7 +70,12 @@ func BenchmarkReading(b *testing.B) {
 			{"class", func() { ClassOf(g) }},
 			{"carriers", func() { CarriersFor(g, x, y) }},
 			{"separations, one set each", func() { Separations(g, 1) }},
-		} {
+		}
+		for _, part := range append(parts, reading{"all of these", func() {
+			for _, part := range parts {
+				part.read()
+			}
+		}}) {
 			b.Run(size.name+": "+part.name, func(b *testing.B) {
 				for b.Loop() {
 					part.read()

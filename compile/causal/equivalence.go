@@ -35,7 +35,7 @@ func ClassOf(g *graph.Graph) *Class {
 				c.Directed = append(c.Directed, a)
 			}
 		}
-		c.Size = (&counter{known: map[string]*big.Int{}}).size(p)
+		c.Size = newCounter().size(p)
 	} else {
 		c.turn(g)
 	}

@@ -121,13 +121,15 @@ func (p *pattern) components() [][]int {
 	return all
 }
 
-const sizeSteps = 5000 // parts counted before the size of a class is given up
-
 // A counter counts the ways to direct undirected parts without a cycle and
 // without new arrows that meet (He, Jia & Yu 2015: by the root of each part).
 type counter struct {
 	known map[string]*big.Int
-	steps int
+	left  budget // pairs of nodes looked at before the size is given up
+}
+
+func newCounter() *counter {
+	return &counter{known: map[string]*big.Int{}, left: 5 * searchBudget}
 }
 
 // size is the number of ways for a pattern; nil if that takes too long.
@@ -168,11 +170,11 @@ func (c *counter) part(p *pattern, group []int) *big.Int {
 	if known := c.known[k]; known != nil {
 		return known
 	}
-	if c.steps++; c.steps > sizeSteps {
-		return nil
-	}
 	total := new(big.Int)
 	for _, root := range group {
+		if c.left -= budget(len(p.on) * len(p.on)); c.left.spent() {
+			return nil
+		}
 		rooted := part.clone()
 		for _, w := range group {
 			if rooted.free(root, w) {
