@@ -181,8 +181,17 @@ func (b *bench) summary(e *Evidence) string {
 	case n[TooFew] == total:
 		return fmt.Sprintf("These arrows imply %s that the data could contradict, but there are too few rows to say.", plural(total, "independence"))
 	}
-	text := fmt.Sprintf("Of %s that these arrows imply and the data could contradict, %s, %s, %s, %s",
-		plural(total, "independence"), are(n[Contradicted], "contradicted"), are(n[Doubtful], "in doubt"), hold(n[Holds]+n[Trifling]), stay(n[Undecided]+n[TooFew]))
+	parts := []string{are(n[Contradicted], "contradicted")}
+	if k := n[Doubtful]; k > 0 {
+		parts = append(parts, are(k, "in doubt"))
+	}
+	if k := n[Holds] + n[Trifling]; k > 0 {
+		parts = append(parts, hold(k))
+	}
+	if k := n[Undecided] + n[TooFew]; k > 0 {
+		parts = append(parts, stay(k))
+	}
+	text := fmt.Sprintf("Of %s that these arrows imply and the data could contradict, %s", plural(total, "independence"), strings.Join(parts, ", "))
 	if total == 1 {
 		text = "The one independence that these arrows imply and the data could contradict is " + map[Verdict]string{
 			Contradicted: "contradicted", Doubtful: "in doubt", Trifling: "kept but for a trace", Holds: "kept", Undecided: "left undecided",
@@ -192,7 +201,10 @@ func (b *bench) summary(e *Evidence) string {
 }
 
 func are(n int, what string) string {
-	if n == 1 {
+	switch n {
+	case 0:
+		return "none is " + what
+	case 1:
 		return "1 is " + what
 	}
 	return fmt.Sprintf("%d are %s", n, what)
