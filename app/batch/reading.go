@@ -287,10 +287,10 @@ func printFindings(j *job, f *findings.Findings) *readingOut {
 		}
 	}
 	if d := f.Direct; d != nil {
-		out.Direct = &directOut{of(d.Fixed), d.Effect, sets(f, d.Direct.Adjustment.Sets), d.Identification.Identified || d.Direct.Adjustment.Sets != nil, d.Sentence}
+		out.Direct = &directOut{of(d.Fixed), d.Effect, sets(f, d.Direct.Adjustment.Sets), d.Identification.Identified && len(f.Selected) == 0 || d.Direct.Adjustment.Sets != nil, d.Sentence}
 	}
 	if b := f.Beyond; b != nil {
-		out.Identified = out.Identified || b.Identification.Identified && len(f.Given) == 0
+		out.Identified = out.Identified || b.Identification.Identified && len(f.Given) == 0 && len(f.Selected) == 0
 		out.Estimand, out.EstimandHeld = printEstimand(f, b.Identification), printEstimand(f, b.ByHolding)
 		for _, d := range b.Doors {
 			out.FrontDoors = append(out.FrontDoors, frontDoorOut{of(d.Through), of(d.Given)})

@@ -141,6 +141,9 @@ func TestReadScholarship(t *testing.T) { // [true .50, crude .73, {I, Z} .49, wi
 	if len(among.Hold) > 0 || among.ByHolding || !strings.Contains(among.Verdict, "R") || !hasKind(sectionOf(t, among, "rows and records"), "selection, not valid") {
 		t.Errorf("among responders: hold %v, %s", among.Hold, among.Verdict)
 	}
+	if rows := sectionOf(t, among, "fitted laws"); among.Identified || !hasKind(rows, "law of kept rows") || !strings.Contains(among.Direct.Sentence, "cannot be read by holding anything") || among.Direct.Identified {
+		t.Errorf("among responders: identified %v, direct effect %+v, laws %s", among.Identified, among.Direct, rows.Summary)
+	}
 	if !slices.Equal(among.Asked.RowsBy, []string{"R"}) {
 		t.Errorf("rows chosen by %v", among.Asked.RowsBy)
 	}
@@ -263,7 +266,7 @@ func TestReadLargeSheets(t *testing.T) {
 		}
 		return sheetOf(nodes, edges, nil, []string{"v1"})
 	}
-	for name, s := range map[string]*study.Study{"all joined": full(13, 13), "long": full(1000, 4)} {
+	for name, s := range map[string]*study.Study{"all joined": full(13, 13), "long": full(1000, 3)} {
 		start := time.Now()
 		nodes := s.Rivals[0].Diagram.Nodes
 		out, status, messages := reading(t, s, "-exposure", "v0", "-outcome", nodes[len(nodes)-1].Variable, "-paths", "20", "-sets", "5")

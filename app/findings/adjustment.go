@@ -41,7 +41,9 @@ func (r *reader) adjustment(f *Findings) {
 	if id := f.unmeasured(); id != "" {
 		a.Adjustment = &causal.Adjustment{Graph: found.Graph, Aim: found.Aim, Effect: found.Effect, Forbidden: found.Forbidden}
 		a.Summary = fmt.Sprintf("The effect of %s on %s cannot be read: %s was not measured.", words.List(f.Ask.Exposures), words.List(f.Ask.Outcomes), id)
-	} else if found.Sets == nil && r.ctx.Err() == nil {
+	} else if found.Sets == nil && f.Reading != nil && !f.direct() {
+		a.Culprits, a.CulpritArcs, a.CulpritsAll = f.Reading.Culprits, f.Reading.CulpritArcs, f.Reading.CulpritsAll
+	} else if found.Sets == nil && len(f.Selected) == 0 {
 		a.Culprits, a.CulpritArcs, a.CulpritsAll = causal.Culprits(g, exposures, f.Outcomes)
 	}
 	f.setFindings(a, r.sheet.costs != nil)

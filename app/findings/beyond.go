@@ -2,6 +2,7 @@ package findings
 
 import (
 	"fmt"
+	"slices"
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
@@ -120,6 +121,10 @@ func (r *reader) doors(f *Findings) {
 		}
 		more = true
 	}
+	// Doors of what carries the effect come first: others need less given, but
+	// mean less to the reader.
+	below := f.Graph.Descendants(x)
+	slices.SortStableFunc(b.Doors, func(a, c causal.FrontDoor) int { return strays(below, a.Through) - strays(below, c.Through) })
 	for i := range b.Doors {
 		d := &b.Doors[i]
 		f.add(&b.Section, Finding{
@@ -131,6 +136,14 @@ func (r *reader) doors(f *Findings) {
 		b.leave("There may be more front doors than were looked for.")
 	}
 	f.ways(b)
+}
+
+// strays counts nodes that are not marked, as no more than one.
+func strays(marked []bool, nodes []int) int {
+	if slices.ContainsFunc(nodes, func(v int) bool { return !marked[v] }) {
+		return 1
+	}
+	return 0
 }
 
 func (r *reader) instruments(f *Findings) {

@@ -50,33 +50,3 @@ func (r *reader) controls(f *Findings) {
 		c.Summary = "No measured variable besides exposure and outcome could be held."
 	}
 }
-
-// direct reads the controlled direct effect.
-func (r *reader) direct(f *Findings) {
-	d := &Direct{Section: Section{Name: DirectSection}}
-	var fixed []int
-	if f.direct() {
-		fixed = minus(f.Adjustment.Aim.Exposures, f.Exposures)
-	}
-	d.Direct = causal.ReadDirect(f.Graph, f.Exposures[0], f.Outcomes[0], fixed)
-	if id := f.unmeasured(); id != "" && d.Effect {
-		d.Summary = fmt.Sprintf("The direct effect of %s on %s cannot be read: %s was not measured.", f.Ask.Exposures[0], f.Ask.Outcomes[0], id)
-		f.Direct = d
-		return
-	}
-	d.Summary = d.Sentence
-	kind := "not identified"
-	switch {
-	case !d.Effect:
-		kind = "none drawn"
-	case d.Direct.Adjustment.Sets != nil:
-		kind = "by holding"
-	case d.Identification.Identified:
-		kind = "by a formula"
-	}
-	f.add(&d.Section, Finding{
-		Key: "direct " + f.Ask.Exposures[0] + " " + f.Ask.Outcomes[0] + " | " + joined(f.names(d.Fixed)), Kind: kind, Sentence: d.Sentence,
-		Nodes: union(d.Fixed, []int{d.Exposure, d.Outcome}),
-	})
-	f.Direct = d
-}

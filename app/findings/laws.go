@@ -27,6 +27,12 @@ func (r *reader) laws(f *Findings) {
 		}
 		f.lawFinding(&l.Section, law)
 	}
+	kept := 0
+	for _, law := range l.List {
+		if f.keptFinding(&l.Section, law) {
+			kept++
+		}
+	}
 	for _, law := range l.Shared {
 		f.sharedFinding(&l.Section, law)
 	}
@@ -37,6 +43,9 @@ func (r *reader) laws(f *Findings) {
 		l.Summary = "Every law is fitted on the drawn parents alone."
 	default:
 		l.Summary = fmt.Sprintf("%s more than the drawn parents, for the sake of what is left out.", upper(lawsCarry(carried, len(l.List))))
+	}
+	if kept > 0 {
+		l.Summary += fmt.Sprintf(" Of rows chosen by %s, %s that of all rows.", f.rowsBy(), lawsNot(kept))
 	}
 	if x >= 0 {
 		l.Case, l.District, l.Reason = causal.InterventionCase(fitted, x, y)
@@ -125,6 +134,31 @@ func wasWere(n int) string {
 		return "was"
 	}
 	return "were"
+}
+
+// keptFinding says of a law that it is not the same among the rows that there
+// are as in all rows (SEMANTICS A7); false if it is.
+func (f *Findings) keptFinding(s *Section, law causal.Fitted) bool {
+	on := slices.Clone(law.Parents)
+	for _, c := range law.Carried {
+		on = append(on, c.Node)
+	}
+	if len(f.Selected) == 0 || slices.Contains(f.Selected, law.Node) || f.Graph.Computed[law.Node] || causal.Separated(f.Graph, []int{law.Node}, minus(f.Selected, on), on) {
+		return false
+	}
+	name := f.Graph.Names[law.Node]
+	f.add(s, Finding{
+		Key: "law of kept rows " + name, Kind: "law of kept rows", Nodes: union(union(f.Selected, on), []int{law.Node}),
+		Sentence: fmt.Sprintf("The law of %s is that of rows chosen by %s, not of all rows.", name, f.rowsBy()),
+	})
+	return true
+}
+
+func lawsNot(n int) string {
+	if n == 1 {
+		return "1 law is not"
+	}
+	return words.Whole(float64(n)) + " laws are not"
 }
 
 // caseFinding says whether the fitted laws may be simulated under the

@@ -36,7 +36,7 @@ func (f *Findings) heldIsEnough(exposures []int) bool {
 }
 
 func (f *Findings) judgeDirect(valid bool) {
-	d := causal.ReadDirect(f.Graph, f.Exposures[0], f.Outcomes[0], minus(f.Adjustment.Aim.Exposures, f.Exposures))
+	d := f.directEffect(minus(f.Adjustment.Aim.Exposures, f.Exposures))
 	f.Verdict = causal.Verdict{Sentence: d.Sentence}
 	fixed := "nothing"
 	if len(d.Fixed) > 0 {

@@ -24,7 +24,7 @@ const shownLines = 12 // of a section; the rest is folded away
 var kindsShown = map[string]bool{
 	"set": true, "most precise": true, "cheapest": true, "would help": true, "within groups": true, "good": true, "good with others": true, "bad": true,
 	"identified by holding": true, "identified": true, "not identified": true, "front door": true, "instrument": true, "law with carried terms": true,
-	"law with carried groups": true, "reversible": true, "not told apart": true, "told apart": true, "functional": true,
+	"law with carried groups": true, "law of kept rows": true, "reversible": true, "not told apart": true, "told apart": true, "functional": true,
 }
 
 // sectionsOf is the reading as the report shows it. Paths have a table of their
