@@ -35,6 +35,7 @@ type banner struct {
 	onHide func()
 	mark   *scene.Mark // what the message is about, on the sheet; nil = nothing to show
 	pinned bool        // the mark stays when the pointer leaves
+	lit    bool        // it is on the sheet
 }
 
 // A message is what the banner says.
@@ -264,6 +265,9 @@ func (b *banner) put(m *message) {
 	}
 	if same {
 		b.says.spans = spans
+		if b.lit { // another reading took it off the sheet
+			b.d.post(func() { b.point(b.lit) })
+		}
 		return
 	}
 	b.pin(false)
@@ -283,9 +287,6 @@ func (b *banner) hide() {
 
 // pin keeps what the message is about lit on the sheet, or lets it go dark.
 func (b *banner) pin(on bool) {
-	if on == b.pinned && !on {
-		return
-	}
 	b.pinned = on
 	b.point(on)
 	if on {
@@ -323,10 +324,12 @@ func (b *banner) uncover() {
 
 // point lights what the message is about.
 func (b *banner) point(on bool) {
+	was := b.lit
+	b.lit = on && b.mark != nil
 	switch {
-	case on && b.mark != nil:
+	case b.lit:
 		b.d.editor.Point(b.mark)
-	case !on:
+	case was: // what another list points at stays
 		b.d.editor.Point(nil)
 	}
 }

@@ -29,7 +29,7 @@ func nothingHidden(l *look) []Mistake {
 	m := Mistake{
 		Code: NothingHidden, Severity: Note, Key: key(NothingHidden, x, y),
 		Sentence: fmt.Sprintf("Everything drawn was measured: could %s and %s share a cause that nobody measured?", x, y),
-		Why:      fmt.Sprintf("A cause that %s share would confound the effect, whatever is held.", pairWords(pairs)),
+		Why:      fmt.Sprintf("One shared by %s would confound the effect, whatever is held.", pairWords(pairs)),
 	}
 	for _, p := range pairs {
 		m.Nodes = append(m.Nodes, p[:]...)
@@ -89,13 +89,13 @@ func withArc(g *graph.Graph, arc [2]int) *graph.Graph {
 	return next
 }
 
-// pairWords writes pairs as "hedge and bees, or hedge and flowers".
+// pairWords writes pairs as "hedge and bees, or by hedge and flowers".
 func pairWords(pairs [][2]string) string {
 	words := make([]string, len(pairs))
 	for i, p := range pairs {
 		words[i] = p[0] + " and " + p[1]
 	}
-	return strings.Join(words, ", or ")
+	return strings.Join(words, ", or by ")
 }
 
 // unique drops words that came before.
