@@ -218,18 +218,17 @@ func (b *builder) keepMean(d *draft, w *grouped, g groupMean, plate int, value f
 		moves := false
 		first := make([]float64, len(out.Values))
 		for i, j := range groups {
-			x := value(own[i])
 			if units[j] == 0 {
-				first[j] = x
+				first[j] = own[i]
 			}
-			moves = moves || x != first[j]
-			out.Values[j] += x
+			moves = moves || own[i] != first[j]
+			out.Values[j] += value(own[i])
 			units[j]++
 		}
 		for j := range out.Values {
 			out.Values[j] /= units[j]
 		}
-		if !moves && g.level == "" {
+		if !moves {
 			b.unmoved(of, g.plate)
 			return
 		}

@@ -9,7 +9,13 @@ import (
 // Means within groups are those of the used rows, and stand beside the baseline
 // that varies by the plate (SEMANTICS A6).
 func TestGroupMeans(t *testing.T) {
-	m := build(t, inFarms(), withinFarms(), traps(), Held)
+	tab := traps()
+	if m := build(t, inFarms(), withinFarms(), tab, Held); len(m.Laws[0].Within[0].Means) != 1 {
+		t.Error("soil is the same throughout each farm, but has shares")
+	}
+	codes := tab.Column("soil").Codes
+	codes[0] = (codes[0] + 1) % 3
+	m := build(t, inFarms(), withinFarms(), tab, Held)
 	at, _ := m.Name("mean_hedge_farm")
 	if at < 0 {
 		t.Fatal("there is no mean of hedge")
