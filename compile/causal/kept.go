@@ -65,6 +65,13 @@ func (c *comparison) kept(held []int) *Kept {
 	if len(held) > 0 {
 		holding = ", holding " + names(g, held) + ","
 	}
+	for _, v := range union(c.x, c.y) {
+		if slices.Contains(c.selected, v) {
+			k.Reason = []int{v}
+			k.Sentence = fmt.Sprintf("Rows were kept by %s itself: nothing is left to compare.", g.Names[v])
+			return k
+		}
+	}
 	if c.valid(held) {
 		k.Among = Valid
 		around := *c

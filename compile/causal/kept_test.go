@@ -138,3 +138,44 @@ func TestKeptSentences(t *testing.T) {
 		t.Errorf("%+v", v)
 	}
 }
+
+// Whatever kept the rows, the reading agrees with itself.
+func TestKeptReadingsAreConsistent(t *testing.T) {
+	r := rand.New(rand.NewPCG(96, 2026))
+	var kinds [6]int
+	for range rounds(1500, 15000) {
+		s := sketch{nodes: 3 + r.IntN(5), arrows: 0.2 + 0.4*r.Float64(), unmeasured: 0.25 * r.Float64(), arcs: 0.1 * r.Float64(), computed: 0.3 * float64(r.IntN(2))}
+		g := s.draw(t, r)
+		const x, y = 0, 1
+		everyone := list(everything(g))
+		selected := subset(everyone, r.IntN(1<<g.Len())&r.IntN(1<<g.Len()))
+		held := subset(everyone, r.IntN(1<<g.Len())&r.IntN(1<<g.Len()))
+		read := Read(g, Query{Exposure: x, Outcome: y, Held: held, Selected: selected})
+		v := read.Verdict
+		kinds[v.Kind]++
+		fail := func(what string) {
+			t.Helper()
+			t.Fatalf("%s | held %v, kept by %v: %s: %+v, faults %v, sets %v", describe(g), held, selected, what, v, read.HeldFaults, read.Sets)
+		}
+		if v.Sentence == "" || (read.Kept == nil) != (len(selected) == 0) {
+			fail("no sentence, or nothing said of the rows")
+		}
+		if read.Kept != nil && (read.Kept.Sentence == "" || (read.Kept.Among == Valid) != read.HeldValid) {
+			fail("the rows and the held set disagree")
+		}
+		for _, z := range read.Sets {
+			if len(minus(z, selected)) < len(z) || len(selected) > 0 && ReadKept(g, x, y, z, selected).Among != Valid {
+				fail("a set that does not do")
+			}
+		}
+		if v.HasProposal && len(selected) > 0 && ReadKept(g, x, y, v.Propose, selected).Among != Valid {
+			fail("the proposal is not valid")
+		}
+		for _, f := range read.HeldFaults {
+			if slices.Contains(selected, f.Node) {
+				fail("what kept the rows is said to be held wrongly")
+			}
+		}
+	}
+	t.Logf("verdicts by kind: %v", kinds)
+}

@@ -16,7 +16,8 @@
 // direct.go and controls.go (adjustment in full), frontdoors.go and
 // instruments.go, implications.go, functional.go and tetrads.go (what the data
 // could contradict), pattern.go and equivalence.go (what they never could),
-// selection.go, kept.go and missingness.go.
+// selection.go, kept.go and missingness.go. What could go on without end is bounded
+// by budget.go and says what it left out.
 //
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.
 package causal
