@@ -8,7 +8,7 @@
 // Read the files in this order: separation.go (which sets separate), path.go
 // and walk.go (the paths), adjust.go and separators.go (the sets),
 // precision.go, ways.go, project.go, identify.go, carriers.go and intervene.go (what
-// SEMANTICS A1 and B2 ask for), plates.go (comparing within groups), verdict.go
+// SEMANTICS A1 and B2 ask for), plates.go and shared.go (comparing within groups), verdict.go
 // (all of it in a sentence).
 //
 // A Reading is cheap enough to follow the hand. What takes longer is asked for

@@ -2,8 +2,8 @@
 // draw from. Read the files in this order: density.go and block.go (what comes
 // out), blocks.go (which parameters are drawn apart), resolve.go (what names
 // mean), express.go (formulas), transform.go (from the line of reals to natural
-// values), prior.go and law.go (the factors), blame.go (who is at fault where a
-// density is not finite).
+// values), missing.go (missing entries that are unknowns), prior.go and law.go
+// (the factors), blame.go (who is at fault where a density is not finite).
 package density
 
 import "arrowroot/compile/model"

@@ -4,7 +4,8 @@
 // out), resolve.go, eval.go and expect.go (laws evaluated over rows, draw by
 // draw), arm.go (who moves when something is set), districts.go (what may be
 // set), contrast.go, simulation.go and round.go (many draws, few replicates),
-// population.go (weights), groups.go (new ones), arrows.go, nodes.go, words.go.
+// population.go (weights), groups.go (new ones), unknowns.go (missing entries),
+// arrows.go, nodes.go, words.go.
 //
 // A draw is the natural values of all parameters, in the order of
 // Model.Parameters, entries of vectors side by side (density.Quantities).

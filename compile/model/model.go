@@ -6,11 +6,11 @@
 // Read the files in this order: model.go (what comes out), build.go (the
 // phases), choose.go and choose_outcome.go (which laws), names.go and parse.go
 // (what parameters are called, what the user typed), scope.go (what names mean
-// there), gather.go, columns.go, plates.go and conditions.go (data), ranges.go and priors.go
-// (SEMANTICS C), explain.go (predictors), examine.go and finite.go (data
-// against laws), question.go (what is asked), statement.go and typed.go (the
-// model in print). problem.go and repair.go hold what goes wrong and how it is
-// mended.
+// there), gather.go, columns.go, plates.go and conditions.go (data), impute.go
+// (missing entries that stay), ranges.go and priors.go (SEMANTICS C), explain.go
+// (predictors), within.go (group means), examine.go and finite.go (data against
+// laws), question.go (what is asked), statement.go and typed.go (the model in
+// print). problem.go and repair.go hold what goes wrong and how it is mended.
 package model
 
 import (
