@@ -39,8 +39,15 @@ const (
 // Claims on precision hold in every model of the graph (Henckel, Perković &
 // Maathuis 2022; Rotnitzky & Smucler 2020).
 func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
+	return ControlsAmong(g, exposure, outcome, held, nil)
+}
+
+// ControlsAmong gives the verdicts among the rows that some nodes kept, which
+// are held whatever else is and get none.
+func ControlsAmong(g *graph.Graph, exposure, outcome int, held, selected []int) []Control {
 	c := newComparison(g, []int{exposure}, []int{outcome})
-	held = tidy(held)
+	c.keep(selected)
+	held = minus(tidy(held), c.selected)
 	walks := firstPaths(g, exposure, outcome)
 	left := searchBudget
 	reasons := map[int]Forbidden{}
@@ -49,7 +56,7 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 	}
 	var all []Control
 	for v, can := range available(g) {
-		if !can || v == exposure || v == outcome {
+		if !can || v == exposure || v == outcome || slices.Contains(c.selected, v) {
 			continue
 		}
 		j := judgement{c: c, walks: walks, base: minus(held, []int{v}), node: v, budget: &left}
@@ -156,7 +163,7 @@ func (j judgement) helps(with []int) (helps, known bool) {
 		return false, true
 	}
 	left := helpfulSets
-	for z := range j.c.moral(with).separators {
+	for z := range j.c.moral(union(with, j.c.selected)).separators {
 		if needs(union(z, with)) {
 			return true, true
 		}
@@ -171,7 +178,7 @@ func (j judgement) helps(with []int) (helps, known bool) {
 // changed finds a path that is no part of the effect, open while one set is
 // held and closed while the other is.
 func (j judgement) changed(open, closed []int) *Path {
-	before, after := newStatus(j.c.g, open), newStatus(j.c.g, closed)
+	before, after := newStatus(j.c.g, union(open, j.c.selected)), newStatus(j.c.g, union(closed, j.c.selected))
 	for _, p := range j.walks {
 		if before.judge(p); p.Open && p.Kind != Causal {
 			if after.judge(p); !p.Open {
@@ -184,7 +191,7 @@ func (j judgement) changed(open, closed []int) *Path {
 
 // open finds a path that is no part of the effect and open while a set is held.
 func (j judgement) open(held []int) *Path {
-	s := newStatus(j.c.g, held)
+	s := newStatus(j.c.g, union(held, j.c.selected))
 	for _, p := range j.walks {
 		if s.judge(p); p.Open && p.Kind != Causal {
 			return p

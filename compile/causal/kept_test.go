@@ -1,6 +1,7 @@
 package causal
 
 import (
+	"fmt"
 	"math"
 	"math/rand/v2"
 	"slices"
@@ -170,6 +171,17 @@ func TestKeptReadingsAreConsistent(t *testing.T) {
 		}
 		if v.HasProposal && len(selected) > 0 && ReadKept(g, x, y, v.Propose, selected).Among != Valid {
 			fail("the proposal is not valid")
+		}
+		for _, one := range ControlsAmong(g, x, y, held, selected) {
+			base := minus(held, []int{one.Node})
+			with := union(base, []int{one.Node})
+			if slices.Contains(selected, one.Node) || len(selected) == 0 || slices.Contains(held, x) || slices.Contains(held, y) {
+				continue
+			}
+			before, after := ReadKept(g, x, y, base, selected).Among == Valid, ReadKept(g, x, y, with, selected).Among == Valid
+			if (one.Kind == GoodControl) != (!before && after) || before && (one.Kind == BadControl) != !after {
+				fail(fmt.Sprintf("%d: %s; valid without %v, with %v", one.Node, one.Sentence, before, after))
+			}
 		}
 		for _, f := range read.HeldFaults {
 			if slices.Contains(selected, f.Node) {
