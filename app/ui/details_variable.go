@@ -92,8 +92,16 @@ func (x *details) law(s *sheaf, v *study.Variable) {
 		scale = study.Real
 	}
 	for _, f := range catalog.Families() {
-		if f.Predicted >= 0 && model.Suits(f, scale) {
-			options = append(options, f.Name)
+		if f.Predicted < 0 || !model.Suits(f, scale) {
+			continue
+		}
+		options = append(options, f.Name)
+		// Bounds are offered for the law at hand: a list of all would be long.
+		if bounded := catalog.Bounded(f); f.Name == law.Family || law.Family == "" && f == usual ||
+			slices.ContainsFunc(bounded, func(b *catalog.Family) bool { return b.Name == law.Family }) {
+			for _, b := range bounded {
+				options = append(options, b.Name)
+			}
 		}
 	}
 	if law.Family != "" {
@@ -125,7 +133,9 @@ func (x *details) law(s *sheaf, v *study.Variable) {
 				}
 			}
 			hint := "estimated"
-			if a.Greek != "" {
+			if a.Given {
+				hint = "a number or a column"
+			} else if a.Greek != "" {
 				hint = formula.Symbol(a.Greek + "_" + v.ID)
 			}
 			s.field("argument "+a.Name, a.Name, text, hint, func(text string) {

@@ -70,6 +70,7 @@ type Argument struct {
 	Also    []string // other words of the trade that mean the same and may be typed
 	Greek   string   // typed stem of its default parameter: "sigma" gives sigma_bees
 	Support Support
+	Given   bool // must be given, as a number or a column: there is no parameter to estimate
 	Doc     string
 }
 
@@ -124,6 +125,11 @@ func FamilyByName(name string) *Family {
 	for _, f := range families {
 		if fold(f.Name) == name {
 			return f
+		}
+		for _, b := range Bounded(f) {
+			if fold(b.Name) == name {
+				return b
+			}
 		}
 	}
 	return nil

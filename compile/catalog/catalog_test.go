@@ -121,6 +121,8 @@ var settings = map[string][][]float64{
 	"Bernoulli":         {{0.3}, {0.999}},
 	"categorical":       {{0.2, 0.5, 0.3}, {0.9, 0, 0.1}},
 
+	"truncated normal": {{1, 2, -1, 4}, {0, 1, 2, 5}, {0, 1, -9, -1}, {5, 1, 0, math.Inf(1)}},
+
 	"zero-inflated Poisson":           {{4.2, 0.3}, {0.05, 0.01}, {300, 0.9}},
 	"zero-inflated negative binomial": {{7, 2, 0.3}, {120, 30, 0.8}},
 	"zero-inflated binomial":          {{0.3, 12, 0.2}, {0.01, 400, 0.5}},
@@ -132,7 +134,7 @@ var settings = map[string][][]float64{
 }
 
 func eachSetting(t *testing.T, f func(t *testing.T, f *Family, args []float64)) {
-	for _, family := range Families() {
+	for _, family := range append(slices.Clip(Families()), FamilyByName("truncated normal")) {
 		list, ok := settings[family.Name]
 		if !ok {
 			t.Errorf("%s has no settings in this test", family.Name)
@@ -149,6 +151,10 @@ func eachSetting(t *testing.T, f func(t *testing.T, f *Family, args []float64)) 
 func TestQuantileInvertsDistribution(t *testing.T) {
 	probabilities := []float64{1e-9, 1e-6, 1e-3, 0.01, 0.1, 0.25, 0.4999, 0.5, 0.5001, 0.75, 0.9, 0.99, 0.999, 1 - 1e-6, 1 - 1e-9}
 	eachSetting(t, func(t *testing.T, f *Family, args []float64) {
+		rounding := 2e-16
+		if f.Name == "truncated normal" { // a part of a normal's tail
+			rounding = 1e-14
+		}
 		last := math.Inf(-1)
 		for _, u := range probabilities {
 			x := f.Quantile(u, args)
@@ -163,7 +169,7 @@ func TestQuantileInvertsDistribution(t *testing.T) {
 				continue
 			}
 			lo, hi := f.CDF(math.Nextafter(x, math.Inf(-1)), args), f.CDF(math.Nextafter(x, math.Inf(1)), args)
-			if got := f.CDF(x, args); math.Abs(got-u) > 1e-9*min(u, 1-u)+2e-16 && (u < lo || u > hi) {
+			if got := f.CDF(x, args); math.Abs(got-u) > 1e-9*min(u, 1-u)+rounding && (u < lo || u > hi) {
 				t.Errorf("%v: distribution function of the quantile at %v is %v (off by %g)", args, u, got, got-u)
 			}
 		}
@@ -216,6 +222,11 @@ func TestMomentsAgainstIntegration(t *testing.T) {
 				lo, hi = args[0], args[1]
 			case Unit:
 				lo, hi = 0, 1
+			case Reals:
+				hi = f.Quantile(1-1e-14, args)
+				if f.Name == "truncated normal" {
+					lo, hi = max(lo, args[2]), min(hi, args[3])
+				}
 			case Turn:
 				lo, hi = args[0]-math.Pi, args[0]+math.Pi
 			case Above:
@@ -369,5 +380,31 @@ func TestExtremeArguments(t *testing.T) {
 			}
 		}
 		visit(nil)
+	}
+}
+
+// A censored value has the distribution that it would have if it were seen.
+func TestBoundsLeaveTheValueAlone(t *testing.T) {
+	for _, base := range []string{"normal", "logistic", "log-normal", "Weibull", "exponential"} {
+		f := FamilyByName(base)
+		args := settings[base][0]
+		for _, b := range Bounded(f) {
+			if FamilyByName(b.Name) != b {
+				t.Errorf("%s is not found by its name", b.Name)
+			}
+			if b.Name == "truncated normal" {
+				continue
+			}
+			more := append(slices.Clone(args), 1)
+			if b.Mean(more) != f.Mean(args) || b.SD(more) != f.SD(args) || b.Quantile(0.3, more) != f.Quantile(0.3, args) || b.CDF(1.5, more) != f.CDF(1.5, args) {
+				t.Errorf("%s differs from %s in what it says of the value", b.Name, base)
+			}
+			if last := b.Arguments[len(b.Arguments)-1]; !last.Given || b.Natural.Args != len(b.Arguments) || b.Linked.Args != len(b.Arguments) || b.Doc == f.Doc {
+				t.Errorf("%s is not complete", b.Name)
+			}
+		}
+	}
+	if Bounded(FamilyByName("gamma")) != nil {
+		t.Error("a gamma has bounds")
 	}
 }

@@ -318,7 +318,7 @@ var families = withZeros([]*Family{
 		Name: "binomial", Support: UpTo, Discrete: true,
 		Arguments: []Argument{
 			{Name: "probability", Greek: "p", Support: Unit, Doc: "chance of success in one trial"},
-			{Name: "trials", Greek: "n", Support: Counts, Doc: "number of trials, known"},
+			{Name: "trials", Greek: "n", Support: Counts, Given: true, Doc: "number of trials, known"},
 		},
 		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.Binomial, Linked: kernel.BinomialLogit,
@@ -332,7 +332,7 @@ var families = withZeros([]*Family{
 		Arguments: []Argument{
 			{Name: "probability", Also: []string{"mean"}, Greek: "p", Support: Unit, Doc: "mean chance of success in one trial"},
 			{Name: "precision", Greek: "kappa", Support: Positives, Doc: "how alike the chances of different rows are: at infinity a binomial"},
-			{Name: "trials", Greek: "n", Support: Counts, Doc: "number of trials, known"},
+			{Name: "trials", Greek: "n", Support: Counts, Given: true, Doc: "number of trials, known"},
 		},
 		Predicted: 0, Link: Logit, Centred: true,
 		Natural: kernel.BetaBinomial, Linked: kernel.BetaBinomialLogit,

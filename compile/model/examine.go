@@ -23,6 +23,9 @@ func (b *builder) examine(string) {
 		if d.law.Trials != nil {
 			b.trials(d)
 		}
+		if !b.broken {
+			b.bounds(d)
+		}
 	}
 }
 

@@ -447,10 +447,18 @@ func (b *builder) parseArguments(d *draft) {
 			d.given[i] = e
 		}
 	}
-	if i := f.Argument("trials"); i >= 0 && d.given[i] == nil && !b.broken {
-		b.stop(Problem{Code: "no-trials", Variable: v.ID, Place: "argument",
-			Message: fmt.Sprintf("%s ~ %s: out of how many trials? Give a number or a column.", v.ID, f.Name),
-			Repairs: b.trialRepairs(v)})
+	for i, a := range f.Arguments {
+		switch {
+		case !a.Given || d.given[i] != nil || b.broken:
+		case a.Name == "trials":
+			b.stop(Problem{Code: "no-trials", Variable: v.ID, Place: "argument",
+				Message: fmt.Sprintf("%s ~ %s: out of how many trials? Give a number or a column.", v.ID, f.Name),
+				Repairs: b.trialRepairs(v)})
+		default:
+			b.stop(Problem{Code: "no-argument", Variable: v.ID, Place: "argument",
+				Message: fmt.Sprintf("%s ~ %s: what is its *%s*? It is %s.", v.ID, f.Name, a.Name, a.Doc),
+				Repairs: []Repair{b.defaultFamily(v, scaleOf(v))}})
+		}
 	}
 }
 
