@@ -81,7 +81,7 @@ func (r *reader) missing(f *Findings) {
 		}
 		f.add(&s.Section, Finding{Key: "missing", Kind: "missing, " + s.Missing.Kind.String(), Sentence: s.Missing.Sentence, Nodes: of})
 	}
-	if f.Lacks != "" || len(f.Outcomes) != 1 {
+	if f.Lacks != "" {
 		return
 	}
 	// Of the held set, or of the proposed one where that is not enough: else the
@@ -90,8 +90,7 @@ func (r *reader) missing(f *Findings) {
 	if set := proposalOf(f.Adjustment.Adjustment); set != nil && f.Verdict.Kind != causal.Readable {
 		on = union(f.Exposures, set)
 	}
-	y := f.Outcomes[0]
-	on = slices.DeleteFunc(on, func(v int) bool { return v == y || !g.Measured[v] || v >= f.Sheet })
+	on = slices.DeleteFunc(on, func(v int) bool { return slices.Contains(f.Outcomes, v) || !g.Measured[v] || v >= f.Sheet })
 	var lacking []string
 	known := false
 	for _, v := range union(on, f.Outcomes) {
@@ -110,9 +109,10 @@ func (r *reader) missing(f *Findings) {
 		})
 		return
 	}
-	if !known {
+	if !known || len(f.Outcomes) != 1 {
 		return
 	}
+	y := f.Outcomes[0]
 	s.CompleteCase = causal.ReadCompleteCase(r.sheet.drawn, s.Indicators, y, on)
 	if f.Reading == nil || f.Adjustment.Sets == nil || f.direct() {
 		kind := "complete rows, valid"
