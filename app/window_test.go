@@ -30,6 +30,9 @@ type said struct {
 	Running, Stale bool
 	FitError       string
 	Popover, Dirty bool
+	Left           bool // more is being read
+	Subject        string
+	Lines          []string
 	Focus          string
 	Banner         string
 	Selected       []string
@@ -126,6 +129,14 @@ func TestWindow(t *testing.T) {
 	}
 	h.key("h")
 	h.until("the first verdict", func(s said) bool { return s.Kind == "confounded" })
+
+	// The Reading drawer has a set to hold, too.
+	h.until("everything read", func(s said) bool { return !s.Left })
+	h.click(h.last().Buttons["read adjustment"])
+	h.until("a set in the drawer", func(s said) bool {
+		return s.Subject == "adjustment" && slices.ContainsFunc(s.Lines, func(line string) bool { return strings.Contains(line, "Holding rain") })
+	})
+	h.shot("3-reading")
 
 	// Hold what it says.
 	h.click(h.last().Buttons["hold them"])

@@ -128,7 +128,7 @@ func (p *readingPage) fillNav() {
 	for _, s := range subjects(p.d) {
 		rows = append(rows, rollRow{
 			key:   s.name,
-			guess: func(float32) float32 { return p.line + 3 },
+			guess: func(float32) float32 { return p.line + 5 },
 			build: func() fyne.CanvasObject { return p.subject(s) },
 		})
 	}
@@ -155,7 +155,7 @@ func (p *readingPage) subject(s *subject) *press {
 		}
 		return skin{radius: 4}
 	}, func() { p.turn(s.name) })
-	x.padX, x.padY = 8, 1
+	x.padX, x.padY, x.minH = 8, 1, p.line+5
 	x.selected = s.name == p.chosen
 	x.key = "read " + s.name
 	x.onKey = func(key fyne.KeyName) bool {

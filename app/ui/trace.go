@@ -63,7 +63,11 @@ type said struct {
 	Banner   string            `json:"banner,omitempty"`
 	Selected []string          `json:"selected,omitempty"`
 	Rival    string            `json:"rival"`
-	Page     string            `json:"page"` // of the drawer
+	Page     string            `json:"page"`                 // of the drawer
+	Subject  string            `json:"subject,omitempty"`    // of the Reading page
+	Lines    []string          `json:"lines,omitempty"`      // the sentences that it lists, the first few
+	Left     bool              `json:"left,omitempty"`       // more is being read
+	InHand   string            `json:"considered,omitempty"` // what letting go of the arrow in the hand would draw
 	Path     string            `json:"path,omitempty"`
 	Dirty    bool              `json:"dirty,omitempty"`
 	Undo     string            `json:"undo,omitempty"`
@@ -114,6 +118,12 @@ func (d *desk) said() said {
 		Rival: v.Rival.Name, Page: d.drawer.page(), Path: v.Path, Dirty: v.Dirty, Undo: v.Undo,
 		Selected: slices.Clone(d.pick.Nodes), Popover: d.win.Canvas().Overlays().Top() != nil, Focus: d.focus(), Held: []string{},
 		Nodes: make(map[string][2]int), Buttons: make(map[string][2]int),
+	}
+	if p, ok := d.drawer.pages[0].(*readingPage); ok {
+		s.Subject, s.InHand, s.Left = p.chosen, v.Considered, v.Findings == nil || !v.Findings.Done
+		for i := range p.lines[:min(len(p.lines), 12)] {
+			s.Lines = append(s.Lines, p.lines[i].text)
+		}
 	}
 	for _, a := range d.pick.Arrows {
 		s.Selected = append(s.Selected, a[0]+" → "+a[1])
@@ -208,6 +218,11 @@ func (d *desk) marks() map[string]fyne.CanvasObject {
 		case *drawer:
 			for i, t := range p.tabs.items {
 				m["tab "+p.pages[i].name()] = t
+			}
+			if r, ok := p.pages[0].(*readingPage); ok && p.page() == r.name() {
+				for i, o := range r.nav.live {
+					m["read "+r.nav.rows[i].key] = o
+				}
 			}
 		}
 	}
