@@ -9,8 +9,8 @@ import (
 	"fyne.io/fyne/v2"
 
 	"arrowroot/app/words"
+	"arrowroot/compile/mistake"
 	"arrowroot/compile/study"
-	"arrowroot/compile/table"
 )
 
 // asker is the popover in which a question is put together. It edits a draft
@@ -237,27 +237,9 @@ func (d *desk) setExposure(id string) {
 }
 
 // usualContrast is a first pair of values to compare, until the user says
-// others: the outer eighths of the data, or the ends of the levels.
+// others: that which a question without any is offered.
 func (d *desk) usualContrast(id string) (from, to *study.Setting) {
-	v := d.view.Study.Variable(id)
-	switch {
-	case v == nil || v.Unmeasured:
-		return nil, nil
-	case len(v.Levels) > 1:
-		return &study.Setting{Word: v.Levels[0]}, &study.Setting{Word: v.Levels[len(v.Levels)-1]}
-	case v.Scale == study.Binary:
-		return &study.Setting{Number: 0}, &study.Setting{Number: 1}
-	}
-	c := d.view.Table.Column(v.Column)
-	if v.Column == "" || c == nil || c.Kind != table.Numeric {
-		return nil, nil
-	}
-	q := table.Quantiles(divided(c.Numbers, v.Divide), 4) // at 1/8, 3/8, 5/8 and 7/8
-	if len(q) != 4 || !(q[0] < q[3]) {
-		return nil, nil
-	}
-	low, high := rounded(q[0], q[3]-q[0]), rounded(q[3], q[3]-q[0])
-	return &study.Setting{Number: low}, &study.Setting{Number: high}
+	return mistake.Contrast(d.view.Study.Variable(id), d.view.Table)
 }
 
 // rounded cuts x to a tenth of the order of size: 43.7 of a width of 20 is 44.
