@@ -34,7 +34,7 @@ func (n *nameEntry) open(naming scene.Naming) {
 	n.SetPlaceHolder(naming.Hint())
 	n.MultiLine, n.Wrapping = naming.Note, fyne.TextWrapOff
 	if naming.Note {
-		n.Wrapping = fyne.TextWrapWord
+		n.Wrapping = fyne.TextWrapBreak // wrapped at words, Fyne 2.8 loses a space that is typed at the end of a line
 		n.SetMinRowsVisible(3)
 	}
 	n.shift = false

@@ -106,3 +106,16 @@ func TestNoteIsDrawn(t *testing.T) {
 		t.Errorf("%d lines", lines)
 	}
 }
+
+// Every space that is typed into a note stays, wherever the line ends.
+func TestNoteKeepsItsSpaces(t *testing.T) {
+	b := newBench(t, pair())
+	b.SetTool(scene.NoteTool)
+	b.click(100, 320, desktop.MouseButtonPrimary, 0)
+	b.drain()
+	const text = "temp and hours were read off the trap sheet of every day in may and in june by the same two people"
+	test.Type(b.entry, text)
+	if b.entry.Text != text {
+		t.Errorf("typed %q, it has %q", text, b.entry.Text)
+	}
+}

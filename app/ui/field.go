@@ -66,7 +66,7 @@ func (f *field) fit() {
 func (k *kit) note(text, hint string, commit func(string)) *field {
 	f := k.field(text, hint, commit)
 	f.MultiLine = true
-	f.Wrapping = fyne.TextWrapWord
+	f.Wrapping = fyne.TextWrapBreak // wrapped at words, Fyne 2.8 loses a space that is typed at the end of a line
 	f.SetMinRowsVisible(4)
 	return f
 }

@@ -190,12 +190,13 @@ func (p *prose) limit(pieces []piece, height, width float32) ([]piece, float32) 
 	return pieces, bottom
 }
 
-// splitWords cuts text after spaces, keeping them.
+// splitWords cuts text after spaces, keeping them; a number keeps its percent
+// sign.
 func splitWords(text string) []string {
 	var out []string
 	start := 0
 	for i := 1; i < len(text); i++ {
-		if text[i-1] == ' ' && text[i] != ' ' {
+		if text[i-1] == ' ' && text[i] != ' ' && text[i] != '%' {
 			out = append(out, text[start:i])
 			start = i
 		}
