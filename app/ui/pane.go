@@ -51,14 +51,6 @@ func (p *pane) fill(keyed map[string]fyne.Focusable, objects ...fyne.CanvasObjec
 	}
 }
 
-// focus gives the keyboard to the control of a key, if there is one.
-func (p *pane) focus(key string) {
-	f, ok := p.keys[key]
-	if c := fyne.CurrentApp().Driver().CanvasForObject(p); ok && c != nil {
-		c.Focus(f)
-	}
-}
-
 func (p *pane) arrange() {
 	s := p.Size()
 	if s.Width <= 0 {
