@@ -45,6 +45,12 @@ func rowsOf(m *model.Model, asked *model.Subset, n int) *rowset {
 			pick[i] = asked.Rows[pick[i]]
 		}
 	}
+	return rowsAt(m, pick)
+}
+
+// rowsAt takes these used rows.
+func rowsAt(m *model.Model, pick []int) *rowset {
+	n := len(pick)
 	s := &rowset{n: n, picked: pick}
 	for _, p := range m.Plates {
 		of := make([]int32, n)
