@@ -258,5 +258,8 @@ func TestMistakesFollowTheHand(t *testing.T) {
 	s.Undo()
 	w.until(t, "it again", told)
 	must(t, s.Do(s.View().Mistakes[0].Repairs[0].Edit))
-	w.until(t, "silence", func() bool { v := s.View(); return v.Reading != nil && len(v.Mistakes)+len(v.Aside) == 0 && len(v.Question.Held) == 0 })
+	w.until(t, "silence", func() bool {
+		v := s.View()
+		return v.Reading != nil && len(v.Mistakes)+len(v.Aside) == 0 && len(v.Question.Held) == 0
+	})
 }
