@@ -30,6 +30,8 @@ func TestPictures(t *testing.T) {
 			return fitted(in)
 		}},
 		{"plates", 1, plates},
+		{"pointed", 1.5, func() Input { return pointed(Light()) }},
+		{"pointed_dark", 1, func() Input { return pointed(Dark()) }},
 		{"gestures", 1, gestures},
 		{"big", 1, func() Input { return fitted(bigInput()) }},
 	} {
@@ -69,6 +71,21 @@ func marks() Input {
 	in.Rival.Layout.At["flowers"] = study.Point{X: 520, Y: 224}
 	in.Limits = []string{"arable"}
 	in.Study.Variable("flowers").Computed = "hedge * 2"
+	return in
+}
+
+// pointed shows every kind of mark that a list beside the sheet can set.
+func pointed(p Palette) Input {
+	in := hedgeInput(p)
+	in.Mark = &Mark{
+		Trails: []Trail{
+			{Look: EffectTrail, Legs: []Leg{{From: "hedge", To: "bees"}}},
+			{Look: ClosedTrail, Legs: []Leg{{From: "soil", To: "hedge"}, {From: "soil", To: "flowers"}}, Stops: []string{"soil"}},
+		},
+		Ring: []string{"bees"}, Box: []string{"soil"},
+		Outer: []string{"attitude", "hedge", "pesticide"}, Inner: []string{"attitude", "pesticide"},
+		Turn: [][2]string{{"arable", "pesticide"}}, Apart: [][2]string{{"arable", "soil"}}, Offer: [][2]string{{"flowers", "pesticide"}},
+	}
 	return in
 }
 
