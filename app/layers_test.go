@@ -24,12 +24,13 @@ const layers = `
 !compile/model    : compile/study compile/graph compile/formula compile/table compile/catalog compile/causal compile/kernel
 !compile/density  : compile/ops compile/kernel compile/catalog compile/formula compile/model
 !compile/effect   : compile/catalog compile/formula compile/model compile/graph compile/causal compile/study
+!compile/replicate : compile/effect compile/model compile/study compile/catalog
 !compile/evidence : compile/study compile/graph compile/table compile/causal compile/formula compile/model
 !compile/sensitivity : compile/study compile/graph compile/table compile/causal compile/kernel
 !compile/mistake  : compile/study compile/graph compile/table compile/causal
 !canvas/scene     : canvas/draw compile/study compile/graph compile/causal
 canvas            : canvas/draw canvas/scene compile/study compile/graph compile/causal
-!app/fit          : compile/* infer infer/summary
+!app/fit          : compile/* infer infer/summary infer/score
 !app/findings     : app/fit app/words compile/*
 !app/session      : app/fit app/findings compile/* infer
 !app/words        : app/fit compile/mistake compile/model compile/study infer/summary
