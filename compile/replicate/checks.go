@@ -191,7 +191,11 @@ func (s *sample) calibration() *Check {
 		return nil
 	}
 	table := s.meansIn(parts, shareOf)
-	k := s.distance(Calibration, "", table, parts.sizes)
+	weights := make([]float64, parts.count) // one over what shares of so many vary by
+	for b, p := range parts.means(predicted) {
+		weights[b] = parts.sizes[b] / math.Max(p*(1-p), 1e-3)
+	}
+	k := s.distance(Calibration, "", table, weights)
 	k.Picture = profile(table)
 	k.Picture.Kind, k.Picture.Across, k.Picture.Up = Points, "predicted probability", "share that happened"
 	k.Picture.X = parts.means(predicted)

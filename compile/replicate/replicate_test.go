@@ -189,8 +189,16 @@ var misfits = []misfit{
 	{"a normal law for a skew variable", "shape ", func(t *testing.T, f *field) (*model.Model, [][]float64) {
 		return f.normal(t, f.each(func(x float64) float64 { return x + f.rng.ExpFloat64() }))
 	}},
-	{"a chance that rises no further than 40 %", "predicted against happened ", func(t *testing.T, f *field) (*model.Model, [][]float64) {
-		y := f.each(func(x float64) float64 { return f.yes(0.4 / (1 + math.Exp(-8*(x+0.5)))) })
+	{"a logit line for a chance that rises, then falls", "predicted against happened ", func(t *testing.T, f *field) (*model.Model, [][]float64) {
+		y := f.each(func(x float64) float64 {
+			switch {
+			case x < -0.3:
+				return f.yes(0.05)
+			case x < 0.6:
+				return f.yes(0.7)
+			}
+			return f.yes(0.3)
+		})
 		return f.bernoulli(t, y), f.laplace(y, logistic, Replicates)
 	}},
 }
