@@ -33,8 +33,8 @@ canvas            : canvas/draw canvas/scene compile/study compile/graph compile
 !app/fit          : compile/* infer infer/summary infer/score
 !app/findings     : app/fit app/words compile/*
 !app/session      : app/fit app/findings compile/* infer
-!app/words        : app/fit compile/mistake compile/model compile/study infer/summary
-!app/paint        : app/fit app/words canvas/draw canvas/scene compile/sensitivity infer/summary
+!app/words        : app/fit compile/mistake compile/model compile/replicate compile/study infer/summary
+!app/paint        : app/fit app/words canvas/draw canvas/scene compile/replicate compile/sensitivity infer/summary
 !app/report       : app/fit app/findings app/paint app/words canvas/draw canvas/scene compile/*
 !app/batch        : app/fit app/findings app/report app/session app/words compile/* infer infer/summary
 app/ui            : app/fit app/findings app/paint app/words app/report app/session canvas canvas/* compile/* infer infer/summary assets

@@ -7,6 +7,7 @@ type PaintKind string
 const (
 	EffectPaint  PaintKind = "effect"
 	LearnedPaint PaintKind = "learned"
+	FitPaint     PaintKind = "fit"
 	TrustPaint   PaintKind = "trust"
 )
 
@@ -20,7 +21,7 @@ type Paint struct {
 
 // NodePaint is the paint of one node.
 type NodePaint struct {
-	Bin     int    // effect −2…2; learned and trust 0…3
+	Bin     int    // effect −2…2; learned, fit and trust 0…3
 	Sign    string // "+", "−", "±" or "": printed beside the name
 	Hatched bool   // too unsure to say
 	Plain   bool   // does not descend from the exposure: no colour at all

@@ -41,7 +41,7 @@ func (c *Checks) judge() {
 			k.Failed = k.Far > 1 && k.Tail <= allowed
 			k.Words = Reproduced
 			if k.Failed {
-				k.Words = "not reproduced: " + k.wrong()
+				k.Words = "not reproduced: " + k.Wrong()
 			}
 			k.scores = nil
 		}
@@ -71,8 +71,8 @@ func compareWorst(a, b *Check) int {
 	return cmp.Compare(b.Far, a.Far)
 }
 
-// wrong says how the data differ from what the model gives.
-func (k *Check) wrong() string {
+// Wrong says how the data differ from what the model gives.
+func (k *Check) Wrong() string {
 	more := k.Observed > k.Centre
 	either := func(up, down string) string {
 		if more {
