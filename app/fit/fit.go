@@ -6,7 +6,8 @@
 // be answered yet), sample.go (blocks in rounds), quantities.go (parameters as
 // numbers), contrast.go (crude, held and full model side by side), onelaw.go
 // (one of them), number.go (a contrast as a number), paint.go (what the data
-// taught).
+// taught); compare.go (rivals by how well they predict), comparable.go (which
+// can be compared), predicting.go (the score of one).
 package fit
 
 import (

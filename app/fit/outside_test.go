@@ -64,17 +64,23 @@ func run(t *testing.T, req Request) *Result {
 	return r
 }
 
-// fromJSON reads one entry of testdata/studies/expected.json.
-func fromJSON(t *testing.T, key string, into any) {
+// readJSON reads a file of testdata/studies.
+func readJSON(t *testing.T, name string, into any) {
 	t.Helper()
-	text, err := os.ReadFile(filepath.Join(studies, "expected.json"))
+	text, err := os.ReadFile(filepath.Join(studies, name))
 	if err != nil {
 		t.Fatal(err)
 	}
-	var all map[string]json.RawMessage
-	if err := json.Unmarshal(text, &all); err != nil {
+	if err := json.Unmarshal(text, into); err != nil {
 		t.Fatal(err)
 	}
+}
+
+// fromJSON reads one entry of testdata/studies/expected.json.
+func fromJSON(t *testing.T, key string, into any) {
+	t.Helper()
+	var all map[string]json.RawMessage
+	readJSON(t, "expected.json", &all)
 	if err := json.Unmarshal(all[key], into); err != nil {
 		t.Fatalf("%s: %v", key, err)
 	}

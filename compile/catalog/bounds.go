@@ -36,6 +36,7 @@ func boundedOf(f *Family) []*Family {
 	with := func(name, doc, source string, kernels func(*kernel.Density, kernel.Tails) *kernel.Density, bounds ...Argument) *Family {
 		b := *f
 		b.Name = name + " " + f.Name
+		b.Masses = true
 		b.Doc, b.Source = f.Doc+"; "+doc, source
 		b.Natural, b.Linked = kernels(f.Natural, of[0]), kernels(f.Linked, of[1])
 		b.Arguments = append(append([]Argument(nil), f.Arguments...), bounds...)

@@ -88,6 +88,11 @@ type Family struct {
 	// stand in where there is no expected value, or none on a line.
 	Centred bool
 
+	// Masses says that a law of measurements gives some values a probability
+	// and others a density, so that its scores are those of no other such law
+	// (SEMANTICS D1).
+	Masses bool
+
 	// Natural takes the arguments as named above; a Levels family takes the
 	// K probabilities instead. Linked takes the predicted argument on the
 	// link scale first (K of them for a softmax), then the others in order

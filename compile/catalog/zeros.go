@@ -39,6 +39,7 @@ func hurdle(f *Family) *Family {
 	z.Natural, z.Linked = kernel.Hurdle(f.Natural, f.Discrete), kernel.Hurdle(f.Linked, f.Discrete)
 	if !f.Discrete {
 		z.Support = NonNegatives
+		z.Masses = true
 	}
 	// zero is what the family itself gives to 0, and the hurdle takes away.
 	zero := func(args []float64) float64 {

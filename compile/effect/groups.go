@@ -18,22 +18,30 @@ type freshVector struct {
 
 // freshOf lists the vectors that a plan reads and that vary by a plate.
 func (p *planner) freshOf(plan *plan) ([]freshVector, error) {
-	read := make(map[int]bool) // places in the draw
-	look := func(l *law) {
-		if l != nil {
-			for _, n := range l.predictors {
-				n.vectors(read)
-			}
-			for _, n := range l.arguments {
-				n.vectors(read)
-			}
-		}
-	}
+	var laws []*law
 	for _, st := range plan.steps {
-		look(st.law)
+		laws = append(laws, st.law)
 	}
 	for _, t := range plan.targets {
-		look(t.law)
+		laws = append(laws, t.law)
+	}
+	return p.vectorsOf(laws...)
+}
+
+// vectorsOf lists the vectors that laws read and that vary by a plate; a nil
+// law reads none.
+func (p *planner) vectorsOf(laws ...*law) ([]freshVector, error) {
+	read := make(map[int]bool) // places in the draw
+	for _, l := range laws {
+		if l == nil {
+			continue
+		}
+		for _, n := range l.predictors {
+			n.vectors(read)
+		}
+		for _, n := range l.arguments {
+			n.vectors(read)
+		}
 	}
 	var out []freshVector
 	for i, q := range p.m.Parameters {
