@@ -256,20 +256,16 @@ func printFindings(j *job, f *findings.Findings) *readingOut {
 		Controls: map[string]verdictOut{}, FrontDoors: []frontDoorOut{}, Instruments: []instrumentOut{}, ArrowInstruments: []instrumentOut{}, Laws: []lawOut{},
 		Basis: []independenceOut{}, Pairs: []pairOut{}, Functionals: []functionalOut{}, Tetrads: [][4]string{}, Rivals: []likenessOut{}, Sections: []sectionOut{},
 	}
-	out.ByHolding = f.Verdict.Kind == causal.Readable || f.Reading != nil && f.Reading.HeldValid && len(f.Selected) == 0 && f.Ask.Effect != study.DirectEffect
+	// The reading is that of the total effect in all rows.
+	total := len(f.Given) == 0 && f.Ask.Effect != study.DirectEffect
+	out.ByHolding = f.Verdict.Kind == causal.Readable || f.Reading != nil && f.Reading.HeldValid && len(f.Selected) == 0 && total
 	if f.Reading != nil {
-		out.Identified = f.Reading.Identifiable
+		out.Identified = f.Reading.Identifiable && total
 		for _, one := range f.Reading.HeldFaults {
 			out.HeldFaults[g.Names[one.Node]] = one.Reason
 		}
 		for _, one := range f.Reading.PlateFaults {
 			out.HeldFaults[g.Plates[one.Plate].Name] = one.Reason
-		}
-		for _, one := range f.Reading.Forbidden {
-			if one.Node < f.Sheet {
-				out.Forbidden = append(out.Forbidden, g.Names[one.Node])
-				out.ForbiddenWhy[g.Names[one.Node]] = one.Reason
-			}
 		}
 	}
 	if f.Paths != nil {
@@ -279,6 +275,7 @@ func printFindings(j *job, f *findings.Findings) *readingOut {
 		}
 	}
 	if a := f.Adjustment; a != nil {
+		out.Identified = out.Identified || len(a.Sets) > 0
 		out.adjust(f, a)
 	}
 	if f.Controls != nil {
@@ -290,7 +287,7 @@ func printFindings(j *job, f *findings.Findings) *readingOut {
 		out.Direct = &directOut{of(d.Fixed), d.Effect, sets(f, d.Direct.Adjustment.Sets), d.Identification.Identified && len(f.Selected) == 0 || d.Direct.Adjustment.Sets != nil, d.Sentence}
 	}
 	if b := f.Beyond; b != nil {
-		out.Identified = out.Identified || b.Identification.Identified && len(f.Given) == 0 && len(f.Selected) == 0
+		out.Identified = out.Identified || b.Identification.Identified && len(f.Selected) == 0
 		out.Estimand, out.EstimandHeld = printEstimand(f, b.Identification), printEstimand(f, b.ByHolding)
 		for _, d := range b.Doors {
 			out.FrontDoors = append(out.FrontDoors, frontDoorOut{of(d.Through), of(d.Given)})
@@ -353,8 +350,9 @@ func (out *readingOut) adjust(f *findings.Findings, a *findings.Adjustment) {
 	if a.Cheapest != nil && a.Aim.Costs != nil {
 		out.Cheapest, out.Cost = names(g, a.Cheapest), &a.Cost
 	}
-	if f.Reading == nil {
-		out.Forbidden = names(g, a.Forbidden)
+	for _, one := range f.Forbidden() {
+		out.Forbidden = append(out.Forbidden, g.Names[one.Node])
+		out.ForbiddenWhy[g.Names[one.Node]] = one.Reason
 	}
 	out.WouldHelp, out.HelpTogether = names(g, a.Culprits), a.CulpritsAll
 	for _, arc := range a.CulpritArcs {

@@ -29,11 +29,17 @@ func (r *reader) adjustment(f *Findings) {
 	a := &Adjustment{Section: Section{Name: AdjustmentSection}}
 	g := f.within()
 	found := causal.Adjust(g, causal.Aim{
-		Exposures: exposures, Outcomes: f.Outcomes, Forced: union(f.Selected, f.nodes(f.Ask.Forced)), Unavailable: f.nodes(f.Ask.Unavailable),
+		Exposures: exposures, Outcomes: f.Outcomes, Forced: slices.Concat(f.Selected, f.Given, f.nodes(f.Ask.Forced)), Unavailable: f.nodes(f.Ask.Unavailable),
 		Costs: r.sheet.costs, MaxSets: r.limits.Sets,
 	})
+	if len(f.givenBelow(exposures)) > 0 { // holding averages over values that the exposure changes
+		found.Sets, found.MoreSets, found.Cheapest, found.Optimal, found.BestMinimal, found.BestSmallest = nil, false, nil, nil, nil, nil
+	}
 	a.Adjustment = found
 	a.Summary = found.Sentence
+	if len(f.Given) > 0 {
+		a.Summary = f.givenSummary(a.Adjustment)
+	}
 	if len(f.Selected) > 0 {
 		a.Adjustment = f.freed(found)
 		a.Summary = f.selectedSummary(a.Adjustment)
@@ -41,11 +47,14 @@ func (r *reader) adjustment(f *Findings) {
 	if id := f.unmeasured(); id != "" {
 		a.Adjustment = &causal.Adjustment{Graph: found.Graph, Aim: found.Aim, Effect: found.Effect, Forbidden: found.Forbidden}
 		a.Summary = fmt.Sprintf("The effect of %s on %s cannot be read: %s was not measured.", words.List(f.Ask.Exposures), words.List(f.Ask.Outcomes), id)
+	} else if len(f.Given) > 0 {
+		// What would help the effect in all rows need not help among some.
 	} else if found.Sets == nil && f.Reading != nil && !f.direct() {
 		a.Culprits, a.CulpritArcs, a.CulpritsAll = f.Reading.Culprits, f.Reading.CulpritArcs, f.Reading.CulpritsAll
 	} else if found.Sets == nil && len(f.Selected) == 0 {
 		a.Culprits, a.CulpritArcs, a.CulpritsAll = causal.Culprits(g, exposures, f.Outcomes)
 	}
+	f.Adjustment = a
 	f.setFindings(a, r.sheet.costs != nil)
 	f.groupFindings(a)
 	f.forbiddenFindings(a)
@@ -53,7 +62,6 @@ func (r *reader) adjustment(f *Findings) {
 	if a.MoreSets {
 		a.LeftOut = fmt.Sprintf("The first %s sets are listed; there are more.", words.Whole(float64(len(a.Sets))))
 	}
-	f.Adjustment = a
 	f.judge(exposures)
 }
 
@@ -84,6 +92,39 @@ func (f *Findings) groupFindings(a *Adjustment) {
 			f.add(&a.Section, Finding{Key: "within " + plate, Kind: "within groups", Nodes: one.Sets[0], Sentence: fmt.Sprintf("Comparing within each %s gives the effect, with %s held besides.", plate, words.List(f.names(one.Sets[0])))})
 		}
 	}
+}
+
+// givenBelow lists what is given though it descends from what is set.
+func (f *Findings) givenBelow(exposures []int) []int {
+	var below []int
+	for v, is := range f.Graph.Descendants(exposures...) {
+		if is && slices.Contains(f.Given, v) {
+			below = append(below, v)
+		}
+	}
+	return below
+}
+
+// effectAsked names the effect with what is given.
+func (f *Findings) effectAsked() string {
+	effect := fmt.Sprintf("the effect of %s on %s", words.List(f.Ask.Exposures), words.List(f.Ask.Outcomes))
+	if len(f.Given) > 0 {
+		effect += fmt.Sprintf(" among rows alike in %s", words.List(f.names(f.Given)))
+	}
+	return effect
+}
+
+func (f *Findings) givenSummary(a *causal.Adjustment) string {
+	below := f.givenBelow(a.Aim.Exposures)
+	switch {
+	case len(below) > 0:
+		return fmt.Sprintf("Holding anything cannot give %s: %s acts on %s.", f.effectAsked(), words.List(f.names(a.Aim.Exposures)), words.List(f.names(below)))
+	case a.Sets == nil:
+		return fmt.Sprintf("No set of measured variables gives %s.", f.effectAsked())
+	case len(minus(a.Sets[0], union(f.Given, f.Selected))) == 0:
+		return fmt.Sprintf("Nothing more need be held to read %s.", f.effectAsked())
+	}
+	return fmt.Sprintf("Hold %s to read %s.", words.List(f.names(minus(proposalOf(a), union(f.Given, f.Selected)))), f.effectAsked())
 }
 
 // freed is an adjustment whose sets leave out what limits the rows.
@@ -158,20 +199,40 @@ func (f *Findings) setFindings(a *Adjustment, priced bool) {
 	}
 }
 
-// forbiddenFindings names what may be in no set, with the arrows that make it
-// so; for several exposures, without them.
-func (f *Findings) forbiddenFindings(a *Adjustment) {
-	if f.Reading == nil || len(a.Aim.Exposures) > 1 {
-		for _, v := range minus(a.Forbidden, f.Outcomes) {
-			name := f.Graph.Names[v]
-			f.add(&a.Section, Finding{Key: "forbidden " + name, Kind: "forbidden", Nodes: []int{v}, Sentence: fmt.Sprintf("Leave %s free: it carries part of the effect, or is an effect of what does.", name)})
-		}
-		return
+// Forbidden lists what on the sheet may be in no set, the outcomes among it,
+// with the arrows that make it so; for several exposures, without them.
+func (f *Findings) Forbidden() []causal.Forbidden {
+	if f.Adjustment == nil {
+		return nil
 	}
-	for _, one := range f.Reading.Forbidden {
-		if name := f.Graph.Names[one.Node]; one.Node < f.Sheet && !slices.Contains(f.Outcomes, one.Node) {
+	var all []causal.Forbidden
+	if f.Reading != nil && len(f.Adjustment.Aim.Exposures) == 1 {
+		for _, one := range f.Reading.Forbidden {
+			if one.Node < f.Sheet {
+				all = append(all, one)
+			}
+		}
+		return all
+	}
+	for _, v := range f.onSheet(f.Adjustment.Forbidden) {
+		reason := "it carries part of the effect, or is an effect of what does"
+		if slices.Contains(f.Outcomes, v) {
+			reason = "it is the outcome"
+		}
+		all = append(all, causal.Forbidden{Node: v, Reason: reason})
+	}
+	return all
+}
+
+func (f *Findings) forbiddenFindings(a *Adjustment) {
+	for _, one := range f.Forbidden() {
+		if name := f.Graph.Names[one.Node]; !slices.Contains(f.Outcomes, one.Node) {
+			nodes := one.Path
+			if nodes == nil {
+				nodes = []int{one.Node}
+			}
 			f.add(&a.Section, Finding{
-				Key: "forbidden " + name, Kind: "forbidden", Nodes: one.Path, Edges: along(f.Graph, one.Path),
+				Key: "forbidden " + name, Kind: "forbidden", Nodes: nodes, Edges: along(f.Graph, one.Path),
 				Sentence: fmt.Sprintf("Leave %s free: %s.", name, one.Reason),
 			})
 		}

@@ -29,8 +29,13 @@ func (r *reader) controls(f *Findings) {
 	if f.Verdict.HasProposal { // beside what is not enough, everything that is idle would look bad
 		c.Beside = f.Verdict.Propose
 	}
-	for _, one := range causal.Controls(f.within(), f.Exposures[0], f.Outcomes[0], union(c.Beside, f.Selected)) {
-		if slices.Contains(f.Selected, one.Node) {
+	if below := f.givenBelow(f.Adjustment.Aim.Exposures); len(below) > 0 {
+		c.Summary = fmt.Sprintf("No control gives the effect among rows alike in %s.", words.List(f.names(below)))
+		return
+	}
+	known := union(f.Selected, f.Given) // held whatever else is
+	for _, one := range causal.JointControls(f.within(), f.Adjustment.Aim.Exposures, f.Outcomes, union(c.Beside, known), nil) {
+		if slices.Contains(known, one.Node) {
 			continue
 		}
 		counts[one.Kind]++

@@ -6,6 +6,9 @@ import (
 
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
+	"arrowroot/compile/effect"
+	"arrowroot/compile/graph"
+	"arrowroot/compile/study"
 )
 
 // laws gives the carriers of every fitted law (SEMANTICS A1) and the case of
@@ -18,7 +21,7 @@ func (r *reader) laws(f *Findings) {
 		x, y = f.Exposures[0], f.Outcomes[0]
 	}
 	fitted := causal.AsFitted(g, x, y)
-	l.List = causal.CarriersFor(fitted, x, y)
+	l.List = measuredLaws(g, causal.CarriersFor(fitted, x, y))
 	l.Shared = causal.SharedCarriers(g, x, y)
 	carried := 0
 	for _, law := range l.List {
@@ -48,10 +51,49 @@ func (r *reader) laws(f *Findings) {
 		l.Summary += fmt.Sprintf(" Of rows chosen by %s, %s that of all rows.", f.rowsBy(), lawsNot(kept))
 	}
 	if x >= 0 {
-		l.Case, l.District, l.Reason = causal.InterventionCase(fitted, x, y)
-		f.caseFinding(l)
+		r.intervention(f, l, fitted)
 	}
 	f.Laws = l
+}
+
+// intervention finds the case of rule B2, of all that the question sets.
+func (r *reader) intervention(f *Findings, l *Laws, fitted *graph.Graph) {
+	x, y := f.Exposures[0], f.Outcomes[0]
+	fixed := minus(r.fixed(f), []int{x, y})
+	if len(fixed) == 0 {
+		l.Case, l.District, l.Reason = causal.InterventionCase(fitted, x, y)
+	} else {
+		q := &study.Question{Exposure: f.Graph.Names[x]}
+		for _, id := range f.names(fixed) {
+			q.Fixed = append(q.Fixed, study.Fix{Variable: id})
+		}
+		var districts map[string][]string
+		l.Case, districts, l.Reason = effect.Districts(fitted, q, y)
+		for _, members := range districts {
+			if len(members) < fitted.Len() { // else nothing is to see it
+				l.District = union(l.District, f.nodes(members))
+			}
+		}
+	}
+	if drawn, _, _ := causal.InterventionCase(r.sheet.drawn, x, y); fitted != r.sheet.drawn && drawn != l.Case && l.Case != causal.NotSimulated {
+		l.Reason += ", once each law compares within groups"
+	}
+	f.caseFinding(l, fixed)
+}
+
+// measuredLaws leaves away what counts as known within groups but was not
+// measured: it has no law, and no law is fitted on it.
+func measuredLaws(g *graph.Graph, laws []causal.Fitted) []causal.Fitted {
+	hidden := func(v int) bool { return !g.Measured[v] && !g.Computed[v] }
+	var out []causal.Fitted
+	for _, law := range laws {
+		if hidden(law.Node) {
+			continue
+		}
+		law.Parents = slices.DeleteFunc(slices.Clone(law.Parents), hidden)
+		out = append(out, law)
+	}
+	return out
 }
 
 func lawsCarry(n, of int) string {
@@ -163,16 +205,17 @@ func lawsNot(n int) string {
 
 // caseFinding says whether the fitted laws may be simulated under the
 // intervention.
-func (f *Findings) caseFinding(l *Laws) {
+func (f *Findings) caseFinding(l *Laws, fixed []int) {
 	one := Finding{Key: "simulation", Nodes: union(union(f.Exposures, f.Outcomes), l.District)}
 	x := f.Graph.Names[f.Exposures[0]]
+	set := words.List(append([]string{x}, f.names(fixed)...))
 	switch l.Case {
 	case causal.PinAndSimulate:
-		one.Kind, one.Sentence = "case (a)", fmt.Sprintf("The full model can be simulated with %s set: %s.", x, l.Reason)
+		one.Kind, one.Sentence = "case (a)", fmt.Sprintf("The full model can be simulated with %s set: %s.", set, l.Reason)
 	case causal.ObservedForDistrict:
-		one.Kind, one.Sentence = "case (b)", fmt.Sprintf("The full model can be simulated with %s set, if the laws of %s go by the %s that was observed: %s.", x, words.List(f.names(l.District)), x, l.Reason)
+		one.Kind, one.Sentence = "case (b)", fmt.Sprintf("The full model can be simulated with %s set, if the laws of %s go by the %s that %s observed: %s.", set, words.List(f.names(l.District)), set, wasWere(1+len(fixed)), l.Reason)
 	default:
-		one.Kind, one.Sentence = "case (c)", fmt.Sprintf("The full model must not be simulated with %s set: %s.", x, l.Reason)
+		one.Kind, one.Sentence = "case (c)", fmt.Sprintf("The full model must not be simulated with %s set: %s.", set, l.Reason)
 	}
 	f.add(&l.Section, one)
 	l.Summary += " " + one.Sentence

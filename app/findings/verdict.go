@@ -21,15 +21,15 @@ func (f *Findings) judge(exposures []int) {
 		}
 	case f.direct():
 		f.judgeDirect(valid)
-	case f.Reading == nil:
-		f.judgeSeveral(valid)
+	case f.Reading == nil, len(f.Given) > 0:
+		f.judgeSeveral(valid && len(f.givenBelow(exposures)) == 0)
 	}
 }
 
 // heldIsEnough reports whether the held set, with what limits the rows, is one
 // that gives the effect.
 func (f *Findings) heldIsEnough(exposures []int) bool {
-	held := union(minus(f.Held, slices.Concat(f.Exposures, f.Outcomes)), f.Selected)
+	held := union(union(minus(f.Held, slices.Concat(f.Exposures, f.Outcomes)), f.Selected), f.Given)
 	held = minus(held, exposures)
 	only := causal.Adjust(f.Graph, causal.Aim{Exposures: exposures, Outcomes: f.Outcomes, Forced: held, MaxSets: 1})
 	return len(only.Sets) > 0 && len(only.Sets[0]) == len(held)
@@ -79,15 +79,15 @@ func (f *Findings) judgeSeveral(valid bool) {
 	case a.Sets == nil:
 		f.Verdict = causal.Verdict{Kind: causal.NoSet, Sentence: a.Summary}
 	case valid:
-		f.Verdict = causal.Verdict{Kind: causal.Readable, Sentence: fmt.Sprintf("The effect of %s on %s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", x, y, words.List(f.names(f.Held)))}
+		f.Verdict = causal.Verdict{Kind: causal.Readable, Sentence: fmt.Sprintf("%s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", upper(f.effectAsked()), words.List(f.names(union(f.Held, f.Given))))}
 	case len(wrong) > 0:
 		f.Verdict = causal.Verdict{
 			Kind: causal.OverHeld, HasProposal: true, Propose: set,
-			Sentence: fmt.Sprintf("Holding %s would distort the effect of %s on %s.", words.List(f.names(wrong)), x, y),
+			Sentence: fmt.Sprintf("Holding %s would distort %s.", words.List(f.names(wrong)), f.effectAsked()),
 			Way:      fmt.Sprintf("Leave %s free, and hold %s.", words.List(f.names(wrong)), words.List(f.names(set))),
 		}
 	default:
-		f.Verdict = causal.Verdict{Kind: causal.Confounded, HasProposal: true, Propose: set, Sentence: fmt.Sprintf("The effect of %s on %s is confounded. Hold %s.", x, y, words.List(f.names(set)))}
+		f.Verdict = causal.Verdict{Kind: causal.Confounded, HasProposal: true, Propose: set, Sentence: fmt.Sprintf("%s is confounded. Hold %s.", upper(f.effectAsked()), words.List(f.names(set)))}
 	}
 }
 

@@ -45,18 +45,30 @@ func Controls(g *graph.Graph, exposure, outcome int, held []int) []Control {
 // ControlsAmong gives the verdicts among the rows that some nodes kept, which
 // are held whatever else is and get none.
 func ControlsAmong(g *graph.Graph, exposure, outcome int, held, selected []int) []Control {
-	c := newComparison(g, []int{exposure}, []int{outcome})
+	return JointControls(g, []int{exposure}, []int{outcome}, held, selected)
+}
+
+// JointControls gives the verdicts for the joint effect of several exposures,
+// as of one exposure and what a direct effect keeps fixed.
+func JointControls(g *graph.Graph, exposures, outcomes, held, selected []int) []Control {
+	c := newComparison(g, exposures, outcomes)
 	c.keep(selected)
 	held = minus(tidy(held), c.selected)
-	walks := firstPaths(g, exposure, outcome)
+	walks := firstPaths(g, exposures, outcomes)
 	left := searchBudget
 	reasons := map[int]Forbidden{}
-	for _, f := range c.whyForbidden() {
-		reasons[f.Node] = f
+	if len(exposures) == 1 && len(outcomes) == 1 {
+		for _, f := range c.whyForbidden() {
+			reasons[f.Node] = f
+		}
+	} else {
+		for _, v := range list(c.forbidden) {
+			reasons[v] = Forbidden{Node: v, Reason: "it carries part of the effect, or is an effect of what does"}
+		}
 	}
 	var all []Control
 	for v, can := range available(g) {
-		if !can || v == exposure || v == outcome || slices.Contains(c.selected, v) {
+		if !can || slices.Contains(exposures, v) || slices.Contains(outcomes, v) || slices.Contains(c.selected, v) {
 			continue
 		}
 		j := judgement{c: c, walks: walks, base: minus(held, []int{v}), node: v, budget: &left}
@@ -70,11 +82,11 @@ func ControlsAmong(g *graph.Graph, exposure, outcome int, held, selected []int) 
 }
 
 // firstPaths are the paths looked at for reasons.
-func firstPaths(g *graph.Graph, x, y int) []*Path {
+func firstPaths(g *graph.Graph, exposures, outcomes []int) []*Path {
 	var walks []*Path
 	left := searchBudget
-	for p := range paths(g, x, y) {
-		if walks = append(walks, p); len(walks) == controlPaths || !left.spend(g, len(p.Edges)) {
+	for p := range between(g, exposures, outcomes, nil) {
+		if walks = append(walks, &p); len(walks) == controlPaths || !left.spend(g, len(p.Edges)) {
 			break
 		}
 	}

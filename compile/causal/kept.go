@@ -97,7 +97,7 @@ func (c *comparison) kept(held []int) *Kept {
 	}
 	around := *c
 	around.selected = nil
-	if p := (judgement{c: &around, walks: firstPaths(g, c.x[0], c.y[0])}).changed(union(held, c.selected), held); p != nil && around.valid(held) {
+	if p := (judgement{c: &around, walks: firstPaths(g, c.x, c.y)}).changed(union(held, c.selected), held); p != nil && around.valid(held) {
 		k.Reason = p.Nodes
 		k.Sentence = fmt.Sprintf("Rows were kept by %s, which opens %s: these rows%s do not give the effect.", by, p.Text(g), holding)
 		return k
