@@ -45,7 +45,8 @@ type Editor struct {
 	pointer draw.Point // where the pointer was last
 	keys    modifiers
 	views   map[string]scene.View // by rival
-	adrift  bool                  // the view still follows the content: nobody panned or zoomed
+	cover   cover
+	adrift  bool // the view still follows the content: nobody panned or zoomed
 	focused bool
 	post    func(func())
 	press   pressed
@@ -150,33 +151,13 @@ func (e *Editor) Select(s scene.Selection) {
 	e.changed()
 }
 
-// Selection is what is picked.
-func (e *Editor) Selection() scene.Selection { return e.in.Selected }
-
 // Input is what is shown, with the editor's own fields filled in.
 func (e *Editor) Input() scene.Input { return e.in }
-
-// Highlight marks one path of the reading alone; scene.NoPath marks all.
-func (e *Editor) Highlight(path int) {
-	if e.in.LitPath != path {
-		e.in.LitPath = path
-		e.changed()
-	}
-}
 
 // Point marks what a list beside the sheet points at; nil marks nothing.
 func (e *Editor) Point(m *scene.Mark) {
 	if e.in.Mark != m {
 		e.in.Mark = m
-		e.changed()
-	}
-}
-
-// HoverOn marks a node or an arrow as if the pointer were on it, for lists
-// beside the sheet; the zero target marks nothing.
-func (e *Editor) HoverOn(t scene.Target) {
-	if e.in.Hover != t {
-		e.in.Hover = t
 		e.changed()
 	}
 }
@@ -198,7 +179,7 @@ func (e *Editor) ZoomFit() {
 	e.viewed()
 }
 
-func (e *Editor) fit() { e.in.View = scene.Fit(e.in) }
+func (e *Editor) fit() { e.in.View = e.all() }
 
 // ZoomBy zooms by a factor about the middle.
 func (e *Editor) ZoomBy(factor float64) {
@@ -217,7 +198,7 @@ func (e *Editor) Reveal(variable string) {
 	}
 	const margin = 24
 	dx := max(margin-r.X, 0) - max(r.X+r.W-e.in.Width+margin, 0)
-	dy := max(margin-r.Y, 0) - max(r.Y+r.H-e.in.Height+margin, 0)
+	dy := max(e.cover.height+margin-r.Y, 0) - max(r.Y+r.H-e.in.Height+margin, 0)
 	if dx != 0 || dy != 0 {
 		v := e.in.View
 		v.Pan = v.Pan.Add(draw.Point{X: dx, Y: dy})

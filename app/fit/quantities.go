@@ -156,31 +156,6 @@ func (f *Fitted) Draws(name string) []float64 {
 	return nil
 }
 
-// PriorQuantiles are n quantiles of a parameter's prior on its natural scale,
-// evenly spaced; nil where the prior leans on other parameters.
-func PriorQuantiles(p *model.Parameter, n int) []float64 {
-	args, ok := numbers(p.Prior.Arguments)
-	if !ok || p.Prior.Family == nil || p.Prior.Family.Quantile == nil || p.Shape == model.ByPlate {
-		return nil
-	}
-	out := make([]float64, n)
-	for i := range out {
-		out[i] = natural(p.Prior.On, p.Prior.Family.Quantile((float64(i)+0.5)/float64(n), args))
-	}
-	return out
-}
-
-// natural undoes the function that a prior is about.
-func natural(on model.On, x float64) float64 {
-	switch on {
-	case model.InverseRoot:
-		return 1 / (x * x)
-	case model.InverseRootPlus:
-		return 1/(x*x) - 1
-	}
-	return x
-}
-
 func priorSD(p *model.Parameter) float64 {
 	args, ok := numbers(p.Prior.Arguments)
 	if !ok || p.Prior.Family == nil || p.Prior.On != model.Itself || p.Prior.Family.SD == nil || p.Shape == model.ByPlate || p.Shape == model.Cuts {

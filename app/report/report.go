@@ -21,6 +21,7 @@ import (
 	"arrowroot/compile/graph"
 	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
+	"arrowroot/compile/replicate"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -36,6 +37,7 @@ type Input struct {
 	Findings *findings.Findings // nil = the reading alone
 	Evidence *evidence.Evidence // nil = the arrows were not held against data
 	Result   *fit.Result
+	Checks   *replicate.Checks // of Result; nil = none were made, and the report says so
 }
 
 //go:embed page.html
@@ -52,6 +54,8 @@ type content struct {
 	HowWrong               []string
 	Strength               template.HTML
 	Plots                  template.HTML
+	Checks                 []string
+	CheckPlots             template.HTML
 	Statement              []statementLine
 	Quantities             []row
 	Controls               []row // coefficients that the question does not ask about
@@ -135,7 +139,7 @@ func contentOf(in Input) (*content, error) {
 		c.Answer = words.Effect(in.Study, r)
 		c.HowWrong = words.HowWrong(r.Effect)
 		if e := r.Effect; e != nil && e.Sensitivity != nil && e.Sensitivity.Robustness != nil {
-			if c.Strength, err = svg(draw.StrengthPlot(420, 260, paint.Strength(e.Sensitivity), PlotStyle(scene.Light()))); err != nil {
+			if c.Strength, err = svg(draw.StrengthPlot(420, 260, paint.Strength(e.Sensitivity), plotStyle(scene.Light()))); err != nil {
 				return nil, err
 			}
 		}
@@ -159,6 +163,10 @@ func contentOf(in Input) (*content, error) {
 			}
 		}
 		if c.Plots, err = plotsOf(r); err != nil {
+			return nil, err
+		}
+		c.Checks = words.Checks(in.Checks)
+		if c.CheckPlots, err = checkPlots(in.Checks); err != nil {
 			return nil, err
 		}
 	}
@@ -265,7 +273,7 @@ func plotsOf(r *fit.Result) (template.HTML, error) {
 		}
 		picture, err := svg(draw.DensityPlot(280, 110, draw.Density{
 			Posterior: draw.KDE(n.of.Draws, 200), Low: n.of.Low, High: n.of.High, Mark: &none,
-		}, PlotStyle(scene.Light())))
+		}, plotStyle(scene.Light())))
 		if err != nil {
 			return "", err
 		}
@@ -278,8 +286,8 @@ func plotsOf(r *fit.Result) (template.HTML, error) {
 	return all, nil
 }
 
-// PlotStyle draws plots in a palette's colours.
-func PlotStyle(p scene.Palette) draw.Style {
+// plotStyle draws plots in a palette's colours.
+func plotStyle(p scene.Palette) draw.Style {
 	return draw.Style{Ground: p.Card, Ink: p.Ink, Muted: p.Muted, Hairline: p.Hairline, Accent: p.Effect[4], Soft: p.Effect[3]}
 }
 

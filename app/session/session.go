@@ -144,9 +144,7 @@ func (s *Session) Do(e study.Edit) error {
 		s.results[e.New] = s.results[e.Old]
 	}
 	if n := len(s.history); n > 0 && len(s.future) == 0 {
-		if m, ok := s.history[n-1].edit.(interface {
-			Merge(study.Edit) (study.Edit, bool)
-		}); ok {
+		if m, ok := s.history[n-1].edit.(study.Merger); ok {
 			if joined, ok := m.Merge(e); ok {
 				s.history[n-1].edit = joined
 				s.become(next)
@@ -197,13 +195,7 @@ func (s *Session) ShowRival(name string) {
 	s.become(s.study)
 }
 
-// Ask turns to another question.
-func (s *Session) Ask(at int) {
-	s.question = at
-	s.become(s.study)
-}
-
-// Ask changes the present question, or adds the first one.
+// SetQuestion changes the present question, or adds the first one.
 func (s *Session) SetQuestion(q study.Question) error {
 	if len(s.study.Questions) == 0 {
 		return s.Do(study.AddQuestion{Question: q})

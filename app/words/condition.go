@@ -6,11 +6,11 @@ import (
 	"arrowroot/compile/study"
 )
 
-// Conditions say which rows are meant: "soil is clay or loam and hedge is from
+// conditions say which rows are meant: "soil is clay or loam and hedge is from
 // 40 to 90 m/ha".
-func Conditions(s *study.Study, conditions []study.Condition) string {
+func conditions(s *study.Study, all []study.Condition) string {
 	var parts []string
-	for _, c := range conditions {
+	for _, c := range all {
 		parts = append(parts, c.Variable+" is "+condition(s, c))
 	}
 	return List(parts)
@@ -49,7 +49,7 @@ func Asides(s *study.Study, q *study.Question) []string {
 		parts = append(parts, "fixing "+List(fixed))
 	}
 	if len(q.Where) > 0 {
-		parts = append(parts, "where "+Conditions(s, q.Where))
+		parts = append(parts, "where "+conditions(s, q.Where))
 	}
 	if q.Groups == study.NewGroups {
 		parts = append(parts, study.NewGroups)

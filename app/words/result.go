@@ -87,8 +87,8 @@ func Rows(r model.Rows) string {
 	return text
 }
 
-// Trust is the verdict with what it stands on.
-func Trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string {
+// trust is the verdict with what it stands on.
+func trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string {
 	if len(t.Reasons) > 0 {
 		return title(t.Verdict.String()) + ": " + strings.Join(t.Reasons, "; ")
 	}
@@ -154,7 +154,7 @@ func Effect(s *study.Study, r *fit.Result) []string {
 		}
 	}
 	if head != nil && !e.None {
-		lines = append(lines, Trust(head.Trust, head.Summary, r.Full.Sampling)+".")
+		lines = append(lines, trust(head.Trust, head.Summary, r.Full.Sampling)+".")
 	}
 	return lines
 }

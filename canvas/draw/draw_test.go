@@ -85,16 +85,6 @@ func TestPictures(t *testing.T) {
 		skewed[i] = math.Pow(float64(i)/20, 2)
 	}
 	golden.Image(t, "dots", Raster(DotStrip(80, 28, skewed, light()), 2))
-	rng := rand.New(rand.NewPCG(1, 1))
-	chains := make([][]float64, 2)
-	for i := range chains {
-		x := 0.0
-		for range 1000 {
-			x = 0.9*x + rng.NormFloat64()
-			chains[i] = append(chains[i], x)
-		}
-	}
-	golden.Image(t, "trace", Raster(Trace(300, 80, chains, []Color{Hex("#0E6B68"), Hex("#8A3A10")}, light()), 2))
 	golden.Image(t, "thumb", Raster(Thumbnail(72, 48, Thumb{
 		Nodes:  []ThumbNode{{At: Point{0, 0}}, {At: Point{100, -60}, Unmeasured: true}, {At: Point{200, 0}}, {At: Point{100, 60}, Marked: true}},
 		Arrows: [][2]int{{0, 2}, {1, 0}, {1, 2}, {0, 3}, {3, 2}}, Arcs: [][2]int{{0, 1}},
@@ -115,7 +105,6 @@ func TestPicturesOfLittle(t *testing.T) {
 		Intervals(30, 40, []Interval{{Label: "long words", Mid: 1, Low: nan, High: inf, Words: "long words"}}, nil, light()),
 		DotStrip(40, 20, nil, light()),
 		DotStrip(40, 20, []float64{3, 3, 3}, light()),
-		Trace(100, 40, [][]float64{{1}, nil, {nan, inf, 2, 2}}, nil, light()),
 		Thumbnail(40, 30, Thumb{}, light()),
 		Thumbnail(40, 30, Thumb{Nodes: []ThumbNode{{}, {}}, Arrows: [][2]int{{0, 1}}}, light()),
 	} {

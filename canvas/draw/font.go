@@ -26,8 +26,8 @@ const (
 	faces
 )
 
-// FontBytes is the TrueType file of a face.
-func FontBytes(f Face) []byte {
+// fontBytes is the TrueType file of a face.
+func fontBytes(f Face) []byte {
 	return [faces][]byte{
 		dejavusanscondensed.TTF,
 		dejavusanscondensedbold.TTF,
@@ -62,7 +62,7 @@ var typefaces = [faces]func() *typeface{
 }
 
 func newTypeface(f Face) *typeface {
-	parsed, err := sfnt.Parse(FontBytes(f))
+	parsed, err := sfnt.Parse(fontBytes(f))
 	if err != nil {
 		panic("draw: an embedded font is damaged: " + err.Error())
 	}

@@ -7,7 +7,7 @@
 // holds), path.go (curves), text.go and font.go (text and its measure), then
 // paint.go with stroke.go, glyph.go and blend.go (the raster painter), svg.go
 // (paper), and the pictures: axis.go with density.go, intervals.go and
-// trace.go, dots.go, thumb.go.
+// dots.go, thumb.go.
 package draw
 
 import "image/color"

@@ -103,13 +103,13 @@ func bandOf(s *study.Study, v *study.Variable) int {
 	}
 	without, side, first := 0, 1, true
 	for _, plate := range s.Plates {
-		holds := Holds(s, plate.Name, v)
-		if !holds {
+		in := holds(s, plate.Name, v)
+		if !in {
 			without++
 		}
 		if first && plate.Within == "" {
 			first = false
-			if !holds {
+			if !in {
 				side = -1
 			}
 		}

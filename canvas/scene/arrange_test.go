@@ -111,7 +111,7 @@ func TestArrangePlates(t *testing.T) {
 	_, m := Build(in)
 	for _, f := range m.plates {
 		for _, n := range m.nodes {
-			if inside := f.box.Contains(n.at); inside != Holds(in.Study, f.plate.Name, n.variable) {
+			if inside := f.box.Contains(n.at); inside != holds(in.Study, f.plate.Name, n.variable) {
 				t.Errorf("frame of %s, %s inside: %v", f.plate.Name, n.id, inside)
 			}
 		}

@@ -13,9 +13,9 @@ func mix(a, b draw.Color, share float64) draw.Color {
 	return draw.Color{R: part(a.R, b.R), G: part(a.G, b.G), B: part(a.B, b.B), A: part(a.A, b.A)}
 }
 
-// Contrast is the contrast ratio of two opaque colours, from 1 to 21 (WCAG
+// contrast is the contrast ratio of two opaque colours, from 1 to 21 (WCAG
 // 2.2, "contrast ratio" and "relative luminance").
-func Contrast(a, b draw.Color) float64 {
+func contrast(a, b draw.Color) float64 {
 	x, y := luminance(a)+0.05, luminance(b)+0.05
 	return max(x, y) / min(x, y)
 }
@@ -33,7 +33,7 @@ func luminance(c draw.Color) float64 {
 
 // readable picks whichever of two inks reads better on a ground.
 func readable(ground, one, other draw.Color) draw.Color {
-	if Contrast(ground, one) >= Contrast(ground, other) {
+	if contrast(ground, one) >= contrast(ground, other) {
 		return one
 	}
 	return other

@@ -27,7 +27,7 @@ func (h *Hand) key(in *Input, m *Map, e Event) Answer {
 	case h.grip != gripNone && h.grip != gripKeys:
 		return Answer{} // a drag is not disturbed by other keys
 	case e.Key == "Delete" || e.Key == "BackSpace":
-		if edit := Remove(in.Rival, in.Selected); edit != nil {
+		if edit := remove(in.Rival, in.Selected); edit != nil {
 			return Answer{Edit: nailed(in, edit), Select: &Selection{}}
 		}
 		return Answer{}

@@ -12,7 +12,7 @@ import (
 func TestContrast(t *testing.T) {
 	for name, p := range map[string]Palette{"light": Light(), "dark": Dark()} {
 		check := func(what string, a, b draw.Color, least float64) {
-			if c := Contrast(a, b); c < least {
+			if c := contrast(a, b); c < least {
 				t.Errorf("%s: %s has a contrast of %.2f, want %.1f", name, what, c, least)
 			}
 		}

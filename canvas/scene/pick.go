@@ -106,9 +106,9 @@ func (s Selection) Equal(t Selection) bool {
 	return slices.Equal(s.Nodes, t.Nodes) && slices.Equal(s.Arrows, t.Arrows) && slices.Equal(s.Arcs, t.Arcs) && s.Plate == t.Plate && slices.Equal(s.Notes, t.Notes)
 }
 
-// Remove is the edit that deletes a selection from a rival; nil if it is
+// remove is the edit that deletes a selection from a rival; nil if it is
 // empty. Variables stay in the ledger.
-func Remove(r *study.Rival, s Selection) study.Edit {
+func remove(r *study.Rival, s Selection) study.Edit {
 	if r == nil {
 		return nil
 	}

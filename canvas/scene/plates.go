@@ -16,9 +16,9 @@ type frame struct {
 	words string
 }
 
-// Holds reports whether a plate repeats a variable: the variable's level is
+// holds reports whether a plate repeats a variable: the variable's level is
 // the plate, one nested in it, or the row.
-func Holds(s *study.Study, plate string, v *study.Variable) bool {
+func holds(s *study.Study, plate string, v *study.Variable) bool {
 	if len(v.Plates) == 0 {
 		return true
 	}
@@ -47,7 +47,7 @@ func (b *builder) frames() {
 		var box draw.Rect
 		found := false
 		for _, n := range b.nodes {
-			if n.variable == nil || !Holds(s, plate.Name, n.variable) {
+			if n.variable == nil || !holds(s, plate.Name, n.variable) {
 				continue
 			}
 			r := n.rect()

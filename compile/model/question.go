@@ -15,15 +15,8 @@ import (
 // with "question-", and they do not stop. Only the effect has to be refused.
 const questionCode = "question-"
 
-// QuestionProblems picks the problems for which the effect that the question
-// asks about cannot be computed, though the rival may be fitted.
-func QuestionProblems(problems []Problem) []Problem {
-	_, out := Apart(problems)
-	return out
-}
-
 // Apart separates the problems of the fit from those that keep only the
-// question from an answer.
+// question from an answer, though the rival may be fitted.
 func Apart(problems []Problem) (fit, question []Problem) {
 	for _, p := range problems {
 		if strings.HasPrefix(p.Code, questionCode) {
@@ -246,7 +239,7 @@ func (b *builder) impossible(v *Variable, x float64) string {
 			return "it is a count"
 		}
 	}
-	return ""
+	return b.formNeeds(v, x)
 }
 
 // shifted looks at a question that moves every row.

@@ -290,7 +290,8 @@ func TestQuestions(t *testing.T) {
 			if found.Stops {
 				t.Error("stops the fit")
 			}
-			if refused := find(QuestionProblems(all), c.code) != nil; refused != strings.HasPrefix(c.code, "question-") {
+			_, refusing := Apart(all)
+			if refused := find(refusing, c.code) != nil; refused != strings.HasPrefix(c.code, "question-") {
 				t.Errorf("refuses the effect: %v", refused)
 			}
 			var labels []string
@@ -321,7 +322,7 @@ func times100(values []float64) {
 // A question that is half asked yet has no mistakes.
 func TestHalfAQuestion(t *testing.T) {
 	for _, q := range []study.Question{{}, {Exposure: "hedge"}, {Outcome: "bees"}} {
-		if p := QuestionProblems(Problems(hedgerows(), "R", q, traps())); len(p) > 0 {
+		if _, p := Apart(Problems(hedgerows(), "R", q, traps())); len(p) > 0 {
 			t.Error(messages(p))
 		}
 	}

@@ -58,7 +58,7 @@ func benchmarksOf(in *Input) ([]Benchmark, string) {
 			continue
 		}
 		b.RatioExposure, b.RatioOutcome = ratioOf(b.OfExposure), ratioOf(b.OfOutcome)
-		b.Factor = BoundingFactor(b.RatioExposure, b.RatioOutcome)
+		b.Factor = boundingFactor(b.RatioExposure, b.RatioOutcome)
 		for _, k := range strengths {
 			t := timesAsStrong(k, b.OfExposure, b.OfOutcome)
 			t.Adjusted = math.NaN()
@@ -94,7 +94,7 @@ func timesAsStrong(k, ofExposure, ofOutcome float64) Times {
 // ratioOf takes a share of variation as a risk ratio.
 func ratioOf(share float64) float64 {
 	share = math.Min(share, 0.999)
-	return FromMeans(2 * math.Sqrt(share/(1-share)))
+	return fromMeans(2 * math.Sqrt(share/(1-share)))
 }
 
 // share is the partial R²: how much of what the given columns leave of y others

@@ -15,49 +15,35 @@ type EValue struct {
 	Conversion           string  // how it became a risk ratio, in words; "" = it is one
 }
 
-// E is the E-value of a risk ratio: RR + √(RR (RR − 1)), with 1/RR below 1.
-func E(ratio float64) float64 {
+// eOf is the E-value of a risk ratio: RR + √(RR (RR − 1)), with 1/RR below 1.
+func eOf(ratio float64) float64 {
 	if ratio < 1 {
 		ratio = 1 / ratio
 	}
 	return ratio + math.Sqrt(ratio*(ratio-1))
 }
 
-// ELimit is the E-value of the end of an interval that is next to 1.
-func ELimit(low, high float64) float64 {
+// eLimit is the E-value of the end of an interval that is next to 1.
+func eLimit(low, high float64) float64 {
 	switch {
 	case low > 1:
-		return E(low)
+		return eOf(low)
 	case high < 1:
-		return E(high)
+		return eOf(high)
 	}
 	return 1
 }
 
-// BoundingFactor is the most by which a cause that goes with the exposure by
+// boundingFactor is the most by which a cause that goes with the exposure by
 // one risk ratio and with the outcome by another can have moved the risk ratio
 // between the two (Ding & VanderWeele 2016).
-func BoundingFactor(withExposure, withOutcome float64) float64 {
+func boundingFactor(withExposure, withOutcome float64) float64 {
 	return withExposure * withOutcome / (withExposure + withOutcome - 1)
 }
 
-// FromOddsRatio takes an odds ratio as a risk ratio: itself where the outcome
-// is rare (under 15 %), else its square root (VanderWeele 2017; VanderWeele & Ding
-// 2017, table 2).
-func FromOddsRatio(odds float64, common bool) float64 {
-	if common {
-		return math.Sqrt(odds)
-	}
-	return odds
-}
-
-// FromRateRatio takes a ratio of rates or of expected counts as a risk ratio
-// (VanderWeele & Ding 2017, table 2).
-func FromRateRatio(rates float64) float64 { return rates }
-
-// FromMeans takes a difference of means in sds of the outcome as a risk ratio:
+// fromMeans takes a difference of means in sds of the outcome as a risk ratio:
 // exp(0.91 d) (Chinn 2000; VanderWeele & Ding 2017, table 2).
-func FromMeans(d float64) float64 { return math.Exp(0.91 * d) }
+func fromMeans(d float64) float64 { return math.Exp(0.91 * d) }
 
 func eValueOf(in *Input) (*EValue, string) {
 	e := &EValue{}
@@ -76,13 +62,13 @@ func eValueOf(in *Input) (*EValue, string) {
 		if !(in.OutcomeSD > 0) {
 			return nil, "the outcome does not vary"
 		}
-		as = func(x float64) float64 { return FromMeans(x / in.OutcomeSD) }
+		as = func(x float64) float64 { return fromMeans(x / in.OutcomeSD) }
 		e.Conversion = "a difference of means of d sds taken as a risk ratio of exp(0.91 d)"
 	}
 	e.RiskRatio, e.Low, e.High = as(in.Estimate), as(in.Low), as(in.High)
 	if !(e.RiskRatio > 0) || math.IsInf(e.RiskRatio, 0) || math.IsNaN(e.Low+e.High) {
 		return nil, "the contrast is no positive ratio"
 	}
-	e.Value, e.Limit = E(e.RiskRatio), ELimit(e.Low, e.High)
+	e.Value, e.Limit = eOf(e.RiskRatio), eLimit(e.Low, e.High)
 	return e, ""
 }

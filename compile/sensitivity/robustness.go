@@ -17,9 +17,9 @@ type Robustness struct {
 	Limit      float64 // share that brings the interval to no effect; 0 if it is there
 }
 
-// PartialR2 is the share of the outcome's variation that the exposure explains
+// partialR2 is the share of the outcome's variation that the exposure explains
 // beyond the held set.
-func PartialR2(t, freedom float64) float64 { return t * t / (t*t + freedom) }
+func partialR2(t, freedom float64) float64 { return t * t / (t*t + freedom) }
 
 // RobustnessValue is the share that an unmeasured cause would have to explain of
 // both ends to take the part q of the estimate away: q = 1 leaves nothing.
@@ -27,9 +27,9 @@ func RobustnessValue(t, freedom, q float64) float64 {
 	return equalShares(q * math.Abs(t) / math.Sqrt(freedom))
 }
 
-// RobustnessLimit is the share that would bring the interval of a level to the
+// robustnessLimit is the share that would bring the interval of a level to the
 // estimate with part q taken away; 0 if it is there already.
-func RobustnessLimit(t, freedom, q, level float64) float64 {
+func robustnessLimit(t, freedom, q, level float64) float64 {
 	return equalShares(limitOf(t, freedom, q, level))
 }
 
@@ -46,10 +46,10 @@ func equalShares(f float64) float64 {
 	return (math.Sqrt(f2*f2+4*f2) - f2) / 2
 }
 
-// Bias is how far an unmeasured cause that explains the shares withExposure and
+// biasOf is how far an unmeasured cause that explains the shares withExposure and
 // withOutcome of what the held set leaves (of the outcome, beyond the exposure
 // too) can have moved an estimate with this spread (equation 10 there).
-func Bias(spread, freedom, withExposure, withOutcome float64) float64 {
+func biasOf(spread, freedom, withExposure, withOutcome float64) float64 {
 	return spread * math.Sqrt(freedom*withOutcome*withExposure/(1-withExposure))
 }
 
@@ -61,7 +61,7 @@ func (r *Result) Adjusted(withExposure, withOutcome float64) float64 {
 		return math.NaN()
 	}
 	estimate := r.Input.onAddingScale(r.Input.Estimate)
-	bias := Bias(r.Input.Spread, r.Robustness.Freedom, withExposure, withOutcome)
+	bias := biasOf(r.Input.Spread, r.Robustness.Freedom, withExposure, withOutcome)
 	return r.Input.back(estimate - math.Copysign(bias, estimate))
 }
 
@@ -82,8 +82,8 @@ func robustnessOf(in *Input) (*Robustness, string) {
 	}
 	t := estimate / in.Spread
 	return &Robustness{
-		T: t, Freedom: freedom, PartialR2: PartialR2(t, freedom),
-		Value: RobustnessValue(t, freedom, 1), Limit: RobustnessLimit(t, freedom, 1, in.Level),
+		T: t, Freedom: freedom, PartialR2: partialR2(t, freedom),
+		Value: RobustnessValue(t, freedom, 1), Limit: robustnessLimit(t, freedom, 1, in.Level),
 	}, ""
 }
 

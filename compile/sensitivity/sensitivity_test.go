@@ -47,29 +47,29 @@ func TestReferenceCases(t *testing.T) {
 	for _, c := range cases {
 		q, a := c.Question, c.Answer
 		if q.RR > 0 {
-			near(t, c.ID+" E", E(q.RR), a.E, 1e-12)
-			near(t, c.ID+" limit", ELimit(q.Lo, q.Hi), a.ECI, 1e-12)
+			near(t, c.ID+" E", eOf(q.RR), a.E, 1e-12)
+			near(t, c.ID+" limit", eLimit(q.Lo, q.Hi), a.ECI, 1e-12)
 			continue
 		}
-		near(t, c.ID+" partial R2", PartialR2(q.T, q.DF), a.PartialR2, 1e-12)
+		near(t, c.ID+" partial R2", partialR2(q.T, q.DF), a.PartialR2, 1e-12)
 		near(t, c.ID+" RV", RobustnessValue(q.T, q.DF, 1), a.RV, 1e-12)
-		near(t, c.ID+" RV at 95 %", RobustnessLimit(q.T, q.DF, 1, 0.95), a.RVAlpha, 1e-6) // gonum inverts the beta function to about that
+		near(t, c.ID+" RV at 95 %", robustnessLimit(q.T, q.DF, 1, 0.95), a.RVAlpha, 1e-6) // gonum inverts the beta function to about that
 	}
 }
 
 // VanderWeele & Ding (2017): E-values of 3.9, 1.8 and 2; a ratio below 1 is
 // that of its inverse; the limit is 1 where the interval covers 1.
 func TestEValues(t *testing.T) {
-	near(t, "3.9", E(3.9), 7.26, 0.005)
-	near(t, "1.8", E(1.8), 3.00, 0.005)
-	near(t, "2", E(2), 3.41, 0.005)
-	near(t, "1/2", E(0.5), E(2), 1e-12)
-	near(t, "1", E(1), 1, 0)
-	near(t, "covers 1", ELimit(0.9, 2), 1, 0)
-	near(t, "below 1", ELimit(0.4, 0.5), E(2), 1e-12)
+	near(t, "3.9", eOf(3.9), 7.26, 0.005)
+	near(t, "1.8", eOf(1.8), 3.00, 0.005)
+	near(t, "2", eOf(2), 3.41, 0.005)
+	near(t, "1/2", eOf(0.5), eOf(2), 1e-12)
+	near(t, "1", eOf(1), 1, 0)
+	near(t, "covers 1", eLimit(0.9, 2), 1, 0)
+	near(t, "below 1", eLimit(0.4, 0.5), eOf(2), 1e-12)
 	// The E-value is where the bounding factor of two equal ratios is the ratio.
 	for _, rr := range []float64{1.1, 2, 7} {
-		near(t, "bounding factor", BoundingFactor(E(rr), E(rr)), rr, 1e-12)
+		near(t, "bounding factor", boundingFactor(eOf(rr), eOf(rr)), rr, 1e-12)
 	}
 }
 
@@ -78,7 +78,7 @@ func TestEValues(t *testing.T) {
 func TestRobustnessValueLeavesNothing(t *testing.T) {
 	for _, c := range [][2]float64{{4.18, 783}, {1.2, 20}, {30, 50}} {
 		rv := RobustnessValue(c[0], c[1], 1)
-		near(t, "bias in spreads", Bias(1, c[1], rv, rv), c[0], 1e-9)
+		near(t, "bias in spreads", biasOf(1, c[1], rv, rv), c[0], 1e-9)
 	}
 }
 
@@ -157,7 +157,7 @@ func TestOmittedCauseIsRecovered(t *testing.T) {
 	near(t, "with the true strengths", r.Adjusted(withX, withY), long, 1e-9)
 	near(t, "partial R² of z with x is that of its t", r.Benchmarks[0].OfExposure, func() float64 {
 		b, se, df := regress(x, z)
-		return PartialR2(b/se, df)
+		return partialR2(b/se, df)
 	}(), 1e-9)
 	if got := r.Benchmarks[0].Times[0].Adjusted; got > long+0.06 || got < long-0.2 {
 		t.Errorf("a cause as strong as z leaves %.3f, the true estimate is %.3f", got, long)

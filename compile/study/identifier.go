@@ -29,11 +29,6 @@ func (s *Study) FreeID(text string) string {
 	return freeName(text, func(id string) bool { return s.Variable(id) != nil })
 }
 
-// FreePlateName is FreeID for plates.
-func (s *Study) FreePlateName(text string) string {
-	return freeName(text, func(name string) bool { return s.Plate(name) != nil })
-}
-
 func freeName(text string, taken func(string) bool) string {
 	var b strings.Builder
 	gap := false
