@@ -23,7 +23,7 @@ const layers = `
 !infer/score      :
 !compile/model    : compile/study compile/graph compile/formula compile/table compile/catalog compile/causal compile/kernel
 !compile/density  : compile/ops compile/kernel compile/catalog compile/formula compile/model
-!compile/effect   : compile/catalog compile/formula compile/model compile/graph compile/causal compile/study
+!compile/effect   : compile/kernel compile/catalog compile/formula compile/model compile/graph compile/causal compile/study
 !compile/replicate : compile/effect compile/model compile/study compile/catalog
 !compile/evidence : compile/study compile/graph compile/table compile/causal compile/formula compile/model
 !compile/sensitivity : compile/study compile/graph compile/table compile/causal compile/kernel

@@ -55,7 +55,7 @@ type ArrowEffect struct {
 	Per       float64   // natural step of the parent for PerUnit; 0 = none
 	PerUnit   []float64 // per draw: expectation's ratio (if Ratio) or difference per step
 	Ratio     bool
-	Words     string // "×1.02 per 10 m/ha", from the median of PerUnit
+	Words     string // "×1.02 per 10 m/ha", from the median of PerUnit; "+3.4 from 5 to 50 m/ha" for a form that is no straight line
 }
 
 // A NodeEffect is the change of one variable under the question's
