@@ -102,7 +102,7 @@ func (*Call) expr()    {}
 // the left ("" = identity), Subject the argument it predicts ("" if the text
 // gave only the right-hand side).
 type Predictor struct {
-	Link    string // "", "log", "logit", "softmax", "cumulative logit"
+	Link    string // "", "log", "logit", "softmax", "cumulative logit", "cumulative probit"
 	Subject string
 	Right   Expr
 }

@@ -89,7 +89,7 @@ func Symbol(id string) string {
 var bare = [...]string{"log", "exp", "logit", "inverse logit", "sqrt", "abs"}
 
 // links lists what may stand before the name on the left of "=".
-var links = [...]string{"log", "logit", "softmax", "cumulative logit"}
+var links = [...]string{"log", "logit", "softmax", "cumulative logit", "cumulative probit"}
 
 // keywords are the words that join others.
 var keywords = [...]string{"by", "of", "and", "with"}

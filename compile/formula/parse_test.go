@@ -14,6 +14,7 @@ func TestParse(t *testing.T) {
 		{"logit(μ) = α + β·x", "logit mu = alpha + beta * x", "α + β x"},
 		{"mean = 1", "", "1"},
 		{"cumulative logit predictor = b * x", "", "b x"},
+		{"cumulative probit predictor = b * x", "", "b x"},
 		{"α_bees + β_hedge→bees × hedge", "alpha_bees + beta_hedge_bees * hedge", "α_bees + β_hedge_bees hedge"},
 		{"β_hedge->bees * x", "beta_hedge_bees * x", "β_hedge_bees x"},
 		{"θερμοκρασία + μ2", "θερμοκρασία + mu2", "θερμοκρασία + μ2"},
