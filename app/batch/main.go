@@ -29,6 +29,7 @@ verbs
   check      what the arrows promise against the data: independences, other constraints, negative controls
   arrows     what the rival supposes, arrow by arrow, with reasons and references
   fit        the posterior of every quantity, with trust
+  replicate  whether the fitted model can reproduce the data
   effect     the question's contrast: crude, held, full model
   report     one HTML file with verdict, figure, statement, result and limits
 
@@ -38,7 +39,7 @@ flags
   -seed N         same study, same seed, same draws (1)
   -chains N       chains side by side, 1 to 64 (4)
   -draws N        draws of each chain, 1 to 1000000; without it, until every quantity is precise enough
-  -out FILE       fit, effect: draws as CSV; arrows: the table as CSV; report: the HTML file
+  -out FILE       fit, effect: draws as CSV; replicate: data and replicates as CSV; arrows: the table as CSV; report: the HTML file
   -paths N        read: at most N paths, 1 to 100000 (500)
   -sets N         read: at most N sets of a kind, 1 to 100000 (100)
   -exposure LIST  read: the effect of these variables, with commas between them
@@ -89,7 +90,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 		return wrongUse
 	}
 	verbs := map[string]func(context.Context, *job) (any, error){
-		"read": read, "validate": validate, "arrows": arrows, "check": check, "fit": fitVerb, "effect": effectVerb, "report": reportVerb,
+		"read": read, "validate": validate, "arrows": arrows, "check": check, "fit": fitVerb, "effect": effectVerb, "replicate": replicateVerb, "report": reportVerb,
 	}
 	verb := verbs[opt.verb]
 	if verb == nil {

@@ -20,6 +20,7 @@ import (
 	"arrowroot/compile/evidence"
 	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
+	"arrowroot/compile/replicate"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 	"arrowroot/infer"
@@ -194,13 +195,19 @@ func reportVerb(ctx context.Context, j *job) (any, error) {
 	if err != nil {
 		return nil, err
 	}
+	var checks *replicate.Checks
+	if !r.Cut {
+		if checks, err = j.checks(ctx, r); err != nil && ctx.Err() == nil {
+			return nil, err
+		}
+	}
 	out := j.out
 	if out == "" {
 		out = strings.TrimSuffix(j.options.study, filepath.Ext(j.options.study)) + ".html"
 	}
 	reading := fit.Read(g, j.question, 0, 0)
 	err = writeFile(out, func(w io.Writer) error {
-		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Findings: read, Evidence: held, Result: r})
+		return report.WriteHTML(w, report.Input{Study: j.study, Rival: j.rival, Question: j.question, Graph: g, Reading: reading, Findings: read, Evidence: held, Result: r, Checks: checks})
 	})
 	if err != nil {
 		return nil, err
