@@ -209,7 +209,7 @@ func (p *planner) readsOf(v int) []int {
 // named, or its expectation, or (levels nil, law of levels) each level apart.
 func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
 	v := p.m.Variables[variable]
-	s := &scale{}
+	s := &scale{trials: -1}
 	l := p.laws[variable]
 	if l == nil {
 		return s, nil
@@ -217,6 +217,7 @@ func (p *planner) scaleOf(variable int, levels []string) (*scale, error) {
 	s.levels = l.levels
 	if len(l.Predictors) == 1 && l.levels == 0 {
 		s.predicted = l.Family.Centred
+		s.trials = l.Family.Argument("trials")
 	}
 	if len(levels) == 0 {
 		return s, nil

@@ -337,6 +337,21 @@ func TestBinomialIsAProbability(t *testing.T) {
 	}
 	near(t, "from", got.Expected.From[0], 0.5, 1e-12)
 	near(t, "to", got.Expected.To[0], 1/(1+math.Exp(-1)), 1e-12)
+	if want := "as the probability in one trial, over these 2 rows, each row alike"; got.Words != want {
+		t.Errorf("%q, want %q", got.Words, want)
+	}
+
+	// Of more zeros than a binomial has, a share 1 − 0.25 is left, whatever the trials.
+	s = newSketch(t, 2)
+	s.variable("x", study.Real, []float64{0, 1})
+	s.variable("n", study.Count, []float64{10, 90})
+	s.variable("k", study.Count, []float64{0, 2})
+	s.law("k", "zero-inflated binomial", "x", "n", "0.25")
+	if got, err = FromLaw(context.Background(), s.m, ask("x", "k", 0, 1), s.draws(1), source(), Options{}); err != nil {
+		t.Fatal(err)
+	}
+	near(t, "from, inflated", got.Expected.From[0], 0.75*0.5, 1e-12)
+	near(t, "to, inflated", got.Expected.To[0], 0.75/(1+math.Exp(-1)), 1e-12)
 }
 
 // An offset is each row's own, an exposure can live at a plate's level, and a

@@ -140,6 +140,7 @@ type scale struct {
 	// most families is the expectation. A binomial law gives its probability
 	// (SEMANTICS B6), a Student t its centre, also where it has no expectation.
 	predicted bool
+	trials    int // argument by which an expected count of successes is divided (B6); -1 = none
 }
 
 // parts is how many numbers a scale averages.
@@ -174,7 +175,11 @@ func (w *worker) average(sum []float64, l *law, s *scale, weights []float64) {
 		args := w.row(&e, i)
 		switch {
 		case s.levels == 0:
-			sum[0] += weight * l.Family.Mean(args)
+			mean := l.Family.Mean(args)
+			if s.trials >= 0 {
+				mean /= args[s.trials]
+			}
+			sum[0] += weight * mean
 		case s.event == nil:
 			for k, p := range args {
 				sum[k] += weight * p

@@ -6,6 +6,8 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+
+	"arrowroot/compile/catalog"
 )
 
 // words says over what a simulation averaged.
@@ -37,7 +39,26 @@ func (s *simulation) words() string {
 	if plates := s.freshPlates(); len(plates) > 0 {
 		out += ", averaged over new levels of " + strings.Join(plates, " and ")
 	}
+	if what := s.averaged(); what != "" {
+		out = what + ", " + out
+	}
 	return out
+}
+
+// averaged says what stands in for the expected value; "" = nothing does.
+func (s *simulation) averaged() string {
+	t := s.plan.targets[0]
+	switch {
+	case t.law == nil || t.scale.levels > 0 || t.scale.event != nil:
+		return ""
+	case t.scale.trials >= 0:
+		return "as the probability in one trial"
+	case t.law.Family.Name == "Cauchy":
+		return "as its centre, since a Cauchy law has no expected value"
+	case t.law.Family.Support == catalog.Turn:
+		return "as its mean direction"
+	}
+	return ""
 }
 
 // rowWords names the rows that are averaged over.
