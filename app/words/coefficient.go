@@ -57,8 +57,11 @@ func Coefficients(s *study.Study, m *model.Model) map[int]Coefficient {
 		}
 		for _, t := range l.Terms {
 			for _, p := range t.Parameters {
+				if slices.Contains(t.Inner, p) { // where it acts, and not how much
+					continue
+				}
 				switch t.Kind {
-				case model.Slope, model.Steps:
+				case model.Slope, model.Steps, model.Log, model.OneWay, model.Threshold, model.Saturating:
 					r := of(t.Variable)
 					label(p, Coefficient{r.Words, r.Control})
 				case model.Product:

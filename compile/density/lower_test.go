@@ -118,6 +118,25 @@ func cases(t *testing.T) map[string]*model.Model {
 	s.law("y", "normal", []string{"rise * (share of dose) + p * w + free of dose"}, "lift")
 	out["other shapes"] = s.m
 
+	s = newSketch(t, 6)
+	s.variable("size", study.Ordered, -1, 0, 1, 2, 3, 1, 0)
+	s.variable("dose", study.Ordered, -1, 0, 1, 2, 2, 1, 0)
+	s.variable("sex", study.Ordered, -1, 0, 1, 0, 1, 1, 0)
+	s.variable("x", study.Positive, -1, 0.5, 1, 2, 2.5, 4, 8)
+	s.variable("y", study.Real, -1, reals...)
+	for _, name := range []string{"a", "b", "c", "d", "e"} {
+		s.parameter(name, catalog.Reals, "normal", "0", "2")
+	}
+	s.vector("share_size", model.Rising, 4, "")
+	s.vector("share_dose", model.Rising, 3, "")
+	s.vector("share_sex", model.Rising, 2, "")
+	s.parameter("theta", catalog.Reals, "uniform", "0.5", "8")
+	s.parameter("half", catalog.Positives, "uniform", "0", "8")
+	s.parameter("sigma", catalog.Positives, "half-normal", "2")
+	s.law("y", "normal", []string{"a * (share_size of size - 0.5) + b * (share_dose of dose - 0.5) + c * (share_sex of sex) + " +
+		"d * (max(0, x - theta) - max(0, 4 - theta)) + e * (x / (x + half) - 4 / (4 + half)) + a * log(x / 2)"}, "sigma")
+	out["bent forms"] = s.m
+
 	incomplete(t, out)
 	for name, centred := range map[string]bool{"by farm": false, "by farm, centred": true} {
 		s = newSketch(t, 6)
@@ -414,6 +433,9 @@ func plainPrior(m *model.Model, e *environment, p *model.Parameter, values []flo
 	case model.Simplex:
 		total, _ = math.Lgamma(float64(p.Size))
 		return total
+	case model.Rising: // as many uniform numbers as lie between 0 and 1, in order
+		total, _ = math.Lgamma(float64(p.Size - 1))
+		return total
 	case model.Cuts:
 		total, _ = math.Lgamma(float64(p.Size + 1))
 		return total
@@ -436,6 +458,8 @@ func about(p *model.Parameter, values []float64) []float64 {
 	switch {
 	case p.Shape == model.Simplex:
 		return values[:len(values)-1]
+	case p.Shape == model.Rising:
+		return values[1 : len(values)-1]
 	case p.Shape == model.Cuts:
 		below := 0.0
 		for _, c := range values {

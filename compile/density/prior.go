@@ -36,6 +36,9 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 			only = 1
 		}
 		l.natural[i] = l.b.Const(only)
+		if p.Shape == model.Rising && p.Size == 2 {
+			l.natural[i] = l.last(l.b.Plate(p.Name, p.Size), p.Size)
+		}
 		return l.b.Const(0), nil
 	}
 	switch p.Shape {
@@ -46,17 +49,23 @@ func (l *lowering) place(i, offset int) (ops.Value, error) {
 	}
 	u := l.b.Parameter(offset, l.vectorPlate(p.Name, n))
 	switch p.Shape {
-	case model.Simplex, model.Cuts:
+	case model.Simplex, model.Cuts, model.Rising:
 		if p.Prior.Family != nil {
 			return fail(fmt.Errorf("%s can only be uniform over the shares", p.Name))
 		}
 		var x placed
 		shares := p.Size
-		if p.Shape == model.Simplex {
+		switch {
+		case p.Shape == model.Simplex:
 			x = l.simplex(p.Name, u, shares)
-		} else if shares++; l.probit(p.Name) {
+		case p.Shape == model.Rising:
+			shares--
+			x = l.rising(p.Name, u, p.Size)
+		case l.probit(p.Name):
+			shares++
 			x = l.probitCuts(p.Name, u, shares)
-		} else {
+		default:
+			shares++
 			x = l.cuts(p.Name, u, shares)
 		}
 		l.natural[i] = x.natural

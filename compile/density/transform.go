@@ -16,6 +16,8 @@ func coordinates(m *model.Model, p *model.Parameter) int {
 		return len(m.Plates[p.Plate].Levels)
 	case model.ZeroSum, model.Simplex:
 		return p.Size - 1
+	case model.Rising:
+		return max(p.Size-2, 0)
 	}
 	return p.Size // K-1 cut points come from K shares, which have K-1 coordinates
 }
@@ -186,6 +188,29 @@ func (l *lowering) simplex(name string, u ops.Value, n int) placed {
 	log, jacobian := l.shares(l.b.Plate(name, n), u, n)
 	x := l.b.Exp(log)
 	return placed{x, x, jacobian}
+}
+
+// rising takes n-2 coordinates to n entries that rise from 0 to 1 by n-1 shares.
+// The prior looks at the shares.
+func (l *lowering) rising(name string, u ops.Value, n int) placed {
+	log, jacobian := l.shares(l.b.Plate(name+" rises", n-1), u, n-1)
+	// The last entry is a constant and no sum of shares, which would differ
+	// from 1 by rounding.
+	upTo := make([]float64, n*(n-1))
+	for i := range n - 1 {
+		for j := range i {
+			upTo[i*(n-1)+j] = 1
+		}
+	}
+	plate := l.b.Plate(name, n)
+	return placed{natural: l.b.Add(l.b.Linear(plate, upTo, l.b.Exp(log)), l.last(plate, n)), jacobian: jacobian}
+}
+
+// last is a vector of n entries of which the last is 1 and the others are 0.
+func (l *lowering) last(plate ops.Plate, n int) ops.Value {
+	one := make([]float64, n)
+	one[n-1] = 1
+	return l.b.Data(plate, one)
 }
 
 // cuts takes n-1 coordinates to the n-1 ordered cut points at which level

@@ -81,10 +81,11 @@ func (p *planner) arrow(ctx context.Context, parent, child int, draws [][]float6
 	return out, nil
 }
 
-// describe fills PerUnit and Words.
+// describe fills Words, and PerUnit where a unit means the same throughout.
 func (p *planner) describe(out *ArrowEffect, sim *simulation, from, to *model.Variable, low, high, levels int, opt Options) {
 	s := sim.plan.targets[0].scale
-	if levels == 0 {
+	bent := p.bent(from, to)
+	if levels == 0 && !bent {
 		low, high = 2, 3
 	}
 	law := p.laws[p.variables[to.ID]]
@@ -115,11 +116,28 @@ func (p *planner) describe(out *ArrowEffect, sim *simulation, from, to *model.Va
 		out.Words = amountWords(per, out.Ratio, level) + what + ", " + name(from, high) + " against " + name(from, low)
 		return
 	}
+	if bent { // a unit of it does not do the same everywhere
+		out.Words = amountWords(per, out.Ratio, level) + what + " from " + short(out.Low) + " to " + short(out.High)
+		if from.Unit != "" {
+			out.Words += " " + from.Unit
+		}
+		return
+	}
 	out.PerUnit = per
 	out.Words = amountWords(per, out.Ratio, level) + what + " per " + short(out.Per)
 	if from.Unit != "" {
 		out.Words += " " + from.Unit
 	}
+}
+
+// bent reports whether a parent acts by a form that is no straight line in the
+// default predictor of a child.
+func (p *planner) bent(from, to *model.Variable) bool {
+	return slices.ContainsFunc(p.m.Laws, func(l *model.Law) bool {
+		return p.m.Variables[l.Variable] == to && slices.ContainsFunc(l.Terms, func(t model.Term) bool {
+			return t.Variable >= 0 && p.m.Variables[t.Variable] == from && (t.Kind == model.Log || t.Kind == model.Threshold || t.Kind == model.Saturating)
+		})
+	})
 }
 
 // name is the word of a level.

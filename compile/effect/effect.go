@@ -5,7 +5,8 @@
 // draw), arm.go (who moves when something is set), districts.go (what may be
 // set), contrast.go, simulation.go and round.go (many draws, few replicates),
 // population.go (weights), groups.go (new ones), unknowns.go (missing entries),
-// arrows.go, nodes.go, words.go; replicate.go (a law's own values over and over).
+// arrows.go, nodes.go, words.go; replicate.go (a law's own values over and over),
+// predict.go (how well it predicts).
 //
 // A draw is the natural values of all parameters, in the order of
 // Model.Parameters, entries of vectors side by side (density.Quantities).

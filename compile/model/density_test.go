@@ -38,6 +38,7 @@ type priorText struct {
 	phrase *formula.Phrase
 	about  formula.Expr
 	sum0   bool
+	rising bool
 	plate  string
 }
 
@@ -72,7 +73,7 @@ func read(t interface{ Fatalf(string, ...any) }, m *model.Model) (*reading, bool
 			r.laws = append(r.laws, lawText{variable: left, phrase: phrase})
 			continue
 		}
-		p := priorText{left: left, phrase: phrase, sum0: strings.Contains(comment, "sum to 0")}
+		p := priorText{left: left, phrase: phrase, sum0: strings.Contains(comment, "sum to 0"), rising: strings.Contains(comment, "rising order")}
 		if _, plate, by := strings.Cut(left, " by "); by {
 			p.plate = plate
 		}
@@ -166,6 +167,13 @@ func (r *reading) logDensity() float64 {
 				}
 				total += logPDF(p.phrase.Family, x, args)
 			}
+		case p.rising: // those between the first and the last
+			for i := 1; ; i++ {
+				if _, more := r.values[entry(p.left, i+1)]; !more {
+					break
+				}
+				total += logPDF(p.phrase.Family, r.values[entry(p.left, i)], args)
+			}
 		case p.sum0: // differences have sd s: entries = B z, z ~ normal(0, s/√2)
 			for i := 0; ; i++ {
 				x, ok := r.values[entry(p.left, i)]
@@ -238,13 +246,14 @@ func (r *reading) natural(d *density.Density, b *density.Block, q []float64) []f
 }
 
 // free picks the entries of a block that its coordinates determine one to one:
-// all but the last of a vector that sums to zero.
+// all but the last of a vector that sums to zero, and of what rises from 0 to 1
+// those between.
 func free(m *model.Model, d *density.Density, b *density.Block) []int {
 	var keep []int
 	for i, at := range b.Quantities {
 		q := d.Quantities[at]
 		p := m.Parameters[q.Parameter]
-		if p.Shape != model.ZeroSum || q.At < p.Size-1 {
+		if !(p.Shape == model.ZeroSum && q.At == p.Size-1 || p.Shape == model.Rising && (q.At == 0 || q.At == p.Size-1)) {
 			keep = append(keep, i)
 		}
 	}

@@ -190,15 +190,14 @@ func (b *builder) evaluateAt(e formula.Expr, plate, units int) []float64 {
 	return out
 }
 
-// takesSteps reports whether an arrow enters with a step for each level. The
-// steps of an ordered parent are free here; SEMANTICS C4's monotone ones are
-// for a later version.
+// takesSteps reports whether an arrow enters with a step for each level, free
+// of each other. Those of an ordered parent go one way if it is asked for.
 func (b *builder) takesSteps(a *study.Arrow) bool {
 	switch b.variable(a.From).Scale {
 	case study.Category:
 		return true
 	case study.Ordered:
-		return a.Form != "slope" && a.Form != "offset"
+		return a.Form == "" || a.Form == study.Steps
 	}
 	return false
 }
@@ -333,31 +332,34 @@ func (b *builder) baseline(d *draft, level int) []formula.Expr {
 }
 
 // term is one arrow's or carried variable's part of the predictor.
-func (b *builder) term(d *draft, a *study.Arrow, carried bool, level int) formula.Expr {
+func (b *builder) term(d *draft, a *study.Arrow, carried bool, level int) (part formula.Expr) {
 	v, p := d.variable.ID, a.From
 	parent := b.model.Variables[b.at[p]]
 	t := Term{Kind: Slope, Variable: b.at[p], With: -1, VariesBy: -1, Carried: carried}
-	defer func() { d.law.Terms = append(d.law.Terms, t) }()
+	defer func() {
+		t.Part = part
+		d.law.Terms = append(d.law.Terms, t)
+	}()
 	if b.takesSteps(a) {
 		t.Kind = Steps
-		if len(a.VariesBy) > 0 || a.Form == "slope" {
-			b.stop(Problem{Code: "form", Variable: v, Place: "arrow",
-				Message: fmt.Sprintf("%s → %s: %s is a category and acts by steps, which this version does not vary by a plate.", p, v, p),
-				Repairs: []Repair{{Label: "Use plain steps", Edit: b.changeArrow(a, func(a *study.Arrow) { a.Form, a.VariesBy = "steps", nil })}}})
+		if reason, repairs := b.stepsFault(a); reason != "" {
+			b.stop(Problem{Code: "form", Variable: v, Place: "arrow", Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
 			return number(0)
 		}
 		i := b.parameter(meaning{role: steps, child: v, parent: p, at: level + 1})
 		t.Parameters = []int{i}
 		return of(b.model.Parameters[i].Name, p)
 	}
-	if a.Form != "" && a.Form != "slope" && !(a.Form == "steps" && parent.Scale == study.Binary) {
-		b.stop(Problem{Code: "form", Variable: v, Place: "arrow",
-			Message: fmt.Sprintf("%s → %s: “%s” is not a form that %s can take.", p, v, a.Form, p),
-			Repairs: []Repair{{Label: "Use a slope", Edit: b.changeArrow(a, func(a *study.Arrow) { a.Form = "slope" })}}})
+	if reason, repairs := b.formFault(d, a); reason != "" {
+		b.stop(Problem{Code: "form", Variable: v, Place: "arrow", Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
 		return number(0)
 	}
-	t.Center = b.center(parent)
-	x := centred(p, t.Center)
+	t.Kind, t.Center = kindOf(a.Form), b.formCenter(a.Form, parent)
+	x, inner := b.bent(d, a.Form, parent)
+	defer func() {
+		t.Parameters = append(t.Parameters, inner...)
+		t.Inner = inner
+	}()
 	if level >= 0 {
 		i := b.parameter(meaning{role: slope, child: v, parent: p})
 		t.Parameters = []int{i}
@@ -389,20 +391,31 @@ func (b *builder) productTerm(d *draft, p pairOf, level int) formula.Expr {
 			Message: fmt.Sprintf("%s and %s act on %s as a product, which this version knows for numbers, and for one category with a number.", p.first, p.second, v)})
 		return number(0)
 	}
-	t.WithCenter = b.center(second)
+	for _, p := range [2]string{p.first, p.second} {
+		if form := d.formTo(p); bends(form) && form != study.Log {
+			a := d.arrows[slices.IndexFunc(d.arrows, func(a *study.Arrow) bool { return a.From == p })]
+			b.stop(Problem{Code: "form", Variable: v, Place: "arrow",
+				Message: fmt.Sprintf("%s → %s is of the form “%s”, of which this version knows no product.", p, v, form),
+				Repairs: []Repair{{Label: "Use a slope", Edit: b.changeArrow(a, func(a *study.Arrow) { a.Form = study.Slope })}}})
+			return number(0)
+		}
+	}
+	t.WithCenter = b.formCenter(d.formTo(p.second), second)
+	y, _ := b.bent(d, d.formTo(p.second), second)
 	if first.Scale == study.Category {
 		i := b.parameter(meaning{role: stepsProduct, child: v, parent: p.first, with: p.second})
 		t.Parameters = []int{i}
-		return times(of(b.model.Parameters[i].Name, p.first), centred(p.second, t.WithCenter))
+		return times(of(b.model.Parameters[i].Name, p.first), y)
 	}
-	t.Center = b.center(first)
+	t.Center = b.formCenter(d.formTo(p.first), first)
+	x, _ := b.bent(d, d.formTo(p.first), first)
 	i := b.parameter(meaning{role: product, child: v, parent: p.first, with: p.second})
 	t.Parameters = []int{i}
 	var coefficient formula.Expr = named(b.model.Parameters[i].Name)
 	if level >= 0 {
 		coefficient = &formula.Element{Vector: named(b.model.Parameters[i].Name), At: level}
 	}
-	return times(times(coefficient, centred(p.first, t.Center)), centred(p.second, t.WithCenter))
+	return times(times(coefficient, x), y)
 }
 
 // center is the middle of a parent's plausible range (SEMANTICS C1).

@@ -137,15 +137,21 @@ const (
 	Offset
 	Product
 	GroupMean // mean of a parent within a held plate (SEMANTICS A6)
+	Log
+	OneWay     // steps of an ordered parent that all go the same way
+	Threshold  // no change below a point
+	Saturating // less and less change towards a limit
 )
 
 // A Term of a default linear predictor.
 type Term struct {
 	Kind       TermKind
-	Variable   int // the parent; -1 for a baseline
-	With       int // the other parent of a product; -1 otherwise
-	Parameters []int
-	Center     float64
+	Variable   int          // the parent; -1 for a baseline
+	With       int          // the other parent of a product; -1 otherwise
+	Parameters []int        // coefficients first
+	Inner      []int        // those of Parameters that shape what the coefficient takes: a threshold, the shares of a rise
+	Part       formula.Expr // what it adds to the predictor; of a category child to that of its first level
+	Center     float64      // the value of the parent at which the term is 0
 	WithCenter float64
 	VariesBy   int // plate, -1 = none
 	Carried    bool
@@ -172,6 +178,7 @@ const (
 	Simplex          // entries positive with sum 1
 	ByPlate          // one entry per level of a plate, normal around Mean with sd SD; Prior is empty
 	Unrecorded       // missing entries of the variable Of, in the order of Variable.Missing; its law is their prior, and Prior is empty
+	Rising           // the first entry is 0, the last 1, those between uniform in rising order: the rises are Dirichlet(1); Prior is empty
 	Cuts             // K-1 ordered cut points; the K shares of the levels at predictor 0 are Dirichlet(1); Prior is empty
 )
 

@@ -25,9 +25,12 @@ const (
 	stepsProduct             // a slope that differs by a category's level
 	argument                 // sigma, k, shape, …
 	cutPoints
-	free   // declared by the user
-	freeBy // by a plate
-	freeSD // τ of it
+	shares    // of a rise, at each level of an ordered parent
+	threshold // of a parent, below which nothing changes
+	halfway   // where a saturating effect has reached half its limit
+	free      // declared by the user
+	freeBy    // by a plate
+	freeSD    // τ of it
 )
 
 // A meaning says which parameter of which law a canonical name is.
@@ -63,6 +66,14 @@ func (b *builder) nameParameters() {
 			b.name("step_"+p+"_"+v, meaning{role: steps, child: v, parent: p})
 		}
 		for _, p := range d.arrows {
+			switch p.Form {
+			case study.OneWay:
+				b.name("share_"+p.From+"_"+v, meaning{role: shares, child: v, parent: p.From})
+			case study.Threshold:
+				b.name("theta_"+p.From+"_"+v, meaning{role: threshold, child: v, parent: p.From})
+			case study.Saturating:
+				b.name("half_"+p.From+"_"+v, meaning{role: halfway, child: v, parent: p.From})
+			}
 			for _, l := range b.study.Plates {
 				b.name("beta_"+p.From+"_"+v+"_"+clean(l.Name), meaning{role: slopeBy, child: v, parent: p.From, plate: l.Name})
 				b.name("tau_"+p.From+"_"+v+"_"+clean(l.Name), meaning{role: slopeSD, child: v, parent: p.From, plate: l.Name})
@@ -144,6 +155,12 @@ func (b *builder) symbol(m meaning) string {
 		return formula.Symbol(b.draftOf(m.child).family.Arguments[m.at].Greek) + "_" + m.child
 	case cutPoints:
 		return "cut_" + m.child
+	case shares:
+		return "share_" + m.parent + "→" + m.child
+	case threshold:
+		return "θ_" + m.parent + "→" + m.child
+	case halfway:
+		return "half_" + m.parent + "→" + m.child
 	case freeBy, freeSD:
 		stem := formula.Symbol(m.name)
 		if m.role == freeSD {
@@ -195,6 +212,12 @@ func (b *builder) unit(d *draft, parents ...string) string {
 		u := p.Unit
 		if u == "" {
 			u = "unit of " + id
+		}
+		switch d.formTo(id) {
+		case study.OneWay, study.Saturating: // per the whole change
+			continue
+		case study.Log:
+			u = "log " + u
 		}
 		per += " per " + u
 	}

@@ -204,7 +204,7 @@ func (b *builder) otherSlopes(id string) bool {
 
 func aboutArrows(r role) bool {
 	switch r {
-	case slope, slopeBy, slopeSD, steps, product, stepsProduct:
+	case slope, slopeBy, slopeSD, steps, product, stepsProduct, shares, threshold, halfway:
 		return true
 	}
 	return false
@@ -379,14 +379,8 @@ func (b *builder) unusedArrows(d *draft, at Problem, fix func(string) study.Edit
 		p := at
 		p.Code, p.Span = "unused-arrow", formula.Span{Start: len(at.Text), End: len(at.Text)}
 		p.Message = fmt.Sprintf("the arrow %s → %s is drawn, but the formula of %s does not use %s", a.From, v, v, a.From)
-		term := fmt.Sprintf(" + %s * %s", b.names[meaning{role: slope, child: v, parent: a.From}], a.From)
-		if b.takesSteps(a) {
-			term = fmt.Sprintf(" + %s of %s", b.names[meaning{role: steps, child: v, parent: a.From}], a.From)
-		} else if a.Form == "offset" {
-			term = " + log " + a.From
-		}
 		p.Repairs = []Repair{
-			{Label: "Add the term", Edit: fix(at.Text + term)},
+			{Label: "Add the term", Edit: fix(at.Text + " + " + b.typedTerm(a))},
 			{Label: "Delete the arrow", Edit: removeArrow(b.rival.Name, a.From, v)},
 		}
 		b.report(p)

@@ -100,9 +100,10 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		if levels {
 			vector(v.Levels)
 		}
-		p.Prior = b.normal(0, round(w/(1.96*root*b.rangeOf(parent))))
-		p.Prior.FromData = d.span.fromData || !parent.RangeGiven
-		p.Why = d.reason() + seenRange(parent)
+		form := d.formTo(m.parent)
+		p.Prior = b.normal(0, round(w/(1.96*root*b.reach(form, parent))))
+		p.Prior.FromData = d.span.fromData || seenFor(form, parent) != ""
+		p.Why = d.reason() + b.formReason(form, parent) + seenFor(form, parent)
 	case steps: // C4
 		parent := b.model.Variables[b.at[m.parent]]
 		p.Unit = b.unit(d)
@@ -123,13 +124,13 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 		// parent as it stands.
 		first, second := b.model.Variables[b.at[m.parent]], b.model.Variables[b.at[m.with]]
 		p.Prior.FromData = d.span.fromData || !second.RangeGiven
-		reach := b.rangeOf(second)
+		reach := b.reach(d.formTo(m.with), second)
 		p.Unit = b.unit(d, m.with)
 		if m.role == stepsProduct {
 			vector(first.Levels)
 		} else {
 			p.Unit = b.unit(d, m.parent, m.with)
-			reach *= b.rangeOf(first) / 2
+			reach *= b.reach(d.formTo(m.parent), first) / 2
 			p.Prior.FromData = p.Prior.FromData || !first.RangeGiven
 			if levels {
 				vector(v.Levels)
@@ -167,7 +168,7 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 	case slopeSD: // C5
 		parent := b.model.Variables[b.at[m.parent]]
 		p.Unit, p.Support = b.unit(d, m.parent), catalog.Positives
-		p.Prior = b.halfNormal(round(w / (1.96 * root * b.rangeOf(parent)) / 2))
+		p.Prior = b.halfNormal(round(w / (1.96 * root * b.reach(d.formTo(m.parent), parent)) / 2))
 		p.Prior.FromData = d.span.fromData || !parent.RangeGiven
 		p.Why = "half the default sd of " + b.symbol(meaning{role: slope, child: m.child, parent: m.parent}) + "; " + d.span.words + seenRange(parent)
 	case cutPoints: // C4
@@ -176,6 +177,8 @@ func (b *builder) defaultPrior(d *draft, m meaning, p *Parameter) {
 			p.Entries = append(p.Entries, v.Levels[k-1]+" | "+v.Levels[k])
 		}
 		p.Why = "any shares of the levels equally plausible, parents at mid-range"
+	case shares, threshold, halfway:
+		b.shapePrior(m, p)
 	case argument: // C5
 		p.Support = d.family.Arguments[m.at].Support
 		b.argumentPrior(d, d.family.Arguments[m.at].Greek, p)
@@ -414,6 +417,9 @@ func (b *builder) userPrior(p *Parameter, own *declaration) {
 		return
 	case p.Shape == Cuts:
 		fault("the cut points of an ordered law have equally plausible shares in this version; another prior cannot be given")
+		return
+	case p.Shape == Rising:
+		fault("the shares of a rise are equally plausible in this version; another prior cannot be given")
 		return
 	case p.Shape == ZeroSum:
 		if x, ok := args[0].(*formula.Number); f.Name != "normal" || !ok || x.Value != 0 || !fixed {

@@ -83,7 +83,7 @@ func anyStudy(t *rapid.T) (*study.Study, *table.Table, study.Question) {
 		from, to := s.Variable(a.From), s.Variable(a.To)
 		numeric := from.Scale != study.Category && from.Scale != study.Ordered && !from.Unmeasured
 		simple := to.Scale != study.Category
-		switch rapid.IntRange(0, 5).Draw(t, "form") {
+		switch rapid.IntRange(0, 6).Draw(t, "form") {
 		case 0:
 			if numeric && simple && len(from.Plates) == 0 {
 				a.VariesBy = []string{"farm"}
@@ -91,6 +91,11 @@ func anyStudy(t *rapid.T) (*study.Study, *table.Table, study.Question) {
 		case 1:
 			if from.Scale == study.Positive && (to.Scale == study.Count || to.Scale == study.Positive) {
 				a.Form = "offset"
+			}
+		case 3:
+			a.Form = rapid.SampledFrom([]string{study.Log, study.OneWay, study.Threshold, study.Saturating}).Draw(t, "bent")
+			if numeric && simple && len(from.Plates) == 0 && rapid.Bool().Draw(t, "bent varies") {
+				a.VariesBy = []string{"farm"}
 			}
 		case 2:
 			for _, o := range d.Arrows {
@@ -175,7 +180,7 @@ func checkStatement(t *rapid.T, m *Model) {
 		if n != 1 {
 			t.Fatalf("%s stands %d times in the statement:\n%s", p.Name, n, m.Statement())
 		}
-		if (p.Prior.Family == nil) != (p.Shape == ByPlate || p.Shape == Cuts) {
+		if (p.Prior.Family == nil) != (p.Shape == ByPlate || p.Shape == Cuts || p.Shape == Rising) {
 			t.Fatalf("%s (shape %d) has prior %v", p.Name, p.Shape, p.Prior.Family)
 		}
 		for i, a := range p.Prior.Arguments {
@@ -245,7 +250,7 @@ func checkNames(t *rapid.T, m *Model) {
 				case *formula.Of:
 					v, _ := m.Name(e.Variable.ID)
 					_, p := m.Name(e.Vector.ID)
-					if v < 0 || p < 0 || m.Parameters[p].Shape != ZeroSum || m.Parameters[p].Size != len(m.Variables[v].Levels) {
+					if v < 0 || p < 0 || m.Parameters[p].Shape != ZeroSum && m.Parameters[p].Shape != Rising || m.Parameters[p].Size != len(m.Variables[v].Levels) {
 						t.Fatalf("%s does not resolve", formula.Format(e))
 					}
 					used[e.Vector.ID] = true

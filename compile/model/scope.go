@@ -93,11 +93,11 @@ func (b *builder) checkName(d *draft, n *formula.Name, place string, fault fault
 		}
 		fault(n.Span, "no-arrow", message, repairs...)
 	case v != nil && (v.Scale == study.Category || v.Scale == study.Ordered && place == "formula"):
-		want := b.names[meaning{role: steps, child: child, parent: n.ID}]
+		want := b.vectorFor(d, n.ID)
 		fault(n.Span, "category", fmt.Sprintf("%s is %s, not a number: write *%s of %s*", n.ID, a(v.Scale), want, n.ID), replace(n.Span, want+" of "+n.ID))
 	case v != nil:
 	case b.declared[n.ID] != nil:
-	case parameter && (m.role == steps || m.role == stepsProduct):
+	case parameter && (m.role == steps || m.role == stepsProduct || m.role == shares):
 		fault(n.Span, "vector", fmt.Sprintf("*%s* has an entry for each level of %s: write *%s of %s*", n.ID, m.parent, n.ID, m.parent), replace(n.Span, n.ID+" of "+m.parent))
 	case parameter && (m.role == baselineBy || m.role == slopeBy || m.role == cutPoints):
 		fault(n.Span, "vector", fmt.Sprintf("*%s* has several entries; write *%s by %s*", n.ID, b.stem(m), m.plate))
@@ -121,6 +121,16 @@ func (b *builder) stem(m meaning) string {
 		m.role = slope
 	}
 	return b.names[m]
+}
+
+// vectorFor is the name of what has an entry for each level of a parent: steps,
+// or the shares of a rise.
+func (b *builder) vectorFor(d *draft, parent string) string {
+	r := steps
+	if d.formTo(parent) == study.OneWay {
+		r = shares
+	}
+	return b.names[meaning{role: r, child: d.variable.ID, parent: parent}]
 }
 
 func carries(d *draft, id string) bool {
@@ -196,10 +206,10 @@ func (b *builder) checkOf(d *draft, e *formula.Of, fault faultFunc, replace func
 	case !hasArrow(d.arrows, v.ID) && !carries(d, v.ID):
 		fault(e.Variable.Span, "no-arrow", fmt.Sprintf("the formula of %s uses *%s*, but no arrow %s → %s is drawn", d.variable.ID, v.ID, v.ID, d.variable.ID),
 			Repair{Label: "Draw the arrow", Edit: b.onto(v.ID, d.variable.ID)})
-	case canonical && (m.role == steps || m.role == stepsProduct) && m.parent == v.ID:
+	case canonical && (m.role == steps || m.role == stepsProduct || m.role == shares) && m.parent == v.ID:
 	case b.declared[e.Vector.ID] != nil && !canonical:
 	default:
-		want := b.names[meaning{role: steps, child: d.variable.ID, parent: v.ID}]
+		want := b.vectorFor(d, v.ID)
 		fault(e.Vector.Span, "unknown-name", fmt.Sprintf("*%s* has no entries for the levels of %s; did you mean *%s*?", e.Vector.ID, v.ID, want), replace(e.Vector.Span, want))
 	}
 }

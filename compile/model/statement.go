@@ -369,6 +369,8 @@ func (w *writer) priors() {
 		switch p.Shape {
 		case Cuts:
 			l.Right = "log odds of the running sums of the levels' shares, which are Dirichlet, all 1"
+		case Rising:
+			l.Right = "from 0 at " + p.Entries[0] + " to 1 at " + p.Entries[len(p.Entries)-1] + ", the rises between levels Dirichlet, all 1"
 		case ZeroSum:
 			l.Right = "summing to 0, differences " + w.prior(p)
 		default:

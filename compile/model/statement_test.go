@@ -37,6 +37,7 @@ func specimens() []specimen {
 		{"farms", inFarms(), traps(), beesQuestion(), Full},
 		{"farms-held", inFarms(), traps(), withinFarms(), Held},
 		{"imputed", imputed(), holed(), beesQuestion(), Full},
+		{"forms", bentBees(), traps(), beesQuestion(), Full},
 	}
 }
 

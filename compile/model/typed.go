@@ -99,6 +99,9 @@ func (w *writer) typedPrior(p *Parameter) string {
 	case Cuts:
 		return "# " + p.Name + ": log odds of the running sums of shares, which are Dirichlet with all 1"
 	}
+	if p.Shape == Rising {
+		return left + " ~ uniform with low 0, high 1 # in rising order, the first 0 and the last 1"
+	}
 	switch p.Prior.On {
 	case InverseRoot:
 		left = "1 / sqrt(" + p.Name + ")"

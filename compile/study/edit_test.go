@@ -102,7 +102,7 @@ func TestEditsRefuse(t *testing.T) {
 		{AddData{Data{Name: "traps"}}, "there is a data table named “traps” already"},
 		{AddArrow{nest, Arrow{From: "hedge", To: "hedge"}}, "an arrow cannot join hedge to itself"},
 		{AddArrow{nest, Arrow{From: "bees", To: "hedge"}}, "An arrow bees → hedge would close a cycle: hedge → bees → hedge. If bees acts on hedge only later"},
-		{AddArrow{nest, Arrow{From: "soil", To: "bees", Form: "spiral"}}, "“spiral” is not a form this version knows (slope, steps, offset)"},
+		{AddArrow{nest, Arrow{From: "soil", To: "bees", Form: "spiral"}}, "“spiral” is not a form this version knows (slope, log, steps, one-way steps, threshold, saturating, offset)"},
 		{ChangeArrow{nest, "hedge", "flowers", Arrow{From: "bees", To: "attitude"}}, "An arrow bees → attitude would close a cycle: attitude → hedge → bees → attitude."},
 		{RemoveArrow{nest, "bees", "hedge"}, "there is no arrow bees → hedge"},
 		{AddArc{nest, Arc{A: "pesticide", B: "hedge"}}, "the arc pesticide ↔ hedge is drawn already"},
@@ -356,7 +356,7 @@ func someEdit(t *rapid.T, s *Study) Edit {
 	}
 	arrow := func() Arrow {
 		return Arrow{From: variable("from"), To: variable("to"), Why: "because of \"it\"\n", Prior: "normal with mean 0, sd a",
-			Form: rapid.SampledFrom([]string{"", Slope, Steps, Offset}).Draw(t, "form")}
+			Form: rapid.SampledFrom(append([]string{""}, forms[:]...)).Draw(t, "form")}
 	}
 	law := func() *Law {
 		return &Law{Family: "normal", Formula: "mean = alpha_a + beta_a_b by farm * a", Arguments: []Argument{{"sd", "2 * b"}},

@@ -178,7 +178,7 @@ func TestFileErrors(t *testing.T) {
 		{wrap(`"data": [{"name": "t",` + "\n" + `"keep": [{"variable": "d", "words": "x"}]}]`), `line 4: the row filter of “t” has a condition on d, which is not among the variables`},
 		{wrap("\"dismissed\": [\n{\"rival\": \"R\", \"finding\": \"M1\"}]"), `line 5: a finding is set aside for the rival “R”, which does not exist`},
 		{wrap("\"dismissed\": [\n{\"rival\": \"R\"}]"), `line 5: a finding that was set aside has no "finding"`},
-		{rival("\"arrows\": [\n{\"from\": \"a\", \"to\": \"b\", \"form\": \"spiral\"}]"), `x.arrowroot, line 6: "form": "spiral" is not a form this version knows (slope, steps, offset). The file was not opened and not changed.`},
+		{rival("\"arrows\": [\n{\"from\": \"a\", \"to\": \"b\", \"form\": \"spiral\"}]"), `x.arrowroot, line 6: "form": "spiral" is not a form this version knows (slope, log, steps, one-way steps, threshold, saturating, offset). The file was not opened and not changed.`},
 		{rival("\"arrows\": [\n{\"from\": \"a\", \"to\": \"b\"},\n{\"from\": \"b\", \"to\": \"a\"}]"), "line 7: the arrows of “R” close a cycle: a → b → a"},
 		{rival("\"arrows\": [\n{\"from\": \"a\", \"to\": \"d\"}]"), "line 6: an arrow a → d: d is not on the sheet of “R”"},
 		{rival("\"arrows\": [\n{\"from\": \"a\"}]"), `line 6: an arrow has no "to"`},

@@ -172,7 +172,7 @@ type Prior struct {
 // An Arrow says that one variable acts on another.
 type Arrow struct {
 	From, To   string
-	Form       string   // "" = slope (or steps, from a category); "slope", "steps", "offset"
+	Form       string   // "" = slope (or steps, from a category or ordered); else a word below
 	With       []string // other parents of To with which this arrow also acts as a product
 	VariesBy   []string // plates over which its slope varies
 	Prior      string   // for its coefficient; "" = default
@@ -221,9 +221,13 @@ const (
 
 // Words of Arrow.Form and Law.Treat.
 const (
-	Slope  = "slope"
-	Steps  = "steps"
-	Offset = "offset"
+	Slope      = "slope"
+	Steps      = "steps"
+	Offset     = "offset"
+	Log        = "log"
+	OneWay     = "one-way steps"
+	Threshold  = "threshold"
+	Saturating = "saturating"
 
 	Given    = "given"
 	Modelled = "modelled"

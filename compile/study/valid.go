@@ -258,7 +258,8 @@ func joined(part any, a, b string) string {
 	return a + " → " + b
 }
 
-var forms = [...]string{Slope, Steps, Offset}
+// forms are the words of Arrow.Form.
+var forms = [...]string{Slope, Log, Steps, OneWay, Threshold, Saturating, Offset}
 
 func (c *checker) checkLaw(n *Node) {
 	l := n.Law
