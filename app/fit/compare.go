@@ -46,6 +46,7 @@ type ComparingProgress struct {
 // A Comparison says how well rivals predict an outcome that they have not seen
 // (SEMANTICS D). It never changes.
 type Comparison struct {
+	Question  study.Question
 	Outcome   string
 	Plate     string // each unit left out is one of its levels; "" = one entry of the outcome
 	KnownOnly bool   // the outcome varies by groups, and new rows of known ones were predicted
@@ -118,7 +119,7 @@ func Compare(ctx context.Context, req CompareRequest, watch func(ComparingProgre
 	}
 	first := all[0]
 	out := &Comparison{
-		Outcome: req.question().Outcome, Plate: units.plate, Units: units.names, Entries: len(first.observed), Seed: req.Seed,
+		Question: req.question(), Outcome: req.question().Outcome, Plate: units.plate, Units: units.names, Entries: len(first.observed), Seed: req.Seed,
 		KnownOnly: req.KnownGroups && slices.ContainsFunc(all, func(c *contender) bool { return len(c.variedBy()) > 0 }),
 	}
 	made := make(map[string]*Fitted) // by fingerprint
