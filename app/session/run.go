@@ -59,6 +59,7 @@ func (s *Session) Fit() {
 				results[rival] = result
 				s.results = results
 				s.deriveStandings()
+				s.check(rival)
 			}
 			s.show()
 		})

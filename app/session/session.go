@@ -5,7 +5,9 @@
 //
 // Read session.go (edits and history), derive.go (what follows from the
 // document), reading.go (what follows from the arrows alone), evidence.go (what
-// the data say of it), run.go (fits), files.go (open, save, recover).
+// the data say of it), mistakes.go (what may be wrong in the drawing), run.go
+// (fits), stale.go (which of them are out of date), checks.go (can a fit
+// reproduce its data?), files.go (open, save, recover).
 package session
 
 import (
@@ -20,6 +22,7 @@ import (
 	"arrowroot/compile/graph"
 	"arrowroot/compile/mistake"
 	"arrowroot/compile/model"
+	"arrowroot/compile/replicate"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 	"arrowroot/infer"
@@ -57,6 +60,10 @@ type View struct {
 	Result       *fit.Result // of this rival and question; nil = not fitted
 	Stale        bool        // Result belongs to an earlier version
 	FitError     error
+	Checks       *replicate.Checks // whether Result can reproduce its data; nil = not known
+	Checking     bool              // that is being found out
+	ChecksDone   float64           // share of it
+	ChecksError  error
 	Results      map[string]*fit.Result // last result of each rival
 	StaleResults map[string]bool        // those of Results that belong to an earlier version
 
@@ -84,6 +91,7 @@ type Session struct {
 	tables    map[string]*loaded
 	results   map[string]*fit.Result
 	standings map[string]*standing // of fitted rivals that are not on the sheet
+	checkers  map[string]*checker  // of fitted rivals
 	running   context.CancelFunc
 	run       int
 	progress  infer.Progress
@@ -114,6 +122,7 @@ func New(post func(func())) *Session {
 // Close stops what still goes on behind the window.
 func (s *Session) Close() {
 	s.Cancel()
+	s.stopCheckers()
 	s.derived.reader.stop()
 	s.derived.tester.stop()
 	s.consider.drop()
@@ -210,6 +219,7 @@ func (s *Session) replace(doc *study.Study, path string) {
 	s.run++ // a fit still on its way belongs to the old document
 	s.running = nil
 	s.history, s.future = nil, nil
+	s.stopCheckers()
 	s.results, s.standings = make(map[string]*fit.Result), make(map[string]*standing)
 	s.fitError, s.notice = nil, ""
 	s.recovered = s.recovery.find(path, doc)
@@ -264,6 +274,7 @@ func (s *Session) show() {
 	}
 	v.StaleResults = s.staleResults()
 	v.Result, v.Stale = s.results[s.rival], v.StaleResults[s.rival]
+	s.showChecks(v)
 	s.view = v
 	for _, f := range s.listeners {
 		f(v)
