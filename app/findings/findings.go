@@ -5,7 +5,9 @@
 // Read the files in this order: findings.go (what is handed over), ask.go (what
 // is asked), sheet.go (the graph that is read: the sheet with row filters drawn
 // as nodes), read.go (how the sections come about), then a file for each
-// section, and sentences.go.
+// section (verdict.go, paths.go, adjustment.go, controls.go, direct.go,
+// beyond.go, laws.go, rows.go, contradictions.go, equivalence.go), and
+// sentences.go.
 package findings
 
 import (

@@ -4,9 +4,11 @@
 //
 // Read fit.go (what goes in and comes out), question.go (questions that cannot
 // be answered yet), sample.go (blocks in rounds), quantities.go (parameters as
-// numbers), contrast.go (crude, held and full model side by side), onelaw.go
-// (one of them), number.go (a contrast as a number), paint.go (what the data
-// taught); compare.go (rivals by how well they predict), comparable.go (which
+// numbers), contrast.go (crude, held and full model side by side), claims.go and
+// limited.go (what the arrows allow to be said of them), onelaw.go (one of them),
+// number.go (a contrast as a number), howwrong.go (how strong an unmeasured cause
+// would have to be), paint.go (what the data taught), replicate.go (can the model
+// reproduce its data); compare.go (rivals by how well they predict), comparable.go (which
 // can be compared), predicting.go (the score of one).
 package fit
 

@@ -1,6 +1,8 @@
 // Package paint turns what a fit says of arrows and nodes into colours, signs
 // and words for the sheet (SEMANTICS G). The window and the report both paint
 // from here.
+//
+// Read paint.go (the sheet), strength.go and checks.go (two plots).
 package paint
 
 import (

@@ -1,5 +1,8 @@
 // Package report writes one HTML file in which nothing can disagree: verdict,
 // figure, statement and result all come from the same study and the same fit.
+//
+// Read report.go (what the page holds), reading.go and checks.go (two of its
+// parts), page.html (how it looks).
 package report
 
 import (

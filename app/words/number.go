@@ -1,5 +1,8 @@
 // Package words says results in sentences with the user's own names, the same
 // in the window, the report and the batch program.
+//
+// Read number.go (how numbers are written), condition.go (what a question asks
+// about), result.go (the answer), then coefficient.go, howwrong.go and checks.go.
 package words
 
 import (

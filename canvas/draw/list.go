@@ -6,8 +6,8 @@
 // painter multiplies by the scale of the screen. Read list.go (what a list
 // holds), path.go (curves), text.go and font.go (text and its measure), then
 // paint.go with stroke.go, glyph.go and blend.go (the raster painter), svg.go
-// (paper), and the pictures: axis.go with density.go, intervals.go and
-// dots.go, thumb.go.
+// (paper), and the pictures: axis.go with density.go, intervals.go, dots.go,
+// strength.go and profile.go; thumb.go.
 package draw
 
 import "image/color"

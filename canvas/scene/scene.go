@@ -5,11 +5,11 @@
 //
 // Read scene.go and paint.go (what goes in), geometry.go and curve.go (where
 // things stand), build.go with nodes.go, arrows.go, paths.go, marks.go,
-// plates.go and preview.go (the picture), hit.go (what the pointer meets), event.go, hand.go
-// and keys.go (the tools), pick.go and naming.go (selections and typed names),
-// arrange.go with arrange_layers.go, arrange_order.go, arrange_heights.go and
-// arrange_settle.go (the layout, step by step), fit.go, and palette.go with
-// color.go.
+// plates.go, notes.go and preview.go (the picture), hit.go (what the pointer
+// meets), event.go, hand.go and keys.go (the tools), pick.go and naming.go
+// (selections and typed names), arrange.go with arrange_layers.go,
+// arrange_order.go, arrange_heights.go and arrange_settle.go (the layout, step
+// by step), fit.go, and palette.go with color.go.
 //
 // Positions come in two kinds: sheet units, in which nodes are placed and
 // saved (study.Point), and dips of the widget (draw.Point). A View joins them.

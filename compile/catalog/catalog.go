@@ -3,9 +3,10 @@
 // sampler, documentation and citation. The checker, the statement, completion,
 // help and lowering all read it.
 //
-// Read the types here, then the rows in families.go and functions.go; the
-// distribution functions stand in continuous.go, heavy.go, skew.go, circle.go and
-// discrete.go.
+// Read the types here, then the rows in families.go and functions.go, and what
+// is made of them: zeros.go (further zeros) and bounds.go (censored and
+// truncated values). The distribution functions stand in continuous.go,
+// heavy.go, skew.go, circle.go and discrete.go, over invert.go and incbeta.go.
 package catalog
 
 import (

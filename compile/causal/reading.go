@@ -5,18 +5,20 @@
 // variables are left out. It knows nothing of laws or data, so a half-typed
 // formula never blanks it.
 //
-// Read the files in this order: separation.go (which sets separate), path.go
-// and walk.go (the paths), adjust.go and separators.go (the sets),
-// precision.go, ways.go, project.go, identify.go, carriers.go and intervene.go (what
-// SEMANTICS A1 and B2 ask for), plates.go and shared.go (comparing within groups), verdict.go
-// (all of it in a sentence).
+// Read the files in this order: reading.go (what is handed over), separation.go
+// (which sets separate), path.go, walk.go and stream.go (the paths), forbidden.go
+// and faults.go (what must not be held), adjust.go over separators.go and flow.go
+// (the sets), precision.go, ways.go, project.go, identify.go with culprits.go,
+// carriers.go and intervene.go (what SEMANTICS A1 and B2 ask for), plates.go and
+// shared.go (comparing within groups), verdict.go (all of it in a sentence, with
+// words.go). sets.go and bitset.go hold sets of nodes.
 //
 // A Reading is cheap enough to follow the hand. What takes longer is asked for
 // by itself: estimand.go and formula.go (identification with a formula), aim.go,
 // direct.go and controls.go (adjustment in full), frontdoors.go and
 // instruments.go, implications.go, functional.go and tetrads.go (what the data
-// could contradict), pattern.go and equivalence.go (what they never could),
-// selection.go, kept.go and missingness.go. What could go on without end is bounded
+// could contradict), pattern.go, equivalence.go and compare.go (what they never
+// could), selection.go, kept.go and missingness.go. What could go on without end is bounded
 // by budget.go and says what it left out.
 //
 // Nodes are numbers 0…n-1 of a *graph.Graph throughout; sets are sorted slices.

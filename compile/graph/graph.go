@@ -1,6 +1,8 @@
 // Package graph is the dense view of one rival's arrows that algorithms work
 // on: nodes are 0…n-1, neighbours are slices. It knows nothing of laws, layout
 // or data. A Graph never changes once it is made.
+//
+// Read graph.go (what it holds), order.go (topological order), keep.go (parts).
 package graph
 
 import (

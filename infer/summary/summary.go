@@ -4,8 +4,8 @@
 // 16(2):667–718.
 //
 // Read summary.go (one quantity), trust.go (the verdict), then the diagnostics:
-// rhat.go, ess.go and energy.go, over sample.go, scores.go and
-// autocovariance.go.
+// rhat.go, ess.go and energy.go, over sample.go, chains.go, scores.go,
+// quantile.go and autocovariance.go.
 package summary
 
 import (
