@@ -48,6 +48,21 @@ func readColumns(s *study.Study, rival string, t *table.Table, g *graph.Graph) *
 	return c
 }
 
+// constant reports whether a node has one value in all rows that have any.
+func (c *columns) constant(node int) bool {
+	first := math.NaN()
+	for _, i := range c.rows {
+		switch x := c.of[node].values[i]; {
+		case math.IsNaN(x):
+		case math.IsNaN(first):
+			first = x
+		case x != first:
+			return false
+		}
+	}
+	return !math.IsNaN(first)
+}
+
 func (c *columns) read(g *graph.Graph, node int) (*column, string) {
 	id := g.Names[node]
 	v := c.study.Variable(id)

@@ -342,6 +342,9 @@ func TestOddData(t *testing.T) {
 		}
 		w.numbers("k", study.Real, k)
 		e := tested(t, w.request(t))
+		if !slices.ContainsFunc(e.Untested, func(u Untested) bool { return u.Reason == "k is the same in all rows that are used" }) {
+			t.Errorf("%d rows: nothing is said of the constant: %+v", n, e.Untested)
+		}
 		for _, f := range e.Findings {
 			if f.Verdict != TooFew {
 				t.Errorf("%d rows, copies %v: %s", n, copies, f.Sentence)
@@ -378,7 +381,7 @@ func TestChosenRows(t *testing.T) {
 	}
 	req.Study = s
 	e := tested(t, req)
-	if e.Rows >= 300 || e.Rows < 100 || len(e.Findings) != 0 || len(e.Untested) != 1 || !strings.Contains(e.Untested[0].Reason, "chosen by") {
+	if e.Rows >= 300 || e.Rows < 100 || len(e.Findings) != 0 || len(e.Untested) != 1 || e.Untested[0].Reason != "the rows were chosen by the filter on s, which ties the two together" {
 		t.Errorf("%d rows, %d findings, %+v", e.Rows, len(e.Findings), e.Untested)
 	}
 }

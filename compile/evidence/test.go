@@ -126,7 +126,7 @@ func chosen(req *Request) (*graph.Graph, []int, error) {
 		if v := g.Index(k.Variable); v >= 0 {
 			selected = append(selected, len(spec.Names))
 			spec.Arrows = append(spec.Arrows, [2]int{v, len(spec.Names)})
-			spec.Names = append(spec.Names, "rows kept by "+k.Variable)
+			spec.Names = append(spec.Names, "the filter on "+k.Variable)
 		}
 	}
 	g, err = graph.New(spec)

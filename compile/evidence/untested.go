@@ -19,6 +19,11 @@ func (b *bench) untestable(s causal.Independence) string {
 			return b.data.lacks[v]
 		}
 	}
+	for _, v := range slices.Concat(s.A, s.B) {
+		if b.data.constant(v) {
+			return fmt.Sprintf("%s is the same in all rows that are used", b.g.Names[v])
+		}
+	}
 	if len(b.req.Selected) > 0 {
 		// Chosen rows show what is left once the choice is known.
 		if known := union(s.Given, b.req.Selected); !causal.Separated(b.g, s.A, s.B, known) {
