@@ -4,6 +4,7 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 
+	"arrowroot/canvas"
 	"arrowroot/canvas/scene"
 )
 
@@ -55,7 +56,10 @@ func (k *dock) update() {
 
 // sheetLayout lays the editor out to fill, the dock at the top left, the
 // banner beside it, and the ways to begin in the middle.
-type sheetLayout struct{ ground, editor, dock, banner, empty fyne.CanvasObject }
+type sheetLayout struct {
+	editor                      *canvas.Editor
+	ground, dock, banner, empty fyne.CanvasObject
+}
 
 func (l *sheetLayout) Layout(_ []fyne.CanvasObject, s fyne.Size) {
 	m := l.dock.MinSize()
@@ -65,7 +69,13 @@ func (l *sheetLayout) Layout(_ []fyne.CanvasObject, s fyne.Size) {
 	place(l.dock, 8, 10, m.Width, min(m.Height, s.Height-14))
 	w := min(640, s.Width-left-10)
 	if c, ok := l.banner.(*fyne.Container); ok {
-		place(l.banner, left, 10, w, stackHeight(c, w))
+		h := stackHeight(c, w)
+		place(l.banner, left, 10, w, h)
+		cover := float32(0)
+		if c.Visible() {
+			cover = 10 + h
+		}
+		l.editor.SetCover(cover)
 	}
 	ew := min(430, s.Width-left-16)
 	eh := heightFor(l.empty, ew)

@@ -56,7 +56,7 @@ func New(app fyne.App, s *session.Session, post func(func())) *Window {
 	banner, empty, dock := newBanner(d), newEmpty(d), newDock(d)
 	d.status = newStatus(d)
 	ground := filled(tokenSheet)
-	sheet := container.New(&sheetLayout{ground, d.editor, dock.object, banner.object, empty.object}, ground, d.editor, empty.object, dock.object, banner.object)
+	sheet := container.New(&sheetLayout{d.editor, ground, dock.object, banner.object, empty.object}, ground, d.editor, empty.object, dock.object, banner.object)
 	left := container.New(&railLayout{share: 0.62}, ledger.object, hairline(), rivals.pane)
 	d.drawer = newDrawer(d)
 	d.frame = newFrame(d.kit, strip.object, left, sheet, d.status.object, details.pane, d.drawer.object, remembered(app.Preferences()))

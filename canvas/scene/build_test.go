@@ -236,7 +236,7 @@ func TestFit(t *testing.T) {
 			in.Width, in.Height = size[0], size[1]
 			in.View = Fit(in)
 			_, m := Build(in)
-			r, _ := m.bounds()
+			r, _ := m.Bounds()
 			if in.View.Zoom > MinZoom && (r.X < 0 || r.Y < 0 || r.X+r.W > in.Width || r.Y+r.H > in.Height) {
 				t.Errorf("%s in %v: %v at %v", in.Rival.Name, size, r, in.View)
 			}

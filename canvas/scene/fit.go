@@ -10,7 +10,7 @@ func Fit(in Input) View {
 	in.At = in.layout()
 	for range 3 { // names have a least size, so what is seen depends on the zoom
 		b := measure(&in)
-		r, ok := b.bounds()
+		r, ok := b.Bounds()
 		if !ok || in.Width <= 2*margin || in.Height <= 2*margin {
 			return View{}
 		}

@@ -76,9 +76,9 @@ func (m *Map) Within(r draw.Rect) []string {
 	return ids
 }
 
-// bounds is the rectangle that everything on the sheet fills, in dips of the
+// Bounds is the rectangle that everything on the sheet fills, in dips of the
 // widget; ok is false for an empty sheet.
-func (m *Map) bounds() (r draw.Rect, ok bool) {
+func (m *Map) Bounds() (r draw.Rect, ok bool) {
 	add := func(s draw.Rect) {
 		if ok {
 			s = s.Union(r)
