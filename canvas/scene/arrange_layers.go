@@ -53,6 +53,40 @@ func (a *arranger) layer() {
 			p.layer = min(max(near[(len(near)-1)/2], lo), hi)
 		}
 	}
+	a.spread()
+}
+
+// spread sets the nodes without arrows in rows over the layers, not all in the
+// first, where those of a data file would make one high column.
+func (a *arranger) spread() {
+	var loose []int
+	columns := 0
+	for v := range a.real {
+		p := &a.spots[v]
+		switch {
+		case v == a.goal:
+		case len(p.ins)+len(p.outs) == 0:
+			loose = append(loose, v)
+		default:
+			columns = max(columns, p.layer+1)
+		}
+	}
+	if a.goal >= 0 && columns > 0 {
+		columns = min(columns, max(a.spots[a.goal].layer, 1))
+	}
+	columns = max(columns, int(math.Ceil(math.Sqrt(float64(len(loose))))))
+	for i, v := range loose {
+		a.spots[v].layer = i % columns
+	}
+	if a.goal < 0 || len(loose) == 0 {
+		return
+	}
+	shift := min(columns, len(loose)) - a.spots[a.goal].layer
+	for v, after := range a.after(a.goal) {
+		if after {
+			a.spots[v].layer += max(shift, 0)
+		}
+	}
 }
 
 // after marks a node and all it causes.
