@@ -66,7 +66,7 @@ func (f *field) fit() {
 func (k *kit) note(text, hint string, commit func(string)) *field {
 	f := k.field(text, hint, commit)
 	f.MultiLine = true
-	f.Wrapping = fyne.TextWrapBreak // wrapped at words, Fyne 2.8 loses a space that is typed at the end of a line
+	f.Wrapping = fyne.TextWrapWord
 	f.SetMinRowsVisible(4)
 	return f
 }
@@ -83,13 +83,25 @@ func (f *field) done() {
 }
 
 func (f *field) FocusLost() {
+	f.wrap(fyne.TextWrapWord)
 	f.Entry.FocusLost()
 	f.done()
 }
 
 func (f *field) FocusGained() {
+	f.wrap(fyne.TextWrapBreak)
 	f.Entry.FocusGained()
 	reveal(f)
+}
+
+// wrap breaks the lines of a note at words while it is read and at letters
+// while it is typed: wrapped at words, Fyne 2.8 loses a space that is typed at
+// the end of a line.
+func (f *field) wrap(how fyne.TextWrap) {
+	if f.MultiLine && f.Wrapping != how {
+		f.Wrapping = how
+		f.Refresh()
+	}
 }
 
 func (f *field) TypedKey(e *fyne.KeyEvent) {

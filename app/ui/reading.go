@@ -225,11 +225,14 @@ func (p *readingPage) pin(l *readingLine) {
 	p.d.trace.note(p.d)
 }
 
+// navWidth is room for the longest subject beside "14 fail".
+const navWidth = 256
+
 // navLayout sets a narrow list beside a wide one.
 type navLayout struct{}
 
 func (navLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
-	w := min(246, 0.36*s.Width)
+	w := min(navWidth, 0.36*s.Width)
 	place(o[0], 0, 0, w, s.Height)
 	place(o[1], w, 8, 1, s.Height-16)
 	place(o[2], w+1, 0, s.Width-w-1, s.Height)

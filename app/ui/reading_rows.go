@@ -132,7 +132,7 @@ func (p *readingPage) press(l *readingLine, action string, act func()) *press {
 	d := p.d
 	dot := filled(l.tone.token())
 	dot.radius, dot.least = 4, fyne.NewSize(8, 8)
-	kind := newLabel(l.kind, sizeBody, l.tone.token(), fyne.TextStyle{}).shrinkTo(20)
+	kind := newProse(sizeBody, span{text: l.kind, token: l.tone.token()})
 	text := newProse(sizeBody, l.spans()...)
 	objects := []fyne.CanvasObject{dot, kind, text}
 	var button *press
@@ -181,7 +181,7 @@ func (l *lineLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
 	x := float32(16)
 	show(kind > 0, o[1])
 	if kind > 0 {
-		place(o[1], x, 0, kind, first)
+		place(o[1], x, 0, kind, s.Height)
 		x += kind + 8
 	}
 	place(o[2], x, 0, text, s.Height)
@@ -191,8 +191,11 @@ func (l *lineLayout) Layout(o []fyne.CanvasObject, s fyne.Size) {
 }
 
 func (l *lineLayout) heightFor(o []fyne.CanvasObject, width float32) float32 {
-	_, text, button := l.line.columns(width+2*rowPad, l.action)
+	kind, text, button := l.line.columns(width+2*rowPad, l.action)
 	h := heightFor(o[2], text)
+	if kind > 0 {
+		h = max(h, heightFor(o[1], kind))
+	}
 	if button > 0 {
 		h = max(h, heightFor(o[3], button))
 	}

@@ -1,0 +1,54 @@
+package ui
+
+import (
+	"testing"
+
+	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/test"
+)
+
+// No subject of the Reading page is cut short beside the loudest count.
+func TestReadingSubjectsFit(t *testing.T) {
+	b := newBench(t)
+	alarm := fyne.MeasureText("88 fail", sizeSmall, fyne.TextStyle{}).Width
+	for _, s := range subjects(b.desk) {
+		const pads = 2*8 + 6 + 2*6 // of the row, between its words, of the list
+		name := sentenceCase(s.name)
+		if w := fyne.MeasureText(name, sizeBody, fyne.TextStyle{}).Width + alarm + pads; w > navWidth {
+			t.Errorf("%q needs %.0f of %d", name, w, int(navWidth))
+		}
+	}
+}
+
+// The kind of a finding wraps when it is longer than its column.
+func TestLongKindOfFindingWraps(t *testing.T) {
+	b := newBench(t)
+	b.say("u -> x")
+	b.read()
+	p := b.drawer.pages[0].(*readingPage)
+	height := func(kind string) float32 {
+		l := &readingLine{key: "k", kind: kind, text: "One line."}
+		return heightFor(p.press(l, "", nil), 600)
+	}
+	if short, long := height("law"), height("law with carried terms of many"); long < 1.5*short {
+		t.Errorf("a long kind is %.0f high, a short one %.0f", long, short)
+	}
+}
+
+// A note breaks at words while it is read.
+func TestNoteBreaksAtWordsWhenLeft(t *testing.T) {
+	test.NewTempApp(t).Settings().SetTheme(Theme{})
+	b := newBench(t)
+	f := b.note("Hedges give bees nest sites as well as flowers.", "", nil)
+	if f.Wrapping != fyne.TextWrapWord {
+		t.Error("a note that nobody types in breaks within words")
+	}
+	f.FocusGained()
+	if f.Wrapping != fyne.TextWrapBreak {
+		t.Error("a note that is typed in can lose a space at the end of a line")
+	}
+	f.FocusLost()
+	if f.Wrapping != fyne.TextWrapWord {
+		t.Error("left, a note breaks within words")
+	}
+}
