@@ -70,6 +70,9 @@ func quantities(m *model.Model, i int, p *model.Parameter) []Quantity {
 	out := make([]Quantity, entries(m, p))
 	for at := range out {
 		q := Quantity{Name: p.Name, Symbol: p.Symbol, Parameter: i, At: at, Block: -1, Constant: coordinates(m, p) == 0}
+		if p.Shape == model.Rising && (at == 0 || at == len(out)-1) {
+			q.Constant = true
+		}
 		if p.Shape != model.Scalar {
 			q.Entry = fmt.Sprint(at + 1)
 			if at < len(names) {

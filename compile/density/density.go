@@ -24,5 +24,5 @@ type Quantity struct {
 	Parameter int    // index in Model.Parameters
 	At        int    // entry of that parameter
 	Block     int    // index in Density.Blocks; -1 for a constant
-	Constant  bool   // cannot move: an entry of a vector that has only one value
+	Constant  bool   // cannot move: an entry of a vector that has only one value, or the first or last of a rise
 }

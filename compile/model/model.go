@@ -8,7 +8,8 @@
 // (what parameters are called, what the user typed), scope.go (what names mean
 // there), gather.go, columns.go, plates.go and conditions.go (data), impute.go
 // (missing entries that stay), ranges.go and priors.go (SEMANTICS C), explain.go
-// (predictors), within.go (group means), examine.go and finite.go (data against
+// (predictors), forms.go (what an arrow's form makes of its parent), band.go (its
+// picture), within.go (group means), examine.go and finite.go (data against
 // laws), question.go (what is asked), statement.go and typed.go (the model in
 // print). problem.go and repair.go hold what goes wrong and how it is mended.
 package model
