@@ -31,6 +31,7 @@ verbs
   fit        the posterior of every quantity, with trust
   replicate  whether the fitted model can reproduce the data
   effect     the question's contrast: crude, held, full model
+  compare    how well the rivals predict what they have not seen
   report     one HTML file with verdict, figure, statement, result and limits
 
 flags
@@ -39,7 +40,7 @@ flags
   -seed N         same study, same seed, same draws (1)
   -chains N       chains side by side, 1 to 64 (4)
   -draws N        draws of each chain, 1 to 1000000; without it, until every quantity is precise enough
-  -out FILE       fit, effect: draws as CSV; replicate: data and replicates as CSV; arrows: the table as CSV; report: the HTML file
+  -out FILE       fit, effect: draws as CSV; replicate: data and replicates as CSV; arrows: the table as CSV; compare: scores by unit as CSV; report: the HTML file
   -paths N        read: at most N paths, 1 to 100000 (500)
   -sets N         read: at most N sets of a kind, 1 to 100000 (100)
   -exposure LIST  read: the effect of these variables, with commas between them
@@ -48,6 +49,8 @@ flags
   -given LIST     read: among those with known values of these
   -with LIST      read: sets to hold that contain these
   -without LIST   read: sets to hold without these
+  -rivals LIST    compare: these rivals; all of them without it
+  -known-groups   compare: predict new rows of known groups, not new groups
 `
 
 // Exit statuses.
@@ -68,6 +71,8 @@ type options struct {
 	paths, sets   int
 
 	exposure, outcome, hold, given, with, without string // lists of IDs
+	rivals                                        string // a list of names
+	knownGroups                                   bool
 }
 
 // errUse is a command line that makes no sense.
@@ -90,7 +95,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 		return wrongUse
 	}
 	verbs := map[string]func(context.Context, *job) (any, error){
-		"read": read, "validate": validate, "arrows": arrows, "check": check, "fit": fitVerb, "effect": effectVerb, "replicate": replicateVerb, "report": reportVerb,
+		"read": read, "validate": validate, "arrows": arrows, "check": check, "fit": fitVerb, "effect": effectVerb, "compare": compareVerb, "replicate": replicateVerb, "report": reportVerb,
 	}
 	verb := verbs[opt.verb]
 	if verb == nil {
@@ -156,6 +161,8 @@ func parse(args []string) (*options, error) {
 	flags.StringVar(&opt.given, "given", "", "")
 	flags.StringVar(&opt.with, "with", "", "")
 	flags.StringVar(&opt.without, "without", "", "")
+	flags.StringVar(&opt.rivals, "rivals", "", "")
+	flags.BoolVar(&opt.knownGroups, "known-groups", false, "")
 	var words []string
 	for len(args) > 0 {
 		if err := flags.Parse(args); err != nil {

@@ -6,6 +6,7 @@ import (
 	"math"
 	"math/rand/v2"
 	"slices"
+	"strings"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/study"
@@ -240,7 +241,10 @@ func (c *contender) claim(req *CompareRequest, s *Scored) {
 		return
 	}
 	claim := claimed(c.graph, &q, limitsOf(req.Study, c.rival, c.graph))
-	s.Identified, s.None, s.HeldEnough, s.Why = claim.identified, claim.none, claim.heldValid, claim.why
+	s.Identified, s.None, s.HeldEnough = claim.identified, claim.none, claim.heldValid
+	if !s.Identified {
+		s.Why = claim.why
+	}
 }
 
 // pair sets every two usable scores against each other.
@@ -261,16 +265,7 @@ func (o *Comparison) pair(all []*contender) {
 			p := Pair{Higher: high.Rival, Lower: low.Rival, Difference: d.Score, Error: d.StandardError}
 			same := causal.SameIndependences(all[j].graph, all[i].graph)
 			p.ByLaws = same.Same
-			switch {
-			case d.Score == 0 && d.StandardError == 0:
-				p.Undecided = "they predict the same"
-			case d.Units < score.Few:
-				p.Undecided = fmt.Sprintf("with %s the standard error is itself too unsure, and at least %d are asked for", plural(d.Units, "unit"), score.Few)
-			case math.Abs(d.Score) <= score.Small:
-				p.Undecided = fmt.Sprintf("a difference up to %d is too small to matter", score.Small)
-			case !d.Decided():
-				p.Undecided = "the difference lies within two standard errors"
-			}
+			p.Undecided = undecided(d)
 			o.Pairs = append(o.Pairs, p)
 		}
 	}
@@ -283,6 +278,24 @@ func (o *Comparison) pair(all []*contender) {
 		}
 		return sign(a.Difference - b.Difference)
 	})
+}
+
+// undecided says why a difference names nobody; "" if it does.
+func undecided(d score.Difference) string {
+	if d.Score == 0 && d.StandardError == 0 {
+		return "they predict the same"
+	}
+	var reasons []string
+	if math.Abs(d.Score) <= score.Small {
+		reasons = append(reasons, fmt.Sprintf("a difference up to %d is too small to matter", score.Small))
+	}
+	if math.Abs(d.Score) <= 2*d.StandardError {
+		reasons = append(reasons, "it lies within two standard errors")
+	}
+	if d.Units < score.Few {
+		reasons = append(reasons, fmt.Sprintf("with %s the standard error is itself too unsure (%d are asked for)", plural(d.Units, "unit"), score.Few))
+	}
+	return strings.Join(reasons, ", and ")
 }
 
 func sign(x float64) int {
@@ -312,7 +325,7 @@ func (o *Comparison) judge() {
 	for _, p := range o.Pairs {
 		laws = laws || p.ByLaws
 		if best != nil && p.Higher == best.Rival && p.Undecided != "" {
-			o.NoBetter = append(o.NoBetter, fmt.Sprintf("%s and %s: %s", p.Higher, p.Lower, p.Undecided))
+			o.NoBetter = append(o.NoBetter, fmt.Sprintf("%s against %s is undecided", p.Higher, p.Lower))
 		}
 	}
 	if o.NoBetter == nil {

@@ -297,7 +297,7 @@ func TestBetterIsNotCause(t *testing.T) {
 		}
 	}
 	few := comparing(t, fmt.Sprintf(ditches, plain+","+collider, ""), ditchData(60, 0))
-	if c := compared(t, few); c.Better != "" || len(c.NoBetter) != 1 || !strings.Contains(c.NoBetter[0], "60 units") {
+	if c := compared(t, few); c.Better != "" || len(c.NoBetter) != 1 || !strings.Contains(c.Pairs[0].Undecided, "60 units") {
 		t.Errorf("with 60 units: better %q, %v", c.Better, c.NoBetter)
 	}
 }

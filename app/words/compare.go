@@ -130,7 +130,7 @@ func PredictionWeights(c *fit.Comparison) string {
 	for i, w := range c.Weights {
 		parts = append(parts, fmt.Sprintf("%s by %s %%", c.Rivals[i].Rival, strconv.Itoa(int(math.Round(100*w)))))
 	}
-	return "The mixture that would have predicted best weighs " + List(parts) + "."
+	return "The mixture that would have predicted best weighs " + List(parts) + "; that is no probability of being right."
 }
 
 // Score is a score or its error: one decimal is more than its error supports.

@@ -25,7 +25,7 @@ func TestComparisonWords(t *testing.T) {
 		"Through herons: score −105.2, standard error 9.0, 4.1 effective parameters; the effect is not identified. It was fitted again without row 7 and row 12, which reweighting could not leave out.",
 		"Through herons scores 106.8 above Apart, standard error 10.2.",
 		"Through herons predicts frogs better than Apart.",
-		"The mixture that would have predicted best weighs Apart by 3 % and Through herons by 97 %.",
+		"The mixture that would have predicted best weighs Apart by 3 % and Through herons by 97 %; that is no probability of being right.",
 		NotCause,
 	}
 	if got := Comparison(c); !slices.Equal(got, want) {
@@ -33,12 +33,12 @@ func TestComparisonWords(t *testing.T) {
 	}
 	c.Plate, c.Units, c.Weights, c.NoWeights, c.Better, c.NoBetter = "pond", make([]string, 12), nil, "a score is withheld", "", []string{"the fit of Apart cannot be trusted"}
 	c.Rivals[0].Withheld, c.Rivals[0].HeldEnough, c.Rivals[1].Replicates = "the fit of Apart cannot be trusted", false, 256
-	c.Pairs[0].ByLaws, c.Pairs[0].Undecided = true, "the difference lies within two standard errors"
+	c.Pairs[0].ByLaws, c.Pairs[0].Undecided = true, "it lies within two standard errors"
 	want = []string{
 		"Each rival predicted frogs (150 entries) of one pond after the other, 12 in all, without having seen that pond, its group effects drawn anew 256 times.",
 		"Apart: no score, since the fit of Apart cannot be trusted; the effect is identified, but not by holding herons.",
 		want[2],
-		"Through herons scores 106.8 above Apart, standard error 10.2: the difference lies within two standard errors; both imply the same independences, so that they differ by laws, not by arrows.",
+		"Through herons scores 106.8 above Apart, standard error 10.2: it lies within two standard errors; both imply the same independences, so that they differ by laws, not by arrows.",
 		"No rival is named as the better predictor: the fit of Apart cannot be trusted.",
 		"No weights are given: a score is withheld.",
 		NotCause,
