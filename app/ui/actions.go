@@ -8,6 +8,7 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/widget"
 
+	"arrowroot/app/paint"
 	"arrowroot/app/session"
 	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
@@ -245,13 +246,25 @@ func (d *desk) setPaint(kind scene.PaintKind) {
 	d.refresh()
 }
 
+// painting colours the sheet as was chosen; nil without a result.
+func (d *desk) painting() *scene.Paint {
+	v := d.view
+	switch {
+	case v.Result == nil || d.paint == "":
+		return nil
+	case d.paint == scene.FitPaint:
+		return paint.Fit(v.Checks, v.Stale)
+	}
+	return paint.Of(v.Result, d.paint, v.Stale)
+}
+
 func (d *desk) paintMenu() {
 	item := func(label string, kind scene.PaintKind) *fyne.MenuItem {
 		m := fyne.NewMenuItem(label, func() { d.setPaint(kind) })
 		m.Checked = d.paint == kind
 		return m
 	}
-	menu := fyne.NewMenu("", item("Effect", scene.EffectPaint), item("Learned", scene.LearnedPaint), item("Trust", scene.TrustPaint), item("None", ""))
+	menu := fyne.NewMenu("", item("Effect", scene.EffectPaint), item("Learned", scene.LearnedPaint), item("Fit", scene.FitPaint), item("Trust", scene.TrustPaint), item("None", ""))
 	up := widget.NewPopUpMenu(menu, d.win.Canvas())
 	at := below(d.painter)
 	up.ShowAtPosition(at.SubtractXY(max(0, up.MinSize().Width-d.painter.Size().Width), 0)) // flush right, within the window

@@ -25,7 +25,7 @@ type page interface {
 }
 
 func newDrawer(d *desk) *drawer {
-	w := &drawer{d: d, pages: []page{newReadingPage(d), newStatementPage(d), newFitPage(d), newEffectPage(d), newRivalsPage(d)}}
+	w := &drawer{d: d, pages: []page{newReadingPage(d), newStatementPage(d), newFitPage(d), newChecksPage(d), newEffectPage(d), newRivalsPage(d)}}
 	var names []string
 	for _, p := range w.pages {
 		names = append(names, p.name())

@@ -160,7 +160,7 @@ func (d *desk) variableSentence(verb, rest string) sentence {
 			return sentence{does: "Show " + rest, run: func() { d.session.ShowRival(rest) }}
 		}
 	case "paint":
-		for _, k := range []scene.PaintKind{scene.EffectPaint, scene.LearnedPaint, scene.TrustPaint} {
+		for _, k := range []scene.PaintKind{scene.EffectPaint, scene.LearnedPaint, scene.FitPaint, scene.TrustPaint} {
 			if strings.HasSuffix(rest, string(k)) && d.view.Result != nil {
 				return sentence{does: "Paint " + string(k), run: func() { d.setPaint(k) }}
 			}

@@ -7,6 +7,7 @@ import (
 
 	"fyne.io/fyne/v2"
 
+	"arrowroot/app/paint"
 	"arrowroot/app/session"
 	"arrowroot/app/words"
 	"arrowroot/canvas/draw"
@@ -105,6 +106,16 @@ func (s *status) legends() []fyne.CanvasObject {
 		say("little")
 		out = append(out, swatches(p.Learned[:], p))
 		say("much")
+	case scene.FitPaint:
+		say("nodes: can the model reproduce the data?")
+		if d.view.Checks == nil {
+			say("not checked yet")
+			break
+		}
+		for i, w := range paint.FitWords {
+			out = append(out, swatches(p.Learned[i:i+1], p))
+			say(paint.FitSigns[i] + " " + w)
+		}
 	case scene.TrustPaint:
 		say("nodes and arrows: can the computation be trusted?")
 		for i, w := range []string{"✓ sound", "! caution", "× unusable"} {

@@ -54,6 +54,7 @@ type said struct {
 	Trust    string            `json:"trust,omitempty"`  // sound, caution, unusable
 	Stale    bool              `json:"stale,omitempty"`  // the result belongs to an earlier version
 	Effect   []string          `json:"effect,omitempty"` // the sentences of the Effect page
+	Checks   []string          `json:"checks,omitempty"` // whether the fit reproduces its data, in sentences
 	Paint    string            `json:"paint,omitempty"`
 	Running  bool              `json:"running,omitempty"`
 	FitError string            `json:"fitError,omitempty"`
@@ -150,6 +151,9 @@ func (d *desk) said() said {
 			s.Effect = words.Effect(v.Study, r)
 		}
 	}
+	if v.Checks != nil {
+		s.Checks = words.Checks(v.Checks)
+	}
 	if v.FitError != nil {
 		s.FitError = v.FitError.Error()
 	}
@@ -218,6 +222,13 @@ func (d *desk) marks() map[string]fyne.CanvasObject {
 		case *drawer:
 			for i, t := range p.tabs.items {
 				m["tab "+p.pages[i].name()] = t
+			}
+			for _, x := range p.pages {
+				if c, ok := x.(*checksPage); ok && p.page() == c.name() {
+					for i, o := range c.list.live {
+						m[c.list.rows[i].key] = o
+					}
+				}
 			}
 			if r, ok := p.pages[0].(*readingPage); ok && p.page() == r.name() {
 				for i, o := range r.nav.live {

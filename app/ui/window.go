@@ -6,7 +6,6 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 
-	"arrowroot/app/paint"
 	"arrowroot/app/session"
 	"arrowroot/canvas"
 	"arrowroot/canvas/scene"
@@ -175,10 +174,8 @@ func (d *desk) hover(t scene.Target) {
 			if v.Unit != "" {
 				hint += ", " + v.Unit
 			}
-			if r := d.view.Result; r != nil && d.paint != "" {
-				if p := paint.Of(r, d.paint, d.view.Stale).Nodes[t.Node]; p.Words != "" {
-					hint += " · " + p.Words
-				}
+			if p := d.painting(); p != nil && p.Nodes[t.Node].Words != "" {
+				hint += " · " + p.Nodes[t.Node].Words
 			}
 		}
 	}
@@ -225,9 +222,7 @@ func (p sheetPanel) update() {
 		}
 	}
 	d.markMistakes(&in)
-	if v.Result != nil && d.paint != "" {
-		in.Paint = paint.Of(v.Result, d.paint, v.Stale)
-	}
+	in.Paint = d.painting()
 	d.showing = true
 	d.editor.SetInput(in)
 	d.editor.Select(d.pick)

@@ -141,7 +141,7 @@ func (d *Profile) labels(l *List, x axis, base float64, place func(int) float64,
 	l.Add(&Shape{Path: Polyline(Point{x.start, base}, Point{x.end, base}), Stroke: s.Muted, Width: 1, Crisp: true})
 	free := math.Inf(-1)
 	for i, text := range d.Labels {
-		text = Shorten(text, Regular, size, max(40, (x.end-x.start)/float64(len(d.Labels))-4))
+		text = Shorten(text, Regular, size, max(72, (x.end-x.start)/float64(len(d.Labels))-4))
 		w := Measure(text, Regular, size)
 		left := min(max(place(i)-w/2, 0), l.Width-w)
 		if left < free {
