@@ -18,6 +18,7 @@ func (b *builder) examine(string) {
 	}
 	b.constants()
 	b.scales()
+	b.marks()
 	for _, d := range b.drafts {
 		b.finite(d)
 		if d.law.Trials != nil {

@@ -366,6 +366,49 @@ var troubles = []trouble{
 		labels:  "Ask for the effect of pesticide", mends: true,
 	},
 	{
+		name: "limits nothing", code: "limits",
+		study: func(s *study.Study) {
+			for _, n := range s.Rivals[0].Diagram.Nodes {
+				n.Limits = n.Variable == "temp"
+			}
+		},
+		message: "Only rows with one value of temp are said to be in the data, but it has several in them.",
+		labels:  "temp limits no rows", mends: true,
+	},
+	{
+		name: "indicator that lies", code: "answers",
+		study: func(s *study.Study) {
+			s.Variables = append(s.Variables, &study.Variable{ID: "seen", Scale: study.Binary, Column: "seen", Answers: "temp"})
+			d := s.Rivals[0].Diagram
+			d.Nodes = append(d.Nodes, &study.Node{Variable: "seen"})
+			d.Arrows = append(d.Arrows, &study.Arrow{From: "hedge", To: "seen"})
+		},
+		table: func(t *table.Table) {
+			c := &table.Column{Name: "seen", Kind: table.Numeric, Numbers: make([]float64, t.Rows)}
+			for i := range t.Rows {
+				c.Numbers[i] = 1
+			}
+			c.Numbers[7], c.Numbers[8] = 0, 0
+			t.Columns = append(t.Columns, c)
+			set(t, "temp", 8, math.NaN())
+			set(t, "temp", 9, math.NaN())
+		},
+		message: "seen is said to tell where temp is recorded, but is wrong in 2 rows: in row 8 it is 0, and temp has one.",
+		labels:  "seen tells nothing of temp", mends: true,
+	},
+	{
+		name: "record of what was measured", code: "records",
+		study: func(s *study.Study) {
+			for _, v := range s.Variables {
+				if v.ID == "temp" {
+					v.Records = "hedge"
+				}
+			}
+		},
+		message: "temp is said to record hedge with error, but hedge has a column of its own: its laws read that.",
+		labels:  "Leave hedge out as unmeasured",
+	},
+	{
 		name: "no rows left", code: "no-rows",
 		table: func(t *table.Table) {
 			for i := range t.Rows {
