@@ -6,8 +6,9 @@
 // Read the files in this order: evidence.go (what goes in and comes out),
 // columns.go (ledger and table to numbers), scores.go (any scale to scores),
 // residuals.go (what the given variables explain), association.go (size,
-// interval, p), verdict.go (many of them, in words), repair.go, controls.go,
-// tetrad.go, functional.go, untested.go.
+// interval, p), design.go and bench.go (many statements side by side),
+// verdict.go (what is made of them, in words), repair.go, controls.go, tetrad.go,
+// functional.go, untested.go, and test.go (the whole of it).
 package evidence
 
 import (
