@@ -7,7 +7,8 @@
 // document), reading.go (what follows from the arrows alone), evidence.go (what
 // the data say of it), mistakes.go (what may be wrong in the drawing), run.go
 // (fits), stale.go (which of them are out of date), checks.go (can a fit
-// reproduce its data?), files.go (open, save, recover).
+// reproduce its data?), compare.go (which rival predicts better?), files.go
+// (open, save, recover).
 package session
 
 import (
@@ -66,6 +67,7 @@ type View struct {
 	ChecksError  error
 	Results      map[string]*fit.Result // last result of each rival
 	StaleResults map[string]bool        // those of Results that belong to an earlier version
+	Prediction   Prediction             // of the rivals, by the question's outcome
 
 	Recovered *study.Study // work that an earlier session left unsaved; nil = none
 	Notice    string       // one sentence about what just happened; "" = nothing
@@ -92,6 +94,7 @@ type Session struct {
 	results   map[string]*fit.Result
 	standings map[string]*standing // of fitted rivals that are not on the sheet
 	checkers  map[string]*checker  // of fitted rivals
+	contest   *contest             // of the rivals; nil = none yet
 	running   context.CancelFunc
 	run       int
 	progress  infer.Progress
@@ -122,6 +125,7 @@ func New(post func(func())) *Session {
 // Close stops what still goes on behind the window.
 func (s *Session) Close() {
 	s.Cancel()
+	s.contest.stop()
 	s.stopCheckers()
 	s.derived.reader.stop()
 	s.derived.tester.stop()
@@ -216,6 +220,8 @@ func (s *Session) SetQuestion(q study.Question) error {
 // Work on it that was never saved is offered.
 func (s *Session) replace(doc *study.Study, path string) {
 	s.Cancel()
+	s.contest.stop()
+	s.contest = nil
 	s.run++ // a fit still on its way belongs to the old document
 	s.running = nil
 	s.history, s.future = nil, nil
@@ -263,6 +269,7 @@ func (s *Session) show() {
 	}
 	s.showReading(v)
 	s.showMistakes(v)
+	s.showPrediction(v)
 	if t := s.table(); t != nil {
 		v.Table, v.DataError = t.table, t.err
 	}
