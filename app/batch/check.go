@@ -110,10 +110,10 @@ func printCheck(e *evidence.Evidence) *checkOut {
 		out.Independences = append(out.Independences, printFinding(e.Graph, &e.Findings[i]))
 	}
 	for _, f := range e.Functionals {
-		out.Functionals = append(out.Functionals, printConstraint(names(e.Graph, []int{f.FreeOf, f.Node}), f.Verdict, f.Sentence, f.Effect, f.P, f.Adjusted, f.Rows))
+		out.Functionals = append(out.Functionals, printConstraint(e.Graph.NamesOf([]int{f.FreeOf, f.Node}), f.Verdict, f.Sentence, f.Effect, f.P, f.Adjusted, f.Rows))
 	}
 	for _, t := range e.Tetrads {
-		out.Tetrads = append(out.Tetrads, printConstraint(names(e.Graph, []int{t.A, t.B, t.C, t.D}), t.Verdict, t.Sentence, t.Effect, t.P, t.Adjusted, t.Rows))
+		out.Tetrads = append(out.Tetrads, printConstraint(e.Graph.NamesOf([]int{t.A, t.B, t.C, t.D}), t.Verdict, t.Sentence, t.Effect, t.P, t.Adjusted, t.Rows))
 	}
 	for i := range e.Controls {
 		c := &e.Controls[i]
@@ -131,7 +131,7 @@ func printCheck(e *evidence.Evidence) *checkOut {
 
 func printFinding(g *graph.Graph, f *evidence.Finding) findingOut {
 	out := findingOut{
-		Between: names(g, slices.Concat(f.A, f.B)), Given: names(g, f.Given), Verdict: f.Verdict.String(), Sentence: f.Sentence,
+		Between: g.NamesOf(slices.Concat(f.A, f.B)), Given: g.NamesOf(f.Given), Verdict: f.Verdict.String(), Sentence: f.Sentence,
 		Size: finite(f.Value), Low: finite(f.Low), High: finite(f.High), Signed: f.Signed, P: finite(f.P), Adjusted: finite(f.Adjusted),
 		Rows: f.Rows, Lost: map[string]int{}, Groups: f.Groups, Plate: f.Plate,
 	}

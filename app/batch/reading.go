@@ -248,7 +248,7 @@ type readFinding struct {
 
 func printFindings(j *job, f *findings.Findings) *readingOut {
 	g := f.Graph
-	of := func(nodes []int) []string { return names(g, nodes) }
+	of := func(nodes []int) []string { return g.NamesOf(nodes) }
 	out := &readingOut{
 		Rival: j.rival, Question: printQuestion(j.question), Verdict: f.Verdict.Sentence, Way: f.Verdict.Way, Lacks: f.Lacks, Done: f.Done,
 		Asked: askedOut{list(f.Ask.Exposures), list(f.Ask.Outcomes), list(f.Ask.Given), list(f.Ask.Held), list(f.Ask.Fixed), or(f.Ask.Effect, study.TotalEffect), of(f.Selected)},
@@ -344,17 +344,17 @@ func (out *readingOut) adjust(f *findings.Findings, a *findings.Adjustment) {
 		to    *[]string
 	}{{a.BestMinimal, &out.MostPrecise}, {a.Optimal, &out.MostPreciseOfAll}, {a.BestSmallest, &out.MostPreciseSmallest}} {
 		if set.nodes != nil {
-			*set.to = names(g, set.nodes)
+			*set.to = g.NamesOf(set.nodes)
 		}
 	}
 	if a.Cheapest != nil && a.Aim.Costs != nil {
-		out.Cheapest, out.Cost = names(g, a.Cheapest), &a.Cost
+		out.Cheapest, out.Cost = g.NamesOf(a.Cheapest), &a.Cost
 	}
 	for _, one := range f.Forbidden() {
 		out.Forbidden = append(out.Forbidden, g.Names[one.Node])
 		out.ForbiddenWhy[g.Names[one.Node]] = one.Reason
 	}
-	out.WouldHelp, out.HelpTogether = names(g, a.Culprits), a.CulpritsAll
+	out.WouldHelp, out.HelpTogether = g.NamesOf(a.Culprits), a.CulpritsAll
 	for _, arc := range a.CulpritArcs {
 		out.WouldHelp = append(out.WouldHelp, g.Names[arc[0]]+" ↔ "+g.Names[arc[1]])
 	}
@@ -363,7 +363,7 @@ func (out *readingOut) adjust(f *findings.Findings, a *findings.Adjustment) {
 func (out *readingOut) laws(f *findings.Findings, l *findings.Laws) {
 	g := f.Graph
 	for _, law := range l.List {
-		lo := lawOut{g.Names[law.Node], names(g, law.Parents), []carriedOut{}}
+		lo := lawOut{g.Names[law.Node], g.NamesOf(law.Parents), []carriedOut{}}
 		for _, c := range law.Carried {
 			co := carriedOut{g.Names[c.Node], []string{}}
 			for _, u := range c.For {
@@ -378,14 +378,14 @@ func (out *readingOut) laws(f *findings.Findings, l *findings.Laws) {
 		out.Laws = append(out.Laws, lo)
 	}
 	if l.Reason != "" {
-		out.Simulation = &simulationOut{[...]string{"a", "b", "c"}[l.Case], l.Reason, names(g, l.District)}
+		out.Simulation = &simulationOut{[...]string{"a", "b", "c"}[l.Case], l.Reason, g.NamesOf(l.District)}
 	}
 }
 
 func printPath(f *findings.Findings, p *causal.Path) pathOut {
 	g := f.Graph
 	po := pathOut{
-		Path: p.Text(g), Nodes: names(g, p.Nodes), Roles: map[string]string{}, Kind: p.Kind.String(), Open: p.Open,
+		Path: p.Text(g), Nodes: g.NamesOf(p.Nodes), Roles: map[string]string{}, Kind: p.Kind.String(), Open: p.Open,
 		ClosedAt: []string{}, ClosedWhy: map[string]string{}, OpenedAt: map[string]string{},
 	}
 	for i := 1; i < len(p.Nodes)-1; i++ {
@@ -406,7 +406,7 @@ func printEstimand(f *findings.Findings, id *causal.Identification) *estimandOut
 	if id == nil {
 		return nil
 	}
-	return &estimandOut{id.Query(), id.Identified, id.Symbols(), id.Words(), names(f.Graph, id.Whole), names(f.Graph, id.Part)}
+	return &estimandOut{id.Query(), id.Identified, id.Symbols(), id.Words(), f.Graph.NamesOf(id.Whole), f.Graph.NamesOf(id.Part)}
 }
 
 func printInstruments(f *findings.Findings, all []causal.InstrumentSets) []instrumentOut {
@@ -429,7 +429,7 @@ func printArrows(f *findings.Findings, arrows [][2]int) [][2]string {
 func sets(f *findings.Findings, all [][]int) [][]string {
 	out := [][]string{}
 	for _, z := range all {
-		out = append(out, names(f.Graph, z))
+		out = append(out, f.Graph.NamesOf(z))
 	}
 	return out
 }

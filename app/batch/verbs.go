@@ -18,7 +18,6 @@ import (
 	"arrowroot/app/report"
 	"arrowroot/app/session"
 	"arrowroot/compile/evidence"
-	"arrowroot/compile/graph"
 	"arrowroot/compile/model"
 	"arrowroot/compile/replicate"
 	"arrowroot/compile/study"
@@ -310,12 +309,4 @@ func writable(path string) error {
 	}
 	probe.Close()
 	return os.Remove(probe.Name())
-}
-
-func names(g *graph.Graph, nodes []int) []string {
-	out := make([]string, len(nodes))
-	for i, v := range nodes {
-		out[i] = g.Names[v]
-	}
-	return out
 }

@@ -143,11 +143,7 @@ func along(g *graph.Graph, nodes []int) []causal.Edge {
 
 // names gives the names of nodes.
 func (f *Findings) names(nodes []int) []string {
-	out := make([]string, len(nodes))
-	for i, v := range nodes {
-		out[i] = f.Graph.Names[v]
-	}
-	return out
+	return f.Graph.NamesOf(nodes)
 }
 
 // minus is a without the members of b.

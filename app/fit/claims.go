@@ -61,7 +61,7 @@ func claimed(g *graph.Graph, q *study.Question, limits []int) *claims {
 	}
 	if unlike := h.unlike(indices(g, c.held)); c.heldValid && unlike != nil {
 		c.heldValid = false
-		names := strings.Join(namesIn(g, unlike), " and ")
+		names := strings.Join(g.NamesOf(unlike), " and ")
 		c.notes = append(c.notes, fmt.Sprintf("the law that holds %s does not tell rows apart by %s, on which %s depends: hold %s as well for a held number of these rows",
 			orNothing(c.held), names, q.Outcome, names))
 	}

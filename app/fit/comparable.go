@@ -197,7 +197,7 @@ func sameKnowledge(req *CompareRequest, all []*contender, no *Incomparable) {
 			}
 		}
 		if !causal.Separated(fitted, []int{c.graph.Index(id)}, more, given) {
-			names := strings.Join(namesIn(c.graph, more), " and ")
+			names := strings.Join(c.graph.NamesOf(more), " and ")
 			no.because("%s predicts %s from %s, of which its law in %s knows nothing though the arrows there say that %s would tell more of it: they predict from different knowledge, and no scores are given.",
 				reader, id, names, c.rival, names)
 		}

@@ -59,7 +59,7 @@ func (h *holding) bent(g *graph.Graph) string {
 				return fmt.Sprintf("the rows were chosen by %s itself, so its law among them is not that of all rows. The rows left out, with what else is known of them, would help.", g.Names[v])
 			}
 			return fmt.Sprintf("the rows were chosen by %s, which goes together with %s beyond what its law reads (%s), so that law is not that of all rows. The rows left out, with what is known of them, would help.",
-				g.Names[w], g.Names[v], orNothing(namesIn(g, carriers)))
+				g.Names[w], g.Names[v], orNothing(g.NamesOf(carriers)))
 		}
 	}
 	return ""
@@ -69,12 +69,4 @@ func (h *holding) bent(g *graph.Graph) string {
 // known.
 func (h *holding) tells(g *graph.Graph, w, v int, known []int) bool {
 	return w == v || !slices.Contains(known, w) && !causal.Separated(g, []int{w}, []int{v}, known)
-}
-
-func namesIn(g *graph.Graph, nodes []int) []string {
-	names := make([]string, len(nodes))
-	for i, v := range nodes {
-		names[i] = g.Names[v]
-	}
-	return names
 }

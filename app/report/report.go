@@ -111,7 +111,7 @@ func contentOf(in Input) (*content, error) {
 			c.Paths = append(c.Paths, pathRow(in.Graph, &r.Paths[i]))
 		}
 		for _, s := range r.Sets {
-			c.Sets = append(c.Sets, words.List(names(in.Graph, s)))
+			c.Sets = append(c.Sets, words.List(in.Graph.NamesOf(s)))
 		}
 		for _, f := range r.Forbidden {
 			c.Forbidden = append(c.Forbidden, in.Graph.Names[f.Node]+": "+f.Reason)
@@ -193,14 +193,6 @@ func pathRow(g *graph.Graph, p *causal.Path) row {
 		}
 	}
 	return row{[]string{kind, p.Text(g), state}}
-}
-
-func names(g *graph.Graph, nodes []int) []string {
-	out := make([]string, len(nodes))
-	for i, v := range nodes {
-		out[i] = g.Names[v]
-	}
-	return out
 }
 
 var lineClasses = map[model.LineKind]string{

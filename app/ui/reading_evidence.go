@@ -28,7 +28,7 @@ func evidenceLines(d *desk) []readingLine {
 		f := &e.Functionals[i]
 		l := testedLine(fmt.Sprint("functional ", f.Node, " ", f.FreeOf), "functional", f.Sentence, f.Verdict)
 		l.marks = func() *scene.Mark {
-			ends := namesIn(e.Graph, []int{f.FreeOf, f.Node})
+			ends := e.Graph.NamesOf([]int{f.FreeOf, f.Node})
 			return &scene.Mark{Ring: ends, Apart: [][2]string{{ends[0], ends[1]}}}
 		}
 		out = append(out, l)
@@ -36,7 +36,7 @@ func evidenceLines(d *desk) []readingLine {
 	for i := range e.Tetrads {
 		t := &e.Tetrads[i]
 		l := testedLine(fmt.Sprint("tetrad ", t.A, " ", t.B, " ", t.C, " ", t.D), "tetrad", t.Sentence, t.Verdict)
-		l.marks = func() *scene.Mark { return &scene.Mark{Ring: namesIn(e.Graph, []int{t.A, t.B, t.C, t.D})} }
+		l.marks = func() *scene.Mark { return &scene.Mark{Ring: e.Graph.NamesOf([]int{t.A, t.B, t.C, t.D})} }
 		out = append(out, l)
 	}
 	for i := range e.Untested {
@@ -84,8 +84,8 @@ func testedLine(key, kind, sentence string, v evidence.Verdict) readingLine {
 
 // apart marks a pair that no arrow joins, and what is known of it.
 func apart(g *graph.Graph, x *causal.Independence) *scene.Mark {
-	a, b := namesIn(g, x.A), namesIn(g, x.B)
-	m := &scene.Mark{Ring: append(a, b...), Box: namesIn(g, x.Given)}
+	a, b := g.NamesOf(x.A), g.NamesOf(x.B)
+	m := &scene.Mark{Ring: append(a, b...), Box: g.NamesOf(x.Given)}
 	if len(a) == 1 && len(b) == 1 {
 		m.Apart = [][2]string{{a[0], b[0]}}
 	}

@@ -13,7 +13,7 @@ import (
 // set as if it were held, the part of the diagram that fails, the arrows that
 // could be turned round, the pair that no arrow joins.
 func markOf(f *findings.Findings, section string, i int, x *findings.Finding) *scene.Mark {
-	names := func(nodes []int) []string { return namesIn(f.Graph, nodes) }
+	names := func(nodes []int) []string { return f.Graph.NamesOf(nodes) }
 	switch section {
 	case findings.AdjustmentSection:
 		if isSet(x) {
@@ -57,7 +57,7 @@ func markOf(f *findings.Findings, section string, i int, x *findings.Finding) *s
 // with what must be given, an instrument with what must be given; nil = nothing
 // of its own.
 func beyondMark(f *findings.Findings, x *findings.Finding) *scene.Mark {
-	names := func(nodes []int) []string { return namesIn(f.Graph, nodes) }
+	names := func(nodes []int) []string { return f.Graph.NamesOf(nodes) }
 	b := f.Beyond
 	switch x.Kind {
 	case "not identified":

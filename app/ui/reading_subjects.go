@@ -8,7 +8,6 @@ import (
 	"arrowroot/app/findings"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/causal"
-	"arrowroot/compile/graph"
 )
 
 const firstSubject = findings.PathSection
@@ -164,7 +163,7 @@ func (d *desk) line(f *findings.Findings, s *subject, i int) readingLine {
 
 // adjustmentLine offers to hold a set, or to leave free what is wrongly held.
 func (d *desk) adjustmentLine(f *findings.Findings, x *findings.Finding, l *readingLine) {
-	ids := namesIn(f.Graph, x.Nodes)
+	ids := f.Graph.NamesOf(x.Nodes)
 	q := d.view.Question
 	switch {
 	case isSet(x):
@@ -212,15 +211,6 @@ func (p *readingPage) lists(f *findings.Findings, path *causal.Path) bool {
 	}
 	id := p.d.picked()
 	return !p.through || id == "" || slices.ContainsFunc(path.Nodes, func(v int) bool { return f.Graph.Names[v] == id })
-}
-
-// namesIn gives the names of nodes.
-func namesIn(g *graph.Graph, nodes []int) []string {
-	out := make([]string, len(nodes))
-	for i, v := range nodes {
-		out[i] = g.Names[v]
-	}
-	return out
 }
 
 func sameSet(a, b []string) bool {

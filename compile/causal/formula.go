@@ -300,13 +300,7 @@ func (s *formulaSearch) within(part, set []bool, factor Estimand) Estimand {
 
 // Query writes what is asked: "P(bees | do(hedge), soil)".
 func (id *Identification) Query() string {
-	list := func(nodes []int) string {
-		all := make([]string, len(nodes))
-		for i, v := range nodes {
-			all[i] = id.Graph.Names[v]
-		}
-		return strings.Join(all, ", ")
-	}
+	list := func(nodes []int) string { return strings.Join(id.Graph.NamesOf(nodes), ", ") }
 	text := "P(" + list(id.Outcomes) + " | do(" + list(id.Exposures) + ")"
 	if len(id.Given) > 0 {
 		text += ", " + list(id.Given)

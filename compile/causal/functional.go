@@ -12,9 +12,16 @@ import (
 // whatever FreeOf is (Verma & Pearl 1990; Tian & Pearl 2002, "On the testable
 // implications of causal models with hidden variables"). It stands for an arrow
 // from FreeOf to Node that is not drawn though no set separates the two.
+//
+// It says that Node and FreeOf are independent given Given once the rounds of
+// Fixings are done one after another, which is how rows can be weighted to test
+// it.
 type Functional struct {
 	Node, FreeOf int
 	Formula      Estimand
+
+	Fixings [][]Fixing
+	Given   []int
 }
 
 const (
@@ -74,7 +81,7 @@ func Functionals(g *graph.Graph) (all []Functional, more bool) {
 				case !ok:
 					more = true
 				case slices.Contains(Free(formula), p.Node[u]):
-					all = append(all, Functional{Node: p.Node[v], FreeOf: p.Node[u], Formula: formula})
+					all = append(all, Functional{Node: p.Node[v], FreeOf: p.Node[u], Formula: formula, Fixings: s.fixings(f, u), Given: s.known(f, v)})
 					apart = minus(apart, []int{u})
 				}
 			}

@@ -197,7 +197,7 @@ func (r *Reading) proposeGroups(one *Groups) {
 	v := Verdict{Kind: Confounded, HasProposal: true, Propose: one.Sets[0], ProposeWithin: []int{one.Plate}}
 	hold := plate
 	if len(v.Propose) > 0 {
-		hold = series(append([]string{plate}, namesOf(g, v.Propose)...), "and")
+		hold = series(append([]string{plate}, g.NamesOf(v.Propose)...), "and")
 	}
 	v.Sentence = fmt.Sprintf("%s → %s is confounded along %s. Hold %s: compare within each %s.",
 		g.Names[q.Exposure], g.Names[q.Outcome], r.openPaths(), hold, plate)
@@ -290,15 +290,7 @@ func plateNames(g *graph.Graph, plates []int) []string {
 	return out
 }
 
-func namesOf(g *graph.Graph, nodes []int) []string {
-	out := make([]string, len(nodes))
-	for i, v := range nodes {
-		out[i] = g.Names[v]
-	}
-	return out
-}
-
 // Proposed is what the verdict proposes to hold, plates first, by name.
 func (r *Reading) Proposed() []string {
-	return append(plateNames(r.Graph, r.Verdict.ProposeWithin), namesOf(r.Graph, r.Verdict.Propose)...)
+	return append(plateNames(r.Graph, r.Verdict.ProposeWithin), r.Graph.NamesOf(r.Verdict.Propose)...)
 }

@@ -9,11 +9,7 @@ import (
 
 // names writes a set of nodes as "a", "a and b" or "a, b and c".
 func names(g *graph.Graph, nodes []int) string {
-	words := make([]string, len(nodes))
-	for i, v := range nodes {
-		words[i] = g.Names[v]
-	}
-	return series(words, "and")
+	return series(g.NamesOf(nodes), "and")
 }
 
 func series(words []string, last string) string {
@@ -28,11 +24,7 @@ func series(words []string, last string) string {
 }
 
 func arrowText(g *graph.Graph, nodes []int) string {
-	words := make([]string, len(nodes))
-	for i, v := range nodes {
-		words[i] = g.Names[v]
-	}
-	return strings.Join(words, " → ")
+	return strings.Join(g.NamesOf(nodes), " → ")
 }
 
 // count writes "1 open path", "3 open paths".

@@ -79,10 +79,7 @@ func (b *bench) unmeasured() []Untested {
 }
 
 func (b *bench) list(nodes []int) string {
-	words := make([]string, len(nodes))
-	for i, v := range nodes {
-		words[i] = b.g.Names[v]
-	}
+	words := b.g.NamesOf(nodes)
 	if len(words) < 2 {
 		return strings.Join(words, "")
 	}

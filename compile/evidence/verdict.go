@@ -245,10 +245,7 @@ func (b *bench) method(e *Evidence) string {
 // key names a statement by its variables, whatever their order.
 func (b *bench) key(s causal.Independence) string {
 	list := func(nodes []int) string {
-		words := make([]string, len(nodes))
-		for i, v := range nodes {
-			words[i] = b.g.Names[v]
-		}
+		words := b.g.NamesOf(nodes)
 		slices.Sort(words)
 		return strings.Join(words, ", ")
 	}

@@ -115,6 +115,15 @@ func New(spec Spec) (*Graph, error) {
 // Len is the number of nodes.
 func (g *Graph) Len() int { return len(g.Names) }
 
+// NamesOf gives the names of nodes, in their order; none for none.
+func (g *Graph) NamesOf(nodes []int) []string {
+	names := make([]string, len(nodes))
+	for i, v := range nodes {
+		names[i] = g.Names[v]
+	}
+	return names
+}
+
 // Index finds a node by name; -1 if there is none.
 func (g *Graph) Index(name string) int {
 	for i, s := range g.Names {

@@ -45,7 +45,7 @@ func TestSilentOnTextbooks(t *testing.T) {
 		q := s.Questions[0]
 		for _, set := range sound(g, g.Index(q.Exposure), g.Index(q.Outcome)) {
 			asked++
-			h := holding(s, wordsOf(g, set))
+			h := holding(s, g.NamesOf(set))
 			all := find(h)
 			if bad := alarms(all); len(bad) > 0 {
 				t.Errorf("%s (%s), holding %v: %s", c.ID, c.Source, h.Questions[0].Held, spell(bad))
@@ -112,7 +112,7 @@ func TestSilentOnRandomSoundDiagrams(t *testing.T) {
 		s, g := random(t, r, 4+r.IntN(6), 0.2+0.4*r.Float64(), 0.3*r.Float64())
 		q := s.Questions[0]
 		for _, set := range sound(g, g.Index(q.Exposure), g.Index(q.Outcome)) {
-			h := holding(s, wordsOf(g, set))
+			h := holding(s, g.NamesOf(set))
 			if bad := alarms(find(h)); len(bad) > 0 {
 				t.Fatalf("diagram %d, %v: %s", i, g.Arrows, spell(bad))
 			}
@@ -137,7 +137,7 @@ func TestHeldAgainstCriterion(t *testing.T) {
 				held = append(held, v)
 			}
 		}
-		s = holding(s, wordsOf(g, held))
+		s = holding(s, g.NamesOf(held))
 		all := find(s)
 		grave := slices.ContainsFunc(all, func(m Mistake) bool { return m.Severity == StopAndAsk })
 		any, _ := causal.Minimal(g, x, y, nil, 1)

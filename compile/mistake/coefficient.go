@@ -44,7 +44,7 @@ func ReadCoefficient(g *graph.Graph, exposure, outcome, parent, child int, given
 		r.Words = fmt.Sprintf("total effect of %s on %s", p, c)
 	case g.HasArrow(parent, child) && singleDoor(g, parent, child, rest):
 		r.As = DirectEffect
-		r.Words = fmt.Sprintf("not a total effect: what %s does to %s directly, with %s kept fixed", p, c, names(wordsOf(g, rest)))
+		r.Words = fmt.Sprintf("not a total effect: what %s does to %s directly, with %s kept fixed", p, c, names(g.NamesOf(rest)))
 	default:
 		r.As = Association
 		r.Words = fmt.Sprintf("association, not an effect of %s on %s", p, c)
@@ -79,12 +79,4 @@ func leftOpen(g *graph.Graph, parent, child int, rest []int) *causal.Path {
 		}
 	}
 	return nil
-}
-
-func wordsOf(g *graph.Graph, nodes []int) []string {
-	words := make([]string, len(nodes))
-	for i, v := range nodes {
-		words[i] = g.Names[v]
-	}
-	return words
 }

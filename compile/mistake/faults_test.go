@@ -307,7 +307,7 @@ func TestCoefficients(t *testing.T) {
 		}
 		ends := strings.Fields(c.ask)
 		r := ReadCoefficient(g, g.Index(ends[0]), g.Index(ends[1]), g.Index(c.parent), g.Index(c.child), sortedIndex(g, strings.Fields(c.given)))
-		if r.As != c.as || r.Control != c.control || !strings.Contains(r.Words, c.words) || strings.Join(wordsOf(g, r.Path), " ") != c.path {
+		if r.As != c.as || r.Control != c.control || !strings.Contains(r.Words, c.words) || strings.Join(g.NamesOf(r.Path), " ") != c.path {
 			t.Errorf("%s in the law of %s given %s: %+v", c.parent, c.child, c.given, r)
 		}
 	}

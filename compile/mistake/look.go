@@ -131,11 +131,7 @@ func (l *look) ids(nodes []int) []string {
 	if nodes == nil {
 		return nil
 	}
-	ids := make([]string, len(nodes))
-	for i, v := range nodes {
-		ids[i] = l.g.Names[v]
-	}
-	return ids
+	return l.g.NamesOf(nodes)
 }
 
 // walk is a shortest way along arrows from a to b, both included, that avoids
