@@ -1,6 +1,9 @@
 package draw
 
-import "math"
+import (
+	"math"
+	"slices"
+)
 
 // A Strength is what StrengthPlot shows: how strong an unmeasured cause would
 // have to be, as shares from 0 to 1 of what it explains of two things.
@@ -100,6 +103,8 @@ func StrengthPlot(width, height float64, d Strength, s Style) *List {
 		l.Add(sample, &Text{At: Point{from + 26, at}, Text: Shorten(e.Label, Regular, size, x.end-from-26), Size: size, Color: s.Ink})
 		from += 26 + Measure(e.Label, Regular, size) + 14
 	}
+	var taken []Rect // by discs and names
+	var ends [][]Point
 	for _, t := range d.Trails {
 		var seen []Point
 		for _, p := range t.Points {
@@ -113,16 +118,20 @@ func StrengthPlot(width, height float64, d Strength, s Style) *List {
 		for k, p := range seen {
 			l.Add(&Shape{Path: Circle(p, 2.5+float64(k)), Fill: s.Ground, Stroke: s.Ink, Width: 1.3})
 		}
-		if len(seen) > 0 {
-			w := Measure(t.Label, Bold, size)
-			last := seen[len(seen)-1]
-			apart := 6.5 + float64(len(seen)-1)
-			at := Point{last.X + apart, last.Y + Drop(size)}
-			if at.X+w > x.end {
-				at.X = math.Max(x.start, last.X-apart-w)
-			}
-			l.Add(&Text{At: at, Text: t.Label, Face: Bold, Size: size, Color: s.Ink})
+		for k, p := range seen {
+			r := 4 + float64(k)
+			taken = append(taken, Rect{X: p.X - r, Y: p.Y - r, W: 2 * r, H: 2 * r})
 		}
+		ends = append(ends, seen)
+	}
+	for i, seen := range ends {
+		if len(seen) == 0 {
+			continue
+		}
+		label := d.Trails[i].Label
+		at := labelBeside(seen[len(seen)-1], 6.5+float64(len(seen)-1), Measure(label, Bold, size), size, x, taken)
+		taken = append(taken, at)
+		l.Add(&Text{At: Point{at.X, at.Y + at.H/2 + Drop(size)}, Text: label, Face: Bold, Size: size, Color: s.Ink})
 	}
 	drawAxis(l, x, base, percent, s)
 	l.Add(
@@ -130,4 +139,29 @@ func StrengthPlot(width, height float64, d Strength, s Style) *List {
 		&Text{At: Point{x.end, height - 3}, Text: Shorten(d.Across+" →", Regular, size, width-8), Size: size, Color: s.Muted, Anchor: End},
 	)
 	return l
+}
+
+// labelBeside is the first place about a disc where a name lies on nothing that
+// is taken: right, left, above, below; else the first that is within the plot.
+func labelBeside(p Point, apart, w, size float64, x axis, taken []Rect) Rect {
+	h := size + 2
+	var within []Rect
+	for _, at := range []Point{
+		{p.X + apart, p.Y - h/2}, {p.X - apart - w, p.Y - h/2},
+		{p.X - w/2, p.Y - apart - h}, {p.X - w/2, p.Y + apart},
+		{p.X - w/2, p.Y - apart - 2*h}, {p.X - w/2, p.Y - apart - 3*h},
+	} {
+		r := Rect{X: at.X, Y: at.Y, W: w, H: h}
+		if r.X < x.start || r.X+r.W > x.end {
+			continue
+		}
+		within = append(within, r)
+		if !slices.ContainsFunc(taken, r.Meets) {
+			return r
+		}
+	}
+	if len(within) == 0 {
+		return Rect{X: math.Max(x.start, p.X-apart-w), Y: p.Y - h/2, W: w, H: h}
+	}
+	return within[0]
 }

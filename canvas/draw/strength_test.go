@@ -39,3 +39,26 @@ func TestStrengthPlotKeepsItsSize(t *testing.T) {
 		}
 	}
 }
+
+// Names of trails that end close together lie beside one another.
+func TestStrengthNamesApart(t *testing.T) {
+	d := strength()
+	d.Trails = []Trail{
+		{"pest_load", []Point{{0.32, 0.06}}}, {"soil_class", []Point{{0.4, 0.05}}}, {"arable", []Point{{0.36, 0.055}}},
+	}
+	var at []Rect
+	for _, item := range StrengthPlot(390, 220, d, light()).Items {
+		if x, ok := item.(*Text); ok && x.Face == Bold {
+			r := Rect{X: x.At.X, Y: x.At.Y - x.Size*0.8, W: Measure(x.Text, Bold, x.Size), H: x.Size}
+			for _, other := range at {
+				if r.Meets(other) {
+					t.Errorf("%s at %v lies on another name at %v", x.Text, r, other)
+				}
+			}
+			at = append(at, r)
+		}
+	}
+	if len(at) != 3 {
+		t.Errorf("%d names", len(at))
+	}
+}
