@@ -2,6 +2,7 @@ package ui
 
 import (
 	"testing"
+	"time"
 
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/test"
@@ -50,5 +51,39 @@ func TestNoteBreaksAtWordsWhenLeft(t *testing.T) {
 	f.FocusLost()
 	if f.Wrapping != fyne.TextWrapWord {
 		t.Error("left, a note breaks within words")
+	}
+}
+
+// What happened takes the place of the legend where both find no room; what
+// the pointer is over gives way to it.
+func TestStatusYieldsToWhatHappened(t *testing.T) {
+	b := newBench(t)
+	s := b.desk.status
+	legend := small("nodes: total effect of hedge 40 → 90 m/ha, in plausible widths")
+	s.legend.Objects = []fyne.CanvasObject{legend}
+	lay := func(text string) {
+		s.says.set(text, tokenMuted)
+		s.object.Layout.Layout(s.object.Objects, fyne.NewSize(legend.MinSize().Width+120, statusHeight))
+	}
+	s.hint = "hedgerow density"
+	lay(s.hint)
+	if !s.legend.Visible() || s.says.Visible() {
+		t.Error("a name that the pointer is over pushes the legend away or is cut short")
+	}
+	s.refused = "That arrow would close a cycle."
+	lay(s.refused)
+	if s.legend.Visible() || !s.says.Visible() {
+		t.Error("a refusal is cut short beside the legend")
+	}
+	s.refused = ""
+	lay("")
+	if !s.legend.Visible() {
+		t.Error("the legend stays away")
+	}
+}
+
+func TestOneSecondLeft(t *testing.T) {
+	if got := progressWords(1, 2, time.Second, false); got != "about 1 second left" {
+		t.Error(got)
 	}
 }

@@ -219,7 +219,7 @@ func progressWords(done, total int, left time.Duration, stopping bool) string {
 	case left > 90*time.Second:
 		return fmt.Sprintf("about %.0f minutes left", math.Ceil(left.Minutes()))
 	case left > 0:
-		return fmt.Sprintf("about %.0f seconds left", math.Ceil(left.Seconds()))
+		return "about " + times(int(math.Ceil(left.Seconds())), "second", "seconds") + " left"
 	case total > 0:
 		return percent(float64(done)/float64(total)) + " done"
 	}

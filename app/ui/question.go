@@ -82,9 +82,12 @@ func (a *asker) fill() {
 				f.escape = func() { a.pop.close() }
 				f.commit = nil
 			}
-			unit := x.Unit
-			s.add(labelled("from", row(6, stretch(a.from), muted("to"), stretch(a.to), muted(unit))))
-			s.add(labelled("or shift by", row(6, stretch(a.shift), muted(unit))))
+			values, shift := row(6, stretch(a.from), muted("to"), stretch(a.to)), row(6, stretch(a.shift))
+			if x.Unit != "" {
+				values.Add(muted(x.Unit))
+				shift.Add(muted(x.Unit))
+			}
+			s.add(labelled("from", values), labelled("or shift by", shift))
 		}
 	}
 	if y := d.view.Study.Variable(q.Outcome); y != nil && (y.Scale == study.Category || y.Scale == study.Ordered) && len(y.Levels) > 0 {

@@ -6,6 +6,7 @@ import (
 	"strings"
 
 	"fyne.io/fyne/v2"
+	"fyne.io/fyne/v2/container"
 
 	"arrowroot/app/paint"
 	"arrowroot/app/session"
@@ -38,7 +39,7 @@ func newStatus(d *desk) *status {
 	s.zoom.padX, s.zoom.padY, s.zoom.tip = 4, 2, "Show the whole sheet"
 	s.says = small("").shrinkTo(20)
 	s.legend = row(6)
-	s.object = row(8, gapOf(4, statusHeight), s.zoom, stretch(s.says), s.legend, gapOf(4, 1))
+	s.object = container.New(&statusLayout{s}, s.zoom, s.says, s.legend)
 	return s
 }
 
@@ -51,6 +52,35 @@ func (s *status) update() {
 	s.legend.Objects = s.legends()
 	s.object.Layout.Layout(s.object.Objects, s.object.Size())
 	s.object.Refresh()
+}
+
+// statusLayout sets the zoom, the words and the legend in a line. Words that
+// would be cut short beside the legend take its place, unless they only name
+// what the pointer is over: then they stay away.
+type statusLayout struct{ s *status }
+
+func (l *statusLayout) Layout(_ []fyne.CanvasObject, size fyne.Size) {
+	s := l.s
+	const pad, gap = 12, 8
+	zoom, says, legend := s.zoom.MinSize(), fyne.MeasureText(s.says.text, s.says.size, s.says.style), s.legend.MinSize()
+	centred := func(o fyne.CanvasObject, x, w float32, m fyne.Size) {
+		place(o, x, (size.Height-m.Height)/2, w, m.Height)
+	}
+	x := pad + zoom.Width + gap
+	centred(s.zoom, pad, zoom.Width, zoom)
+	centred(s.legend, size.Width-pad-legend.Width, legend.Width, legend)
+	tight := len(s.legend.Objects) > 0 && x+says.Width+gap+legend.Width+pad > size.Width
+	show(!tight || s.idle(), s.legend)
+	show(!tight || !s.idle(), s.says)
+	centred(s.says, x, size.Width-pad-x, says)
+}
+
+func (l *statusLayout) MinSize([]fyne.CanvasObject) fyne.Size { return fyne.NewSize(80, statusHeight) }
+
+// idle reports whether nothing has happened: the words, if any, only name what
+// the pointer is over.
+func (s *status) idle() bool {
+	return s.refused == "" && s.notice == "" && !s.d.view.Running && !s.news(s.d.view)
 }
 
 // text is what the line says in the middle.
