@@ -18,6 +18,7 @@ type questionOut struct {
 	Groups   string         `json:"groups"`
 	Weigh    string         `json:"weigh"`
 	As       string         `json:"as"`
+	Levels   []string       `json:"outcomeLevels"`
 	Level    float64        `json:"level"`
 }
 
@@ -40,7 +41,7 @@ func printQuestion(q *study.Question) *questionOut {
 	out := &questionOut{
 		Exposure: q.Exposure, Outcome: q.Outcome, Effect: or(q.Effect, study.TotalEffect), Shift: q.Shift,
 		Fixed: []fixOut{}, Held: q.Held, Where: []conditionOut{}, Over: or(q.Over, study.TheseRows),
-		Groups: or(q.Groups, study.TheseGroups), Weigh: or(q.Weigh, study.ByRows), As: or(q.As, study.Difference), Level: q.Level,
+		Groups: or(q.Groups, study.TheseGroups), Weigh: or(q.Weigh, study.ByRows), As: or(q.As, study.Difference), Levels: append([]string{}, q.OutcomeLevels...), Level: q.Level,
 		From: setting(q.From), To: setting(q.To),
 	}
 	for _, f := range q.Fixed {

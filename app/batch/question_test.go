@@ -2,6 +2,7 @@ package main
 
 import (
 	"context"
+	"encoding/json"
 	"fmt"
 	"math"
 	"math/rand/v2"
@@ -9,6 +10,8 @@ import (
 	"path/filepath"
 	"strings"
 	"testing"
+
+	"arrowroot/compile/study"
 )
 
 // orchards is an invented study with a known truth: spray acts on fruit by 2
@@ -195,5 +198,18 @@ func TestQuestionsThatCannotBeAnswered(t *testing.T) {
 		if status == done || answer != nil || !strings.Contains(messages, c.says) {
 			t.Errorf("%s: status %d, %q does not say %q", c.more, status, messages, c.says)
 		}
+	}
+}
+
+// What is printed of a question says what was asked, levels included.
+func TestPrintedQuestion(t *testing.T) {
+	got, err := json.Marshal(printQuestion(&study.Question{Exposure: "x", Outcome: "y", From: &study.Setting{Number: 1}, To: &study.Setting{Word: "b"}, OutcomeLevels: []string{"mid", "top"}, Level: 0.8}))
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := `{"exposure":"x","outcome":"y","effect":"total","from":1,"to":"b","shift":0,"fixed":[],"held":[],"where":[],` +
+		`"over":"these rows","groups":"these groups","weigh":"by rows","as":"difference","outcomeLevels":["mid","top"],"level":0.8}`
+	if string(got) != want {
+		t.Errorf("%s\nwant %s", got, want)
 	}
 }

@@ -113,3 +113,16 @@ func TestNoLawIsFittedOnWhatWasNotMeasured(t *testing.T) {
 		t.Errorf("case %v: %s", f.Laws.Case, f.Laws.Reason)
 	}
 }
+
+// A set that the wish rules out is not proposed.
+func TestVerdictKeepsToWishes(t *testing.T) {
+	s := drawn("c x", "c y", "d c", "d y", "x y")
+	ask := Ask{Exposures: []string{"x"}, Outcomes: []string{"y"}, Unavailable: []string{"c"}}
+	if f := read(t, s, ask); f.Verdict.Kind != causal.NoSet || f.Verdict.Sentence != "Without c, no set of measured variables gives the effect of x on y." {
+		t.Errorf("without c: %+v", f.Verdict)
+	}
+	ask.Unavailable, ask.Forced = nil, []string{"d"}
+	if f := read(t, s, ask); f.Verdict.Kind != causal.Confounded || !strings.HasSuffix(f.Verdict.Sentence, "Hold c and d.") {
+		t.Errorf("with d: %+v", f.Verdict)
+	}
+}

@@ -21,7 +21,7 @@ func (f *Findings) judge(exposures []int) {
 		}
 	case f.direct():
 		f.judgeDirect(valid)
-	case f.Reading == nil, len(f.Given) > 0:
+	case f.Reading == nil, len(f.Given) > 0, f.Verdict.HasProposal && len(f.Ask.Forced)+len(f.Ask.Unavailable) > 0:
 		f.judgeSeveral(valid && len(f.givenBelow(exposures)) == 0)
 	}
 }
