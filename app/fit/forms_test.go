@@ -106,6 +106,17 @@ func TestFormsRecovered(t *testing.T) {
 					t.Log(q.Name, q.Centre, q.Spread)
 				}
 			}
+			band, ok := r.Full.Band("x", "y", 9, 0.9)
+			if !ok || len(band.X) < 4 {
+				t.Fatalf("no band: %+v", band)
+			}
+			for i, at := range band.X {
+				// What the arrow adds is counted from 0 at the middle of the range,
+				// where of() is 0 as well; the interval is of 90 %, so it may miss.
+				if off := math.Abs(band.Middle[i] - c.of(at)); off > 3*(band.High[i]-band.Low[i])/3.29+0.02 {
+					t.Errorf("the band at %v is %.2f to %.2f, not around %.2f", at, band.Low[i], band.High[i], c.of(at))
+				}
+			}
 			if c.words != "" && (len(r.Arrows) != 1 || !strings.HasSuffix(r.Arrows[0].Words, c.words)) {
 				t.Errorf("paint: %+v", r.Arrows)
 			}

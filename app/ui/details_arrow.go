@@ -1,13 +1,10 @@
 package ui
 
 import (
-	"fmt"
 	"slices"
 	"strings"
 
 	"arrowroot/app/paint"
-	"arrowroot/canvas"
-	"arrowroot/canvas/draw"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/model"
 	"arrowroot/compile/study"
@@ -29,41 +26,10 @@ func (x *details) arrow(s *sheaf, a *study.Arrow) {
 	}
 }
 
-// forms are the forms an arrow can take, with their pictures.
-var forms = []struct {
-	name string
-	line [][2]float64 // in a box of 1 × 1, y up
-	says string
-}{
-	{"slope", [][2]float64{{0.08, 0.12}, {0.92, 0.88}}, "Each step of %[1]s moves the predictor of %[2]s by the same amount."},
-	{"steps", [][2]float64{{0.08, 0.15}, {0.36, 0.15}, {0.36, 0.5}, {0.64, 0.5}, {0.64, 0.85}, {0.92, 0.85}}, "Each level of %[1]s has an effect of its own on %[2]s."},
-	{"offset", [][2]float64{{0.08, 0.3}, {0.92, 0.3}, {0.92, 0.7}, {0.08, 0.7}, {0.08, 0.3}}, "%[1]s enters %[2]s as it is, on the log scale, with no coefficient: twice the %[1]s, twice the expected %[2]s."},
-}
-
 func (x *details) form(s *sheaf, a *study.Arrow) {
 	d := x.d
-	form := a.Form
-	if form == "" {
-		form = "slope"
-		if v := d.view.Study.Variable(a.From); v != nil && (v.Scale == study.Category || v.Scale == study.Ordered) {
-			form = "steps"
-		}
-	}
-	tiles := row(8)
-	for _, f := range forms {
-		pic := canvas.NewPicture(64, 36, func(w, h float64) *draw.List { return formPicture(w, h, f.line, nrgba(tokenInk)) })
-		t := d.tile(pic, f.name, f.name == form, func() {
-			d.changeArrow(a.From, a.To, func(a *study.Arrow) { a.Form = f.name })
-		})
-		s.keys["form "+f.name] = t
-		tiles.Add(t)
-	}
-	s.add(tiles)
-	for _, f := range forms {
-		if f.name == form {
-			s.add(newProse(sizeSmall, span{text: fmt.Sprintf(f.says, a.From, a.To), token: tokenMuted}))
-		}
-	}
+	x.formTiles(s, a)
+	x.formBand(s, a)
 	var plates []string
 	for _, p := range d.view.Study.Plates {
 		plates = append(plates, p.Name)
@@ -94,16 +60,6 @@ func (x *details) form(s *sheaf, a *study.Arrow) {
 	drop := d.quiet("Remove", func() { d.commands.find("delete").run() })
 	s.keys["turn"], s.keys["drop"] = turn, drop
 	s.add(gapOf(1, 2), row(8, turn, drop))
-}
-
-func formPicture(w, h float64, line [][2]float64, ink draw.Color) *draw.List {
-	l := &draw.List{Width: w, Height: h}
-	var points []draw.Point
-	for _, p := range line {
-		points = append(points, draw.Point{X: p[0] * w, Y: (1 - p[1]) * h})
-	}
-	l.Add(&draw.Shape{Path: draw.Polyline(points...), Stroke: ink, Width: 1.6})
-	return l
 }
 
 // slope is the tab of the coefficients that an arrow makes.

@@ -63,6 +63,10 @@ func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 	if p.Shape == model.ByPlate || p.Shape == model.Unrecorded {
 		return // its prior is the law of the levels, or of the variable: that stands by itself
 	}
+	if p.Shape == model.Rising { // no other prior can be given
+		s.add(newProse(sizeSmall, span{text: p.Why, token: tokenMuted}))
+		return
+	}
 	text, own := d.priorText(of, p.Name)
 	f := d.field(text, priorPhrase(p), func(text string) { d.setPrior(of, p.Name, text) })
 	s.keys["prior "+p.Name] = f
@@ -78,7 +82,7 @@ func (x *details) parameter(s *sheaf, of string, p *model.Parameter) {
 	if p.Why != "" && !own {
 		why := p.Why
 		if p.Prior.FromData {
-			why += " Some of these ranges were seen in the data, not given."
+			why = strings.TrimSuffix(why, ".") + ". Some of these ranges were seen in the data, not given."
 		}
 		s.add(newProse(sizeSmall, span{text: why, token: tokenMuted}))
 	}
@@ -117,6 +121,8 @@ func shapeWords(p *model.Parameter) string {
 		return times(p.Size, "entry", "entries") + " that sum to zero: " + words.List(p.Entries)
 	case model.Simplex:
 		return times(p.Size, "share", "shares") + " that sum to one"
+	case model.Rising:
+		return "how much of the whole change is reached at each level, from 0 to 1: " + words.List(p.Entries)
 	case model.Unrecorded:
 		return times(p.Size, "missing entry", "missing entries") + ", drawn with the rest"
 	case model.Cuts:

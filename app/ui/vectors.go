@@ -58,7 +58,7 @@ func (x *details) vector(s *sheaf, m *model.Model, p *model.Parameter) {
 		height := float32(draw.IntervalsHeight(p.Size))
 		zero := 0.0
 		mark := &zero
-		if p.Shape == model.Simplex {
+		if p.Shape == model.Simplex || p.Shape == model.Rising {
 			mark = nil
 		}
 		s.add(stack(frame, canvas.NewPicture(120, height, func(w, h float64) *draw.List {
@@ -117,6 +117,17 @@ func entryQuantile(m *model.Model, p *model.Parameter, at int) func(float64) flo
 		return func(u float64) float64 { return p.Prior.Family.Quantile(u, args) }
 	case model.Simplex:
 		return func(u float64) float64 { return 1 - math.Pow(1-u, 1/(k-1)) } // a share of Dirichlet(1) is beta(1, K − 1)
+	case model.Rising:
+		if at == 0 || at == p.Size-1 {
+			return nil
+		}
+		// One of K − 2 sorted uniform numbers is beta(j, K − 1 − j).
+		beta := catalog.FamilyByName("beta")
+		if beta == nil || beta.Quantile == nil {
+			return nil
+		}
+		share := float64(at) / (k - 1)
+		return func(u float64) float64 { return beta.Quantile(u, []float64{share, k - 1}) }
 	case model.Cuts:
 		// The share up to a cut point is beta(j, K − j) where the K shares are
 		// Dirichlet(1); the cut is its logit, or its probit.

@@ -36,6 +36,7 @@ func TestPriorsOfEntries(t *testing.T) {
 		{"zero sum", &model.Parameter{Shape: model.ZeroSum, Size: 3, Prior: prior}, 1,
 			distuv.Normal{Sigma: 1.4 / math.Sqrt2 * math.Sqrt(2.0/3)}.Quantile},
 		{"free", &model.Parameter{Shape: model.Vector, Size: 2, Prior: prior}, 0, distuv.Normal{Sigma: 1.4}.Quantile},
+		{"middle of a rise over four levels", &model.Parameter{Shape: model.Rising, Size: 4}, 1, distuv.Beta{Alpha: 1, Beta: 2}.Quantile},
 		{"shares", &model.Parameter{Shape: model.Simplex, Size: 4}, 2, distuv.Beta{Alpha: 1, Beta: 3}.Quantile},
 		{"second cut of four levels", &model.Parameter{Shape: model.Cuts, Size: 3}, 1,
 			func(u float64) float64 { return logit(distuv.Beta{Alpha: 2, Beta: 2}.Quantile(u)) }},

@@ -199,6 +199,18 @@ func (b *builder) formMark(l *line, k float64) {
 		sketch.Line(rel(0.8, -0.8))
 	case form == "steps":
 		sketch = draw.Polyline(rel(-1.1, 0.8), rel(-0.35, 0.8), rel(-0.35, 0), rel(0.4, 0), rel(0.4, -0.8), rel(1.1, -0.8))
+	case form == study.OneWay: // like steps, none back, of unlike sizes
+		sketch = draw.Polyline(rel(-1.1, 1), rel(-0.6, 1), rel(-0.6, 0.6), rel(0, 0.6), rel(0, -0.6), rel(0.6, -0.6), rel(0.6, -1), rel(1.1, -1))
+	case form == study.Threshold:
+		sketch = draw.Polyline(rel(-1.1, 0.6), rel(-0.05, 0.6), rel(1, -0.9))
+	case form == study.Log:
+		sketch.Move(rel(-1, 1))
+		sketch.Cubic(rel(-0.9, 0), rel(-0.1, -0.5), rel(1.1, -0.9))
+	case form == study.Saturating: // below its limit
+		sketch.Move(rel(-1.1, -1))
+		sketch.Line(rel(1.1, -1))
+		sketch.Move(rel(-1, 1))
+		sketch.Cubic(rel(-0.8, -0.6), rel(-0.3, -0.55), rel(1.1, -0.6))
 	case form == "offset":
 		// an arrow that passes its parent on unchanged, one for one
 		b.list.Add(&draw.Text{At: draw.Point{X: at.X, Y: at.Y + draw.Drop(1.4*r)}, Text: "1", Face: draw.Bold, Size: 1.4 * r, Color: p.Ink, Anchor: draw.Middle})

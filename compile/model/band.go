@@ -78,6 +78,21 @@ func (m *Model) Band(t Term, x []float64, level float64, draws int, values Value
 	return b, true
 }
 
+// TermOf is the term that an arrow makes in its child's law; ok is false where
+// there is none, or the law's formula was typed.
+func (m *Model) TermOf(from, to string) (t Term, ok bool) {
+	parent, _ := m.Name(from)
+	child, _ := m.Name(to)
+	for _, l := range m.Laws {
+		for _, t := range l.Terms {
+			if l.Variable == child && child >= 0 && t.Variable == parent && parent >= 0 && t.Part != nil && t.Kind != GroupMean {
+				return t, true
+			}
+		}
+	}
+	return Term{}, false
+}
+
 // PriorValues draws the parameters that a term reads from their priors. ok is
 // false where one leans on parameters outside the term.
 func (m *Model) PriorValues(t Term, draws int, rng *rand.Rand) (v Values, ok bool) {

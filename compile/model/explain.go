@@ -343,7 +343,7 @@ func (b *builder) term(d *draft, a *study.Arrow, carried bool, level int) (part 
 	if b.takesSteps(a) {
 		t.Kind = Steps
 		if reason, repairs := b.stepsFault(a); reason != "" {
-			b.stop(Problem{Code: "form", Variable: v, Place: "arrow", Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
+			b.stop(Problem{Code: "form", Variable: v, Place: "arrow", From: p, Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
 			return number(0)
 		}
 		i := b.parameter(meaning{role: steps, child: v, parent: p, at: level + 1})
@@ -351,7 +351,7 @@ func (b *builder) term(d *draft, a *study.Arrow, carried bool, level int) (part 
 		return of(b.model.Parameters[i].Name, p)
 	}
 	if reason, repairs := b.formFault(d, a); reason != "" {
-		b.stop(Problem{Code: "form", Variable: v, Place: "arrow", Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
+		b.stop(Problem{Code: "form", Variable: v, Place: "arrow", From: p, Message: fmt.Sprintf("%s → %s: %s", p, v, reason), Repairs: repairs})
 		return number(0)
 	}
 	t.Kind, t.Center = kindOf(a.Form), b.formCenter(a.Form, parent)
@@ -394,7 +394,7 @@ func (b *builder) productTerm(d *draft, p pairOf, level int) formula.Expr {
 	for _, p := range [2]string{p.first, p.second} {
 		if form := d.formTo(p); bends(form) && form != study.Log {
 			a := d.arrows[slices.IndexFunc(d.arrows, func(a *study.Arrow) bool { return a.From == p })]
-			b.stop(Problem{Code: "form", Variable: v, Place: "arrow",
+			b.stop(Problem{Code: "form", Variable: v, Place: "arrow", From: p,
 				Message: fmt.Sprintf("%s → %s is of the form “%s”, of which this version knows no product.", p, v, form),
 				Repairs: []Repair{{Label: "Use a slope", Edit: b.changeArrow(a, func(a *study.Arrow) { a.Form = study.Slope })}}})
 			return number(0)
@@ -428,7 +428,7 @@ func (b *builder) offset(d *draft, a *study.Arrow) formula.Expr {
 	v, parent := d.variable.ID, b.model.Variables[b.at[a.From]]
 	use := Repair{Label: "Use a slope", Edit: b.changeArrow(a, func(a *study.Arrow) { a.Form = "slope" })}
 	if d.family.Link != catalog.Log {
-		b.stop(Problem{Code: "offset-link", Variable: v, Place: "arrow",
+		b.stop(Problem{Code: "offset-link", Variable: v, Place: "arrow", From: a.From,
 			Message: fmt.Sprintf("%s → %s is an offset, which multiplies the mean; that needs a law with a log link, and %s has none.", a.From, v, article(d.family.Name)),
 			Repairs: []Repair{use}})
 		return number(0)

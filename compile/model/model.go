@@ -215,7 +215,8 @@ type Prior struct {
 type Problem struct {
 	Code     string       // stable: "formula", "cycle", "column-gone", "text-in-number", …
 	Variable string       // ID, "" if none
-	Place    string       // "law", "formula", "data", "prior", …
+	Place    string       // "law", "formula", "data", "prior", "arrow", …
+	From     string       // of an arrow into Variable that it is about; "" if none
 	Text     string       // what was typed, where the problem is in it; "" if none
 	Span     formula.Span // in Text
 	Message  string       // one sentence with the user's names, the place and the reason
