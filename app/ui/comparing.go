@@ -13,7 +13,7 @@ import (
 )
 
 // rivalsPage sets the rivals side by side: which arrows differ from the one on
-// the sheet, and what each of them answers.
+// the sheet, what each of them answers, and which predicts better.
 type rivalsPage struct {
 	d     *desk
 	pane  *pane
@@ -28,6 +28,7 @@ type comparingState struct {
 	results int
 	result  any
 	stale   string
+	predict predictionState
 }
 
 func newRivalsPage(d *desk) *rivalsPage { return &rivalsPage{d: d, pane: newPane(16, 8, 8)} }
@@ -37,7 +38,7 @@ func (p *rivalsPage) content() fyne.CanvasObject { return p.pane }
 
 func (p *rivalsPage) update() {
 	v := p.d.view
-	state := comparingState{v.Study, v.Rival, v.Question, len(v.Results), v.Result, fmt.Sprint(v.StaleResults)}
+	state := comparingState{v.Study, v.Rival, v.Question, len(v.Results), v.Result, fmt.Sprint(v.StaleResults), p.predictionState()}
 	if p.asked && state == p.seen {
 		return
 	}
@@ -54,7 +55,7 @@ func (p *rivalsPage) update() {
 	for _, r := range v.Study.Rivals {
 		grid.Add(p.card(r, keys))
 	}
-	p.pane.fill(keys, grid)
+	p.pane.fill(keys, append([]fyne.CanvasObject{grid}, p.prediction(keys)...)...)
 }
 
 func (p *rivalsPage) card(r *study.Rival, keys map[string]fyne.Focusable) fyne.CanvasObject {
