@@ -21,12 +21,15 @@ type checksPage struct {
 	d      *desk
 	list   *roll
 	shows  *pane
-	split  fyne.CanvasObject
+	split  *fyne.Container
 	seen   checksState
 	opened bool
 	at     checked // what is chosen
 	line   float32
 }
+
+// checksShare is the list's share of the width.
+const checksShare = 0.44
 
 // checked is a variable, or one check of it: its place from 1, 0 is the
 // variable as a whole.
@@ -52,7 +55,7 @@ type checksState struct {
 func newChecksPage(d *desk) *checksPage {
 	p := &checksPage{d: d, list: newRoll(8, 8, 0), shows: newPane(16, 8, 5)}
 	p.line = fyne.MeasureText("M", sizeBody, fyne.TextStyle{}).Height
-	p.split = container.New(&splitLayout{share: 0.44}, p.list, hairline(), p.shows)
+	p.split = container.New(&splitLayout{share: checksShare}, p.list, hairline(), p.shows)
 	return p
 }
 
@@ -111,6 +114,7 @@ func (p *checksPage) fill() {
 	c := p.d.view.Checks
 	var rows []rollRow
 	if c != nil {
+		rows = append(rows, still(padded(8, 0, 2, p.summary(c))), still(gapOf(1, 4)))
 		for _, v := range c.Variables {
 			rows = append(rows, p.row(checked{v.ID, 0}, v))
 			for i, k := range v.Checks {
@@ -121,8 +125,19 @@ func (p *checksPage) fill() {
 		}
 	}
 	p.list.fill(rows...)
+	share := float32(checksShare)
+	if len(rows) == 0 { // nothing to list: the words have all the room
+		share = 0
+	}
+	p.split.Layout = &splitLayout{share: share}
+	if line := p.split.Objects[1]; share == 0 {
+		line.Hide()
+	} else {
+		line.Show()
+	}
+	p.split.Refresh()
 	keys := make(map[string]fyne.Focusable)
-	p.shows.fill(keys, append(p.above(keys), p.chosen(keys)...)...)
+	p.shows.fill(keys, append(p.chosen(keys), p.said(keys)...)...)
 }
 
 func (p *checksPage) row(at checked, v *replicate.Variable) rollRow {
@@ -176,8 +191,30 @@ func (p *checksPage) entry(at checked, v *replicate.Variable) *press {
 	return x
 }
 
-// above is what is said of all checks, or of their absence.
-func (p *checksPage) above(keys map[string]fyne.Focusable) []fyne.CanvasObject {
+// summary is the answer in a line.
+func (p *checksPage) summary(c *replicate.Checks) fyne.CanvasObject {
+	failed, made := 0, 0
+	for _, v := range c.Variables {
+		if len(v.Checks) > 0 {
+			made++
+		}
+		if v.Failed() {
+			failed++
+		}
+	}
+	switch {
+	case made == 0:
+		return para(words.NoCheck, tokenMuted)
+	case failed == 0:
+		return para("The model reproduces the data.", tokenInk)
+	case failed == 1:
+		return para(fmt.Sprintf("1 of %s is not reproduced.", times(made, "variable", "variables")), tokenConfound)
+	}
+	return para(fmt.Sprintf("%d of %s are not reproduced.", failed, times(made, "variable", "variables")), tokenConfound)
+}
+
+// said is what there is to say of all checks, or of their absence.
+func (p *checksPage) said(keys map[string]fyne.Focusable) []fyne.CanvasObject {
 	d, v := p.d, p.d.view
 	var objects []fyne.CanvasObject
 	switch {
@@ -203,6 +240,7 @@ func (p *checksPage) above(keys map[string]fyne.Focusable) []fyne.CanvasObject {
 		}
 		return []fyne.CanvasObject{bold("Can the model reproduce the data?"), para(text, token), row(0, b)}
 	}
+	objects = append(objects, gapOf(1, 4), hairline())
 	if v.Stale {
 		objects = append(objects, para("The study has changed since: this belongs to an earlier version.", tokenConfound))
 	}
@@ -249,9 +287,10 @@ func (p *checksPage) chosen(keys map[string]fyne.Focusable) []fyne.CanvasObject 
 		legend += fmt.Sprintf(" %s of %s values, evenly chosen.", words.Whole(float64(v.Units)), words.Whole(float64(v.Observed)))
 	}
 	style := d.style()
+	style.Ground = nrgba(tokenPanel)
 	objects := []fyne.CanvasObject{
-		gapOf(1, 2), bold(title).shrinkTo(80),
-		canvas.NewPicture(100, 176, func(w, h float64) *draw.List { return paint.Replicates(min(w, 560), h, pic, style) }),
+		bold(title).shrinkTo(80),
+		canvas.NewPicture(100, 150, func(w, h float64) *draw.List { return paint.Replicates(min(w, 560), h, pic, style) }),
 	}
 	if under != "" {
 		objects = append(objects, para(under, tokenInk))

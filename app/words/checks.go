@@ -64,12 +64,12 @@ func CheckName(k *replicate.Check) string {
 	case replicate.Shares:
 		return "share of " + k.Of
 	case replicate.Groups:
-		return "differences between the groups of " + k.Of
+		return "groups of " + k.Of
 	case replicate.Trend:
 		if k.Parent {
 			return "change with " + k.Of
 		}
-		return "change with " + k.Of + ", which its law leaves out"
+		return "change with " + k.Of + ", left out of its law"
 	case replicate.Largest, replicate.Smallest:
 		return string(k.Kind) + " value"
 	case replicate.Shape:
