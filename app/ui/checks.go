@@ -50,6 +50,7 @@ type checksState struct {
 	dark              bool
 	picked            string
 	at                checked
+	paint             scene.PaintKind
 }
 
 func newChecksPage(d *desk) *checksPage {
@@ -65,7 +66,7 @@ func (p *checksPage) content() fyne.CanvasObject { return p.split }
 func (p *checksPage) update() {
 	v := p.d.view
 	state := checksState{
-		v.Result, v.Checks, v.Checking, v.ChecksDone, v.ChecksError, v.Stale, v.Running, p.d.canFit(), p.d.dark(), p.d.picked(), p.at,
+		v.Result, v.Checks, v.Checking, v.ChecksDone, v.ChecksError, v.Stale, v.Running, p.d.canFit(), p.d.dark(), p.d.picked(), p.at, p.d.paint,
 	}
 	if p.opened && state == p.seen {
 		return
@@ -274,7 +275,7 @@ func (p *checksPage) chosen(keys map[string]fyne.Focusable) []fyne.CanvasObject 
 	if p.at.check > 0 && p.at.check <= len(v.Checks) {
 		k := v.Checks[p.at.check-1]
 		pic, title = &k.Picture, v.ID+": "+words.CheckName(k)
-		under = sentenceCase(words.CheckNumbers(k)) + ": " + k.Words + "."
+		under = sentenceCase(words.CheckNumbers(k)) + ". " + sentenceCase(k.Words) + "."
 	}
 	legend := "Ink: the data. Soft: where 95 % of the replicates lie."
 	if pic.Kind == replicate.Tally {
@@ -287,19 +288,20 @@ func (p *checksPage) chosen(keys map[string]fyne.Focusable) []fyne.CanvasObject 
 		legend += fmt.Sprintf(" %s of %s values, evenly chosen.", words.Whole(float64(v.Units)), words.Whole(float64(v.Observed)))
 	}
 	style := d.style()
-	style.Ground = nrgba(tokenPanel)
+	style.Ground = nrgba(tokenCard)
+	head := row(8, stretch(bold(title).shrinkTo(80)))
+	if d.paint != scene.FitPaint {
+		b := d.quiet("Paint the sheet by this", func() { d.setPaint(scene.FitPaint) })
+		keys["paint"] = b
+		head.Add(b)
+	}
 	objects := []fyne.CanvasObject{
-		bold(title).shrinkTo(80),
+		head,
 		canvas.NewPicture(100, 150, func(w, h float64) *draw.List { return paint.Replicates(min(w, 560), h, pic, style) }),
 	}
 	if under != "" {
 		objects = append(objects, para(under, tokenInk))
 	}
 	objects = append(objects, newProse(sizeSmall, span{text: legend, token: tokenMuted}))
-	if d.paint != scene.FitPaint {
-		b := d.quiet("Paint the sheet by this", func() { d.setPaint(scene.FitPaint); p.opened = false; p.update() })
-		keys["paint"] = b
-		objects = append(objects, row(0, b))
-	}
 	return objects
 }

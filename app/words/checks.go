@@ -84,6 +84,9 @@ func CheckName(k *replicate.Check) string {
 
 // CheckNumbers compares the data with the replicates.
 func CheckNumbers(k *replicate.Check) string {
+	if k.Upward && k.Beyond == 0 {
+		return "no replicate is as far off"
+	}
 	if k.Upward {
 		return fmt.Sprintf("%s of the replicates are as far off or further", Percent(k.Tail))
 	}

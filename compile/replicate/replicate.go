@@ -53,6 +53,7 @@ type Check struct {
 	Low, High float64 // of 95 % of the replicates
 	Centre    float64 // their median
 	Tail      float64 // share of replicates at least as far out, in two directions unless Upward
+	Beyond    int     // replicates at least as far out, on the side of the data
 	Upward    bool    // only a large number speaks against the model
 	Distance  float64 // from the centre, in half widths of 95 % of the replicates on that side, over 1.96
 	Far       float64 // Distance over what all checks together allow: above 1 is not reproduced

@@ -55,7 +55,7 @@ func (s *sample) compare(kind Kind, of string, values []float64, bend func(float
 	if upward {
 		k.Low, k.High = at(replicates, 0), at(replicates, 0.95)
 	}
-	k.Tail = tail(replicates, values[0], upward)
+	k.Tail, k.Beyond = tail(replicates, values[0], upward)
 	bent := make([]float64, len(replicates))
 	for i, x := range replicates {
 		bent[i] = bend(x)
@@ -85,8 +85,8 @@ func (s *sample) compare(kind Kind, of string, values []float64, bend func(float
 }
 
 // tail is the share of replicates at least as far out as the data, which count
-// as one of them.
-func tail(sorted []float64, x float64, upward bool) float64 {
+// as one of them, and how many these are on its side.
+func tail(sorted []float64, x float64, upward bool) (share float64, beyond int) {
 	below, _ := slices.BinarySearch(sorted, x)
 	upTo := below
 	for upTo < len(sorted) && sorted[upTo] == x {
@@ -95,9 +95,9 @@ func tail(sorted []float64, x float64, upward bool) float64 {
 	n := float64(len(sorted) + 1)
 	up := (float64(len(sorted)-below) + 1) / n
 	if upward {
-		return up
+		return up, len(sorted) - below
 	}
-	return math.Min(1, 2*math.Min(up, (float64(upTo)+1)/n))
+	return math.Min(1, 2*math.Min(up, (float64(upTo)+1)/n)), min(len(sorted)-below, upTo)
 }
 
 // Scales of statistics.
