@@ -167,9 +167,9 @@ func (x *details) formBand(s *sheaf, a *study.Arrow) {
 			spans = append(spans, span{text: trust + "  ", token: tokenConfound})
 		}
 	}
-	says := words.Percent(level) + " of what " + a.From + " adds to " + a.To
+	says := words.Percent(level) + ": what " + a.From + " adds to " + a.To
 	if t.Kind == model.Slope || t.Kind == model.Log || t.Kind == model.Threshold || t.Kind == model.Saturating {
-		says += ", counted from " + a.From + " " + words.Number(t.Center)
+		says += ", 0 at " + a.From + " " + draw.Number(t.Center)
 	}
 	if len(a.VariesBy) > 0 {
 		says += ", in an average " + words.List(a.VariesBy)

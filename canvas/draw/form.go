@@ -37,6 +37,9 @@ func FormPlot(width, height float64, d Form, s Style) *List {
 	y := axis{low - pad, high + pad, math.Floor(height - 2*size - 14), size + 10}
 	left := 10.0
 	ticks := y.ticks(3)
+	for n := 4; n < 8 && len(ticks) < 2; n++ { // one number is no scale
+		ticks = y.ticks(n)
+	}
 	for _, v := range ticks {
 		left = max(left, Measure(Number(v), Regular, size)+10)
 	}
