@@ -1,6 +1,7 @@
 package main
 
 import (
+	"cmp"
 	"context"
 	"encoding/csv"
 	"errors"
@@ -112,7 +113,7 @@ func emptyComparison(j *job) *compareOut {
 
 func printComparison(j *job, c *fit.Comparison) *compareOut {
 	out := emptyComparison(j)
-	out.Outcome, out.Unit, out.Units, out.Entries, out.KnownGroups = c.Outcome, or(c.Plate, "row"), len(c.Units), c.Entries, c.KnownOnly
+	out.Outcome, out.Unit, out.Units, out.Entries, out.KnownGroups = c.Outcome, cmp.Or(c.Plate, "row"), len(c.Units), c.Entries, c.KnownOnly
 	out.Sentences, out.Better, out.NoWeights = words.Comparison(c), c.Better, c.NoWeights
 	out.NoBetter = append(out.NoBetter, c.NoBetter...)
 	for i, s := range c.Rivals {
@@ -151,7 +152,7 @@ func printComparison(j *job, c *fit.Comparison) *compareOut {
 // score and the tail of its weights.
 func writeScores(w io.Writer, c *fit.Comparison) error {
 	out := csv.NewWriter(w)
-	line := []string{or(c.Plate, "row")}
+	line := []string{cmp.Or(c.Plate, "row")}
 	for _, s := range c.Rivals {
 		line = append(line, s.Rival, s.Rival+", tail")
 	}

@@ -101,7 +101,7 @@ func TestStudyWithoutARival(t *testing.T) {
 	}
 }
 
-// Every field that the README documents is printed, also where it is empty.
+// Every field that FIELDS.md documents is printed, also where it is empty.
 func TestFieldsAreAlwaysThere(t *testing.T) {
 	file := filepath.Join(folder(t), "plots.arrowroot")
 	number := "name centre spread low high level monteCarloError rHat ess trust reasons"

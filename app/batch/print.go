@@ -10,14 +10,8 @@ import (
 	"arrowroot/infer/summary"
 )
 
-// What the verbs print. The README documents every field.
-
-func or(s, other string) string {
-	if s == "" {
-		return other
-	}
-	return s
-}
+// What the verbs print. FIELDS.md documents every field, and a test holds it to
+// that.
 
 type problemOut struct {
 	Code     string   `json:"code"`

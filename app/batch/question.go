@@ -1,6 +1,9 @@
 package main
 
-import "arrowroot/compile/study"
+import (
+	"arrowroot/compile/study"
+	"cmp"
+)
 
 // A questionOut is a question as the verbs print it; words that were left out
 // stand there as what they mean.
@@ -39,9 +42,9 @@ func printQuestion(q *study.Question) *questionOut {
 		return nil
 	}
 	out := &questionOut{
-		Exposure: q.Exposure, Outcome: q.Outcome, Effect: or(q.Effect, study.TotalEffect), Shift: q.Shift,
-		Fixed: []fixOut{}, Held: q.Held, Where: []conditionOut{}, Over: or(q.Over, study.TheseRows),
-		Groups: or(q.Groups, study.TheseGroups), Weigh: or(q.Weigh, study.ByRows), As: or(q.As, study.Difference), Levels: append([]string{}, q.OutcomeLevels...), Level: q.Level,
+		Exposure: q.Exposure, Outcome: q.Outcome, Effect: cmp.Or(q.Effect, study.TotalEffect), Shift: q.Shift,
+		Fixed: []fixOut{}, Held: q.Held, Where: []conditionOut{}, Over: cmp.Or(q.Over, study.TheseRows),
+		Groups: cmp.Or(q.Groups, study.TheseGroups), Weigh: cmp.Or(q.Weigh, study.ByRows), As: cmp.Or(q.As, study.Difference), Levels: append([]string{}, q.OutcomeLevels...), Level: q.Level,
 		From: setting(q.From), To: setting(q.To),
 	}
 	for _, f := range q.Fixed {

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -251,7 +252,7 @@ func printFindings(j *job, f *findings.Findings) *readingOut {
 	of := func(nodes []int) []string { return g.NamesOf(nodes) }
 	out := &readingOut{
 		Rival: j.rival, Question: printQuestion(j.question), Verdict: f.Verdict.Sentence, Way: f.Verdict.Way, Lacks: f.Lacks, Done: f.Done,
-		Asked: askedOut{list(f.Ask.Exposures), list(f.Ask.Outcomes), list(f.Ask.Given), list(f.Ask.Held), list(f.Ask.Fixed), or(f.Ask.Effect, study.TotalEffect), of(f.Selected)},
+		Asked: askedOut{list(f.Ask.Exposures), list(f.Ask.Outcomes), list(f.Ask.Given), list(f.Ask.Held), list(f.Ask.Fixed), cmp.Or(f.Ask.Effect, study.TotalEffect), of(f.Selected)},
 		Hold:  [][]string{}, Forbidden: []string{}, ForbiddenWhy: map[string]string{}, HeldFaults: map[string]string{}, WouldHelp: []string{}, Paths: []pathOut{}, PathsExact: true,
 		Controls: map[string]verdictOut{}, FrontDoors: []frontDoorOut{}, Instruments: []instrumentOut{}, ArrowInstruments: []instrumentOut{}, Laws: []lawOut{},
 		Basis: []independenceOut{}, Pairs: []pairOut{}, Functionals: []functionalOut{}, Tetrads: [][4]string{}, Rivals: []likenessOut{}, Sections: []sectionOut{},

@@ -1,6 +1,7 @@
 package words
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"strings"
@@ -25,7 +26,7 @@ func Question(s *study.Study, q *study.Question) string {
 	if c := Change(s, q); c != "" {
 		parts = append(parts, c)
 	}
-	parts = append(parts, or(q.Over, study.TheseRows))
+	parts = append(parts, cmp.Or(q.Over, study.TheseRows))
 	return strings.Join(append(parts, Asides(s, q)...), ", ")
 }
 
@@ -59,14 +60,7 @@ func setting(s *study.Setting) string {
 	return Given(s.Number)
 }
 
-func blank(id string) string { return or(id, "▢") }
-
-func or(s, other string) string {
-	if s == "" {
-		return other
-	}
-	return s
-}
+func blank(id string) string { return cmp.Or(id, "▢") }
 
 // Rows says how many rows a model used and what lost the others.
 func Rows(r model.Rows) string {

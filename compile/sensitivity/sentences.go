@@ -1,6 +1,7 @@
 package sensitivity
 
 import (
+	"cmp"
 	"fmt"
 	"math"
 	"strconv"
@@ -22,7 +23,7 @@ func (r *Result) say() []string {
 		}
 		line := fmt.Sprintf("An unmeasured cause that explained %s of what is left of %s and of %s would leave no effect%s (robustness value, Cinelli & Hazlett 2020).",
 			percent(b.Value), in.ExposureName, in.OutcomeName, interval)
-		lines = append(lines, line, or(r.compareShares(), compared))
+		lines = append(lines, line, cmp.Or(r.compareShares(), compared))
 	}
 	if e := r.E; e != nil {
 		how := ""
@@ -46,7 +47,7 @@ func (r *Result) say() []string {
 		lines = append(lines, "Not compared: "+strings.Join(in.NotCompared, ", ")+".")
 	}
 	if len(lines) == 0 {
-		lines = append(lines, fmt.Sprintf("How wrong it could be is not said: %s.", or(r.NoRobustness, r.NoE)))
+		lines = append(lines, fmt.Sprintf("How wrong it could be is not said: %s.", cmp.Or(r.NoRobustness, r.NoE)))
 	}
 	return lines
 }
@@ -98,13 +99,6 @@ func (r *Result) compareRatios() string {
 		return ""
 	}
 	return "Beside what is held: " + strings.Join(parts, "; ") + "."
-}
-
-func or(s, other string) string {
-	if s != "" {
-		return s
-	}
-	return other
 }
 
 // percent is a share for people: two digits that count.
