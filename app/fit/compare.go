@@ -104,6 +104,10 @@ type Pair struct {
 // be relied on, before the score is withheld.
 const mostRefits = 10
 
+// roughest is the simulation error that a score may have beside differences of
+// score.Small and more.
+const roughest = 1
+
 // Compare fits rivals, or takes the fits it is given, and scores how well each
 // predicts the outcome of units that it has not seen. An *Incomparable error
 // says why they cannot be scored against each other, before anything is
@@ -209,6 +213,8 @@ func (c *contender) score(ctx context.Context, req *CompareRequest, units *leavi
 		s.Withheld = fmt.Sprintf("the fit of %s cannot be trusted", c.rival)
 	case slices.ContainsFunc(s.Unit, func(x float64) bool { return math.IsNaN(x) || math.IsInf(x, 0) }):
 		s.Withheld = fmt.Sprintf("%s rules out some of what was recorded", c.rival)
+	case s.Simulation > roughest:
+		s.Withheld = fmt.Sprintf("averaging over new groups leaves the score of %s unsure by %.1f", c.rival, s.Simulation)
 	case len(s.Doubtful) > 0:
 		s.Withheld = fmt.Sprintf("%s of %s hang on draws that hardly occur (tail above %.2f), too many to leave each out for true",
 			plural(len(s.Doubtful), "unit"), c.rival, s.Limit)

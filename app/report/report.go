@@ -41,6 +41,7 @@ type Input struct {
 	Evidence *evidence.Evidence // nil = the arrows were not held against data
 	Result   *fit.Result
 	Checks   *replicate.Checks // of Result; nil = none were made, and the report says so
+	Rivals   *fit.Comparison   // by prediction; nil = they were not compared, and the report says so
 }
 
 //go:embed page.html
@@ -59,6 +60,8 @@ type content struct {
 	Plots                  template.HTML
 	Checks                 []string
 	CheckPlots             template.HTML
+	Prediction             []string
+	Differences            template.HTML
 	Statement              []statementLine
 	Quantities             []row
 	Controls               []row // coefficients that the question does not ask about
@@ -173,7 +176,25 @@ func contentOf(in Input) (*content, error) {
 			return nil, err
 		}
 	}
-	return c, nil
+	return c, predicted(c, &in)
+}
+
+// predicted says which of several rivals predicts better, or that nobody asked.
+func predicted(c *content, in *Input) error {
+	if len(in.Study.Rivals) < 2 {
+		return nil
+	}
+	if in.Rivals == nil {
+		c.Prediction = []string{"Not done: the rivals were not compared by how well they predict."}
+		return nil
+	}
+	c.Prediction = words.Comparison(in.Rivals)
+	if len(in.Rivals.Pairs) == 0 {
+		return nil
+	}
+	var err error
+	c.Differences, err = svg(paint.Differences(640, paint.DifferencesHeight(in.Rivals), in.Rivals, plotStyle(scene.Light())))
+	return err
 }
 
 func ratio(x float64) string {

@@ -135,3 +135,34 @@ func TestReportOnTheReading(t *testing.T) {
 		}
 	}
 }
+
+// With several rivals the report says which predicts better, or that they were
+// not compared.
+func TestReportOnPrediction(t *testing.T) {
+	s, err := (study.AddRival{Rival: study.Rival{Name: "Feed only"}}).Apply(study.New())
+	if err != nil {
+		t.Fatal(err)
+	}
+	in := Input{Study: s, Rival: "Feed only"}
+	var page bytes.Buffer
+	if err := WriteHTML(&page, in); err != nil {
+		t.Fatal(err)
+	}
+	if !strings.Contains(page.String(), "Not done: the rivals were not compared") {
+		t.Error("a comparison that was not made is not missed")
+	}
+	in.Rivals = &fit.Comparison{
+		Question: study.Question{Exposure: "hedge", Outcome: "bees"}, Outcome: "bees", Units: make([]string, 120), Entries: 120, Better: "Nest and feed",
+		Rivals: []*fit.Scored{{Rival: "Feed only", Score: -310, Error: 9, Identified: true}, {Rival: "Nest and feed", Score: -290, Error: 9}},
+		Pairs:  []fit.Pair{{Higher: "Nest and feed", Lower: "Feed only", Difference: 20, Error: 5}},
+	}
+	page.Reset()
+	if err := WriteHTML(&page, in); err != nil {
+		t.Fatal(err)
+	}
+	for _, want := range []string{"Which rival predicts better?", "Nest and feed predicts bees better than Feed only.", "the effect is not identified", "20.0, error 5.0", "To predict better is not to be right about causes"} {
+		if !strings.Contains(page.String(), want) {
+			t.Errorf("the report does not say %q", want)
+		}
+	}
+}

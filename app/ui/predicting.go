@@ -8,6 +8,7 @@ import (
 	"fyne.io/fyne/v2"
 
 	"arrowroot/app/fit"
+	"arrowroot/app/paint"
 	"arrowroot/app/session"
 	"arrowroot/app/words"
 	"arrowroot/canvas"
@@ -164,22 +165,15 @@ func notesOn(c *fit.Comparison, s *fit.Scored) []string {
 	if exactly := words.Exactly(c, s); exactly != "" {
 		notes = append(notes, exactly[1:])
 	}
+	if s.Withheld == "" {
+		notes = append(notes, words.Wide(s))
+	}
 	return notes
 }
 
 func (p *rivalsPage) differencePicture(c *fit.Comparison) fyne.CanvasObject {
-	var rows []draw.Interval
-	for _, pair := range c.Pairs {
-		nan := math.NaN()
-		rows = append(rows, draw.Interval{
-			Label: pair.Higher + " above " + pair.Lower, Mid: pair.Difference,
-			Low: pair.Difference - 2*pair.Error, High: pair.Difference + 2*pair.Error, InnerLow: nan, InnerHigh: nan, PriorLow: nan, PriorHigh: nan,
-			Words: fmt.Sprintf("%s ± %s", words.Score(pair.Difference), words.Score(pair.Error)), Faint: pair.Undecided != "",
-		})
-	}
-	zero, style := 0.0, p.d.style()
-	height := draw.IntervalsHeight(len(rows))
-	return canvas.NewPicture(100, float32(height), func(w, h float64) *draw.List { return draw.Intervals(min(w, 760), h, rows, &zero, style) })
+	style := p.d.style()
+	return canvas.NewPicture(100, float32(paint.DifferencesHeight(c)), func(w, h float64) *draw.List { return paint.Differences(min(w, 760), h, c, style) })
 }
 
 func largest(x []float64) float64 {
@@ -188,4 +182,21 @@ func largest(x []float64) float64 {
 		most = max(most, v)
 	}
 	return most
+}
+
+// predictionSaid is what the trace tells of a comparison.
+func (d *desk) predictionSaid() []string {
+	x := d.view.Prediction
+	var no *fit.Incomparable
+	switch {
+	case x.Running:
+		return nil
+	case errors.As(x.Error, &no):
+		return no.Reasons
+	case x.Error != nil:
+		return []string{x.Error.Error()}
+	case x.Comparison != nil:
+		return words.Comparison(x.Comparison)
+	}
+	return nil
 }

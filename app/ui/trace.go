@@ -55,6 +55,7 @@ type said struct {
 	Stale    bool              `json:"stale,omitempty"`  // the result belongs to an earlier version
 	Effect   []string          `json:"effect,omitempty"` // the sentences of the Effect page
 	Checks   []string          `json:"checks,omitempty"` // whether the fit reproduces its data, in sentences
+	Rivals   []string          `json:"rivals,omitempty"` // which predicts better, in sentences, or why that cannot be said
 	Paint    string            `json:"paint,omitempty"`
 	Running  bool              `json:"running,omitempty"`
 	FitError string            `json:"fitError,omitempty"`
@@ -154,6 +155,7 @@ func (d *desk) said() said {
 	if v.Checks != nil {
 		s.Checks = words.Checks(v.Checks)
 	}
+	s.Rivals = d.predictionSaid()
 	if v.FitError != nil {
 		s.FitError = v.FitError.Error()
 	}
@@ -227,6 +229,13 @@ func (d *desk) marks() map[string]fyne.CanvasObject {
 				if c, ok := x.(*checksPage); ok && p.page() == c.name() {
 					for i, o := range c.list.live {
 						m[c.list.rows[i].key] = o
+					}
+				}
+			}
+			for _, x := range p.pages {
+				if c, ok := x.(*rivalsPage); ok && p.page() == c.name() {
+					if b, ok := c.pane.keys["compare"].(*press); ok {
+						m["compare"] = b
 					}
 				}
 			}

@@ -61,7 +61,16 @@ func scored(c *fit.Comparison, s *fit.Scored) string {
 	if s.Trust.Verdict != summary.Sound {
 		text += "; trust in the fit: " + s.Trust.Verdict.String()
 	}
-	return text + "." + Exactly(c, s)
+	return text + "." + Exactly(c, s) + " " + Wide(s)
+}
+
+// Wide is the score by a criterion that needs no reweighting, for reference.
+func Wide(s *fit.Scored) string {
+	text := "By the widely applicable information criterion, for reference: " + Score(s.WideScore)
+	if s.WideShaky > 0 {
+		text += ", with " + Plural(s.WideShaky, "unit") + " for which it is not to be trusted"
+	}
+	return text + "."
 }
 
 // Exactly says which units were left out for true; empty if none was.

@@ -33,6 +33,7 @@ const (
 	mostReplicates   = 2048 // likewise
 	replicateError   = 0.1  // of the sum over units: small beside the least difference that counts
 	replicatePilot   = 16   // draws that show the error
+	predictBudget    = 1e9  // law evaluations
 )
 
 // Predict gives the log densities of an outcome's observed entries under its
@@ -69,12 +70,17 @@ func Predict(ctx context.Context, m *model.Model, outcome string, draws [][]floa
 	out := &Predicted{}
 	if len(s.fresh) > 0 {
 		n := fewestReplicates
+		budget := opt.Budget
+		if budget <= 0 {
+			budget = predictBudget
+		}
 		for ; ; n *= 2 {
 			s.score(source, n)
 			if out.Error, err = s.pilot(ctx, draws); err != nil {
 				return nil, err
 			}
-			if out.Error <= replicateError || n >= mostReplicates {
+			next := float64(2*n*halves) * float64(s.rows.n) * float64(len(draws))
+			if out.Error <= replicateError || n >= mostReplicates || next > budget {
 				break
 			}
 		}
