@@ -19,6 +19,7 @@ type claims struct {
 	heldValid  bool     // the held number is an effect
 	crudeValid bool     // so is the crude one
 	why        string   // what stands in the way where it is not identified
+	fullWhy    string   // why the full model says nothing of all rows though the held law does; "" = it does
 	notes      []string
 }
 

@@ -73,6 +73,7 @@ const stopped = "the run was stopped before it was computed"
 func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, watch func(infer.Progress)) (*Effect, error) {
 	q := req.question()
 	claim := claimed(g, &q, limitsOf(req.Study, req.Rival, g))
+	claim.leaveOut(g, &q, req.Study, full.Model)
 	e := &Effect{
 		Identified: claim.identified, None: claim.none,
 		Held: claim.held, HeldProposed: claim.proposed, HeldValid: claim.heldValid, Notes: claim.notes,
@@ -141,6 +142,9 @@ func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, cla
 		c, err = effect.NoChange(ctx, full.Model, q, full.Pooled(), source(req, "full"), options(req))
 	case !e.Identified:
 		e.Refusal = "not identified: " + claim.why
+		return nil
+	case claim.fullWhy != "":
+		e.Refusal = "not that of all rows: " + claim.fullWhy
 		return nil
 	case kind == causal.NotSimulated:
 		e.Refusal = "identified; not computed by this version: " + reason
