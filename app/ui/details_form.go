@@ -104,7 +104,9 @@ func (x *details) formFault(s *sheaf, a *study.Arrow) {
 		s.text(p.Message, problemToken(p))
 		buttons := row(8)
 		for _, r := range p.Repairs {
-			buttons.Add(d.plain(r.Label, func() { d.do(r.Edit) }))
+			mend := d.plain(r.Label, func() { d.do(r.Edit) })
+			s.keys["mend "+r.Label] = mend
+			buttons.Add(mend)
 		}
 		s.add(buttons)
 		return
