@@ -1,11 +1,13 @@
 package ui
 
 import (
+	"errors"
 	"path/filepath"
 	"strings"
 
 	"fyne.io/fyne/v2"
 
+	"arrowroot/compile/model"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
 )
@@ -15,7 +17,7 @@ import (
 func (d *desk) loadData(path string) {
 	d.session.LoadData(path, func(t *table.Table, err error) {
 		if err != nil {
-			d.complain(filepath.Base(path) + ": " + strings.TrimPrefix(err.Error(), path+": "))
+			d.complain(unread(path, err))
 			return
 		}
 		d.settle()
@@ -147,6 +149,9 @@ func (d *desk) bindDialog() {
 				fixed(130, 0, newLabel(v.ID, sizeBody, tokenInk, fyne.TextStyle{Bold: true, Italic: v.Unmeasured}).shrinkTo(30)),
 				fixed(180, 0, d.choice(options, chosen, func(w string) { kept.read(); d.bind(v.ID, w); fill() })),
 				stretch(small(said).shrinkTo(20)))
+			if r := d.likelyColumn(v.ID); r != nil && v.Column == "" && !v.Unmeasured {
+				line.Add(d.chip(r.Label, false, func() { kept.read(); d.do(r.Edit); fill() }))
+			}
 			lines = append(lines, line)
 		}
 		list.fill(nil, lines...)
@@ -172,4 +177,29 @@ func (d *desk) bindDialog() {
 	fill()
 	area := d.win.Canvas().Size()
 	p = d.kit.pop(d.win.Canvas(), body, fyne.NewPos((area.Width-width)/2, 70), width)
+}
+
+// likelyColumn is the repair that binds a variable to the column it probably
+// means; nil if there is none.
+func (d *desk) likelyColumn(id string) *model.Repair {
+	for _, p := range d.view.Problems {
+		if p.Variable != id || p.Code != "unbound" {
+			continue
+		}
+		for i, r := range p.Repairs {
+			if strings.HasPrefix(r.Label, "Bind") {
+				return &p.Repairs[i]
+			}
+		}
+	}
+	return nil
+}
+
+// unread says why a file of data was not read, with its name once.
+func unread(path string, err error) string {
+	var fault *table.Error
+	if errors.As(err, &fault) {
+		return strings.TrimSuffix(err.Error(), ".") + "."
+	}
+	return filepath.Base(path) + ": " + strings.TrimPrefix(err.Error(), path+": ")
 }

@@ -3,6 +3,7 @@ package ui
 import (
 	"bytes"
 	"encoding/csv"
+	"errors"
 	"os"
 	"path/filepath"
 	"strings"
@@ -77,13 +78,23 @@ func (d *desk) showExample() error {
 // open puts the study at a path in place.
 func (d *desk) open(path string) {
 	if err := d.session.Open(path); err != nil {
-		d.complain(strings.TrimSuffix(err.Error(), ".") + ". The file was not opened and not changed.")
+		d.complain(unopened(err))
 		return
 	}
 	d.forget()
 	d.fitNext = false
 	d.refresh()
 	d.post(d.editor.ZoomFit)
+}
+
+// unopened says why a study was not opened, and that it is as it was: a fault
+// in the file says so itself.
+func unopened(err error) string {
+	var fault *study.FileError
+	if errors.As(err, &fault) {
+		return err.Error()
+	}
+	return strings.TrimSuffix(err.Error(), ".") + ". The file was not opened and not changed."
 }
 
 // forget drops what the window remembers of the study before.

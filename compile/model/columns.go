@@ -6,6 +6,8 @@ import (
 	"slices"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 
 	"arrowroot/compile/formula"
 	"arrowroot/compile/study"
@@ -118,12 +120,24 @@ func (b *builder) namedTwice(v *study.Variable) {
 		Repairs: []Repair{{Label: "Bind it to " + second, Edit: bindTo(v, second)}}})
 }
 
-// likely is the column that a variable without one probably means.
+// likely is the column that a variable without one probably means: one of its
+// name or label, the only one that begins with its name and goes on with a unit
+// or the like ("rain_mm"), or a near miss.
 func likely(v *study.Variable, names []string) string {
 	for _, n := range names {
 		if strings.EqualFold(n, v.ID) || strings.EqualFold(n, v.Label) {
 			return n
 		}
+	}
+	var longer []string
+	for _, n := range names {
+		rest, ok := strings.CutPrefix(strings.ToLower(n), strings.ToLower(v.ID))
+		if r, _ := utf8.DecodeRuneInString(rest); ok && !unicode.IsLetter(r) && !unicode.IsDigit(r) {
+			longer = append(longer, n)
+		}
+	}
+	if len(longer) == 1 {
+		return longer[0]
 	}
 	return nearest(v.ID, names)
 }
