@@ -199,7 +199,7 @@ func (b *builder) formFault(d *draft, a *study.Arrow) (reason string, repairs []
 			return fmt.Sprintf("the law of %s compares within groups by group means, which this version knows for slopes and steps, not for the form “%s”.", a.To, a.Form), slope
 		}
 		if reason := b.notAbove0(a.Form, parent); reason != "" {
-			return reason, slope
+			return reason, append(slope, b.asPositive(parent)...)
 		}
 		return "", nil
 	}
@@ -262,6 +262,19 @@ func (b *builder) notAbove0(form string, v *Variable) string {
 		}
 	}
 	return ""
+}
+
+// asPositive offers to take a real variable as positive, where nothing that is
+// known of it speaks against that.
+func (b *builder) asPositive(v *Variable) []Repair {
+	low, _ := extent(v.Values)
+	own := b.draftOf(v.ID)
+	if v.Scale != study.Real || low <= 0 || v.Low < 0 || own != nil && own.user.Family != "" {
+		return nil
+	}
+	to := *b.variable(v.ID)
+	to.Scale = study.Positive
+	return []Repair{{Label: "Take " + v.ID + " as positive", Edit: changeVariable(to)}}
 }
 
 // formNeeds says why the forms of a variable's arrows cannot take a number; ""

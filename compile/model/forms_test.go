@@ -264,7 +264,11 @@ func TestLogOfWhatCanBeZero(t *testing.T) {
 	if got, want := says(s, tab), "x → y: the log of x exists only where x is positive, but its law, normal, can give 0 or less."; got != want {
 		t.Errorf("%q, want %q", got, want)
 	}
-	s.Variable("x").Scale = study.Positive
+	_, problems := Build(s, "R", study.Question{}, tab, Full)
+	s, err := problems[slices.IndexFunc(problems, func(p Problem) bool { return p.Code == "form" })].Repairs[1].Edit.Apply(s)
+	if err != nil || s.Variable("x").Scale != study.Positive {
+		t.Fatalf("not taken as positive: %v", err)
+	}
 	if got := says(s, tab); got != "" {
 		t.Errorf("refused: %s", got)
 	}
