@@ -135,7 +135,7 @@ func commandsOf(d *desk) commandTable {
 		{id: "new-rival", menu: "Rivals", label: "New empty rival", run: d.newRival},
 		{id: "next-rival", menu: "Rivals", label: "Next rival", keys: "Ctrl+PageDown", on: func() bool { return len(d.view.Study.Rivals) > 1 }, run: d.nextRival},
 		{id: "page-rivals", menu: "Rivals", label: "Rivals side by side", keys: "Alt+6", run: page("Rivals"), parted: true},
-		{id: "compare", menu: "Rivals", label: "Compare by prediction", on: func() bool { return d.canCompare() && !d.view.Prediction.Running }, run: func() { d.drawer.show("Rivals"); d.session.Compare() }},
+		{id: "compare", menu: "Rivals", label: "Which rival predicts better?", on: func() bool { return d.canCompare() && !d.view.Prediction.Running }, run: func() { d.drawer.show("Rivals"); d.session.Compare() }},
 
 		{id: "svg", menu: "Share", label: "Save the sheet as SVG …", run: d.svgDialog},
 		{id: "arrow-table", menu: "Share", label: "Save the arrow table …", run: d.arrowsDialog},

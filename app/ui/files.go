@@ -158,7 +158,11 @@ func (d *desk) reportDialog() {
 
 func (d *desk) reportInput() report.Input {
 	v := d.view
-	return report.Input{Study: v.Study, Rival: v.Rival.Name, Question: v.Question, Graph: v.Graph, Reading: v.Reading, Findings: v.Findings, Evidence: v.Evidence, Result: v.Result, Checks: v.Checks}
+	in := report.Input{Study: v.Study, Rival: v.Rival.Name, Question: v.Question, Graph: v.Graph, Reading: v.Reading, Findings: v.Findings, Evidence: v.Evidence, Result: v.Result, Checks: v.Checks}
+	if !v.Prediction.Stale {
+		in.Rivals = v.Prediction.Comparison
+	}
+	return in
 }
 
 // saveSVG writes the sheet as a picture for a paper.
