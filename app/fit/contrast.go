@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"math"
+	"strings"
 
 	"arrowroot/compile/causal"
 	"arrowroot/compile/effect"
@@ -142,6 +143,9 @@ func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, cla
 		c, err = effect.NoChange(ctx, full.Model, q, full.Pooled(), source(req, "full"), options(req))
 	case !e.Identified:
 		e.Refusal = "not identified: " + claim.why
+		if strings.HasPrefix(claim.why, "The direct effect") { // which says so itself
+			e.Refusal = claim.why
+		}
 		return nil
 	case claim.fullWhy != "":
 		e.Refusal = "not that of all rows: " + claim.fullWhy

@@ -5,8 +5,6 @@ import (
 	"fmt"
 	"math"
 	"strings"
-	"unicode"
-	"unicode/utf8"
 
 	"arrowroot/app/fit"
 	"arrowroot/compile/model"
@@ -84,21 +82,16 @@ func Rows(r model.Rows) string {
 // trust is the verdict with what it stands on.
 func trust(t summary.Trust, s summary.Summary, sampling summary.Sampling) string {
 	if len(t.Reasons) > 0 {
-		return title(t.Verdict.String()) + ": " + strings.Join(t.Reasons, "; ")
+		return Upper(t.Verdict.String()) + ": " + strings.Join(t.Reasons, "; ")
 	}
 	if s.Constant {
-		return title(t.Verdict.String()) + ": the same in every draw"
+		return Upper(t.Verdict.String()) + ": the same in every draw"
 	}
 	divergences := "no divergences"
 	if sampling.Divergent > 0 {
 		divergences = Plural(sampling.Divergent, "divergence")
 	}
-	return fmt.Sprintf("%s: R-hat %.2f, ESS %s, %s", title(t.Verdict.String()), s.RHat, Whole(math.Min(s.BulkESS, s.TailESS)), divergences)
-}
-
-func title(s string) string {
-	first, size := utf8.DecodeRuneInString(s)
-	return string(unicode.ToUpper(first)) + s[size:]
+	return fmt.Sprintf("%s: R-hat %.2f, ESS %s, %s", Upper(t.Verdict.String()), s.RHat, Whole(math.Min(s.BulkESS, s.TailESS)), divergences)
 }
 
 // Effect says what a result answers to its question, a sentence a line: the
@@ -144,7 +137,7 @@ func Effect(s *study.Study, r *fit.Result) []string {
 	}
 	if !e.Cut {
 		for _, note := range e.Notes {
-			lines = append(lines, sentence(note))
+			lines = append(lines, sentenceOf(s, note))
 		}
 	}
 	if head != nil && !e.None {
@@ -164,11 +157,20 @@ func unusableReasons(e *fit.Effect) []string {
 	return nil
 }
 
+// sentenceOf is sentence, but for a name of the user's that it begins with:
+// that stays as it is.
+func sentenceOf(s *study.Study, text string) string {
+	if first, rest, _ := strings.Cut(text, " "); s.Variable(first) != nil {
+		return first + " " + strings.TrimSuffix(rest, ".") + "."
+	}
+	return sentence(text)
+}
+
 func sentence(s string) string {
 	if s == "" {
 		return s
 	}
-	s = title(s)
+	s = Upper(s)
 	if !strings.HasSuffix(s, ".") {
 		s += "."
 	}
@@ -217,7 +219,7 @@ func headline(s *study.Study, q *study.Question, n *fit.Number) string {
 	if len(q.OutcomeLevels) > 0 {
 		what = "the probability that " + name + " is " + strings.Join(q.OutcomeLevels, " or ")
 	}
-	doing := title(act(s, q))
+	doing := Upper(act(s, q))
 	interval := fmt.Sprintf("(%s %s to %s)", Percent(n.Level), Number(n.Low), Number(n.High))
 	over := ""
 	if n.Words != "" {

@@ -76,3 +76,16 @@ func TestAnswersWithoutANumber(t *testing.T) {
 		}
 	}
 }
+
+// A name of the user's that a note begins with keeps its small letter.
+func TestNotesKeepNames(t *testing.T) {
+	s := &study.Study{Variables: []*study.Variable{{ID: "dose"}}}
+	for in, want := range map[string]string{
+		"dose 90 lies far beyond what was seen": "dose 90 lies far beyond what was seen.",
+		"doses were rounded.":                   "Doses were rounded.",
+	} {
+		if got := sentenceOf(s, in); got != want {
+			t.Errorf("%q, want %q", got, want)
+		}
+	}
+}

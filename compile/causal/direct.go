@@ -3,6 +3,7 @@ package causal
 import (
 	"fmt"
 	"slices"
+	"strings"
 
 	"arrowroot/compile/graph"
 )
@@ -54,7 +55,8 @@ func ReadDirect(g *graph.Graph, exposure, outcome int, fixed []int) *Direct {
 	case d.Identification.Identified:
 		d.Sentence = fmt.Sprintf("No one set of variables gives the direct effect of %s, but it is identified: it is %s.", effect, d.Identification.Words())
 	default:
-		d.Sentence = fmt.Sprintf("The direct effect of %s is not identified. %s", effect, d.Identification.Sentence)
+		_, why, _ := strings.Cut(d.Identification.Sentence, "is not identified: ")
+		d.Sentence = fmt.Sprintf("The direct effect of %s is not identified: %s", effect, why)
 	}
 	return d
 }
