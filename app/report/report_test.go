@@ -43,6 +43,7 @@ func TestReportSaysEverything(t *testing.T) {
 		"negative binomial", "given, not modelled", "237 of 252 rows (15 lack bees)",
 		"holding pesticide and soil (proposed)", "90 %", "Trust:</b> " + r.Trust().Verdict.String(),
 		"hedge ← attitude → pesticide → bees", "qualified statistical and domain review",
+		"Whether the model can reproduce the data was not checked.",
 	} {
 		if !strings.Contains(text, want) {
 			t.Errorf("the report does not say %q", want)

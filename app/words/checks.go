@@ -42,8 +42,12 @@ func Checks(c *replicate.Checks) []string {
 	switch {
 	case c.Made == 0:
 		out = append(out, NoCheck)
+	case len(out) == 0 && c.Made == 1:
+		out = append(out, fmt.Sprintf("The model reproduces the data in the one check that suits them, against %d replicates.", c.Replicates))
 	case len(out) == 0:
 		out = append(out, fmt.Sprintf("The model reproduces the data in every one of %s of %s, each against %d replicates.", Plural(c.Made, "check"), Plural(held, "variable"), c.Replicates))
+	case held == 1:
+		out = append(out, "It reproduces the other variable.")
 	case held > 0:
 		out = append(out, fmt.Sprintf("It reproduces the other %s.", Plural(held, "variable")))
 	}

@@ -179,7 +179,7 @@ func HeapPlot(width, height float64, d Heap, s Style) *List {
 	n := max(10, int((x.end-x.start)/9))
 	counts := make([]int, n)
 	for _, v := range d.Values {
-		counts[min(n-1, int((v-x.from)/(x.to-x.from)*float64(n)))]++
+		counts[min(n-1, max(0, int((v-x.from)/(x.to-x.from)*float64(n))))]++
 	}
 	y := axis{0, float64(slices.Max(counts)), base, top}
 	step := (x.end - x.start) / float64(n)
