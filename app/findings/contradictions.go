@@ -50,7 +50,7 @@ func (r *reader) basis(f *Findings) {
 		c.Summary = "The arrows promise no independence between measured variables, so no independence can contradict them."
 	}
 	if hidden > 0 {
-		c.Summary += fmt.Sprintf(" %s more in all rows, but not among rows chosen by %s.", upper(holds(hidden)), f.rowsBy())
+		c.Summary += fmt.Sprintf(" %s more in all rows, but not among rows chosen by %s.", words.Upper(holds(hidden)), f.rowsBy())
 	}
 }
 

@@ -50,7 +50,7 @@ func (r *reader) controls(f *Findings) {
 	if len(c.Beside) > 0 {
 		beside = "Beside " + words.List(f.names(c.Beside)) + ": "
 	}
-	c.Summary = upper(fmt.Sprintf("%sof %s, %s to be held, %s not needed and %s to be left free.", beside, words.Plural(len(c.List), "measured variable"), beMany(good), beMany(idle), beMany(bad)))
+	c.Summary = words.Upper(fmt.Sprintf("%sof %s, %s to be held, %s not needed and %s to be left free.", beside, words.Plural(len(c.List), "measured variable"), beMany(good), beMany(idle), beMany(bad)))
 	if len(c.List) == 0 {
 		c.Summary = "No measured variable besides exposure and outcome could be held."
 	}

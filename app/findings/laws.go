@@ -45,7 +45,7 @@ func (r *reader) laws(f *Findings) {
 	case carried == 0:
 		l.Summary = "Every law is fitted on the drawn parents alone."
 	default:
-		l.Summary = fmt.Sprintf("%s more than the drawn parents, for the sake of what is left out.", upper(lawsCarry(carried, len(l.List))))
+		l.Summary = fmt.Sprintf("%s more than the drawn parents, for the sake of what is left out.", words.Upper(lawsCarry(carried, len(l.List))))
 	}
 	if kept > 0 {
 		l.Summary += fmt.Sprintf(" Of rows chosen by %s, %s that of all rows.", f.rowsBy(), lawsNot(kept))

@@ -123,7 +123,7 @@ func (f *Findings) pathSummary(p *Paths) string {
 	if !p.AtMost {
 		among = fmt.Sprintf("of the first %s, ", words.Whole(float64(len(p.List))))
 	}
-	return fmt.Sprintf("%s %s from %s: %s%s the effect, and %s open besides.", upper(of), lead, ends, among, carry(causes), beMany(open))
+	return fmt.Sprintf("%s %s from %s: %s%s the effect, and %s open besides.", words.Upper(of), lead, ends, among, carry(causes), beMany(open))
 }
 
 func carry(n int) string {

@@ -22,7 +22,7 @@ func (r *reader) rows(f *Findings) {
 	case 1:
 		s.Summary = s.Findings[0].Sentence
 	default:
-		s.Summary = fmt.Sprintf("%s on how the rows came about.", upper(words.Plural(len(s.Findings), "finding")))
+		s.Summary = fmt.Sprintf("%s on how the rows came about.", words.Upper(words.Plural(len(s.Findings), "finding")))
 	}
 }
 

@@ -7,12 +7,6 @@ import (
 	"unicode/utf8"
 )
 
-// upper begins a sentence.
-func upper(s string) string {
-	first, size := utf8.DecodeRuneInString(s)
-	return string(unicode.ToUpper(first)) + s[size:]
-}
-
 // lower goes on with a sentence.
 func lower(s string) string {
 	first, size := utf8.DecodeRuneInString(s)

@@ -79,7 +79,7 @@ func (f *Findings) judgeSeveral(valid bool) {
 	case a.Sets == nil:
 		f.Verdict = causal.Verdict{Kind: causal.NoSet, Sentence: a.Summary}
 	case valid:
-		f.Verdict = causal.Verdict{Kind: causal.Readable, Sentence: fmt.Sprintf("%s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", upper(f.effectAsked()), words.List(f.names(union(f.Held, f.Given))))}
+		f.Verdict = causal.Verdict{Kind: causal.Readable, Sentence: fmt.Sprintf("%s can be read from these data, holding %s, if the arrows drawn and not drawn are right.", words.Upper(f.effectAsked()), words.List(f.names(union(f.Held, f.Given))))}
 	case len(wrong) > 0:
 		f.Verdict = causal.Verdict{
 			Kind: causal.OverHeld, HasProposal: true, Propose: set,
@@ -87,7 +87,7 @@ func (f *Findings) judgeSeveral(valid bool) {
 			Way:      fmt.Sprintf("Leave %s free, and hold %s.", words.List(f.names(wrong)), words.List(f.names(set))),
 		}
 	default:
-		f.Verdict = causal.Verdict{Kind: causal.Confounded, HasProposal: true, Propose: set, Sentence: fmt.Sprintf("%s is confounded. Hold %s.", upper(f.effectAsked()), words.List(f.names(set)))}
+		f.Verdict = causal.Verdict{Kind: causal.Confounded, HasProposal: true, Propose: set, Sentence: fmt.Sprintf("%s is confounded. Hold %s.", words.Upper(f.effectAsked()), words.List(f.names(set)))}
 	}
 }
 

@@ -237,7 +237,7 @@ func (p *checksPage) said(keys map[string]fyne.Focusable) []fyne.CanvasObject {
 		keys["check"] = b
 		text, token := words.NoCheck, tokenMuted
 		if v.ChecksError != nil {
-			text, token = sentenceCase(v.ChecksError.Error()), tokenFault
+			text, token = words.Upper(v.ChecksError.Error()), tokenFault
 		}
 		return []fyne.CanvasObject{bold("Can the model reproduce the data?"), para(text, token), row(0, b)}
 	}
@@ -269,13 +269,13 @@ func (p *checksPage) chosen(keys map[string]fyne.Focusable) []fyne.CanvasObject 
 		return nil
 	}
 	if v.Refusal != "" {
-		return []fyne.CanvasObject{bold(v.ID), para(sentenceCase(v.Refusal)+".", tokenMuted)}
+		return []fyne.CanvasObject{bold(v.ID), para(words.Upper(v.Refusal)+".", tokenMuted)}
 	}
 	pic, title, under := &v.Figure, v.ID, ""
 	if p.at.check > 0 && p.at.check <= len(v.Checks) {
 		k := v.Checks[p.at.check-1]
 		pic, title = &k.Picture, v.ID+": "+words.CheckName(k)
-		under = sentenceCase(words.CheckNumbers(k)) + ". " + sentenceCase(k.Words) + "."
+		under = words.Upper(words.CheckNumbers(k)) + ". " + words.Upper(k.Words) + "."
 	}
 	legend := "Ink: the data. Soft: where 95 % of the replicates lie."
 	if pic.Kind == replicate.Tally {

@@ -1,6 +1,7 @@
 package ui
 
 import (
+	"arrowroot/app/words"
 	"testing"
 	"time"
 
@@ -14,7 +15,7 @@ func TestReadingSubjectsFit(t *testing.T) {
 	alarm := fyne.MeasureText("88 fail", sizeSmall, fyne.TextStyle{}).Width
 	for _, s := range subjects(b.desk) {
 		const pads = 2*8 + 6 + 2*6 // of the row, between its words, of the list
-		name := sentenceCase(s.name)
+		name := words.Upper(s.name)
 		if w := fyne.MeasureText(name, sizeBody, fyne.TextStyle{}).Width + alarm + pads; w > navWidth {
 			t.Errorf("%q needs %.0f of %d", name, w, int(navWidth))
 		}

@@ -148,7 +148,7 @@ func (p *rivalsPage) verdict(r *study.Rival) []fyne.CanvasObject {
 		if text == "" {
 			text = "laws disagree: no number is headlined"
 		}
-		return append(objects, para(sentenceCase(text)+stale, tokenConfound))
+		return append(objects, para(words.Upper(text)+stale, tokenConfound))
 	}
 	trust := n.Trust.Verdict.String()
 	return append(objects, newProse(sizeBody,

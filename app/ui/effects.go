@@ -55,7 +55,7 @@ func (p *effectPage) update() {
 		} else if v.Running {
 			text = "The fit is going on."
 		} else if r != nil && r.Unanswered != nil {
-			text = sentenceCase(r.Unanswered.Error())
+			text = words.Upper(r.Unanswered.Error())
 		}
 		objects := []fyne.CanvasObject{bold("No answer yet"), para(text, tokenMuted)}
 		if !v.Running {
@@ -79,13 +79,13 @@ func (p *effectPage) update() {
 	if e.HeldProposed {
 		held += " (proposed)"
 	}
-	refusal := sentenceCase(e.Refusal)
+	refusal := words.Upper(e.Refusal)
 	if !e.Identified { // the headline has the reason
 		refusal = "None: the effect is not identified."
 	}
 	cards := []card{
-		{"Crude", "nothing held", e.Crude, sentenceCase(e.CrudeRefusal)},
-		{"Held", held, e.Adjusted, sentenceCase(e.AdjustedRefusal)},
+		{"Crude", "nothing held", e.Crude, words.Upper(e.CrudeRefusal)},
+		{"Held", held, e.Adjusted, words.Upper(e.AdjustedRefusal)},
 		{"Full model", "every law of the rival", e.Full, refusal},
 	}
 	cards = slices.DeleteFunc(cards, func(c card) bool { return c.number == nil && c.refusal == "" })
@@ -140,7 +140,7 @@ func (p *effectPage) card(c card, zero, from, to float64) fyne.CanvasObject {
 		span{text: words.Number(n.Centre), bold: true},
 		span{text: fmt.Sprintf("  %s: %s to %s", words.Percent(n.Level), words.Number(n.Low), words.Number(n.High))}))
 	trust := n.Trust.Verdict.String()
-	spans := []span{{text: sentenceCase(trust), bold: true, token: verdictToken(trust)}, {text: " · " + n.Words, token: tokenMuted}}
+	spans := []span{{text: words.Upper(trust), bold: true, token: verdictToken(trust)}, {text: " · " + n.Words, token: tokenMuted}}
 	if n.Association {
 		spans = append([]span{{text: "association, not an effect", bold: true, token: tokenConfound}, {text: " · "}}, spans...)
 	}
@@ -174,22 +174,6 @@ func (p *effectPage) headline() fyne.CanvasObject {
 	word, tone := p.d.trustWords()
 	spans = append(spans, span{text: "  " + word + ".", bold: true, token: tone}, span{text: "  If the arrows drawn and not drawn are right.", token: tokenMuted})
 	return newProse(sizeBody, spans...)
-}
-
-func sentenceCase(s string) string {
-	for i, r := range s {
-		if i == 0 {
-			return string(upperRune(r)) + s[len(string(r)):]
-		}
-	}
-	return s
-}
-
-func upperRune(r rune) rune {
-	if 'a' <= r && r <= 'z' {
-		return r - 'a' + 'A'
-	}
-	return r
 }
 
 // evenLayout gives its objects equal widths side by side, or stacks them where

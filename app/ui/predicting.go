@@ -53,7 +53,7 @@ func comparingWords(x session.Prediction) string {
 	if x.Progress.Doing == "" {
 		return "Looking at the rivals"
 	}
-	return fmt.Sprintf("%s, rival %d of %d, %d %%", sentenceCase(x.Progress.Doing), x.Progress.Done+1, x.Progress.Of, int(100*comparingShare(x)))
+	return fmt.Sprintf("%s, rival %d of %d, %d %%", words.Upper(x.Progress.Doing), x.Progress.Done+1, x.Progress.Of, int(100*comparingShare(x)))
 }
 
 // prediction sets the rivals against each other by how well they predict the
@@ -65,7 +65,7 @@ func (p *rivalsPage) prediction(keys map[string]fyne.Focusable) []fyne.CanvasObj
 	if x.Comparison != nil {
 		says = "Compare again"
 	}
-	button := d.plain(says, d.session.Compare)
+	button := d.plain(says, func() { d.session.Compare() })
 	button.tip = "Fit every rival and score how well it predicts what it has not seen"
 	if x.Running {
 		button = d.plain("Stop comparing", d.session.StopCompare)
@@ -90,14 +90,32 @@ func (p *rivalsPage) prediction(keys map[string]fyne.Focusable) []fyne.CanvasObj
 		for _, reason := range no.Reasons {
 			objects = append(objects, para(reason, tokenInk))
 		}
+		if len(d.view.Study.Rivals) > 2 && !x.Running {
+			objects = append(objects, p.oneByOne(keys))
+		}
 	case x.Error != nil:
-		objects = append(objects, para(sentenceCase(x.Error.Error()), tokenFault))
+		objects = append(objects, para(words.Upper(x.Error.Error()), tokenFault))
 	case x.Comparison != nil:
 		objects = append(objects, p.scores(x.Comparison)...)
 	case !x.Running:
 		objects = append(objects, para(words.NotCause, tokenMuted))
 	}
 	return objects
+}
+
+// oneByOne offers to compare the rival on the sheet with one other, where all
+// of them cannot be.
+func (p *rivalsPage) oneByOne(keys map[string]fyne.Focusable) fyne.CanvasObject {
+	d, here := p.d, p.d.view.Rival.Name
+	line := row(8, muted(here+" alone with"))
+	for _, r := range d.view.Study.Rivals {
+		if r.Name != here {
+			b := d.quiet(r.Name, func() { d.session.Compare(here, r.Name) })
+			keys["compare with "+r.Name] = b
+			line.Add(b)
+		}
+	}
+	return line
 }
 
 // Widths of the columns of scores: score, its error, effective parameters, the
@@ -153,7 +171,7 @@ func (p *rivalsPage) scores(c *fit.Comparison) []fyne.CanvasObject {
 func notesOn(c *fit.Comparison, s *fit.Scored) []string {
 	var notes []string
 	if s.Withheld != "" {
-		notes = append(notes, sentenceCase(s.Withheld)+".")
+		notes = append(notes, words.Upper(s.Withheld)+".")
 	}
 	if t := s.Trust.Verdict.String(); t != "sound" {
 		text := "Trust in the fit: " + t

@@ -1,6 +1,7 @@
 package ui
 
 import (
+	"arrowroot/app/words"
 	"fmt"
 	"strconv"
 
@@ -94,7 +95,7 @@ func (p *readingPage) fill() {
 
 // head is what stands above the rows: the subject, and what it comes to.
 func (p *readingPage) head(s *subject) []rollRow {
-	title := row(10, bold(sentenceCase(s.name)), space())
+	title := row(10, bold(words.Upper(s.name)), space())
 	if s.name == firstSubject && len(p.lines)+s.hidden > 0 {
 		title.Add(p.d.toggle("open only", p.open, func(on bool) { p.open = on; p.update() }))
 		if id := p.d.picked(); id != "" {
@@ -144,7 +145,7 @@ func (p *readingPage) subject(s *subject) *press {
 	case s.count == 0:
 		count, token = "–", tokenMuted
 	}
-	name := newLabel(sentenceCase(s.name), sizeBody, token, fyne.TextStyle{}).shrinkTo(30)
+	name := newLabel(words.Upper(s.name), sizeBody, token, fyne.TextStyle{}).shrinkTo(30)
 	number := newLabel(count, sizeSmall, tokenMuted, fyne.TextStyle{})
 	if s.alarm != "" {
 		number.set(s.alarm, tokenConfound)

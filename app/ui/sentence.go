@@ -5,6 +5,7 @@ import (
 	"path/filepath"
 	"strings"
 
+	"arrowroot/app/words"
 	"arrowroot/canvas/scene"
 	"arrowroot/compile/study"
 )
@@ -18,7 +19,7 @@ func (d *desk) sentenceOf(typed string) sentence {
 	if isArrows(text) {
 		lines := strings.ReplaceAll(text, ";", "\n")
 		if _, err := study.ParseArrows(lines); err != nil {
-			return sentence{wrong: sentenceCase(err.Error())}
+			return sentence{wrong: words.Upper(err.Error())}
 		}
 		return sentence{does: "Draw " + strings.ReplaceAll(text, "->", "→"), run: func() {
 			first := len(d.view.Rival.Diagram.Nodes) == 0

@@ -7,6 +7,7 @@ import (
 	"fyne.io/fyne/v2"
 	"fyne.io/fyne/v2/container"
 
+	"arrowroot/app/findings"
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/study"
@@ -108,6 +109,10 @@ func (s *strip) update() {
 			s.amber = r.Verdict.Kind != causal.Readable
 			s.propose = func() { s.d.holdAll(ids) }
 			s.action.tip = "Hold " + orNone(ids)
+		} else if r.Verdict.Kind == causal.NoSet {
+			s.label.text, s.amber = "Other ways", true
+			s.propose = func() { s.d.drawer.read(findings.BeyondSection) }
+			s.action.tip = "Look for what gives the effect without holding enough"
 		}
 	}
 	s.icon.set(mark, tone)
@@ -286,7 +291,7 @@ func (d *desk) trustWords() (string, fyne.ThemeColorName) {
 	}
 	trust := v.Result.Trust().Verdict.String()
 	if v.Stale {
-		return sentenceCase(trust) + " · stale", tokenMuted
+		return words.Upper(trust) + " · stale", tokenMuted
 	}
-	return sentenceCase(trust), verdictToken(trust)
+	return words.Upper(trust), verdictToken(trust)
 }

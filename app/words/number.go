@@ -9,6 +9,8 @@ import (
 	"math"
 	"strconv"
 	"strings"
+	"unicode"
+	"unicode/utf8"
 )
 
 // Percent is a level for people: "90 %".
@@ -68,4 +70,13 @@ func Plural(n int, one string) string {
 		return "1 " + one
 	}
 	return Whole(float64(n)) + " " + one + "s"
+}
+
+// Upper begins a sentence.
+func Upper(s string) string {
+	if s == "" {
+		return ""
+	}
+	first, size := utf8.DecodeRuneInString(s)
+	return string(unicode.ToUpper(first)) + s[size:]
 }
