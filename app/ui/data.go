@@ -139,7 +139,7 @@ func (d *desk) bindDialog() {
 			if c := t.Column(v.Column); c != nil && v.Column != "" {
 				said = string(v.Scale)
 				if c.Missing > 0 {
-					said += ", " + percent(float64(c.Missing)/float64(t.Rows)) + " missing"
+					said = strings.TrimPrefix(said+", ", ", ") + percent(float64(c.Missing)/float64(t.Rows)) + " missing"
 				}
 			}
 			if v.Unmeasured {

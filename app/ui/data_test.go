@@ -42,7 +42,7 @@ func TestLikelyColumnIsOffered(t *testing.T) {
 		t.Errorf("offered: %s", r.Label)
 	}
 	b.do(b.likelyColumn("rain").Edit)
-	if got := b.view.Study.Variable("rain").Column; got != "rain_mm" {
-		t.Errorf("rain is bound to %q", got)
+	if v := b.view.Study.Variable("rain"); v.Column != "rain_mm" || v.Scale == "" {
+		t.Errorf("rain is bound to %q as %q", v.Column, v.Scale)
 	}
 }

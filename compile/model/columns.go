@@ -76,7 +76,7 @@ func (b *builder) read(c *column) {
 func (b *builder) source(v *study.Variable) *table.Column {
 	names := columnNames(b.table)
 	bind := func(column string) Repair {
-		return Repair{Label: "Bind it to " + column, Edit: bindTo(v, column)}
+		return Repair{Label: "Bind it to " + column, Edit: b.bindTo(v, column)}
 	}
 	if v.Column == "" {
 		p := Problem{Code: "unbound", Variable: v.ID, Place: "data",
@@ -117,7 +117,7 @@ func (b *builder) namedTwice(v *study.Variable) {
 	}
 	b.report(Problem{Code: "named-twice", Variable: v.ID, Place: "data",
 		Message: fmt.Sprintf("%s has more than one column named %s; %s reads the first, and the next is called “%s” here.", b.table.Name, v.Column, v.ID, second),
-		Repairs: []Repair{{Label: "Bind it to " + second, Edit: bindTo(v, second)}}})
+		Repairs: []Repair{{Label: "Bind it to " + second, Edit: b.bindTo(v, second)}}})
 }
 
 // likely is the column that a variable without one probably means: one of its

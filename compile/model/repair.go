@@ -13,8 +13,20 @@ func changeVariable(to study.Variable) study.Edit {
 	return study.ChangeVariable{ID: to.ID, To: to}
 }
 
-func bindTo(v *study.Variable, column string) study.Edit {
-	return study.Bind{Variable: v.ID, Data: v.Data, Column: column}
+// bindTo binds a variable to a column, with the scale and levels that the column
+// proposes where the user has said nothing yet.
+func (b *builder) bindTo(v *study.Variable, column string) study.Edit {
+	source := b.table.Column(column)
+	if v.Scale != "" || source == nil {
+		return study.Bind{Variable: v.ID, Data: v.Data, Column: column}
+	}
+	guess := table.Propose(source)
+	to := *v
+	to.Column, to.Scale = column, study.Scale(guess.Scale)
+	if len(to.Levels) == 0 {
+		to.Levels = guess.Levels
+	}
+	return changeVariable(to)
 }
 
 func addArrow(rival, from, to string) study.Edit {
