@@ -63,6 +63,12 @@ func (w *drawer) show(name string) {
 	}
 }
 
+// read opens the Reading page at a subject.
+func (w *drawer) read(subject string) {
+	w.show(w.pages[0].name())
+	w.pages[0].(*readingPage).turn(subject)
+}
+
 func (w *drawer) page() string { return w.pages[w.tabs.chosen].name() }
 
 func (w *drawer) update() {
