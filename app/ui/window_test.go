@@ -223,7 +223,7 @@ func TestFitAsksThenPaints(t *testing.T) {
 	if word, _ := b.trustWords(); word == "" {
 		t.Fatal("no verdict on the computation is shown")
 	}
-	for _, page := range []string{"Fit", "Statement", "Reading", "Rivals", "Effect"} {
+	for _, page := range []string{"Fit", "Statement", "Reading", "Rivals", "Checks", "Effect"} {
 		b.drawer.show(page)
 	}
 	for _, p := range paintNames() {
@@ -237,7 +237,7 @@ func TestFitAsksThenPaints(t *testing.T) {
 }
 
 func paintNames() []scene.PaintKind {
-	return []scene.PaintKind{scene.LearnedPaint, scene.TrustPaint, scene.EffectPaint, ""}
+	return []scene.PaintKind{scene.LearnedPaint, scene.FitPaint, scene.TrustPaint, scene.EffectPaint, ""}
 }
 
 func TestExampleOpens(t *testing.T) {
