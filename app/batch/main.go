@@ -1,15 +1,18 @@
 // Command batch does without a window what Arrowroot does in one: it reads a
-// study's arrows, checks its laws, fits it, computes its effect and writes a
-// report. Results go to standard output as JSON, messages to standard error.
+// study's arrows, holds them against the data, checks its laws, fits it,
+// computes its effect, compares its rivals and writes a report. Results go to
+// standard output as JSON, messages to standard error.
 //
 //	batch VERB [flags] STUDY.arrowroot
 //
 // Exit status: 0 done, 1 the study has problems, 2 wrong use.
+//
+// Read main.go (the command line), verbs.go (what all verbs share, and the short
+// ones), then a file for each longer verb; print.go and question.go hold what
+// several verbs print. FIELDS.md says what every field is.
 package main
 
 import (
-	"arrowroot/compile/model"
-
 	"context"
 	"encoding/json"
 	"errors"
@@ -19,6 +22,8 @@ import (
 	"os"
 	"os/signal"
 	"strconv"
+
+	"arrowroot/compile/model"
 )
 
 const usage = `use: batch VERB [flags] STUDY.arrowroot
