@@ -274,6 +274,26 @@ func TestLogOfWhatCanBeZero(t *testing.T) {
 	}
 }
 
+// Group means close paths for slopes and steps; a law that compares within
+// farms refuses what they are not known to close.
+func TestFormsWithinGroups(t *testing.T) {
+	s := hedgerows()
+	s.Rivals[0].Diagram.Arrow("temp", "bees").Form = study.Log
+	q := withinFarms()
+	q.Held = append(q.Held, "temp")
+	_, problems := Build(s, "R", q, traps(), Held)
+	want := "temp → bees: the law of bees compares within groups by group means, which this version knows for slopes and steps, not for the form “log”."
+	i := slices.IndexFunc(problems, func(p Problem) bool { return p.Message == want })
+	if i < 0 {
+		t.Fatalf("not refused: %v", problems)
+	}
+	next, err := problems[i].Repairs[0].Edit.Apply(s)
+	if err != nil {
+		t.Fatal(err)
+	}
+	build(t, next, q, traps(), Held)
+}
+
 // A question cannot set what a log reads to 0.
 func TestLogOfASetting(t *testing.T) {
 	s := one(study.Log, study.Variable{Scale: study.Positive, Column: "x", Range: &study.Range{Low: 0, High: 9}})
