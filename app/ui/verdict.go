@@ -8,7 +8,6 @@ import (
 	"fyne.io/fyne/v2/container"
 
 	"arrowroot/app/findings"
-	"arrowroot/app/findings"
 	"arrowroot/app/words"
 	"arrowroot/compile/causal"
 	"arrowroot/compile/study"
