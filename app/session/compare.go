@@ -39,16 +39,16 @@ func (c *contest) stop() {
 	}
 }
 
-// Compare scores all rivals by how well they predict the question's outcome,
-// behind the window. A comparison that is going on goes on. Fits that the
+// Compare scores rivals, all of them where none is named, by how well they
+// predict the question's outcome, behind the window. A comparison that is going on goes on. Fits that the
 // window has made are not made again where nothing has changed.
-func (s *Session) Compare() {
+func (s *Session) Compare(rivals ...string) {
 	if s.contest != nil && s.contest.running {
 		return
 	}
 	ctx, cancel := context.WithCancel(context.Background())
 	c := &contest{study: s.study, question: s.asked(), table: s.openTable(), cancel: cancel, running: true, last: s.contest.shown()}
-	req := fit.CompareRequest{Study: c.study, Question: c.question, Table: c.table, Seed: Seed, Have: maps.Clone(s.results)}
+	req := fit.CompareRequest{Study: c.study, Rivals: rivals, Question: c.question, Table: c.table, Seed: Seed, Have: maps.Clone(s.results)}
 	s.contest = c
 	mine := func() bool { return s.contest == c && c.running }
 	go func() {
