@@ -6,12 +6,15 @@
 // Read the files in this order: model.go (what comes out), build.go (the
 // phases), choose.go and choose_outcome.go (which laws), names.go and parse.go
 // (what parameters are called, what the user typed), scope.go (what names mean
-// there), gather.go, columns.go, plates.go and conditions.go (data), impute.go
-// (missing entries that stay), ranges.go and priors.go (SEMANTICS C), explain.go
-// (predictors), forms.go (what an arrow's form makes of its parent), band.go (its
-// picture), within.go (group means), examine.go and finite.go (data against
-// laws), question.go (what is asked), statement.go and typed.go (the model in
-// print). problem.go and repair.go hold what goes wrong and how it is mended.
+// there), gather.go, columns.go, plates.go and outermost.go, and conditions.go
+// (data), impute.go (missing entries that stay), ranges.go and priors.go
+// (SEMANTICS C), stated.go (priors of the user's), explain.go with predictor.go
+// and resolve.go (laws), over expr.go, forms.go (what an arrow's form makes of
+// its parent), band.go (its picture), within.go (group means), examine.go,
+// bounds.go, marks.go and finite.go (data against laws), question.go and ask.go
+// (what is asked), finish.go, statement.go and typed.go (the model in print),
+// fingerprint.go, without.go (entries left out). problem.go and repair.go hold
+// what goes wrong and how it is mended.
 package model
 
 import (
