@@ -11,8 +11,9 @@ const givenTrials = 200 // sets of given variables tried
 
 // FrontDoors lists the minimal front doors between x and y: first all that need
 // nothing given, by (size, names), then those found for which something must be
-// given, each with few such variables. It stops after max (0 = 100) and says
-// whether there may be more. Which variables to give is found by trial.
+// given, each with few such variables, through descendants of x alone. It stops
+// after max (0 = 100) and says whether there may be more. Which variables to
+// give is found by trial.
 func FrontDoors(g *graph.Graph, x, y, max int) (doors []FrontDoor, more bool) {
 	max = limit(max, 100)
 	can := available(g)
@@ -21,12 +22,14 @@ func FrontDoors(g *graph.Graph, x, y, max int) (doors []FrontDoor, more bool) {
 	}
 	s := &doorSearch{c: newComparison(g, []int{x}, []int{y}), budget: searchBudget}
 	below := g.Descendants(x)
-	var candidates, rest []int
+	var candidates, rest, carriers []int
 	for v := range can {
 		if can[v] && v != x && v != y {
 			candidates = append(candidates, v)
-			if !below[v] {
-				rest = append(rest, v)
+			if below[v] {
+				carriers = append(carriers, v)
+			} else {
+				rest = append(rest, v) // carries nothing of the effect: where something is given it is given too
 			}
 		}
 	}
@@ -52,7 +55,7 @@ func FrontDoors(g *graph.Graph, x, y, max int) (doors []FrontDoor, more bool) {
 		if s.budget.spent() || more {
 			break
 		}
-		found := s.minimal(minus(candidates, given), given)
+		found := s.minimal(carriers, given)
 		sortSets(g, found)
 		take(found, given)
 	}

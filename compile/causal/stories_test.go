@@ -88,6 +88,10 @@ func TestStories(t *testing.T) {
 		if door != c.frontDoor {
 			t.Errorf("%s: front door %q, want %q", c.name, door, c.frontDoor)
 		}
+		// What carries nothing of the effect is given, and no part of a front door.
+		if doors, more := FrontDoors(g, ask[0], ask[1], 0); more || (len(doors) == 1) != (c.frontDoor != "") || len(doors) > 1 {
+			t.Errorf("%s: front doors %v", c.name, doors)
+		}
 		var instruments []string
 		for _, z := range r.Instruments {
 			instruments = append(instruments, g.Names[z.Node])
