@@ -34,12 +34,20 @@ func TestCoverMakesRoom(t *testing.T) {
 	}
 
 	// All of it stays in view, smaller if need be.
-	b.SetCover(420)
-	r, _ := b.surface.mapNow().Bounds()
-	if r.Y < 420 || r.Y+r.H > b.in.Height {
-		t.Errorf("under a cover of 420 of %v the nodes lie in %v", b.in.Height, r)
+	b.SetView(scene.View{Zoom: 2, Pan: draw.Point{Y: 2 * (20 - top(b))}})
+	was = b.View()
+	high := float32(0.44 * b.in.Height)
+	b.SetCover(high)
+	if r, _ := b.surface.mapNow().Bounds(); r.Y < float64(high) && r.Y+r.H <= b.in.Height {
+		t.Errorf("under a cover of %v of %v the nodes lie in %v", high, b.in.Height, r)
+	}
+	b.SetView(was)
+	b.SetCover(float32(0.6 * b.in.Height))
+	if b.View() != was {
+		t.Error("a cover of most of the sheet crowds the nodes into what is left")
 	}
 	b.SetCover(0)
+	b.SetView(scene.View{Zoom: 1, Pan: draw.Point{Y: 20}})
 
 	// Whoever pans keeps the view.
 	b.SetCover(70)
