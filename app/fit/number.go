@@ -4,6 +4,7 @@ import (
 	"fmt"
 	"math/rand/v2"
 	"strconv"
+	"strings"
 
 	"arrowroot/compile/effect"
 	"arrowroot/compile/study"
@@ -53,7 +54,9 @@ func number(c *effect.Contrast, f *Fitted, req *Request, name string) (*Number, 
 }
 
 // digits writes a number with three digits that count.
-func digits(x float64) string { return strconv.FormatFloat(x, 'g', 3, 64) }
+func digits(x float64) string {
+	return strings.ReplaceAll(strconv.FormatFloat(x, 'g', 3, 64), "-", "−")
+}
 
 // regroup puts values of pooled draws back into chains of equal length.
 func regroup(values []float64, draws []int, f *Fitted) [][]float64 {

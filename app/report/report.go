@@ -12,6 +12,7 @@ import (
 	"html/template"
 	"io"
 	"math"
+	"slices"
 
 	"arrowroot/app/findings"
 	"arrowroot/app/fit"
@@ -57,6 +58,7 @@ type content struct {
 	Answer                 []string
 	HowWrong               []string
 	Strength               template.HTML
+	StrengthSays           string
 	Plots                  template.HTML
 	Checks                 []string
 	CheckPlots             template.HTML
@@ -145,9 +147,11 @@ func contentOf(in Input) (*content, error) {
 		c.Answer = words.Effect(in.Study, r)
 		c.HowWrong = words.HowWrong(r.Effect)
 		if e := r.Effect; e != nil && e.Sensitivity != nil && e.Sensitivity.Robustness != nil {
-			if c.Strength, err = svg(draw.StrengthPlot(420, 260, paint.Strength(e.Sensitivity), plotStyle(scene.Light()))); err != nil {
+			strength := paint.Strength(e.Sensitivity)
+			if c.Strength, err = svg(draw.StrengthPlot(420, 260, strength, plotStyle(scene.Light()))); err != nil {
 				return nil, err
 			}
+			c.StrengthSays = strengthSays(strength)
 		}
 		c.Trust = r.Trust().String()
 		c.Rows = words.Rows(r.Full.Model.Rows)
@@ -313,4 +317,17 @@ func svg(l *draw.List) (template.HTML, error) {
 		return "", err
 	}
 	return template.HTML(b.String()), nil
+}
+
+// strengthSays is the caption of the plot of strengths. A cause as strong as a
+// held variable that explains too much of the exposure cannot be, and is not
+// drawn.
+func strengthSays(s draw.Strength) string {
+	if slices.ContainsFunc(s.Trails, func(t draw.Trail) bool { return len(t.Points) > 0 }) {
+		return "Discs: each held variable, and a cause two and three times as strong"
+	}
+	if len(s.Trails) == 0 {
+		return "Nothing is held to measure such a cause by"
+	}
+	return "No held variable is drawn: an unmeasured cause cannot be as strong as these"
 }

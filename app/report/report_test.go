@@ -9,6 +9,7 @@ import (
 
 	"arrowroot/app/findings"
 	"arrowroot/app/fit"
+	"arrowroot/canvas/draw"
 	"arrowroot/compile/evidence"
 	"arrowroot/compile/study"
 	"arrowroot/compile/table"
@@ -164,6 +165,19 @@ func TestReportOnPrediction(t *testing.T) {
 	for _, want := range []string{"Which rival predicts better?", "Nest and feed predicts bees better than Feed only.", "the effect is not identified", "20.0, error 5.0", "To predict better is not to be right about causes"} {
 		if !strings.Contains(page.String(), want) {
 			t.Errorf("the report does not say %q", want)
+		}
+	}
+}
+
+// The caption of the plot of strengths speaks of discs only where there are any.
+func TestStrengthCaption(t *testing.T) {
+	none, some := draw.Trail{Label: "z"}, draw.Trail{Label: "w", Points: []draw.Point{{X: 0.1, Y: 0.2}}}
+	for _, c := range []struct {
+		trails []draw.Trail
+		want   string
+	}{{nil, "Nothing is held"}, {[]draw.Trail{none}, "No held variable is drawn"}, {[]draw.Trail{none, some}, "Discs"}} {
+		if got := strengthSays(draw.Strength{Trails: c.trails}); !strings.HasPrefix(got, c.want) {
+			t.Errorf("%d trails: %q", len(c.trails), got)
 		}
 	}
 }
