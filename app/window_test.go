@@ -26,7 +26,8 @@ type said struct {
 	Held, Propose  []string
 	Question, Rows string
 	Trust, Paint   string
-	Effect         []string
+	Effect, Rivals []string
+	Page           string
 	Running, Stale bool
 	FitError       string
 	Popover, Dirty bool
@@ -169,6 +170,18 @@ func TestWindow(t *testing.T) {
 	h.until("slope gone", func(s said) bool { _, ok := s.Nodes["slope"]; return !ok })
 	h.key("ctrl+z")
 	h.until("slope back and the result fresh", func(s said) bool { _, ok := s.Nodes["slope"]; return ok && !s.Stale })
+
+	// A copy predicts what the rival does: nobody is named.
+	h.key("ctrl+r")
+	h.until("a copy", func(s said) bool { return strings.Contains(s.Undo, "Copy") || strings.Contains(s.Undo, "copy") })
+	h.find("which rival predicts better")
+	s = h.until("a comparison", func(s said) bool { return len(s.Rivals) > 0 })
+	if text := strings.Join(s.Rivals, " "); !strings.Contains(text, "predict the same") || !strings.Contains(text, "No rival is named") || s.Page != "Rivals" {
+		t.Errorf("on page %q the comparison says %q", s.Page, text)
+	}
+	h.shot("5-compared")
+	h.key("ctrl+z")
+	h.until("one rival", func(s said) bool { return !strings.Contains(strings.ToLower(s.Undo), "copy") })
 
 	// Save, change, reopen.
 	file := filepath.Join(folder, "fields.arrowroot")
