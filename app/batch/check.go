@@ -45,6 +45,8 @@ type constraintOut struct {
 	P         *float64 `json:"p"`
 	Adjusted  *float64 `json:"adjustedP"`
 	Rows      int      `json:"rows"`
+	Weighted  bool     `json:"weighted"` // a functional constraint that is tested as an independence among weighted rows
+	CountAs   int      `json:"countAs"`  // equal rows that these are worth
 }
 
 type controlOut struct {
@@ -110,7 +112,11 @@ func printCheck(e *evidence.Evidence) *checkOut {
 		out.Independences = append(out.Independences, printFinding(e.Graph, &e.Findings[i]))
 	}
 	for _, f := range e.Functionals {
-		out.Functionals = append(out.Functionals, printConstraint(e.Graph.NamesOf([]int{f.FreeOf, f.Node}), f.Verdict, f.Sentence, f.Effect, f.P, f.Adjusted, f.Rows))
+		to := printConstraint(e.Graph.NamesOf([]int{f.FreeOf, f.Node}), f.Verdict, f.Sentence, f.Effect, f.P, f.Adjusted, f.Rows)
+		if to.CountAs = f.Rows; f.Weighted {
+			to.Weighted, to.CountAs = true, f.Effective
+		}
+		out.Functionals = append(out.Functionals, to)
 	}
 	for _, t := range e.Tetrads {
 		out.Tetrads = append(out.Tetrads, printConstraint(e.Graph.NamesOf([]int{t.A, t.B, t.C, t.D}), t.Verdict, t.Sentence, t.Effect, t.P, t.Adjusted, t.Rows))
@@ -145,5 +151,5 @@ func printFinding(g *graph.Graph, f *evidence.Finding) findingOut {
 }
 
 func printConstraint(variables []string, v evidence.Verdict, sentence string, e evidence.Effect, p, adjusted float64, rows int) constraintOut {
-	return constraintOut{variables, v.String(), sentence, finite(e.Value), finite(e.Low), finite(e.High), finite(p), finite(adjusted), rows}
+	return constraintOut{variables, v.String(), sentence, finite(e.Value), finite(e.Low), finite(e.High), finite(p), finite(adjusted), rows, false, rows}
 }

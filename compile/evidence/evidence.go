@@ -8,7 +8,7 @@
 // residuals.go (what the given variables explain), association.go (size,
 // interval, p), design.go and bench.go (many statements side by side),
 // verdict.go (what is made of them, in words), repair.go, controls.go, tetrad.go,
-// functional.go, untested.go, and test.go (the whole of it).
+// functional.go, weights.go and laws.go, untested.go, and test.go (the whole of it).
 package evidence
 
 import (
@@ -127,13 +127,17 @@ type Tetrad struct {
 	Short       string
 }
 
-// A Functional is a constraint that is no independence, tested where all that
-// it names has few levels.
+// A Functional is a constraint that is no independence. It is tested on a cross
+// table where all that it names has few levels, and else as an independence
+// among weighted rows.
 type Functional struct {
 	causal.Functional
-	Effect      // typical (root mean square) difference of a probability, 0 to 1
+	Effect      // typical (root mean square) difference of a probability, 0 to 1; of weighted rows, that of an independence
+	Bent        bool
 	P, Adjusted float64
 	Rows        int
+	Weighted    bool
+	Effective   int // how many equal rows the weighted ones are worth
 	Verdict     Verdict
 	Sentence    string
 	Short       string

@@ -16,11 +16,11 @@ const (
 	countStep      = 1e-4 // for derivatives, in rows
 )
 
-// functionals tests functional constraints (Verma & Pearl 1990) of variables
-// with few values: the formula is evaluated on the cross table, and all
+// functionals tests functional constraints (Verma & Pearl 1990). Of variables
+// with few values the formula is evaluated on the cross table, and all
 // differences that its free variable makes are held against 0 together, by a
 // Wald test whose spreads are those of sums over groups (the delta method, its
-// derivatives by differences).
+// derivatives by differences). Of others, rows are weighted (weights.go).
 func (b *bench) functionals(ctx context.Context) ([]Functional, []Untested, error) {
 	if len(b.req.Selected) > 0 {
 		return nil, nil, nil
@@ -34,33 +34,26 @@ func (b *bench) functionals(ctx context.Context) ([]Functional, []Untested, erro
 			return nil, nil, err
 		}
 		nodes := mentioned(f.Formula)
-		cells := 1
 		reason := ""
 		for _, v := range nodes {
-			switch {
-			case reason != "":
-			case b.data.of[v] == nil:
+			if reason == "" && b.data.of[v] == nil {
 				reason = b.data.lacks[v]
-			default:
-				levels := distinct(b.data.of[v].values, mostLevels+1)
-				if b.data.of[v].gaps > 0 {
-					levels-- // NaN is none, and equals nothing
-				}
-				if levels > mostLevels {
-					reason = fmt.Sprintf("%s has too many values for a cross table", b.g.Names[v])
-				}
-				cells *= levels
 			}
 		}
-		if reason == "" && cells > mostCells {
-			reason = "the cross table of all that it names has too many cells"
+		few := reason == "" && b.fewCells(nodes)
+		if reason == "" && !few {
+			reason = b.cannotWeigh(f)
 		}
 		if reason != "" {
 			not = append(not, Untested{Sentence: fmt.Sprintf("%s That is not tested: %s.", f.Sentence(b.g), reason), Reason: reason})
 			continue
 		}
-		found := b.functional(f, nodes)
-		all, p = append(all, found), append(p, found.P)
+		found := b.functional
+		if !few {
+			found = b.weighted
+		}
+		one := found(f, nodes)
+		all, p = append(all, one), append(p, one.P)
 	}
 	for i, adjusted := range holm(p) {
 		f := &all[i]
@@ -69,12 +62,34 @@ func (b *bench) functionals(ctx context.Context) ([]Functional, []Untested, erro
 			f.Verdict, f.Short = verdict(f.Effect, adjusted)
 		}
 		otherwise := fmt.Sprintf("An arrow %s → %s would account for it.", b.g.Names[f.FreeOf], b.g.Names[f.Node])
-		f.Sentence = f.Functional.Sentence(b.g) + " " + b.constraintShown(f.Verdict, f.Effect, f.Short, "typical difference of the probability", otherwise)
+		what := "typical difference of the probability"
+		if f.Weighted {
+			what = kindOf(f.Effect)
+		}
+		f.Sentence = f.Functional.Sentence(b.g) + " " + b.constraintShown(f.Verdict, f.Effect, f.Short, what, otherwise)
+		if f.Verdict == TooFew && f.Short != "too few rows to say" {
+			f.Sentence = fmt.Sprintf("%s These data cannot say: %s.", f.Functional.Sentence(b.g), f.Short)
+		} else if f.Weighted {
+			f.Sentence += fmt.Sprintf(" Its %s are weighted and count as %d.", plural(f.Rows, "row"), f.Effective)
+		}
 	}
 	slices.SortStableFunc(all, func(x, y Functional) int {
 		return worse(Finding{Verdict: x.Verdict, Effect: x.Effect, P: x.P}, Finding{Verdict: y.Verdict, Effect: y.Effect, P: y.P})
 	})
 	return all, not, nil
+}
+
+// fewCells reports whether a cross table of nodes is small enough.
+func (b *bench) fewCells(nodes []int) bool {
+	cells, rows := 1, b.rows(b.gapKey(nodes))
+	for _, v := range nodes {
+		levels := distinct(pick(b.data.of[v].values, rows), mostLevels+1)
+		cells *= max(1, levels)
+		if levels > mostLevels || cells > mostCells {
+			return false
+		}
+	}
+	return true
 }
 
 func (b *bench) functional(f causal.Functional, nodes []int) Functional {

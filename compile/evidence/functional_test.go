@@ -62,16 +62,3 @@ func TestVermaConstraint(t *testing.T) {
 		}
 	}
 }
-
-// Where a variable has many values the constraint is listed as never tested.
-func TestFunctionalOfNumbersIsNotTested(t *testing.T) {
-	rng := rand.New(rand.NewPCG(7, 4))
-	w := newWorld("a -> b\nb -> c\nc -> d\n? -> b, d")
-	for id, x := range linear(rng, []string{"a", "b", "c", "d"}, map[string][]string{"b": {"a"}, "c": {"b"}, "d": {"c"}}, 50) {
-		w.numbers(id, study.Real, x)
-	}
-	e := tested(t, w.request(t))
-	if len(e.Functionals) != 0 || len(e.Untested) != 1 || !strings.Contains(e.Untested[0].Reason, "too many values") {
-		t.Errorf("%d tested, %+v", len(e.Functionals), e.Untested)
-	}
-}

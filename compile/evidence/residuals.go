@@ -40,9 +40,15 @@ func newDesign(given []*column, values [][]float64, rows, units int) *design {
 	if len(given) == 0 {
 		return d
 	}
-	if d.byCells(values, units) {
-		return d
+	if !d.byCells(values, units) {
+		d.columns = splines(given, values, rows, units)
+		d.factorise()
 	}
+	return d
+}
+
+// splines are the centred columns of a regression on the given ones.
+func splines(given []*column, values [][]float64, rows, units int) (columns [][]float64) {
 	type part struct{ linear, bent [][]float64 }
 	var parts []part
 	total := 1
@@ -58,8 +64,8 @@ func newDesign(given []*column, values [][]float64, rows, units int) *design {
 		total += len(p.linear) + len(p.bent)
 	}
 	for _, p := range parts {
-		d.columns = append(d.columns, p.linear...)
-		d.columns = append(d.columns, p.bent...)
+		columns = append(columns, p.linear...)
+		columns = append(columns, p.bent...)
 	}
 	products := 0
 	for i := range parts {
@@ -77,14 +83,13 @@ func newDesign(given []*column, values [][]float64, rows, units int) *design {
 							x[k] = a[k] * b[k]
 						}
 						centre(x)
-						d.columns = append(d.columns, x)
+						columns = append(columns, x)
 					}
 				}
 			}
 		}
 	}
-	d.factorise()
-	return d
+	return columns
 }
 
 // byCells uses the cross table of the given variables if each has few values
@@ -219,13 +224,26 @@ func (d *design) residual(y []float64) []float64 {
 		return out
 	}
 	centre(out)
+	for j, b := range d.coefficients(out) {
+		if b == 0 {
+			continue
+		}
+		for i, v := range d.columns[j] {
+			out[i] -= b * v
+		}
+	}
+	return out
+}
+
+// coefficients are those of the columns that fit y best; 0 of what is dropped.
+func (d *design) coefficients(y []float64) []float64 {
 	p := len(d.columns)
 	b := make([]float64, p)
 	for j, x := range d.columns { // forward
 		if d.dropped[j] {
 			continue
 		}
-		s := dot(x, out)
+		s := dot(x, y)
 		for k := range j {
 			s -= d.factor[j][k] * b[k]
 		}
@@ -241,15 +259,7 @@ func (d *design) residual(y []float64) []float64 {
 		}
 		b[j] = s / d.factor[j][j]
 	}
-	for j, x := range d.columns {
-		if b[j] == 0 {
-			continue
-		}
-		for i, v := range x {
-			out[i] -= b[j] * v
-		}
-	}
-	return out
+	return b
 }
 
 // crossProducts gives the lower triangle of X'X, block of rows by block so that

@@ -92,7 +92,7 @@ func test(ctx context.Context, req Request, watch func(done, total int)) (*Evide
 		}
 	}
 	slices.SortStableFunc(e.Findings, worse)
-	e.Summary, e.Method = b.summary(e), b.method(e)
+	e.Summary, e.Method = b.summary(e), b.method(e)+methodOfWeights(e.Functionals)
 	return e, nil
 }
 
