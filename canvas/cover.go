@@ -13,9 +13,6 @@ type cover struct {
 	moved       bool // the view changed from before to now to make room
 }
 
-// mostCover is the share of the sheet's height that can be left out of the view.
-const mostCover = 0.45
-
 // SetCover tells that something of a height, in dips, lies over the upper edge
 // of the sheet. If it would hide part of what is drawn the view makes room; once
 // it has gone, and nobody panned or zoomed meanwhile, the view is as it was.

@@ -71,7 +71,8 @@ func TestPredictLevels(t *testing.T) {
 	s.vector("cuts", model.Cuts, -0.5, 1)
 	s.law("y", "ordered", "x").Cutpoints = "cuts"
 	got := predict(t, s, s.draws(1), Units{Of: each(3), Count: 3})
-	for i, want := range []float64{expit(-0.5), expit(1-1) - expit(-0.5-1), 1 - expit(1-2)} {
+	// P(y ≤ k) = expit(cut − x), with x = 0, 1 and 2 in the rows
+	for i, want := range []float64{expit(-0.5), expit(0) - expit(-0.5-1), 1 - expit(1-2)} {
 		near(t, "level", got.Log[i][0], math.Log(want), 1e-12)
 	}
 }
