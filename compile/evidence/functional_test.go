@@ -62,3 +62,25 @@ func TestVermaConstraint(t *testing.T) {
 		}
 	}
 }
+
+// Missing entries are no levels: their rows are left out, and the cross table
+// stays as small as it is.
+func TestConstraintWithGaps(t *testing.T) {
+	m := square(study.Binary, study.Binary, study.Binary, study.Binary)
+	w := m.drawn(rand.New(rand.NewPCG(7, 5)), 500, 0.5, 0)
+	for i := range 40 {
+		w.columns["b"][i] = ""
+	}
+	f := m.theOne(t, tested(t, w.request(t)))
+	if f.Weighted || f.Rows != 460 {
+		t.Errorf("%d rows, weighted %v", f.Rows, f.Weighted)
+	}
+	w = square(study.Real, study.Count, study.Real, study.Real).drawn(rand.New(rand.NewPCG(7, 6)), 500, 0.5, 0)
+	for i := range 40 {
+		w.columns["c"][i] = ""
+	}
+	f = m.theOne(t, tested(t, w.request(t)))
+	if !f.Weighted || f.Rows != 460 || f.Verdict == TooFew || strings.Contains(f.Sentence, "NaN") {
+		t.Error(f.Rows, f.Sentence)
+	}
+}

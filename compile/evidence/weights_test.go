@@ -76,9 +76,9 @@ func unit(scale study.Scale, x float64) float64 {
 	return x
 }
 
-// square is the diagram of Verma & Pearl (1990); long has two rounds of fixings:
-// b is fixed, a summed out, and only then d, which all others act on, has a law
-// that can be taken out.
+// square is the diagram of Verma & Pearl (1990). Long has two rounds of fixings:
+// b is fixed and a summed out, and only in what that leaves has d a law given
+// measured variables that can be taken out.
 func square(scales ...study.Scale) *maze {
 	return &maze{[]string{"a", "b", "c", "d"}, scales, [][2]string{{"a", "b"}, {"b", "c"}, {"c", "d"}}, [][2]string{{"b", "d"}}, [2]string{"a", "d"}}
 }
@@ -133,6 +133,9 @@ func TestWeightedConstraints(t *testing.T) {
 			for seed := range reps {
 				rng := rand.New(rand.NewPCG(uint64(seed), 41))
 				f := m.theOne(t, tested(t, m.drawn(rng, 1000, 0.5, 0).request(t)))
+				if rounds := len(m.order) - 3; len(f.Fixings) != rounds {
+					t.Fatalf("%d rounds of fixings, want %d", len(f.Fixings), rounds)
+				}
 				if !f.Weighted || f.Effective < leastEffective || f.Effective > f.Rows {
 					t.Fatalf("%+v", f)
 				}
