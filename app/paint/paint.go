@@ -2,7 +2,7 @@
 // and words for the sheet (SEMANTICS G). The window and the report both paint
 // from here.
 //
-// Read paint.go (the sheet), strength.go and checks.go (two plots).
+// Read paint.go (the sheet), strength.go, checks.go and differences.go (plots).
 package paint
 
 import (
