@@ -104,7 +104,8 @@ func (m *maze) theOne(t *testing.T, e *Evidence) *Functional {
 // 5 % of data sets that keep them (three sds of chance allowed; fewer, because
 // spreads take the weights as known), and p is no empty number: it is under 1/2
 // in an eighth at least (each p is of two looks, and doubled). With an effect of 0.4 that is not drawn they are
-// contradicted in at least 90 % of tables of 1000 rows.
+// contradicted in at least 85 % of tables of 1000 rows (least where the outcome is
+// binary). No verdict is given in 1 % of tables at most.
 func TestWeightedConstraints(t *testing.T) {
 	r, p, c, b, o, k := study.Real, study.Positive, study.Count, study.Binary, study.Ordered, study.Category
 	for _, one := range []struct {
@@ -129,14 +130,17 @@ func TestWeightedConstraints(t *testing.T) {
 		}
 		t.Run(one.name, func(t *testing.T) {
 			t.Parallel()
-			flagged, half, contradicted, fewer := 0, 0, 0, 0
+			flagged, half, contradicted, fewer, few := 0, 0, 0, 0, 0
 			for seed := range reps {
 				rng := rand.New(rand.NewPCG(uint64(seed), 41))
 				f := m.theOne(t, tested(t, m.drawn(rng, 1000, 0.5, 0).request(t)))
 				if rounds := len(m.order) - 3; len(f.Fixings) != rounds {
 					t.Fatalf("%d rounds of fixings, want %d", len(f.Fixings), rounds)
 				}
-				if !f.Weighted || f.Effective < leastEffective || f.Effective > f.Rows {
+				if f.Verdict == TooFew {
+					few++
+				}
+				if !f.Weighted || f.Effective > f.Rows {
 					t.Fatalf("%+v", f)
 				}
 				if f.P < 0.05 {
@@ -159,8 +163,8 @@ func TestWeightedConstraints(t *testing.T) {
 			if float64(flagged)/n > 0.05+3*math.Sqrt(0.05*0.95/n) || float64(half)/n < 0.12 {
 				t.Errorf("flagged %.3f, under 1/2 %.3f", float64(flagged)/n, float64(half)/n)
 			}
-			if 4*float64(contradicted)/n < 0.9 {
-				t.Errorf("contradicted in %.3f", 4*float64(contradicted)/n)
+			if 4*float64(contradicted)/n < 0.85 || float64(few)/n > 0.01 {
+				t.Errorf("contradicted in %.3f, no verdict in %d", 4*float64(contradicted)/n, few)
 			}
 		})
 	}
