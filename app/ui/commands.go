@@ -86,6 +86,12 @@ func commandsOf(d *desk) commandTable {
 		{id: "data", menu: "Data", label: "Open data …", keys: "Ctrl+Shift+O", run: d.dataDialog},
 		{id: "bind", menu: "Data", label: "Bind columns …", on: func() bool { return d.view.Table != nil }, run: d.bindDialog},
 		{id: "columns", menu: "Data", label: "Make variables of all columns", on: func() bool { return len(d.freeColumns()) > 0 }, run: d.adoptColumns},
+		{id: "remove-data", menu: "Data", label: "Remove the table", on: func() bool { return d.data() != nil }, live: func() string {
+			if t := d.data(); t != nil {
+				return "Remove " + t.Name
+			}
+			return "Remove the table"
+		}, run: func() { d.do(study.RemoveData{Name: d.data().Name}) }},
 		{id: "unmeasured", menu: "Data", label: "Measured or not", keys: "M", on: pickedNode, parted: true, run: func() {
 			id := d.picked()
 			d.changeVariable(id, func(v *study.Variable) { v.Unmeasured = !v.Unmeasured })
@@ -96,6 +102,11 @@ func commandsOf(d *desk) commandTable {
 		{id: "limits", menu: "Data", label: "Limits the rows, or not", keys: "L", on: onSheet, run: func() { d.limitRows(d.picked()) }},
 
 		{id: "question", menu: "Reading", label: "Ask …", keys: "Ctrl+E", run: func() { d.askQuestion(d.capsule) }},
+		{id: "another-question", menu: "Reading", label: "Ask another question …", on: func() bool { return d.view.Question != nil }, run: func() { d.askAnother(d.capsule) }},
+		{id: "next-question", menu: "Reading", label: "Next question", keys: "Ctrl+Shift+E", on: func() bool { return len(d.view.Study.Questions) > 1 }, run: d.nextQuestion},
+		{id: "remove-question", menu: "Reading", label: "Remove this question", on: func() bool { return d.view.Question != nil }, run: func() {
+			d.do(study.RemoveQuestion{At: d.view.QuestionAt})
+		}},
 		{id: "exposure", menu: "Reading", label: "Make it the exposure", keys: "X", on: onSheet, run: func() { d.setExposure(d.picked()) }},
 		{id: "outcome", menu: "Reading", label: "Make it the outcome", keys: "Y", on: onSheet, run: func() { d.setOutcome(d.picked()) }},
 		{id: "hold", menu: "Reading", label: "Hold, or leave free", keys: "H", on: onSheet, run: func() { d.hold(d.picked(), !d.held(d.picked())) }},
@@ -153,6 +164,9 @@ func withLabel(verb, label string) string {
 	}
 	return verb + " " + lower(label)
 }
+
+// data is the table of the present rival; nil = none.
+func (d *desk) data() *study.Data { return d.view.Study.DataOf(d.rival()) }
 
 // proposes reports whether the reading has a set to hold.
 func (d *desk) proposes() bool {

@@ -26,26 +26,63 @@ type asker struct {
 	where *rowPicker
 	fixed map[string]*field // values of what is fixed, by variable
 	more  bool              // the parts that most questions do without are shown
+	added bool              // it will be one more question of the study
 	wrong string            // why it cannot be asked so
 	focus fyne.Focusable    // where the typing starts
 	keys  map[string]fyne.Focusable
 }
 
 func (d *desk) askQuestion(under fyne.CanvasObject) *asker {
-	a := &asker{d: d, body: column(8)}
-	if q := d.view.Question; q != nil {
+	return d.openAsker(under, false)
+}
+
+// askAnother puts one more question together.
+func (d *desk) askAnother(under fyne.CanvasObject) *asker {
+	return d.openAsker(under, true)
+}
+
+func (d *desk) nextQuestion() {
+	d.session.ShowQuestion((d.view.QuestionAt + 1) % len(d.view.Study.Questions))
+}
+
+func (d *desk) openAsker(under fyne.CanvasObject, added bool) *asker {
+	a := &asker{d: d, body: column(8), added: added}
+	a.start()
+	at := below(under)
+	a.pop = d.kit.pop(d.win.Canvas(), a.body, at, 430)
+	d.win.Canvas().Focus(a.focus)
+	return a
+}
+
+// start begins with the present question, or with none where one is added.
+func (a *asker) start() {
+	a.draft = study.Question{}
+	if q := a.d.view.Question; q != nil && !a.added {
 		a.draft = *q
 		a.draft.Held = slices.Clone(q.Held)
 	}
 	q := &a.draft
 	a.more = q.Effect == study.DirectEffect || len(q.Where) > 0 || q.Groups == study.NewGroups || q.Weigh == study.ByGroups
-	a.where = d.pickRows(q.Where, a.again)
+	a.where = a.d.pickRows(q.Where, a.again)
 	a.where.done = a.ask
 	a.fill()
-	at := below(under)
-	a.pop = d.kit.pop(d.win.Canvas(), a.body, at, 430)
-	d.win.Canvas().Focus(a.focus)
-	return a
+}
+
+// which lets people turn to another question of the study.
+func (a *asker) which(s *sheaf) {
+	questions := a.d.view.Study.Questions
+	if a.added || len(questions) < 2 {
+		return
+	}
+	var names []string
+	for i, q := range questions {
+		names = append(names, strconv.Itoa(i+1)+"  "+q.Exposure+" → "+q.Outcome)
+	}
+	s.choice("which", "of "+strconv.Itoa(len(names)), names, names[a.d.view.QuestionAt], func(w string) {
+		a.d.session.ShowQuestion(slices.Index(names, w))
+		a.start()
+		a.pop.resize()
+	})
 }
 
 func (a *asker) fill() {
@@ -58,6 +95,7 @@ func (a *asker) fill() {
 	s := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
 	again := a.again
 	s.add(caption("Question"))
+	a.which(s)
 	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) {
 		a.read()
 		q.Exposure = w
@@ -192,6 +230,12 @@ func (a *asker) ask() {
 	a.draft.Where, _ = a.where.conditions()
 	a.pop.close()
 	if a.draft.Exposure == "" && a.draft.Outcome == "" {
+		return
+	}
+	if a.added {
+		if err := a.d.session.AskAnother(a.draft); err != nil {
+			a.d.complain(err.Error())
+		}
 		return
 	}
 	a.d.changeQuestion(func(q *study.Question) { *q = a.draft })
