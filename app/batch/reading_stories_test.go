@@ -8,7 +8,6 @@ import (
 	"slices"
 	"strings"
 	"testing"
-	"time"
 
 	"arrowroot/compile/study"
 )
@@ -267,7 +266,6 @@ func TestReadLargeSheets(t *testing.T) {
 		return sheetOf(nodes, edges, nil, []string{"v1"})
 	}
 	for name, s := range map[string]*study.Study{"all joined": full(13, 13), "long": full(1000, 3)} {
-		start := time.Now()
 		nodes := s.Rivals[0].Diagram.Nodes
 		out, status, messages := reading(t, s, "-exposure", "v0", "-outcome", nodes[len(nodes)-1].Variable, "-paths", "20", "-sets", "5")
 		if status != done || !out.Done || len(out.Paths) != 20 || out.PathsExact || out.PathCount < 21 || !out.MorePaths {
@@ -275,9 +273,6 @@ func TestReadLargeSheets(t *testing.T) {
 		}
 		if left := sectionOf(t, out, "paths").LeftOut; !strings.Contains(left, "The first 20 of at least") {
 			t.Errorf("%s: paths left out: %q", name, left)
-		}
-		if took := time.Since(start); took > time.Minute {
-			t.Errorf("%s took %v", name, took)
 		}
 	}
 }

@@ -94,7 +94,11 @@ func (a *asker) fill() {
 	slices.Sort(ids)
 	s := &sheaf{d: d, keys: make(map[string]fyne.Focusable)}
 	again := a.again
-	s.add(caption("Question"))
+	if a.added {
+		s.add(caption("Another question"))
+	} else {
+		s.add(caption("Question"))
+	}
 	a.which(s)
 	s.choice("exposure", "Effect of", ids, q.Exposure, func(w string) {
 		a.read()
