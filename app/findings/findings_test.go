@@ -194,3 +194,29 @@ func BenchmarkRead(b *testing.B) {
 		}
 	})
 }
+
+// A table with gaps that the sheet does not speak of is not called whole.
+func TestGapsThatTheSheetDoesNotSpeakOf(t *testing.T) {
+	s, ask := random(6, 8, 0)
+	for _, c := range []struct {
+		incomplete []string
+		want       string
+	}{
+		{nil, "nothing is said to be missing"},
+		{[]string{"v0"}, "v0 has entries missing"},
+		{[]string{"elsewhere"}, "nothing is said to be missing"},
+	} {
+		ask.Incomplete = c.incomplete
+		f, err := Read(context.Background(), s, "drawn", ask, Limits{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		all := f.Rows.Summary
+		for _, one := range f.Rows.Findings {
+			all += " " + one.Sentence
+		}
+		if !strings.Contains(all, c.want) {
+			t.Errorf("with %v missing: %s", c.incomplete, all)
+		}
+	}
+}

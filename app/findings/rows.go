@@ -19,11 +19,19 @@ func (r *reader) rows(f *Findings) {
 	switch len(s.Findings) {
 	case 0:
 		s.Summary = "Nothing limits the rows, nothing is said to be missing, and nothing is a record of something else."
+		if lacking := r.lacking(f); len(lacking) > 0 {
+			s.Summary = fmt.Sprintf("Nothing limits the rows. %s %s entries missing, which the question can do without; the sheet does not say what they depend on.", words.List(lacking), hasHave(len(lacking)))
+		}
 	case 1:
 		s.Summary = s.Findings[0].Sentence
 	default:
 		s.Summary = fmt.Sprintf("%s on how the rows came about.", words.Upper(words.Plural(len(s.Findings), "finding")))
 	}
+}
+
+// lacking lists the variables of the sheet with missing entries.
+func (r *reader) lacking(f *Findings) []string {
+	return slices.DeleteFunc(slices.Clone(f.Ask.Incomplete), func(id string) bool { return f.Graph.Index(id) < 0 })
 }
 
 func (r *reader) selection(f *Findings) {
