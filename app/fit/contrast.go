@@ -142,9 +142,10 @@ func (e *Effect) simulate(ctx context.Context, req *Request, g *graph.Graph, cla
 	case e.None:
 		c, err = effect.NoChange(ctx, full.Model, q, full.Pooled(), source(req, "full"), options(req))
 	case !e.Identified:
-		e.Refusal = claim.why
-		if !strings.Contains(claim.why, "not identified") {
-			e.Refusal = "not identified: " + claim.why
+		// Said once, in front.
+		e.Refusal = "not identified: " + strings.Replace(claim.why, "The effect is not identified: what", "What", 1)
+		if strings.HasPrefix(claim.why, "The direct effect") { // which says so itself
+			e.Refusal = claim.why
 		}
 		return nil
 	case claim.fullWhy != "":
