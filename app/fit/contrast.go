@@ -85,7 +85,7 @@ func contrasts(ctx context.Context, req *Request, g *graph.Graph, full *Fitted, 
 		held.Held = []string{}
 	}
 
-	late, cancel := grace(ctx, graceOfEffects)
+	late, cancel := grace(ctx, req.afterCancel())
 	defer cancel()
 	one := &oneLaw{req: req, full: full, watch: watch}
 	var err error

@@ -13,6 +13,7 @@
 package fit
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -39,7 +40,11 @@ type Request struct {
 	NoEffects bool // leave out crude, held and full model: the quantities are all that is wanted
 	NoPaint   bool // leave out what paints the sheet
 	Answer    bool // nothing is wanted but an answer: a question that lacks something is a *Blocked error
+
+	grace time.Duration // 0 = afterCancel; tests, which must not depend on the machine's speed, give more
 }
+
+func (r *Request) afterCancel() time.Duration { return cmp.Or(r.grace, afterCancel) }
 
 // Level is the credible level of intervals.
 func (r *Request) Level() float64 {
@@ -101,12 +106,9 @@ func (e *Blocked) Error() string {
 // ErrNoDraws means that a run was cancelled before it had any draws.
 var ErrNoDraws = errors.New("cancelled in warm-up: there are no draws to keep")
 
-// After a cancel, what the draws so far can say at once is still said: each of
-// these is how long it may take.
-const (
-	graceOfEffects = time.Second
-	graceOfPaint   = time.Second
-)
+// afterCancel is how long effects, and then the paint, may still take after a
+// cancel: what the draws so far can say at once is said.
+const afterCancel = time.Second
 
 // Run fits the request. A *Blocked error lists what stops it; a question that
 // lacks something does not, and stands in Unanswered. When ctx is cancelled

@@ -38,7 +38,7 @@ type NodePaint struct {
 // paint fills in Arrows and Nodes. After a cancel it has a second for it; what
 // is not there by then stays unpainted.
 func (r *Result) paint(ctx context.Context, req *Request, g *graph.Graph) error {
-	late, cancel := grace(ctx, graceOfPaint)
+	late, cancel := grace(ctx, req.afterCancel())
 	defer cancel()
 	err := r.paintArrows(late, req, g)
 	if err == nil {

@@ -6,6 +6,7 @@ import (
 	"math"
 	"runtime"
 	"testing"
+	"time"
 
 	"arrowroot/infer"
 )
@@ -78,7 +79,7 @@ func TestSameSeedSameDraws(t *testing.T) {
 func TestCancelKeepsAPrefix(t *testing.T) {
 	t.Parallel()
 	req := request(t, "kidney_stones")
-	req.Draws = 600
+	req.Draws, req.grace = 600, time.Minute
 	whole := run(t, req)
 	settings := infer.NewRun(infer.Problem{Target: func() infer.Target { return nowhere{} }}, infer.Settings{}).Settings()
 	blocks := len(whole.Full.Density.Blocks)
@@ -102,17 +103,13 @@ func TestCancelKeepsAPrefix(t *testing.T) {
 		t.Fatalf("cut %v with %d steps", cut.Cut, steps)
 	}
 	identical(t, "cut", cut, whole, min(steps, whole.Full.Steps()))
-	if cut.Effect == nil || !said(cut.Effect) || cut.Effect.Full != nil && len(cut.Effect.Full.Draws) != steps*settings.Chains {
+	if cut.Effect == nil || cut.Effect.Full == nil || len(cut.Effect.Full.Draws) != steps*settings.Chains {
 		t.Error("the draws that were kept should give the full model's number")
 	}
 	if cut.Effect.Crude != nil {
 		t.Error("a cancelled run should not begin another fit")
 	}
 }
-
-// said reports whether the full model's number is there, or why it is not: a
-// slow machine may not get to it in the time that a cancel leaves.
-func said(e *Effect) bool { return e.Full != nil || e.Refusal != "" }
 
 // nowhere is a target of no dimension.
 type nowhere struct{}
@@ -134,7 +131,7 @@ func TestCancelInWarmup(t *testing.T) {
 func TestCancelBetweenFits(t *testing.T) {
 	t.Parallel()
 	req := request(t, "kidney_stones")
-	req.Draws = 300
+	req.Draws, req.grace = 300, time.Minute
 	whole := run(t, req)
 	ctx, cancel := context.WithCancel(context.Background())
 	defer cancel()
@@ -149,7 +146,7 @@ func TestCancelBetweenFits(t *testing.T) {
 		t.Fatal(err)
 	}
 	identical(t, "full model", cut, whole, req.Draws)
-	if ctx.Err() != nil && (!cut.Cut || cut.Full.Cut || !said(cut.Effect)) {
+	if ctx.Err() != nil && (!cut.Cut || cut.Full.Cut || cut.Effect.Full == nil) {
 		t.Errorf("cut %v, full model %v", cut.Cut, cut.Full.Cut)
 	}
 }
