@@ -6,6 +6,8 @@ import (
 	"math"
 	"slices"
 
+	"gonum.org/v1/gonum/floats"
+
 	"arrowroot/compile/effect"
 	"arrowroot/infer"
 	"arrowroot/infer/score"
@@ -157,13 +159,5 @@ func relative(log [][]float64, chains int) []float64 {
 
 // logMean is the log of the mean of numbers given by their logs.
 func logMean(log []float64) float64 {
-	most := slices.Max(log)
-	if math.IsInf(most, 0) {
-		return most
-	}
-	sum := 0.0
-	for _, x := range log {
-		sum += math.Exp(x - most)
-	}
-	return most + math.Log(sum/float64(len(log)))
+	return floats.LogSumExp(log) - math.Log(float64(len(log)))
 }

@@ -1,6 +1,10 @@
 package score
 
-import "math"
+import (
+	"math"
+
+	"gonum.org/v1/gonum/floats"
+)
 
 // By holds log predictive densities of units, and what makes them up.
 type By struct {
@@ -32,8 +36,8 @@ func LeaveOneOut(logDensity [][]float64, relative []float64) *By {
 		for s, v := range draws {
 			ratios[s] = w.Log[s] + v
 		}
-		out.Unit[i], out.K[i] = logSumExp(ratios), w.K
-		out.Fit[i] = logSumExp(draws) - math.Log(float64(len(draws)))
+		out.Unit[i], out.K[i] = floats.LogSumExp(ratios), w.K
+		out.Fit[i] = floats.LogSumExp(draws) - math.Log(float64(len(draws)))
 		out.Parameters += out.Fit[i] - out.Unit[i]
 		out.Relied = Reliable(len(draws))
 	}
@@ -59,7 +63,7 @@ func Widely(logDensity [][]float64) (scores *By, shaky int) {
 		if variance > 0.4 {
 			shaky++
 		}
-		out.Fit[i] = logSumExp(draws) - math.Log(n)
+		out.Fit[i] = floats.LogSumExp(draws) - math.Log(n)
 		out.Unit[i] = out.Fit[i] - variance
 		out.Parameters += variance
 	}

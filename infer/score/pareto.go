@@ -11,6 +11,8 @@ package score
 import (
 	"math"
 	"slices"
+
+	"gonum.org/v1/gonum/floats"
 )
 
 // Weights are normalised importance weights of draws, with the verdict on
@@ -38,7 +40,7 @@ func Smooth(logRatios []float64, relative float64) Weights {
 	if tail >= 5 && tail < total {
 		w.K = smoothTail(log, tail)
 	}
-	norm := logSumExp(log)
+	norm := floats.LogSumExp(log)
 	for i := range log {
 		log[i] -= norm
 	}
@@ -112,7 +114,7 @@ func fitPareto(x []float64) (k, sigma float64) {
 		s := shape(b[j])
 		fit[j] = float64(n) * (math.Log(-b[j]/s) - s - 1)
 	}
-	norm := logSumExp(fit)
+	norm := floats.LogSumExp(fit)
 	middle := 0.0
 	for j := range b {
 		middle += b[j] * math.Exp(fit[j]-norm)
@@ -150,16 +152,4 @@ func (w Weights) Mean(values []float64) float64 {
 		sum += math.Exp(l) * values[i]
 	}
 	return sum
-}
-
-func logSumExp(x []float64) float64 {
-	most := slices.Max(x)
-	if math.IsInf(most, 0) {
-		return most
-	}
-	sum := 0.0
-	for _, v := range x {
-		sum += math.Exp(v - most)
-	}
-	return most + math.Log(sum)
 }
